@@ -1,0 +1,1 @@
+"""The control law, written once as a plain function, and its translation to other languages."""
