@@ -1,0 +1,149 @@
+"""The controller: gains in the form they were given, times, weights, and the blocks around the law."""
+
+from dataclasses import dataclass, replace
+from math import sqrt
+from typing import Literal
+
+from tuner.errors import LoopError
+from tuner.model.parameters import GAIN_KEYS
+
+Form = Literal["parallel", "standard", "series"]
+Action = Literal["reverse", "direct"]
+
+
+@dataclass(frozen=True, slots=True)
+class Gains:
+    """Gains of the parallel form: kp, ki (per time unit), kd (times time unit)."""
+
+    kp: float
+    ki: float
+    kd: float
+
+
+@dataclass(frozen=True, slots=True)
+class Feedforward:
+    """How the reference acts on the effort directly: `gain` for static, `filter_time` for inverse."""
+
+    kind: Literal["static", "inverse"]
+    gain: float | None = None
+    filter_time: float | None = None
+
+
+@dataclass(frozen=True, slots=True)
+class DisturbanceFeedforward:
+    """Compensation of a measured disturbance; `expression` is its own path to the output, as a formula."""
+
+    expression: str
+
+
+@dataclass(frozen=True, slots=True)
+class Notch:
+    """A notch: centre `frequency` in rad per time unit, gain `depth` there, bandwidth over centre `width`."""
+
+    frequency: float
+    depth: float = 0.1
+    width: float = 1.0
+
+
+@dataclass(frozen=True, slots=True)
+class Controller:
+    """A controller, gains as given in `form`; see the table in `parameters` for each number.
+
+    Parameters
+    ----------
+    sample_time : float
+        Time between samples; 0 means a continuous controller.
+    gain_1, gain_2, gain_3 : float
+        kp, ki, kd in the parallel form; kc, ti, td in the standard and series forms.
+    measurement_filter : float
+        Time of the measurement filter; 0 for none.
+    as_found : Controller or None
+        The controller met on site, whole.
+    """
+
+    form: Form = "parallel"
+    sample_time: float = 0.0
+    gain_1: float = 0.0
+    gain_2: float = 0.0
+    gain_3: float = 0.0
+    filter_time: float = 0.0
+    b: float = 1.0
+    c: float = 0.0
+    windup_time: float | None = None
+    action: Action = "reverse"
+    feedback: bool = True
+    delay_samples: int = 0
+    feedforward: Feedforward | None = None
+    disturbance_feedforward: DisturbanceFeedforward | None = None
+    measurement_filter: float = 0.0
+    notch: Notch | None = None
+    as_found: "Controller | None" = None
+
+    @property
+    def sign(self) -> float:
+        """+1 for reverse action, -1 for direct."""
+        return 1.0 if self.action == "reverse" else -1.0
+
+    def value(self, name: str) -> float | None:
+        """Return the number under a key of the sheet: a gain of the present form, a time or a weight."""
+        gains = GAIN_KEYS[self.form]
+        field = f"gain_{gains.index(name) + 1}" if name in gains else name
+        value: float | None = getattr(self, field)
+        return value
+
+    def with_value(self, name: str, value: float | None) -> "Controller":
+        """Return this controller with one number changed, named as in the sheet."""
+        gains = GAIN_KEYS[self.form]
+        field = f"gain_{gains.index(name) + 1}" if name in gains else name
+        return replace(self, **{field: value})  # type: ignore[arg-type] # the table of parameters names only numbers
+
+    def parallel(self) -> Gains:
+        """Return the gains in the parallel form.
+
+        Standard: kp = kc, ki = kc/ti, kd = kc td. Series: kc (1 + 1/(ti s)) (1 + td s), multiplied out.
+        `ti` = 0 means no integral action (Astrom and Hagglund, PID Controllers, 1995).
+        """
+        if self.form == "parallel":
+            return Gains(self.gain_1, self.gain_2, self.gain_3)
+        integral = self.gain_1 / self.gain_2 if self.gain_2 else 0.0
+        if self.form == "standard":
+            return Gains(self.gain_1, integral, self.gain_1 * self.gain_3)
+        interaction = self.gain_3 / self.gain_2 if self.gain_2 else 0.0
+        return Gains(self.gain_1 * (1.0 + interaction), integral, self.gain_1 * self.gain_3)
+
+    def in_form(self, form: Form) -> "Controller":
+        """Return the same controller with its gains in another form; the loop is unchanged.
+
+        Raises
+        ------
+        LoopError
+            When the gains have no such form: no proportional gain beside the others, or, for the series form,
+            ti < 4 td (Astrom and Hagglund, PID Controllers, 1995).
+        """
+        if form == self.form:
+            return self
+        gains = self.parallel()
+        if form == "parallel":
+            return replace(self, form=form, gain_1=gains.kp, gain_2=gains.ki, gain_3=gains.kd)
+        if gains.kp == 0.0 and (gains.ki or gains.kd):
+            raise LoopError(f"the {form} form needs a proportional gain: kp is 0 while ki or kd is not")
+        ti = gains.kp / gains.ki if gains.ki else 0.0
+        td = gains.kd / gains.kp if gains.kp else 0.0
+        if form == "standard":
+            return replace(self, form=form, gain_1=gains.kp, gain_2=ti, gain_3=td)
+        return self._in_series(gains.kp, ti, td)
+
+    def _in_series(self, kc: float, ti: float, td: float) -> "Controller":
+        if ti == 0.0 or td == 0.0:
+            return replace(self, form="series", gain_1=kc, gain_2=ti, gain_3=td)
+        square = 1.0 - 4.0 * td / ti
+        if square < 0.0:
+            raise LoopError(
+                f"the series form exists only when the integral time is at least four derivative times: "
+                f"Ti = {ti:g} is less than 4 Td = {4.0 * td:g}"
+            )
+        root = sqrt(square)
+        small = 2.0 * td / (1.0 + root)
+        return replace(
+            self, form="series", gain_1=kc * (1.0 + root) / 2.0, gain_2=ti * (1.0 + root) / 2.0, gain_3=small
+        )
