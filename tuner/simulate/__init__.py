@@ -1,0 +1,1 @@
+"""From the model to traces, poles and frequency response; block-diagram algebra."""
