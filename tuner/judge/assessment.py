@@ -1,7 +1,7 @@
 """The one result that the window, the commands, the report and Python callers all show."""
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from typing import Literal
 
 from tuner.simulate.traces import ComplexArray, Traces
@@ -44,6 +44,12 @@ class MemberResult:
         Closed-loop poles in s (rad per time unit), rightmost first.
     traces : Traces
         The two runs.
+    reasons : mapping of str to str
+        For every measure that is None, why, as the end of a sentence.
+    final_reference, final_disturbance : float or None
+        Where the output ends in each run, deviation; None when the loop is unstable or the run has no step.
+    notes : tuple of str
+        What else the reader must know about this plant's loop; one sentence each.
     """
 
     name: str
@@ -51,6 +57,10 @@ class MemberResult:
     measures: Mapping[str, float | None]
     poles: ComplexArray
     traces: Traces
+    reasons: Mapping[str, str] = field(default_factory=dict)
+    final_reference: float | None = None
+    final_disturbance: float | None = None
+    notes: tuple[str, ...] = ()
 
 
 @dataclass(frozen=True, slots=True)

@@ -1,0 +1,53 @@
+"""How judged numbers are said: four significant digits, always with their unit."""
+
+from math import isinf
+
+from tuner.model.loop import Loop
+from tuner.model.measures import BY_NAME
+
+_DIGITS = 4
+_ALL_DIGITS = 17
+
+
+def number(value: float, digits: int = _DIGITS) -> str:
+    """Return a number in words of at most `digits` significant digits, without an exponent where it can be read so."""
+    if isinf(value):
+        return "inf" if value > 0.0 else "-inf"
+    rounded = float(f"{value:.{digits}g}")
+    return f"{rounded:.{max(digits, 10)}g}"
+
+
+def unit_of(measure: str, loop: Loop) -> str:
+    """Return the unit of a measure on one loop; '' for a plain ratio or a signal without unit."""
+    units = {"t": loop.time_unit, "y": loop.controlled.unit, "u": loop.manipulated.unit}
+    return BY_NAME[measure].unit.format(**units).strip()
+
+
+def quantity(value: float | None, unit: str, digits: int = _DIGITS) -> str:
+    """Return a number with its unit: "96 s"; "none" where there is no number."""
+    if value is None:
+        return "none"
+    said = number(value, digits)
+    return f"{said} {unit}" if unit and not isinf(value) else said
+
+
+def told_apart(value: float, limit: float) -> int:
+    """Return how many significant digits two different numbers need in order to be read as different."""
+    for digits in range(_DIGITS, _ALL_DIGITS):
+        if value == limit or number(value, digits) != number(limit, digits):
+            return digits
+    return _ALL_DIGITS
+
+
+def relation(measure: str, value: float | None, limit: float, loop: Loop) -> str:
+    """Say how a value stands to its limit: "settling time 96 s > 90 s"."""
+    facts = BY_NAME[measure]
+    unit = unit_of(measure, loop)
+    if value is None:
+        bound = "at least" if facts.at_least else "at most"
+        return f"{facts.label} does not exist, asked {bound} {quantity(limit, unit)}"
+    digits = told_apart(abs(value) if facts.by_size else value, limit)
+    beyond = abs(value) > limit if facts.by_size else value > limit
+    sign = ">" if beyond else "<" if facts.at_least and value < limit else ">=" if facts.at_least else "<="
+    size = abs(value) if facts.by_size else value
+    return f"{facts.label} {quantity(size, unit, digits)} {sign} {quantity(limit, unit, digits)}"

@@ -1,0 +1,1 @@
+"""From traces to measures: numbers read off curves that were sampled finely, whole families at once."""
