@@ -99,7 +99,7 @@ def law(  # noqa: C901, PLR0913, PLR0917 - one text of scalars, which compilers 
     feedforward : float
         Effort to add, as a deviation.
     manual_effort : float
-        Effort in engineering units, taken while `mode` is MANUAL, and limited like any other.
+        Effort in engineering units, taken while `mode` is MANUAL, and limited like any other; finite in every mode.
     effort, integral, ..., fault : float
         The state that the previous sample returned.
     proportional_gain, ..., resting_effort : float
@@ -110,26 +110,36 @@ def law(  # noqa: C901, PLR0913, PLR0917 - one text of scalars, which compilers 
     tuple of float
         The new state. `limited` is 1.0 when a limit changed the effort.
     """
-    # A difference with itself is zero for finite numbers only, in every language.
-    if (reference - reference == 0.0) and (measurement - measurement == 0.0) and (feedforward - feedforward == 0.0):
+    # A difference with itself is zero for finite numbers only; anything else holds the effort.
+    if (
+        (reference - reference == 0.0)
+        and (measurement - measurement == 0.0)
+        and (feedforward - feedforward == 0.0)
+        and (manual_effort - manual_effort == 0.0)
+    ):
         fault = 0.0
+
+        # Measurement filter and notch.
         asked = reference - resting_measurement
         filtered = filtered + (filter_gain * ((measurement - resting_measurement) - filtered))
         found = (notch_b0 * filtered) + notch_1
         notch_1 = ((notch_b1 * filtered) - (notch_a1 * found)) + notch_2
         notch_2 = (notch_b2 * filtered) - (notch_a2 * found)
 
+        # Proportional and derivative parts.
         proportional = proportional_gain * ((b * asked) - found)
         weighted = (c * asked) - found
         derivative = (derivative_decay * derivative) + (derivative_gain * (weighted - weighted_error))
         weighted_error = weighted
 
+        # Effort wanted: automatic, by hand, or held for the one sample of the transfer.
         wanted = (action * ((proportional + integral) + derivative)) + feedforward
         if mode == 1.0:
             wanted = manual_effort - resting_effort
         if mode == 2.0:
             wanted = effort
 
+        # Limits in value, then in rate.
         allowed = wanted
         if allowed < low:
             allowed = low
@@ -143,6 +153,8 @@ def law(  # noqa: C901, PLR0913, PLR0917 - one text of scalars, which compilers 
         limited = 0.0
         if allowed != wanted:
             limited = 1.0
+
+        # Integral; outside automatic it takes the value that continues the effort.
         if mode == 0.0:
             integral = (integral + (integral_gain * (asked - found))) + ((windup_gain * action) * (allowed - wanted))
         else:

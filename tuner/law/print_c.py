@@ -1,0 +1,76 @@
+"""Prints the checked tree of the law as C99, every operation in parentheses."""
+
+from collections.abc import Collection, Iterable, Mapping, Sequence
+
+from tuner.law.translate import Assignment, Choice, Comparison, Expression, Name, Number, Operation, Statement, used
+
+
+def number(value: float) -> str:
+    """Return a finite number as a hexadecimal constant, which every C99 compiler reads exactly."""
+    text = value.hex()
+    mantissa, _, exponent = text.partition("p")
+    whole, _, fraction = mantissa.partition(".")
+    fraction = fraction.rstrip("0") or "0"
+    return f"{whole}.{fraction}p{exponent}"
+
+
+def expression(node: Expression, names: Mapping[str, str]) -> str:
+    """Return an expression as text; `names` respells names where it holds them."""
+    match node:
+        case Number(value):
+            return repr(value)
+        case Name(name):
+            return names.get(name, name)
+        case Operation(operator, left, right):
+            return f"({expression(left, names)} {operator} {expression(right, names)})"
+
+
+def block(nodes: Sequence[Statement], names: Mapping[str, str], local: Collection[str], indent: str) -> list[str]:
+    """Return the lines of a block; a name of `local` is declared at the top of the smallest block that holds it."""
+    here = [name for name in local if _belongs_here(name, nodes)]
+    lines = [f"{indent}double {names.get(name, name)};" for name in here]
+    below = [name for name in local if name not in here]
+    for node in nodes:
+        if node.note:
+            lines += [""] * bool(lines) + [f"{indent}/* {node.note} */"]
+        lines += _statement(node, names, below, indent)
+    return lines
+
+
+def _belongs_here(name: str, nodes: Iterable[Statement]) -> bool:
+    """Tell whether no single block below holds every use of a name."""
+    users = [node for node in nodes if name in used(node)]
+    if not users:
+        return False
+    only = users[0]
+    if len(users) > 1 or not isinstance(only, Choice):
+        return True
+    branches = [any(name in used(node) for node in branch) for branch in (only.then, only.otherwise)]
+    return all(branches) or any(name in used(condition) for condition in only.conditions)
+
+
+def _statement(node: Statement, names: Mapping[str, str], local: Collection[str], indent: str) -> list[str]:
+    match node:
+        case Assignment(target, value):
+            return [f"{indent}{names.get(target, target)} = {expression(value, names)};"]
+        case Choice(conditions, then, otherwise):
+            inner = indent + "    "
+            tail = [f"{indent}else", f"{indent}{{", *block(otherwise, names, local, inner), f"{indent}}}"]
+            return [
+                *_head(conditions, names, indent),
+                f"{indent}{{",
+                *block(then, names, local, inner),
+                f"{indent}}}",
+                *(tail if otherwise else []),
+            ]
+
+
+def _head(conditions: Sequence[Comparison], names: Mapping[str, str], indent: str) -> list[str]:
+    texts = [_comparison(condition, names) for condition in conditions]
+    joined = f" &&\n{indent}    ".join(texts)
+    return f"{indent}if ({joined})".splitlines()
+
+
+def _comparison(node: Comparison, names: Mapping[str, str]) -> str:
+    text = f"{expression(node.left, names)} {node.operator} {expression(node.right, names)}"
+    return f"({text})"
