@@ -1,0 +1,1 @@
+"""The window: shows an assessment, and tells the document what the hand did. It computes nothing."""

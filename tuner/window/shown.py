@@ -1,0 +1,70 @@
+"""What passes between the window and its worker: one immutable request, one answer."""
+
+from collections.abc import Callable
+from dataclasses import dataclass
+
+from tuner.judge.assessment import Assessment, MemberResult
+from tuner.judge.overlay import Overlay
+from tuner.model.sheet import Sheet
+from tuner.session.tunings import KeptTuning
+
+
+@dataclass(frozen=True, slots=True)
+class Request:
+    """A sheet to assess, and the kept tunings to run beside it; the newest `number` wins."""
+
+    number: int
+    sheet: Sheet
+    kept: tuple[KeptTuning, ...] = ()
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class KeptResult:
+    """What a kept tuning makes of the nominal plant of the present sheet."""
+
+    name: str
+    label: str
+    member: MemberResult
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Shown:
+    """Everything that the views show of one request.
+
+    Parameters
+    ----------
+    number : int
+        That of the request.
+    sheet : Sheet
+        The sheet that was assessed.
+    assessment : Assessment
+        Of the whole family, or of the nominal plant alone while `whole` is false.
+    overlay : Overlay
+        What is drawn over the curves.
+    kept : tuple of KeptResult
+        Kept tunings that could be run.
+    whole : bool
+        False for the quick first answer, which says nothing about the family and so gives no verdict.
+    """
+
+    number: int
+    sheet: Sheet
+    assessment: Assessment
+    overlay: Overlay
+    kept: tuple[KeptResult, ...] = ()
+    whole: bool = True
+
+
+@dataclass(frozen=True, slots=True)
+class Failure:
+    """A request that could not be computed, and why, in a sentence."""
+
+    number: int
+    sentence: str
+
+
+Judge = Callable[[Sheet, int], Assessment]
+"""Assesses a sheet over a family of so many plants."""
+
+Draw = Callable[[Sheet, Assessment], Overlay]
+"""Says what to draw over the curves of an assessment."""

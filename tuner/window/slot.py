@@ -1,0 +1,40 @@
+"""A place for one thing, where the newest replaces what still waits."""
+
+from threading import Condition
+from typing import Generic, TypeVar
+
+Thing = TypeVar("Thing")
+
+
+class Slot(Generic[Thing]):
+    """Hands things from one thread to another, the newest only; no queue can grow behind a slow taker."""
+
+    def __init__(self) -> None:
+        self._turn = Condition()
+        self._waiting: Thing | None = None
+        self._closed = False
+
+    def put(self, thing: Thing) -> None:
+        """Leave a thing; one that nobody took yet is dropped. After `close` it is dropped at once."""
+        with self._turn:
+            if not self._closed:
+                self._waiting = thing
+                self._turn.notify()
+
+    def take(self) -> Thing | None:
+        """Wait for a thing and take it; None once the slot is closed."""
+        with self._turn:
+            self._turn.wait_for(lambda: self._closed or self._waiting is not None)
+            thing, self._waiting = self._waiting, None
+            return thing
+
+    def newer(self, patience: float) -> bool:
+        """Tell whether a newer thing is there, or comes within `patience` seconds, or the slot is closed."""
+        with self._turn:
+            return self._turn.wait_for(lambda: self._closed or self._waiting is not None, patience)
+
+    def close(self) -> None:
+        """Let every `take` return None, now and from now on; what waits is dropped."""
+        with self._turn:
+            self._closed, self._waiting = True, None
+            self._turn.notify_all()

@@ -1,0 +1,166 @@
+"""Assesses requests beside the main thread: the newest wins, the nominal curves come first where the family is slow."""
+
+import logging
+import time
+from collections import OrderedDict
+from collections.abc import Callable
+from dataclasses import dataclass, field, replace
+
+from PySide6.QtCore import QObject, QThread, Signal
+
+from tuner.errors import TrimwrightError
+from tuner.judge.assessment import MemberResult
+from tuner.model.family import FAMILY_SIZE
+from tuner.model.sheet import Sheet
+from tuner.session.tunings import KeptTuning
+from tuner.window.shown import Draw, Failure, Judge, KeptResult, Request, Shown
+from tuner.window.slot import Slot
+
+QUICK = 0.012
+"""Seconds that a whole family may take before the nominal plant is shown ahead of it."""
+
+SLOW = 0.050
+"""Seconds from which on a family waits for the hand to rest, so that it does not hold up the nominal curves."""
+
+REST = 0.060
+"""Seconds that such a family waits for a newer request."""
+
+_REMEMBERED = 32
+
+_log = logging.getLogger(__name__)
+
+_Answer = Callable[[Request], Shown]
+
+
+@dataclass(slots=True)
+class Assessing:
+    """Turns a request into answers; has no thread of its own.
+
+    Parameters
+    ----------
+    judge, draw : callable
+        The road from sheet to assessment, and from there to the overlay.
+    cost : float
+        Seconds that the last whole family took.
+    """
+
+    judge: Judge
+    draw: Draw
+    cost: float = float("inf")
+    _kept: OrderedDict[Sheet, MemberResult | None] = field(default_factory=OrderedDict)
+
+    def nominal(self, request: Request) -> Shown:
+        """Answer for the nominal plant alone."""
+        return self._shown(request, 1)
+
+    def whole(self, request: Request) -> Shown:
+        """Answer for the whole family."""
+        began = time.perf_counter()
+        shown = self._shown(request, FAMILY_SIZE)
+        self.cost = time.perf_counter() - began
+        return shown
+
+    def _shown(self, request: Request, size: int) -> Shown:
+        assessment = self.judge(request.sheet, size)
+        overlay = self.draw(request.sheet, assessment)
+        kept = tuple(found for tuning in request.kept if (found := self._result(request.sheet, tuning)) is not None)
+        return Shown(request.number, request.sheet, assessment, overlay, kept, size > 1)
+
+    def _result(self, sheet: Sheet, tuning: KeptTuning) -> KeptResult | None:
+        """Return what a kept tuning makes of the sheet's nominal plant; None when that cannot be computed."""
+        asked = replace(sheet, controller=replace(tuning.controller, as_found=None), limits=())
+        if asked not in self._kept:
+            self._kept[asked] = self._run(asked)
+        self._kept.move_to_end(asked)
+        while len(self._kept) > _REMEMBERED:
+            self._kept.popitem(last=False)
+        member = self._kept[asked]
+        return None if member is None else KeptResult(tuning.name, tuning.label, member)
+
+    def _run(self, sheet: Sheet) -> MemberResult | None:
+        try:
+            return self.judge(sheet, 1).nominal
+        except TrimwrightError:
+            return None
+
+
+class Assessor(QObject):
+    """Takes requests on the main thread and answers there, through signals.
+
+    Parameters
+    ----------
+    judge, draw : callable
+        See `Assessing`.
+    synchronous : bool
+        Answer at once, inside `submit`, for tests that want no thread.
+    """
+
+    answered = Signal(object)
+    """A `Shown`."""
+    failed = Signal(object)
+    """A `Failure`."""
+
+    def __init__(self, judge: Judge, draw: Draw, *, synchronous: bool = False) -> None:
+        super().__init__()
+        self._assessing = Assessing(judge, draw)
+        self._slot: Slot[Request] = Slot()
+        self._thread = None if synchronous else _Thread(self)
+
+    def submit(self, request: Request) -> None:
+        """Ask for a request; one that waits already is dropped for it."""
+        if self._thread is None:
+            self._answer_whole(request)
+            return
+        self._slot.put(request)
+        if not self._thread.isRunning():
+            self._thread.start()
+
+    def close(self) -> None:
+        """End the thread and wait until it has ended; nothing is answered from then on."""
+        self._slot.close()
+        if self._thread is not None:
+            self._thread.wait()
+
+    def work(self) -> None:
+        """Answer requests until `close`; runs in the thread."""
+        while (request := self._slot.take()) is not None:
+            self._answer(request)
+
+    def _answer(self, request: Request) -> None:
+        cost = self._assessing.cost
+        if cost > QUICK:
+            if not self._tell(request, self._assessing.nominal):
+                return
+            if self._slot.newer(REST if cost > SLOW else 0.0):
+                return
+        self._answer_whole(request)
+
+    def _answer_whole(self, request: Request) -> None:
+        self._tell(request, self._assessing.whole)
+
+    def _tell(self, request: Request, answer: _Answer) -> bool:
+        """Send an answer or a failure; tell whether there was an answer."""
+        try:
+            shown = answer(request)
+        except TrimwrightError as fault:
+            self.failed.emit(Failure(request.number, str(fault)))
+        except Exception as fault:  # the window outlives whatever a room below it did not foresee
+            _log.exception("A request could not be assessed.")
+            sentence = f"The loop could not be computed; this is a fault of the program: {fault!r}"
+            self.failed.emit(Failure(request.number, sentence))
+        else:
+            self.answered.emit(shown)
+            return True
+        return False
+
+
+class _Thread(QThread):
+    """Runs an assessor's work."""
+
+    def __init__(self, assessor: Assessor) -> None:
+        super().__init__()
+        self._assessor = assessor
+
+    def run(self) -> None:
+        """Work until the assessor is closed."""
+        self._assessor.work()
