@@ -25,6 +25,12 @@ def expression(node: Expression, names: Mapping[str, str]) -> str:
             return f"({expression(left, names)} {operator} {expression(right, names)})"
 
 
+def bare(node: Expression, names: Mapping[str, str]) -> str:
+    """Return an expression as text, without the parentheses around the whole of it."""
+    text = expression(node, names)
+    return text[1:-1] if isinstance(node, Operation) else text
+
+
 def block(nodes: Sequence[Statement], names: Mapping[str, str], local: Collection[str], indent: str) -> list[str]:
     """Return the lines of a block; a name of `local` is declared at the top of the smallest block that holds it."""
     here = [name for name in local if _belongs_here(name, nodes)]
@@ -52,7 +58,7 @@ def _belongs_here(name: str, nodes: Iterable[Statement]) -> bool:
 def _statement(node: Statement, names: Mapping[str, str], local: Collection[str], indent: str) -> list[str]:
     match node:
         case Assignment(target, value):
-            return [f"{indent}{names.get(target, target)} = {expression(value, names)};"]
+            return [f"{indent}{names.get(target, target)} = {bare(value, names)};"]
         case Choice(conditions, then, otherwise):
             inner = indent + "    "
             tail = [f"{indent}else", f"{indent}{{", *block(otherwise, names, local, inner), f"{indent}}}"]
@@ -67,10 +73,10 @@ def _statement(node: Statement, names: Mapping[str, str], local: Collection[str]
 
 def _head(conditions: Sequence[Comparison], names: Mapping[str, str], indent: str) -> list[str]:
     texts = [_comparison(condition, names) for condition in conditions]
-    joined = f" &&\n{indent}    ".join(texts)
-    return f"{indent}if ({joined})".splitlines()
+    if len(texts) == 1:
+        return [f"{indent}if ({texts[0]})"]
+    return f" &&\n{indent}    ".join(f"({text})" for text in texts).join((f"{indent}if (", ")")).splitlines()
 
 
 def _comparison(node: Comparison, names: Mapping[str, str]) -> str:
-    text = f"{expression(node.left, names)} {node.operator} {expression(node.right, names)}"
-    return f"({text})"
+    return f"{expression(node.left, names)} {node.operator} {expression(node.right, names)}"

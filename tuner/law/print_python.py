@@ -1,6 +1,6 @@
 """Prints the checked tree of the law as Python, every operation in parentheses."""
 
-from collections.abc import Iterable, Mapping
+from collections.abc import Iterable, Mapping, Sequence
 
 from tuner.law.translate import Assignment, Choice, Comparison, Expression, Name, Number, Operation, Statement
 
@@ -16,6 +16,12 @@ def expression(node: Expression, names: Mapping[str, str]) -> str:
             return f"({expression(left, names)} {operator} {expression(right, names)})"
 
 
+def bare(node: Expression, names: Mapping[str, str]) -> str:
+    """Return an expression as text, without the parentheses around the whole of it."""
+    text = expression(node, names)
+    return text[1:-1] if isinstance(node, Operation) else text
+
+
 def statements(nodes: Iterable[Statement], names: Mapping[str, str], indent: str) -> list[str]:
     """Return statements as lines that start with `indent`."""
     lines: list[str] = []
@@ -29,13 +35,20 @@ def statements(nodes: Iterable[Statement], names: Mapping[str, str], indent: str
 def _statement(node: Statement, names: Mapping[str, str], indent: str) -> list[str]:
     match node:
         case Assignment(target, value):
-            return [f"{indent}{names.get(target, target)} = {expression(value, names)}"]
+            return [f"{indent}{names.get(target, target)} = {bare(value, names)}"]
         case Choice(conditions, then, otherwise):
             inner = indent + "    "
-            head = f"{indent}if {' and '.join(_comparison(condition, names) for condition in conditions)}:"
             tail = [f"{indent}else:", *statements(otherwise, names, inner)] if otherwise else []
-            return [head, *statements(then, names, inner), *tail]
+            return [*_head(conditions, names, indent), *statements(then, names, inner), *tail]
+
+
+def _head(conditions: Sequence[Comparison], names: Mapping[str, str], indent: str) -> list[str]:
+    texts = [_comparison(condition, names) for condition in conditions]
+    if len(texts) == 1:
+        return [f"{indent}if {texts[0]}:"]
+    lines = [f"{indent}    {'and ' if position else ''}({text})" for position, text in enumerate(texts)]
+    return [f"{indent}if (", *lines, f"{indent}):"]
 
 
 def _comparison(node: Comparison, names: Mapping[str, str]) -> str:
-    return f"({expression(node.left, names)} {node.operator} {expression(node.right, names)})"
+    return f"{expression(node.left, names)} {node.operator} {expression(node.right, names)}"

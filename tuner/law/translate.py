@@ -8,8 +8,9 @@ import ast
 import inspect
 from collections.abc import Callable, Iterable
 from dataclasses import dataclass
+from math import isfinite
 from textwrap import dedent
-from typing import Any, NoReturn
+from typing import Any
 
 
 class SubsetError(ValueError):
@@ -165,7 +166,7 @@ class _Reader:
         arguments = self._arguments(function)
         statements = function.body[1:] if ast.get_docstring(function) is not None else function.body
         if not statements or not isinstance(statements[-1], ast.Return):
-            self._refuse(function, "a function without a return at its end")
+            raise self._refusal(function, "a function without a return at its end")
         body, known = self._block(statements[:-1], set(arguments))
         return Routine(function.name, arguments, body, self._results(statements[-1], known))
 
@@ -173,12 +174,12 @@ class _Reader:
         taken = function.args
         others = (*taken.posonlyargs, *taken.kwonlyargs, *taken.defaults, taken.vararg, taken.kwarg)
         if function.decorator_list or any(others):
-            self._refuse(function, "a decorator, a default or an argument that is not plain")
+            raise self._refusal(function, "a decorator, a default or an argument that is not plain")
         return tuple(argument.arg for argument in taken.args)
 
     def _results(self, node: ast.stmt, known: set[str]) -> tuple[Expression, ...]:
         if not isinstance(node, ast.Return) or node.value is None:
-            self._refuse(node, "a return without a value")
+            raise self._refusal(node, "a return without a value")
         values = node.value.elts if isinstance(node.value, ast.Tuple) else [node.value]
         return tuple(self._expression(value, known) for value in values)
 
@@ -194,7 +195,7 @@ class _Reader:
             assignment = self._assignment(node, known)
             return assignment, known | {assignment.target}
         if not isinstance(node, ast.If):
-            self._refuse(node, "this statement")
+            raise self._refusal(node, "this statement")
         conditions = self._conditions(node.test, known)
         then, after_then = self._block(node.body, known)
         otherwise, after_otherwise = self._block(node.orelse, known)
@@ -203,30 +204,30 @@ class _Reader:
     def _assignment(self, node: ast.Assign, known: set[str]) -> Assignment:
         target = node.targets[0]
         if len(node.targets) > 1 or not isinstance(target, ast.Name):
-            self._refuse(node, "an assignment to anything but one name")
+            raise self._refusal(node, "an assignment to anything but one name")
         if target.id in self.constant:
-            self._refuse(node, "an assignment to a constant")
+            raise self._refusal(node, "an assignment to a constant")
         return Assignment(target.id, self._expression(node.value, known), self._note(node))
 
     def _conditions(self, node: ast.expr, known: set[str]) -> tuple[Comparison, ...]:
         if isinstance(node, ast.BoolOp) and isinstance(node.op, ast.And):
             return tuple(found for value in node.values for found in self._conditions(value, known))
         if not isinstance(node, ast.Compare) or len(node.ops) > 1 or type(node.ops[0]) not in _COMPARISONS:
-            self._refuse(node, "a condition that is not one comparison, or several joined by `and`")
+            raise self._refusal(node, "a condition that is not one comparison, or several joined by `and`")
         left, right = self._expression(node.left, known), self._expression(node.comparators[0], known)
         return (Comparison(_COMPARISONS[type(node.ops[0])], left, right),)
 
     def _expression(self, node: ast.expr, known: set[str]) -> Expression:
         match node:
-            case ast.Constant(value=float(value)):
+            case ast.Constant(value=float(value)) if isfinite(value):
                 return Number(value)
             case ast.Name(id=name):
                 if name not in known:
-                    self._refuse(node, "a name that has no value on every path")
+                    raise self._refusal(node, "a name that has no value on every path")
                 return Name(name)
             case ast.BinOp(left=left, op=op, right=right) if type(op) in _OPERATORS:
                 return Operation(_OPERATORS[type(op)], self._expression(left, known), self._expression(right, known))
-        self._refuse(node, "this expression")
+        raise self._refusal(node, "this expression")
 
     def _note(self, node: ast.stmt) -> str:
         """Return the comment on the lines right above a statement."""
@@ -237,6 +238,6 @@ class _Reader:
             lines.insert(0, line.strip().lstrip("# "))
         return " ".join(lines)
 
-    def _refuse(self, node: ast.stmt | ast.expr, what: str) -> NoReturn:
+    def _refusal(self, node: ast.stmt | ast.expr, what: str) -> SubsetError:
         text = (ast.get_source_segment(self.source, node) or "").splitlines()[0]
-        raise SubsetError(f"{self.function}, line {node.lineno}: {what} is outside the subset of the law: {text}")
+        return SubsetError(f"{self.function}, line {node.lineno}: {what} is outside the subset of the law: {text}")
