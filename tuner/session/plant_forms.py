@@ -1,0 +1,116 @@
+"""The five ways to say what a plant is, side by side: what was typed in one is kept while another is shown."""
+
+from collections.abc import Callable
+from dataclasses import dataclass, replace
+from typing import Literal
+
+from tuner.errors import TrimwrightError
+from tuner.model.plant import (
+    CoefficientPlant,
+    ExpressionPlant,
+    PhysicsPlant,
+    Plant,
+    PlantParameter,
+    StateSpacePlant,
+    ZeroPolePlant,
+)
+
+PlantForm = Literal["formula", "coefficients", "zeros and poles", "state space", "physics"]
+
+PLANT_FORMS: tuple[PlantForm, ...] = ("formula", "coefficients", "zeros and poles", "state space", "physics")
+
+_OF_TYPE: dict[type, PlantForm] = {
+    ExpressionPlant: "formula",
+    CoefficientPlant: "coefficients",
+    ZeroPolePlant: "zeros and poles",
+    StateSpacePlant: "state space",
+    PhysicsPlant: "physics",
+}
+
+
+def form_of(plant: Plant) -> PlantForm:
+    """Return the form in which a plant is given."""
+    return _OF_TYPE[type(plant)]
+
+
+@dataclass(frozen=True, slots=True)
+class PlantForms:
+    """What was last typed in each form.
+
+    Parameters
+    ----------
+    latest : tuple of Plant
+        At most one of each form.
+    alike : tuple of Plant
+        Those that are the present plant in another form: it was converted, and not changed since.
+    spare : tuple of PlantParameter
+        Parameters that the formula used once and does not now, with the numbers that were typed for them.
+    """
+
+    latest: tuple[Plant, ...] = ()
+    alike: tuple[Plant, ...] = ()
+    spare: tuple[PlantParameter, ...] = ()
+
+    def edited(self, plant: Plant) -> "PlantForms":
+        """Return the forms after the plant was changed by hand."""
+        return replace(self, latest=self._with(plant), alike=(plant,))
+
+    def switched(self, before: Plant, after: Plant) -> "PlantForms":
+        """Return the forms after the plant was shown in another form."""
+        related = self.alike if before in self.alike else (before,)
+        kin = (*related, after) if after not in related else related
+        return replace(self, latest=self._with(after), alike=kin)
+
+    def remembered(self, form: PlantForm) -> Plant | None:
+        """Return what was last typed in a form, None if nothing was."""
+        return next((plant for plant in self.latest if form_of(plant) == form), None)
+
+    def same_plant(self, form: PlantForm) -> Plant | None:
+        """Return the present plant as it was typed in another form, None if it was not."""
+        return next((plant for plant in self.alike if form_of(plant) == form), None)
+
+    def _with(self, plant: Plant) -> tuple[Plant, ...]:
+        return (*(other for other in self.latest if type(other) is not type(plant)), plant)
+
+
+@dataclass(frozen=True, slots=True)
+class Switch:
+    """What came of showing a plant in another form: the plant, and a remark when it is not the same one."""
+
+    plant: Plant
+    remark: str = ""
+
+
+def switch(plant: Plant, forms: PlantForms, form: PlantForm, convert: Callable[[Plant, PlantForm], Plant]) -> Switch:
+    """Return a plant in another form: as it was typed there, else converted, else what was typed there before.
+
+    Parameters
+    ----------
+    convert : callable
+        Gives a plant in a form, or raises a `TrimwrightError` when it has none there.
+    """
+    same = forms.same_plant(form)
+    if same is not None and plant in forms.alike:
+        return Switch(same)
+    try:
+        return Switch(convert(plant, form))
+    except TrimwrightError as refusal:
+        remembered = forms.remembered(form)
+        return Switch(remembered or start(form), _remark(refusal, remembered))
+
+
+def start(form: PlantForm) -> Plant:
+    """Return a first plant in a form: a first-order lag, to be overwritten."""
+    plants: dict[PlantForm, Plant] = {
+        "formula": ExpressionPlant("gain / (lag s + 1)", (PlantParameter("gain", 1.0), PlantParameter("lag", 1.0))),
+        "coefficients": CoefficientPlant((1.0,), (1.0, 1.0)),
+        "zeros and poles": ZeroPolePlant((), (-1.0 + 0.0j,), 1.0),
+        "state space": StateSpacePlant(((-1.0,),), (1.0,), (1.0,)),
+        "physics": PhysicsPlant(""),
+    }
+    return plants[form]
+
+
+def _remark(refusal: TrimwrightError, remembered: Plant | None) -> str:
+    source = "as it was last typed here" if remembered else "a first plant to be overwritten"
+    return f"Not converted ({refusal}); this is {source}."

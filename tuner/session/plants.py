@@ -1,0 +1,143 @@
+"""Plants made from what was typed: a formula with its parameters, and one form of a plant from another."""
+
+from dataclasses import replace
+
+import numpy as np
+
+from tuner.errors import LoopError
+from tuner.model.formula import names
+from tuner.model.plant import (
+    CoefficientPlant,
+    ExpressionPlant,
+    PhysicsPlant,
+    Plant,
+    PlantParameter,
+    StateSpacePlant,
+    ZeroPolePlant,
+)
+from tuner.session.plant_forms import PlantForm
+from tuner.session.typed import shown
+from tuner.simulate.linear import Linear
+
+_DIGITS = 15
+
+
+def made(plant: Plant) -> Linear:
+    """Return the nominal plant as a linear system.
+
+    Raises
+    ------
+    TrimwrightError
+        When there is no such plant, with the reason.
+    """
+    from tuner.simulate.realise import realise
+
+    return realise(plant, {parameter.name: parameter.value for parameter in plant.parameters})
+
+
+def with_formula(
+    plant: Plant, spare: tuple[PlantParameter, ...], text: str
+) -> tuple[ExpressionPlant, tuple[PlantParameter, ...]]:
+    """Return the plant of another formula, and the parameters that it leaves over.
+
+    A name used before gets its numbers again, a new one the value 1. Left over are those with numbers of their own.
+
+    Raises
+    ------
+    FormulaError
+        When the formula cannot be read.
+    """
+    from tuner.files.formula import parse
+
+    present = plant.parameters if isinstance(plant, ExpressionPlant) else ()
+    known = {parameter.name: parameter for parameter in (*spare, *present)}
+    used = names(parse(text))
+    parameters = tuple(known.get(name, PlantParameter(name, 1.0)) for name in used)
+    left = (parameter for name, parameter in known.items() if name not in used)
+    worth = tuple(parameter for parameter in left if parameter != PlantParameter(parameter.name, 1.0))
+    return ExpressionPlant(text, parameters), worth
+
+
+def converted(plant: Plant, form: PlantForm) -> Plant:
+    """Return the nominal plant in another form.
+
+    Raises
+    ------
+    TrimwrightError
+        When the plant cannot be made, or has no such form.
+    """
+    if form == "physics":
+        raise LoopError("a physical model is chosen by name, not found from numbers")
+    if form == "formula" and isinstance(plant, PhysicsPlant):
+        return _as_formula(plant)
+    return _from_linear(made(plant), form)
+
+
+def _from_linear(linear: Linear, form: PlantForm) -> Plant:
+    zeros = tuple(_clean_complex(root) for root in linear.zeros)
+    poles = tuple(_clean_complex(root) for root in linear.poles)
+    gain, dead_time = _clean(linear.gain), _clean(linear.dead_time)
+    if form == "zeros and poles":
+        return ZeroPolePlant(zeros, poles, gain, dead_time)
+    if form == "state space":
+        a = tuple(tuple(_clean(x) for x in row) for row in linear.a)
+        b, c = (tuple(_clean(x) for x in np.ravel(vector)) for vector in (linear.b, linear.c))
+        return StateSpacePlant(a, b, c, _clean(linear.d), dead_time)
+    numerator, denominator = _polynomial(zeros, gain), _polynomial(poles, 1.0)
+    if form == "coefficients":
+        return CoefficientPlant(numerator, denominator, dead_time)
+    return ExpressionPlant(_formula(numerator, denominator, dead_time))
+
+
+def _as_formula(plant: PhysicsPlant) -> ExpressionPlant:
+    from tuner.model.physics import PHYSICS
+
+    model = PHYSICS.get(plant.physics)
+    if model is None:
+        raise LoopError(f"there is no physical model called {plant.physics!r}")
+    return ExpressionPlant(model.expression, plant.parameters)
+
+
+def _polynomial(roots: tuple[complex, ...], gain: float) -> tuple[float, ...]:
+    coefficients = np.atleast_1d(np.real(np.poly(np.array(roots, dtype=complex)))) * gain
+    return tuple(_clean(float(x)) for x in coefficients)
+
+
+def _formula(numerator: tuple[float, ...], denominator: tuple[float, ...], dead_time: float) -> str:
+    over, under = _sum(numerator), _sum(denominator)
+    delay = f" exp(-{shown(dead_time)} s)" if dead_time else ""
+    above = f"({over})" if " " in over and (under != "1" or delay) else over
+    return f"{above}{delay}" if under == "1" else f"{above}{delay} / ({under})"
+
+
+def _sum(coefficients: tuple[float, ...]) -> str:
+    """Write a polynomial in s as ordinary mathematics."""
+    text = ""
+    for power, value in zip(range(len(coefficients) - 1, -1, -1), coefficients, strict=True):
+        if value:
+            sign = (" - " if text else "-") if value < 0 else (" + " if text else "")
+            text += sign + _term(abs(value), power)
+    return text or "0"
+
+
+def _term(value: float, power: int) -> str:
+    variable = "" if power == 0 else "s" if power == 1 else f"s^{power}"
+    if not variable:
+        return shown(value)
+    return variable if value == 1.0 else f"{shown(value)} {variable}"
+
+
+def _clean(value: float) -> float:
+    return float(f"{float(value):.{_DIGITS}g}")
+
+
+def _clean_complex(value: complex) -> complex:
+    return complex(_clean(value.real), _clean(value.imag))
+
+
+def with_parameter(plant: Plant, parameter: PlantParameter) -> Plant:
+    """Return a plant with one of its named parameters replaced."""
+    if not isinstance(plant, ExpressionPlant | PhysicsPlant):
+        return plant
+    changed = tuple(parameter if other.name == parameter.name else other for other in plant.parameters)
+    return replace(plant, parameters=changed)
