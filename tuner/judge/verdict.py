@@ -1,0 +1,108 @@
+"""Limits laid over the measures of a whole family: the worst plant of each, the verdict, and the notes."""
+
+from collections.abc import Iterable, Sequence
+
+from tuner.judge.assessment import Assessment, Instability, LimitResult, MemberResult, Verdict, WorstCase
+from tuner.model.measures import BY_NAME, MEASURES, Measure
+from tuner.model.sheet import Sheet
+
+NO_LIMITS = "The sheet gives no limits; only stability is judged."
+
+
+def judge(sheet: Sheet, members: Sequence[MemberResult], instability: Instability | None = None) -> Assessment:
+    """Judge a family by the limits of its sheet.
+
+    Parameters
+    ----------
+    members : sequence of MemberResult
+        At least one, the nominal plant first.
+    instability : Instability or None
+        What makes the loop run away, when a plant of the family does.
+    """
+    worst = {measure.name: worst_case(measure, members) for measure in MEASURES}
+    limits = tuple(limit_result(name, limit, worst[name]) for name, limit in sheet.limits)
+    return Assessment(
+        title=sheet.loop.title,
+        verdict=verdict(members, limits),
+        members=tuple(members),
+        worst=worst,
+        limits=limits,
+        notes=tuple(_notes(sheet, members)),
+        instability=instability,
+    )
+
+
+def verdict(members: Iterable[MemberResult], limits: Iterable[LimitResult]) -> Verdict:
+    """Return 'unstable' when any plant is, else 'missed' when any limit is, else 'met'."""
+    if not all(member.stable for member in members):
+        return "unstable"
+    return "met" if all(limit.met for limit in limits) else "missed"
+
+
+def worst_case(measure: Measure, members: Sequence[MemberResult]) -> WorstCase:
+    """Return the worst value of a measure and its plant, the first of equals.
+
+    A measure that does not exist is worse than any value, unless that means "none", which is better than any.
+    """
+    present = [member for member in members if member.measures[measure.name] is not None]
+    absent = [member for member in members if member.measures[measure.name] is None]
+    if absent and (not measure.none_is_good or not present):
+        return WorstCase(None, absent[0].name)
+    worst = max(present, key=lambda member: _badness(measure, member.measures[measure.name]))
+    return WorstCase(worst.measures[measure.name], worst.name)
+
+
+def meets(measure: Measure, value: float | None, limit: float) -> bool:
+    """Return whether a value keeps a limit; one that does not exist keeps it only when that means "none"."""
+    if value is None:
+        return measure.none_is_good
+    if measure.at_least:
+        return value >= limit
+    return (abs(value) if measure.by_size else value) <= limit
+
+
+def limit_result(name: str, limit: float, worst: WorstCase) -> LimitResult:
+    """Return one line of the acceptance sheet."""
+    return LimitResult(name, limit, worst.value, worst.plant, meets(BY_NAME[name], worst.value, limit))
+
+
+def _badness(measure: Measure, value: float | None) -> float:
+    if value is None:
+        return float("inf")
+    if measure.at_least:
+        return -value
+    return abs(value) if measure.by_size else value
+
+
+def _notes(sheet: Sheet, members: Sequence[MemberResult]) -> list[str]:
+    notes = [] if sheet.limits else [NO_LIMITS]
+    notes += dict.fromkeys(note for member in members for note in member.notes)
+    return notes + _absences(members)
+
+
+def _absences(members: Sequence[MemberResult]) -> list[str]:
+    """Return one sentence for each reason and set of plants for which measures do not exist."""
+    plants: dict[tuple[str, str], list[str]] = {}
+    for member in members:
+        for name, why in member.reasons.items():
+            plants.setdefault((name, why), []).append(member.name)
+    labels: dict[tuple[str, tuple[str, ...]], list[str]] = {}
+    for measure in MEASURES:
+        for (name, why), names in plants.items():
+            if name == measure.name:
+                labels.setdefault((why, tuple(names)), []).append(measure.label)
+    return [_absence(said, why, names, len(members)) for (why, names), said in labels.items()]
+
+
+def _absence(labels: Sequence[str], why: str, plants: Sequence[str], family: int) -> str:
+    what = ", ".join(labels)
+    return f"No {what}: {why}{_where(plants, family)}."
+
+
+def _where(plants: Sequence[str], family: int) -> str:
+    if len(plants) == family:
+        return ""
+    if len(plants) == 1:
+        return " for the nominal plant" if plants[0] == "nominal" else f" for {plants[0]}"
+    first = "the nominal plant" if plants[0] == "nominal" else plants[0]
+    return f" for {len(plants)} of {family} plants, {first} among them"
