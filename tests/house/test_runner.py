@@ -1,5 +1,7 @@
 """The test command counts what its checks report, and fails whenever one of them does."""
 
+import sys
+
 import pytest
 
 from tests import runner
@@ -65,7 +67,7 @@ def test_a_failing_check_does_not_stop_the_next(
 ) -> None:
     """Each check counts as one, with its output shown, whatever the one before found."""
     monkeypatch.setattr(runner, "LIMIT", 60.0)
-    python = runner.sys.executable
+    python = sys.executable
     bad = runner._check("bad", [python, "-c", "print('a fault'); raise SystemExit(1)"])
     good = runner._check("good", [python, "-c", "print('fine')"])
     assert (bad.counts, good.counts) == (Counts(0, 1), Counts(1, 0))
@@ -75,6 +77,6 @@ def test_a_failing_check_does_not_stop_the_next(
 def test_a_check_that_hangs_is_ended(monkeypatch: pytest.MonkeyPatch) -> None:
     """A check past its limit of time is killed and counts as failed."""
     monkeypatch.setattr(runner, "LIMIT", 0.3)
-    stuck = runner._check("stuck", [runner.sys.executable, "-c", "import time; time.sleep(60)"])
+    stuck = runner._check("stuck", [sys.executable, "-c", "import time; time.sleep(60)"])
     assert stuck.counts == Counts(0, 1)
     assert stuck.seconds < 30

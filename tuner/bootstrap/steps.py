@@ -15,6 +15,7 @@ _REASONS = (
     ("Temporary failure", _OFFLINE),
     ("NewConnectionError", _OFFLINE),
     ("NameResolutionError", _OFFLINE),
+    ("CERTIFICATE_VERIFY_FAILED", "the certificate of the package server is not trusted on this machine."),
     ("No space left", "the disk is full."),
 )
 
