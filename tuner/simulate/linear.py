@@ -173,8 +173,8 @@ def _rational(system: Linear, s: ComplexArray) -> tuple[ComplexArray, Array]:
     reference = reference_frequency(system.zeros, system.poles)
     zeros = system.zeros[np.argsort(np.abs(system.zeros))]
     poles = system.poles[np.argsort(np.abs(system.poles))]
-    value = np.ones(s.shape, dtype=complex)
-    surplus = np.zeros(s.shape)
+    value: ComplexArray = np.ones(s.shape, dtype=complex)
+    surplus: Array = np.zeros(s.shape)
     scales = []
     with np.errstate(over="ignore", under="ignore", invalid="ignore"):
         for index, pole in enumerate(poles):
@@ -222,7 +222,7 @@ def _balanced(a: Array) -> tuple[Array, Array]:
     if a.size == 0:
         return a, np.ones(0)
     balanced, (scale, _) = matrix_balance(a, permute=False, separate=True)
-    return balanced, scale
+    return np.asarray(balanced, dtype=float), np.asarray(scale, dtype=float)
 
 
 def _eigenvalues(a: Array) -> ComplexArray:

@@ -1,0 +1,1 @@
+"""Compiled loops: arrays in, arrays out."""

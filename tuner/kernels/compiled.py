@@ -1,0 +1,42 @@
+"""The one door to numba: a typed decorator, and a cache that notices when the control law changes."""
+
+import os
+import zlib
+from collections.abc import Callable
+from functools import cache
+from pathlib import Path
+from typing import TypeVar, cast
+
+from tuner.places import keep_compiled_kernels
+
+Function = TypeVar("Function", bound=Callable[..., object])
+
+_PACKAGE = Path(__file__).resolve().parent.parent
+
+
+def compiled(function: Function) -> Function:
+    """Compile a function of numbers and arrays at its first call, and keep the result for the next start.
+
+    Arithmetic is that of IEEE 754 in the order written: no fast arithmetic, no contraction. The lock of the
+    interpreter is let go while it runs. ``function.py_func`` is the plain function.
+    """
+    return cast(Function, _decorator()(function))
+
+
+@cache
+def _decorator() -> Callable[[Callable[..., object]], object]:
+    keep_compiled_kernels()
+    import numba
+    from numba.core import config
+
+    config.CACHE_DIR = str(Path(os.environ["NUMBA_CACHE_DIR"]) / _stamp())
+    return cast(
+        Callable[[Callable[..., object]], object],
+        numba.njit(cache=True, nogil=True, fastmath=False, error_model="numpy"),
+    )
+
+
+def _stamp() -> str:
+    """Return a digest of the law and the kernels, for numba only looks at the one file that holds a function."""
+    sources = sorted((*_PACKAGE.glob("law/*.py"), *_PACKAGE.glob("kernels/*.py")))
+    return f"{zlib.crc32(b''.join(source.read_bytes() for source in sources)):08x}"
