@@ -34,7 +34,8 @@ class Fault:
     def __str__(self) -> str:
         """Say the fault in one sentence."""
         hint = f"; the nearest valid name is {self.nearest}" if self.nearest else ""
-        place = f"{self.key}: " if self.key else ""
+        character = "" if self.position is None else f", character {self.position + 1}"
+        place = f"{self.key}{character}: " if self.key else ""
         return f"{place}expected {self.expected}, found {self.found}{hint}"
 
 

@@ -1,0 +1,94 @@
+"""What must agree between the keys of a sheet, beyond what its schema says."""
+
+from collections.abc import Callable, Iterator
+from math import pi
+from typing import Any, Final
+
+from tuner.errors import Fault
+from tuner.model.parameters import GAIN_KEYS
+
+Table = dict[str, Any]
+
+MOST_SAMPLES: Final = 5_000_000
+"""Samples that a trial may have."""
+
+
+def check_all(written: Table, sound: Table) -> list[Fault]:
+    """Tell of everything in a sheet that does not agree; a key that the schema refused is as good as absent."""
+    return [fault for check in _CHECKS for fault in check(sound)] + list(_foreign_gains(written, sound))
+
+
+def table(sheet: Table, path: str) -> Table:
+    """Return the table at a dotted path, empty when there is none."""
+    found: Any = sheet
+    for name in path.split("."):
+        found = found.get(name, {}) if isinstance(found, dict) else {}
+    return found if isinstance(found, dict) else {}
+
+
+def _ranges(sheet: Table) -> Iterator[Fault]:
+    for key in ("loop.controlled", "loop.manipulated"):
+        signal = table(sheet, key)
+        low, high, resting = signal.get("low"), signal.get("high"), signal.get("resting", 0.0)
+        if low is not None and high is not None and low >= high:
+            yield Fault(f"{key}.low", f"a number below {key}.high, {high:g}", f"{low:g}")
+        elif low is not None and resting < low:
+            yield Fault(f"{key}.resting", f"a number of at least {key}.low, {low:g}", _resting(signal))
+        elif high is not None and resting > high:
+            yield Fault(f"{key}.resting", f"a number of at most {key}.high, {high:g}", _resting(signal))
+
+
+def _resting(signal: Table) -> str:
+    return f"{signal['resting']:g}" if "resting" in signal else "nothing, which means 0"
+
+
+def _foreign_gains(written: Table, sound: Table) -> Iterator[Fault]:
+    """Tell of gains that belong to another form than the controller's; silent while the form itself is wrong."""
+    form: str = table(sound, "controller").get("form", "parallel")
+    for path in ("controller", "controller.as_found"):
+        here = table(written, path)
+        form = str(table(sound, path).get("form", form))
+        if "form" in here and here["form"] != form:
+            return
+        for key in here:
+            if any(key in keys for keys in GAIN_KEYS.values()) and key not in GAIN_KEYS[form]:
+                owners = [owner for owner, keys in GAIN_KEYS.items() if key in keys]
+                whose = f"a gain of the {' and '.join(owners)} form{'s' if len(owners) > 1 else ''}"
+                yield Fault(f"{path}.{key}", f"the gains of the {form} form: {', '.join(GAIN_KEYS[form])}", whose)
+
+
+def _feedforward(sheet: Table) -> Iterator[Fault]:
+    block = table(sheet, "controller.feedforward")
+    needed = {"static": "gain", "inverse": "filter_time"}
+    for kind, key in needed.items():
+        there = key in block
+        if block.get("kind") == kind and not there:
+            yield Fault(f"controller.feedforward.{key}", f'a number, for kind = "{kind}"', "nothing")
+        elif block.get("kind") not in (kind, None) and there:
+            only = needed[block["kind"]]
+            yield Fault(f"controller.feedforward.{key}", f'{only} alone beside kind = "{block["kind"]}"', f"{key}")
+
+
+def _notch(sheet: Table) -> Iterator[Fault]:
+    frequency = table(sheet, "controller.notch").get("frequency")
+    for path in ("controller", "controller.as_found"):
+        period = table(sheet, path).get("sample_time", 0.0)
+        if frequency is not None and period > 0 and frequency * period >= pi:
+            top = f"a frequency below pi / {path}.sample_time, {pi / period:.4g}"
+            yield Fault("controller.notch.frequency", top, f"{frequency:g}")
+
+
+def _samples(sheet: Table) -> Iterator[Fault]:
+    duration = table(sheet, "trial").get("duration")
+    for path in ("controller", "controller.as_found"):
+        period = table(sheet, path).get("sample_time", 0.0)
+        if duration is None or not period:
+            continue
+        if period > duration:
+            yield Fault(f"{path}.sample_time", f"at most trial.duration, {duration:g}", f"{period:g}")
+        elif duration > MOST_SAMPLES * period:
+            most = f"at most {MOST_SAMPLES:,} samples of {path}.sample_time, {period:g}"
+            yield Fault("trial.duration", most, f"{duration / period:,.0f}")
+
+
+_CHECKS: Final[tuple[Callable[[Table], Iterator[Fault]], ...]] = (_ranges, _feedforward, _notch, _samples)

@@ -1,0 +1,132 @@
+"""Tuning sheets: read with every fault at once, and written with everything kept that a person wrote."""
+
+import re
+import tomllib
+from pathlib import Path
+from typing import Any, Final
+
+from tuner.errors import Fault, SheetError
+from tuner.files import words
+from tuner.model.sheet import Sheet
+
+LARGEST: Final = 1_000_000
+"""Bytes that a sheet may have."""
+
+VERSION: Final = 1
+"""Version of the format that is read and written."""
+
+
+def parse(text: str, file: str = "") -> Sheet:
+    """Return the sheet that a text holds.
+
+    Parameters
+    ----------
+    text : str
+        TOML.
+    file : str
+        Name of the file, said before each fault.
+
+    Raises
+    ------
+    SheetError
+        With every fault found.
+    """
+    written = _tables(text, file)
+    version = written.get("sheet")
+    if isinstance(version, int) and version > VERSION:
+        expected = f"{VERSION}, the newest format that this version of Trimwright reads"
+        raise SheetError([Fault("sheet", expected, str(version))], file)
+    from tuner.files.checking import check
+
+    checked = check(written)
+    if checked.faults or checked.sheet is None:
+        raise SheetError(checked.faults, file)
+    return checked.sheet
+
+
+def _tables(text: str, file: str) -> dict[str, Any]:
+    if not text.strip():
+        raise SheetError([Fault("", "a tuning sheet", "an empty file")], file)
+    try:
+        return tomllib.loads(text)
+    except (ValueError, RecursionError) as error:
+        raise SheetError([_syntax_fault(text, error)], file) from None
+
+
+_SYNTAX: Final = {
+    "Expected '='": "'=' after the key",
+    "Invalid statement": "a key, a [table] or a comment",
+    "Invalid initial character for a key part": "a key",
+    "Expected newline or end of document after a statement": "the end of the line after the value",
+    "Expected ']' at the end of a table declaration": "']' after the name of the table",
+    "Expected ']]'": "']]' after the name of the table",
+    "Cannot declare": "each table once",
+    "Cannot overwrite a value": "each key once",
+    "Duplicate inline table key": "each key once",
+    "Cannot mutate immutable namespace": "each table once",
+    "Cannot redefine namespace": "each table once",
+    "Unclosed array": "',' or ']' in the array",
+    "Unclosed inline table": "',' or '}' in the table",
+    "Unterminated string": "the quote that ends the text",
+    "Unescaped": "a known character after the backslash",
+    "Invalid value": 'a value: a number, a "text", true, false, an [array] or a { table }',
+    "Invalid date": "a date that exists",
+    "Illegal character": "a character that may stand in a line",
+}
+"""What was expected, by the beginning of the TOML reader's message."""
+
+_PLACE: Final = re.compile(r"\(at (?:line (\d+), column (\d+)|end of document)\)$")
+
+
+def _syntax_fault(text: str, error: Exception) -> Fault:
+    """Say in words where a text stops being TOML."""
+    place = _PLACE.search(str(error))
+    if place is None:
+        return Fault("", "TOML that can be read", "numbers too long or tables nested too deep")
+    expected = next((words for start, words in _SYNTAX.items() if str(error).startswith(start)), "TOML")
+    if place[1] is None:
+        return Fault("at the end", expected, "the end of the file")
+    line = text.splitlines()[int(place[1]) - 1 : int(place[1])]
+    return Fault(f"line {place[1]}, column {place[2]}", expected, words.quoted(line[0].strip() if line else ""))
+
+
+def read(path: Path) -> Sheet:
+    """Return the sheet in a file.
+
+    Raises
+    ------
+    SheetError
+        With every fault found, or with the reason why the file cannot be read.
+    """
+    return parse(read_text(path), str(path))
+
+
+def read_text(path: Path) -> str:
+    """Return the text of a sheet's file, which `render` and `write` take to keep what a person wrote.
+
+    Raises
+    ------
+    SheetError
+        When the file is missing, a folder, unreadable, too large or not text.
+    """
+    try:
+        if path.is_dir():
+            raise SheetError([Fault("", "a tuning sheet", "a folder")], str(path))
+        with path.open("rb") as file:
+            data = file.read(LARGEST + 1)
+            size = path.stat().st_size
+    except OSError as error:
+        raise SheetError([Fault("", "a file that can be read", _reason(error))], str(path)) from None
+    if len(data) > LARGEST:
+        raise SheetError([Fault("", f"at most {LARGEST:,} bytes", f"{size:,}")], str(path))
+    try:
+        return data.decode("utf-8-sig")
+    except UnicodeDecodeError as error:
+        found = f"byte {error.start + 1}, which is none"
+        raise SheetError([Fault("", "text in UTF-8", found)], str(path)) from None
+
+
+def _reason(error: OSError) -> str:
+    if isinstance(error, FileNotFoundError):
+        return "no such file"
+    return "no permission" if isinstance(error, PermissionError) else (error.strerror or "an error").lower()
