@@ -46,8 +46,7 @@ def relation(measure: str, value: float | None, limit: float, loop: Loop) -> str
     if value is None:
         bound = "at least" if facts.at_least else "at most"
         return f"{facts.label} does not exist, asked {bound} {quantity(limit, unit)}"
-    digits = told_apart(abs(value) if facts.by_size else value, limit)
-    beyond = abs(value) > limit if facts.by_size else value > limit
-    sign = ">" if beyond else "<" if facts.at_least and value < limit else ">=" if facts.at_least else "<="
     size = abs(value) if facts.by_size else value
+    digits = told_apart(size, limit)
+    sign = ">" if size > limit else "<" if size < limit else "="
     return f"{facts.label} {quantity(size, unit, digits)} {sign} {quantity(limit, unit, digits)}"

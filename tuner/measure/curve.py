@@ -36,7 +36,7 @@ def first_reach(t: Array, y: Array, level: float) -> Array:
 
 def last_exit(t: Array, y: Array, reach: Array) -> Array:
     """Return after when abs(y) stays within `reach`, of shape (m,): 0 when always, NaN when not at the end."""
-    outside = np.abs(y) > reach[:, None]
+    outside = ~(np.abs(y) <= reach[:, None])
     last = y.shape[1] - 1 - outside[:, ::-1].argmax(axis=1)
     rows = np.arange(len(y))
     never = ~outside[rows, last]

@@ -1,0 +1,70 @@
+"""Numbers and units in words."""
+
+import pytest
+from hypothesis import given
+from hypothesis import strategies as st
+
+from tests.judge.invented import LOOP
+from tuner.judge.wording import number, quantity, relation, told_apart, unit_of
+from tuner.model.loop import Loop
+
+
+@pytest.mark.parametrize(
+    ("value", "said"),
+    [
+        (0.0, "0"),
+        (96.0, "96"),
+        (1.70049, "1.7"),
+        (123456.0, "123500"),
+        (0.000123456, "0.0001235"),
+        (-3.14159, "-3.142"),
+        (float("inf"), "inf"),
+        (-float("inf"), "-inf"),
+    ],
+)
+def test_four_digits(value: float, said: str) -> None:
+    """Four significant digits, plain as long as that can be read."""
+    assert number(value) == said
+
+
+def test_units_come_from_the_loop() -> None:
+    """The placeholders of the table of measures become the units of the loop's signals and time."""
+    assert unit_of("iae_reference", LOOP) == "degC min"
+    assert unit_of("bandwidth", LOOP) == "rad/min"
+    assert unit_of("gain_margin", LOOP) == ""
+    assert unit_of("iae_reference", Loop("bare")) == "s"
+
+
+def test_quantities() -> None:
+    """A number has its unit, an infinite or missing one needs none."""
+    assert quantity(96.0, "s") == "96 s"
+    assert quantity(2.0, "") == "2"
+    assert quantity(float("inf"), "s") == "inf"
+    assert quantity(None, "s") == "none"
+
+
+@pytest.mark.parametrize(
+    ("measure", "value", "limit", "said"),
+    [
+        ("settling_time", 96.0, 90.0, "settling time 96 min > 90 min"),
+        ("settling_time", 90.0, 90.0, "settling time 90 min = 90 min"),
+        ("settling_time", 90.0000012, 90.0, "settling time 90.000001 min > 90 min"),
+        ("settling_time", None, 90.0, "settling time does not exist, asked at most 90 min"),
+        ("gain_margin", 1.5, 2.0, "gain margin 1.5 < 2"),
+        ("gain_margin", 2.5, 2.0, "gain margin 2.5 > 2"),
+        ("gain_margin", None, 2.0, "gain margin does not exist, asked at least 2"),
+        ("steady_state_error", -3.0, 2.0, "steady-state error 3 % > 2 %"),
+        ("steady_state_error", -1.0, 2.0, "steady-state error 1 % < 2 %"),
+    ],
+)
+def test_how_a_value_stands_to_its_limit(measure: str, value: float | None, limit: float, said: str) -> None:
+    """Word for word, both directions, and by size."""
+    assert relation(measure, value, limit, LOOP) == said
+
+
+@given(st.floats(1e-3, 1e3), st.floats(1e-3, 1e3))
+def test_different_numbers_read_differently(value: float, limit: float) -> None:
+    """A missed limit never reads as "90 > 90"."""
+    digits = told_apart(value, limit)
+
+    assert (value == limit) == (number(value, digits) == number(limit, digits))
