@@ -1,0 +1,1 @@
+"""The editors of the blocks of the loop, one at a time."""

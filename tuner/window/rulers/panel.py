@@ -1,0 +1,138 @@
+"""The panel of all rulers of the controller, in one column or two."""
+
+from PySide6.QtCore import Signal
+from PySide6.QtGui import QResizeEvent
+from PySide6.QtWidgets import QGridLayout, QLabel, QWidget
+
+from tuner.judge.assessment import Assessment
+from tuner.model.parameters import GAIN_KEYS, Parameter, rulers
+from tuner.session.document import Document
+from tuner.window.rulers.form_switch import FormSwitch
+from tuner.window.rulers.ruler import SYMBOL_WIDTH, Ruler
+from tuner.window.theme import Theme
+
+TWO_COLUMNS = 1080
+"""Width, pixels, from which the gains and the other rulers stand side by side."""
+
+
+class RulerPanel(QWidget):
+    """The rulers of the present form of the gains; `dragging_started` and `dragging_finished` tell of the hand."""
+
+    dragging_started = Signal()
+    dragging_finished = Signal()
+
+    def __init__(self, document: Document, theme: Theme, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self._document, self._theme = document, theme
+        self._generation, self._form = document.generation, ""
+        self._columns = 0
+        self.rulers: dict[str, Ruler] = {}
+        self.form = FormSwitch(document, theme)
+        self._grid = QGridLayout(self)
+        self._grid.setContentsMargins(8, 4, 8, 4)
+        self._grid.setHorizontalSpacing(24)
+        self._grid.setVerticalSpacing(4)
+        self._fault = QLabel(self)
+        self._fault.hide()
+        theme.changed.connect(self._dress)
+        self._dress()
+        self.refresh()
+        self.destroyed.connect(document.listen(self.refresh))
+
+    def refresh(self) -> None:
+        """Show what the document holds; another form of the gains brings other rulers."""
+        if self._form != self._document.sheet.controller.form:
+            self._change_rulers()
+        anew = self._generation != self._document.generation
+        self._generation = self._document.generation
+        for ruler in self.rulers.values():
+            if anew:
+                ruler.forget_typing()
+            ruler.refresh()
+        self.form.refresh()
+
+    def show(self, assessment: Assessment | None = None) -> None:
+        """Show an assessment; the tracks stay grey, since it judges one tuning and not the length of a ruler."""
+        if assessment is None:
+            super().show()
+
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        """Lay the rulers in one column or two, as the width has it."""
+        super().resizeEvent(event)
+        self._lay_out()
+
+    # Inside -----------------------------------------------------------------------------------------------------
+
+    def _change_rulers(self) -> None:
+        """Make the rulers of the present form; those that both forms have stay."""
+        self._form = self._document.sheet.controller.form
+        before, self.rulers = self.rulers, {}
+        for parameter in rulers(self._form):
+            known = parameter.name in before
+            self.rulers[parameter.name] = before.pop(parameter.name) if known else self._new(parameter)
+        for ruler in before.values():
+            ruler.deleteLater()
+            ruler.hide()
+        self._fault.hide()
+        self._columns = 0
+        self._lay_out()
+
+    def _new(self, parameter: Parameter) -> Ruler:
+        ruler = Ruler(self._document, parameter, self._theme, self)
+        ruler.grasped.connect(self.dragging_started)
+        ruler.let_go.connect(self.dragging_finished)
+        ruler.faulted.connect(lambda sentence: self._say(ruler, sentence))
+        ruler.setVisible(True)
+        return ruler
+
+    def _lay_out(self) -> None:
+        columns = 2 if self.width() >= TWO_COLUMNS else 1
+        if columns == self._columns:
+            return
+        self._columns = columns
+        for part in (self.form, *self.rulers.values()):
+            self._grid.removeWidget(part)
+        for part, row, column in self._places(columns):
+            self._grid.addWidget(part, row, column)
+        self._grid.setColumnStretch(0, 1)
+        self._grid.setColumnStretch(1, 1 if columns == 2 else 0)
+        self._order_tabs()
+
+    def _places(self, columns: int) -> list[tuple[QWidget, int, int]]:
+        gains = [self.rulers[name] for name in GAIN_KEYS[self._document.sheet.controller.form]]
+        others = [ruler for ruler in self.rulers.values() if ruler not in gains]
+        first: list[QWidget] = [self.form, *gains]
+        if columns == 1:
+            return [(part, row, 0) for row, part in enumerate([*first, *others])]
+        left = [(part, row, 0) for row, part in enumerate(first)]
+        return left + [(part, row, 1) for row, part in enumerate(others)]
+
+    def _order_tabs(self) -> None:
+        previous: QWidget = self.form
+        for ruler in self.rulers.values():
+            for part in (ruler.slider, ruler.box):
+                QWidget.setTabOrder(previous, part)
+                previous = part
+
+    def _say(self, ruler: Ruler, sentence: str) -> None:
+        """Say under the box what is wrong with what was typed, over whatever is there, so that nothing moves."""
+        self._fault.setVisible(bool(sentence))
+        if not sentence:
+            return
+        self._fault.setText(sentence)
+        self._fault.adjustSize()
+        corner = ruler.below_box(self)
+        top = (
+            corner.y() if corner.y() + self._fault.height() <= self.height() else corner.y() - 28 - self._fault.height()
+        )
+        self._fault.move(max(corner.x() - self._fault.width(), 0), top)
+        self._fault.raise_()
+
+    def _dress(self) -> None:
+        colours = self._theme.palette.colours
+        self._fault.setStyleSheet(
+            f"background: {colours['field']}; color: {colours['lost_word']}; "
+            f"border: 1px solid {colours['lost']}; padding: 4px;"
+        )
+        self.form.setContentsMargins(SYMBOL_WIDTH + 4, 0, 0, 0)
+        self.form.sentence.setStyleSheet(f"color: {colours['lost_word']};")
