@@ -29,7 +29,7 @@ def _decorator() -> Callable[[Callable[..., object]], object]:
     import numba
     from numba.core import config
 
-    config.CACHE_DIR = str(Path(os.environ["NUMBA_CACHE_DIR"]) / _stamp())
+    vars(config)["CACHE_DIR"] = str(Path(os.environ["NUMBA_CACHE_DIR"]) / _stamp())
     return cast(
         Callable[[Callable[..., object]], object],
         numba.njit(cache=True, nogil=True, fastmath=False, error_model="numpy"),
