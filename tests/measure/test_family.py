@@ -6,7 +6,8 @@ import numpy as np
 import pytest
 
 from tests.judge.invented import sheet
-from tuner.measure.family import FinalValues, measure_trials
+from tuner.measure.family import measure_trials
+from tuner.measure.final import FinalValues
 from tuner.simulate.traces import Array, Trace, Traces
 
 Curve = Callable[[Array], Array]

@@ -3,6 +3,7 @@
 from collections.abc import Sequence
 from dataclasses import dataclass, field
 
+from tuner.measure.final import FinalValues
 from tuner.measure.runs import Runs, stacked
 from tuner.measure.trial import (
     ASTRAY,
@@ -40,14 +41,6 @@ OF_FINAL_VALUE = ("overshoot", "peak_time", "rise_time", "settling_time", "under
 UNSTABLE = "the loop is unstable"
 NO_REFERENCE = "the trial has no reference step"
 NO_DISTURBANCE = "the trial has no disturbance step"
-
-
-@dataclass(frozen=True, slots=True)
-class FinalValues:
-    """Where the output of a linear, stable loop ends in each run, deviation; NaN when it is not known exactly."""
-
-    reference: float
-    disturbance: float
 
 
 @dataclass(slots=True)

@@ -1,0 +1,1 @@
+"""Commands, what they print, and exit status."""

@@ -1,0 +1,88 @@
+"""`judge`: sheets against their limits, for a person or for another program."""
+
+import json
+import sys
+
+from tuner.cli import status
+from tuner.cli.command import Arguments, Command, Parser, whole_number
+from tuner.cli.progress import watched
+from tuner.cli.sheets import Missing, Source, sources
+from tuner.errors import TrimwrightError
+from tuner.judge.as_json import as_json
+from tuner.judge.assessment import Assessment
+from tuner.model.family import FAMILY_SIZE
+from tuner.model.sheet import Sheet
+
+LARGEST_FAMILY = 1000
+
+
+def declare(parser: Parser) -> None:
+    """Add the arguments of `judge`."""
+    parser.add_argument("sheets", nargs="+", metavar="SHEET", help="a tuning sheet, a folder of them, or - for stdin")
+    parser.add_argument("--json", action="store_true", help="print one JSON object a line")
+    parser.add_argument("--traces", action="store_true", help="with --json: add the two runs of the nominal plant")
+    add_family(parser)
+
+
+def add_family(parser: Parser) -> None:
+    """Add the option for the size of the family."""
+    parser.add_argument(
+        "--family",
+        type=whole_number(1, LARGEST_FAMILY),
+        default=FAMILY_SIZE,
+        metavar="N",
+        help=f"plants to judge the spread by, the nominal one included (default {FAMILY_SIZE})",
+    )
+
+
+def run(arguments: Arguments) -> int:
+    """Judge every sheet; one that cannot be used does not stop the others."""
+    named = sources(arguments.sheets)
+    return max(_judge_one(source, arguments) for source in watched(named, "judging"))
+
+
+def assessed(sheet: Sheet, family_size: int) -> Assessment:
+    """Return the assessment of a sheet.
+
+    Raises
+    ------
+    TrimwrightError
+        Also when the arithmetic fails on numbers that nothing refused before.
+    """
+    from tuner.assess import assess
+
+    try:
+        return assess(sheet, family_size)
+    except (ArithmeticError, ValueError, MemoryError) as error:
+        raise TrimwrightError(f"the loop cannot be computed with these numbers: {error}") from error
+
+
+def _judge_one(source: Source | Missing, arguments: Arguments) -> int:
+    try:
+        sheet = source.read()
+        assessment = assessed(sheet, arguments.family)
+    except TrimwrightError as error:
+        return status.refuse(error, source.name)
+    if arguments.json:
+        print_json(assessment, traces=arguments.traces)
+    else:
+        from tuner.cli.printing import console, show
+
+        show(sheet, assessment, source.name, console())
+    return status.of(assessment)
+
+
+def print_json(assessment: Assessment, *, traces: bool = False) -> None:
+    """Print an assessment as one line of strict JSON, at once."""
+    sys.stdout.write(json.dumps(as_json(assessment, traces=traces), ensure_ascii=False, allow_nan=False) + "\n")
+    sys.stdout.flush()
+
+
+JUDGE = Command(
+    name="judge",
+    sentence="Judge tuning sheets by their limits over the whole spread. "
+    "Exit status: 0 met, 1 missed or unstable, 2 a sheet cannot be used.",
+    example="judge sample_plants/heater.toml --json",
+    declare=declare,
+    run=run,
+)
