@@ -5,6 +5,7 @@ from math import pi
 from typing import Any, Final
 
 from tuner.errors import Fault
+from tuner.files import words
 from tuner.model.parameters import GAIN_KEYS
 
 Table = dict[str, Any]
@@ -78,6 +79,12 @@ def _notch(sheet: Table) -> Iterator[Fault]:
             yield Fault("controller.notch.frequency", top, f"{frequency:g}")
 
 
+def _seconds(sheet: Table) -> Iterator[Fault]:
+    unit = table(sheet, "loop").get("time_unit", "s")
+    if "physics" in table(sheet, "plant") and unit != "s":
+        yield Fault("loop.time_unit", '"s", the time unit of physical models', f"the text {words.quoted(unit)}")
+
+
 def _samples(sheet: Table) -> Iterator[Fault]:
     duration = table(sheet, "trial").get("duration")
     for path in ("controller", "controller.as_found"):
@@ -91,4 +98,4 @@ def _samples(sheet: Table) -> Iterator[Fault]:
             yield Fault("trial.duration", most, f"{duration / period:,.0f}")
 
 
-_CHECKS: Final[tuple[Callable[[Table], Iterator[Fault]], ...]] = (_ranges, _feedforward, _notch, _samples)
+_CHECKS: Final[tuple[Callable[[Table], Iterator[Fault]], ...]] = (_ranges, _seconds, _feedforward, _notch, _samples)

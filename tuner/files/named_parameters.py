@@ -109,7 +109,7 @@ def _told_physical(model: "PhysicalParameter", given: PlantParameter) -> list[Fa
     key = f"{_TABLE}.{model.name}"
     lowest = given.value if given.spread is None else min(given.value, given.spread.low)
     faults = []
-    if model.minimum is not None and lowest < model.minimum:
+    if lowest < model.minimum:
         faults.append(Fault(key, f"a number of at least {model.minimum:g}, drift included", f"{lowest:g}"))
     if given.unit and given.unit != model.unit:
         faults.append(Fault(f"{key}.unit", f"'{model.unit}', the unit of this model", words.quoted(given.unit)))

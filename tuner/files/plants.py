@@ -67,7 +67,11 @@ def check_form(written: Table) -> list[Fault]:
         return [Fault("plant", f"exactly one of {every}", " and ".join(told) or "none of them")]
     missing = [Fault(f"plant.{key}", f"this key beside {form.title}", "nothing") for key in form.needed]
     known = {*form.needed, *form.optional}
-    extra = [_extra(key, form) for key in written if key not in known and key in ("dead_time", "parameters")]
+    extra = [
+        _extra(key, form)
+        for key in written
+        if key in ("dead_time", "parameters") and key not in known and written[key] != {}
+    ]
     return [fault for fault in missing if fault.key.removeprefix("plant.") not in written] + extra
 
 

@@ -1,7 +1,9 @@
 """Tuning sheets: read with every fault at once, and written with everything kept that a person wrote."""
 
+import os
 import re
 import tomllib
+from errno import EISDIR
 from pathlib import Path
 from typing import Any, Final
 
@@ -130,3 +132,79 @@ def _reason(error: OSError) -> str:
     if isinstance(error, FileNotFoundError):
         return "no such file"
     return "no permission" if isinstance(error, PermissionError) else (error.strerror or "an error").lower()
+
+
+def render(sheet: Sheet, original_text: str = "") -> str:
+    """Return the text of a sheet.
+
+    Parameters
+    ----------
+    sheet : Sheet
+        What the text is to say.
+    original_text : str
+        The text that it came from: its comments, order, blank lines and the spelling of every untouched key are kept.
+
+    Returns
+    -------
+    str
+        TOML that `parse` makes the same sheet of.
+    """
+    from tuner.files.rendering import fresh, merged
+
+    text = merged(sheet, original_text) if original_text.strip() else None
+    if text is not None and _says(text, sheet):
+        return text
+    anew = fresh(sheet)
+    return anew if text is None or _says(anew, sheet) else text
+
+
+def _says(text: str, sheet: Sheet) -> bool:
+    try:
+        return parse(text) == sheet
+    except SheetError:
+        return False
+
+
+def write(path: Path, sheet: Sheet, original_text: str = "") -> None:
+    """Write a sheet to a file, which either gets the whole new text or stays as it was.
+
+    Raises
+    ------
+    SheetError
+        When the file cannot be written.
+    """
+    path = path.resolve()
+    data = render(sheet, original_text).encode()
+    beside = path.with_name(f".{path.name}.{os.getpid()}.new")
+    try:
+        _check_writable(path)
+        _write_whole(beside, data, path.stat().st_mode if path.exists() else None)
+        beside.replace(path)
+    except OSError as error:
+        raise SheetError([Fault("", "a file that can be written", _reason(error))], str(path)) from None
+    finally:
+        beside.unlink(missing_ok=True)
+
+
+def _check_writable(path: Path) -> None:
+    if path.is_dir():
+        raise IsADirectoryError(EISDIR, "a folder")
+    if path.exists() and not os.access(path, os.W_OK):
+        raise PermissionError
+
+
+def _write_whole(path: Path, data: bytes, mode: int | None) -> None:
+    with path.open("xb") as file:
+        file.write(data)
+        file.flush()
+        os.fsync(file.fileno())
+    if mode is not None:
+        path.chmod(mode)
+
+
+def is_unchanged(path: Path, text: str) -> bool:
+    """Tell whether a file still holds the text that was read from it."""
+    try:
+        return read_text(path) == text
+    except SheetError:
+        return False
