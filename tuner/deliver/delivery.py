@@ -17,7 +17,7 @@ from tuner.deliver.targets import targets
 from tuner.judge.assessment import Assessment
 from tuner.model.sheet import Sheet
 
-STEPS = 100_000
+STEPS = 50_000
 """Samples of the closed loop that every file is compared over."""
 
 _PROOF = "proof.json"

@@ -1,23 +1,48 @@
-"""The plant of the proof."""
+"""The nominal plant of a sheet with its actuator and sensor, sampled as the simulation samples it."""
 
+from collections import deque
 from collections.abc import Callable
-from math import exp
+from operator import mul
 
 from tuner.deliver.excitation import PlantStep
+from tuner.model.family import family
 from tuner.model.sheet import Sheet
+from tuner.simulate.discrete import Held, chain, hold
+from tuner.simulate.realise import realise
 
 
 def nominal_plant(sheet: Sheet) -> Callable[[], PlantStep]:
-    decay = exp(-sheet.controller.sample_time / 10)
+    """Return what makes the nominal plant at rest.
 
-    def make() -> PlantStep:
-        y = 0.0
+    Raises
+    ------
+    LoopError
+        When the plant cannot be realised.
+    """
+    nominal = family(sheet.plant)[0]
+    system = chain(realise(sheet.plant, nominal.values), sheet.actuator.lag, sheet.sensor.lag)
+    held = hold(system, sheet.controller.sample_time, sheet.controller.delay_samples)
+    return lambda: _Stepping(held)
 
-        def step(u: float) -> float:
-            nonlocal y
-            y = decay * y + (1 - decay) * u
-            return y
 
-        return step
+class _Stepping:
+    """Steps a sampled system with plain numbers, which for a few states is faster than arrays are."""
 
-    return make
+    __slots__ = ("_d", "_efforts", "_growth", "_new", "_old", "_output", "_state")
+
+    def __init__(self, held: Held) -> None:
+        self._growth = [[float(number) for number in row] for row in held.growth]
+        self._old, self._new = held.old.tolist(), held.new.tolist()
+        self._output, self._d = held.c.tolist(), held.d
+        self._state = [0.0] * len(self._output)
+        self._efforts = deque([0.0] * (held.steps + 2), maxlen=held.steps + 2)
+
+    def __call__(self, effort: float) -> float:
+        """Take the effort of one sample and return the measurement of the next, both as deviations."""
+        self._efforts.append(effort)
+        before, now, state = self._efforts[0], self._efforts[1], self._state
+        self._state = [
+            x + sum(map(mul, row, state)) + old * before + new * now
+            for x, row, old, new in zip(state, self._growth, self._old, self._new, strict=True)
+        ]
+        return float(sum(map(mul, self._output, self._state)) + self._d * now)

@@ -107,8 +107,8 @@ class Reference:
         feedforward = 0.0 if self._gain is None else static(reference, constants.resting_measurement, self._gain)
         given = (reference, measurement, feedforward, self._manual_effort, *self._state, *constants)
         self._state = state = pid.law(*given)
-        mode, limited, fault = state[7:]
-        flags = int(limited) + Flags.FAULT * int(fault) + (Flags.MANUAL if mode == pid.MANUAL else 0)
+        _, _, _, _, _, _, _, mode, limited, fault = state
+        flags = limited + 2.0 * fault + (4.0 if mode == pid.MANUAL else 0.0)  # Flags, without their slow arithmetic
         return Outcome(state[0] + constants.resting_effort, int(flags))
 
     def _set_mode(self, mode: float) -> None:
