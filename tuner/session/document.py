@@ -1,7 +1,7 @@
 """The open document: one tuning sheet with its history, its file and the tunings kept to compare with."""
 
 from collections.abc import Callable
-from dataclasses import dataclass, field, replace
+from dataclasses import dataclass, replace
 from pathlib import Path
 
 from tuner.errors import LoopError, TrimwrightError
@@ -11,8 +11,18 @@ from tuner.model.plant import ExpressionPlant, Plant, PlantParameter
 from tuner.model.sheet import Sheet
 from tuner.session import recent
 from tuner.session.history import History
-from tuner.session.plant_forms import PlantForm, PlantForms, form_of, switch
+from tuner.session.plant_forms import PlantForm, PlantForms, form_of
 from tuner.session.ruler_range import RulerRange, range_for, typical_value, widened
+from tuner.session.state import (
+    State,
+    first_state,
+    with_disturbance_path,
+    with_formula,
+    with_plant,
+    with_plant_form,
+    with_sheet,
+    with_spare,
+)
 from tuner.session.tunings import KeptTuning, Mark, free_name, in_form_or_none, in_words, marks, with_as_found
 
 Listener = Callable[[], None]
@@ -20,15 +30,6 @@ Listener = Callable[[], None]
 
 class FileChangedError(TrimwrightError):
     """A save that would overwrite what somebody else wrote into the file meanwhile."""
-
-
-@dataclass(frozen=True, slots=True)
-class State:
-    """What undo brings back: the sheet, the kept tunings, and the forms in which the plant was typed."""
-
-    sheet: Sheet
-    kept: tuple[KeptTuning, ...] = ()
-    forms: PlantForms = field(default_factory=PlantForms)
 
 
 @dataclass(frozen=True, slots=True)
@@ -77,7 +78,7 @@ class Document:
 
     def __init__(self, sheet: Sheet, path: Path | None = None, original_text: str = "") -> None:
         self._listeners: list[Listener] = []
-        self._history = _fresh(sheet)
+        self._history = History(first_state(sheet))
         self._file = SheetFile(sheet, sheet, path, original_text)
         self._ranges: dict[str, RulerRange] = {}
         self.refusal = self.remark = ""
@@ -92,7 +93,8 @@ class Document:
         SheetError
             With every fault of the file.
         """
-        document = cls(_read(path), path, _text_of(path))
+        file = _read(path)
+        document = cls(file.opened, path, file.text)
         recent.remember(path)
         return document
 
@@ -152,10 +154,17 @@ class Document:
         merge_key : str or None
             Changes under one key are one step, until `release` or a change under another.
         """
-        controller = with_as_found(sheet.controller, sheet.controller.as_found)
-        forms = self.forms if sheet.plant == self.sheet.plant else self.forms.edited(sheet.plant)
-        state = replace(self._history.present, sheet=replace(sheet, controller=controller), forms=forms)
-        self._show(self._history.changed(state, label, merge_key))
+        self._show(self._history.changed(with_sheet(self._history.present, sheet), label, merge_key))
+
+    def edit(self, sheet: Sheet, *, label: str, merge_key: str | None = None) -> None:
+        """Show another sheet, as `change` does, unless its file would be refused.
+
+        Raises
+        ------
+        SheetError
+            With the faults that the change would bring; the present sheet stays.
+        """
+        self._change_checked(with_sheet(self._history.present, sheet), label, merge_key)
 
     def change_value(self, name: str, value: float | None, *, merge_key: str | None = None) -> None:
         """Set one number of the controller, named as in the sheet."""
@@ -267,10 +276,7 @@ class Document:
         TrimwrightError
             When the plant cannot be made; the present one stays.
         """
-        from tuner.session.plants import made
-
-        made(plant)
-        self.change(replace(self.sheet, plant=plant), label=label, merge_key=merge_key)
+        self._change_checked(with_plant(self._history.present, plant), label, merge_key)
 
     def change_formula(self, text: str, *, merge_key: str | None = None) -> None:
         """Write the plant as another formula; the parameters follow its names, old ones come back with their values.
@@ -280,32 +286,30 @@ class Document:
         TrimwrightError
             When the formula cannot be read, or is no plant; the present one stays.
         """
-        from tuner.session.plants import made, with_formula
+        self._change_checked(with_formula(self._history.present, text), "Change the formula", merge_key)
 
-        plant, spare = with_formula(self.sheet.plant, self.forms.spare, text)
-        made(plant)
-        self._change_forms(plant, replace(self.forms.edited(plant), spare=spare), "Change the formula", merge_key)
+    def change_disturbance_path(self, text: str, *, merge_key: str | None = None) -> None:
+        """Write a measured disturbance's path to the output as a formula, empty for none.
+
+        Raises
+        ------
+        TrimwrightError
+            When the formula cannot be read or used; the present one stays.
+        """
+        state = with_disturbance_path(self._history.present, text)
+        self._change_checked(state, "Change the disturbance path", merge_key)
 
     def change_spare(self, spare: PlantParameter) -> None:
         """Change a parameter that the formula does not use now."""
-        others = tuple(other for other in self.forms.spare if other.name != spare.name)
-        forms = replace(self.forms, spare=(*others, spare))
-        self._change_forms(self.sheet.plant, forms, f"Change {spare.name}", None)
+        state = with_spare(self._history.present, spare)
+        self._show(self._history.changed(state, f"Change {spare.name}"))
 
     def set_plant_form(self, form: PlantForm) -> None:
         """Give the plant in another form; `remark` says so when it is not the same plant there."""
-        from tuner.session.plants import converted
-
         if form == self.plant_form:
             return
-        before = self.sheet.plant
-        switched = switch(before, self.forms, form, converted)
-        forms = (
-            self.forms.switched(before, switched.plant) if not switched.remark else self.forms.edited(switched.plant)
-        )
-        self._change_forms(switched.plant, forms, f"Give the plant as {form}", None)
-        self.remark = switched.remark
-        self._tell()
+        switched = with_plant_form(self._history.present, form)
+        self._show(self._history.changed(switched.state, f"Give the plant as {form}"), switched.remark)
 
     @property
     def formula_parameters(self) -> tuple[PlantParameter, ...]:
@@ -323,17 +327,17 @@ class Document:
         SheetError
             With every fault of the file; the present sheet stays.
         """
-        sheet = _read(path)
-        self._begin(_fresh(sheet), SheetFile(sheet, sheet, path, _text_of(path)))
+        file = _read(path)
+        self._begin(History(first_state(file.opened)), file)
         recent.remember(path)
 
     def start(self, sheet: Sheet, original_text: str = "") -> None:
         """Show a sheet that has no file yet."""
-        self._begin(_fresh(sheet), SheetFile(sheet, sheet, None, original_text))
+        self._begin(History(first_state(sheet)), SheetFile(sheet, sheet, None, original_text))
 
     def recover(self, sheet: Sheet, kept: tuple[KeptTuning, ...], path: Path | None, original_text: str) -> None:
         """Show unsaved work found from an earlier run; it stays unsaved until it is saved."""
-        self._begin(_fresh(sheet, kept), SheetFile(sheet, None, path, original_text))
+        self._begin(History(first_state(sheet, kept)), SheetFile(sheet, None, path, original_text))
 
     def save(self) -> None:
         """Write the sheet to its file, comments kept.
@@ -345,14 +349,16 @@ class Document:
         TrimwrightError
             When it has no file, or the file cannot be written.
         """
-        if self._file.path is None:
+        from tuner.files.sheet import is_unchanged
+
+        path = self._file.path
+        if path is None:
             raise TrimwrightError("this sheet has no file yet: choose one to save it as")
-        if self._file.path.is_file() and _text_of(self._file.path) != self._file.text:
+        if path.exists() and not is_unchanged(path, self._file.text):
             raise FileChangedError(
-                f"{self._file.path} was changed by somebody else since it was read: "
-                "save under another name, or open it again"
+                f"{path} was changed by somebody else since it was read: save under another name, or open it again"
             )
-        self.save_as(self._file.path)
+        self.save_as(path)
 
     def save_as(self, path: Path) -> None:
         """Write the sheet to another file, comments kept, and go on with that one.
@@ -362,10 +368,10 @@ class Document:
         TrimwrightError
             When the file cannot be written.
         """
-        from tuner.files import sheet as files
+        from tuner.files.sheet import read_text, write
 
-        files.write(path, self.sheet, self._file.text)
-        self._file = replace(self._file, path=path, text=_text_of(path), saved=self.sheet)
+        write(path, self.sheet, self._file.text)
+        self._file = replace(self._file, path=path, text=read_text(path), saved=self.sheet)
         recent.remember(path)
         self._tell()
 
@@ -385,13 +391,15 @@ class Document:
     def _change_kept(self, kept: tuple[KeptTuning, ...], label: str) -> None:
         self._show(self._history.changed(replace(self._history.present, kept=kept), label))
 
-    def _change_forms(self, plant: Plant, forms: PlantForms, label: str, merge_key: str | None) -> None:
-        state = replace(self._history.present, sheet=replace(self.sheet, plant=plant), forms=forms)
+    def _change_checked(self, state: State, label: str, merge_key: str | None) -> None:
+        from tuner.session.checks import refuse_new_faults
+
+        refuse_new_faults(self.sheet, state.sheet)
         self._show(self._history.changed(state, label, merge_key))
 
-    def _show(self, history: History[State]) -> None:
+    def _show(self, history: History[State], remark: str = "") -> None:
         self._history = history
-        self.refusal = self.remark = ""
+        self.refusal, self.remark = "", remark
         self._tell()
 
     def _tell(self) -> None:
@@ -399,17 +407,9 @@ class Document:
             listener()
 
 
-def _fresh(sheet: Sheet, kept: tuple[KeptTuning, ...] = ()) -> History[State]:
-    return History(State(sheet, kept, PlantForms((sheet.plant,), (sheet.plant,))))
+def _read(path: Path) -> SheetFile:
+    from tuner.files.sheet import parse, read_text
 
-
-def _read(path: Path) -> Sheet:
-    from tuner.files import sheet as files
-
-    return files.read(path)
-
-
-def _text_of(path: Path) -> str:
-    """Return the text of a file with its line ends as they are."""
-    with path.open(encoding="utf-8", newline="") as file:
-        return file.read()
+    text = read_text(path)
+    sheet = parse(text, str(path))
+    return SheetFile(sheet, sheet, path, text)

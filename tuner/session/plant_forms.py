@@ -5,6 +5,7 @@ from dataclasses import dataclass, replace
 from typing import Literal
 
 from tuner.errors import TrimwrightError
+from tuner.model.physics import PHYSICS
 from tuner.model.plant import (
     CoefficientPlant,
     ExpressionPlant,
@@ -100,13 +101,15 @@ def switch(plant: Plant, forms: PlantForms, form: PlantForm, convert: Callable[[
 
 
 def start(form: PlantForm) -> Plant:
-    """Return a first plant in a form: a first-order lag, to be overwritten."""
+    """Return a first plant in a form, to be overwritten: a first-order lag, or the first physical model."""
+    model = next(iter(PHYSICS.values()))
+    quantities = tuple(PlantParameter(one.name, one.default, one.unit) for one in model.parameters)
     plants: dict[PlantForm, Plant] = {
         "formula": ExpressionPlant("gain / (lag s + 1)", (PlantParameter("gain", 1.0), PlantParameter("lag", 1.0))),
         "coefficients": CoefficientPlant((1.0,), (1.0, 1.0)),
         "zeros and poles": ZeroPolePlant((), (-1.0 + 0.0j,), 1.0),
         "state space": StateSpacePlant(((-1.0,),), (1.0,), (1.0,)),
-        "physics": PhysicsPlant(""),
+        "physics": PhysicsPlant(model.name, quantities),
     }
     return plants[form]
 

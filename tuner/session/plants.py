@@ -1,5 +1,6 @@
 """Plants made from what was typed: a formula with its parameters, and one form of a plant from another."""
 
+from collections.abc import Iterable
 from dataclasses import replace
 
 import numpy as np
@@ -35,12 +36,8 @@ def made(plant: Plant) -> Linear:
     return realise(plant, {parameter.name: parameter.value for parameter in plant.parameters})
 
 
-def with_formula(
-    plant: Plant, spare: tuple[PlantParameter, ...], text: str
-) -> tuple[ExpressionPlant, tuple[PlantParameter, ...]]:
-    """Return the plant of another formula, and the parameters that it leaves over.
-
-    A name used before gets its numbers again, a new one the value 1. Left over are those with numbers of their own.
+def names_in(formula: str) -> tuple[str, ...]:
+    """Return the parameter names of a formula in the order of their first use; none for an empty one.
 
     Raises
     ------
@@ -49,13 +46,22 @@ def with_formula(
     """
     from tuner.files.formula import parse
 
-    present = plant.parameters if isinstance(plant, ExpressionPlant) else ()
-    known = {parameter.name: parameter for parameter in (*spare, *present)}
-    used = names(parse(text))
-    parameters = tuple(known.get(name, PlantParameter(name, 1.0)) for name in used)
-    left = (parameter for name, parameter in known.items() if name not in used)
+    return tuple(names(parse(formula))) if formula.strip() else ()
+
+
+def with_names(
+    plant: ExpressionPlant, spare: tuple[PlantParameter, ...], used: Iterable[str]
+) -> tuple[ExpressionPlant, tuple[PlantParameter, ...]]:
+    """Return the plant with the parameters that are used, and those that are left over.
+
+    A name used before gets its numbers again, a new one the value 1. Left over are those with numbers of their own.
+    """
+    known = {parameter.name: parameter for parameter in (*spare, *plant.parameters)}
+    wanted = dict.fromkeys(used)
+    parameters = tuple(known.get(name, PlantParameter(name, 1.0)) for name in wanted)
+    left = (parameter for name, parameter in known.items() if name not in wanted)
     worth = tuple(parameter for parameter in left if parameter != PlantParameter(parameter.name, 1.0))
-    return ExpressionPlant(text, parameters), worth
+    return replace(plant, parameters=parameters), worth
 
 
 def converted(plant: Plant, form: PlantForm) -> Plant:
@@ -141,3 +147,13 @@ def with_parameter(plant: Plant, parameter: PlantParameter) -> Plant:
         return plant
     changed = tuple(parameter if other.name == parameter.name else other for other in plant.parameters)
     return replace(plant, parameters=changed)
+
+
+def with_physics(plant: Plant, name: str) -> PhysicsPlant:
+    """Return the physical model of a name; quantities that the present plant has too keep their numbers."""
+    from tuner.model.physics import PHYSICS
+
+    present = {parameter.name: parameter for parameter in plant.parameters}
+    quantities = PHYSICS[name].parameters
+    fresh = {one.name: PlantParameter(one.name, one.default, one.unit) for one in quantities}
+    return PhysicsPlant(name, tuple(present.get(one, fresh[one]) for one in fresh))

@@ -13,7 +13,7 @@ from tuner.model.sheet import Sheet
 POSITIONS = 10_000
 """A slider counts from 0 to this."""
 
-OFF_NOTCH = 300
+OFF_NOTCH = 500
 """Positions at the left end that mean off, where a ruler has an off notch; the scale begins behind them."""
 
 Step = Literal["fine", "coarse"]

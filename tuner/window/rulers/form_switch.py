@@ -5,7 +5,7 @@ from PySide6.QtWidgets import QHBoxLayout, QLabel, QWidget
 from tuner.model.controller import Form
 from tuner.model.parameters import find
 from tuner.session.document import Document
-from tuner.window.rulers.segments import Segments
+from tuner.window.editors.segments import Segments
 from tuner.window.theme import Theme
 
 

@@ -10,7 +10,8 @@ from tuner.model.parameters import Parameter
 from tuner.session import typed
 from tuner.session.document import Document
 from tuner.session.typed import Bounds, TypedError
-from tuner.window.editors.typed_line import TypedLine, Words
+from tuner.window.editors.intake import Words
+from tuner.window.editors.typed_line import TypedLine
 from tuner.window.rulers.slider import RulerSlider
 from tuner.window.theme import Theme
 
@@ -44,14 +45,14 @@ class Ruler(QWidget):
         self.slider.show_value(
             self._document.range_of(self.parameter), self._document.marks(self.parameter.name), value
         )
-        self.box.show_value(value)
+        self.box.intake.show_value(value)
         unit = self._unit_now()
         self._unit.setText(unit)
         self.slider.setAccessibleDescription(f"{_written(value)} {unit}. {self.parameter.sentence}")
 
     def forget_typing(self) -> None:
         """Show the document's value whatever was typed: another sheet was opened."""
-        self.box.show_value(self._value(), anew=True)
+        self.box.intake.show_value(self._value(), anew=True)
 
     def menu(self) -> QMenu:
         """Return the menu of a right click."""
@@ -100,7 +101,7 @@ class Ruler(QWidget):
         self.slider.wanted.connect(self._on_wanted)
         self.slider.let_go.connect(self._on_let_go)
         self.slider.reset_wanted.connect(self._on_reset_wanted)
-        self.box.faulted.connect(self.faulted)
+        self.box.intake.faulted.connect(self.faulted)
 
     def _value(self) -> float | None:
         controller = self._document.sheet.controller

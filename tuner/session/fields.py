@@ -1,0 +1,62 @@
+"""The keys of a sheet as its dataclasses hold them: one number or word by its dotted path, read and replaced."""
+
+from dataclasses import replace
+from typing import Any
+
+from tuner.model.controller import DisturbanceFeedforward, Feedforward, Notch
+from tuner.model.parameters import Parameter
+from tuner.model.sheet import Sheet
+
+_HELD_AS = {"controller.measurement_filter.time": "controller.measurement_filter"}
+"""Keys that the dataclasses hold under another path."""
+
+
+def value_at(sheet: Sheet, path: str) -> Any:  # noqa: ANN401 # numbers, words and flags alike
+    """Return what a sheet holds at a dotted path; None below a block that is absent."""
+    held: Any = sheet
+    for name in _HELD_AS.get(path, path).split("."):
+        held = None if held is None else getattr(held, name)
+    return held
+
+
+def with_value_at(sheet: Sheet, path: str, value: object) -> Sheet:
+    """Return a sheet with one key changed; the block that holds it must be there."""
+    changed: Sheet = _replaced(sheet, _HELD_AS.get(path, path).split("."), value)
+    return changed
+
+
+def with_notch(sheet: Sheet, notch: Notch | None) -> Sheet:
+    """Return a sheet with a notch, or without one."""
+    return replace(sheet, controller=replace(sheet.controller, notch=notch))
+
+
+def first_notch(sheet: Sheet) -> Notch:
+    """Return a notch to begin with: at a hundred times the frequency of one trial, a tenth of Nyquist at most."""
+    start = 200.0 * 3.141592653589793 / sheet.trial.duration
+    sample_time = sheet.controller.sample_time
+    limit = 0.1 * 3.141592653589793 / sample_time if sample_time else start
+    return Notch(float(f"{min(start, limit):.2g}"))
+
+
+def with_feedforward(sheet: Sheet, kind: str) -> Sheet:
+    """Return a sheet with feedforward of a kind, its number to begin with, or none for any other word."""
+    time = float(f"{sheet.trial.duration / 50.0:.2g}")
+    kinds = {"static": Feedforward("static", gain=0.0), "inverse": Feedforward("inverse", filter_time=time)}
+    return replace(sheet, controller=replace(sheet.controller, feedforward=kinds.get(kind)))
+
+
+def with_disturbance_feedforward(sheet: Sheet, formula: str) -> Sheet:
+    """Return a sheet with a measured disturbance's path to the output, none for an empty formula."""
+    path = DisturbanceFeedforward(formula) if formula.strip() else None
+    return replace(sheet, controller=replace(sheet.controller, disturbance_feedforward=path))
+
+
+def unit_of(parameter: Parameter, sheet: Sheet) -> str:
+    """Return the unit of a parameter in the units of a sheet's loop."""
+    loop = sheet.loop
+    return parameter.unit_for(t=loop.time_unit, y=loop.controlled.unit, u=loop.manipulated.unit)
+
+
+def _replaced(held: Any, names: list[str], value: object) -> Any:  # noqa: ANN401 # blocks of every kind
+    name, *below = names
+    return replace(held, **{name: _replaced(getattr(held, name), below, value) if below else value})

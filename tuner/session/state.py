@@ -1,0 +1,106 @@
+"""What undo brings back, and what each kind of change makes of it."""
+
+from dataclasses import dataclass, field, replace
+
+from tuner.model.plant import ExpressionPlant, Plant, PlantParameter
+from tuner.model.sheet import Sheet
+from tuner.session.plant_forms import PlantForm, PlantForms, switch
+from tuner.session.tunings import KeptTuning, with_as_found
+
+
+@dataclass(frozen=True, slots=True)
+class State:
+    """The sheet, the kept tunings, and the forms in which the plant was typed."""
+
+    sheet: Sheet
+    kept: tuple[KeptTuning, ...] = ()
+    forms: PlantForms = field(default_factory=PlantForms)
+
+
+@dataclass(frozen=True, slots=True)
+class Switched:
+    """A state with its plant in another form, and a remark when it is not the same plant there."""
+
+    state: State
+    remark: str
+
+
+def first_state(sheet: Sheet, kept: tuple[KeptTuning, ...] = ()) -> State:
+    """Return the state of a sheet just opened."""
+    return State(sheet, kept, PlantForms((sheet.plant,), (sheet.plant,)))
+
+
+def with_sheet(state: State, sheet: Sheet) -> State:
+    """Return the state with another sheet; the gains as found follow the controller in all but themselves."""
+    controller = with_as_found(sheet.controller, sheet.controller.as_found)
+    forms = state.forms if sheet.plant == state.sheet.plant else state.forms.edited(sheet.plant)
+    return replace(state, sheet=replace(sheet, controller=controller), forms=forms)
+
+
+def with_plant(state: State, plant: Plant) -> State:
+    """Return the state with another plant.
+
+    Raises
+    ------
+    TrimwrightError
+        When the plant cannot be made.
+    """
+    from tuner.session.plants import made
+
+    made(plant)
+    return with_sheet(state, replace(state.sheet, plant=plant))
+
+
+def with_formula(state: State, text: str) -> State:
+    """Return the state with the plant written as another formula; its parameters follow the names in it.
+
+    Raises
+    ------
+    TrimwrightError
+        When the formula cannot be read, or is no plant.
+    """
+    from tuner.session.plants import names_in, with_names
+
+    path = state.sheet.controller.disturbance_feedforward
+    used = (*names_in(text), *names_in(path.expression if path else ""))
+    known = state.sheet.plant.parameters if isinstance(state.sheet.plant, ExpressionPlant) else ()
+    plant, spare = with_names(ExpressionPlant(text, known), state.forms.spare, used)
+    changed = with_plant(state, plant)
+    return replace(changed, forms=replace(changed.forms, spare=spare))
+
+
+def with_disturbance_path(state: State, text: str) -> State:
+    """Return the state with another path of the measured disturbance; it shares the parameters of the plant's formula.
+
+    Raises
+    ------
+    FormulaError
+        When the formula cannot be read.
+    """
+    from tuner.session.fields import with_disturbance_feedforward
+    from tuner.session.plants import names_in, with_names
+
+    used = names_in(text)
+    sheet, plant = with_disturbance_feedforward(state.sheet, text), state.sheet.plant
+    if not isinstance(plant, ExpressionPlant):
+        return with_sheet(state, sheet)
+    plant, spare = with_names(plant, state.forms.spare, (*names_in(plant.expression), *used))
+    changed = with_sheet(state, replace(sheet, plant=plant))
+    return replace(changed, forms=replace(changed.forms, spare=spare))
+
+
+def with_spare(state: State, spare: PlantParameter) -> State:
+    """Return the state with a parameter changed that the formula does not use now."""
+    others = tuple(other for other in state.forms.spare if other.name != spare.name)
+    return replace(state, forms=replace(state.forms, spare=(*others, spare)))
+
+
+def with_plant_form(state: State, form: PlantForm) -> Switched:
+    """Return the state with the plant in another form."""
+    from tuner.session.plants import converted
+
+    before = state.sheet.plant
+    switched = switch(before, state.forms, form, converted)
+    after = switched.plant
+    forms = state.forms.edited(after) if switched.remark else state.forms.switched(before, after)
+    return Switched(replace(state, sheet=replace(state.sheet, plant=after), forms=forms), switched.remark)

@@ -1,0 +1,123 @@
+"""A field: a label, something to set a value with, its unit, and a sentence underneath when it is wrong."""
+
+from typing import Protocol
+
+from PySide6.QtCore import Qt
+from PySide6.QtWidgets import QGridLayout, QLabel, QSizePolicy, QVBoxLayout, QWidget
+
+from tuner.window.theme import Theme
+
+LABEL_WIDTH, UNIT_WIDTH = 108, 52
+
+
+class FaultLine(QLabel):
+    """Says under a control what is wrong with what was typed there; takes no room while nothing is."""
+
+    def __init__(self, theme: Theme) -> None:
+        super().__init__()
+        self._theme = theme
+        self.setWordWrap(True)
+        self.setFont(theme.font("small"))
+        self.setSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Minimum)
+        self.hide()
+        theme.changed.connect(self._dress)
+        self._dress()
+
+    def say(self, sentence: str) -> None:
+        """Say a sentence, or nothing."""
+        self.setText(sentence[:1].upper() + sentence[1:])
+        self.setVisible(bool(sentence))
+
+    def _dress(self) -> None:
+        self.setStyleSheet(f"color: {self._theme.palette.colours['lost_word']};")
+
+
+class Note(QLabel):
+    """A quiet sentence."""
+
+    def __init__(self, theme: Theme, text: str = "") -> None:
+        super().__init__(text)
+        self.setWordWrap(True)
+        self.setFont(theme.font("small"))
+        self.setProperty("voice", "quiet")
+        self.setSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Minimum)
+        self.setVisible(bool(text))
+
+    def say(self, text: str) -> None:
+        """Say another sentence, or nothing."""
+        self.setText(text)
+        self.setVisible(bool(text))
+
+
+def heading(theme: Theme, text: str) -> QLabel:
+    """Return the heading of a group of fields."""
+    label = QLabel(text)
+    label.setFont(theme.font("body", strong=True))
+    label.setContentsMargins(0, 8, 0, 0)
+    return label
+
+
+class Field(QWidget):
+    """One labelled control of a page.
+
+    Parameters
+    ----------
+    label : str
+        Before the control; empty lets the control have the whole width.
+    sentence : str
+        What it is, shown on hovering.
+    control : QWidget
+        What sets the value.
+    """
+
+    def __init__(self, theme: Theme, label: str, sentence: str, control: QWidget) -> None:
+        super().__init__()
+        self.control = control
+        self.unit = QLabel()
+        self.unit.setProperty("voice", "quiet")
+        self.unit.setFixedWidth(UNIT_WIDTH)
+        self.fault = FaultLine(theme)
+        name = QLabel(label)
+        name.setFixedWidth(LABEL_WIDTH)
+        name.setBuddy(control)
+        grid = QGridLayout(self)
+        grid.setContentsMargins(0, 0, 0, 0)
+        grid.setHorizontalSpacing(4)
+        grid.setVerticalSpacing(2)
+        grid.addWidget(name, 0, 0)
+        grid.addWidget(control, 0, 1)
+        grid.addWidget(self.unit, 0, 2)
+        grid.addWidget(self.fault, 1, 1, 1, 2)
+        grid.setColumnStretch(1, 1)
+        self.setToolTip(sentence)
+        control.setAccessibleName(label)
+
+
+class Part(Protocol):
+    """Something on a page that shows what the document holds."""
+
+    def refresh(self, *, anew: bool) -> None:
+        """Show what the document holds; whatever was typed goes when `anew`."""
+
+
+class Page(QWidget):
+    """The page of one block: parts under one another, each showing what the document holds."""
+
+    def __init__(self) -> None:
+        super().__init__()
+        self._parts: list[Part] = []
+        self.column = QVBoxLayout(self)
+        self.column.setContentsMargins(8, 4, 8, 8)
+        self.column.setSpacing(4)
+        self.column.setAlignment(Qt.AlignmentFlag.AlignTop)
+
+    def add(self, widget: QWidget, part: Part | None = None) -> None:
+        """Put a widget under the last one, and the part, if it is one, on the round of refreshing."""
+        self.column.addWidget(widget)
+        if part is not None:
+            self._parts.append(part)
+
+    def refresh(self, *, anew: bool) -> None:
+        """Show what the document holds."""
+        for part in self._parts:
+            part.refresh(anew=anew)

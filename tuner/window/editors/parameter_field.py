@@ -1,0 +1,158 @@
+"""Fields made from the table of parameters: one small class for each kind of value."""
+
+from collections.abc import Callable
+
+from PySide6.QtWidgets import QCheckBox
+
+from tuner.model.parameters import Kind, Parameter
+from tuner.session import typed
+from tuner.session.document import Document
+from tuner.session.fields import unit_of, value_at, with_value_at
+from tuner.session.typed import Bounds
+from tuner.window.editors.field import Field
+from tuner.window.editors.intake import Words
+from tuner.window.editors.segments import Segments
+from tuner.window.editors.typed_line import TypedLine
+from tuner.window.theme import Theme
+
+
+class NumberField(Field):
+    """A number of the table, typed; empty stands for its default, which may be none."""
+
+    def __init__(self, document: Document, parameter: Parameter, theme: Theme) -> None:
+        self._document, self._parameter = document, parameter
+        self.line = TypedLine(theme, self._held(), Words(self._read, typed.shown), self._take)
+        super().__init__(theme, _label(parameter), parameter.sentence, self.line)
+        self.line.intake.path = parameter.path
+        self.line.intake.faulted.connect(self.fault.say)
+        self.line.intake.left.connect(document.release)
+        if _may_be_none(parameter):
+            self.line.setPlaceholderText("none")
+
+    def refresh(self, *, anew: bool) -> None:
+        """Show what the document holds."""
+        self.line.intake.show_value(self._held(), anew=anew)
+        self.unit.setText(_unit(self._parameter, self._document))
+
+    def _held(self) -> float | None:
+        value: float | None = value_at(self._document.sheet, self._parameter.path)
+        return None if value == 0.0 and _zero_is_none(self._parameter) else value
+
+    def _read(self, text: str) -> float | None:
+        if not text.strip() and not self._parameter.required:
+            return _default(self._parameter)
+        if not text.strip() and _zero_is_none(self._parameter):
+            return None
+        value = typed.number(text, Bounds.of(self._parameter), _unit(self._parameter, self._document))
+        return int(value) if self._parameter.kind is Kind.INTEGER else value
+
+    def _take(self, value: float | None) -> None:
+        path = self._parameter.path
+        held = 0.0 if value is None and _zero_is_none(self._parameter) else value
+        changed = with_value_at(self._document.sheet, path, held)
+        self._document.edit(changed, label=f"Set {_label(self._parameter)}", merge_key=path)
+
+
+class TextField(Field):
+    """A text of the table."""
+
+    def __init__(self, document: Document, parameter: Parameter, theme: Theme) -> None:
+        self._document, self._parameter = document, parameter
+        self.line: TypedLine[str] = TypedLine(theme, self._held(), Words(str, str), self._take)
+        super().__init__(theme, _label(parameter), parameter.sentence, self.line)
+        self.line.intake.path = parameter.path
+        self.line.intake.faulted.connect(self.fault.say)
+        self.line.intake.left.connect(document.release)
+        self.unit.hide()
+
+    def refresh(self, *, anew: bool) -> None:
+        """Show what the document holds."""
+        self.line.intake.show_value(self._held(), anew=anew)
+
+    def _held(self) -> str:
+        return str(value_at(self._document.sheet, self._parameter.path))
+
+    def _take(self, value: str) -> None:
+        path = self._parameter.path
+        changed = with_value_at(self._document.sheet, path, value)
+        self._document.edit(changed, label=f"Set {_label(self._parameter)}", merge_key=path)
+
+
+class ChoiceField(Field):
+    """One of the few words that the table allows."""
+
+    def __init__(self, document: Document, parameter: Parameter, theme: Theme) -> None:
+        self._document, self._parameter = document, parameter
+        self.segments = Segments(parameter.choices, theme, self._choose)
+        super().__init__(theme, _label(parameter), parameter.sentence, self.segments)
+        self.unit.hide()
+
+    def refresh(self, *, anew: bool) -> None:
+        """Show what the document holds."""
+        del anew
+        self.segments.show_choice(str(value_at(self._document.sheet, self._parameter.path)))
+
+    def _choose(self, word: str) -> None:
+        changed = with_value_at(self._document.sheet, self._parameter.path, word)
+        self._document.edit(changed, label=f"Set {_label(self._parameter)}")
+
+
+class FlagField(Field):
+    """A true or false of the table."""
+
+    def __init__(self, document: Document, parameter: Parameter, theme: Theme) -> None:
+        self._document, self._parameter = document, parameter
+        self.box = QCheckBox()
+        super().__init__(theme, _label(parameter), parameter.sentence, self.box)
+        self.box.clicked.connect(self._choose)
+
+    def refresh(self, *, anew: bool) -> None:
+        """Show what the document holds."""
+        del anew
+        held = bool(value_at(self._document.sheet, self._parameter.path))
+        self.box.setChecked(held)
+        self.box.setText("on" if held else "off")
+
+    def _choose(self, checked: bool) -> None:  # as Qt hands it over
+        changed = with_value_at(self._document.sheet, self._parameter.path, checked)
+        self._document.edit(changed, label=f"Set {_label(self._parameter)}")
+
+
+ParameterField = NumberField | TextField | ChoiceField | FlagField
+
+_BY_KIND: dict[Kind, Callable[[Document, Parameter, Theme], ParameterField]] = {
+    Kind.NUMBER: NumberField,
+    Kind.INTEGER: NumberField,
+    Kind.TEXT: TextField,
+    Kind.CHOICE: ChoiceField,
+    Kind.FLAG: FlagField,
+}
+
+
+def parameter_field(document: Document, parameter: Parameter, theme: Theme) -> ParameterField:
+    """Return the field of a parameter, of the kind that the table says."""
+    field = _BY_KIND[parameter.kind](document, parameter, theme)
+    field.refresh(anew=True)
+    return field
+
+
+def _label(parameter: Parameter) -> str:
+    return parameter.name.replace("_", " ")
+
+
+def _unit(parameter: Parameter, document: Document) -> str:
+    return unit_of(parameter, document.sheet)
+
+
+def _default(parameter: Parameter) -> float | None:
+    default = parameter.default
+    return float(default) if isinstance(default, int | float) else None
+
+
+def _may_be_none(parameter: Parameter) -> bool:
+    return (not parameter.required and parameter.default is None) or _zero_is_none(parameter)
+
+
+def _zero_is_none(parameter: Parameter) -> bool:
+    """Tell whether an absent block is held as 0: the measurement filter."""
+    return parameter.path == "controller.measurement_filter.time"
