@@ -1,0 +1,121 @@
+"""The loop as poles and frequency response see it: what the controller acts on, the controller, and their loop gain."""
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+import numpy as np
+
+from tuner.model.controller import Controller
+from tuner.model.family import Member
+from tuner.model.sheet import Sheet
+from tuner.simulate.discrete import Held, chain, held_batch, split
+from tuner.simulate.factors import Factors
+from tuner.simulate.linear import Linear
+from tuner.simulate.pulse import pulse_factors
+from tuner.simulate.realise import realise
+from tuner.simulate.transfer import controller_factors, plant_factors
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class ContinuousLoop:
+    """A loop with a continuous controller.
+
+    Parameters
+    ----------
+    controller : Controller
+    chain : Linear
+        From the effort to the measurement: actuator, plant, sensor.
+    factors : Factors
+        The loop gain, in s; the action's sign is in it, so a negative plant under direct action gives a positive one.
+    """
+
+    controller: Controller
+    chain: Linear
+    factors: Factors
+
+    @property
+    def sample_time(self) -> float:
+        """0: there are no samples."""
+        return 0.0
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class SampledLoop:
+    """A loop with a sampled controller, seen at the sample instants.
+
+    Parameters
+    ----------
+    controller : Controller
+    chain : Linear
+        From the held effort to the measurement: actuator, plant, sensor.
+    held : Held
+        The chain's exact equivalent under the hold, computing delay included.
+    factors : Factors
+        The loop gain in z - 1: the law's pulse transfer function times the chain's, nothing cancelled.
+    """
+
+    controller: Controller
+    chain: Linear
+    held: Held
+    factors: Factors
+
+    @property
+    def sample_time(self) -> float:
+        """Time between samples."""
+        return self.held.step
+
+
+Loop = ContinuousLoop | SampledLoop
+
+
+def loop_of(sheet: Sheet, member: Member) -> Loop:
+    """Return the loop of a sheet with one plant of its family.
+
+    Raises
+    ------
+    LoopError
+        When the plant cannot be realised; see `realise`.
+    """
+    return loops_of(sheet, (member,))[0]
+
+
+def loops_of(sheet: Sheet, members: Sequence[Member]) -> tuple[Loop, ...]:
+    """Return the loops of a sheet with some plants of its family; together they take less time than one by one."""
+    chains = [chain(realise(sheet.plant, member.values), sheet.actuator.lag, sheet.sensor.lag) for member in members]
+    return loops_around(sheet.controller, chains)
+
+
+def loops_around(controller: Controller, chains: Sequence[Linear]) -> tuple[Loop, ...]:
+    """Return the loops that a controller makes with chains from effort to measurement."""
+    law = controller_factors(controller)
+    if not controller.sample_time:
+        return tuple(ContinuousLoop(controller, one, plant_factors(one).then(law)) for one in chains)
+    loops: list[Loop] = [None] * len(chains)  # type: ignore[list-item] # every place is filled below
+    for order in sorted({one.order for one in chains}):
+        places = [i for i, one in enumerate(chains) if one.order == order]
+        for place, loop in zip(places, _sampled(controller, law, [chains[i] for i in places]), strict=True):
+            loops[place] = loop
+    return tuple(loops)
+
+
+def _sampled(controller: Controller, law: Factors, chains: Sequence[Linear]) -> list[SampledLoop]:
+    """Return the sampled loops around chains of one order."""
+    step = controller.sample_time
+    delays = [split(one.dead_time, step) for one in chains]
+    offsets = np.array([[delay.offset] for delay in delays])
+    held = held_batch(
+        np.array([one.a for one in chains]), np.array([one.b for one in chains])[..., None], step, offsets
+    )
+    pulses = pulse_factors(chains, held, [delay.steps for delay in delays], step)
+    extra = controller.delay_samples
+    return [
+        SampledLoop(
+            controller,
+            one,
+            Held(
+                held.growth[i], held.old[i, :, 0], held.new[i, :, 0], one.c, one.d, delays[i].steps + extra, step
+            ),
+            pulses[i].then(law),
+        )
+        for i, one in enumerate(chains)
+    ]
