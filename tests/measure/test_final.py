@@ -4,35 +4,36 @@ from math import inf, isnan
 
 import pytest
 
-from tuner.measure.final import final_values
-from tuner.model.controller import Controller, DisturbanceFeedforward, Feedforward
+from tuner.measure.final import StaticGains, final_values
+from tuner.model.controller import Controller
 from tuner.model.sheet import Trial
 
 TRIAL = Trial(duration=1.0, reference=3.0, disturbance=2.0)
 
 
 @pytest.mark.parametrize(
-    ("controller", "gain", "reference", "disturbance"),
+    ("controller", "static", "reference", "disturbance"),
     [
-        (Controller(gain_1=2.0, gain_2=0.1), 5.0, 3.0, 0.0),
-        (Controller(gain_1=2.0), 5.0, 3.0 * 10.0 / 11.0, 2.0 * 5.0 / 11.0),
-        (Controller(gain_1=2.0, b=0.5), 5.0, 1.5 * 10.0 / 11.0, 2.0 * 5.0 / 11.0),
-        (Controller(gain_1=2.0, action="direct"), -5.0, 3.0 * 10.0 / 11.0, 2.0 * -5.0 / 11.0),
-        (Controller(gain_1=2.0, b=0.5), inf, 1.5, 1.0),
-        (Controller(gain_1=2.0, feedforward=Feedforward("static", gain=0.1)), inf, 3.0 + 0.15, 1.0),
-        (Controller(gain_1=2.0, feedback=False, feedforward=Feedforward("static", gain=0.1)), 5.0, 1.5, 10.0),
-        (Controller(feedback=False, feedforward=Feedforward("inverse", filter_time=1.0)), 5.0, 3.0, 10.0),
-        (Controller(gain_3=2.0), 5.0, 0.0, 10.0),
-        (Controller(gain_1=2.0, disturbance_feedforward=DisturbanceFeedforward("1")), 5.0, 3.0 * 10.0 / 11.0, 0.0),
+        (Controller(gain_1=2.0, gain_2=0.1), StaticGains(5.0), 3.0, 0.0),
+        (Controller(gain_1=2.0), StaticGains(5.0), 3.0 * 10.0 / 11.0, 2.0 * 5.0 / 11.0),
+        (Controller(gain_1=2.0, b=0.5), StaticGains(5.0), 1.5 * 10.0 / 11.0, 2.0 * 5.0 / 11.0),
+        (Controller(gain_1=2.0, action="direct"), StaticGains(-5.0), 3.0 * 10.0 / 11.0, 2.0 * -5.0 / 11.0),
+        (Controller(gain_1=2.0, b=0.5), StaticGains(inf), 1.5, 1.0),
+        (Controller(gain_1=2.0), StaticGains(inf, feedforward=0.1), 3.0 + 0.15, 1.0),
+        (Controller(gain_1=2.0, feedback=False), StaticGains(5.0, feedforward=0.1), 1.5, 10.0),
+        (Controller(gain_3=2.0), StaticGains(5.0), 0.0, 10.0),
+        (Controller(gain_1=2.0), StaticGains(5.0, path=4.0, compensation=-0.8), 3.0 * 10.0 / 11.0, 0.0),
+        (Controller(gain_1=2.0), StaticGains(6.0, path=4.0, compensation=-0.8), 3.0 * 12.0 / 13.0, 2.0 * -0.8 / 13.0),
+        (Controller(gain_1=2.0), StaticGains(inf, path=4.0), 3.0, 0.0),
     ],
 )
-def test_final_values(controller: Controller, gain: float, reference: float, disturbance: float) -> None:
-    """Integral action, proportional action, either action, integrating plants, open loops with feedforward."""
-    found = final_values(controller, TRIAL, gain)
+def test_final_values(controller: Controller, static: StaticGains, reference: float, disturbance: float) -> None:
+    """Integral action, proportional action, either action, integrating plants, feedforward of either kind."""
+    found = final_values(controller, TRIAL, static)
 
-    assert (found.reference, found.disturbance) == pytest.approx((reference, disturbance))
+    assert (found.reference, found.disturbance) == pytest.approx((reference, disturbance), abs=1e-12)
 
 
 def test_an_open_integrator_ends_nowhere() -> None:
     """Without feedback an integrating plant has no final value."""
-    assert isnan(final_values(Controller(feedback=False), TRIAL, inf).reference)
+    assert isnan(final_values(Controller(feedback=False), TRIAL, StaticGains(inf)).reference)

@@ -37,24 +37,18 @@ def show(sheet: Sheet, assessment: Assessment, file: str, out: Console) -> None:
 
 def verdict_sentence(assessment: Assessment) -> str:
     """Say the verdict."""
-    plants = _plants(assessment.family_size)
+    size = assessment.family_size
+    plants = "the nominal plant alone" if size == 1 else f"the family of {size} plants"
     if assessment.verdict == "unstable":
-        return assessment.instability.sentence if assessment.instability else f"Unstable within {plants}."
+        return assessment.instability.sentence if assessment.instability else f"Unstable, judged over {plants}."
     if not assessment.limits:
-        return f"Stable for {plants}; no limits to meet."
+        return f"Stable, judged over {plants}; there are no limits to meet."
     count = len(assessment.limits)
     missed = sum(not limit.met for limit in assessment.limits)
+    limits = "limit" if count == 1 else "limits"
     if missed:
-        return f"Missed: {missed} of {count} {_limits(count)} not met by {plants}."
-    return f"Met: {'the limit' if count == 1 else f'all {count} limits'} met by {plants}."
-
-
-def _limits(count: int) -> str:
-    return "limit" if count == 1 else "limits"
-
-
-def _plants(size: int) -> str:
-    return "the nominal plant, which has no spread" if size == 1 else f"all {size} plants of the family"
+        return f"Missed: {missed} of {count} {limits}, judged over {plants}."
+    return f"Met: {count} of {count} {limits}, judged over {plants}."
 
 
 def _table(sheet: Sheet, assessment: Assessment) -> Table:

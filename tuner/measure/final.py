@@ -8,6 +8,26 @@ from tuner.model.sheet import Trial
 
 
 @dataclass(frozen=True, slots=True)
+class StaticGains:
+    """Static gains of one plant and of the feedforward, which is made for the nominal plant.
+
+    Parameters
+    ----------
+    plant : float
+        From effort to output; infinite for an integrating plant.
+    path : float or None
+        From a measured disturbance to the output; None where the disturbance acts at the plant input.
+    feedforward, compensation : float
+        From the reference to the effort; from a measured disturbance to the effort.
+    """
+
+    plant: float
+    path: float | None = None
+    feedforward: float = 0.0
+    compensation: float = 0.0
+
+
+@dataclass(frozen=True, slots=True)
 class FinalValues:
     """Where the output ends in each run, deviation; NaN when it is not known exactly."""
 
@@ -15,40 +35,33 @@ class FinalValues:
     disturbance: float
 
 
-def final_values(controller: Controller, trial: Trial, static_gain: float) -> FinalValues:
+def final_values(controller: Controller, trial: Trial, static: StaticGains) -> FinalValues:
     """Return the exact final values of a stable loop, by the final value theorem.
 
-    With integral action the error ends at zero. Without it, K being the signed proportional gain, F the static gain
-    of the feedforward and G that of the plant, y = G (K b + F) r / (1 + G K) and y = G d / (1 + G K); with an
-    integrating plant their limits b r + F r / K and d / K.
-
-    Parameters
-    ----------
-    static_gain : float
-        From the effort to the measurement; infinite for an integrating plant.
+    With integral action the error ends at zero. Without it, K being the signed proportional gain, F and H the
+    feedforward from reference and disturbance, G the plant and P the disturbance's path (G at the plant input):
+    y = G (K b + F) r / (1 + G K) and y = (P + G H) d / (1 + G K), with their limits for an integrating plant.
     """
     gains = controller.parallel()
     if controller.feedback and gains.ki:
         return FinalValues(trial.reference, 0.0)
     gain = controller.sign * gains.kp if controller.feedback else 0.0
-    forward = gain * controller.b + _feedforward(controller, static_gain)
-    compensated = controller.disturbance_feedforward is not None
-    if isinf(static_gain):
-        if not gain:
-            return FinalValues(nan, nan)
-        return FinalValues(forward / gain * trial.reference, nan if compensated else trial.disturbance / gain)
-    through = static_gain / (1.0 + static_gain * gain)
-    disturbance = through * trial.disturbance
-    if compensated:
-        disturbance = 0.0 if static_gain else nan
-    return FinalValues(through * forward * trial.reference, disturbance)
+    forward = gain * controller.b + static.feedforward
+    if isinf(static.plant):
+        return _integrating(trial, static, gain, forward)
+    through = 1.0 + static.plant * gain
+    path = static.plant if static.path is None else static.path
+    return FinalValues(
+        static.plant * forward / through * trial.reference,
+        (path + static.plant * static.compensation) / through * trial.disturbance,
+    )
 
 
-def _feedforward(controller: Controller, static_gain: float) -> float:
-    """Return the static gain of the feedforward from the reference; an inverse one undoes the plant's."""
-    feedforward = controller.feedforward
-    if feedforward is None:
-        return 0.0
-    if feedforward.kind == "static":
-        return feedforward.gain or 0.0
-    return 1.0 / static_gain if static_gain else nan
+def _integrating(trial: Trial, static: StaticGains, gain: float, forward: float) -> FinalValues:
+    if not gain:
+        return FinalValues(nan, nan)
+    if static.path is None:
+        disturbance = (1.0 + static.compensation) / gain
+    else:
+        disturbance = nan if isinf(static.path) else static.compensation / gain
+    return FinalValues(forward / gain * trial.reference, disturbance * trial.disturbance)
