@@ -20,7 +20,7 @@ compiled_law = compiled(law)
 
 @compiled
 def _output(c: Array, x: Array, direct: Array, effort: float, disturbance: float) -> float:
-    total = direct[0] * effort + direct[1] * disturbance
+    total: float = direct[0] * effort + direct[1] * disturbance
     for i in range(x.shape[0]):
         total += c[i] * x[i]
     return total
@@ -48,7 +48,9 @@ def _advance(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
 
 
 @compiled
-def _hold_still(y: Array, u: Array, limited: Array, index: int, sample: int, ceiling: float) -> None:
+def _hold_still(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
+    y: Array, u: Array, limited: Array, index: int, sample: int, ceiling: float
+) -> None:
     """Fill what is left of a run that ran away with its last values, the output cut at the ceiling."""
     for i in range(index, y.shape[0]):
         y[i] = y[index]
@@ -60,7 +62,7 @@ def _hold_still(y: Array, u: Array, limited: Array, index: int, sample: int, cei
 
 
 @compiled
-def run(  # noqa: C901, PLR0913, PLR0915, PLR0917 - the whole loop in one place, so that it can be read against the law
+def run(  # noqa: C901, PLR0913, PLR0917 - the whole loop in one place, so that it can be read against the law
     constants: Array,
     system: Integers,
     growth: Array,
@@ -169,7 +171,9 @@ def run(  # noqa: C901, PLR0913, PLR0915, PLR0917 - the whole loop in one place,
 
 
 @compiled
-def step_response(growth: Array, old: Array, new: Array, c: Array, direct: Array, delay: int, out: Array) -> None:
+def step_response(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
+    growth: Array, old: Array, new: Array, c: Array, direct: Array, delay: int, out: Array
+) -> None:
     """Write the response of one system to a unit step at each sample, as it is just after the jump of the input.
 
     Parameters

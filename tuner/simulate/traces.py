@@ -37,7 +37,8 @@ class Trace:
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Traces:
-    """The two runs of a trial."""
+    """The two runs of a trial, and what must be said about them, in sentences."""
 
     reference: Trace
     disturbance: Trace
+    notes: tuple[str, ...] = ()

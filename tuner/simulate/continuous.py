@@ -1,0 +1,157 @@
+"""Trials of a continuous controller: the sampled law at a step that is halved until the answer no longer depends on it.
+
+Two steps, one half of the other, extrapolate to none at all, for the error of the sampled law is proportional to its
+step (Richardson's extrapolation).
+"""
+
+import math
+from collections.abc import Sequence
+from typing import NamedTuple
+
+import numpy as np
+from numpy.typing import NDArray
+
+from tuner.errors import LoopError
+from tuner.model.family import Member
+from tuner.model.sheet import Sheet
+from tuner.simulate.batch import Runs, simulate
+from tuner.simulate.discrete import chain
+from tuner.simulate.grid import Grid
+from tuner.simulate.traces import Array
+from tuner.simulate.wiring import Process, processes
+
+FEWEST, MOST = 1_000, 64_000
+"""Steps of the coarser run: to start with, and at most."""
+
+AGREEMENT = 0.01
+"""Coarse and fine run differ by this share of the step at most; the extrapolated one then errs by its square or so."""
+
+_FAR_AWAY = 100.0
+"""A run that has grown to this many times the step is unstable, and its error no longer counts."""
+
+
+class Extrapolated(NamedTuple):
+    """Runs at the points of the coarser grid, and whether their accuracy was reached."""
+
+    runs: Runs
+    grid: Grid
+    reached: bool
+
+
+def simulate_continuous(sheet: Sheet, members: Sequence[Member]) -> Extrapolated:
+    """Run the trial of a continuous controller for every member.
+
+    Raises
+    ------
+    LoopError
+        When a member cannot be computed, or its loop has no answer.
+    """
+    gains = [direct_gain(sheet, process) for process in processes(sheet, members)]
+    grid = Grid(sheet.trial.duration / FEWEST, 1, FEWEST + 1)
+    coarse = _run(sheet, members, grid, gains)
+    while True:
+        fine_grid = Grid(grid.sample_time / 2.0, 1, 2 * grid.points - 1)
+        fine = _run(sheet, members, fine_grid, gains)
+        reached = _agree(sheet, coarse.y, fine.y[..., ::2])
+        if reached or 2 * grid.points > MOST:
+            return Extrapolated(_extrapolated(sheet, coarse, fine, any(gains)), grid, reached)
+        coarse, grid = fine, fine_grid
+
+
+def direct_gain(sheet: Sheet, process: Process) -> float:
+    """Return the loop gain at infinite frequency when no dead time is in the loop, else 0.
+
+    It is what makes effort and measurement depend on each other in the same instant: a plant with a direct term, or an
+    unfiltered derivative on a plant that is a single integrator at high frequency.
+
+    Raises
+    ------
+    LoopError
+        When the loop has no answer: the gain is infinite, or -1 or less.
+    """
+    if not sheet.controller.feedback or process.plant.dead_time:
+        return 0.0
+    way = chain(process.plant, sheet.actuator.lag, sheet.sensor.lag)
+    filtered = 1 if sheet.controller.measurement_filter else 0
+    lags = way.order - len(way.zeros) + filtered
+    gains, time = sheet.controller.parallel(), sheet.controller.filter_time
+    slope = gains.kd if time == 0.0 else 0.0
+    if slope and lags == 0:
+        raise LoopError(
+            "an unfiltered derivative acts on a plant with a direct term, so the effort would be infinite: "
+            "expected controller.filter_time above 0"
+        )
+    if lags > (1 if slope else 0):
+        return 0.0
+    proportional = gains.kp + (gains.kd / time if time else 0.0)
+    gain = sheet.controller.sign * way.gain * (slope or proportional)
+    return _checked_gain(gain / sheet.controller.measurement_filter if filtered else gain, filtered > 0)
+
+
+def _checked_gain(gain: float, filtered: bool) -> float:
+    if gain <= -1.0:
+        raise LoopError(
+            f"effort and measurement depend on each other in the same instant with a loop gain of {gain:g}; "
+            "at -1 or less such a loop has no answer"
+        )
+    if not filtered:
+        return gain
+    if gain < 1.0:
+        return 0.0
+    raise LoopError(
+        f"an unfiltered derivative acts on a plant with a direct term through the measurement filter, with a loop "
+        f"gain of {gain:g} at infinite frequency, which is not simulated from 1 upwards: expected "
+        "controller.filter_time above 0"
+    )
+
+
+def _run(sheet: Sheet, members: Sequence[Member], grid: Grid, gains: Sequence[float]) -> Runs:
+    """Run at one step.
+
+    Sampling reads the measurement before the effort of the same instant acts. A measurement filter of one direct gain
+    times the step makes up for it: a loop of that gain then settles within one sample at the value it has at once.
+    """
+    if not any(gains):
+        return simulate(sheet, members, grid)
+    filter_time = sheet.controller.measurement_filter
+    return simulate(sheet, members, grid, [filter_time or gain * grid.sample_time for gain in gains])
+
+
+def _scales(sheet: Sheet, y: Array) -> tuple[Array, Array]:
+    """Return the size of each run, shape (p, 2, 1), and at each point the largest so far, shape of `y`.
+
+    The size is the reference step, or else how far the output moved in the first half.
+    """
+    moved = np.maximum.accumulate(np.abs(y), axis=-1)
+    size = moved[..., moved.shape[-1] // 2, None].copy()
+    if sheet.trial.reference:
+        size[:, 0] = abs(sheet.trial.reference)
+    return size, np.maximum(moved, size)
+
+
+def _agree(sheet: Sheet, coarse: Array, fine: Array) -> bool:
+    size, scales = _scales(sheet, fine)
+    allowed = np.maximum(AGREEMENT * scales, 2.0 * sheet.sensor.resolution)
+    return bool(((np.abs(fine - coarse) <= allowed) | (scales > _FAR_AWAY * size)).all())
+
+
+def _extrapolated(sheet: Sheet, coarse: Runs, fine: Runs, algebraic: bool) -> Runs:
+    _, scales = _scales(sheet, fine.y[..., ::2])
+    y = _beyond(coarse.y, fine.y[..., ::2], scales)
+    u = _effort(coarse.u, fine.u[..., ::2], fine.limited)
+    if algebraic:
+        u[..., 0] = fine.u[..., 1]
+    return Runs(y, u, fine.limited[..., ::2])
+
+
+def _beyond(coarse: Array, fine: Array, scales: Array) -> Array:
+    """Extrapolate where both runs are about the same, and take the finer one elsewhere."""
+    return np.where(np.abs(fine - coarse) <= 0.1 * scales, 2.0 * fine - coarse, fine)
+
+
+def _effort(coarse: Array, fine: Array, limited: NDArray[np.bool_]) -> Array:
+    """Extrapolate the effort of runs that met no limit; the first value, which may be an impulse, is left."""
+    free = ~limited.any(axis=-1, keepdims=True)
+    u = np.where(free, 2.0 * fine - coarse, fine)
+    u[..., 0] = fine[..., 0]
+    return np.asarray(u)
