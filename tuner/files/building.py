@@ -6,7 +6,7 @@ from typing import Any
 from tuner.files.schema import NONE
 from tuner.model.controller import Controller, DisturbanceFeedforward, Feedforward, Notch
 from tuner.model.loop import Loop, Manipulated, Signal
-from tuner.model.parameters import GAIN_KEYS, Kind, in_section
+from tuner.model.parameters import BLOCKS, GAIN_KEYS, Kind, in_section
 from tuner.model.plant import Plant
 from tuner.model.sheet import Actuator, Sensor, Sheet, Trial
 
@@ -74,16 +74,21 @@ def _blocks(table: Table) -> Table:
     return blocks
 
 
+def _absent_blocks(table: Table) -> Table:
+    """Return what the as-found table says was not there."""
+    return {key: 0.0 if key == "measurement_filter" else None for key in BLOCKS if table.get(key) == NONE}
+
+
 def _as_found(controller: Controller, table: Table) -> Controller:
     """Return the controller with what the as-found table says; gains of another form are not taken over."""
     form = table.get("form", controller.form)
     kept = {f"gain_{i}": 0.0 for i in (1, 2, 3)} if form != controller.form else {}
     gains = {f"gain_{i}": float(table[key]) for i, key in enumerate(GAIN_KEYS[form], 1) if key in table}
-    others = {key: _as_found_value(value) for key, value in table.items() if not _is_gain(key)}
-    return replace(controller, **(kept | gains | others))
-
-
-def _as_found_value(written: Any) -> Any:  # noqa: ANN401 - a value of a TOML file
-    if isinstance(written, str):
-        return None if written == NONE else written
-    return float(written)
+    others = {
+        parameter.name: None if table[parameter.name] == NONE else _value(parameter.kind, table[parameter.name])
+        for parameter in in_section("controller")
+        if parameter.name in table and not _is_gain(parameter.name)
+    }
+    there = {key: block for key, block in table.items() if block != NONE}
+    changes: Table = kept | gains | others | _blocks(there) | _absent_blocks(table)
+    return replace(controller, **changes)

@@ -37,20 +37,30 @@ def check(written: Table) -> Checked:
 def _without_empty_blocks(written: Table) -> Table:
     """Return the tables of a sheet without the empty ones of the controller, which say as much as absent ones."""
     controller = written.get("controller")
-    if not isinstance(controller, dict):
-        return written
-    return written | {"controller": {key: value for key, value in controller.items() if value != {}}}
+    return written | {"controller": _without_empty(controller)} if isinstance(controller, dict) else written
+
+
+def _without_empty(table: Table) -> Table:
+    kept = {key: _without_empty(value) if isinstance(value, dict) else value for key, value in table.items()}
+    return {key: value for key, value in kept.items() if value != {}}
 
 
 def _plant(written: Table, sound: Table, faults: list[Fault]) -> Plant | None:
-    path = table(sound, "controller.disturbance_feedforward").get("expression")
-    key = "controller.disturbance_feedforward.expression"
-    names = (formula_names(path, key, faults) if path is not None else None) or {}
+    paths = _disturbance_paths(sound, faults)
     if not isinstance(written.get("plant"), dict):
         return None
-    plant = read_plant(PlantText(written["plant"], table(sound, "plant"), names), faults)
-    given = {p.name for p in plant.parameters} if plant else set()
-    given |= set(table(written, "plant.parameters"))
-    if plant:
-        faults += [missing_name(key, name, position, given) for name, position in names.items() if name not in given]
+    elsewhere = {name: position for names in paths.values() for name, position in names.items()}
+    plant = read_plant(PlantText(written["plant"], table(sound, "plant"), elsewhere), faults)
+    if plant is None:
+        return None
+    given = {parameter.name for parameter in plant.parameters} | set(table(written, "plant.parameters"))
+    for key, names in paths.items():
+        faults += [missing_name(key, name, place, given) for name, place in names.items() if name not in given]
     return plant
+
+
+def _disturbance_paths(sound: Table, faults: list[Fault]) -> dict[str, dict[str, int]]:
+    """Return the names in the formulas of the disturbance's own path, by the key of the formula."""
+    blocks = ("controller.disturbance_feedforward", "controller.as_found.disturbance_feedforward")
+    keys = {f"{block}.expression": table(sound, block).get("expression") for block in blocks}
+    return {key: formula_names(text, key, faults) or {} for key, text in keys.items() if text is not None}

@@ -59,24 +59,29 @@ def _foreign_gains(written: Table, sound: Table) -> Iterator[Fault]:
 
 
 def _feedforward(sheet: Table) -> Iterator[Fault]:
-    block = table(sheet, "controller.feedforward")
+    for path in ("controller.feedforward", "controller.as_found.feedforward"):
+        yield from _feedforward_at(path, table(sheet, path))
+
+
+def _feedforward_at(path: str, block: Table) -> Iterator[Fault]:
     needed = {"static": "gain", "inverse": "filter_time"}
     for kind, key in needed.items():
         there = key in block
         if block.get("kind") == kind and not there:
-            yield Fault(f"controller.feedforward.{key}", f'a number, for kind = "{kind}"', "nothing")
+            yield Fault(f"{path}.{key}", f'a number, for kind = "{kind}"', "nothing")
         elif block.get("kind") not in (kind, None) and there:
             only = needed[block["kind"]]
-            yield Fault(f"controller.feedforward.{key}", f'{only} alone beside kind = "{block["kind"]}"', f"{key}")
+            yield Fault(f"{path}.{key}", f'{only} alone beside kind = "{block["kind"]}"', f"{key}")
 
 
 def _notch(sheet: Table) -> Iterator[Fault]:
-    frequency = table(sheet, "controller.notch").get("frequency")
+    period: float = table(sheet, "controller").get("sample_time", 0.0)
     for path in ("controller", "controller.as_found"):
-        period = table(sheet, path).get("sample_time", 0.0)
-        if frequency is not None and period > 0 and frequency * period >= pi:
-            top = f"a frequency below pi / {path}.sample_time, {pi / period:.4g}"
-            yield Fault("controller.notch.frequency", top, f"{frequency:g}")
+        period = table(sheet, path).get("sample_time", period)
+        frequency = table(sheet, f"{path}.notch").get("frequency", 0.0)
+        if frequency * period >= pi:
+            top = f"a frequency below pi / sample_time, {pi / period:.4g}"
+            yield Fault(f"{path}.notch.frequency", top, f"{frequency:g}")
 
 
 def _seconds(sheet: Table) -> Iterator[Fault]:

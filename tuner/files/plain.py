@@ -40,7 +40,14 @@ class Leaf:
     shown: bool = False
 
 
-Tree = dict[str, "Leaf | Tree"]
+@dataclass(frozen=True, slots=True)
+class Inherited:
+    """A table that a sheet need not have, for its absence says the same."""
+
+    table: "Tree"
+
+
+Tree = dict[str, "Leaf | Inherited | Tree"]
 
 _SHOWN: Final = ("form", *{key for keys in GAIN_KEYS.values() for key in keys})
 
@@ -80,9 +87,9 @@ def _is_foreign(name: str, controller: Controller) -> bool:
     return any(name in keys for keys in GAIN_KEYS.values()) and name not in GAIN_KEYS[controller.form]
 
 
-def _blocks(controller: Controller) -> Tree:
+def _blocks(controller: Controller) -> dict[str, Tree]:
     names = ("feedforward", "disturbance_feedforward", "notch")
-    blocks: Tree = {
+    blocks = {
         name: _section(f"controller.{name}", block)
         for name in names
         if (block := getattr(controller, name)) is not None
@@ -103,11 +110,18 @@ def _as_found(controller: Controller) -> Tree:
             other_gain = found.form != controller.form and key in GAIN_KEYS[found.form]
             implied = 0.0 if other_gain else _or_none(controller, key)
             table[key] = Leaf(_or_none(found, key), implied, shown=key in _SHOWN)
-    return {"as_found": table}
+    return {"as_found": table | _blocks_found(found, controller)}
+
+
+def _blocks_found(found: Controller, controller: Controller) -> Tree:
+    """Return the blocks of the as-found table; those that are the controller's are implied."""
+    there, now = _blocks(found), _blocks(controller)
+    absent: Tree = {name: Leaf(NONE) for name in now if name not in there}
+    return absent | {name: Inherited(block) if block == now.get(name) else block for name, block in there.items()}
 
 
 def _or_none(controller: Controller, key: str) -> Value:
-    value: Value = getattr(controller, key) if key in ("form", "action") else controller.value(key)
+    value: Value = controller.form if key == "form" else controller.value(key)
     return NONE if value is None else value
 
 

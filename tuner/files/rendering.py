@@ -9,7 +9,7 @@ import tomlkit
 from tomlkit.exceptions import TOMLKitError
 from tomlkit.items import Comment, InlineTable, Integer, Item, Key, Table, Whitespace
 
-from tuner.files.plain import Leaf, Tree, Value, tree
+from tuner.files.plain import Inherited, Leaf, Tree, Value, tree
 from tuner.files.schema import PERCENT
 from tuner.model.parameters import GAIN_KEYS
 from tuner.model.sheet import Sheet
@@ -51,9 +51,12 @@ def _merge(table: _Written, wanted: Tree, path: str) -> None:
         _put_in_order(table, [name for name in wanted if name in table])
 
 
-def _put(table: _Written, name: str, node: Leaf | Tree, path: str) -> None:
+def _put(table: _Written, name: str, node: Leaf | Inherited | Tree, path: str) -> None:
     if isinstance(node, Leaf):
         _put_value(table, name, node)
+    elif isinstance(node, Inherited):
+        if table.get(name):
+            _put(table, name, node.table, path)
     elif not isinstance(table.get(name), MutableMapping):
         _put_table(table, name, node, path)
     else:
@@ -66,17 +69,23 @@ def _put_value(table: _Written, name: str, leaf: Leaf) -> None:
             _add(table, name, _item(leaf.value))
     elif leaf.value is None:
         _take_out(table, name)
+    elif isinstance(table[name], MutableMapping):
+        del table[name]
+        _put_value(table, name, leaf)
     elif not _same(leaf.value, _unwrapped(table[name])):
         table[name] = _in_style_of(leaf.value, table[name])
 
 
 def _put_table(table: _Written, name: str, wanted: Tree, path: str) -> None:
     """Write a table that was not there; a plant parameter that was a mere number stays one if it can."""
-    if name in table and not _beyond_value(wanted):
-        value = wanted["value"]
-        _put_value(table, name, value if isinstance(value, Leaf) else Leaf(None))
-    elif name in table:
+    value = wanted.get("value")
+    if name in table and isinstance(value, Leaf) and not _beyond_value(wanted):
+        _put_value(table, name, value)
+    elif name in table and isinstance(value, Leaf):
         table[name] = _new_table(wanted, path, inline=True)
+    elif name in table:
+        del table[name]
+        _put_table(table, name, wanted, path)
     elif _needed(wanted) or name == "as_found":
         inline = _INLINE.match(path) is not None or isinstance(table, InlineTable)
         _add(table, name, _new_table(wanted, path, inline=inline))
@@ -89,10 +98,13 @@ def _beyond_value(wanted: Tree) -> bool:
 
 def _needed(wanted: Tree) -> bool:
     """Tell whether a sheet without this table would say something else."""
-    return any(
-        node.value is not None and node.value != node.implied if isinstance(node, Leaf) else _needed(node)
-        for node in wanted.values()
-    )
+    return any(_is_needed(node) for node in wanted.values())
+
+
+def _is_needed(node: Leaf | Inherited | Tree) -> bool:
+    if isinstance(node, Leaf):
+        return node.value is not None and node.value != node.implied
+    return not isinstance(node, Inherited) and _needed(node)
 
 
 def _new_table(wanted: Tree, path: str, *, inline: bool) -> Item:

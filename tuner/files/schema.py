@@ -7,7 +7,7 @@ from functools import cache
 from typing import Any, Final
 
 from tuner.model.measures import MEASURES
-from tuner.model.parameters import AS_FOUND_KEYS, PARAMETERS, Kind, Parameter, find
+from tuner.model.parameters import AS_FOUND_KEYS, BLOCKS, PARAMETERS, Kind, Parameter, find
 
 Schema = dict[str, Any]
 
@@ -15,7 +15,7 @@ MOST_NUMBERS: Final = 200
 """Numbers that an array of a plant may hold."""
 
 NONE: Final = "none"
-"""What the as-found table writes for a number of the controller that was not there."""
+"""What the as-found table writes for a number or a block of the controller that was not there."""
 
 PERCENT: Final = r"^\s*[0-9]+(\.[0-9]*)?\s*%\s*$"
 """How a spread in percent is written: "20 %"."""
@@ -93,7 +93,8 @@ def _into(root: Schema, parameter: Parameter) -> None:
 def _as_found(controller: Schema) -> Schema:
     properties = {key: controller[key] for key in AS_FOUND_KEYS}
     absent = {key: _or_none(value) for key, value in properties.items() if _absence_means(key)}
-    return _table("a table [controller.as_found]", properties | absent)
+    blocks = {key: _or_none(controller[key]) for key in BLOCKS}
+    return _table("a table [controller.as_found]", properties | absent | blocks)
 
 
 def _absence_means(key: str) -> bool:

@@ -248,8 +248,11 @@ PARAMETERS: tuple[Parameter, ...] = (
     ),
 )
 
-AS_FOUND_KEYS = ("form", "kp", "ki", "kd", "kc", "ti", "td", "filter_time", "b", "c", "windup_time", "sample_time")
+AS_FOUND_KEYS = tuple(parameter.name for parameter in PARAMETERS if parameter.section == _C)
 """Keys of the controller that the as-found table may repeat; those it leaves out are the controller's."""
+
+BLOCKS = ("feedforward", "disturbance_feedforward", "measurement_filter", "notch")
+"""Tables of the controller, of blocks around the law, that the as-found table may repeat as well."""
 
 GAIN_KEYS: dict[str, tuple[str, str, str]] = {
     "parallel": ("kp", "ki", "kd"),
