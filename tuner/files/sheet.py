@@ -70,6 +70,7 @@ _SYNTAX: Final = {
     "Unclosed array": "',' or ']' in the array",
     "Unclosed inline table": "',' or '}' in the table",
     "Unterminated string": "the quote that ends the text",
+    "Expected \"'": "the quote that ends the text",
     "Unescaped": "a known character after the backslash",
     "Invalid value": 'a value: a number, a "text", true, false, an [array] or a { table }',
     "Invalid date": "a date that exists",
