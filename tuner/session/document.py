@@ -18,10 +18,10 @@ from tuner.session.state import (
     first_state,
     with_disturbance_path,
     with_formula,
+    with_parameter,
     with_plant,
     with_plant_form,
     with_sheet,
-    with_spare,
 )
 from tuner.session.tunings import KeptTuning, Mark, free_name, in_form_or_none, in_words, marks, with_as_found
 
@@ -299,10 +299,16 @@ class Document:
         state = with_disturbance_path(self._history.present, text)
         self._change_checked(state, "Change the disturbance path", merge_key)
 
-    def change_spare(self, spare: PlantParameter) -> None:
-        """Change a parameter that the formula does not use now."""
-        state = with_spare(self._history.present, spare)
-        self._show(self._history.changed(state, f"Change {spare.name}"))
+    def change_parameter(self, parameter: PlantParameter, *, label: str) -> None:
+        """Change a named number of the plant, or one that its formula does not use now.
+
+        Raises
+        ------
+        TrimwrightError
+            When there is no such plant; the present one stays.
+        """
+        state = with_parameter(self._history.present, parameter)
+        self._change_checked(state, label, merge_key=f"parameter {parameter.name}")
 
     def set_plant_form(self, form: PlantForm) -> None:
         """Give the plant in another form; `remark` says so when it is not the same plant there."""
@@ -312,10 +318,9 @@ class Document:
         self._show(self._history.changed(switched.state, f"Give the plant as {form}"), switched.remark)
 
     @property
-    def formula_parameters(self) -> tuple[PlantParameter, ...]:
-        """The parameters of the formula, then those it used once; empty when the plant is no formula."""
-        plant = self.sheet.plant
-        return (*plant.parameters, *self.forms.spare) if isinstance(plant, ExpressionPlant) else ()
+    def spare_parameters(self) -> tuple[PlantParameter, ...]:
+        """The parameters that the formula used once, with their numbers; none when the plant is no formula."""
+        return self.forms.spare if isinstance(self.sheet.plant, ExpressionPlant) else ()
 
     # Files ------------------------------------------------------------------------------------------------------
 

@@ -4,6 +4,7 @@ from dataclasses import replace
 from typing import Any
 
 from tuner.model.controller import DisturbanceFeedforward, Feedforward, Notch
+from tuner.model.measures import Measure
 from tuner.model.parameters import Parameter
 from tuner.model.sheet import Sheet
 
@@ -51,10 +52,22 @@ def with_disturbance_feedforward(sheet: Sheet, formula: str) -> Sheet:
     return replace(sheet, controller=replace(sheet.controller, disturbance_feedforward=path))
 
 
-def unit_of(parameter: Parameter, sheet: Sheet) -> str:
-    """Return the unit of a parameter in the units of a sheet's loop."""
+def with_limit(sheet: Sheet, measure: str, limit: float) -> Sheet:
+    """Return a sheet with a limit on a measure: in its place when there was one, else the last."""
+    limits = dict(sheet.limits) | {measure: limit}
+    return replace(sheet, limits=tuple(limits.items()))
+
+
+def without_limit(sheet: Sheet, measure: str) -> Sheet:
+    """Return a sheet without a limit on a measure."""
+    return replace(sheet, limits=tuple((name, limit) for name, limit in sheet.limits if name != measure))
+
+
+def unit_of(parameter: Parameter | Measure, sheet: Sheet) -> str:
+    """Return the unit of a parameter or a measure in the units of a sheet's loop."""
     loop = sheet.loop
-    return parameter.unit_for(t=loop.time_unit, y=loop.controlled.unit, u=loop.manipulated.unit)
+    y, u = loop.controlled.unit or "1", loop.manipulated.unit or "1"
+    return parameter.unit.format(t=loop.time_unit, y=y, u=u)
 
 
 def _replaced(held: Any, names: list[str], value: object) -> Any:  # noqa: ANN401 # blocks of every kind

@@ -15,6 +15,7 @@ from tuner.model.plant import (
     PlantParameter,
     StateSpacePlant,
     ZeroPolePlant,
+    spread_percent,
 )
 from tuner.session.plant_forms import PlantForm
 from tuner.session.typed import shown
@@ -141,14 +142,6 @@ def _clean_complex(value: complex) -> complex:
     return complex(_clean(value.real), _clean(value.imag))
 
 
-def with_parameter(plant: Plant, parameter: PlantParameter) -> Plant:
-    """Return a plant with one of its named parameters replaced."""
-    if not isinstance(plant, ExpressionPlant | PhysicsPlant):
-        return plant
-    changed = tuple(parameter if other.name == parameter.name else other for other in plant.parameters)
-    return replace(plant, parameters=changed)
-
-
 def with_physics(plant: Plant, name: str) -> PhysicsPlant:
     """Return the physical model of a name; quantities that the present plant has too keep their numbers."""
     from tuner.model.physics import PHYSICS
@@ -157,3 +150,11 @@ def with_physics(plant: Plant, name: str) -> PhysicsPlant:
     quantities = PHYSICS[name].parameters
     fresh = {one.name: PlantParameter(one.name, one.default, one.unit) for one in quantities}
     return PhysicsPlant(name, tuple(present.get(one, fresh[one]) for one in fresh))
+
+
+def with_value(parameter: PlantParameter, value: float) -> PlantParameter:
+    """Return a parameter with another value; a spread in percent goes along, one in numbers stays."""
+    spread = parameter.spread
+    if spread is not None and spread.percent is not None:
+        spread = spread_percent(value, spread.percent)
+    return replace(parameter, value=value, spread=spread)

@@ -2,7 +2,7 @@
 
 from dataclasses import dataclass, field, replace
 
-from tuner.model.plant import ExpressionPlant, Plant, PlantParameter
+from tuner.model.plant import ExpressionPlant, PhysicsPlant, Plant, PlantParameter
 from tuner.model.sheet import Sheet
 from tuner.session.plant_forms import PlantForm, PlantForms, switch
 from tuner.session.tunings import KeptTuning, with_as_found
@@ -89,10 +89,20 @@ def with_disturbance_path(state: State, text: str) -> State:
     return replace(changed, forms=replace(changed.forms, spare=spare))
 
 
-def with_spare(state: State, spare: PlantParameter) -> State:
-    """Return the state with a parameter changed that the formula does not use now."""
-    others = tuple(other for other in state.forms.spare if other.name != spare.name)
-    return replace(state, forms=replace(state.forms, spare=(*others, spare)))
+def with_parameter(state: State, parameter: PlantParameter) -> State:
+    """Return the state with a named number of the plant changed, or one that its formula does not use now.
+
+    Raises
+    ------
+    TrimwrightError
+        When the plant cannot be made.
+    """
+    plant = state.sheet.plant
+    if isinstance(plant, ExpressionPlant | PhysicsPlant) and parameter.name in [one.name for one in plant.parameters]:
+        changed = tuple(parameter if other.name == parameter.name else other for other in plant.parameters)
+        return with_plant(state, replace(plant, parameters=changed))
+    spare = tuple(parameter if other.name == parameter.name else other for other in state.forms.spare)
+    return replace(state, forms=replace(state.forms, spare=spare))
 
 
 def with_plant_form(state: State, form: PlantForm) -> Switched:

@@ -163,6 +163,11 @@ def shown_numbers(values: tuple[float, ...]) -> str:
     return "  ".join(shown(value) for value in values)
 
 
+def shown_rows(matrix: tuple[tuple[float, ...], ...]) -> str:
+    """Return a matrix as it is shown for editing, one row a line."""
+    return "\n".join(shown_numbers(row) for row in matrix)
+
+
 def shown_complex(value: complex) -> str:
     """Return one complex number: "-1 + 2j"."""
     if not value.imag:

@@ -83,6 +83,15 @@ class Intake(QObject, Generic[Value]):
         """Whether something was typed that was not taken."""
         return self._touched or self.fault is not None
 
+    def best(self) -> Value:
+        """Return the value of what is typed where it can be read, though it was not taken; else the last one."""
+        if not self.pending:
+            return self._value
+        try:
+            return self._words.read(self._typist.typed())
+        except TrimwrightError:
+            return self._value
+
     def on_typed(self, *, live: bool) -> None:
         """Note that a key changed the text."""
         self._touched = True

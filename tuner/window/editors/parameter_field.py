@@ -11,27 +11,24 @@ from tuner.session.fields import unit_of, value_at, with_value_at
 from tuner.session.typed import Bounds
 from tuner.window.editors.field import Field
 from tuner.window.editors.intake import Words
+from tuner.window.editors.line_field import Caption, LineField, Source
 from tuner.window.editors.segments import Segments
-from tuner.window.editors.typed_line import TypedLine
 from tuner.window.theme import Theme
 
 
-class NumberField(Field):
+class NumberField(LineField[float | None]):
     """A number of the table, typed; empty stands for its default, which may be none."""
 
     def __init__(self, document: Document, parameter: Parameter, theme: Theme) -> None:
         self._document, self._parameter = document, parameter
-        self.line = TypedLine(theme, self._held(), Words(self._read, typed.shown), self._take)
-        super().__init__(theme, _label(parameter), parameter.sentence, self.line)
-        self.line.intake.path = parameter.path
-        self.line.intake.faulted.connect(self.fault.say)
-        self.line.intake.left.connect(document.release)
+        super().__init__(theme, _caption(parameter), Source(self._held, Words(self._read, typed.shown), self._take))
+        self.intake.left.connect(document.release)
         if _may_be_none(parameter):
             self.line.setPlaceholderText("none")
 
     def refresh(self, *, anew: bool) -> None:
         """Show what the document holds."""
-        self.line.intake.show_value(self._held(), anew=anew)
+        super().refresh(anew=anew)
         self.unit.setText(_unit(self._parameter, self._document))
 
     def _held(self) -> float | None:
@@ -39,10 +36,10 @@ class NumberField(Field):
         return None if value == 0.0 and _zero_is_none(self._parameter) else value
 
     def _read(self, text: str) -> float | None:
+        if not text.strip() and _may_be_none(self._parameter):
+            return None
         if not text.strip() and not self._parameter.required:
             return _default(self._parameter)
-        if not text.strip() and _zero_is_none(self._parameter):
-            return None
         value = typed.number(text, Bounds.of(self._parameter), _unit(self._parameter, self._document))
         return int(value) if self._parameter.kind is Kind.INTEGER else value
 
@@ -53,21 +50,14 @@ class NumberField(Field):
         self._document.edit(changed, label=f"Set {_label(self._parameter)}", merge_key=path)
 
 
-class TextField(Field):
+class TextField(LineField[str]):
     """A text of the table."""
 
     def __init__(self, document: Document, parameter: Parameter, theme: Theme) -> None:
         self._document, self._parameter = document, parameter
-        self.line: TypedLine[str] = TypedLine(theme, self._held(), Words(str, str), self._take)
-        super().__init__(theme, _label(parameter), parameter.sentence, self.line)
-        self.line.intake.path = parameter.path
-        self.line.intake.faulted.connect(self.fault.say)
-        self.line.intake.left.connect(document.release)
+        super().__init__(theme, _caption(parameter), Source(self._held, Words(str, str), self._take))
+        self.intake.left.connect(document.release)
         self.unit.hide()
-
-    def refresh(self, *, anew: bool) -> None:
-        """Show what the document holds."""
-        self.line.intake.show_value(self._held(), anew=anew)
 
     def _held(self) -> str:
         return str(value_at(self._document.sheet, self._parameter.path))
@@ -140,13 +130,17 @@ def _label(parameter: Parameter) -> str:
     return parameter.name.replace("_", " ")
 
 
+def _caption(parameter: Parameter) -> Caption:
+    return Caption(_label(parameter), parameter.sentence, parameter.path)
+
+
 def _unit(parameter: Parameter, document: Document) -> str:
     return unit_of(parameter, document.sheet)
 
 
 def _default(parameter: Parameter) -> float | None:
     default = parameter.default
-    return float(default) if isinstance(default, int | float) else None
+    return default if isinstance(default, int | float) else None
 
 
 def _may_be_none(parameter: Parameter) -> bool:

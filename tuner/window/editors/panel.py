@@ -1,0 +1,124 @@
+"""The column of editors: a list of the blocks, and the page of the chosen one."""
+
+from PySide6.QtCore import Qt, Signal
+from PySide6.QtWidgets import QFrame, QListView, QListWidget, QScrollArea, QStackedWidget, QVBoxLayout, QWidget
+
+from tuner.judge.assessment import Assessment
+from tuner.session.document import Document
+from tuner.window.editors.block_pages import ControllerPage, TablePage, loop_page
+from tuner.window.editors.field import Page
+from tuner.window.editors.limits_page import LimitsPage
+from tuner.window.editors.plant_page import PlantPage
+from tuner.window.theme import Theme
+
+WIDTH = 320
+
+
+class EditorPanel(QWidget):
+    """The editors of all blocks, one in sight; `block_chosen` tells which."""
+
+    block_chosen = Signal(str)
+
+    def __init__(self, document: Document, theme: Theme, parent: QWidget | None = None) -> None:
+        super().__init__(parent)
+        self._document, self._theme = document, theme
+        self._generation = document.generation
+        self.limits = LimitsPage(document, theme)
+        self.plant = PlantPage(document, theme)
+        self.pages: dict[str, Page] = {
+            "Loop": loop_page(document, theme),
+            "Plant": self.plant,
+            "Actuator": TablePage(document, theme, (("", "actuator"),)),
+            "Sensor": TablePage(document, theme, (("", "sensor"),)),
+            "Controller": ControllerPage(document, theme),
+            "Trial": TablePage(document, theme, (("", "trial"),)),
+            "Limits": self.limits,
+        }
+        self.blocks = self._block_list()
+        self._stack = QStackedWidget()
+        for page in self.pages.values():
+            self._stack.addWidget(_scrolled(page))
+        column = QVBoxLayout(self)
+        column.setContentsMargins(0, 0, 0, 0)
+        column.setSpacing(4)
+        column.addWidget(self.blocks)
+        column.addWidget(self._stack, 1)
+        self.blocks.currentTextChanged.connect(self._on_block)
+        self.setMinimumWidth(WIDTH - 20)
+        theme.changed.connect(self._dress)
+        self._dress()
+        self.select("Plant")
+        self.destroyed.connect(document.listen(self.refresh))
+
+    @property
+    def block(self) -> str:
+        """The name of the block whose page is in sight."""
+        return self.blocks.currentItem().text()
+
+    def select(self, block_name: str) -> None:
+        """Show the page of a block, named as in the list; small letters will do.
+
+        Raises
+        ------
+        KeyError
+            When there is no such block.
+        """
+        names = {name.lower(): index for index, name in enumerate(self.pages)}
+        self.blocks.setCurrentRow(names[block_name.lower()])
+
+    def refresh(self) -> None:
+        """Show what the document holds on the page in sight; the others follow when they come in sight."""
+        anew = self._generation != self._document.generation
+        self._generation = self._document.generation
+        if anew:
+            for page in self.pages.values():
+                page.refresh(anew=True)
+        else:
+            self.pages[self.block].refresh(anew=False)
+
+    def show(self, assessment: Assessment | None = None) -> None:
+        """Show an assessment: how the family stands to each limit."""
+        if assessment is None:
+            super().show()
+        else:
+            self.limits.show_assessment(assessment)
+
+    def _block_list(self) -> QListWidget:
+        """Return the list of the blocks, flowing like words in two lines."""
+        blocks = QListWidget()
+        blocks.setFlow(QListView.Flow.LeftToRight)
+        blocks.setWrapping(True)
+        blocks.setResizeMode(QListView.ResizeMode.Adjust)
+        blocks.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
+        blocks.setVerticalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
+        blocks.setAccessibleName("blocks of the loop")
+        blocks.addItems(list(self.pages))
+        blocks.setFixedHeight(60)
+        return blocks
+
+    def _on_block(self, name: str) -> None:
+        self._stack.setCurrentIndex(list(self.pages).index(name))
+        self.pages[name].refresh(anew=False)
+        self.block_chosen.emit(name)
+
+    def _dress(self) -> None:
+        colours = self._theme.palette.colours
+        self.blocks.setStyleSheet(
+            f"QListWidget {{ background: {colours['page']}; border: 0; padding: 0 4px; outline: 0; }}"
+            f"QListWidget:focus {{ border: 0; }}"
+            f"QListWidget::item {{ color: {colours['quiet']}; padding: 4px 8px; margin: 0; }}"
+            f"QListWidget::item:hover {{ background: {colours['hover']}; }}"
+            f"QListWidget::item:selected {{ color: {colours['ink']}; background: {colours['page']};"
+            f" border-bottom: 2px solid {colours['nominal']}; }}"
+            f"QListWidget::item:selected:focus {{ background: {colours['hover']}; }}"
+        )
+
+
+def _scrolled(page: Page) -> QScrollArea:
+    area = QScrollArea()
+    area.setFrameShape(QFrame.Shape.NoFrame)
+    area.setWidgetResizable(True)
+    area.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
+    area.setFocusPolicy(Qt.FocusPolicy.NoFocus)
+    area.setWidget(page)
+    return area
