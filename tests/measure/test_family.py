@@ -101,3 +101,22 @@ def test_an_output_that_runs_away_at_a_limit_is_not_measured() -> None:
 
     assert found.values["overshoot"] is None
     assert found.reasons["overshoot"] == "the output runs away while a limit holds the effort"
+
+
+def test_an_output_held_where_it_ran_away_is_not_measured() -> None:
+    """Also when the run was stopped far away long before its end."""
+    held = pair(lambda t: np.where(t > 30.0, 1e13, t), lambda t: np.where(t > 30.0, 1e13, t), linear=False)
+
+    found = measure_trials(sheet(), [held], [True], [FinalValues(10.0, 0.0)])[0]
+
+    assert set(found.reasons.values()) == {"the output runs away while a limit holds the effort"}
+
+
+def test_an_output_that_a_limit_holds_short_of_the_reference_is_measured() -> None:
+    """An actuator that is too small leaves an error; that is a measure, not a runaway."""
+    short = pair(lambda t: 0.5 * rise(t), lambda t: -0.7 * rise(t), linear=False)
+
+    found = measure_trials(sheet(), [short], [True], [FinalValues(10.0, 0.0)])[0]
+
+    assert found.values["steady_state_error"] == pytest.approx(50.0, abs=0.01)
+    assert found.values["disturbance_peak"] == pytest.approx(7.0, abs=0.01)

@@ -4,6 +4,7 @@ from collections.abc import Mapping
 from dataclasses import dataclass, field
 from typing import Literal
 
+from tuner.simulate.margins import Margins
 from tuner.simulate.traces import ComplexArray, Traces
 
 Verdict = Literal["met", "missed", "unstable"]
@@ -50,6 +51,8 @@ class MemberResult:
         Where the output ends in each run, deviation; None when the loop is unstable or the run has no step.
     notes : tuple of str
         What else the reader must know about this plant's loop; one sentence each.
+    margins : Margins or None
+        With the frequencies at which they are taken; None where the loop is unstable or not closed.
     """
 
     name: str
@@ -61,6 +64,7 @@ class MemberResult:
     final_reference: float | None = None
     final_disturbance: float | None = None
     notes: tuple[str, ...] = ()
+    margins: Margins | None = None
 
 
 @dataclass(frozen=True, slots=True)

@@ -46,11 +46,22 @@ class Edge:
 
 @dataclass(frozen=True, slots=True)
 class Runaway:
-    """The rightmost pole of the plant that runs away fastest: the plant, growth and frequency per time unit."""
+    """The rightmost pole of the plant that runs away fastest.
+
+    Parameters
+    ----------
+    plant : str
+        In words.
+    growth, frequency : float
+        Real and imaginary part, per time unit.
+    reason : str
+        Why the loop is unstable, where no pole says it.
+    """
 
     plant: str
     growth: float
     frequency: float
+    reason: str = ""
 
 
 def instability(sheet: Sheet, runaway: Runaway, is_stable: IsStable) -> Instability:
@@ -126,6 +137,8 @@ def _motion(sheet: Sheet, runaway: Runaway, *, standing: bool) -> str:
     unit = sheet.loop.time_unit
     plant = "at the nominal plant" if runaway.plant == "nominal" else f"with {runaway.plant}"
     rate = f" at {quantity(runaway.frequency, f'rad/{unit}')}" if runaway.frequency else ""
+    if standing and runaway.reason:
+        return f"{runaway.reason} {plant}"
     if standing:
         return f"{'swings on' if rate else 'drifts off'} without end{rate} {plant}"
     growth = quantity(1.0 / runaway.growth, unit)

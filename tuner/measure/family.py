@@ -101,7 +101,9 @@ def _reference(
         return
     continuous = controller.sample_time == 0.0
     infinite = continuous and controller.filter_time == 0.0 and controller.c * controller.parallel().kd > 0.0
-    for runs in stacked([pair.reference for pair in traces], [exact.reference for exact in final], stable):
+    for runs in stacked(
+        [pair.reference for pair in traces], [exact.reference for exact in final], stable, abs(trial.reference)
+    ):
         readings = reference_readings(runs, trial.reference, trial.settling_band)
         readings |= effort_readings(runs, smooth=continuous, infinite=infinite and controller.feedback)
         _hand_out(runs, readings, found)
@@ -132,7 +134,12 @@ def _disturbance(
     if not trial.disturbance:
         _nowhere(found, stable, DISTURBANCE, NO_DISTURBANCE)
         return
-    for runs in stacked([pair.disturbance for pair in traces], [exact.disturbance for exact in final], stable):
+    for runs in stacked(
+        [pair.disturbance for pair in traces],
+        [exact.disturbance for exact in final],
+        stable,
+        abs(trial.reference) or 1.0,
+    ):
         _hand_out(runs, disturbance_readings(runs, trial.settling_band), found)
         for row, member in enumerate(runs.members.tolist()):
             if runs.astray[row]:

@@ -1,10 +1,17 @@
 """Where the output of a linear, stable loop ends, from the static gains around it."""
 
+from collections.abc import Sequence
 from dataclasses import dataclass
 from math import isinf, nan
 
 from tuner.model.controller import Controller
-from tuner.model.sheet import Trial
+from tuner.model.family import Member
+from tuner.model.sheet import Sheet, Trial
+from tuner.simulate.algebra import series
+from tuner.simulate.batch import nominal
+from tuner.simulate.feedforward import disturbance_filter, reference_filter
+from tuner.simulate.linear import lag
+from tuner.simulate.wiring import processes
 
 
 @dataclass(frozen=True, slots=True)
@@ -35,6 +42,36 @@ class FinalValues:
     disturbance: float
 
 
+def family_final_values(sheet: Sheet, members: Sequence[Member]) -> tuple[FinalValues, ...]:
+    """Return the exact final values of each plant's loop, should it be stable and stay linear."""
+    controller, trial = sheet.controller, sheet.trial
+    if has_integral(controller):
+        return (FinalValues(trial.reference, 0.0),) * len(members)
+    forward, compensation = _feedforward(sheet)
+    gains = (
+        StaticGains(plant.static_gain(), path.static_gain() if path is not None else None, forward, compensation)
+        for plant, path in processes(sheet, members)
+    )
+    return tuple(final_values(controller, trial, static) for static in gains)
+
+
+def has_integral(controller: Controller) -> bool:
+    """Return whether the feedback drives the error to zero."""
+    return controller.feedback and controller.parallel().ki > 0.0
+
+
+def _feedforward(sheet: Sheet) -> tuple[float, float]:
+    """Return the static gains from the reference and from a measured disturbance to the effort."""
+    controller = sheet.controller
+    if controller.feedforward is None and controller.disturbance_feedforward is None:
+        return 0.0, 0.0
+    plant, path = nominal(sheet)
+    process = series(lag(sheet.actuator.lag), plant)
+    forward = reference_filter(controller, process)
+    compensation = disturbance_filter(path, process) if path is not None else None
+    return (forward.static_gain() if forward else 0.0, compensation.static_gain() if compensation else 0.0)
+
+
 def final_values(controller: Controller, trial: Trial, static: StaticGains) -> FinalValues:
     """Return the exact final values of a stable loop, by the final value theorem.
 
@@ -43,7 +80,7 @@ def final_values(controller: Controller, trial: Trial, static: StaticGains) -> F
     y = G (K b + F) r / (1 + G K) and y = (P + G H) d / (1 + G K), with their limits for an integrating plant.
     """
     gains = controller.parallel()
-    if controller.feedback and gains.ki:
+    if has_integral(controller):
         return FinalValues(trial.reference, 0.0)
     gain = controller.sign * gains.kp if controller.feedback else 0.0
     forward = gain * controller.b + static.feedforward

@@ -12,6 +12,9 @@ from tuner.simulate.traces import Trace
 LAST_SHARE = 0.1
 """Share of a run, at its end, whose mean is the final value when there is no exact one."""
 
+FAR_AWAY = 1e9
+"""An output so many times the reference step has run away, wherever it is held then."""
+
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Runs:
@@ -41,21 +44,29 @@ class Runs:
     astray: NDArray[np.bool_]
 
 
-def stacked(traces: Sequence[Trace], exact: Sequence[float], stable: Sequence[bool]) -> Iterator[Runs]:
-    """Return the runs of the stable plants, those with the same grid together; `exact` holds exact final values."""
+def stacked(traces: Sequence[Trace], exact: Sequence[float], stable: Sequence[bool], size: float) -> Iterator[Runs]:
+    """Return the runs of the stable plants, those with the same grid together.
+
+    Parameters
+    ----------
+    exact : sequence of float
+        Exact final values, NaN where there is none.
+    size : float
+        What an output is like in size, to tell a large one from one that has run away.
+    """
     groups: dict[tuple[int, float], list[int]] = {}
     for index, trace in enumerate(traces):
         if stable[index]:
             groups.setdefault((len(trace.t), float(trace.t[-1])), []).append(index)
     for members in groups.values():
-        yield _stack(np.array(members), [traces[k] for k in members], np.array([exact[k] for k in members]))
+        yield _stack(np.array(members), [traces[k] for k in members], np.array([exact[k] for k in members]), size)
 
 
-def _stack(members: Indices, traces: Sequence[Trace], exact: Array) -> Runs:
+def _stack(members: Indices, traces: Sequence[Trace], exact: Array, size: float) -> Runs:
     t = traces[0].t
     y = np.stack([trace.y for trace in traces])
     linear = np.array([trace.linear for trace in traces])
-    astray = ~linear & _runs_away(y, np.array([trace.r[-1] for trace in traces]))
+    astray = ~linear & _runs_away(y, np.array([trace.r[-1] for trace in traces]), size)
     y = np.where(astray[:, None], 0.0, y)
     tail = y[:, t >= t[-1] - LAST_SHARE * (t[-1] - t[0])]
     return Runs(
@@ -69,13 +80,12 @@ def _stack(members: Indices, traces: Sequence[Trace], exact: Array) -> Runs:
     )
 
 
-def _runs_away(y: Array, reference: Array) -> NDArray[np.bool_]:
-    """Return which outputs are not finite, or end farther from the reference than they ever were and still leave."""
+def _runs_away(y: Array, reference: Array, size: float) -> NDArray[np.bool_]:
+    """Return which outputs are far out of bounds, or end farther from the reference than ever and still leave it."""
     error = np.abs(y - reference[:, None])
     end = error[:, -1]
-    with np.errstate(invalid="ignore"):
-        leaves: NDArray[np.bool_] = (
-            (end > error[:, 0]) & (end >= error.max(axis=1)) & (end > 2.0 * error[:, y.shape[1] // 2])
-        )
-    broken: NDArray[np.bool_] = np.logical_not(np.isfinite(y).all(axis=1))
-    return np.logical_or(broken, leaves)
+    leaves: NDArray[np.bool_] = (
+        (end > error[:, 0]) & (end >= error.max(axis=1)) & (end > 2.0 * error[:, y.shape[1] // 2])
+    )
+    beyond: NDArray[np.bool_] = np.logical_not(end <= FAR_AWAY * size)
+    return beyond | leaves
