@@ -24,6 +24,13 @@ def refuse_folder(folder: Path, files: Sequence[str], others: Sequence[str], *, 
     DeliveryError
         When it is a file, or files would be overwritten that may not be.
     """
+    try:
+        _refuse_files(folder, files, others, overwrite=overwrite)
+    except OSError as error:
+        raise DeliveryError(f"{folder}: cannot be looked into: {error.strerror}") from error
+
+
+def _refuse_files(folder: Path, files: Sequence[str], others: Sequence[str], *, overwrite: bool) -> None:
     if folder.exists() and not folder.is_dir():
         raise DeliveryError(f"{folder}: expected a folder, found a file")
     there = [name for name in files if (folder / name).exists()]

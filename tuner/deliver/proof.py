@@ -97,13 +97,15 @@ def call(command: Sequence[str | Path]) -> subprocess.CompletedProcess[str]:
     Raises
     ------
     DeliveryError
-        When it does not come to an end.
+        When it cannot be started, or does not come to an end.
     """
     words = [str(word) for word in command]
     try:
         return subprocess.run(words, capture_output=True, text=True, errors="replace", timeout=_PATIENCE, check=False)
     except subprocess.TimeoutExpired as error:
         raise DeliveryError(f"{words[0]}: did not end within {_PATIENCE:g} s") from error
+    except OSError as error:
+        raise DeliveryError(f"{words[0]}: cannot be run: {error.strerror}") from error
 
 
 def _difference(expected: Outcome, found: Outcome) -> float:

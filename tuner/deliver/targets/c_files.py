@@ -54,7 +54,7 @@ def _working(work: Path) -> Iterator[str]:
 def _runs(program: Path) -> bool:
     try:
         return call([program]).returncode == 0
-    except OSError:  # such as a temporary folder from which nothing may be run
+    except DeliveryError:  # such as a temporary folder from which nothing may be run
         return False
 
 

@@ -6,7 +6,7 @@ from textwrap import fill as wrap
 
 from tuner.deliver import words
 from tuner.deliver.excitation import Recording
-from tuner.deliver.proof import Proof, compared, run
+from tuner.deliver.proof import Proof, compared, not_run, run
 from tuner.deliver.specification import Specification
 from tuner.deliver.summary import banner, head, printable
 from tuner.deliver.target import Target, fill, template
@@ -45,6 +45,8 @@ def write(specification: Specification) -> dict[str, str]:
 def prove(folder: Path, work: Path, specification: Specification, recording: Recording) -> tuple[Proof, ...]:
     """Run controller.py in a bare interpreter: isolated, without site packages."""
     del specification
+    if not sys.executable:
+        return (not_run(_FILE, "no Python interpreter was found"),)
     harness = work / "harness.py"
     harness.write_text(template("harness.py"), encoding="utf-8")
     found = run([sys.executable, "-I", "-S", harness, folder / _FILE], recording, work)

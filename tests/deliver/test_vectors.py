@@ -1,0 +1,58 @@
+"""The samples with known answers that every file carries."""
+
+from math import isfinite, isinf, isnan
+
+import pytest
+from hypothesis import given, settings
+
+from tests.deliver.branches import evaluate, every_way
+from tests.deliver.samples import BARE, FULL, OPEN, controllers, specification
+from tuner.deliver.reference import Before, Flags, Sample
+from tuner.deliver.vectors import Spoiled, spoil
+from tuner.law import pid
+from tuner.law.constants import UNLIMITED
+from tuner.law.translate import read
+from tuner.model.sheet import Sheet
+
+
+def test_rows_lead_through_every_branch_of_the_law(monkeypatch: pytest.MonkeyPatch) -> None:
+    """With limits in value and rate, each choice in the law goes both ways within the two hundred rows."""
+    law = read(pid.law)
+    ways: set[tuple[str, bool]] = set()
+    monkeypatch.setattr(pid, "law", lambda *arguments: evaluate(law, arguments, ways))
+    assert len(specification(FULL).rows) == 200
+    assert every_way(law.body) - ways == set()
+
+
+@given(sheet=controllers())
+@settings(max_examples=40)
+def test_limits_that_exist_are_touched_and_kept(sheet: Sheet) -> None:
+    """Whatever the gains, every row is finite and short, and the limits that exist are reached from inside."""
+    made = specification(sheet)
+    constants = made.constants
+    efforts = [row.outcome.effort - constants.resting_effort for row in made.rows]
+    assert all(isfinite(number) for row in made.rows for number in (*row.sample, row.outcome.effort))
+    assert all(constants.low - 1e-9 <= effort <= constants.high + 1e-9 for effort in efforts)
+    limited = any(row.outcome.flags & Flags.LIMITED for row in made.rows)
+    bounded = constants.high < UNLIMITED or constants.low > -UNLIMITED or constants.rate_step < UNLIMITED
+    assert limited == bounded
+
+
+@pytest.mark.parametrize("sheet", [FULL, BARE, OPEN])
+def test_rows_hold_every_switch_and_every_fault(sheet: Sheet) -> None:
+    """Manual, automatic, reset, and each kind of unusable number, with the flag raised right then."""
+    rows = specification(sheet).rows
+    assert {row.sample.before for row in rows} == set(Before)
+    assert {row.spoiled for row in rows} == set(Spoiled)
+    assert all(bool(row.outcome.flags & Flags.FAULT) == (row.spoiled != Spoiled.NOTHING) for row in rows)
+    assert any(row.outcome.flags & Flags.MANUAL for row in rows)
+
+
+def test_what_is_spoilt_is_not_finite() -> None:
+    """Each kind spoils the one number it names."""
+    sample = Sample(Before.NOTHING, 1.0, 2.0, 3.0)
+    assert isnan(spoil(sample, Spoiled.MEASUREMENT_NAN).measurement)
+    assert isinf(spoil(sample, Spoiled.REFERENCE_INFINITE).reference)
+    assert spoil(sample, Spoiled.MEASUREMENT_MINUS_INFINITE).measurement == -float("inf")
+    assert isnan(spoil(sample, Spoiled.VALUE_NAN).value)
+    assert spoil(sample, Spoiled.NOTHING) == sample
