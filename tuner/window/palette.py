@@ -38,7 +38,7 @@ def palette(shade: Shade) -> Palette:
 @cache
 def sizes() -> Sizes:
     """Return the sizes of the theme file."""
-    return Sizes(**_theme_file()["sizes"])
+    return Sizes(**{name: int(value) for name, value in _theme_file()["sizes"].items()})
 
 
 def contrast(one: str, other: str) -> float:

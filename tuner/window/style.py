@@ -10,33 +10,33 @@ QWidget[voice="quiet"] {{ color: {quiet}; }}
 QMainWindow::separator {{ background: {line}; width: 1px; height: 1px; }}
 QSplitter::handle {{ background: {page}; }}
 QSplitter::handle:hover, QSplitter::handle:focus {{ background: {line}; }}
-QToolTip {{ background: {field}; color: {ink}; border: 1px solid {line}; padding: {grid}px; }}
-QMenuBar {{ background: {page}; padding: 0 {grid}px; }}
-QMenuBar::item {{ padding: {grid}px {grid2}px; background: transparent; }}
+QToolTip {{ background: {field}; color: {ink}; border: 1px solid {line}; padding: {step}px; }}
+QMenuBar {{ background: {page}; padding: 0 {step}px; }}
+QMenuBar::item {{ padding: {step}px {step2}px; background: transparent; }}
 QMenuBar::item:selected, QMenu::item:selected {{ background: {hover}; }}
-QMenu {{ background: {field}; border: 1px solid {line}; padding: {grid}px 0; }}
-QMenu::item {{ padding: {grid}px {grid6}px; background: transparent; }}
+QMenu {{ background: {field}; border: 1px solid {line}; padding: {step}px 0; }}
+QMenu::item {{ padding: {step}px {step6}px; background: transparent; }}
 QMenu::item:disabled, QMenuBar::item:disabled {{ color: {kept_word}; }}
-QMenu::separator {{ height: 1px; background: {line}; margin: {grid}px 0; }}
+QMenu::separator {{ height: 1px; background: {line}; margin: {step}px 0; }}
 QLineEdit, QPlainTextEdit, QTextEdit, QListWidget, QAbstractSpinBox, QComboBox {{
-    background: {field}; border: 1px solid {line}; border-radius: 2px; padding: 2px {grid}px;
+    background: {field}; border: 1px solid {line}; border-radius: 2px; padding: 2px {step}px;
     selection-background-color: {nominal_word}; selection-color: {on_accent}; }}
 QLineEdit:focus, QPlainTextEdit:focus, QTextEdit:focus, QListWidget:focus, QAbstractSpinBox:focus, QComboBox:focus {{
     border: 1px solid {nominal}; }}
-QComboBox::drop-down {{ border: 0; width: {grid4}px; }}
+QComboBox::drop-down {{ border: 0; width: {step4}px; }}
 QComboBox QAbstractItemView {{ background: {field}; border: 1px solid {line};
     selection-background-color: {hover}; selection-color: {ink}; }}
 QPushButton, QToolButton {{ background: {field}; border: 1px solid {line}; border-radius: 2px;
-    padding: {grid}px {grid3}px; }}
-QToolButton {{ padding: 2px {grid}px; }}
+    padding: {step}px {step3}px; }}
+QToolButton {{ padding: 2px {step}px; }}
 QPushButton:hover, QToolButton:hover {{ background: {hover}; }}
 QPushButton:focus, QToolButton:focus {{ border: 1px solid {nominal}; }}
 QPushButton:default {{ background: {nominal_word}; color: {on_accent}; border: 1px solid {nominal_word}; }}
 QPushButton:disabled, QToolButton:disabled {{ color: {kept_word}; background: {page}; border: 1px solid {line}; }}
 QScrollArea {{ border: 0; }}
-QScrollBar:vertical {{ background: {page}; width: {grid2}px; margin: 0; }}
-QScrollBar:horizontal {{ background: {page}; height: {grid2}px; margin: 0; }}
-QScrollBar::handle {{ background: {line}; border-radius: 2px; min-height: {grid6}px; min-width: {grid6}px; }}
+QScrollBar:vertical {{ background: {page}; width: {step2}px; margin: 0; }}
+QScrollBar:horizontal {{ background: {page}; height: {step2}px; margin: 0; }}
+QScrollBar::handle {{ background: {line}; border-radius: 2px; min-height: {step6}px; min-width: {step6}px; }}
 QScrollBar::handle:hover {{ background: {kept}; }}
 QScrollBar::add-line, QScrollBar::sub-line {{ width: 0; height: 0; }}
 QScrollBar::add-page, QScrollBar::sub-page {{ background: transparent; }}
@@ -48,7 +48,7 @@ QStatusBar::item {{ border: 0; }}
 def style_sheet(palette: Palette) -> str:
     """Return the style sheet of the whole application in a palette."""
     grid = sizes().grid
-    steps = {"grid": grid} | {f"grid{count}": count * grid for count in (2, 3, 4, 6)}
+    steps = {"step": grid} | {f"step{count}": count * grid for count in (2, 3, 4, 6)}
     return _SHEET.format(**palette.colours, **steps)
 
 

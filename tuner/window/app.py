@@ -1,0 +1,106 @@
+"""Opens the window; the one entry of this room."""
+
+import sys
+from pathlib import Path
+
+from PySide6.QtCore import QTimer
+from PySide6.QtGui import QCloseEvent, QIcon
+from PySide6.QtWidgets import QApplication
+
+from tuner.errors import TrimwrightError
+from tuner.judge.assessment import Assessment
+from tuner.judge.overlay import Overlay
+from tuner.model.sheet import Sheet
+from tuner.places import keep_compiled_kernels, resources, sample_plants
+from tuner.session.document import Document
+from tuner.window import faults, memory
+from tuner.window.asking import Asking
+from tuner.window.commands import Commands
+from tuner.window.editors import build_editors
+from tuner.window.main_window import MainWindow
+from tuner.window.menus import Menus
+from tuner.window.rulers import build_rulers
+from tuner.window.sheet_files import SheetFiles
+from tuner.window.theme import CHOICES, Theme
+from tuner.window.worker import Assessor
+
+_FIRST_SIZE = (1440, 900)
+_EXAMPLE = "heater.toml"
+
+
+def open_window(path: Path | None) -> int:
+    """Open the window on a tuning sheet, or on the built-in example, and run until it is closed.
+
+    Returns the exit status.
+
+    Raises
+    ------
+    SheetError
+        With every fault of the file, before any window is shown.
+    """
+    keep_compiled_kernels()
+    document = opened(path)
+    application = QApplication.instance() or QApplication(sys.argv[:1])
+    if not isinstance(application, QApplication):
+        raise TrimwrightError("a program without windows runs in this process already")
+    window = built(application, document)
+    window.show()
+    window.start()
+    return application.exec()
+
+
+def opened(path: Path | None) -> Document:
+    """Return the document of a sheet; a sample that comes with the program becomes a new sheet, without a file."""
+    source = path or sample_plants() / _EXAMPLE
+    if source.resolve().parent != sample_plants().resolve():
+        return Document.from_file(source)
+    from tuner.files import sheet as files
+
+    return Document(files.read(source), None, source.read_text(encoding="utf-8"))
+
+
+def built(application: QApplication, document: Document, asking: Asking | None = None) -> MainWindow:
+    """Return the window of a document, wired and dressed, not shown yet; what it remembers is where it stood before."""
+    remembered = memory.recall()
+    theme = Theme(next((choice for choice in CHOICES if choice == remembered.theme), "desktop"))
+    theme.dress(application)
+    application.setApplicationName("Trimwright")
+    application.setWindowIcon(QIcon(str(resources() / "icons" / "trimwright.svg")))
+    assessor = Assessor(_judge, _draw)
+    window = MainWindow(document, theme, assessor, build_editors(document, theme), build_rulers(document, theme))
+    window.resize(*_FIRST_SIZE)
+    window.restore_layout(remembered)
+    wire(window, asking or Asking(window))
+    application.aboutToQuit.connect(assessor.close)
+    return window
+
+
+def wire(window: MainWindow, asking: Asking) -> Menus:
+    """Give a window its menus, its files and its manners on closing."""
+    files = SheetFiles(window.document, asking)
+    menus = Menus(window, files, Commands(window, asking))
+    window.dropped.connect(files.open_path)
+    window.closing.connect(lambda event: _close(window, files, event))
+    log = faults.keep_log()
+    faults.tell_faults(lambda sentence: QTimer.singleShot(0, lambda: window.say_fault(f"{sentence} See {log}.")))
+    return menus
+
+
+def _close(window: MainWindow, files: SheetFiles, event: QCloseEvent) -> None:
+    """Let the window close once nothing would be lost, and remember how it stood."""
+    if files.may_leave():
+        memory.remember(window.layout_memory())
+    else:
+        event.ignore()
+
+
+def _judge(sheet: Sheet, size: int) -> Assessment:
+    from tuner.assess import assess
+
+    return assess(sheet, size)
+
+
+def _draw(sheet: Sheet, assessment: Assessment) -> Overlay:
+    from tuner.judge.overlay import overlay
+
+    return overlay(sheet, assessment)

@@ -1,0 +1,211 @@
+"""The window: puts the views in their places, sends every change to the worker, and its answers to the views."""
+
+from pathlib import Path
+
+from PySide6.QtCore import QByteArray, Qt, QTimer, Signal
+from PySide6.QtGui import QCloseEvent, QDragEnterEvent, QDropEvent
+from PySide6.QtWidgets import QMainWindow, QScrollArea, QSplitter, QVBoxLayout, QWidget
+
+from tuner.session.document import Document
+from tuner.window.editors.panel import EditorPanel
+from tuner.window.elided import ElidedLabel
+from tuner.window.memory import Memory
+from tuner.window.plot_grid import PlotGrid
+from tuner.window.ribbon import Ribbon
+from tuner.window.rulers.panel import RulerPanel
+from tuner.window.shown import Failure, Request, Shown
+from tuner.window.theme import Theme
+from tuner.window.worker import Assessor
+
+SMALLEST = (960, 600)
+_EDITOR_WIDTH = 272
+_ASSESSING = "The loop is still being assessed; try again in a moment."
+
+
+class MainWindow(QMainWindow):
+    """The whole window of one document.
+
+    Parameters
+    ----------
+    document : Document
+        What is open.
+    theme : Theme
+        The look.
+    assessor : Assessor
+        Answers what the document asks; the window closes it when it closes.
+    editors, rulers : QWidget
+        The views that the hand works on.
+    """
+
+    dropped = Signal(object)
+    """Path of a file dropped on the window."""
+    closing = Signal(object)
+    """The `QCloseEvent`, to be ignored by whoever has a reason."""
+
+    def __init__(
+        self, document: Document, theme: Theme, assessor: Assessor, editors: EditorPanel, rulers: RulerPanel
+    ) -> None:
+        super().__init__()
+        self.document, self.theme, self.assessor = document, theme, assessor
+        self.editors, self.rulers = editors, rulers
+        self.ribbon, self.plots, self.notes = Ribbon(theme), PlotGrid(theme), ElidedLabel()
+        self.shown: Shown | None = None
+        self._asked = 0
+        self._requested: object = None
+        self._why = _ASSESSING
+        self.setMinimumSize(*SMALLEST)
+        self.setAcceptDrops(True)
+        self._arrange()
+        self._connect()
+        self._show_name()
+
+    # What happens -----------------------------------------------------------------------------------------------
+
+    def start(self) -> None:
+        """Ask for the first answer, once the window has been painted."""
+        QTimer.singleShot(0, self._document_changed)
+
+    def closeEvent(self, event: QCloseEvent) -> None:
+        """Let others object, else end the worker and wait for it."""
+        event.accept()
+        self.closing.emit(event)
+        if event.isAccepted():
+            self._stop_listening()
+            self.assessor.close()
+
+    def dragEnterEvent(self, event: QDragEnterEvent) -> None:
+        """Take files."""
+        if event.mimeData().hasUrls():
+            event.acceptProposedAction()
+
+    def dropEvent(self, event: QDropEvent) -> None:
+        """Say which file was dropped."""
+        for url in event.mimeData().urls()[:1]:
+            self.dropped.emit(Path(url.toLocalFile()))
+
+    def _document_changed(self) -> None:
+        """Show the name of what is open, and ask for an answer when what decides it has changed."""
+        self._show_name()
+        wanted = (self.document.sheet, self.document.kept)
+        if wanted == self._requested:
+            return
+        self._requested = wanted
+        self._asked += 1
+        self._why = _ASSESSING
+        self.assessor.submit(Request(self._asked, *wanted))
+
+    def _answered(self, shown: Shown) -> None:
+        """Show an answer, everywhere; one that gives no verdict only in the plots."""
+        self.shown = shown
+        self.plots.show(shown)
+        if shown.whole:
+            self.ribbon.show(shown)
+            self.editors.show(shown.assessment)
+            self.rulers.show(shown.assessment)
+            self._say_notes(shown.assessment.notes)
+
+    def _failed(self, failure: Failure) -> None:
+        """Say why there is no answer; the last curves stay, greyed."""
+        if failure.number < self._asked:
+            return
+        self._why = failure.sentence
+        self.ribbon.fail(failure.sentence)
+        self.plots.show_stale()
+        self.plots.say_empty(failure.sentence)
+
+    def why_no_verdict(self) -> str:
+        """Return why there is no verdict on the sheet as it is now."""
+        return self._why
+
+    def say_fault(self, sentence: str) -> None:
+        """Say what went wrong in the program itself, in the line of notes."""
+        self.notes.setText(sentence)
+        self.notes.setToolTip(sentence)
+
+    def _say_notes(self, notes: tuple[str, ...]) -> None:
+        self.notes.setText("  ".join(notes))
+
+    def _show_name(self) -> None:
+        path = self.document.path
+        name = path.name if path else "not saved yet"
+        self.setWindowTitle(f"{self.document.sheet.loop.title}: {name}[*] - Trimwright")
+        self.setWindowFilePath(str(path or ""))
+        self.setWindowModified(self.document.dirty)
+
+    # Layout -----------------------------------------------------------------------------------------------------
+
+    def _arrange(self) -> None:
+        self.across = _splitter(Qt.Orientation.Horizontal, self.editors, self.plots.widget)
+        self.across.setStretchFactor(1, 1)
+        self.across.setSizes([_EDITOR_WIDTH, 1000])
+        self.upwards = _splitter(Qt.Orientation.Vertical, self.across, _scrolled(self.rulers))
+        self.upwards.setStretchFactor(0, 1)
+        self.upwards.setSizes([1000, 184])
+        self.notes.setProperty("voice", "quiet")
+        self.notes.setAccessibleName("Notes")
+        self.notes.setContentsMargins(12, 4, 12, 4)
+        self.notes.setFont(self.theme.font("small"))
+        whole = QWidget()
+        column = QVBoxLayout(whole)
+        column.setContentsMargins(0, 0, 0, 0)
+        column.setSpacing(0)
+        column.addWidget(self.ribbon.widget)
+        column.addWidget(self.upwards, 1)
+        column.addWidget(self.notes)
+        self.setCentralWidget(whole)
+
+    def _connect(self) -> None:
+        self._stop_listening = self.document.listen(self._document_changed)
+        self.assessor.answered.connect(self._answered)
+        self.assessor.failed.connect(self._failed)
+        self.rulers.dragging_started.connect(lambda: self.plots.hold(True))
+        self.rulers.dragging_finished.connect(lambda: self.plots.hold(False))
+
+    def layout_memory(self) -> Memory:
+        """Return how the window stands and how its room is divided."""
+        states = {name: _text(splitter.saveState()) for name, splitter in self._splitters().items()}
+        return Memory(geometry=_text(self.saveGeometry()), theme=self.theme.choice, **states)
+
+    def restore_layout(self, memory: Memory) -> None:
+        """Stand and divide the room as remembered."""
+        if memory.geometry:
+            self.restoreGeometry(_bytes(memory.geometry))
+        for name, splitter in self._splitters().items():
+            if state := getattr(memory, name):
+                splitter.restoreState(_bytes(state))
+
+    def _splitters(self) -> dict[str, QSplitter]:
+        plots = self.plots
+        return {
+            "upwards": self.upwards,
+            "across": self.across,
+            "columns": plots.widget,
+            "left": plots.left,
+            "right": plots.right,
+        }
+
+
+def _splitter(orientation: Qt.Orientation, *parts: QWidget) -> QSplitter:
+    splitter = QSplitter(orientation)
+    splitter.setChildrenCollapsible(False)
+    splitter.setHandleWidth(4)
+    for part in parts:
+        splitter.addWidget(part)
+    return splitter
+
+
+def _scrolled(part: QWidget) -> QScrollArea:
+    area = QScrollArea()
+    area.setWidgetResizable(True)
+    area.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
+    area.setFocusPolicy(Qt.FocusPolicy.NoFocus)
+    area.setWidget(part)
+    return area
+
+
+def _text(state: QByteArray) -> str:
+    return bytes(state.toBase64().data()).decode("ascii")
+
+
+def _bytes(text: str) -> QByteArray:
+    return QByteArray.fromBase64(text.encode("ascii"))

@@ -1,0 +1,75 @@
+"""What pyqtgraph paints for us, by the rules that keep it fast while a loop rings or runs away.
+
+A smoothed stroke two pixels wide takes Qt a hundred times longer on a curve that crosses itself often, so a strong
+curve is a smoothed stroke of one pixel painted four times, a fraction of a pixel apart; families are one item with a
+connect array, and the ground they cover is one item of vertical strokes.
+"""
+
+import numpy as np
+import pyqtgraph as pg
+from PySide6.QtCore import Qt
+from PySide6.QtGui import QColor, QPainter, QTransform
+from PySide6.QtWidgets import QStyleOptionGraphicsItem, QWidget
+
+from tuner.window.plots.thinning import Points
+
+_STRONG = ((-0.4, -0.4), (0.4, 0.4), (-0.4, 0.4), (0.4, -0.4))
+_PLAIN = ((0.0, 0.0),)
+
+
+class Curve(pg.PlotCurveItem):  # type: ignore[misc]  # pyqtgraph publishes no types
+    """One curve or several, in one colour.
+
+    Parameters
+    ----------
+    strong : bool
+        Twice as wide as a plain one.
+    smooth : bool
+        Whether edges are smoothed; not for families, whose curves may cross themselves by the thousand.
+    """
+
+    def __init__(self, *, strong: bool = False, smooth: bool = True, depth: float = 0.0) -> None:
+        super().__init__(antialias=smooth, skipFiniteCheck=True)
+        self._offsets = _STRONG if strong else _PLAIN
+        self.setZValue(depth)
+        self.setSegmentedLineMode("on")
+
+    def show_points(self, points: Points) -> None:
+        """Show the points of a curve, or of several joined by their connect array."""
+        connect = "all" if points.connect is None else points.connect
+        self.setData(points.x, points.y, connect=connect)
+
+    def show_pairs(self, points: Points) -> None:
+        """Show every two points as a stroke of its own."""
+        self.setData(points.x, points.y, connect="pairs")
+
+    def clear_points(self) -> None:
+        """Show nothing."""
+        self.setData(np.empty(0), np.empty(0), connect="all")
+
+    def paint(self, painter: QPainter, option: QStyleOptionGraphicsItem, widget: QWidget | None) -> None:
+        """Paint the stroke, several times when it is a strong one."""
+        if self.xData is None or not len(self.xData):
+            return
+        place = painter.worldTransform()
+        for x, y in self._offsets:
+            painter.setWorldTransform(place * QTransform.fromTranslate(x, y))
+            super().paint(painter, option, widget)
+        painter.setWorldTransform(place)
+
+
+class Poles(pg.ScatterPlotItem):  # type: ignore[misc]  # pyqtgraph publishes no types
+    """Poles as crosses."""
+
+    def __init__(self, *, size: int, depth: float) -> None:
+        super().__init__(symbol="x", size=size, pxMode=True, useCache=True)
+        self.setZValue(depth)
+
+    def show_poles(self, re: np.ndarray, im: np.ndarray, colour: QColor, width: float) -> None:
+        """Show crosses at real and imaginary parts."""
+        self.setData(re, im, pen=pg.mkPen(colour, width=width), brush=None)
+
+
+def pen(colour: QColor, width: float = 1.0) -> object:
+    """Return an opaque, solid pen of so many pixels, the one that Qt draws fast."""
+    return pg.mkPen(colour, width=width, style=Qt.PenStyle.SolidLine)

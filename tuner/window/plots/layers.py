@@ -1,0 +1,160 @@
+"""Layers below and above the curves: areas and grid lines, and strokes and words, painted in pixels."""
+
+from collections.abc import Iterable
+from math import isinf
+
+import pyqtgraph as pg
+from PySide6.QtCore import QPointF, QRectF, Qt
+from PySide6.QtGui import QBrush, QColor, QFontMetricsF, QPainter, QPen, QPolygonF, QTransform
+from PySide6.QtWidgets import QStyleOptionGraphicsItem, QWidget
+
+from tuner.window.plots.marks import Area, Marks, Stroke, Words
+from tuner.window.plots.placing import Box, place_words
+from tuner.window.theme import Theme
+
+_GAP = 4.0
+
+
+class Layer(pg.GraphicsObject):  # type: ignore[misc]  # pyqtgraph publishes no types
+    """Paints over the whole view, in pixels, whatever the ranges of the axes are."""
+
+    def __init__(self, view: pg.ViewBox, theme: Theme, depth: float) -> None:
+        super().__init__()
+        self._theme = theme
+        self._rect = QRectF()
+        self.setZValue(depth)
+        view.addItem(self, ignoreBounds=True)
+        view.sigRangeChanged.connect(self._view_changed)
+        view.sigResized.connect(self._view_changed)
+        self._view = view
+
+    def boundingRect(self) -> QRectF:
+        """Return the visible part of the plot, in its coordinates."""
+        return QRectF(self._view.viewRect())
+
+    def paint(self, painter: QPainter, _option: QStyleOptionGraphicsItem, _widget: QWidget | None) -> None:
+        """Turn to pixels and paint."""
+        place = painter.worldTransform()
+        frame = place.mapRect(self.boundingRect())
+        painter.save()
+        painter.resetTransform()
+        painter.setClipRect(frame)
+        self.draw(painter, place, frame)
+        painter.restore()
+
+    def draw(self, painter: QPainter, place: QTransform, frame: QRectF) -> None:
+        """Paint in pixels: `place` takes the plot's coordinates there, `frame` is what is seen."""
+        raise NotImplementedError
+
+    def _view_changed(self) -> None:
+        self.prepareGeometryChange()
+        self.update()
+
+
+class GroundLayer(Layer):
+    """Areas, then grid lines, below the curves."""
+
+    def __init__(self, view: pg.ViewBox, theme: Theme) -> None:
+        super().__init__(view, theme, -100.0)
+        self.areas: tuple[Area, ...] = ()
+        self.columns: tuple[float, ...] = ()
+        self.rows: tuple[float, ...] = ()
+
+    def draw(self, painter: QPainter, place: QTransform, frame: QRectF) -> None:
+        """Paint the areas and the grid."""
+        for area in sorted(self.areas, key=lambda area: area.hatched):
+            _fill(painter, _polygon(area, place, frame), self._theme.colour(area.role), hatched=area.hatched)
+        painter.setPen(QPen(self._theme.colour("grid"), 1.0))
+        for at in self.columns:
+            x = _crisp(place.map(QPointF(at, 0.0)).x())
+            painter.drawLine(QPointF(x, frame.top()), QPointF(x, frame.bottom()))
+        for at in self.rows:
+            y = _crisp(place.map(QPointF(0.0, at)).y())
+            painter.drawLine(QPointF(frame.left(), y), QPointF(frame.right(), y))
+
+
+class MarkLayer(Layer):
+    """Strokes and words, above the curves, and the cross of the pointer."""
+
+    def __init__(self, view: pg.ViewBox, theme: Theme) -> None:
+        super().__init__(view, theme, 100.0)
+        self.strokes: tuple[Stroke, ...] = ()
+        self.words: tuple[Words, ...] = ()
+        self.pointer: tuple[float, float] | None = None
+
+    def show_marks(self, marks: Marks, more: Iterable[Words] = ()) -> None:
+        """Show strokes and words, and the names of curves beside them."""
+        self.strokes, self.words = marks.strokes, (*marks.words, *more)
+        self.update()
+
+    def draw(self, painter: QPainter, place: QTransform, frame: QRectF) -> None:
+        """Paint the strokes, then the words where there is room, then the pointer."""
+        for stroke in self.strokes:
+            painter.setPen(_stroke_pen(stroke, self._theme.colour(stroke.role)))
+            painter.drawLine(_pixel(stroke.x0, stroke.y0, place, frame), _pixel(stroke.x1, stroke.y1, place, frame))
+        self._draw_words(painter, place, frame)
+        if self.pointer is not None:
+            self._draw_pointer(painter, _pixel(*self.pointer, place, frame), frame)
+
+    def _draw_words(self, painter: QPainter, place: QTransform, frame: QRectF) -> None:
+        font = self._theme.font("small")
+        painter.setFont(font)
+        metrics = QFontMetricsF(font)
+        boxes = [_box(word, metrics, _pixel(word.x, word.y, place, frame)) for word in self.words]
+        seen = Box(frame.left(), frame.top(), frame.right(), frame.bottom())
+        ground = self._theme.colour("page")
+        ground.setAlpha(200)
+        for word, box in zip(self.words, place_words(boxes, seen), strict=True):
+            if box is not None:
+                painter.fillRect(QRectF(box.left, box.top, box.width, box.height), ground)
+                painter.setPen(self._theme.colour(word.role))
+                painter.drawText(QPointF(box.left, box.top + metrics.ascent()), word.text)
+
+    def _draw_pointer(self, painter: QPainter, at: QPointF, frame: QRectF) -> None:
+        painter.setPen(QPen(self._theme.colour("quiet"), 1.0))
+        x = _crisp(at.x())
+        painter.drawLine(QPointF(x, frame.top()), QPointF(x, frame.bottom()))
+        painter.setBrush(QBrush(self._theme.colour("page")))
+        painter.setRenderHint(QPainter.RenderHint.Antialiasing)
+        painter.drawEllipse(at, 3.0, 3.0)
+
+
+def _stroke_pen(stroke: Stroke, colour: QColor) -> QPen:
+    pen = QPen(colour, 1.0)
+    if stroke.dashed:
+        pen.setDashPattern([6.0, 4.0])
+    return pen
+
+
+def _fill(painter: QPainter, polygon: QPolygonF, colour: QColor, *, hatched: bool) -> None:
+    style = Qt.BrushStyle.BDiagPattern if hatched else Qt.BrushStyle.SolidPattern
+    painter.setPen(Qt.PenStyle.NoPen)
+    if hatched:
+        colour.setAlpha(110)
+    painter.setBrush(QBrush(colour, style))
+    painter.drawPolygon(polygon)
+
+
+def _polygon(area: Area, place: QTransform, frame: QRectF) -> QPolygonF:
+    return QPolygonF([_pixel(x, y, place, frame) for x, y in area.corners])
+
+
+def _pixel(x: float, y: float, place: QTransform, frame: QRectF) -> QPointF:
+    """Return where a point lies, crisp; infinity is the edge of the frame, and far away is not far beyond it."""
+    at = place.map(QPointF(0.0 if isinf(x) else x, 0.0 if isinf(y) else y))
+    left = frame.left() - 1.0 if x < 0 else frame.right() + 1.0
+    top = frame.bottom() + 1.0 if y < 0 else frame.top() - 1.0
+    return QPointF(_crisp(left if isinf(x) else at.x()), _crisp(top if isinf(y) else at.y()))
+
+
+def _crisp(at: float) -> float:
+    """Return the middle of a pixel, where a line of one pixel is sharp."""
+    return float(int(max(min(at, 1e7), -1e7))) + 0.5
+
+
+def _box(word: Words, metrics: QFontMetricsF, at: QPointF) -> Box:
+    """Return the box of words that touch a point, a gap away from it."""
+    width, height = metrics.horizontalAdvance(word.text), metrics.height()
+    left = {"left": at.x() + _GAP, "right": at.x() - width - _GAP, "centre": at.x() - width / 2}[word.anchor]
+    top = {"above": at.y() - height - 1.0, "below": at.y() + 2.0, "middle": at.y() - height / 2}[word.side]
+    return Box(left, top, left + width, top + height)

@@ -1,0 +1,271 @@
+"""One plot with its words: a title, the axis in words, what is missed here, and what the pointer reads."""
+
+from collections.abc import Sequence
+
+import pyqtgraph as pg
+from PySide6.QtCore import QEvent, QObject, QPointF, Qt, Signal
+from PySide6.QtGui import QContextMenuEvent, QResizeEvent
+from PySide6.QtWidgets import QHBoxLayout, QSizePolicy, QVBoxLayout, QWidget
+
+from tuner.window.elided import ElidedLabel
+from tuner.window.plots.extent import Extent
+from tuner.window.plots.layers import GroundLayer, MarkLayer
+from tuner.window.plots.ticks import Tick, ticks
+from tuner.window.shown import Shown
+from tuner.window.theme import Theme
+
+_LEFT_AXIS = 52
+_BOTTOM_AXIS = 22
+_OVERHANG = 24
+"""Pixels that the numbers at the ends of an axis may stand out beyond it."""
+_TICK_WIDTH, _TICK_HEIGHT = 80, 28
+
+
+class PlotView(pg.PlotWidget):  # type: ignore[misc]  # pyqtgraph publishes no types
+    """The plot itself: no menus, no automatic ranges; a wheel or a drag looks closer, a double click looks at all."""
+
+    resized = Signal()
+    left = Signal()
+    menu_wanted = Signal(object)
+    whole_wanted = Signal()
+
+    def __init__(self) -> None:
+        super().__init__(enableMenu=False)
+        item = self.getPlotItem()
+        item.hideButtons()
+        item.disableAutoRange()
+        item.layout.setContentsMargins(0, _OVERHANG // 3, _OVERHANG, 0)
+        item.getViewBox().setDefaultPadding(0.0)
+        item.getAxis("left").setWidth(_LEFT_AXIS)
+        item.getAxis("bottom").setHeight(_BOTTOM_AXIS)
+        self.setFrameShape(self.Shape.NoFrame)
+        self.setFocusPolicy(Qt.FocusPolicy.NoFocus)
+
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        """Say so when the room changes."""
+        super().resizeEvent(event)
+        self.resized.emit()
+
+    def leaveEvent(self, event: QEvent) -> None:
+        """Say so when the pointer leaves."""
+        super().leaveEvent(event)
+        self.left.emit()
+
+    def contextMenuEvent(self, event: QContextMenuEvent) -> None:
+        """Ask for the menu of the panel."""
+        self.menu_wanted.emit(event.globalPos())
+
+    def mouseDoubleClickEvent(self, event: object) -> None:
+        """Ask for the whole plot again."""
+        super().mouseDoubleClickEvent(event)
+        self.whole_wanted.emit()
+
+
+class Panel(QObject):
+    """A plot with its words; what it shows, others say.
+
+    Parameters
+    ----------
+    name : str
+        What it is called, for menus, files and screen readers.
+    theme : Theme
+        The look.
+    """
+
+    menu_wanted = Signal(object)
+
+    def __init__(self, name: str, theme: Theme) -> None:
+        super().__init__()
+        self.name = name
+        self.held = False
+        self.stale = False
+        self.shown: Shown | None = None
+        self._theme = theme
+        self._by_hand = False
+        self.view = PlotView()
+        box = self.view.getPlotItem().getViewBox()
+        self.ground = GroundLayer(box, theme)
+        self.marks = MarkLayer(box, theme)
+        self.widget = self._arranged()
+        self._connect()
+        self.dress()
+
+    # What subclasses say ----------------------------------------------------------------------------------------
+
+    def draw(self, shown: Shown) -> None:
+        """Take over the numbers of an answer and draw them in the ranges that they ask for."""
+        raise NotImplementedError
+
+    def redraw(self) -> None:
+        """Draw what is shown once more in the ranges that hold now, after those or the look changed."""
+        raise NotImplementedError
+
+    def ask(self) -> tuple[Extent, Extent] | None:
+        """Return the ranges that what is shown asks for, None before anything is shown."""
+        raise NotImplementedError
+
+    def read(self, x: float, y: float) -> tuple[tuple[float, float], str] | None:
+        """Return the point that the pointer means and what it reads there, in words with units."""
+        raise NotImplementedError
+
+    # What the window says ---------------------------------------------------------------------------------------
+
+    def show(self, shown: Shown) -> None:
+        """Show an answer."""
+        self.shown, self.stale = shown, False
+        self.view.setVisible(True)
+        self._empty.setVisible(False)
+        self.draw(shown)
+
+    def show_stale(self) -> None:
+        """Grey the curves: they belong to an earlier sheet."""
+        self.stale = True
+        self.redraw()
+
+    def hold(self, held: bool) -> None:
+        """Say whether a hand is on a ruler; when it is off, the ranges narrow to what is shown."""
+        self.held = held
+        if not held and self.shown is not None:
+            self.draw(self.shown)
+
+    def show_whole(self) -> None:
+        """Forget what was looked at more closely."""
+        self._by_hand = False
+        if self.shown is not None:
+            self.draw(self.shown)
+
+    def say_empty(self, sentence: str) -> None:
+        """Say why there is nothing to show yet."""
+        self._empty.setText(sentence)
+
+    def dress(self) -> None:
+        """Take over the colours of the theme."""
+        self.view.setBackground(self._theme.colour("page"))
+        item = self.view.getPlotItem()
+        for side in ("left", "bottom"):
+            axis = item.getAxis(side)
+            axis.setStyle(
+                tickFont=self._theme.font("small"), tickLength=0, tickTextOffset=4, hideOverlappingLabels=_OVERHANG
+            )
+            axis.setPen(pg.mkPen(self._theme.colour("line")))
+            axis.setTextPen(pg.mkPen(self._theme.colour("quiet")))
+        self.ground.update()
+        self.marks.update()
+
+    # For subclasses ---------------------------------------------------------------------------------------------
+
+    def set_words(self, axis: str, missed: str, *, bad: bool) -> None:
+        """Show the axis in words, and what is missed here, or that nothing is."""
+        self._axis.setText(axis)
+        self._missed.setText(missed)
+        self._missed.setStyleSheet(f"color: {self._theme.palette.colours['lost_word' if bad else 'quiet']}")
+        self.widget.setAccessibleDescription(f"{axis}. {missed}")
+
+    def set_ranges(self, x: Extent, y: Extent) -> None:
+        """Show these ranges, unless a closer look was taken by hand."""
+        if self._by_hand:
+            return
+        box = self.view.getPlotItem().getViewBox()
+        (left, right), (low, high) = box.viewRange()
+        if (left, right, low, high) != (x.low, x.high, y.low, y.high):
+            box.setRange(xRange=(x.low, x.high), yRange=(y.low, y.high), padding=0.0, disableAutoRange=True)
+
+    def ranges(self) -> tuple[Extent, Extent]:
+        """Return the ranges that are shown."""
+        x, y = self.view.getPlotItem().getViewBox().viewRange()
+        return Extent(*x), Extent(*y)
+
+    def set_ticks(self, x: Sequence[Tick], y: Sequence[Tick], x_unit: str) -> None:
+        """Divide both axes and draw the grid; the unit stands behind the last number of the horizontal axis."""
+        item = self.view.getPlotItem()
+        named = [(tick.at, tick.text) for tick in x]
+        if named and x_unit:
+            named[-1] = (named[-1][0], f"{named[-1][1]} {x_unit}")
+        item.getAxis("bottom").setTicks([named])
+        item.getAxis("left").setTicks([[(tick.at, tick.text) for tick in y]])
+        self.ground.columns = tuple(tick.at for tick in x)
+        self.ground.rows = tuple(tick.at for tick in y)
+        self.ground.update()
+
+    def divide(self, x_unit: str, *, x_offset: float = 0.0, y_offset: float = 0.0, time: bool = True) -> None:
+        """Divide the axes as finely as there is room."""
+        x, y = self.ranges()
+        across = max(int(self.columns() / _TICK_WIDTH), 2)
+        upwards = max(int(self.view.getPlotItem().getViewBox().height() / _TICK_HEIGHT), 2)
+        self.set_ticks(
+            ticks(x.low, x.high, across, offset=x_offset, time=time),
+            ticks(y.low, y.high, upwards, offset=y_offset),
+            x_unit,
+        )
+
+    def columns(self) -> int:
+        """Return how many pixels wide the plot is."""
+        return max(int(self.view.getPlotItem().getViewBox().width()), 50)
+
+    # Inside -----------------------------------------------------------------------------------------------------
+
+    def _arranged(self) -> QWidget:
+        widget = QWidget()
+        widget.setAccessibleName(self.name)
+        widget.setMinimumSize(240, 120)
+        column = QVBoxLayout(widget)
+        column.setContentsMargins(8, 4, 8, 4)
+        column.setSpacing(0)
+        column.addLayout(self._header())
+        self._missed = ElidedLabel()
+        self._missed.setFont(self._theme.font("small"))
+        self._missed.setContentsMargins(0, 0, 0, 4)
+        column.addWidget(self._missed)
+        self._empty = ElidedLabel("Computing the first answer…", Qt.AlignmentFlag.AlignCenter)
+        self._empty.setProperty("voice", "quiet")
+        self._empty.setSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Expanding)
+        column.addWidget(self._empty)
+        column.addWidget(self.view, 1)
+        self.view.setVisible(False)
+        return widget
+
+    def _header(self) -> QHBoxLayout:
+        title, self._axis, self._readout = ElidedLabel(self.name, stretch=False), ElidedLabel(), ElidedLabel()
+        title.setFont(self._theme.font("body", strong=True))
+        self._axis.setProperty("voice", "quiet")
+        self._readout.setAlignment(Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter)
+        self._readout.setVisible(False)
+        row = QHBoxLayout()
+        row.setSpacing(8)
+        row.addWidget(title)
+        row.addWidget(self._axis, 1)
+        row.addWidget(self._readout, 2)
+        return row
+
+    def _connect(self) -> None:
+        self.view.resized.connect(self._resized)
+        self.view.left.connect(self._leave)
+        self.view.menu_wanted.connect(self.menu_wanted)
+        self.view.whole_wanted.connect(self.show_whole)
+        self.view.scene().sigMouseMoved.connect(self._pointed)
+        box = self.view.getPlotItem().getViewBox()
+        box.sigRangeChangedManually.connect(self._looked_closer)
+
+    def _resized(self) -> None:
+        if self.shown is not None:
+            self.draw(self.shown)
+
+    def _looked_closer(self) -> None:
+        self._by_hand = True
+        self.redraw()
+
+    def _pointed(self, at: QPointF) -> None:
+        box = self.view.getPlotItem().getViewBox()
+        place = box.mapSceneToView(at)
+        found = self.read(place.x(), place.y()) if box.sceneBoundingRect().contains(at) else None
+        self.marks.pointer = found[0] if found else None
+        self.marks.update()
+        self._axis.setVisible(found is None)
+        self._readout.setVisible(found is not None)
+        self._readout.setText(found[1] if found else "")
+
+    def _leave(self) -> None:
+        self.marks.pointer = None
+        self.marks.update()
+        self._axis.setVisible(True)
+        self._readout.setVisible(False)

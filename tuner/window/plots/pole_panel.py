@@ -1,0 +1,133 @@
+"""The pole map: closed-loop poles of the whole family, with the regions that the limits leave them."""
+
+from math import pi
+
+import numpy as np
+from numpy.typing import NDArray
+from PySide6.QtGui import QColor
+
+from tuner.judge.wording import quantity
+from tuner.simulate.traces import ComplexArray
+from tuner.window.plots.extent import Extent, SteadyExtent
+from tuner.window.plots.items import Poles
+from tuner.window.plots.marks import Marks, Words, pole_marks
+from tuner.window.plots.panel import Panel
+from tuner.window.plots.words import missed_words
+from tuner.window.shown import Shown
+from tuner.window.theme import Theme
+
+_DOMINANT = 6.0
+"""Poles up to so many times as fast as the slowest one set the scale; faster ones may lie beyond the edge."""
+
+_REACH = 12.0
+"""Pixels within which the pointer means a pole."""
+
+
+class PolePanel(Panel):
+    """The pole map; each axis has its own scale, so that slow poles are told apart in a wide plot."""
+
+    def __init__(self, name: str, theme: Theme) -> None:
+        self._marks = Marks()
+        self._across, self._upwards = SteadyExtent(), SteadyExtent()
+        self._family: ComplexArray = np.empty(0, dtype=np.complex128)
+        self._nominal: ComplexArray = np.empty(0, dtype=np.complex128)
+        self.family = Poles(size=7, depth=-10.0)
+        self.nominal = Poles(size=10, depth=120.0)
+        super().__init__(name, theme)
+        self.view.addItem(self.family, ignoreBounds=True)
+        self.view.addItem(self.nominal, ignoreBounds=True)
+
+    def draw(self, shown: Shown) -> None:
+        """Take over the poles; until the whole family is known, its last poles stay."""
+        members = shown.assessment.members
+        self._nominal = members[0].poles
+        if shown.whole:
+            others = [member.poles for member in members[1:]]
+            self._family = np.concatenate(others) if others else np.empty(0, dtype=np.complex128)
+            missed, bad = missed_words(shown, ("poles", "frequency"))
+            unit = shown.sheet.loop.time_unit
+            self.set_words(f"real part, 1/{unit}; imaginary part, rad/{unit}", missed, bad=bad)
+        self._marks = pole_marks(shown.sheet, shown.overlay)
+        if (asked := self.ask()) is not None:
+            across = self._across.offer(asked[0], held=self.held)
+            self.set_ranges(across, self._upwards.offer(asked[1], held=self.held))
+        self.redraw()
+
+    def ask(self) -> tuple[Extent, Extent] | None:
+        """Return ranges around the slow poles, the axis and the settling boundary."""
+        if self.shown is None:
+            return None
+        boundary = self.shown.overlay.boundary
+        slowest = float(np.abs(self._nominal).min()) if self._nominal.size else 1.0
+        reach = _DOMINANT * max(slowest, abs(boundary.real) if boundary else 0.0, 1e-12)
+        near = np.concatenate([poles[np.abs(poles) <= reach] for poles in (self._nominal, self._family)])
+        left = min(float(near.real.min(initial=0.0)), boundary.real if boundary else 0.0, -0.2 * reach)
+        right = max(float(near.real.max(initial=0.0)), 0.12 * abs(left))
+        height = max(float(np.abs(near.imag).max(initial=0.0)), 0.2 * (right - left))
+        return Extent(left, right), Extent(-height, height)
+
+    def redraw(self) -> None:
+        """Draw the poles in the colours that hold now."""
+        if self.shown is None:
+            return
+        _show(self.family, self._family, self._theme.colour("kept" if self.stale else "family"), 1.5)
+        _show(self.nominal, self._nominal, self._theme.colour("kept" if self.stale else "nominal"), 2.0)
+        self.ground.areas = self._marks.areas
+        self.divide(f"1/{self.shown.sheet.loop.time_unit}", time=False)
+        self.marks.show_marks(self._seen_marks(), self._names())
+
+    def read(self, x: float, y: float) -> tuple[tuple[float, float], str] | None:
+        """Return the nominal pole nearest to the pointer, when one is near."""
+        if self.shown is None or not self._nominal.size:
+            return None
+        pole = complex(self._nominal[np.argmin(np.abs(self._nominal - complex(x, y)))])
+        across, _ = self.ranges()
+        if abs(pole - complex(x, y)) > _REACH * across.span / self.columns():
+            return None
+        return (pole.real, pole.imag), pole_words(pole, self.shown.sheet.loop.time_unit)
+
+    def dress(self) -> None:
+        """Take over the colours."""
+        super().dress()
+        self.redraw()
+
+    def _seen_marks(self) -> Marks:
+        """Return the marks with the words of the wedge on its ray, inside what is seen."""
+        (x, y), wedge = self.ranges(), self.shown.overlay.wedge if self.shown else None
+        if wedge is None:
+            return self._marks
+        words = tuple(_on_ray(word, x, y) if word.text == wedge.label else word for word in self._marks.words)
+        return Marks(self._marks.areas, self._marks.strokes, words)
+
+    def _names(self) -> list[Words]:
+        across, upwards = self.ranges()
+        beyond = int(np.count_nonzero(self._nominal.real < across.low))
+        words = [Words(0.0, upwards.low, "unstable", "lost_word", "left", "above")]
+        if beyond:
+            count = "one faster pole" if beyond == 1 else f"{beyond} faster poles"
+            words.append(Words(across.low, 0.0, f"← {count} further left", "nominal_word", "left", "above"))
+        return words
+
+
+def _on_ray(word: Words, x: Extent, y: Extent) -> Words:
+    """Return the words that stand at (-1, slope) moved along their ray to where it is seen."""
+    length = 0.7 * min(abs(x.low), y.high / word.y if word.y > 0.0 else np.inf)
+    return Words(-length, word.y * length, word.text, word.role, "right", "above")
+
+
+def _show(item: Poles, poles: ComplexArray, colour: QColor, width: float) -> None:
+    item.show_poles(_part(poles.real), _part(poles.imag), colour, width)
+
+
+def _part(values: NDArray[np.float64]) -> NDArray[np.float64]:
+    return np.ascontiguousarray(values)
+
+
+def pole_words(pole: complex, unit: str) -> str:
+    """Return a pole in words: its parts, its period when it rings, and its damping ratio."""
+    damping = -pole.real / abs(pole) if pole else 1.0
+    said = f"{pole.real:.3g}"
+    if pole.imag:
+        said += f" ± {abs(pole.imag):.3g}j"
+    period = f", period {quantity(2.0 * pi / abs(pole.imag), unit, 3)}" if pole.imag else ""
+    return f"{said} rad/{unit}{period}, damping {damping:.2g}".replace("-", "\u2212")

@@ -1,0 +1,310 @@
+"""The plots over time: the reference step, the disturbance, and the effort of both runs."""
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from tuner.judge.assessment import MemberResult
+from tuner.judge.overlay import Plot
+from tuner.judge.wording import quantity
+from tuner.model.sheet import Sheet
+from tuner.simulate.traces import Trace
+from tuner.window.plots import thinning
+from tuner.window.plots.extent import Extent, SteadyExtent, wanted
+from tuner.window.plots.items import Curve, pen
+from tuner.window.plots.marks import Marks, Words, trace_marks
+from tuner.window.plots.panel import Panel
+from tuner.window.plots.words import missed_words
+from tuner.window.shown import Shown
+from tuner.window.theme import Theme
+
+Array = NDArray[np.float64]
+
+_FAMILY_BINS = 150
+_BEFORE = 0.02
+"""Share of the duration that is shown before the step."""
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Line:
+    """A curve to draw: its corners, and what it is called where it runs."""
+
+    t: Array
+    values: Array
+    name: str = ""
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Lines:
+    """The curves of one plot: the nominal plant's, those of the family over shared times, and of kept tunings."""
+
+    nominal: Line
+    family_t: Array
+    family: Array
+    kept: tuple[Line, ...] = ()
+    second: Line | None = None
+    limited: Line | None = None
+
+
+class TracePanel(Panel):
+    """A plot over time; subclasses say which curves."""
+
+    plot: Plot
+
+    def __init__(self, name: str, theme: Theme) -> None:
+        self._lines: Lines | None = None
+        self._marks = Marks()
+        self._steady = SteadyExtent()
+        self.band = Curve(smooth=False, depth=-50.0)
+        self.family = Curve(smooth=False, depth=-40.0)
+        self.kept: list[Curve] = []
+        self.second = Curve(depth=-10.0)
+        self.nominal = Curve(strong=True, depth=0.0)
+        self.limited = Curve(strong=True, depth=10.0)
+        super().__init__(name, theme)
+        for curve in (self.band, self.family, self.second, self.nominal, self.limited):
+            self.view.addItem(curve, ignoreBounds=True)
+
+    # What subclasses say ----------------------------------------------------------------------------------------
+
+    def lines(self, shown: Shown) -> Lines:
+        """Return the curves of an answer."""
+        raise NotImplementedError
+
+    def axis_words(self, sheet: Sheet) -> str:
+        """Return what stands on the vertical axis, with its unit."""
+        raise NotImplementedError
+
+    def resting(self, sheet: Sheet) -> float:
+        """Return the resting point of what is shown, which is added to every number written."""
+        raise NotImplementedError
+
+    def unit(self, sheet: Sheet) -> str:
+        """Return the unit of what is shown."""
+        raise NotImplementedError
+
+    # Panel ------------------------------------------------------------------------------------------------------
+
+    def draw(self, shown: Shown) -> None:
+        """Take over the curves; until the whole family is known, its last curves stay."""
+        previous, self._lines = self._lines, self.lines(shown)
+        if not shown.whole and previous is not None:
+            self._lines = Lines(
+                self._lines.nominal,
+                previous.family_t,
+                previous.family,
+                self._lines.kept,
+                self._lines.second,
+                self._lines.limited,
+            )
+        self._marks = trace_marks(self.plot, shown.sheet, shown.overlay)
+        missed, bad = missed_words(shown, (self.plot,))
+        self.set_words(self.axis_words(shown.sheet), missed, bad=bad) if shown.whole else None
+        if (asked := self.ask()) is not None:
+            self.set_ranges(asked[0], self._steady.offer(asked[1], held=self.held))
+        self.redraw()
+
+    def ask(self) -> tuple[Extent, Extent] | None:
+        """Return the whole duration, and the height that the curves ask for within reason."""
+        if self.shown is None or self._lines is None:
+            return None
+        duration = self.shown.sheet.trial.duration
+        fixed = Extent(0.0, 0.0).hull(self._marks.levels())
+        others = [self._lines.family, *(line.values for line in self._lines.kept)]
+        if self._lines.second is not None:
+            others.append(self._lines.second.values)
+        calm = self.shown.assessment.nominal.stable
+        return Extent(-_BEFORE * duration, duration), wanted(self._lines.nominal.values, others, fixed, calm=calm)
+
+    def redraw(self) -> None:
+        """Draw the curves in the ranges and colours that hold now."""
+        if self._lines is None or self.shown is None:
+            return
+        seen, columns = self.ranges()[1], self.columns()
+        self._draw_family(self._lines, seen, columns)
+        self._draw_kept(self._lines, seen, columns)
+        self._draw_line(self.nominal, self._lines.nominal, "nominal", seen, columns)
+        self._draw_line(self.second, self._lines.second, "disturbance", seen, columns)
+        self._draw_limited(self._lines.limited, seen)
+        self.ground.areas = self._marks.areas
+        sheet = self.shown.sheet
+        self.divide(sheet.loop.time_unit, y_offset=self.resting(sheet))
+        self.marks.show_marks(self._marks, self._names(self._lines, seen))
+
+    def read(self, x: float, y: float) -> tuple[tuple[float, float], str] | None:
+        """Return the nominal curve at the pointer's time."""
+        del y
+        if self._lines is None or self.shown is None or not 0.0 <= x <= self.shown.sheet.trial.duration:
+            return None
+        sheet, line = self.shown.sheet, self._lines.nominal
+        value = float(np.interp(x, line.t, line.values))
+        time = quantity(x, sheet.loop.time_unit, 3)
+        said = quantity(value + self.resting(sheet), self.unit(sheet))
+        return (x, value), f"at {time}: {said}".replace("-", "\u2212")
+
+    def dress(self) -> None:
+        """Take over the colours."""
+        super().dress()
+        self.redraw()
+
+    # Inside -----------------------------------------------------------------------------------------------------
+
+    def _colour(self, role: str) -> object:
+        return pen(self._theme.colour("kept" if self.stale and role != "band" else role))
+
+    def _draw_family(self, lines: Lines, seen: Extent, columns: int) -> None:
+        self.band.setPen(pen(self._theme.colour("band"), 2.0))
+        self.family.setPen(pen(self._theme.colour("family")))
+        self.band.show_pairs(thinning.envelope(lines.family_t, lines.family, seen, columns))
+        self.family.show_points(thinning.bundle(lines.family_t, lines.family, seen, min(_FAMILY_BINS, columns // 2)))
+
+    def _draw_kept(self, lines: Lines, seen: Extent, columns: int) -> None:
+        while len(self.kept) < len(lines.kept):
+            self.kept.append(Curve(depth=-20.0))
+            self.view.addItem(self.kept[-1], ignoreBounds=True)
+        for index, curve in enumerate(self.kept):
+            self._draw_line(curve, lines.kept[index] if index < len(lines.kept) else None, "kept", seen, columns)
+
+    def _draw_line(self, curve: Curve, line: Line | None, role: str, seen: Extent, columns: int) -> None:
+        if line is None:
+            curve.clear_points()
+            return
+        curve.setPen(self._colour(role))
+        curve.show_points(thinning.single(line.t, line.values, seen, columns))
+
+    def _draw_limited(self, line: Line | None, seen: Extent) -> None:
+        if line is None or not line.t.size:
+            self.limited.clear_points()
+            return
+        self.limited.setPen(self._colour("limit"))
+        self.limited.show_pairs(thinning.Points(line.t, thinning.clipped(line.values, seen)))
+
+    def _names(self, lines: Lines, seen: Extent) -> list[Words]:
+        """Return the names of the curves, each where it runs."""
+        named = [(lines.nominal, "nominal_word", 0.55)]
+        named += [(lines.second, "disturbance_word", 0.3)] if lines.second is not None else []
+        named += [(line, "kept_word", 0.12 + 0.06 * index) for index, line in enumerate(lines.kept)]
+        return [_name(line, role, share, seen) for line, role, share in named if line.name]
+
+
+def _name(line: Line, role: str, share: float, seen: Extent) -> Words:
+    """Return the name of a curve beside it, at a share of its length, above where it falls and below where it rises."""
+    index = int(share * (line.t.size - 1))
+    value = float(np.clip(line.values[index], seen.low, seen.high))
+    upper = value < seen.low + 0.75 * seen.span
+    return Words(float(line.t[index]), value, line.name, role, "left", "above" if upper else "below")
+
+
+class OutputPanel(TracePanel):
+    """The output after a step."""
+
+    def lines(self, shown: Shown) -> Lines:
+        """Return the output of the nominal plant, of the family and of kept tunings."""
+        members = shown.assessment.members
+        traces = [self.trace(member) for member in members]
+        t, family = _family([(trace.t, trace.y) for trace in traces[1:]])
+        kept = tuple(
+            Line(trace.t, trace.y, f"{kept.name}")
+            for kept, trace in ((kept, self.trace(kept.member)) for kept in shown.kept)
+        )
+        return Lines(Line(traces[0].t, traces[0].y, "output y"), t, family, kept)
+
+    def trace(self, member: MemberResult) -> Trace:
+        """Return the run that this plot shows."""
+        raise NotImplementedError
+
+    def axis_words(self, sheet: Sheet) -> str:
+        """Return the name and the unit of the controlled signal."""
+        signal = sheet.loop.controlled
+        return f"{signal.name or 'Output'}, {signal.unit or '1'}"
+
+    def resting(self, sheet: Sheet) -> float:
+        """Return the resting point of the controlled signal."""
+        return sheet.loop.controlled.resting
+
+    def unit(self, sheet: Sheet) -> str:
+        """Return the unit of the controlled signal."""
+        return sheet.loop.controlled.unit
+
+
+class ReferencePanel(OutputPanel):
+    """The output after the reference step."""
+
+    plot = "reference"
+
+    def trace(self, member: MemberResult) -> Trace:
+        """Return the reference run."""
+        return member.traces.reference
+
+
+class DisturbancePanel(OutputPanel):
+    """The output after the disturbance step."""
+
+    plot = "disturbance"
+
+    def trace(self, member: MemberResult) -> Trace:
+        """Return the disturbance run."""
+        return member.traces.disturbance
+
+    def axis_words(self, sheet: Sheet) -> str:
+        """Say also how large the disturbance is."""
+        size = quantity(sheet.trial.disturbance, sheet.loop.manipulated.unit)
+        return f"{super().axis_words(sheet)}, after {size} at the plant input"
+
+
+class EffortPanel(TracePanel):
+    """The effort in both runs, and where a limit holds it."""
+
+    plot = "effort"
+
+    def lines(self, shown: Shown) -> Lines:
+        """Return the effort of the reference run with its family, and that of the disturbance run beside it."""
+        sheet, members = shown.sheet, shown.assessment.members
+        nominal = members[0].traces
+        t, family = _family([_effort(sheet, member.traces.reference) for member in members[1:]])
+        kept = tuple(Line(*_effort(sheet, kept.member.traces.reference), kept.name) for kept in shown.kept)
+        second = Line(*_effort(sheet, nominal.disturbance), "disturbance run") if sheet.trial.disturbance else None
+        main = Line(*_effort(sheet, nominal.reference), "reference run")
+        return Lines(main, t, family, kept, second, _limited(nominal.reference, "at a limit"))
+
+    def axis_words(self, sheet: Sheet) -> str:
+        """Return the name and the unit of the manipulated signal."""
+        signal = sheet.loop.manipulated
+        return f"{signal.name or 'Effort'}, {signal.unit or '1'}"
+
+    def resting(self, sheet: Sheet) -> float:
+        """Return the resting point of the manipulated signal."""
+        return sheet.loop.manipulated.resting
+
+    def unit(self, sheet: Sheet) -> str:
+        """Return the unit of the manipulated signal."""
+        return sheet.loop.manipulated.unit
+
+
+def _effort(sheet: Sheet, trace: Trace) -> tuple[Array, Array]:
+    """Return the corners of the effort: it holds from sample to sample, unless the controller is continuous."""
+    if sheet.controller.sample_time <= 0.0:
+        return trace.t, trace.u
+    at = trace.sample_index
+    return thinning.staircase(trace.t[at], trace.u[at], float(trace.t[-1]))
+
+
+def _limited(trace: Trace, name: str) -> Line | None:
+    """Return the pieces of the effort that a limit holds, as pairs of points."""
+    at = trace.sample_index[: trace.limited.size][trace.limited]
+    if not at.size:
+        return None
+    following = np.append(trace.sample_index, trace.t.size - 1)
+    ends = following[np.searchsorted(trace.sample_index, at) + 1]
+    t = np.column_stack((trace.t[at], trace.t[ends])).ravel()
+    return Line(t, np.repeat(trace.u[at], 2), name)
+
+
+def _family(curves: list[tuple[Array, Array]]) -> tuple[Array, Array]:
+    """Return curves over shared times: those of the first, to which the others are brought if theirs differ."""
+    if not curves:
+        return np.empty(0), np.empty((0, 0))
+    t = curves[0][0]
+    same = all(other.size == t.size and np.array_equal(other, t) for other, _ in curves[1:])
+    return t, np.stack([y if same else np.interp(t, times, y) for times, y in curves])

@@ -1,0 +1,299 @@
+"""The verdict over everything: the loop's title, the verdict in words, and one chip for each limit."""
+
+from collections.abc import Callable
+from dataclasses import dataclass
+from typing import Literal
+
+from PySide6.QtCore import QRectF, QSize, Qt
+from PySide6.QtGui import QColor, QFontMetrics, QPainter, QPaintEvent, QPen, QResizeEvent
+from PySide6.QtWidgets import QHBoxLayout, QScrollArea, QSizePolicy, QVBoxLayout, QWidget
+
+from tuner.judge.assessment import Assessment, LimitResult
+from tuner.judge.overlay import at_plant
+from tuner.judge.wording import quantity, told_apart, unit_of
+from tuner.model.loop import Loop
+from tuner.model.measures import BY_NAME
+from tuner.window.elided import ElidedLabel
+from tuner.window.flow import FlowLayout
+from tuner.window.shown import Shown
+from tuner.window.signs import Sign, draw_sign
+from tuner.window.theme import Theme
+
+Standing = Literal["met", "missed", "unstable", "waiting", "failed"]
+
+_ROLE: dict[Standing, str] = {
+    "met": "firm_word",
+    "missed": "lost_word",
+    "unstable": "lost_word",
+    "waiting": "quiet",
+    "failed": "lost_word",
+}
+_SIGN: dict[Standing, Sign] = {
+    "met": "tick",
+    "missed": "cross",
+    "unstable": "runaway",
+    "waiting": "ring",
+    "failed": "cross",
+}
+_GAP, _SIGN_SIZE = 4, 12
+_ROWS = 2
+"""Rows of chips that are shown before the ribbon scrolls."""
+
+
+@dataclass(frozen=True, slots=True)
+class ChipWords:
+    """What one chip says."""
+
+    measure: str
+    value: str
+    limit: str
+    plant: str
+    standing: Standing
+
+    def sentence(self) -> str:
+        """Return all of it for a screen reader."""
+        return f"{self.measure} {self.value}, limit {self.limit}, {self.standing}, {self.plant}"
+
+
+def chip_words(result: LimitResult, loop: Loop, *, stable: bool) -> ChipWords:
+    """Return the words of a limit's chip; with an unstable loop a measure that does not exist is named unstable."""
+    facts, unit = BY_NAME[result.measure], unit_of(result.measure, loop)
+    sign = "≥" if facts.at_least else "≤"
+    size = abs(result.value) if facts.by_size and result.value is not None else result.value
+    digits = 3 if size is None else max(3, min(told_apart(size, result.limit), 6))
+    value = quantity(size, unit, digits).replace("-", "\u2212").replace("inf", "∞") if size is not None else "—"
+    standing: Standing = "met" if result.met else "unstable" if result.value is None and not stable else "missed"
+    limit = f"{sign} {quantity(result.limit, unit)}"
+    return ChipWords(facts.label, value, limit, at_plant(result.plant).strip(), standing)
+
+
+class Chip(QWidget):
+    """One limit: measure, value against limit, and the plant that is worst."""
+
+    def __init__(self, words: ChipWords, tip: str, theme: Theme) -> None:
+        super().__init__()
+        self._theme = theme
+        self.setFocusPolicy(Qt.FocusPolicy.TabFocus)
+        self.setSizePolicy(QSizePolicy.Policy.Fixed, QSizePolicy.Policy.Fixed)
+        self.show_words(words, tip)
+
+    def show_words(self, words: ChipWords, tip: str) -> None:
+        """Show another result."""
+        self.words = words
+        self.setToolTip(tip)
+        self.setAccessibleName(words.sentence())
+        self.setAccessibleDescription(tip)
+        self.update()
+
+    def sizeHint(self) -> QSize:
+        """Return a width that does not change with the last figures of a value, so that nothing jumps."""
+        small, strong = self._metrics()
+        first = small.horizontalAdvance(f"{self.words.measure}  {self.words.standing}") + _SIGN_SIZE + 2 * _GAP
+        second = max(strong.horizontalAdvance("0.000"), strong.horizontalAdvance(self.words.value))
+        second += small.horizontalAdvance(self.words.limit) + 2 * _GAP
+        width = -(-max(first, second, 112) // 16) * 16
+        return QSize(width + 2 * _GAP, 2 * small.height() + strong.height() + 2 * _GAP)
+
+    def paintEvent(self, _event: QPaintEvent) -> None:
+        """Paint the sign and three lines."""
+        painter = QPainter(self)
+        small, strong = self._metrics()
+        left, top = _GAP, _GAP
+        role = self._theme.colour(_ROLE[self.words.standing])
+        self._paint_edge(painter, role)
+        draw_sign(painter, _SIGN[self.words.standing], QRectF(left, top + 1, _SIGN_SIZE, _SIGN_SIZE), role)
+        x = self._write(painter, left + _SIGN_SIZE + _GAP, top + small.ascent(), self.words.measure, "quiet")
+        self._write(painter, x + 2 * _GAP, top + small.ascent(), self.words.standing, _ROLE[self.words.standing])
+        middle = top + small.height() + strong.ascent()
+        painter.setFont(self._theme.font("body", strong=True))
+        painter.setPen(self._theme.colour("ink" if self.words.standing == "met" else "lost_word"))
+        painter.drawText(left, middle, self.words.value)
+        x = left + strong.horizontalAdvance(self.words.value) + 2 * _GAP
+        self._write(painter, x, middle, self.words.limit, "quiet")
+        bottom = top + small.height() + strong.height() + small.ascent()
+        plant = small.elidedText(self.words.plant, Qt.TextElideMode.ElideRight, self.width() - 2 * _GAP)
+        self._write(painter, left, bottom, plant, "quiet")
+
+    def _paint_edge(self, painter: QPainter, role: QColor) -> None:
+        """Paint a bar at the left of what is not met, and a line around what has the focus."""
+        if self.hasFocus():
+            painter.setPen(QPen(self._theme.colour("nominal"), 1.0))
+            painter.drawRect(self.rect().adjusted(0, 0, -1, -1))
+        if self.words.standing != "met":
+            painter.fillRect(0, 2 * _GAP + _SIGN_SIZE, 2, self.height() - 3 * _GAP - _SIGN_SIZE, role)
+
+    def _write(self, painter: QPainter, x: int, baseline: int, text: str, role: str) -> int:
+        """Write small words; return where they end."""
+        painter.setFont(self._theme.font("small"))
+        painter.setPen(self._theme.colour(role))
+        painter.drawText(x, baseline, text)
+        return x + painter.fontMetrics().horizontalAdvance(text)
+
+    def _metrics(self) -> tuple[QFontMetrics, QFontMetrics]:
+        return QFontMetrics(self._theme.font("small")), QFontMetrics(self._theme.font("body", strong=True))
+
+
+class VerdictSign(QWidget):
+    """The sign of the verdict, as large as the title."""
+
+    def __init__(self, theme: Theme) -> None:
+        super().__init__()
+        self._theme = theme
+        self.standing: Standing = "waiting"
+        self.setFixedSize(20, 20)
+
+    def paintEvent(self, _event: QPaintEvent) -> None:
+        """Paint the sign."""
+        frame = QRectF(self.rect()).adjusted(2, 2, -2, -2)
+        draw_sign(QPainter(self), _SIGN[self.standing], frame, self._theme.colour(_ROLE[self.standing]))
+
+
+class Ribbon:
+    """The strip across the top; `show` takes an answer, `fail` a sentence on why there is none."""
+
+    def __init__(self, theme: Theme) -> None:
+        self._theme = theme
+        self._standing: Standing = "waiting"
+        self.chips: list[Chip] = []
+        self.title, self.verdict, self.detail = ElidedLabel(), ElidedLabel(stretch=False), ElidedLabel()
+        self._sign = VerdictSign(theme)
+        self._flow_host, self._scroll = QWidget(), QScrollArea()
+        self._flow = FlowLayout(self._flow_host, spacing=8)
+        self.widget = self._arranged()
+        theme.changed.connect(self.dress)
+        self.dress()
+        self._say("waiting", "assessing…", "")
+
+    def show(self, shown: Shown) -> None:
+        """Show the verdict and the limits of an assessment of the whole family."""
+        assessment = shown.assessment
+        self.title.setText(assessment.title)
+        self._say(assessment.verdict, *verdict_words(assessment))
+        self._show_chips(shown)
+
+    def fail(self, sentence: str) -> None:
+        """Say why the present sheet cannot be computed; the chips are those of the last one that could."""
+        self._say("failed", "not computed", sentence)
+
+    def focus(self) -> None:
+        """Give the keyboard to the first limit."""
+        if self.chips:
+            self.chips[0].setFocus(Qt.FocusReason.ShortcutFocusReason)
+
+    def dress(self) -> None:
+        """Take over the look."""
+        self.title.setFont(self._theme.font("title", strong=True))
+        self.verdict.setFont(self._theme.font("body", strong=True))
+        self.verdict.setStyleSheet(f"color: {self._theme.palette.colours[_ROLE[self._standing]]}")
+        bad = self._standing in ("failed", "unstable")
+        colour = self._theme.palette.colours["lost_word" if bad else "quiet"]
+        self.detail.setStyleSheet(f"color: {colour}")
+        self._sign.update()
+        for chip in self.chips:
+            chip.update()
+
+    def _say(self, standing: Standing, verdict: str, detail: str) -> None:
+        self._standing = self._sign.standing = standing
+        self.verdict.setText(verdict)
+        self.detail.setText(detail)
+        self.widget.setAccessibleName(f"Verdict: {verdict}. {detail}")
+        self.dress()
+
+    def _show_chips(self, shown: Shown) -> None:
+        results = shown.assessment.limits
+        stable = shown.assessment.verdict != "unstable"
+        sizes = [chip.sizeHint() for chip in self.chips]
+        while len(self.chips) > len(results):
+            self._flow.drop(self.chips.pop())
+        for index, result in enumerate(results):
+            words = chip_words(result, shown.sheet.loop, stable=stable)
+            tip = _tip(result, shown)
+            if index < len(self.chips):
+                self.chips[index].show_words(words, tip)
+            else:
+                self.chips.append(Chip(words, tip, self._theme))
+                self._flow.addWidget(self.chips[-1])
+        if sizes != [chip.sizeHint() for chip in self.chips]:
+            self._flow.invalidate()
+            self._fit()
+
+    def _arranged(self) -> QWidget:
+        words = QVBoxLayout()
+        words.setSpacing(0)
+        words.setContentsMargins(0, 0, 0, 0)
+        row = QHBoxLayout()
+        row.setSpacing(8)
+        row.addWidget(self._sign)
+        row.addWidget(self.verdict)
+        row.addStretch(1)
+        words.addWidget(self.title)
+        words.addLayout(row)
+        words.addStretch(1)
+        left = QWidget()
+        left.setLayout(words)
+        left.setFixedWidth(272)
+        self._scroll.setWidget(self._flow_host)
+        self._scroll.setWidgetResizable(True)
+        self._scroll.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
+        self._scroll.setFocusPolicy(Qt.FocusPolicy.NoFocus)
+        widget = RibbonWidget(self._fit)
+        line = QHBoxLayout()
+        line.setSpacing(8)
+        line.addWidget(left)
+        line.addWidget(self._scroll, 1)
+        column = QVBoxLayout(widget)
+        column.setContentsMargins(12, 4, 8, 4)
+        column.setSpacing(0)
+        column.addLayout(line)
+        column.addWidget(self.detail)
+        return widget
+
+    def _fit(self) -> None:
+        """Give the chips the height of the rows they need, at most `_ROWS`; beyond that they scroll."""
+        tallest = max((chip.sizeHint().height() for chip in self.chips), default=52)
+        needed = self._flow.heightForWidth(max(self._scroll.viewport().width(), 1))
+        self._scroll.setFixedHeight(max(min(needed, _ROWS * tallest + 4 * (_ROWS - 1)), tallest))
+
+
+class RibbonWidget(QWidget):
+    """A strip that says when its size changed."""
+
+    def __init__(self, resized: Callable[[], None]) -> None:
+        super().__init__()
+        self._resized = resized
+
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        """Say so."""
+        super().resizeEvent(event)
+        self._resized()
+
+
+def verdict_words(assessment: Assessment) -> tuple[str, str]:
+    """Return the verdict in a few words, and what it holds for or why it is not better."""
+    size, limits = assessment.family_size, assessment.limits
+    family = "the nominal plant alone, no spread given" if size == 1 else f"the whole family of {size} plants"
+    if assessment.verdict == "unstable":
+        sentence = assessment.instability.sentence if assessment.instability else "The loop runs away."
+        return "Unstable", sentence
+    if not limits:
+        return "Stable, no limits set", f"for {family}"
+    if assessment.verdict == "met":
+        return ("The limit is met" if len(limits) == 1 else f"All {len(limits)} limits met"), f"for {family}"
+    missed = sum(not limit.met for limit in limits)
+    return f"{missed} of {len(limits)} limits missed", f"over {family}"
+
+
+def _tip(result: LimitResult, shown: Shown) -> str:
+    """Return the definition of a measure, its worst plant, and why it does not exist if it does not."""
+    facts = BY_NAME[result.measure]
+    lines = [f"{facts.label}: {facts.sentence}", f"Worst{at_plant(result.plant)}."]
+    if result.value is None:
+        lines += [f"Not there: {reason}." for reason in _reasons(result, shown)]
+    nominal = shown.assessment.nominal.measures.get(result.measure)
+    lines.append(f"Nominal plant: {quantity(nominal, unit_of(result.measure, shown.sheet.loop))}.")
+    return "\n".join(lines)
+
+
+def _reasons(result: LimitResult, shown: Shown) -> list[str]:
+    members = [member for member in shown.assessment.members if member.name == result.plant]
+    return [member.reasons[result.measure] for member in members if result.measure in member.reasons][:1]
