@@ -1,0 +1,123 @@
+"""The one road from a tuning sheet to its assessment, which window, commands, report and Python callers all take."""
+
+import sys
+from collections.abc import Callable, Iterator, Sequence
+from types import ModuleType
+
+from tuner.judge.assessment import Assessment, Instability, MemberResult
+from tuner.judge.cliff import Runaway, instability
+from tuner.judge.verdict import judge
+from tuner.measure.family import Measured, measure_trials
+from tuner.measure.final import family_final_values
+from tuner.measure.loop import add_margins, damping
+from tuner.model.controller import Controller
+from tuner.model.family import FAMILY_SIZE, Member, family
+from tuner.model.sheet import Sheet
+from tuner.simulate.loop import Loop, loops_around, loops_of
+from tuner.simulate.margins import Margins, margins
+from tuner.simulate.poles import Poles, closed_loop_poles, family_poles
+from tuner.simulate.traces import Traces
+from tuner.simulate.trial import run
+
+DOMINANT = (
+    "A loop with dead time has more poles than can be listed: damping is that of those at most three times as far left "
+    "as the rightmost one."
+)
+DIRECT = "The plant answers its effort at once: a sample reads the measurement just before its own effort takes hold."
+NOT_LINEAR = "Limits or the resolution act in a run: its final value is the mean of its last tenth."
+
+
+def assess(sheet: Sheet, family_size: int = FAMILY_SIZE) -> Assessment:
+    """Judge a tuning sheet over the family of plants that its spread makes.
+
+    Parameters
+    ----------
+    sheet : Sheet
+        The loop, its trial and its limits.
+    family_size : int
+        Plants to judge by, the nominal one included; a plant without spread is a family of one.
+
+    Raises
+    ------
+    LoopError
+        When the loop is well written but cannot be computed, with the reason.
+    """
+    members = family(sheet.plant, family_size)
+    loops = loops_of(sheet, members)
+    poles = family_poles(loops)
+    traces = run(sheet, members)
+    measured = measure_trials(sheet, traces, [found.stable for found in poles], family_final_values(sheet, members))
+    found = _margins(loops, poles)
+    results = tuple(map(_result, members, loops, poles, traces, measured, found))
+    return judge(sheet, results, _instability(sheet, members, loops, poles))
+
+
+def _margins(loops: Sequence[Loop], poles: Sequence[Poles]) -> list[Margins | None]:
+    """Return the margins of the loops that have any: stable and closed."""
+    places = [i for i, loop in enumerate(loops) if poles[i].stable and loop.factors.gain]
+    found: list[Margins | None] = [None] * len(loops)
+    if places:
+        for i, one in zip(places, margins([loops[i] for i in places], [poles[i].values for i in places]), strict=True):
+            found[i] = one
+    return found
+
+
+def _result(  # noqa: PLR0913, PLR0917 - what is known of one plant
+    member: Member, loop: Loop, poles: Poles, traces: Traces, measured: Measured, found: Margins | None
+) -> MemberResult:
+    add_margins(measured, found, stable=poles.stable)
+    measured.values["damping"] = damping(poles.values, endless=not poles.complete).value
+    return MemberResult(
+        name=member.name,
+        stable=poles.stable,
+        measures=measured.values,
+        poles=poles.values,
+        traces=traces,
+        reasons=measured.reasons,
+        final_reference=measured.final_reference,
+        final_disturbance=measured.final_disturbance,
+        notes=tuple(_notes(loop, poles, traces)),
+        margins=found,
+    )
+
+
+def _notes(loop: Loop, poles: Poles, traces: Traces) -> Iterator[str]:
+    if not poles.complete:
+        yield DOMINANT
+    if loop.sample_time and loop.chain.d and not loop.chain.dead_time:
+        yield DIRECT
+    if poles.stable and not (traces.reference.linear and traces.disturbance.linear):
+        yield NOT_LINEAR
+    yield from traces.notes
+
+
+def _instability(
+    sheet: Sheet, members: Sequence[Member], loops: Sequence[Loop], poles: Sequence[Poles]
+) -> Instability | None:
+    """Say how the plant that runs away fastest does so; None when every plant's loop is stable."""
+    unstable = [i for i, found in enumerate(poles) if not found.stable]
+    if not unstable:
+        return None
+    worst = max(unstable, key=lambda i: poles[i].growth)
+    pole = complex(poles[worst].values[0]) if poles[worst].values.size else 0j
+    runaway = Runaway(members[worst].name, pole.real, abs(pole.imag), poles[worst].reason)
+    return instability(sheet, runaway, _stability(loops[worst]))
+
+
+def _stability(loop: Loop) -> Callable[[Controller], bool]:
+    """Return whether the same plant is stable under another controller."""
+
+    def is_stable(controller: Controller) -> bool:
+        return closed_loop_poles(loops_around(controller, [loop.chain])[0]).stable
+
+    return is_stable
+
+
+class _Road(ModuleType):
+    """Lets `tuner.assess(sheet)` be written also where this module has taken the place of the function."""
+
+    def __call__(self, sheet: Sheet, family_size: int = FAMILY_SIZE) -> Assessment:
+        return assess(sheet, family_size)
+
+
+sys.modules[__name__].__class__ = _Road
