@@ -112,10 +112,18 @@ def _sampled(controller: Controller, law: Factors, chains: Sequence[Linear]) -> 
         SampledLoop(
             controller,
             one,
-            Held(
-                held.growth[i], held.old[i, :, 0], held.new[i, :, 0], one.c, one.d, delays[i].steps + extra, step
-            ),
+            Held(held.growth[i], held.old[i, :, 0], held.new[i, :, 0], one.c, one.d, delays[i].steps + extra, step),
             pulses[i].then(law),
         )
         for i, one in enumerate(chains)
     ]
+
+
+def same_shape(loops: Sequence[Loop]) -> list[list[int]]:
+    """Return the places of loops whose gains have as many zeros and poles as each other, and can be evaluated as one."""
+    groups: dict[tuple[int, int, int, bool, float], list[int]] = {}
+    for i, loop in enumerate(loops):
+        factors = loop.factors
+        shape = (len(factors.zeros), len(factors.poles), loop.chain.order, factors.gain == 0.0, factors.step)
+        groups.setdefault(shape, []).append(i)
+    return list(groups.values())

@@ -10,7 +10,7 @@ from numpy.typing import NDArray
 
 from tuner.simulate.factors import Index, Stack, Values, stack
 from tuner.simulate.frequency import at_end, at_zero, grid
-from tuner.simulate.loop import Loop
+from tuner.simulate.loop import Loop, same_shape
 from tuner.simulate.traces import Array, ComplexArray
 
 BANDWIDTH_LEVEL = 0.707
@@ -79,20 +79,12 @@ def margins(loops: Sequence[Loop], poles: Sequence[ComplexArray]) -> tuple[Margi
         Closed-loop poles of each in s, those that are known: peaks are sought around them.
     """
     found: dict[int, Margins] = {}
-    for places in _same_shape(loops):
+    for places in same_shape(loops):
         rows = stack([loops[i].factors for i in places])
         closed = _padded([poles[i] for i in places])
         for place, one in zip(places, _margins([loops[i] for i in places], rows, closed), strict=True):
             found[place] = one
     return tuple(found[i] for i in range(len(loops)))
-
-
-def _same_shape(loops: Sequence[Loop]) -> list[list[int]]:
-    groups: dict[tuple[int, int, float], list[int]] = {}
-    for i, loop in enumerate(loops):
-        shape = (len(loop.factors.zeros), len(loop.factors.poles), loop.factors.step)
-        groups.setdefault(shape, []).append(i)
-    return list(groups.values())
 
 
 def _padded(poles: Sequence[ComplexArray]) -> ComplexArray:
@@ -185,13 +177,15 @@ def _signals(at: Values) -> Array:
     with np.errstate(all="ignore"):
         returned = 1.0 + at.gain
         inward = at.slope / (1.0 + 1.0 / at.gain)
-        return np.stack((
-            np.log(np.abs(at.gain)),
-            np.angle(-at.gain),
-            inward.real,
-            (at.slope / returned).real,
-            np.log(np.abs(returned) * BANDWIDTH_LEVEL),
-        ))
+        return np.stack(
+            (
+                np.log(np.abs(at.gain)),
+                np.angle(-at.gain),
+                inward.real,
+                (at.slope / returned).real,
+                np.log(np.abs(returned) * BANDWIDTH_LEVEL),
+            )
+        )
 
 
 def _value_and_slope(at: Values, kind: Index) -> tuple[Array, Array]:

@@ -1,0 +1,204 @@
+"""Rightmost closed-loop poles with dead time: infinitely many in a continuous loop, very many in a sampled one.
+
+They are sought from three sides: eigenvalues of the dead time cut into Chebyshev pieces, the asymptotic chain of roots
+that every dead time makes, and the roots of the loop gain. What is found is exact, for it is iterated on the factored
+characteristic function; that nothing is missing is shown by the argument principle.
+"""
+
+from dataclasses import dataclass
+from math import inf, log, pi
+
+import numpy as np
+
+from tuner.simulate.factors import Stack
+from tuner.simulate.linear import from_zeros_poles
+from tuner.simulate.roots import aberth, count_right, newton_steps_in_s
+from tuner.simulate.traces import Array, ComplexArray
+
+_NODES = (16, 32, 64, 128)
+_BRANCHES = (8, 24, 80, 400)
+_CONVERGED = 1e-9
+_KEPT = 60
+_NEAREST = 0.98
+"""How near to one abs(L) may stay on a line that roots are counted along."""
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Rightmost:
+    """Rightmost poles.
+
+    Parameters
+    ----------
+    values : ndarray of complex
+        In s; every pole whose real part is above `known_from`, as the argument principle confirms.
+    known_from : float
+        1 per time unit; infinite when nothing could be confirmed.
+    reason : str
+        Why the loop is unstable whatever its poles, else empty.
+    """
+
+    values: ComplexArray
+    known_from: float
+    reason: str
+
+
+def delayed_poles(loop: Stack) -> Rightmost:
+    """Return the rightmost poles of one loop with dead time.
+
+    Parameters
+    ----------
+    loop : Stack
+        One row.
+    """
+    last = _last_gain(loop)
+    reason = ""
+    if last >= 1.0:
+        reason = (
+            f"the loop gain stays at {last:.3g}, not below 1, at infinite frequency: "
+            "with dead time around it a change once made comes back as large for ever"
+        )
+    best = Rightmost(np.zeros(0, dtype=complex), inf, reason)
+    for nodes, branches in zip(_NODES, _BRANCHES, strict=True):
+        values = _found(loop, _starts(loop, nodes, branches))
+        line = _line(loop, values, last)
+        best = Rightmost(values, inf, reason)
+        if last >= 1.0:
+            break
+        if line is None:
+            continue
+        right = values[values.real > line]
+        if count_right(loop, line) == len(right):
+            return Rightmost(right, line, reason)
+    return best
+
+
+def _last_gain(loop: Stack) -> float:
+    """Return abs(L) as w -> infinity; 0 for a sampled loop, whose frequencies end."""
+    if loop.step or loop.excess > 0:
+        return 0.0
+    return abs(float(loop.gain[0])) if loop.excess == 0 else inf
+
+
+def _starts(loop: Stack, nodes: int, branches: int) -> ComplexArray:
+    """Return guesses in the upper half plane, the rightmost of each kind."""
+    chain = _chain(loop, branches)
+    modes = loop.modes[0]
+    guesses = [chain, modes[np.isfinite(modes)] * (1.0 + 1e-3) - 1e-3 / loop.delay[0]]
+    if not loop.step and loop.excess >= 0 and _last_gain(loop) != 1.0:
+        values = np.linalg.eigvals(_chebyshev(loop, nodes))
+        values = values[np.argsort(-values.real)]
+        guesses[1:] = [values[: max(_KEPT, nodes)]]
+        guesses[0] = chain[np.abs(chain.imag) * loop.delay[0] > nodes]
+    found = np.concatenate(guesses).astype(complex)
+    found = found[found.imag >= 0.0]
+    step = np.abs(newton_steps_in_s(loop, found))
+    return found[step <= 0.5 * np.maximum(np.abs(found), 1.0 / loop.delay[0])]
+
+
+def _chebyshev(loop: Stack, nodes: int) -> Array:
+    """Return the generator of the closed loop with its dead time as a line of `nodes` Chebyshev pieces.
+
+    The effort travels along the line by w_t = -w_sigma; at its entry it is minus the output of the rational part, which
+    its end drives (after Breda, Maset and Vermiglio, SIAM J. Sci. Comput. 27, 2005; from memory).
+    """
+    count = loop.zero_count
+    zeros, poles = loop.roots[0, :count] * loop.unit, loop.roots[0, count:] * loop.unit
+    open_loop = from_zeros_poles(_symmetric(zeros), _symmetric(poles), float(loop.gain[0]) * loop.unit**loop.excess)
+    order = open_loop.order
+    slope = _differentiation(nodes) * (2.0 / loop.delay[0])
+    matrix = np.zeros((order + nodes, order + nodes))
+    matrix[:order, :order] = open_loop.a
+    matrix[:order, -1] = open_loop.b
+    matrix[order:, order:] = -slope[1:, 1:]
+    matrix[order:, :order] = np.outer(slope[1:, 0], open_loop.c)
+    matrix[order:, -1] += slope[1:, 0] * open_loop.d
+    return matrix
+
+
+def _symmetric(roots: ComplexArray) -> ComplexArray:
+    """Return roots with exact conjugates."""
+    above = roots[roots.imag > 0.0]
+    return np.concatenate((roots[roots.imag == 0.0], above, above.conj()))
+
+
+def _differentiation(nodes: int) -> Array:
+    """Return the differentiation matrix at x = -cos(i pi/nodes), on -1 to 1 (Trefethen, Spectral Methods in MATLAB)."""
+    index = np.arange(nodes + 1)
+    x = -np.cos(pi * index / nodes)
+    weight = np.where((index == 0) | (index == nodes), 2.0, 1.0) * (-1.0) ** index
+    apart = x[:, None] - x[None, :] + np.eye(nodes + 1)
+    matrix: Array = (weight[:, None] / weight[None, :]) / apart
+    return matrix - np.diag(matrix.sum(1))
+
+
+def _chain(loop: Stack, branches: int) -> ComplexArray:
+    """Return approximate roots of exp(delay s) = -R(s), one for each turn: s = (ln(-R(s)) + 2 pi j m)/delay."""
+    delay = float(loop.delay[0])
+    m = np.arange(branches, dtype=float)
+    if loop.step:
+        m = m[: int(0.5 * delay / loop.step) + 2]
+    s = 1j * (2.0 * pi * m + pi) / delay
+    for _ in range(6):
+        x = np.expm1(s * loop.step) / loop.unit if loop.step else s / loop.unit
+        with np.errstate(all="ignore"):
+            difference = x[:, None] - loop.roots
+            logarithm = (np.log(difference) * loop.sign).sum(-1) + log(abs(loop.gain[0]))
+        angle = np.angle(np.exp(1j * logarithm.imag) * -np.sign(loop.gain[0]))
+        following = (logarithm.real + 1j * (angle + 2.0 * pi * m)) / delay
+        s = np.where(np.isfinite(following), following, s)
+    return s
+
+
+def _found(loop: Stack, starts: ComplexArray) -> ComplexArray:
+    """Return the roots that the starts lead to, with their conjugates, rightmost first."""
+    starts = _distinct(starts)
+    real = np.abs(starts.imag) <= 1e-9 * np.abs(starts)
+    both = np.concatenate((starts[real].real, starts[~real], starts[~real].conj()))
+    roots, error = aberth(lambda s: newton_steps_in_s(loop, s), both, rounds=30)
+    roots = roots[error < _CONVERGED]
+    if loop.step:
+        roots = roots.real + 1j * _within(roots.imag, 2.0 * pi / loop.step)
+    roots = np.where(np.abs(roots.imag) <= 1e-8 * np.abs(roots), roots.real, roots)
+    above = roots[roots.imag > 0.0]
+    real_roots = roots[roots.imag == 0.0]
+    roots = np.concatenate((_distinct(real_roots), _mirrored(_distinct(above), loop.step)))
+    ordered: ComplexArray = roots[np.argsort(-roots.real)]
+    return ordered
+
+
+def _within(angle: Array, period: float) -> Array:
+    """Return frequencies folded into half a period either side of zero."""
+    folded: Array = angle - period * np.round(angle / period)
+    return folded
+
+
+def _mirrored(above: ComplexArray, step: float) -> ComplexArray:
+    """Return roots with their conjugates; one at the Nyquist frequency is its own."""
+    own = above.imag >= pi / step * (1.0 - 1e-9) if step else np.zeros(len(above), dtype=bool)
+    return np.concatenate((above, above[~own].conj()))
+
+
+def _distinct(values: ComplexArray) -> ComplexArray:
+    """Return values without repetitions, to nine digits."""
+    kept: list[complex] = []
+    for value in sorted(values.tolist(), key=lambda v: (v.real, v.imag)):
+        if all(abs(value - other) > 1e-9 * abs(value) for other in kept[-40:]):
+            kept.append(value)
+    return np.array(kept, dtype=complex)
+
+
+def _line(loop: Stack, values: ComplexArray, last: float) -> float | None:
+    """Return where to draw the line: in a gap between roots, three times as far left as the rightmost or farther.
+
+    A root chain that does not bend left, at ln(last)/delay, stays left of the line.
+    """
+    if not len(values):
+        return None
+    rightmost = float(values[0].real)
+    goal = rightmost - max(2.0 * abs(rightmost), 0.5 / float(loop.delay[0]))
+    reals = np.append(values.real, goal - 0.5 / float(loop.delay[0]))
+    bound = log(last / _NEAREST) / float(loop.delay[0]) if last > 0.0 else -inf
+    gaps = [(high, low) for high, low in zip(reals[:-1], reals[1:], strict=True) if 0.5 * (high + low) > bound]
+    wide = [0.5 * (high + low) for high, low in gaps if high - low > 1e-3 / float(loop.delay[0])]
+    beyond = [line for line in wide if line <= goal]
+    return float(max(beyond)) if beyond else (float(min(wide)) if wide else None)

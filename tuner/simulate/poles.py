@@ -1,0 +1,283 @@
+"""Closed-loop poles, every mode of the loop counted, also those that the loop gain does not show."""
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+import numpy as np
+
+from tuner.errors import LoopError
+from tuner.law.constants import notch
+from tuner.model.controller import Controller
+from tuner.simulate.delayed import delayed_poles
+from tuner.simulate.factors import Stack, stack, to_s
+from tuner.simulate.linear import from_zeros_poles
+from tuner.simulate.loop import ContinuousLoop, Loop, SampledLoop, same_shape
+from tuner.simulate.roots import aberth, newton_steps
+from tuner.simulate.traces import Array, ComplexArray
+
+LONGEST_CHAIN = 150
+"""States up to which all poles of a sampled loop are found; beyond, those that decide."""
+
+_MARGINAL = 1e-9
+_DEADBEAT = 1e-6
+_SURE = 1e-7
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Poles:
+    """Closed-loop poles of one loop.
+
+    Parameters
+    ----------
+    values : ndarray of complex
+        In s, rad per time unit, rightmost first; those of a sampled loop through ln(z)/Ts, without those at z = 0.
+    stable : bool
+        Whether all poles lie left of the imaginary axis, or inside the unit circle by more than 1e-9.
+    count_unstable : int
+        How many do not; those listed in `values` when there are infinitely many.
+    growth : float
+        Real part of the rightmost pole, 1 per time unit; minus infinity when there is none.
+    complete : bool
+        Whether `values` holds all poles; if not, all those whose real part is above `known_from`.
+    known_from : float
+        1 per time unit; minus infinity when complete.
+    reason : str
+        Why the loop is not stable, when the poles alone do not say it; empty otherwise.
+    """
+
+    values: ComplexArray
+    stable: bool
+    count_unstable: int
+    growth: float
+    complete: bool
+    known_from: float
+    reason: str = ""
+
+
+def closed_loop_poles(loop: Loop) -> Poles:
+    """Return the poles of a loop; those of what the controller acts on when it is open.
+
+    Raises
+    ------
+    LoopError
+        When the loop gain of a continuous loop is -1 at infinite frequency, so that the effort has no unique value.
+    """
+    return family_poles((loop,))[0]
+
+
+def family_poles(loops: Sequence[Loop]) -> tuple[Poles, ...]:
+    """Return the poles of several loops; together they take less time than one by one. See `closed_loop_poles`."""
+    found: dict[int, Poles] = {}
+    for places in same_shape(loops):
+        for place, poles in zip(places, _of_shape([loops[i] for i in places]), strict=True):
+            found[place] = poles
+    return tuple(found[i] for i in range(len(loops)))
+
+
+def _of_shape(loops: Sequence[Loop]) -> list[Poles]:
+    if loops[0].factors.gain == 0.0:
+        return [_open(loop) for loop in loops]
+    rows = stack([loop.factors for loop in loops])
+    short = [i for i, loop in enumerate(loops) if _states(loop) <= LONGEST_CHAIN]
+    out = {i: _delayed(loops[i], rows.take([i])) for i in range(len(loops)) if i not in short}
+    out |= dict(zip(short, _finite([loops[i] for i in short], rows.take(short)), strict=True))
+    return [out[i] for i in range(len(loops))]
+
+
+def _states(loop: Loop) -> float:
+    """Return how many states the closed loop has, infinitely many with dead time around a continuous controller."""
+    if isinstance(loop, SampledLoop):
+        return len(loop.factors.poles) + loop.held.steps
+    return np.inf if loop.factors.delay else len(loop.factors.poles)
+
+
+def _open(loop: Loop) -> Poles:
+    """Return the modes of a chain that nothing acts on."""
+    return _listed(loop.chain.poles, loop.sample_time, _scale(loop.chain.poles))
+
+
+def _scale(modes: ComplexArray) -> float:
+    sizes = np.abs(modes)
+    sizes = sizes[np.isfinite(sizes) & (sizes > 0.0)]
+    return float(np.exp(np.log(sizes).mean())) if len(sizes) else 1.0
+
+
+def _delayed(loop: Loop, row: Stack) -> Poles:
+    found = delayed_poles(row)
+    listed = _listed(found.values, loop.sample_time, _scale(row.modes[0]))
+    return Poles(
+        listed.values,
+        listed.stable and not found.reason,
+        listed.count_unstable,
+        listed.growth,
+        False,
+        found.known_from,
+        found.reason,
+    )
+
+
+def _listed(s: ComplexArray, step: float, scale: float) -> Poles:
+    """Sort poles and count those on or beyond the border."""
+    values = s[np.lexsort((-s.imag, np.abs(s.imag), -s.real))]
+    border = _MARGINAL / step if step else _MARGINAL * np.abs(values) + 1e-13 * scale
+    count = int((values.real >= -border).sum())
+    growth = float(values[0].real) if len(values) else -np.inf
+    return Poles(values, count == 0, count, growth, complete=True, known_from=-np.inf)
+
+
+def _finite(loops: Sequence[Loop], rows: Stack) -> list[Poles]:
+    """Return the poles of loops with few states: eigenvalues, brought to full digits on the factors."""
+    if not loops:
+        return []
+    matrices = _sampled_matrices(loops) if rows.step else _continuous_matrices(loops)
+    x = _refined(rows, np.linalg.eigvals(matrices).astype(complex) / rows.unit) * rows.unit
+    return [_listed(_mapped(row, rows.step), rows.step, _scale(rows.modes[i])) for i, row in enumerate(x)]
+
+
+def _mapped(x: ComplexArray, step: float) -> ComplexArray:
+    """Return roots in s, conjugates exact, without those at z = 0."""
+    if step:
+        x = x[np.abs(1.0 + x) > _DEADBEAT]
+    above, real = x[x.imag > 0.0], x[x.imag == 0.0]
+    above, real = to_s(above, step), to_s(real, step)
+    return np.concatenate((real, above, above.conj()))
+
+
+def _refined(rows: Stack, x: ComplexArray) -> ComplexArray:
+    """Return roots after one step of Newton's method, or as many as they need where eigenvalues were poor."""
+    step = np.where(x.imag == 0.0, newton_steps(rows, x).real, newton_steps(rows, x))
+    deadbeat = np.abs(1.0 + x * rows.unit) <= _DEADBEAT if rows.step else np.zeros(x.shape, dtype=bool)
+    step[deadbeat] = 0.0
+    poor = (np.abs(step) > _SURE * np.maximum(np.abs(x), 1e-6)).any(1)
+    refined = x - step
+    for row in np.flatnonzero(poor):
+        live = ~deadbeat[row]
+        refined[row, live] = _together(rows.take([row]), x[row, live])
+    return refined
+
+
+def _together(row: Stack, x: ComplexArray) -> ComplexArray:
+    """Return roots found together, symmetric about the real axis; the given ones where that fails."""
+    roots, error = aberth(lambda at: newton_steps(row, at[None])[0], x)
+    real = np.abs(roots.imag) <= 1e-9 * np.abs(roots)
+    roots = np.where(real, roots.real, roots)
+    paired = int((roots.imag > 0.0).sum()) == int((roots.imag < 0.0).sum())
+    return roots if paired and (error < 1e-3).all() else x
+
+
+# --- the closed loop as a matrix ---------------------------------------------------------------------------------
+
+
+def _continuous_matrices(loops: Sequence[Loop]) -> Array:
+    return np.array([_continuous_matrix(loop) for loop in loops if isinstance(loop, ContinuousLoop)])
+
+
+def _continuous_matrix(loop: ContinuousLoop) -> Array:
+    """Return the state matrix of 1 + L = 0, or of 1 + 1/L = 0 when L is improper or larger than one at infinity."""
+    zeros, poles, gain = loop.factors.zeros, loop.factors.poles, loop.factors.gain
+    excess = len(poles) - len(zeros)
+    if excess == 0 and abs(1.0 + gain) <= 1e-12:
+        raise LoopError("the loop cannot be closed: its direct terms cancel, so the effort has no unique value")
+    if excess < 0 or (excess == 0 and abs(gain) > 1.0):
+        zeros, poles, gain = poles, zeros, 1.0 / gain
+    open_loop = from_zeros_poles(zeros, poles, gain)
+    return open_loop.a - np.outer(open_loop.b, open_loop.c) / (1.0 + open_loop.d)
+
+
+def _sampled_matrices(loops: Sequence[Loop]) -> Array:
+    """Return what one sample adds to the state of each closed loop, shape (k, n, n): its matrix less the identity.
+
+    States: the chain, past efforts with the latest first, integral, derivative, measurement filter, notch; of the law
+    only those that have an effect. Loops with a shorter delay have efforts that nobody reads, at z = 0.
+    """
+    sampled = [loop for loop in loops if isinstance(loop, SampledLoop)]
+    controller, order = sampled[0].controller, sampled[0].chain.order
+    chain_length = max(loop.held.steps for loop in sampled) + 1
+    every, steps = np.arange(len(sampled)), np.array([loop.held.steps for loop in sampled])
+    size = order + chain_length + _law_states(controller)
+    measurement = np.zeros((len(sampled), size))
+    measurement[:, :order] = [loop.held.c for loop in sampled]
+    measurement[every, order + steps] = [loop.held.d for loop in sampled]
+    rows = _LawRows(controller, measurement, order + chain_length)
+    matrix = np.zeros((len(sampled), size, size))
+    matrix[:, :order, :order] = [loop.held.growth for loop in sampled]
+    matrix[every, :order, order + steps] += np.array([loop.held.old for loop in sampled]).reshape(-1, order)
+    new = np.array([loop.held.new for loop in sampled]).reshape(-1, order)
+    # The effort of `steps` samples ago: this sample's own when there is no delay.
+    inputs = np.zeros((len(sampled), size))
+    inputs[every, order + steps - 1] = 1.0
+    inputs = np.where(steps[:, None] == 0, rows.effort, inputs)
+    matrix[:, :order] += new[:, :, None] * inputs[:, None, :]
+    matrix[:, order] = rows.effort
+    past = np.arange(order + 1, order + chain_length)
+    matrix[:, past, past - 1] = 1.0
+    for place, row in rows.updates:
+        matrix[:, place] = row
+    held = np.arange(order, size)
+    matrix[:, held, held] -= 1.0
+    return matrix
+
+
+def _law_states(controller: Controller) -> int:
+    gains = controller.parallel()
+    return (
+        (gains.ki != 0.0)
+        + (gains.kd != 0.0)
+        + (controller.measurement_filter != 0.0)
+        + 2 * (controller.notch is not None)
+    )
+
+
+class _LawRows:
+    """The law as rows over the state of the loop: the effort, and what becomes of each of the law's states.
+
+    Parameters
+    ----------
+    controller : Controller
+    measurement : ndarray, shape (k, n)
+        The measurement as a combination of states.
+    place : int
+        Where the law's states begin.
+    """
+
+    def __init__(self, controller: Controller, measurement: Array, place: int) -> None:
+        self.updates: list[tuple[int, Array]] = []
+        self._place, self._shape = place, measurement.shape
+        self.effort = controller.sign * self._law(controller, self._filtered(controller, measurement))
+
+    def _state(self) -> tuple[int, Array]:
+        """Take the next state and return its place and its row."""
+        row = np.zeros(self._shape)
+        row[:, self._place] = 1.0
+        self._place += 1
+        return self._place - 1, row
+
+    def _filtered(self, controller: Controller, measurement: Array) -> Array:
+        step, found = controller.sample_time, measurement
+        if controller.measurement_filter:
+            gain = step / (controller.measurement_filter + step)
+            place, last = self._state()
+            found = last + gain * (found - last)
+            self.updates.append((place, found))
+        if controller.notch is not None:
+            section = notch(step, controller.notch.frequency, controller.notch.depth, controller.notch.width)
+            (first, one), (second, two) = self._state(), self._state()
+            filtered, found = found, section.b0 * found + one
+            self.updates.append((first, section.b1 * filtered - section.a1 * found + two))
+            self.updates.append((second, section.b2 * filtered - section.a2 * found))
+        return found
+
+    def _law(self, controller: Controller, found: Array) -> Array:
+        gains, step = controller.parallel(), controller.sample_time
+        effort = -gains.kp * found
+        if gains.ki:
+            place, integral = self._state()
+            effort = effort + integral
+            self.updates.append((place, integral - gains.ki * step * found))
+        if gains.kd:
+            span = controller.filter_time + step
+            place, rest = self._state()
+            derivative = rest - (gains.kd / span) * found
+            effort = effort + derivative
+            self.updates.append((place, (controller.filter_time / span) * derivative + (gains.kd / span) * found))
+        return effort
