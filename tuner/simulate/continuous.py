@@ -4,7 +4,6 @@ Two steps, one half of the other, extrapolate to none at all, for the error of t
 step (Richardson's extrapolation).
 """
 
-import math
 from collections.abc import Sequence
 from typing import NamedTuple
 

@@ -1,0 +1,38 @@
+"""The door to numba: what comes through it computes the same as plain Python, and the cache knows the law."""
+
+from pathlib import Path
+
+import numpy as np
+import pytest
+
+from tuner.kernels import compiled as door
+from tuner.kernels.compiled import compiled
+
+
+@compiled
+def _ratio(over: float, under: float) -> float:
+    return over / under
+
+
+def test_a_compiled_function_keeps_its_plain_self() -> None:
+    """The plain function is at hand, and gives the same number."""
+    plain = _ratio.py_func  # type: ignore[attr-defined]  # given by numba
+    assert _ratio(1.0, 3.0) == plain(1.0, 3.0) == 1.0 / 3.0
+
+
+def test_division_by_zero_gives_infinity() -> None:
+    """As arrays do, a compiled division by zero gives infinity and raises nothing."""
+    assert _ratio(1.0, 0.0) == np.inf
+
+
+def test_the_cache_notices_a_changed_law(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
+    """A changed text of the law leads to another folder of compiled code, the same text to the same one."""
+    for room in ("law", "kernels"):
+        (tmp_path / room).mkdir()
+    law = tmp_path / "law" / "pid.py"
+    law.write_text("u = 1")
+    monkeypatch.setattr(door, "_PACKAGE", tmp_path)
+    before = door._stamp()
+    assert door._stamp() == before
+    law.write_text("u = 2")
+    assert door._stamp() != before
