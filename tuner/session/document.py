@@ -16,12 +16,14 @@ from tuner.session.ruler_range import RulerRange, range_for, typical_value, wide
 from tuner.session.state import (
     State,
     first_state,
+    typed_before,
     with_disturbance_path,
     with_formula,
     with_parameter,
     with_plant,
     with_plant_form,
     with_sheet,
+    with_typed_plant,
 )
 from tuner.session.tunings import KeptTuning, Mark, free_name, in_form_or_none, in_words, marks, with_as_found
 
@@ -316,6 +318,16 @@ class Document:
             return
         switched = with_plant_form(self._history.present, form)
         self._show(self._history.changed(switched.state, f"Give the plant as {form}"), switched.remark)
+
+    @property
+    def has_typed_plant(self) -> bool:
+        """Whether the present form shows another plant than was last typed in it."""
+        return typed_before(self._history.present) is not None
+
+    def bring_back_plant(self) -> None:
+        """Show the plant as it was last typed in the present form."""
+        state = with_typed_plant(self._history.present)
+        self._show(self._history.changed(state, "Bring back the plant typed before"))
 
     @property
     def spare_parameters(self) -> tuple[PlantParameter, ...]:

@@ -40,38 +40,40 @@ class PlantForms:
 
     Parameters
     ----------
-    latest : tuple of Plant
-        At most one of each form.
+    typed : tuple of Plant
+        What was last typed in each form, at most one of each; what was converted is not among them.
     alike : tuple of Plant
         Those that are the present plant in another form: it was converted, and not changed since.
+    origin : Plant or None
+        The plant shown before another form could not show it; kept until a plant is changed by hand.
     spare : tuple of PlantParameter
         Parameters that the formula used once and does not now, with the numbers that were typed for them.
     """
 
-    latest: tuple[Plant, ...] = ()
+    typed: tuple[Plant, ...] = ()
     alike: tuple[Plant, ...] = ()
+    origin: Plant | None = None
     spare: tuple[PlantParameter, ...] = ()
 
     def edited(self, plant: Plant) -> "PlantForms":
         """Return the forms after the plant was changed by hand."""
-        return replace(self, latest=self._with(plant), alike=(plant,))
+        others = tuple(other for other in self.typed if type(other) is not type(plant))
+        return replace(self, typed=(*others, plant), alike=(plant,), origin=None)
 
-    def switched(self, before: Plant, after: Plant) -> "PlantForms":
-        """Return the forms after the plant was shown in another form."""
-        related = self.alike if before in self.alike else (before,)
-        kin = (*related, after) if after not in related else related
-        return replace(self, latest=self._with(after), alike=kin)
+    def switched(self, before: Plant, after: Plant, *, same: bool) -> "PlantForms":
+        """Return the forms after another form was chosen, which shows the `same` plant or not."""
+        if not same:
+            return replace(self, alike=(after,), origin=self.origin or before)
+        return replace(self, alike=self.alike if after in self.alike else (*self.alike, after))
 
     def remembered(self, form: PlantForm) -> Plant | None:
         """Return what was last typed in a form, None if nothing was."""
-        return next((plant for plant in self.latest if form_of(plant) == form), None)
+        return next((plant for plant in self.typed if form_of(plant) == form), None)
 
     def same_plant(self, form: PlantForm) -> Plant | None:
-        """Return the present plant as it was typed in another form, None if it was not."""
-        return next((plant for plant in self.alike if form_of(plant) == form), None)
-
-    def _with(self, plant: Plant) -> tuple[Plant, ...]:
-        return (*(other for other in self.latest if type(other) is not type(plant)), plant)
+        """Return the plant as another form showed it, if nothing was changed by hand since; else None."""
+        known = (*self.alike, self.origin) if self.origin is not None else self.alike
+        return next((plant for plant in known if form_of(plant) == form), None)
 
 
 @dataclass(frozen=True, slots=True)
@@ -90,9 +92,9 @@ def switch(plant: Plant, forms: PlantForms, form: PlantForm, convert: Callable[[
     convert : callable
         Gives a plant in a form, or raises a `TrimwrightError` when it has none there.
     """
-    same = forms.same_plant(form)
-    if same is not None and plant in forms.alike:
-        return Switch(same)
+    shown_there = forms.same_plant(form)
+    if shown_there is not None:
+        return Switch(shown_there)
     try:
         return Switch(convert(plant, form))
     except TrimwrightError as refusal:

@@ -21,7 +21,7 @@ from tuner.session.plant_forms import PlantForm
 from tuner.session.typed import shown
 from tuner.simulate.linear import Linear
 
-_DIGITS = 15
+_DIGITS = 14
 
 
 def made(plant: Plant) -> Linear:

@@ -4,7 +4,7 @@ from dataclasses import dataclass, field, replace
 
 from tuner.model.plant import ExpressionPlant, PhysicsPlant, Plant, PlantParameter
 from tuner.model.sheet import Sheet
-from tuner.session.plant_forms import PlantForm, PlantForms, switch
+from tuner.session.plant_forms import PlantForm, PlantForms, form_of, switch
 from tuner.session.tunings import KeptTuning, with_as_found
 
 
@@ -89,6 +89,18 @@ def with_disturbance_path(state: State, text: str) -> State:
     return replace(changed, forms=replace(changed.forms, spare=spare))
 
 
+def with_typed_plant(state: State) -> State:
+    """Return the state with the plant as it was last typed in its present form; the same when it is, or none was."""
+    typed = typed_before(state)
+    return state if typed is None else with_sheet(state, replace(state.sheet, plant=typed))
+
+
+def typed_before(state: State) -> Plant | None:
+    """Return the plant last typed in the present form when it is another than the present one; else None."""
+    typed = state.forms.remembered(form_of(state.sheet.plant))
+    return None if typed == state.sheet.plant else typed
+
+
 def with_parameter(state: State, parameter: PlantParameter) -> State:
     """Return the state with a named number of the plant changed, or one that its formula does not use now.
 
@@ -112,5 +124,5 @@ def with_plant_form(state: State, form: PlantForm) -> Switched:
     before = state.sheet.plant
     switched = switch(before, state.forms, form, converted)
     after = switched.plant
-    forms = state.forms.edited(after) if switched.remark else state.forms.switched(before, after)
+    forms = state.forms.switched(before, after, same=not switched.remark)
     return Switched(replace(state, sheet=replace(state.sheet, plant=after), forms=forms), switched.remark)

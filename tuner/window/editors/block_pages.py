@@ -87,7 +87,7 @@ class OptionalGroup(Group):
         for path, parameter in wanted.items():
             if path not in self._fields:
                 self._fields[path] = parameter_field(self._document, parameter, self._theme)
-                self.column.addWidget(self._fields[path])
+                self.column.insertWidget(self.column.count() - 1, self._fields[path])
             self._fields[path].refresh(anew=anew)
 
 

@@ -2,7 +2,6 @@
 
 from typing import Protocol
 
-from PySide6.QtCore import Qt
 from PySide6.QtWidgets import QGridLayout, QLabel, QSizePolicy, QVBoxLayout, QWidget
 
 from tuner.window.theme import Theme
@@ -68,9 +67,11 @@ class Field(QWidget):
         What it is, shown on hovering.
     control : QWidget
         What sets the value.
+    above : bool
+        Whether the label stands above the control, which then has the whole width.
     """
 
-    def __init__(self, theme: Theme, label: str, sentence: str, control: QWidget) -> None:
+    def __init__(self, theme: Theme, label: str, sentence: str, control: QWidget, *, above: bool = False) -> None:
         super().__init__()
         self.control = control
         self.unit = QLabel()
@@ -85,10 +86,14 @@ class Field(QWidget):
         grid.setHorizontalSpacing(4)
         grid.setVerticalSpacing(2)
         grid.addWidget(name, 0, 0)
-        grid.addWidget(control, 0, 1)
-        grid.addWidget(self.unit, 0, 2)
-        grid.addWidget(self.fault, 1, 1, 1, 2)
+        if above:
+            grid.addWidget(control, 1, 0, 1, 3)
+        else:
+            grid.addWidget(control, 0, 1)
+            grid.addWidget(self.unit, 0, 2)
+        grid.addWidget(self.fault, 2, 0 if above else 1, 1, 3 if above else 2)
         grid.setColumnStretch(1, 1)
+        self.setSizePolicy(QSizePolicy.Policy.Preferred, QSizePolicy.Policy.Fixed)
         self.setToolTip(sentence)
         control.setAccessibleName(label)
 
@@ -109,11 +114,12 @@ class Page(QWidget):
         self.column = QVBoxLayout(self)
         self.column.setContentsMargins(8, 4, 8, 8)
         self.column.setSpacing(4)
-        self.column.setAlignment(Qt.AlignmentFlag.AlignTop)
+        self.column.addStretch(1)
+        self.setSizePolicy(QSizePolicy.Policy.Preferred, QSizePolicy.Policy.Maximum)
 
     def add(self, widget: QWidget, part: Part | None = None) -> None:
         """Put a widget under the last one, and the part, if it is one, on the round of refreshing."""
-        self.column.addWidget(widget)
+        self.column.insertWidget(self.column.count() - 1, widget)
         if part is not None:
             self._parts.append(part)
 

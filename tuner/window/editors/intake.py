@@ -32,7 +32,7 @@ class Typist(Protocol):
     def write(self, text: str) -> None:
         """Replace its text."""
 
-    def hasFocus(self) -> bool:  # noqa: N802 # Qt's name
+    def hasFocus(self) -> bool:  # Qt's name
         """Tell whether it is being typed in."""
 
 

@@ -1,7 +1,7 @@
 """The page of the limits: a bound on any of the measures, with its definition and how the family stands to it."""
 
 from PySide6.QtCore import Qt
-from PySide6.QtWidgets import QComboBox, QGridLayout, QLabel, QToolButton, QVBoxLayout, QWidget
+from PySide6.QtWidgets import QComboBox, QGridLayout, QLabel, QSizePolicy, QToolButton, QVBoxLayout, QWidget
 
 from tuner.judge.assessment import Assessment, LimitResult
 from tuner.model.measures import BY_NAME, MEASURES, Measure
@@ -9,7 +9,7 @@ from tuner.session import typed
 from tuner.session.document import Document
 from tuner.session.fields import unit_of, with_limit, without_limit
 from tuner.session.typed import NOT_NEGATIVE
-from tuner.window.editors.field import LABEL_WIDTH, FaultLine, Note, Page
+from tuner.window.editors.field import FaultLine, Note, Page
 from tuner.window.editors.intake import Words
 from tuner.window.editors.typed_line import TypedLine
 from tuner.window.theme import Theme
@@ -51,8 +51,8 @@ class LimitRow(QWidget):
 
     def _lay_out(self) -> None:
         name = QLabel(self._measure.label)
-        name.setFixedWidth(LABEL_WIDTH)
-        name.setWordWrap(True)
+        name.setToolTip(self._measure.sentence)
+        self.line.setFixedWidth(64)
         sense = QLabel("at least" if self._measure.at_least else "at most")
         sense.setProperty("voice", "quiet")
         sense.setFixedWidth(48)
@@ -64,7 +64,8 @@ class LimitRow(QWidget):
             grid.addWidget(part, 0, column)
         for row, part in enumerate((self.fault, self.standing, self.definition), start=1):
             grid.addWidget(part, row, 0, 1, 5)
-        grid.setColumnStretch(2, 1)
+        grid.setColumnStretch(0, 1)
+        self.setSizePolicy(QSizePolicy.Policy.Preferred, QSizePolicy.Policy.Fixed)
 
     def _read(self, text: str) -> float:
         return typed.number(text, NOT_NEGATIVE, unit_of(self._measure, self._document.sheet))
@@ -89,7 +90,7 @@ class LimitsPage(Page):
         self.rows: dict[str, LimitRow] = {}
         self._list = QVBoxLayout()
         self._list.setSpacing(4)
-        self.column.addLayout(self._list)
+        self.column.insertLayout(0, self._list)
         self.adder = QComboBox()
         self.adder.setAccessibleName("add a limit")
         self.adder.setMaxVisibleItems(len(MEASURES) + 1)

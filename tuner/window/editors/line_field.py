@@ -24,11 +24,12 @@ class Source(Generic[Value]):
 
 @dataclass(frozen=True, slots=True)
 class Caption:
-    """What a field is called, what it is in one sentence, and its path in the sheet, left out of its faults."""
+    """What a field is called, what it is in one sentence, its path in the sheet, and whether it stands above."""
 
     label: str
     sentence: str
     path: str = ""
+    above: bool = False
 
 
 class LineField(Field, Generic[Value]):
@@ -38,7 +39,7 @@ class LineField(Field, Generic[Value]):
         self._source = source
         held, words, take = source.held(), source.words, source.take
         line = TypedLine(theme, held, words, take) if lines == 1 else TypedText(theme, held, words, take, lines=lines)
-        super().__init__(theme, caption.label, caption.sentence, line)
+        super().__init__(theme, caption.label, caption.sentence, line, above=caption.above)
         self.line = line
         self.intake = line.intake
         self.intake.path = caption.path

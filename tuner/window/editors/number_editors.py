@@ -21,12 +21,13 @@ NumberPlant = CoefficientPlant | ZeroPolePlant | StateSpacePlant
 
 @dataclass(frozen=True, slots=True)
 class Entry:
-    """One attribute of a plant to be typed: its name, what it is, how it is written, in how many lines."""
+    """One attribute of a plant to be typed: its name, what it is, how it is written, and how much room it needs."""
 
     name: str
     sentence: str
     words: Words[Any]
     lines: int = 1
+    long: bool = True
 
 
 class NumberEditor(Page):
@@ -54,11 +55,11 @@ class NumberEditor(Page):
 
     def _field(self, theme: Theme, entry: Entry) -> LineField[Any]:
         source = Source(self._holder(entry.name), entry.words, self._taker(entry.name))
-        caption = Caption(entry.name.replace("_", " "), entry.sentence, f"plant.{entry.name}")
+        caption = Caption(entry.name.replace("_", " "), entry.sentence, f"plant.{entry.name}", entry.long)
         field = LineField(theme, caption, source, lines=entry.lines)
         field.intake.left.connect(self._document.release)
         if isinstance(field.line, TypedText):
-            field.line.takes_enter = True
+            field.line.take_rows()
         field.unit.setVisible(entry.name == "dead_time")
         return field
 
@@ -105,7 +106,7 @@ _LIST: Words[Any] = Words(typed.numbers, typed.shown_numbers)
 _ROOTS: Words[Any] = Words(typed.complex_numbers, typed.shown_complex_numbers)
 _NUMBER: Words[Any] = Words(_number, typed.shown)
 _MATRIX: Words[Any] = Words(typed.rows, typed.shown_rows)
-_DEAD_TIME = Entry("dead_time", "Time before the plant answers at all.", Words(_time, typed.shown))
+_DEAD_TIME = Entry("dead_time", "Time before the plant answers at all.", Words(_time, typed.shown), long=False)
 
 
 def coefficient_editor(document: Document, theme: Theme) -> NumberEditor:
@@ -123,7 +124,7 @@ def zero_pole_editor(document: Document, theme: Theme) -> NumberEditor:
     entries = (
         Entry("zeros", 'Zeros, parted by semicolons; "-1 ± 2j" is a pair.', _ROOTS),
         Entry("poles", 'Poles, parted by semicolons; "-1 ± 2j" is a pair.', _ROOTS),
-        Entry("gain", "Factor before (s - zero) ... / ((s - pole) ...).", _NUMBER),
+        Entry("gain", "Factor before (s - zero) ... / ((s - pole) ...).", _NUMBER, long=False),
         _DEAD_TIME,
     )
     return NumberEditor(document, theme, "zeros and poles", entries)
@@ -135,7 +136,7 @@ def state_space_editor(document: Document, theme: Theme) -> NumberEditor:
         Entry("a", "System matrix: x' = a x + b u, one row a line.", _MATRIX, lines=4),
         Entry("b", "Input column.", _LIST),
         Entry("c", "Output row: y = c x + d u.", _LIST),
-        Entry("d", "Direct term.", _NUMBER),
+        Entry("d", "Direct term.", _NUMBER, long=False),
         _DEAD_TIME,
     )
     return NumberEditor(document, theme, "state space", entries)

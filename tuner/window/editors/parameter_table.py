@@ -3,7 +3,7 @@
 from collections.abc import Callable
 from dataclasses import replace
 
-from PySide6.QtWidgets import QGraphicsOpacityEffect, QGridLayout, QLabel, QVBoxLayout, QWidget
+from PySide6.QtWidgets import QGraphicsOpacityEffect, QGridLayout, QLabel, QSizePolicy, QVBoxLayout, QWidget
 
 from tuner.model.plant import PlantParameter, Spread
 from tuner.session import typed
@@ -13,7 +13,7 @@ from tuner.window.editors.intake import Words
 from tuner.window.editors.typed_line import TypedLine
 from tuner.window.theme import Theme
 
-NAME_WIDTH, VALUE_WIDTH, UNIT_WIDTH, SPREAD_WIDTH = 76, 64, 60, 76
+NAME_WIDTH, VALUE_WIDTH, UNIT_WIDTH, SPREAD_WIDTH = 88, 60, 56, 64
 FADED = 0.5
 
 
@@ -107,6 +107,7 @@ class ParameterTable(QWidget):
         self._column.setContentsMargins(0, 4, 0, 0)
         self._column.setSpacing(4)
         self._column.addWidget(self._head)
+        self.setSizePolicy(QSizePolicy.Policy.Preferred, QSizePolicy.Policy.Fixed)
 
     def refresh(self, *, anew: bool) -> None:
         """Show the parameters that the document holds."""

@@ -1,6 +1,6 @@
 """The page of the plant, in any of its five forms."""
 
-from PySide6.QtWidgets import QComboBox, QWidget
+from PySide6.QtWidgets import QComboBox, QPushButton, QWidget
 
 from tuner.session.document import Document
 from tuner.session.plant_forms import PLANT_FORMS, PlantForm
@@ -23,8 +23,11 @@ class PlantPage(Page):
         self.form.addItems([form.capitalize() for form in PLANT_FORMS])
         self.form.activated.connect(self._choose)
         self.remark = Note(theme)
+        self.bring_back = QPushButton("Bring back what was typed here")
+        self.bring_back.clicked.connect(document.bring_back_plant)
         self.add(self.form)
         self.add(self.remark)
+        self.add(self.bring_back)
         self.editors: dict[PlantForm, Page] = {
             "formula": FormulaEditor(document, theme),
             "coefficients": coefficient_editor(document, theme),
@@ -41,6 +44,7 @@ class PlantPage(Page):
         form = self._document.plant_form
         self.form.setCurrentIndex(PLANT_FORMS.index(form))
         self.remark.say(self._document.remark)
+        self.bring_back.setVisible(self._document.has_typed_plant)
         for name, editor in self.editors.items():
             editor.setVisible(name == form)
         self.editors[form].refresh(anew=anew)

@@ -35,6 +35,7 @@ class Segments(QWidget):
             button.setCheckable(True)
             button.clicked.connect(lambda _checked=False, word=word: self._on_clicked(word))
             row.addWidget(button)
+        row.addStretch(1)
         theme.changed.connect(self._dress)
         self._dress()
 

@@ -23,8 +23,6 @@ class TypedText(QPlainTextEdit, Generic[Value]):
         As `Intake` has them.
     lines : int
         Lines in sight.
-    takes_enter : bool
-        Whether Enter begins a new line; else it takes what was typed.
     """
 
     def __init__(
@@ -40,6 +38,12 @@ class TypedText(QPlainTextEdit, Generic[Value]):
         self.intake.faulted.connect(self._on_faulted)
         self.textChanged.connect(self._on_changed)
         self.setFixedHeight(self.sizeHint().height())
+
+    def take_rows(self) -> None:
+        """Let Enter begin a new line, and lines be as long as they are."""
+        self.takes_enter = True
+        self.setLineWrapMode(QPlainTextEdit.LineWrapMode.NoWrap)
+        self.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAsNeeded)
 
     def typed(self) -> str:
         """Return the text."""

@@ -2,7 +2,7 @@
 
 from PySide6.QtCore import Signal
 from PySide6.QtGui import QResizeEvent
-from PySide6.QtWidgets import QGridLayout, QLabel, QWidget
+from PySide6.QtWidgets import QGridLayout, QLabel, QSizePolicy, QWidget
 
 from tuner.judge.assessment import Assessment
 from tuner.model.parameters import GAIN_KEYS, Parameter, rulers
@@ -34,6 +34,7 @@ class RulerPanel(QWidget):
         self._grid.setVerticalSpacing(4)
         self._fault = QLabel(self)
         self._fault.hide()
+        self.setSizePolicy(QSizePolicy.Policy.Preferred, QSizePolicy.Policy.Fixed)
         theme.changed.connect(self._dress)
         self._dress()
         self.refresh()

@@ -17,13 +17,13 @@ from tuner.window.theme import Theme
 MARGIN = 8
 """Pixels left and right of the track, so that handle and first number fit."""
 
-TRACK_TOP, TRACK_HEIGHT = 8, 12
-HEIGHT = 36
+TRACK_TOP, TRACK_HEIGHT = 12, 12
+HEIGHT = 40
 WHEEL_PAUSE = 400
 """Milliseconds after the last turn of the wheel when the hand counts as off."""
 
 _LEAST_GAP = 4  # pixels between two lines of the scale
-_SMALL_MARK = 5
+_MARK_HEIGHT = 6
 
 
 class RulerSlider(QSlider):
@@ -190,8 +190,11 @@ class RulerSlider(QSlider):
         self._paint_track(painter)
         self._paint_scale(painter)
         painter.setRenderHint(QPainter.RenderHint.Antialiasing)
-        for mark in self._marks:
-            self._paint_mark(painter, mark)
+        for mark in reversed(self._marks):
+            if mark.kind == "kept":
+                self._paint_kept(painter, mark)
+            else:
+                self._paint_triangle(painter, mark)
         self._paint_handle(painter)
         painter.end()
 
@@ -239,21 +242,27 @@ class RulerSlider(QSlider):
         painter.drawText(QPointF(left, TRACK_TOP + TRACK_HEIGHT + 15.0), text)
         return left + width * 1.5 + 8.0
 
-    def _paint_mark(self, painter: QPainter, mark: Mark) -> None:
-        """Paint a mark above the track: as opened a full triangle, as found a hollow one, kept a line with its name."""
+    def _paint_kept(self, painter: QPainter, mark: Mark) -> None:
+        """Paint a kept tuning: a line across the track with its name; names at one value stand beside one another."""
         x = self.x_of(mark.value)
-        if mark.kind == "kept":
-            colour = self._theme.colour("kept_word")
-            painter.fillRect(round(x), 0, 1, TRACK_TOP + TRACK_HEIGHT, colour)
-            painter.setPen(colour)
-            painter.setFont(self._theme.font("small"))
-            painter.drawText(QPointF(x + 3.0, TRACK_TOP - 1.0), mark.label)
-            return
-        colour = self._theme.colour("ink" if mark.kind == "reset" else "quiet")
+        colour = self._theme.colour("kept_word")
+        painter.fillRect(round(x), 1, 1, TRACK_TOP + TRACK_HEIGHT - 1, colour)
+        painter.setPen(colour)
+        painter.setFont(self._theme.font("small"))
+        before = [other for other in self._marks[: self._marks.index(mark)] if other.kind == "kept"]
+        near = sum(abs(self.x_of(other.value) - x) < 8.0 for other in before)
+        painter.drawText(QPointF(x + 6.0 + 8.0 * near, TRACK_TOP - 2.0), mark.label)
+
+    def _paint_triangle(self, painter: QPainter, mark: Mark) -> None:
+        """Paint a mark above the track: as opened a full triangle, as found a hollow one around it."""
+        x = self.x_of(mark.value)
+        full = mark.kind == "reset"
+        colour = self._theme.colour("ink" if full else "quiet")
         painter.setPen(QPen(colour, 1.0))
-        painter.setBrush(colour if mark.kind == "reset" else Qt.BrushStyle.NoBrush)
-        tip, top = float(TRACK_TOP - 1), float(TRACK_TOP - 1 - _SMALL_MARK)
-        painter.drawPolygon(QPolygonF([QPointF(x, tip), QPointF(x - 4.0, top), QPointF(x + 4.0, top)]))
+        painter.setBrush(colour if full else self._theme.colour("page"))
+        tip, top = float(TRACK_TOP - 1), float(TRACK_TOP - 1 - _MARK_HEIGHT)
+        half = _MARK_HEIGHT / 2.0 + (0.0 if full else 2.0)
+        painter.drawPolygon(QPolygonF([QPointF(x, tip), QPointF(x - half, top), QPointF(x + half, top)]))
 
     def _paint_handle(self, painter: QPainter) -> None:
         x = self.x_of(self._value)
