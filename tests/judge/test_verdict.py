@@ -97,6 +97,17 @@ def test_notes_count_plants_and_leave_out_the_whole_family() -> None:
     assert judge(sheet({"overshoot": 8}), family[:2]).notes == ("No peak time: the loop is unstable.",)
 
 
+def test_measures_that_are_all_missing_are_named_as_a_group() -> None:
+    """An unstable loop is one short sentence, not a list of nineteen measures."""
+    nothing = {measure.name: None for measure in MEASURES if measure.name != "damping"}
+    lost = member("nominal", stable=False)
+    lost = replace(lost, measures={**lost.measures, **nothing}, reasons=dict.fromkeys(nothing, "the loop is unstable"))
+
+    assert judge(sheet({"damping": 0.1}), [lost]).notes == (
+        "No measures of the reference trial, measures of the disturbance trial, margins: the loop is unstable.",
+    )
+
+
 def test_a_sheet_without_limits_says_so() -> None:
     """Without limits a stable family is met, and a note tells that nothing else was judged."""
     found = judge(sheet(), [member()])

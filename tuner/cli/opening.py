@@ -30,7 +30,7 @@ def run(arguments: Arguments) -> int:
         return without_display(arguments.sheet)
     from tuner.window.app import open_window
 
-    return open_window(Path(arguments.sheet or built_in()))
+    return open_window(Path(arguments.sheet) if arguments.sheet else None)
 
 
 def has_display() -> bool:

@@ -3,10 +3,18 @@
 from collections.abc import Iterable, Sequence
 
 from tuner.judge.assessment import Assessment, Instability, LimitResult, MemberResult, Verdict, WorstCase
+from tuner.measure.family import DISTURBANCE, REFERENCE
+from tuner.measure.loop import MARGINS
 from tuner.model.measures import BY_NAME, MEASURES, Measure
 from tuner.model.sheet import Sheet
 
 NO_LIMITS = "The sheet gives no limits; only stability is judged."
+
+_GROUPS = (
+    ("measures of the reference trial", REFERENCE),
+    ("measures of the disturbance trial", DISTURBANCE),
+    ("margins", MARGINS),
+)
 
 
 def judge(sheet: Sheet, members: Sequence[MemberResult], instability: Instability | None = None) -> Assessment:
@@ -86,17 +94,23 @@ def _absences(members: Sequence[MemberResult]) -> list[str]:
     for member in members:
         for name, why in member.reasons.items():
             plants.setdefault((name, why), []).append(member.name)
-    labels: dict[tuple[str, tuple[str, ...]], list[str]] = {}
+    absent: dict[tuple[str, tuple[str, ...]], list[str]] = {}
     for measure in MEASURES:
         for (name, why), names in plants.items():
             if name == measure.name:
-                labels.setdefault((why, tuple(names)), []).append(measure.label)
-    return [_absence(said, why, names, len(members)) for (why, names), said in labels.items()]
+                absent.setdefault((why, tuple(names)), []).append(name)
+    return [_absence(measures, why, names, len(members)) for (why, names), measures in absent.items()]
 
 
-def _absence(labels: Sequence[str], why: str, plants: Sequence[str], family: int) -> str:
-    what = ", ".join(labels)
-    return f"No {what}: {why}{_where(plants, family)}."
+def _absence(names: Sequence[str], why: str, plants: Sequence[str], family: int) -> str:
+    return f"No {', '.join(_told(names))}: {why}{_where(plants, family)}."
+
+
+def _told(names: Sequence[str]) -> list[str]:
+    """Return what measures are called; a whole group by its name."""
+    groups = [(label, group) for label, group in _GROUPS if set(group) <= set(names)]
+    grouped = {name for _, group in groups for name in group}
+    return [label for label, _ in groups] + [BY_NAME[name].label for name in names if name not in grouped]
 
 
 def _where(plants: Sequence[str], family: int) -> str:
