@@ -31,14 +31,18 @@ def enter(program: Path, arguments: list[str], testing: bool = False) -> None:
         With status 2 after a sentence on stderr when the environment cannot be made, 130 when it was interrupted.
     """
     root = program.parent.parent
-    if not (root / "pyproject.toml").is_file() or is_inside(os.environ.get(HANDED_OVER)):
+    handed_over = os.environ.pop(HANDED_OVER, None)
+    if handed_over and not is_inside(handed_over):
+        sys.stderr.write(f"{handed_over} is no whole environment; remove it and run the same command again.\n")
+        sys.exit(2)
+    if handed_over or not (root / "pyproject.toml").is_file():
         return
     folder = _ready(root, arguments, testing)
     if folder is None and _has_all_already(root, testing):
         return
     if folder is None:
         folder = _make(root, arguments, testing)
-    if not is_inside(str(folder.path)):
+    if not is_inside(folder.path):
         hand_over(folder, program, arguments)
 
 
@@ -51,8 +55,8 @@ def hand_over(folder: Folder, program: Path, arguments: list[str]) -> None:
     if os.name == "nt":  # exec there starts a second process and returns to the prompt at once
         import subprocess
 
-        sys.exit(subprocess.call(command))  # noqa: S603 - our own program
-    os.execv(command[0], command)  # noqa: S606 - our own program, and no shell in between
+        sys.exit(subprocess.call(command))
+    os.execv(command[0], command)
 
 
 def _ready(root: Path, arguments: list[str], testing: bool) -> "Folder | None":

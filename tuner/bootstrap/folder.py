@@ -46,6 +46,13 @@ class Folder:
         new.replace(self._state_file)
 
     @property
+    def can_be_added_to(self) -> bool:
+        """Whether there is a Python of its own to install into, whose making was not interrupted."""
+        # Without the configuration file its Python is that of the system, and pip would install there.
+        has_python = self.python.exists() and (self.path / "pyvenv.cfg").is_file()
+        return has_python and not self.state.startswith(BEING_MADE)
+
+    @property
     def lacks_window(self) -> bool:
         """Whether the libraries of the window were missing when the environment was made."""
         return WINDOW_LACKS in self.state.splitlines()[:_HEAD]
@@ -93,9 +100,9 @@ def user_cache() -> Path:
     return Path(os.environ.get("XDG_CACHE_HOME") or Path.home() / ".cache", "trimwright")
 
 
-def is_inside(folder: "str | None") -> bool:
+def is_inside(folder: "str | Path") -> bool:
     """Tell whether this process runs in the environment of that folder."""
-    return bool(folder) and os.path.realpath(str(folder)) == os.path.realpath(sys.prefix)
+    return os.path.realpath(folder) == os.path.realpath(sys.prefix)
 
 
 def checksum(root: Path) -> str:

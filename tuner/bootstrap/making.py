@@ -65,7 +65,7 @@ def _complete(folder: Folder, root: Path, wish: Wish, steps: Steps) -> None:
     is_ready = folder.is_ready(root, wish.testing)
     if not is_ready:
         steps.say(f"Making the environment of Trimwright in {folder.path}: once, a minute or two.")
-    _install_system_packages(wish, is_ready or _works(folder), steps)
+    _install_system_packages(wish, is_ready or folder.can_be_added_to, steps)
     if not is_ready:
         _install_python_packages(folder, requirements(root, wish.testing), steps)
     lacks_window = bool(system.missing(system.WINDOW))
@@ -119,15 +119,10 @@ def _list(needs: list[system.Need]) -> str:
     return ", ".join(need.name for need in needs)
 
 
-def _works(folder: Folder) -> bool:
-    """Tell whether there is a Python to install into, and its making was not interrupted."""
-    return folder.python.exists() and not folder.state.startswith(BEING_MADE)
-
-
 def _install_python_packages(folder: Folder, lines: list[str], steps: Steps) -> None:
-    """Install the requirements into the folder, which is made anew unless it works already."""
+    """Install the requirements into the folder, which is made anew unless it can be added to."""
     before = folder.state
-    if not _works(folder):
+    if not folder.can_be_added_to:
         _make_empty(folder, steps)
     elif before:
         folder.state = BEING_MADE

@@ -64,7 +64,7 @@ class Steps:
 
     def _call(self, command: list[str], log: IO[str], environment: dict[str, str] | None) -> int:
         inherited = () if self.descriptor is None or sys.platform == "win32" else (self.descriptor,)
-        return subprocess.call(  # noqa: S603 - the commands are this package's own
+        return subprocess.call(
             command,
             stdin=subprocess.DEVNULL,
             stdout=log,
