@@ -3,7 +3,7 @@
 import shutil
 import tempfile
 from collections.abc import Iterator, Sequence
-from contextlib import contextmanager
+from contextlib import contextmanager, suppress
 from pathlib import Path
 
 from tuner.errors import DeliveryError
@@ -90,10 +90,8 @@ def _move(new: Path, folder: Path, old: Path) -> None:
 def _remove_empty(folders: Sequence[Path]) -> None:
     """Remove folders that were made for nothing, innermost first."""
     for folder in folders:
-        try:
+        with suppress(OSError):  # it was not made after all, or holds what someone else put there
             folder.rmdir()
-        except OSError:
-            return
 
 
 def _listed(names: Sequence[str]) -> str:

@@ -104,18 +104,16 @@ def _signals(sheet: Sheet) -> list[str]:
 
 def _signal(signal: Signal, time_unit: str) -> str:
     symbol = f" {signal.unit}" if signal.unit else ""
-    parts = [signal.name or "unnamed", _range(signal.low, signal.high) + symbol, f"at rest {signal.resting!r}{symbol}"]
+    parts = [signal.name or "unnamed", _range(signal, symbol), f"at rest {signal.resting!r}{symbol}"]
     if isinstance(signal, Manipulated) and signal.rate is not None:
         parts.append(f"at most {signal.rate!r} {signal.unit or '1'}/{time_unit}")
     return ", ".join(parts)
 
 
-def _range(low: float | None, high: float | None) -> str:
-    if low is None and high is None:
-        return "any value in"
-    below = "" if low is None else f"from {low!r}"
-    above = "" if high is None else f"to {high!r}"
-    return f"{below} {above}".strip()
+def _range(signal: Signal, symbol: str) -> str:
+    below = [] if signal.low is None else [f"from {signal.low!r}"]
+    above = [] if signal.high is None else [f"to {signal.high!r}"]
+    return " ".join(below + above) + symbol if below or above else "any value"
 
 
 def _settings(specification: Specification) -> list[str]:

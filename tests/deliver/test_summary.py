@@ -1,0 +1,91 @@
+"""What the head of every file says."""
+
+import pytest
+
+from tests.deliver.samples import BARE, FULL, OPEN, assessment, specification
+from tuner.deliver.specification import CAUTIONS, digest, specify
+from tuner.deliver.summary import banner, head, plain, printable, unmet
+from tuner.judge.assessment import Instability, LimitResult
+
+
+def test_head_says_what_the_controller_is() -> None:
+    """Title, origin, signals with units, sample time, gains, blocks, verdict and cautions, each in a line."""
+    judged = assessment("met", LimitResult("overshoot", 8.0, 4.123456, "gain 1.035, delay 6", met=True))
+    assert head(specify(FULL, judged, "2031-05-04")) == [
+        "Loop: Drying oven, zone 2",
+        "Delivered by Trimwright 0.1.0 on 2031-05-04",
+        f"Tuning sheet: SHA-256 {digest(FULL)}",
+        "",
+        "Measurement and reference: Zone temperature, from 0.0 to 150.0 degC, at rest 72.0 degC",
+        "Effort: Steam valve, from 0.0 to 100.0 %, at rest 40.0 %, at most 8.0 %/s",
+        "Sample time: 0.5 s; step must run exactly that often",
+        "Gains, parallel form: kp 3.0 %/degC, ki 0.3 %/(degC s), kd 2.0 % s/degC",
+        "Further: filter_time 0.6 s, b 0.7, c 0.2, windup_time 12.0 s, action reverse",
+        "Measurement filter: 0.8 s",
+        "Notch: 2.0 rad/s, depth 0.2, width 0.9",
+        "Static feedforward: 0.4 times the reference's distance from rest",
+        "",
+        "Verdict: met, for the nominal plant alone",
+        "overshoot 4.123 %, at most 8 % asked, met; worst plant: gain 1.035, delay 6",
+        "",
+        *(f"Caution: {caution}" for caution in CAUTIONS),
+    ]
+
+
+def test_absent_ends_and_times_are_said_to_be_absent() -> None:
+    """A signal without range and a controller without wind-up time."""
+    lines = head(specification(BARE))
+    assert "Effort: unnamed, any value, at rest 0.0" in lines
+    assert "Further: filter_time 0.0 s, b 1.0, c 0.0, windup_time none, action reverse" in lines
+
+
+def test_feedback_that_is_off_is_told() -> None:
+    """The reader learns that nothing carries the effort over."""
+    told = "Feedback is off: the effort is the feedforward alone; going to automatic is not bumpless"
+    assert told in head(specification(OPEN))
+    assert told not in head(specification(FULL))
+
+
+def test_a_met_sheet_has_no_banner() -> None:
+    """There is nothing to warn of."""
+    assert banner(specification(FULL)) == []
+
+
+def test_banner_names_every_limit_that_is_missed_and_the_instability() -> None:
+    """A measure that does not exist is said not to exist."""
+    runaway = Instability("gain 2", 0.1, 6.93, 1.0, "kp", 2.0, "With gain 2 it doubles every 6.93 s.")
+    judged = assessment(
+        "unstable",
+        LimitResult("overshoot", 8.0, None, "gain 2", met=False),
+        LimitResult("phase_margin", 45.0, 60.0, "gain 2", met=True),
+        LimitResult("gain_margin", 2.0, None, "gain 2", met=False),
+        stable=False,
+        instability=runaway,
+    )
+    assert unmet(FULL, judged) == [
+        "unstable: With gain 2 it doubles every 6.93 s.",
+        "missed: overshoot does not exist, at most 8 % asked, not met; worst plant: gain 2",
+        "missed: gain margin does not exist, at least 2 asked, not met; worst plant: gain 2",
+    ]
+
+
+@pytest.mark.parametrize(
+    ("text", "expected"),
+    [
+        ("a */ b /* c", "a * / b / * c"),
+        ("/*/ **/", "/ * / ** /"),
+        ("what??/", "what? ?/"),
+        ("20 °C µm Öl", "20 deg C um Ol"),
+        ("back\\slash", "back/slash"),
+        ("two\nlines\u2028three", "two lines three"),
+        ("\N{FIRE}", "?"),
+    ],
+)
+def test_plain_text_cannot_end_a_comment(text: str, expected: str) -> None:
+    """ASCII, one line, no comment signs, no trigraphs, no line joins."""
+    assert plain(text) == expected
+
+
+def test_printable_text_keeps_its_letters() -> None:
+    """Only what does not print is replaced."""
+    assert printable("Öl 20 °C\n\u202e\x00x") == "Öl 20 °C   x"
