@@ -160,7 +160,8 @@ CASES = [
     (
         "low = 0, high = 100, resting = 40",
         "low = 10, high = 100",
-        "loop.manipulated.resting: expected a number of at least loop.manipulated.low, 10, found nothing, which means 0",
+        "loop.manipulated.resting: expected a number of at least loop.manipulated.low, 10, "
+        "found nothing, which means 0",
     ),
     (
         "sample_time = 0.5",
@@ -392,7 +393,8 @@ SYNTAX = [
     ("kp 3.0", "line 2, column 4: expected '=' after the key, found 'kp 3.0'"),
     (
         "kp = ",
-        'at the end: expected a value: a number, a "text", true, false, an [array] or a { table }, found the end of the file',
+        'at the end: expected a value: a number, a "text", true, false, an [array] or a { table }, '
+        "found the end of the file",
     ),
     ("kp = 3 4", "line 2, column 8: expected the end of the line after the value, found 'kp = 3 4'"),
     ("kp = 3\nkp = 4", "at the end: expected each key once, found the end of the file"),

@@ -18,8 +18,13 @@ DEEPEST: Final = 100
 RESERVED: Final = ("s", "exp", "sqrt", "pi", "π")
 """Names with a meaning of their own, which no parameter may take."""
 
+SUPERSCRIPTS: Final = "⁰¹²³⁴⁵⁶⁷⁸⁹"
+"""Digits that raise to a power; they are no part of a name."""
+
+NAME: Final = rf"(?![{SUPERSCRIPTS}])[^\W\d_](?:(?![{SUPERSCRIPTS}])\w)*"
+"""What a name looks like: letters of any alphabet, digits and _, a letter first."""
+
 _CLOSING: Final = {"(": ")", "[": "]", "{": "}"}
-_NAME: Final = re.compile(r"[^\W\d_]\w*")
 
 
 def parse(text: str) -> Node:
@@ -53,7 +58,7 @@ def parse(text: str) -> Node:
 
 def is_name(text: str) -> bool:
     """Tell whether a formula can use this text as the name of a parameter."""
-    return text not in RESERVED and _NAME.fullmatch(text) is not None
+    return text not in RESERVED and re.fullmatch(NAME, text) is not None
 
 
 def _check_size(text: str) -> None:

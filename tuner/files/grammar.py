@@ -7,9 +7,9 @@ from typing import Final
 
 from lark import Lark, Token, Transformer
 
+from tuner.files.formula import NAME, SUPERSCRIPTS
 from tuner.model.formula import Exponential, Name, Negative, Node, Number, Power, Product, Quotient, SquareRoot, Sum
 
-SUPERSCRIPTS: Final = "⁰¹²³⁴⁵⁶⁷⁸⁹"
 _PLAIN_DIGITS: Final = str.maketrans(SUPERSCRIPTS + "⁻", "0123456789-")
 
 # A product without a sign has no number on its right: "1.2.3" and "2 3" are slips, not products.
@@ -53,7 +53,7 @@ _GRAMMAR: Final = rf"""
     SUPERSCRIPT: /⁻?[{SUPERSCRIPTS}]+/
     EULER.2: /e(?=\s*(?:\^|\*\*)\s*[(\[{{])/
     NUMBER: /(?:[0-9]+\.?[0-9]*|\.[0-9]+)(?:[eE][+-]?[0-9]+)?/
-    NAME: /(?![{SUPERSCRIPTS}])[^\W\d_](?:(?![{SUPERSCRIPTS}])\w)*/
+    NAME: /{NAME}/
     %ignore /\s+/
 """
 

@@ -3,6 +3,7 @@
 import re
 import tomllib
 from collections.abc import MutableMapping
+from dataclasses import dataclass, replace
 from typing import Any, Final
 
 import tomlkit
@@ -27,40 +28,55 @@ _LARGEST_WHOLE: Final = 1e15
 def fresh(sheet: Sheet) -> str:
     """Return a sheet as a new text."""
     document = tomlkit.document()
-    _merge(document, tree(sheet), "")
+    _merge(document, tree(sheet), _Place())
     return document.as_string()
 
 
-def merged(sheet: Sheet, text: str) -> str | None:
-    """Return a text changed so that it says this sheet; None when it is no TOML."""
+def merged(sheet: Sheet, text: str, *, inline: bool = False) -> str | None:
+    """Return a text changed so that it says this sheet; None when it is no TOML.
+
+    With `inline`, new tables are written within a line, as they must among dotted keys.
+    """
     try:
         document = tomlkit.parse(_with_gains_renamed(text, sheet))
-        _merge(document, tree(sheet), "")
+        _merge(document, tree(sheet), _Place(inline=inline))
         return document.as_string()
     except (TOMLKitError, ValueError, RecursionError):
         return None
 
 
-def _merge(table: _Written, wanted: Tree, path: str) -> None:
+@dataclass(frozen=True, slots=True)
+class _Place:
+    """Where a table or value stands, as a dotted path, and whether new tables there are written within a line."""
+
+    path: str = ""
+    inline: bool = False
+
+    def at(self, name: str) -> "_Place":
+        path = f"{self.path}.{name}".lstrip(".")
+        return _Place(path, self.inline or _INLINE.match(path) is not None)
+
+
+def _merge(table: _Written, wanted: Tree, place: _Place) -> None:
     """Make a table say what is wanted, in the wanted order where order has a meaning."""
     for name in [name for name in table if name not in wanted]:
         _take_out(table, name)
     for name, node in wanted.items():
-        _put(table, name, node, f"{path}.{name}".lstrip("."))
-    if path in ("limits", "plant.parameters"):
+        _put(table, name, node, place.at(name))
+    if place.path in ("limits", "plant.parameters"):
         _put_in_order(table, [name for name in wanted if name in table])
 
 
-def _put(table: _Written, name: str, node: Leaf | Inherited | Tree, path: str) -> None:
+def _put(table: _Written, name: str, node: Leaf | Inherited | Tree, place: _Place) -> None:
     if isinstance(node, Leaf):
         _put_value(table, name, node)
     elif isinstance(node, Inherited):
         if table.get(name):
-            _put(table, name, node.table, path)
+            _put(table, name, node.table, place)
     elif not isinstance(table.get(name), MutableMapping):
-        _put_table(table, name, node, path)
+        _put_table(table, name, node, place)
     else:
-        _merge(table[name], node, path)
+        _merge(table[name], node, place)
 
 
 def _put_value(table: _Written, name: str, leaf: Leaf) -> None:
@@ -76,19 +92,18 @@ def _put_value(table: _Written, name: str, leaf: Leaf) -> None:
         table[name] = _in_style_of(leaf.value, table[name])
 
 
-def _put_table(table: _Written, name: str, wanted: Tree, path: str) -> None:
+def _put_table(table: _Written, name: str, wanted: Tree, place: _Place) -> None:
     """Write a table that was not there; a plant parameter that was a mere number stays one if it can."""
     value = wanted.get("value")
     if name in table and isinstance(value, Leaf) and not _beyond_value(wanted):
         _put_value(table, name, value)
     elif name in table and isinstance(value, Leaf):
-        table[name] = _new_table(wanted, path, inline=True)
+        table[name] = _new_table(wanted, place)
     elif name in table:
         del table[name]
-        _put_table(table, name, wanted, path)
+        _put_table(table, name, wanted, place)
     elif _needed(wanted) or name == "as_found":
-        inline = _INLINE.match(path) is not None or isinstance(table, InlineTable)
-        _add(table, name, _new_table(wanted, path, inline=inline))
+        _add(table, name, _new_table(wanted, replace(place, inline=place.inline or isinstance(table, InlineTable))))
 
 
 def _beyond_value(wanted: Tree) -> bool:
@@ -107,16 +122,16 @@ def _is_needed(node: Leaf | Inherited | Tree) -> bool:
     return not isinstance(node, Inherited) and _needed(node)
 
 
-def _new_table(wanted: Tree, path: str, *, inline: bool) -> Item:
-    if path.startswith("plant.parameters.") and not _beyond_value(wanted):
+def _new_table(wanted: Tree, place: _Place) -> Item:
+    if place.path.startswith("plant.parameters.") and not _beyond_value(wanted):
         value = wanted["value"]
         return _item(value.value if isinstance(value, Leaf) else None)
-    table = tomlkit.inline_table() if inline else tomlkit.table()
+    table = tomlkit.inline_table() if place.inline else tomlkit.table()
     for name, node in wanted.items():
         if isinstance(node, Leaf) and node.shown and node.value is not None:
             table.append(name, _plain(node.value))
         else:
-            _put(table, name, node, f"{path}.{name}")
+            _put(table, name, node, place.at(name))
     return table
 
 

@@ -3,6 +3,7 @@
 import os
 import re
 import tomllib
+from collections.abc import Iterator
 from errno import EISDIR
 from pathlib import Path
 from typing import Any, Final
@@ -74,6 +75,9 @@ _SYNTAX: Final = {
     "Unescaped": "a known character after the backslash",
     "Invalid value": 'a value: a number, a "text", true, false, an [array] or a { table }',
     "Invalid date": "a date that exists",
+    "Invalid hex value": "a character code of hexadecimal digits",
+    "Escaped character": "the code of a character that exists",
+    "Found invalid character": "a character that may stand in a line",
     "Illegal character": "a character that may stand in a line",
 }
 """What was expected, by the beginning of the TOML reader's message."""
@@ -150,13 +154,23 @@ def render(sheet: Sheet, original_text: str = "") -> str:
     str
         TOML that `parse` makes the same sheet of.
     """
+    texts: list[str] = []
+    for text in _texts(sheet, original_text):
+        texts.append(text)
+        if _says(text, sheet):
+            return text
+    return texts[0]  # of a sheet with faults, which no text can say
+
+
+def _texts(sheet: Sheet, original_text: str) -> Iterator[str]:
+    """Yield ways to write a sheet, from the one that keeps most of a person's text to a new one."""
     from tuner.files.rendering import fresh, merged
 
-    text = merged(sheet, original_text) if original_text.strip() else None
-    if text is not None and _says(text, sheet):
-        return text
-    anew = fresh(sheet)
-    return anew if text is None or _says(anew, sheet) else text
+    for inline in (False, True) if original_text.strip() else ():
+        text = merged(sheet, original_text, inline=inline)
+        if text is not None:
+            yield text
+    yield fresh(sheet)
 
 
 def _says(text: str, sheet: Sheet) -> bool:

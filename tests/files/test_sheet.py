@@ -1,0 +1,267 @@
+"""Tuning sheets as files: read whole or told why not, written whole or not at all."""
+
+import os
+import subprocess
+import sys
+from dataclasses import replace
+from pathlib import Path
+
+import pytest
+from hypothesis import given
+from hypothesis import strategies as st
+
+from tuner.errors import SheetError
+from tuner.files.sheet import LARGEST, is_unchanged, parse, read, read_text, render, write
+from tuner.model.controller import Controller
+from tuner.model.loop import Loop, Manipulated, Signal
+from tuner.model.physics import PHYSICS
+from tuner.model.plant import ExpressionPlant, PhysicsPlant, PlantParameter, Spread
+from tuner.model.sheet import Actuator, Sensor, Trial
+
+HEATER = Path(__file__).parent / "heater.toml"
+TEXT = HEATER.read_text(encoding="utf-8")
+
+
+def test_the_example_is_read() -> None:
+    """Every number of the example arrives where it belongs; empty optional tables are as good as absent."""
+    sheet = read(HEATER)
+    assert sheet.loop == Loop(
+        "Product heater outlet",
+        "s",
+        Signal("Outlet temperature", "degC", 0.0, 150.0, 72.0),
+        Manipulated("Steam valve", "%", 0.0, 100.0, 40.0, 8.0),
+    )
+    assert sheet.plant == ExpressionPlant(
+        "gain exp(-delay s) / ((lag s + 1)(tail s + 1))",
+        (
+            PlantParameter("gain", 0.9, "degC/%", Spread(0.9 - 0.135, 0.9 + 0.135, 15.0)),
+            PlantParameter("delay", 4.0, "", Spread(3.0, 6.0)),
+            PlantParameter("lag", 32.0),
+            PlantParameter("tail", 6.0),
+        ),
+    )
+    assert sheet.controller == Controller("parallel", 0.5, 3.0, 0.08, 6.0, 0.6, 1.0, 0.0, 12.0)
+    assert sheet.trial == Trial(240.0, 5.0, 10.0)
+    assert (sheet.actuator, sheet.sensor) == (Actuator(0.8), Sensor(1.5, 0.05, 0.1))
+    assert sheet.limits == (("overshoot", 8.0), ("settling_time", 90.0), ("max_sensitivity", 1.7))
+
+
+def test_absent_keys_have_their_defaults() -> None:
+    """The shortest sheet is one of a bare loop in seconds."""
+    plant, controller, trial = "expression = '1/s'", "sample_time = 0", "duration = 9"
+    sheet = parse(f"sheet = 1\n[loop]\ntitle = 'A'\n[plant]\n{plant}\n[controller]\n{controller}\n[trial]\n{trial}")
+    assert sheet.loop == Loop("A", "s", Signal(), Manipulated())
+    assert (sheet.controller, sheet.trial) == (Controller(), Trial(9.0, 1.0, 0.0, 2.0))
+    assert (sheet.actuator, sheet.sensor, sheet.limits) == (Actuator(), Sensor(), ())
+
+
+def test_signals_may_be_tables_of_their_own() -> None:
+    """A signal in a table of its own says what one within the line says."""
+    inline = 'controlled  = { name = "Outlet temperature", unit = "degC", low = 0, high = 150, resting = 72 }\n'
+    assert inline in TEXT
+    table = '[loop.controlled]\nname = "Outlet temperature"\nunit = "degC"\nlow = 0\nhigh = 150\nresting = 72\n'
+    assert parse(TEXT.replace(inline, "").replace("[plant] ", f"{table}[plant] ")) == parse(TEXT)
+
+
+@pytest.mark.parametrize("written", ['"15%"', '"15 %"', '" 15.0  % "'])
+def test_a_spread_in_percent_is_exact(written: str) -> None:
+    """However the percentage is spelt, it is the same number, and kept."""
+    assert parse(TEXT.replace('"15 %"', written)) == parse(TEXT)
+
+
+def test_physical_parameters_have_defaults_and_units() -> None:
+    """Of a physical model all parameters are there, in its order, those of the sheet with the sheet's numbers."""
+    text = TEXT[: TEXT.index("[plant] ")] + '[plant]\nphysics = "dc motor speed"\nparameters = { inertia = 0.5 }\n'
+    plant = parse(text + TEXT[TEXT.index("[actuator]") :]).plant
+    models = PHYSICS["dc motor speed"].parameters
+    values = {model.name: model.default for model in models} | {"inertia": 0.5}
+    units = [PlantParameter(model.name, values[model.name], model.unit) for model in models]
+    assert plant == PhysicsPlant("dc motor speed", tuple(units))
+
+
+def test_as_found_takes_over_what_it_leaves_out() -> None:
+    """Gains and blocks not named are the controller's; "none" takes one away; another form starts from no gains."""
+    lines = "[controller.as_found]\nkp = 1\nwindup_time = 'none'\n#"
+    controller = parse(TEXT.replace("[controller.as_found] ", lines)).controller
+    assert controller.as_found == replace(controller, gain_1=1.0, windup_time=None, as_found=None)
+    other = parse(
+        TEXT.replace("[controller.as_found] ", "[controller.as_found]\nform = 'series'\nkc = 2\n#")
+    ).controller
+    assert other.as_found == replace(other, form="series", gain_1=2.0, gain_2=0.0, gain_3=0.0, as_found=None)
+
+
+@pytest.fixture
+def said(tmp_path: Path) -> str:
+    """Return the sheet's place in a folder of its own, as sentences name it."""
+    return str(tmp_path / "loop.toml")
+
+
+def told(path: str) -> str:
+    """Return the one sentence about a file that cannot be used."""
+    with pytest.raises(SheetError) as caught:
+        read(Path(path))
+    (sentence,) = caught.value.sentences()
+    return sentence
+
+
+def test_a_missing_file_is_told(said: str) -> None:
+    """No file, one sentence."""
+    assert told(said) == f"{said}: expected a file that can be read, found no such file"
+
+
+def test_a_folder_is_told(tmp_path: Path) -> None:
+    """A folder, one sentence."""
+    assert told(str(tmp_path)) == f"{tmp_path}: expected a tuning sheet, found a folder"
+
+
+def test_a_file_that_may_not_be_read_is_told(said: str, monkeypatch: pytest.MonkeyPatch) -> None:
+    """No permission, one sentence."""
+
+    def refuse(*_: object) -> None:
+        raise PermissionError
+
+    monkeypatch.setattr(Path, "open", refuse)
+    assert told(said) == f"{said}: expected a file that can be read, found no permission"
+
+
+def test_a_file_that_is_not_text_is_told(said: str) -> None:
+    """Bytes that are no UTF-8 are told with the first one's place."""
+    Path(said).write_bytes(b"sheet = 1 # \xff")
+    assert told(said) == f"{said}: expected text in UTF-8, found byte 13, which is none"
+
+
+def test_a_large_file_is_told(said: str) -> None:
+    """A file beyond the limit is told with its size and the limit."""
+    Path(said).write_bytes(b"#" * (LARGEST + 1))
+    assert told(said) == f"{said}: expected at most 1,000,000 bytes, found 1,000,001"
+
+
+def test_an_empty_file_is_told(said: str) -> None:
+    """An empty file, one sentence."""
+    Path(said).touch()
+    assert told(said) == f"{said}: expected a tuning sheet, found an empty file"
+
+
+def test_a_mark_of_byte_order_is_no_fault(said: str) -> None:
+    """A file saved with a byte order mark is read like any other."""
+    Path(said).write_bytes(b"\xef\xbb\xbf" + TEXT.encode())
+    assert read(Path(said)) == parse(TEXT)
+
+
+def test_writing_keeps_text_and_permissions(said: str) -> None:
+    """What is written over a file keeps its comments and who may read it."""
+    path = Path(said)
+    path.write_text(TEXT, encoding="utf-8")
+    path.chmod(0o640)
+    sheet = replace(parse(TEXT), trial=Trial(300.0, 5.0, 10.0))
+    write(path, sheet, read_text(path))
+    assert read_text(path) == TEXT.replace("duration = 240", "duration = 300")
+    assert path.stat().st_mode & 0o777 == 0o640
+    assert list(path.parent.iterdir()) == [path]
+
+
+def test_a_new_file_is_as_open_as_any(said: str) -> None:
+    """A file that was not there gets the permissions that every new file gets."""
+    other = Path(said).with_name("other")
+    other.touch()
+    write(Path(said), parse(TEXT))
+    assert Path(said).stat().st_mode == other.stat().st_mode
+    assert read_text(Path(said)) == render(parse(TEXT))
+
+
+def test_a_link_stays_a_link(said: str, tmp_path: Path) -> None:
+    """Writing to a link writes the file that it points to."""
+    link = tmp_path / "link.toml"
+    Path(said).write_text(TEXT, encoding="utf-8")
+    link.symlink_to(said)
+    write(link, parse(TEXT))
+    assert link.is_symlink()
+    assert read(Path(said)) == parse(TEXT)
+
+
+def test_a_failed_writing_leaves_the_file(said: str, monkeypatch: pytest.MonkeyPatch) -> None:
+    """When the disk is full the old file stays whole, nothing is left beside it, and the reason is told."""
+    Path(said).write_text("as it was", encoding="utf-8")
+
+    def refuse(_: int) -> None:
+        raise OSError(28, "No space left on device")
+
+    monkeypatch.setattr(os, "fsync", refuse)
+    with pytest.raises(SheetError, match="expected a file that can be written, found no space left on device"):
+        write(Path(said), parse(TEXT))
+    assert Path(said).read_text(encoding="utf-8") == "as it was"
+    assert list(Path(said).parent.iterdir()) == [Path(said)]
+
+
+def test_writing_to_a_folder_or_a_locked_file_is_told(
+    said: str, tmp_path: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    """A folder and a file that may not be written are told, and stay."""
+    with pytest.raises(SheetError, match="found a folder"):
+        write(tmp_path, parse(TEXT))
+    Path(said).write_text("as it was", encoding="utf-8")
+    monkeypatch.setattr(os, "access", lambda *_: False)
+    with pytest.raises(SheetError, match="found no permission"):
+        write(Path(said), parse(TEXT))
+    assert Path(said).read_text(encoding="utf-8") == "as it was"
+
+
+def test_a_file_changed_by_another_is_noticed(said: str) -> None:
+    """A file is unchanged while it holds the text that was read, and not when it is gone."""
+    Path(said).write_text(TEXT, encoding="utf-8")
+    assert is_unchanged(Path(said), TEXT)
+    Path(said).write_text(TEXT + "\n", encoding="utf-8")
+    assert not is_unchanged(Path(said), TEXT)
+    Path(said).unlink()
+    assert not is_unchanged(Path(said), TEXT)
+
+
+def test_reading_loads_no_heavy_library() -> None:
+    """Importing the reader loads neither its libraries nor scipy; reading a sheet loads no tomlkit."""
+    code = "import sys; from tuner.files.sheet import parse; print(sorted({} & set(sys.modules)))"
+    heavy = "{'lark', 'jsonschema', 'tomlkit', 'scipy', 'numpy'}"
+    run = subprocess.run([sys.executable, "-c", code.replace("{}", heavy)], capture_output=True, text=True, check=True)
+    assert run.stdout.strip() == "[]"
+
+
+lines = st.sampled_from([line for line in TEXT.splitlines() if line.strip()])
+values = st.sampled_from(
+    ["1", "-1", "nan", "true", "'x'", "[]", "[1, [2]]", "{ a = 1 }", "1979-05-27", "1e400", '"20 %"']
+)
+
+
+@st.composite
+def broken_sheets(draw: st.DrawFn) -> str:
+    """Draw the example with lines lost, doubled, moved, or with another value."""
+    text = TEXT.splitlines()
+    for _ in range(draw(st.integers(1, 4))):
+        index = draw(st.integers(0, len(text) - 1))
+        key, equals, _value = text[index].partition("=")
+        choices = [
+            [],
+            [text[index]] * 2,
+            [draw(lines)],
+            [f"{key}{equals} {draw(values)}"],
+            [draw(st.text(max_size=20))],
+        ]
+        text[index : index + 1] = draw(st.sampled_from(choices))
+    return "\n".join(text)
+
+
+@given(broken_sheets())
+def test_a_broken_sheet_is_read_or_told(text: str) -> None:
+    """Whatever happens to a sheet, it is read, or every fault has its sentence; nothing else escapes."""
+    try:
+        parse(text)
+        told = ["expected nothing else"]
+    except SheetError as error:
+        told = error.sentences()
+    assert told
+    assert all("expected" in sentence and "\n" not in sentence for sentence in told)
+
+
+@given(st.text(max_size=200))
+def test_any_text_is_read_or_told(text: str) -> None:
+    """No text makes anything but a sheet or sentences."""
+    with pytest.raises(SheetError):
+        parse(text)
