@@ -10,6 +10,7 @@ from numpy.typing import NDArray
 from tuner.errors import LoopError
 from tuner.kernels import loop as kernel
 from tuner.law.constants import NO_NOTCH, Constants, NotchCoefficients, bake, notch
+from tuner.law.feedforward import static
 from tuner.model.controller import Controller, Gains
 from tuner.model.family import Member
 from tuner.model.sheet import Sheet
@@ -45,7 +46,14 @@ class Runs:
     limited: NDArray[np.bool_]
 
 
-def simulate(sheet: Sheet, members: Sequence[Member], grid: Grid, softening: Sequence[float] | None = None) -> Runs:
+def simulate(
+    sheet: Sheet,
+    members: Sequence[Member],
+    grid: Grid,
+    softening: Sequence[float] | None = None,
+    *,
+    sensed: bool = False,
+) -> Runs:
     """Run the trial of every member from rest, noise off.
 
     Parameters
@@ -54,6 +62,8 @@ def simulate(sheet: Sheet, members: Sequence[Member], grid: Grid, softening: Seq
         Its sample time is what the law runs at, whatever the sheet's.
     softening : sequence of float, shape (p,), or None
         A measurement filter time for each member, in place of none; may be negative, see `continuous`.
+    sensed : bool
+        Let `Runs.y` be what the sensor makes of the output, before its resolution, rather than the output.
 
     Raises
     ------
@@ -75,8 +85,8 @@ def simulate(sheet: Sheet, members: Sequence[Member], grid: Grid, softening: Seq
         constants,
         np.repeat(np.arange(count), 2),
         *wired.held,
-        wired.c,
-        wired.direct,
+        _rows(wired.c, sensed=sensed),
+        _rows(wired.direct, sensed=sensed),
         delay,
         grid.steps,
         np.ascontiguousarray(sizes[:, 0]),
@@ -90,6 +100,11 @@ def simulate(sheet: Sheet, members: Sequence[Member], grid: Grid, softening: Seq
         limited,
     )
     return Runs(y.reshape(count, 2, -1), u.reshape(count, 2, -1), limited.reshape(count, 2, -1) > 0.0)
+
+
+def _rows(both: Array, *, sensed: bool) -> Array:
+    """Return the rows of output and sensor, or that of the sensor twice."""
+    return np.ascontiguousarray(both[:, [1, 1]]) if sensed else both
 
 
 def law_constants(sheet: Sheet, sample_time: float, measurement_filter: float) -> Constants:
@@ -156,7 +171,10 @@ def _feedforward(sheet: Sheet, grid: Grid) -> Array:
     plant, path = nominal(sheet)
     process = series(lag(sheet.actuator.lag), plant)
     forward = reference_filter(controller, process)
-    if forward is not None:
+    if controller.feedforward is not None and controller.feedforward.kind == "static":
+        rest = sheet.loop.controlled.resting
+        out[0] = static(sheet.trial.reference + rest, rest, controller.feedforward.gain or 0.0)
+    elif forward is not None:
         out[0] = sheet.trial.reference * step_sequence(forward, grid.sample_time, grid.samples)
     if path is not None:
         cancelling = disturbance_filter(path, process)
