@@ -67,7 +67,9 @@ class Held:
         inner: ComplexArray = (self.new + self.old * back[..., None])[..., None]
         matrix: ComplexArray = ahead[..., None, None] * np.eye(len(self.c)) - self.growth
         state = _solved(matrix, inner)
-        return ((state[..., 0] @ self.c) + self.d * back) * np.exp(-s * (self.step * self.steps))
+        with np.errstate(invalid="ignore"):
+            value = ((state[..., 0] @ self.c) + self.d * back) * np.exp(-s * (self.step * self.steps))
+        return np.where(np.isnan(value), complex(math.inf), value)
 
 
 def split(dead_time: float, step: float) -> Delay:
@@ -134,7 +136,7 @@ def held_batch(a: Array, b: Array, step: float, offset: Array) -> HeldBatch:
 
 
 def _solved(matrix: ComplexArray, right: ComplexArray) -> ComplexArray:
-    """Solve many small systems; where one is singular its solution is infinite."""
+    """Solve many small systems; a singular one has infinity as its solution."""
     try:
         return np.asarray(np.linalg.solve(matrix, right), dtype=complex)
     except np.linalg.LinAlgError:
