@@ -3,7 +3,6 @@
 from collections.abc import Sequence
 from dataclasses import dataclass
 from functools import cached_property
-from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
@@ -44,14 +43,6 @@ class Factors:
             self.delay + other.delay,
             self.step,
         )
-
-
-class Values(NamedTuple):
-    """Loop gain and the first and second derivative of its logarithm with respect to frequency."""
-
-    gain: ComplexArray
-    slope: ComplexArray
-    curvature: ComplexArray
 
 
 @dataclass(frozen=True, eq=False)
@@ -110,21 +101,6 @@ class Stack:
             rational = difference[..., : self.zero_count].prod(-1) / difference[..., self.zero_count :].prod(-1)
             value: ComplexArray = rational * self.gain[:, None] * np.exp(-1j * self.delay[:, None] * w)
         return value
-
-    def values(self, w: Array, rows: Index) -> Values:
-        """Return L and its logarithmic derivatives at points of any shape, `rows` telling whose they are."""
-        x = self._x(w)
-        with np.errstate(all="ignore"):
-            difference = x[..., None] - self.roots[rows]
-            inverse = 1.0 / difference
-            gain = difference[..., : self.zero_count].prod(-1) * inverse[..., self.zero_count :].prod(-1)
-            gain *= self.gain[rows] * np.exp(-1j * self.delay[rows] * w)
-            speed = 1j * self.step * (1.0 / self.unit + x) if self.step else np.full(x.shape, 1j / self.unit)
-            first = inverse @ self.sign * speed
-            second = -((inverse * inverse) @ self.sign) * speed * speed
-        if self.step:
-            second += 1j * self.step * first
-        return Values(gain, first - 1j * self.delay[rows], second)
 
     def _x(self, w: Array) -> ComplexArray:
         x: ComplexArray = np.expm1(1j * self.step * w) / self.unit if self.step else 1j * w / self.unit

@@ -1,0 +1,323 @@
+"""Crossings and peaks of a loop gain along a frequency grid, found exactly by Newton's method between grid points.
+
+Plain loops because a crossing is found from a handful of points, one after the other: as array operations each would cost
+more in calls than in arithmetic, twenty times over for the plants of a family.
+"""
+
+import math
+
+import numpy as np
+from numpy.typing import NDArray
+
+from tuner.kernels.compiled import compiled
+
+Array = NDArray[np.float64]
+ComplexArray = NDArray[np.complex128]
+
+GAIN, PHASE, SENSITIVITY, COMPLEMENTARY, BANDWIDTH, GAIN_TURN, PHASE_TURN = range(7)
+"""What is sought: |L| = 1, the phase at -180 degrees, peaks of |S| and |T|, |S| at its level, turns of gain and phase."""
+
+COLUMNS = 11
+(
+    LARGEST_BELOW_ONE,
+    LARGEST_AT,
+    SMALLEST_ANGLE,
+    ANGLE_AT,
+    SMALLEST_DELAY,
+    DELAY_AT,
+    SENSITIVITY_PEAK,
+    SENSITIVITY_AT,
+    COMPLEMENTARY_PEAK,
+    COMPLEMENTARY_AT,
+    REACHED_AT,
+) = range(COLUMNS)
+"""What `scan` finds: largest |L| < 1 at -180 degrees; smallest angle from -180 degrees, rad, and smallest dead time that
+makes up for it, where |L| = 1; largest peaks of |S| and |T|; lowest frequency at which |S| rises to its level."""
+
+_NEAR = 0.5
+_ROUNDS = 80
+_LONGEST_TURN = 1.0
+_PIECES = 4000
+
+
+@compiled
+def point(
+    roots: ComplexArray, zeros: int, gain: float, delay: float, step: float, unit: float, w: float
+) -> tuple[complex, complex, complex]:
+    """Return L at a frequency, and the first and second derivative of its logarithm with respect to frequency.
+
+    Parameters
+    ----------
+    roots : ndarray of complex, shape (n,)
+        Zeros, then poles, in units of `unit`: of s, or of z - 1 when `step` is above 0.
+    zeros : int
+        How many of the roots are zeros.
+    gain, delay, step, unit : float
+        L = gain * prod(x - zeros)/prod(x - poles) * exp(-j w delay).
+    w : float
+        rad per time unit.
+    """
+    if step > 0.0:
+        half = math.sin(0.5 * step * w)
+        x = complex(-2.0 * half * half, math.sin(step * w)) / unit
+        speed = complex(0.0, step) * (x + 1.0 / unit)
+    else:
+        x = complex(0.0, w / unit)
+        speed = complex(0.0, 1.0 / unit)
+    over, under = complex(gain, 0.0), complex(1.0, 0.0)
+    first, second = complex(0.0, 0.0), complex(0.0, 0.0)
+    for i in range(roots.shape[0]):
+        factor = x - roots[i]
+        square = factor.real * factor.real + factor.imag * factor.imag
+        inverse = complex(factor.real / square, -factor.imag / square)
+        if i < zeros:
+            over *= factor
+            first += inverse
+            second -= inverse * inverse
+        else:
+            under *= inverse
+            first -= inverse
+            second += inverse * inverse
+    turn = delay * w
+    value = over * under * complex(math.cos(turn), -math.sin(turn))
+    first *= speed
+    return value, complex(first.real, first.imag - delay), second * speed * speed + complex(0.0, step) * first
+
+
+@compiled
+def signal(kind: int, level: float, value: complex, slope: complex, curvature: complex) -> tuple[float, float]:
+    """Return the function whose zero is of a kind, and its derivative with respect to frequency."""
+    if kind == GAIN:
+        return math.log(abs(value)), slope.real
+    if kind == PHASE:
+        return math.atan2(-value.imag, -value.real), slope.imag
+    if kind == GAIN_TURN:
+        return slope.real, curvature.real
+    if kind == PHASE_TURN:
+        return slope.imag, curvature.imag
+    share = value / (1.0 + value)
+    inward = slope * share
+    if kind == BANDWIDTH:
+        return math.log(abs(1.0 + value) * level), inward.real
+    inward_slope = share * (curvature + slope * slope) - inward * inward
+    if kind == SENSITIVITY:
+        return inward.real, inward_slope.real
+    return (slope / (1.0 + value)).real, (curvature - inward_slope).real
+
+
+@compiled
+def zero(
+    roots: ComplexArray,
+    zeros: int,
+    gain: float,
+    delay: float,
+    step: float,
+    unit: float,
+    kind: int,
+    level: float,
+    low: float,
+    high: float,
+    rising: bool,
+) -> float:
+    """Return where a signal vanishes between two frequencies: Newton's method, or halving when it would leave them."""
+    here = 0.5 * (low + high)
+    for _ in range(_ROUNDS):
+        value, slope, curvature = point(roots, zeros, gain, delay, step, unit, here)
+        height, rate = signal(kind, level, value, slope, curvature)
+        if (height > 0.0) == rising:
+            high = here
+        else:
+            low = here
+        there = here - height / rate
+        # A step of rounding size may leave the bracket by as much.
+        if not (low < there < high or abs(there - here) <= 1e-15 * here):
+            there = 0.5 * (low + high)
+        moved = abs(there - here)
+        here = there
+        if moved <= 4e-16 * here:
+            break
+    return here
+
+
+@compiled
+def _note(kind: int, value: complex, w: float, out: Array) -> None:
+    """Keep a crossing or a peak when it is the worst of its kind so far."""
+    size = abs(value)
+    if kind == PHASE and size < 1.0 and size > out[LARGEST_BELOW_ONE]:
+        out[LARGEST_BELOW_ONE], out[LARGEST_AT] = size, w
+    if kind == GAIN:
+        angle = math.atan2(-value.imag, -value.real)
+        if abs(angle) < out[SMALLEST_ANGLE]:
+            out[SMALLEST_ANGLE], out[ANGLE_AT] = abs(angle), w
+        extra = (angle if angle >= 0.0 else angle + 2.0 * math.pi) / w
+        if extra < out[SMALLEST_DELAY]:
+            out[SMALLEST_DELAY], out[DELAY_AT] = extra, w
+    if kind == SENSITIVITY and 1.0 / abs(1.0 + value) > out[SENSITIVITY_PEAK]:
+        out[SENSITIVITY_PEAK], out[SENSITIVITY_AT] = 1.0 / abs(1.0 + value), w
+    if kind == COMPLEMENTARY and size / abs(1.0 + value) > out[COMPLEMENTARY_PEAK]:
+        out[COMPLEMENTARY_PEAK], out[COMPLEMENTARY_AT] = size / abs(1.0 + value), w
+    if kind == BANDWIDTH and w < out[REACHED_AT]:
+        out[REACHED_AT] = w
+
+
+@compiled
+def _present(kind: int, level: float, one: complex, one_slope: complex, two: complex, two_slope: complex) -> int:
+    """Return +1 or -1 when a zero of a kind lies between two points, as its signal rises or falls there; else 0."""
+    if kind == GAIN:
+        left, right = abs(one) > 1.0, abs(two) > 1.0
+    elif kind == PHASE:
+        left, right = one.imag < 0.0, two.imag < 0.0
+        # Through the negative real axis, not the positive: by the shorter way round.
+        if (two.real * one.imag - two.imag * one.real > 0.0) != left:
+            return 0
+    elif kind == BANDWIDTH:
+        left, right = abs(1.0 + one) * level > 1.0, abs(1.0 + two) * level > 1.0
+        if right:
+            return 0
+    elif kind == SENSITIVITY:
+        left = (one_slope * one * (1.0 + one).conjugate()).real > 0.0
+        right = (two_slope * two * (1.0 + two).conjugate()).real > 0.0
+        if left:
+            return 0
+    else:
+        left = (one_slope * (1.0 + one).conjugate()).real > 0.0
+        right = (two_slope * (1.0 + two).conjugate()).real > 0.0
+        if right:
+            return 0
+    if left == right:
+        return 0
+    return 1 if right else -1
+
+
+@compiled
+def _crossings(
+    roots: ComplexArray,
+    zeros: int,
+    gain: float,
+    delay: float,
+    step: float,
+    unit: float,
+    level: float,
+    a: float,
+    one: complex,
+    one_slope: complex,
+    b: float,
+    two: complex,
+    two_slope: complex,
+    out: Array,
+) -> None:
+    """Find and note what lies between two frequencies."""
+    for kind in range(5):
+        direction = _present(kind, level, one, one_slope, two, two_slope)
+        if direction != 0:
+            w = zero(roots, zeros, gain, delay, step, unit, kind, level, a, b, direction > 0)
+            value, _, _ = point(roots, zeros, gain, delay, step, unit, w)
+            _note(kind, value, w, out)
+
+
+@compiled
+def _turn(
+    one: complex, one_slope: complex, two: complex, two_slope: complex, kind: int
+) -> bool:
+    """Tell whether gain or phase turn round near the critical value, so that two crossings may hide between two points."""
+    if kind == GAIN_TURN:
+        left, right = math.log(abs(one)), math.log(abs(two))
+        turns = (one_slope.real > 0.0) != (two_slope.real > 0.0)
+    else:
+        left, right = math.atan2(-one.imag, -one.real), math.atan2(-two.imag, -two.real)
+        turns = (one_slope.imag > 0.0) != (two_slope.imag > 0.0)
+    return turns and (left > 0.0) == (right > 0.0) and min(abs(left), abs(right)) < _NEAR
+
+
+@compiled
+def _between(
+    roots: ComplexArray,
+    zeros: int,
+    gain: float,
+    delay: float,
+    step: float,
+    unit: float,
+    level: float,
+    a: float,
+    one: complex,
+    one_slope: complex,
+    b: float,
+    two: complex,
+    two_slope: complex,
+    out: Array,
+) -> None:
+    """Find what lies between two points, first cutting where gain or phase turn round."""
+    for kind in (GAIN_TURN, PHASE_TURN):
+        if _turn(one, one_slope, two, two_slope, kind):
+            rising = two_slope.real > 0.0 if kind == GAIN_TURN else two_slope.imag > 0.0
+            w = zero(roots, zeros, gain, delay, step, unit, kind, level, a, b, rising)
+            value, slope, _ = point(roots, zeros, gain, delay, step, unit, w)
+            _crossings(roots, zeros, gain, delay, step, unit, level, a, one, one_slope, w, value, slope, out)
+            a, one, one_slope = w, value, slope
+    _crossings(roots, zeros, gain, delay, step, unit, level, a, one, one_slope, b, two, two_slope, out)
+
+
+@compiled
+def _pieces(turn: float, size: float, out: Array) -> int:
+    """Return in how many pieces to look at a step in which the dead time turns the phase far.
+
+    One will do when |L| is too small there for a margin less than those found. The grid resolves every root, so |L| does
+    not exceed its size at both ends by much.
+    """
+    if turn <= _LONGEST_TURN:
+        return 1
+    if size < 1.0:
+        peak = 1.0 / (1.0 - size)
+        smaller = size <= out[LARGEST_BELOW_ONE] and peak <= out[SENSITIVITY_PEAK]
+        if smaller and size * peak <= out[COMPLEMENTARY_PEAK]:
+            return 1
+    return min(int(2.0 * turn / _LONGEST_TURN) + 1, _PIECES)
+
+
+@compiled
+def scan(
+    w: Array,
+    roots: ComplexArray,
+    zeros: int,
+    gain: Array,
+    delay: Array,
+    step: float,
+    unit: float,
+    level: float,
+    out: Array,
+) -> None:
+    """Find the worst crossings and peaks of several loop gains.
+
+    Parameters
+    ----------
+    w : ndarray, shape (rows, n)
+        Rising frequencies for each loop, dense enough that each root of its gain and of 1 + L is resolved.
+    roots : ndarray of complex, shape (rows, m)
+        See `point`.
+    gain, delay : ndarray, shape (rows,)
+    level : float
+        Of abs(S), which ends the bandwidth.
+    out : ndarray, shape (rows, COLUMNS)
+        Receives what is found: 0 for the largest, infinity for the smallest where there is none.
+    """
+    out[:] = 0.0
+    for row in range(w.shape[0]):
+        mine = out[row]
+        mine[SMALLEST_ANGLE], mine[SMALLEST_DELAY], mine[REACHED_AT] = math.inf, math.inf, math.inf
+        here, args = roots[row], (zeros, gain[row], delay[row], step, unit)
+        a = w[row, 0]
+        one, one_slope, _ = point(here, *args, a)
+        for i in range(1, w.shape[1]):
+            end = w[row, i]
+            if end == a:
+                continue
+            last, last_slope, _ = point(here, *args, end)
+            pieces = _pieces((end - a) * delay[row], max(abs(one), abs(last)), mine)
+            start = a
+            for piece in range(1, pieces + 1):
+                b = end if piece == pieces else start + (end - start) * piece / pieces
+                two, two_slope = last, last_slope
+                if piece < pieces:
+                    two, two_slope, _ = point(here, *args, b)
+                _between(here, *args, level, a, one, one_slope, b, two, two_slope, mine)
+                a, one, one_slope = b, two, two_slope
