@@ -327,7 +327,11 @@ PLANTS = [
     ),
     (
         'physics = "dc motor speed"\nparameters = { inertia = -2 }',
-        "plant.parameters.inertia: expected a number of at least 1e-12, drift included, found -2",
+        "plant.parameters.inertia: expected a number above 0, drift included, found -2",
+    ),
+    (
+        'physics = "dc motor speed"\nparameters = { inductance = { value = 1, spread = [-1, 2] } }',
+        "plant.parameters.inductance: expected a number of at least 0, drift included, found -1",
     ),
     (
         'physics = "dc motor speed"\nparameters = { inertia = { value = 2, unit = "g" } }',

@@ -1,7 +1,7 @@
 """The named parameters of a plant: their values, units and spreads, and whether formula and names agree."""
 
 from collections.abc import Iterable
-from typing import TYPE_CHECKING, Any
+from typing import TYPE_CHECKING, Any, Final
 
 from tuner.errors import Fault, FormulaError, nearest
 from tuner.files import words
@@ -12,7 +12,10 @@ from tuner.model.plant import PlantParameter, Spread, spread_percent
 if TYPE_CHECKING:
     from tuner.model.physics import PhysicalParameter, PhysicsModel
 
-_TABLE = "plant.parameters"
+_TABLE: Final = "plant.parameters"
+
+_SMALL: Final = 1e-9
+"""A minimum up to here stands for above zero."""
 
 
 def formula_names(text: str, key: str, faults: list[Fault]) -> dict[str, int] | None:
@@ -110,7 +113,8 @@ def _told_physical(model: "PhysicalParameter", given: PlantParameter) -> list[Fa
     lowest = given.value if given.spread is None else min(given.value, given.spread.low)
     faults = []
     if lowest < model.minimum:
-        faults.append(Fault(key, f"a number of at least {model.minimum:g}, drift included", f"{lowest:g}"))
+        bound = f"of at least {model.minimum:g}" if model.minimum == 0.0 or model.minimum > _SMALL else "above 0"
+        faults.append(Fault(key, f"a number {bound}, drift included", f"{lowest:g}"))
     if given.unit and given.unit != model.unit:
         faults.append(Fault(f"{key}.unit", f"'{model.unit}', the unit of this model", words.quoted(given.unit)))
     return faults

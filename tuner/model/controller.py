@@ -10,6 +10,9 @@ from tuner.model.parameters import GAIN_KEYS
 Form = Literal["parallel", "standard", "series"]
 Action = Literal["reverse", "direct"]
 
+_ROUNDING = 1e-12
+"""Two equal times of the series form may come out this far beyond the bound that they lie on."""
+
 
 @dataclass(frozen=True, slots=True)
 class Gains:
@@ -137,12 +140,12 @@ class Controller:
         if ti == 0.0 or td == 0.0:
             return replace(self, form="series", gain_1=kc, gain_2=ti, gain_3=td)
         square = 1.0 - 4.0 * td / ti
-        if square < 0.0:
+        if square < -_ROUNDING:
             raise LoopError(
                 f"the series form exists only when the integral time is at least four derivative times: "
                 f"Ti = {ti:g} is less than 4 Td = {4.0 * td:g}"
             )
-        root = sqrt(square)
+        root = sqrt(max(square, 0.0))
         small = 2.0 * td / (1.0 + root)
         return replace(
             self, form="series", gain_1=kc * (1.0 + root) / 2.0, gain_2=ti * (1.0 + root) / 2.0, gain_3=small

@@ -1,7 +1,8 @@
 """The plants that a spread makes: nominal, corners, and a seeded Latin hypercube between them."""
 
 from dataclasses import dataclass
-from itertools import product
+from itertools import combinations, cycle, islice, product
+from math import prod
 
 import numpy as np
 
@@ -61,13 +62,8 @@ def _corners(count: int, room: int) -> list[tuple[float, ...]]:
 
 def _with_generated(signs: tuple[float, ...], count: int) -> tuple[float, ...]:
     """Add the signs of a fractional design: each a product of a different choice of the free signs, largest first."""
-    extra: list[float] = []
-    mask = 2 ** len(signs) - 1
-    for _ in range(count - len(signs)):
-        chosen = [sign for bit, sign in enumerate(signs) if mask >> bit & 1]
-        extra.append(float(np.prod(chosen)))
-        mask = mask - 1 if mask > 1 else 2 ** len(signs) - 1
-    return (*signs, *extra)
+    choices = [chosen for size in range(len(signs), 1, -1) for chosen in combinations(signs, size)] or [signs]
+    return (*signs, *(prod(chosen) for chosen in islice(cycle(choices), count - len(signs))))
 
 
 def _latin_hypercube(count: int, size: int) -> list[tuple[float, ...]]:
