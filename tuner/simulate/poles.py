@@ -1,7 +1,7 @@
 """Closed-loop poles, every mode of the loop counted, also those that the loop gain does not show."""
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 
@@ -93,36 +93,47 @@ def _states(loop: Loop) -> float:
 
 def _open(loop: Loop) -> Poles:
     """Return the modes of a chain that nothing acts on."""
-    return _listed(loop.chain.poles, loop.sample_time, _scale(loop.chain.poles))
+    return _listed(loop.chain.poles[None], loop.sample_time, _scale(loop.chain.poles[None]))[0]
 
 
-def _scale(modes: ComplexArray) -> float:
+def _scale(modes: ComplexArray) -> Array:
+    """Return the typical size of the modes in each row, 1 where there are none."""
     sizes = np.abs(modes)
-    sizes = sizes[np.isfinite(sizes) & (sizes > 0.0)]
-    return float(np.exp(np.log(sizes).mean())) if len(sizes) else 1.0
+    usable = np.isfinite(sizes) & (sizes > 0.0)
+    logarithm = np.log(np.where(usable, sizes, 1.0)).sum(1) / np.maximum(usable.sum(1), 1)
+    return np.exp(logarithm)
 
 
 def _delayed(loop: Loop, row: Stack) -> Poles:
     found = delayed_poles(row)
-    listed = _listed(found.values, loop.sample_time, _scale(row.modes[0]))
-    return Poles(
-        listed.values,
-        listed.stable and not found.reason,
-        listed.count_unstable,
-        listed.growth,
-        False,
-        found.known_from,
-        found.reason,
+    (listed,) = _listed(found.values[None], loop.sample_time, _scale(row.modes))
+    return replace(
+        listed,
+        stable=listed.stable and not found.reason,
+        complete=False,
+        known_from=found.known_from,
+        reason=found.reason,
     )
 
 
-def _listed(s: ComplexArray, step: float, scale: float) -> Poles:
-    """Sort poles and count those on or beyond the border."""
-    values = s[np.lexsort((-s.imag, np.abs(s.imag), -s.real))]
-    border = _MARGINAL / step if step else _MARGINAL * np.abs(values) + 1e-13 * scale
-    count = int((values.real >= -border).sum())
-    growth = float(values[0].real) if len(values) else -np.inf
-    return Poles(values, count == 0, count, growth, complete=True, known_from=-np.inf)
+def _listed(s: ComplexArray, step: float, scale: Array) -> list[Poles]:
+    """Sort the poles of each row and count those on or beyond the border; minus infinity is none."""
+    order = np.lexsort((-s.imag, np.abs(s.imag), -s.real))
+    values = np.take_along_axis(s, order, axis=1)
+    border = _MARGINAL / step if step else _MARGINAL * np.abs(values) + 1e-13 * scale[:, None]
+    unstable = (values.real >= -border).sum(1).tolist()
+    present = (values.real > -np.inf).sum(1).tolist()
+    return [
+        Poles(
+            values=row[:length],
+            stable=count == 0,
+            count_unstable=count,
+            growth=float(row[0].real) if length else -np.inf,
+            complete=True,
+            known_from=-np.inf,
+        )
+        for row, count, length in zip(values, unstable, present, strict=True)
+    ]
 
 
 def _finite(loops: Sequence[Loop], rows: Stack) -> list[Poles]:
@@ -131,25 +142,27 @@ def _finite(loops: Sequence[Loop], rows: Stack) -> list[Poles]:
         return []
     matrices = _sampled_matrices(loops) if rows.step else _continuous_matrices(loops)
     x = _refined(rows, np.linalg.eigvals(matrices).astype(complex) / rows.unit) * rows.unit
-    return [_listed(_mapped(row, rows.step), rows.step, _scale(rows.modes[i])) for i, row in enumerate(x)]
-
-
-def _mapped(x: ComplexArray, step: float) -> ComplexArray:
-    """Return roots in s, conjugates exact, without those at z = 0."""
-    if step:
-        x = x[np.abs(1.0 + x) > _DEADBEAT]
-    above, real = x[x.imag > 0.0], x[x.imag == 0.0]
-    above, real = to_s(above, step), to_s(real, step)
-    return np.concatenate((real, above, above.conj()))
+    s = to_s(x, rows.step)
+    if rows.step:
+        s[np.abs(1.0 + x) <= _DEADBEAT] = -np.inf
+    return _listed(s, rows.step, _scale(rows.modes))
 
 
 def _refined(rows: Stack, x: ComplexArray) -> ComplexArray:
-    """Return roots after one step of Newton's method, or as many as they need where eigenvalues were poor."""
-    step = np.where(x.imag == 0.0, newton_steps(rows, x).real, newton_steps(rows, x))
+    """Return roots after one step of Newton's method, or as many as they need where eigenvalues were poor.
+
+    Parameters
+    ----------
+    x : ndarray of complex, shape (rows, k)
+        Eigenvalues of real matrices: each complex one before its conjugate, if it lies above the real axis.
+    """
+    step = newton_steps(rows, x)
+    step.imag[x.imag == 0.0] = 0.0
     deadbeat = np.abs(1.0 + x * rows.unit) <= _DEADBEAT if rows.step else np.zeros(x.shape, dtype=bool)
     step[deadbeat] = 0.0
     poor = (np.abs(step) > _SURE * np.maximum(np.abs(x), 1e-6)).any(1)
     refined = x - step
+    refined = np.where(x.imag < 0.0, np.roll(refined, 1, axis=1).conj(), refined)
     for row in np.flatnonzero(poor):
         live = ~deadbeat[row]
         refined[row, live] = _together(rows.take([row]), x[row, live])
@@ -160,9 +173,9 @@ def _together(row: Stack, x: ComplexArray) -> ComplexArray:
     """Return roots found together, symmetric about the real axis; the given ones where that fails."""
     roots, error = aberth(lambda at: newton_steps(row, at[None])[0], x)
     real = np.abs(roots.imag) <= 1e-9 * np.abs(roots)
-    roots = np.where(real, roots.real, roots)
-    paired = int((roots.imag > 0.0).sum()) == int((roots.imag < 0.0).sum())
-    return roots if paired and (error < 1e-3).all() else x
+    above = roots[~real & (roots.imag > 0.0)]
+    found = np.concatenate((roots[real].real, above, above.conj()))
+    return found if len(found) == len(x) and (error < 1e-3).all() else x
 
 
 # --- the closed loop as a matrix ---------------------------------------------------------------------------------
@@ -220,12 +233,8 @@ def _sampled_matrices(loops: Sequence[Loop]) -> Array:
 
 def _law_states(controller: Controller) -> int:
     gains = controller.parallel()
-    return (
-        (gains.ki != 0.0)
-        + (gains.kd != 0.0)
-        + (controller.measurement_filter != 0.0)
-        + 2 * (controller.notch is not None)
-    )
+    single = (gains.ki, gains.kd, controller.measurement_filter)
+    return sum(1 for value in single if value) + (0 if controller.notch is None else 2)
 
 
 class _LawRows:
