@@ -6,7 +6,6 @@ import pytest
 
 from tests.deliver.samples import BARE, FULL, OPEN, specification
 from tuner.deliver.reference import Before, Flags, Reference, Sample
-from tuner.deliver.specification import constants
 from tuner.model.sheet import Sheet
 
 
@@ -58,10 +57,3 @@ def test_a_manual_effort_that_is_no_number_holds_until_there_is_one() -> None:
     before = steps(controller, 5)[-1]
     assert controller.take(Sample(Before.MANUAL, nan, 75.0, 73.0)) == (before, Flags.FAULT | Flags.MANUAL)
     assert controller.take(Sample(Before.AUTO, 0.0, 75.0, 73.0)) == (before, 0)
-
-
-def test_constants_follow_the_sheet() -> None:
-    """Without feedback every gain is zero, that of the wind-up too; whole numbers become floating-point ones."""
-    made = constants(OPEN.controller, OPEN.loop)
-    assert (made.proportional_gain, made.integral_gain, made.derivative_gain, made.windup_gain) == (0, 0, 0, 0)
-    assert all(type(value) is float for value in made)

@@ -14,11 +14,12 @@ from tuner.deliver.refusals import refuse_controller, refuse_languages, refuse_v
 from tuner.deliver.specification import Specification, specify
 from tuner.deliver.target import Target
 from tuner.deliver.targets import targets
+from tuner.deliver.trial import trial
 from tuner.judge.assessment import Assessment
 from tuner.model.sheet import Sheet
 
 STEPS = 50_000
-"""Samples of the closed loop that every file is compared over."""
+"""Samples of the kicked closed loop that every file is compared over, beside the trial."""
 
 _PROOF = "proof.json"
 
@@ -97,4 +98,4 @@ def _prove(folder: Path, chosen: Sequence[Target], specification: Specification)
 
 
 def _recorded(specification: Specification) -> Recording:
-    return excite(specification, nominal_plant(specification.sheet), STEPS)
+    return trial(specification).then(excite(specification, nominal_plant(specification.sheet), STEPS))

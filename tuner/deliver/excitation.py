@@ -19,10 +19,14 @@ PlantStep = Callable[[float], float]
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Recording:
-    """What a controller was given, and what the law answered; exact."""
+    """What a controller was given, and what the law answered; exact. The first sample finds it reset."""
 
     samples: tuple[Sample, ...]
     outcomes: tuple[Outcome, ...]
+
+    def then(self, other: "Recording") -> "Recording":
+        """Return this recording with another after it."""
+        return Recording(self.samples + other.samples, self.outcomes + other.outcomes)
 
     def inputs(self) -> bytes:
         """Return the samples as four doubles each, in the byte order of this machine."""
@@ -38,7 +42,7 @@ def excite(specification: Specification, plant: Callable[[], PlantStep], steps: 
     reference, push = specification.reference(), plant()
     samples: list[Sample] = []
     outcomes: list[Outcome] = []
-    measurement, start_over = 0.0, False
+    measurement, start_over = 0.0, True
     for position in range(steps):
         before, value = (Before.RESET, 0.0) if start_over else kicks.switch(position)
         sample = Sample(before, value, kicks.reference(position), kicks.reading(position, measurement))

@@ -5,10 +5,9 @@ from collections.abc import Callable
 from operator import mul
 
 from tuner.deliver.excitation import PlantStep
-from tuner.model.family import family
 from tuner.model.sheet import Sheet
+from tuner.simulate.batch import nominal
 from tuner.simulate.discrete import Held, chain, hold
-from tuner.simulate.realise import realise
 
 
 def nominal_plant(sheet: Sheet) -> Callable[[], PlantStep]:
@@ -19,8 +18,7 @@ def nominal_plant(sheet: Sheet) -> Callable[[], PlantStep]:
     LoopError
         When the plant cannot be realised.
     """
-    nominal = family(sheet.plant)[0]
-    system = chain(realise(sheet.plant, nominal.values), sheet.actuator.lag, sheet.sensor.lag)
+    system = chain(nominal(sheet).plant, sheet.actuator.lag, sheet.sensor.lag)
     held = hold(system, sheet.controller.sample_time, sheet.controller.delay_samples)
     return lambda: _Stepping(held)
 

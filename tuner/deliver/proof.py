@@ -11,6 +11,9 @@ from tuner.deliver.excitation import Recording
 from tuner.deliver.reference import Outcome
 from tuner.errors import DeliveryError
 
+ON_WHAT = "on both runs of the trial as simulated and on a long kicked run of the same loop"
+"""What files are run on, for `Proof.how`."""
+
 _PATIENCE = 120.0  # seconds that a run or a compilation may take
 
 

@@ -8,10 +8,10 @@ from tuner import __version__
 from tuner.deliver.reference import Reference
 from tuner.deliver.vectors import Row, rows
 from tuner.judge.assessment import Assessment
-from tuner.law.constants import NO_NOTCH, Constants, bake, notch
+from tuner.law.constants import Constants
 from tuner.model.controller import Controller
-from tuner.model.loop import Loop
 from tuner.model.sheet import Sheet
+from tuner.simulate.batch import law_constants
 
 CAUTIONS = (
     "This is no safety function: interlocks and trips stay in force.",
@@ -58,7 +58,7 @@ class Specification:
 
 def specify(sheet: Sheet, assessment: Assessment, date: str) -> Specification:
     """Gather what a delivery of this sheet says."""
-    made = constants(sheet.controller, sheet.loop)
+    made = constants(sheet)
     reference = Reference(made, static_gain(sheet.controller), feedback=sheet.controller.feedback)
     return Specification(
         sheet=sheet,
@@ -71,28 +71,16 @@ def specify(sheet: Sheet, assessment: Assessment, date: str) -> Specification:
     )
 
 
-def constants(controller: Controller, loop: Loop) -> Constants:
-    """Return the constants of the law; without feedback every gain is zero, that of the wind-up too."""
-    gains, on = controller.parallel(), float(controller.feedback)
-    cut = controller.notch
-    made = bake(
-        sample_time=controller.sample_time,
-        kp=on * gains.kp,
-        ki=on * gains.ki,
-        kd=on * gains.kd,
-        filter_time=controller.filter_time,
-        windup_time=controller.windup_time if controller.feedback else None,
-        b=controller.b,
-        c=controller.c,
-        action=controller.sign,
-        low=loop.manipulated.low,
-        high=loop.manipulated.high,
-        rate=loop.manipulated.rate,
-        measurement_filter_time=controller.measurement_filter,
-        notch_section=notch(controller.sample_time, cut.frequency, cut.depth, cut.width) if cut else NO_NOTCH,
-        resting_measurement=loop.controlled.resting,
-        resting_effort=loop.manipulated.resting,
-    )
+def constants(sheet: Sheet) -> Constants:
+    """Return the constants that the simulation gives to the law.
+
+    Raises
+    ------
+    LoopError
+        When the controller cannot run at its sample time.
+    """
+    controller = sheet.controller
+    made = law_constants(sheet, controller.sample_time, controller.measurement_filter)
     return Constants(*(float(value) for value in made))
 
 

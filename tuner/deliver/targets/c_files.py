@@ -7,7 +7,7 @@ from textwrap import fill as wrap
 
 from tuner.deliver import words
 from tuner.deliver.excitation import Recording
-from tuner.deliver.proof import Proof, call, compared, not_run, run
+from tuner.deliver.proof import ON_WHAT, Proof, call, compared, not_run, run
 from tuner.deliver.specification import Specification
 from tuner.deliver.summary import banner, head, plain
 from tuner.deliver.target import Target, fill, template
@@ -38,7 +38,7 @@ def prove(folder: Path, work: Path, specification: Specification, recording: Rec
     if made.returncode != 0:
         raise DeliveryError(f"{_SOURCE}: the C compiler refuses it: {made.stderr.strip()[:400]}")
     found = run([program], recording, work)
-    how = f"compiled by {compiler} -std=c99 -O2 and run, its self-test too, on the inputs of the simulated closed loop"
+    how = f"compiled by {compiler} -std=c99 -O2 and run, its self-test too, {ON_WHAT}"
     return (compared(_SOURCE, how, recording, found), compared(_HEADER, how, recording, found))
 
 

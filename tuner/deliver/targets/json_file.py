@@ -9,7 +9,7 @@ from typing import Any
 
 from tuner.deliver import words
 from tuner.deliver.excitation import Recording
-from tuner.deliver.proof import Proof, compared
+from tuner.deliver.proof import ON_WHAT, Proof, compared
 from tuner.deliver.reference import Flags, Reference
 from tuner.deliver.specification import CAUTIONS, Specification
 from tuner.deliver.summary import banner
@@ -40,7 +40,9 @@ def prove(folder: Path, work: Path, specification: Specification, recording: Rec
         raise DeliveryError(f"{_FILE}: its constants are not those of its gains")
     gain = _values(content["parameters"]).get("controller.feedforward.gain")
     reference = Reference(made, gain, feedback=content["feedback"])
-    how = "read back, its constants made anew from its gains, and the law run with them on the simulated closed loop"
+    how = (
+        "read back, its constants made anew from its gains, and the law run with them on the trial and the kicked loop"
+    )
     return (compared(_FILE, how, recording, reference.run(recording.samples)),)
 
 

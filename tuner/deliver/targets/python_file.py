@@ -6,7 +6,7 @@ from textwrap import fill as wrap
 
 from tuner.deliver import words
 from tuner.deliver.excitation import Recording
-from tuner.deliver.proof import Proof, compared, not_run, run
+from tuner.deliver.proof import ON_WHAT, Proof, compared, not_run, run
 from tuner.deliver.specification import Specification
 from tuner.deliver.summary import banner, head, printable
 from tuner.deliver.target import Target, fill, template
@@ -51,7 +51,7 @@ def prove(folder: Path, work: Path, specification: Specification, recording: Rec
     harness.write_text(template("harness.py"), encoding="utf-8")
     found = run([sys.executable, "-I", "-S", harness, folder / _FILE], recording, work)
     version = ".".join(str(part) for part in sys.version_info[:3])
-    how = f"run by Python {version} without packages, its self-test too, on the inputs of the simulated closed loop"
+    how = f"run by Python {version} without packages, its self-test too, {ON_WHAT}"
     return (compared(_FILE, how, recording, found),)
 
 
