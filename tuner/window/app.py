@@ -44,6 +44,7 @@ def open_window(path: Path | None) -> int:
     if not isinstance(application, QApplication):
         raise TrimwrightError("a program without windows runs in this process already")
     window = built(application, document)
+    watch_for_faults(window)
     window.show()
     window.start()
     return application.exec()
@@ -81,9 +82,13 @@ def wire(window: MainWindow, asking: Asking) -> Menus:
     menus = Menus(window, files, Commands(window, asking))
     window.dropped.connect(files.open_path)
     window.closing.connect(lambda event: _close(window, files, event))
+    return menus
+
+
+def watch_for_faults(window: MainWindow) -> None:
+    """From now on, say in the window whatever nothing caught, and log it."""
     log = faults.keep_log()
     faults.tell_faults(lambda sentence: QTimer.singleShot(0, lambda: window.say_fault(f"{sentence} See {log}.")))
-    return menus
 
 
 def _close(window: MainWindow, files: SheetFiles, event: QCloseEvent) -> None:

@@ -4,6 +4,8 @@ from PySide6.QtCore import QSize, Qt
 from PySide6.QtGui import QPainter, QPaintEvent, QResizeEvent
 from PySide6.QtWidgets import QLabel, QSizePolicy
 
+from tuner.window.theme import Theme
+
 
 class ElidedLabel(QLabel):
     """A label of one line.
@@ -53,3 +55,21 @@ class ElidedLabel(QLabel):
 
     def _tip(self) -> None:
         self.setToolTip(self.text() if self._fitted() != self.text() else "")
+
+
+class RoleLabel(ElidedLabel):
+    """A line of words in the colour of a role."""
+
+    def __init__(self, theme: Theme, *, stretch: bool = True) -> None:
+        super().__init__(stretch=stretch)
+        self._theme, self._role = theme, "quiet"
+
+    def set_role(self, role: str) -> None:
+        """Take the colour of a role; does nothing when it has it."""
+        if role != self._role:
+            self._role = role
+            self.dress()
+
+    def dress(self) -> None:
+        """Take over the colours of the theme."""
+        self.setStyleSheet(f"color: {self._theme.palette.colours[self._role]}")

@@ -36,7 +36,9 @@ def tell_faults(say: Say) -> None:
             sys.__excepthook__(kind, fault, trace)
             return
         _log.error("%s", "".join(traceback.format_exception(kind, fault, trace)))
-        say(sentence_on(fault))
+        sentence = sentence_on(fault)
+        sys.stderr.write(f"{sentence}\n")
+        say(sentence)
 
     sys.excepthook = hook
 

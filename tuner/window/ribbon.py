@@ -10,10 +10,10 @@ from PySide6.QtWidgets import QHBoxLayout, QScrollArea, QSizePolicy, QVBoxLayout
 
 from tuner.judge.assessment import Assessment, LimitResult
 from tuner.judge.overlay import at_plant
-from tuner.judge.wording import quantity, told_apart, unit_of
+from tuner.judge.wording import number, quantity, told_apart, unit_of
 from tuner.model.loop import Loop
 from tuner.model.measures import BY_NAME
-from tuner.window.elided import ElidedLabel
+from tuner.window.elided import ElidedLabel, RoleLabel
 from tuner.window.flow import FlowLayout
 from tuner.window.shown import Shown
 from tuner.window.signs import Sign, draw_sign
@@ -60,11 +60,16 @@ def chip_words(result: LimitResult, loop: Loop, *, stable: bool) -> ChipWords:
     facts, unit = BY_NAME[result.measure], unit_of(result.measure, loop)
     sign = "≥" if facts.at_least else "≤"
     size = abs(result.value) if facts.by_size and result.value is not None else result.value
-    digits = 3 if size is None else max(3, min(told_apart(size, result.limit), 6))
-    value = quantity(size, unit, digits).replace("-", "\u2212").replace("inf", "∞") if size is not None else "—"
+    value = _figures(size, result.limit, unit) if size is not None else "none" if result.met else "—"
     standing: Standing = "met" if result.met else "unstable" if result.value is None and not stable else "missed"
     limit = f"{sign} {quantity(result.limit, unit)}"
     return ChipWords(facts.label, value, limit, at_plant(result.plant).strip(), standing)
+
+
+def _figures(value: float, limit: float, unit: str) -> str:
+    """Return a value with three figures, more where they are needed to tell it from its limit."""
+    digits = 3 if number(value, 3) != number(limit, 3) else min(told_apart(value, limit), 6)
+    return quantity(value, unit, digits).replace("-", "\u2212").replace("inf", "∞")
 
 
 class Chip(QWidget):
@@ -153,9 +158,8 @@ class Ribbon:
 
     def __init__(self, theme: Theme) -> None:
         self._theme = theme
-        self._standing: Standing = "waiting"
         self.chips: list[Chip] = []
-        self.title, self.verdict, self.detail = ElidedLabel(), ElidedLabel(stretch=False), ElidedLabel()
+        self.title, self.verdict, self.detail = ElidedLabel(), RoleLabel(theme, stretch=False), RoleLabel(theme)
         self._sign = VerdictSign(theme)
         self._flow_host, self._scroll = QWidget(), QScrollArea()
         self._flow = FlowLayout(self._flow_host, spacing=8)
@@ -184,20 +188,20 @@ class Ribbon:
         """Take over the look."""
         self.title.setFont(self._theme.font("title", strong=True))
         self.verdict.setFont(self._theme.font("body", strong=True))
-        self.verdict.setStyleSheet(f"color: {self._theme.palette.colours[_ROLE[self._standing]]}")
-        bad = self._standing in ("failed", "unstable")
-        colour = self._theme.palette.colours["lost_word" if bad else "quiet"]
-        self.detail.setStyleSheet(f"color: {colour}")
+        self.verdict.dress()
+        self.detail.dress()
         self._sign.update()
         for chip in self.chips:
             chip.update()
 
     def _say(self, standing: Standing, verdict: str, detail: str) -> None:
-        self._standing = self._sign.standing = standing
+        self._sign.standing = standing
         self.verdict.setText(verdict)
         self.detail.setText(detail)
+        self.verdict.set_role(_ROLE[standing])
+        self.detail.set_role("lost_word" if standing in ("failed", "unstable") else "quiet")
         self.widget.setAccessibleName(f"Verdict: {verdict}. {detail}")
-        self.dress()
+        self._sign.update()
 
     def _show_chips(self, shown: Shown) -> None:
         results = shown.assessment.limits

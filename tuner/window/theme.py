@@ -1,5 +1,6 @@
 """The look of the window: which shade holds, its colours and its typeface, told to everyone when it changes."""
 
+from functools import cache
 from typing import Literal, get_args
 
 from PySide6.QtCore import QObject, Qt, Signal
@@ -54,7 +55,7 @@ class Theme(QObject):
 
     def font(self, size: Size = "body", *, strong: bool = False) -> QFont:
         """Return the typeface in one of the three sizes, its figures all of one width."""
-        return typeface(size, strong=strong)
+        return QFont(typeface(size, strong=strong))
 
     def dress(self, application: QApplication) -> None:
         """Give the whole application the look that holds now."""
@@ -80,8 +81,9 @@ class Theme(QObject):
         self.changed.emit()
 
 
+@cache
 def typeface(size: Size, *, strong: bool = False) -> QFont:
-    """Return the one typeface in a size, with tabular figures."""
+    """Return the one typeface in a size, with tabular figures; to be copied before it is altered."""
     font = QFont()
     font.setFamilies(list(FAMILIES))
     font.setPixelSize(getattr(sizes(), size))

@@ -7,7 +7,7 @@ from PySide6.QtCore import QEvent, QObject, QPointF, Qt, Signal
 from PySide6.QtGui import QContextMenuEvent, QResizeEvent
 from PySide6.QtWidgets import QHBoxLayout, QSizePolicy, QVBoxLayout, QWidget
 
-from tuner.window.elided import ElidedLabel
+from tuner.window.elided import ElidedLabel, RoleLabel
 from tuner.window.plots.extent import Extent
 from tuner.window.plots.layers import GroundLayer, MarkLayer
 from tuner.window.plots.ticks import Tick, ticks
@@ -82,6 +82,7 @@ class Panel(QObject):
         self.shown: Shown | None = None
         self._theme = theme
         self._by_hand = False
+        self._divided: tuple[tuple[Tick, ...], tuple[Tick, ...], str] | None = None
         self.view = PlotView()
         box = self.view.getPlotItem().getViewBox()
         self.ground = GroundLayer(box, theme)
@@ -149,6 +150,7 @@ class Panel(QObject):
             )
             axis.setPen(pg.mkPen(self._theme.colour("line")))
             axis.setTextPen(pg.mkPen(self._theme.colour("quiet")))
+        self._missed.dress()
         self.ground.update()
         self.marks.update()
 
@@ -158,7 +160,7 @@ class Panel(QObject):
         """Show the axis in words, and what is missed here, or that nothing is."""
         self._axis.setText(axis)
         self._missed.setText(missed)
-        self._missed.setStyleSheet(f"color: {self._theme.palette.colours['lost_word' if bad else 'quiet']}")
+        self._missed.set_role("lost_word" if bad else "quiet")
         self.widget.setAccessibleDescription(f"{axis}. {missed}")
 
     def set_ranges(self, x: Extent, y: Extent) -> None:
@@ -177,6 +179,9 @@ class Panel(QObject):
 
     def set_ticks(self, x: Sequence[Tick], y: Sequence[Tick], x_unit: str) -> None:
         """Divide both axes and draw the grid; the unit stands behind the last number of the horizontal axis."""
+        if (tuple(x), tuple(y), x_unit) == self._divided:
+            return
+        self._divided = (tuple(x), tuple(y), x_unit)
         item = self.view.getPlotItem()
         named = [(tick.at, tick.text) for tick in x]
         if named and x_unit:
@@ -212,7 +217,7 @@ class Panel(QObject):
         column.setContentsMargins(8, 4, 8, 4)
         column.setSpacing(0)
         column.addLayout(self._header())
-        self._missed = ElidedLabel()
+        self._missed = RoleLabel(self._theme)
         self._missed.setFont(self._theme.font("small"))
         self._missed.setContentsMargins(0, 0, 0, 4)
         column.addWidget(self._missed)

@@ -50,10 +50,9 @@ def thinned(t: Array, curves: Array, bins: int) -> tuple[Array, Array]:
 
 
 def clipped(values: Array, seen: Extent) -> Array:
-    """Return values that never leave the picture by more than its own height; what is not a number lies at its foot."""
+    """Return values that never leave the picture by more than its own height; what is not a number lies at its top."""
     bounds = seen.grown(1.0)
-    numbers = np.nan_to_num(values, nan=bounds.low, posinf=bounds.high, neginf=bounds.low)
-    return np.clip(numbers, bounds.low, bounds.high)
+    return np.fmax(np.fmin(values, bounds.high), bounds.low)
 
 
 def single(t: Array, y: Array, seen: Extent, bins: int) -> Points:

@@ -14,4 +14,4 @@ def missed_words(shown: Shown, plots: Collection[Plot]) -> tuple[str, bool]:
     count = sum(PLOT_OF[limit.measure] in plots for limit in shown.assessment.limits)
     if not count:
         return "nothing here is on the acceptance sheet", False
-    return ("the limit here is met" if count == 1 else f"all {count} limits here are met"), False
+    return ("the limit here is met", "both limits here are met", f"all {count} limits here are met")[min(count, 3) - 1], False
