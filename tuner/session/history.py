@@ -42,7 +42,7 @@ class History(Generic[State]):
             return self
         if merge_key is not None and merge_key == self.open_key:
             return replace(self, present=state)
-        past = (*self.past, Step(label, self.present))[-DEPTH:]
+        past = (*self.released().past, Step(label, self.present))[-DEPTH:]
         return History(state, past, (), merge_key)
 
     def released(self) -> "History[State]":

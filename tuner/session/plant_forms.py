@@ -44,26 +44,26 @@ class PlantForms:
         What was last typed in each form, at most one of each; what was converted is not among them.
     alike : tuple of Plant
         Those that are the present plant in another form: it was converted, and not changed since.
-    origin : Plant or None
-        The plant shown before another form could not show it; kept until a plant is changed by hand.
+    origin : tuple of Plant
+        The plant in the forms shown before one could not show it; kept until a plant is changed by hand.
     spare : tuple of PlantParameter
         Parameters that the formula used once and does not now, with the numbers that were typed for them.
     """
 
     typed: tuple[Plant, ...] = ()
     alike: tuple[Plant, ...] = ()
-    origin: Plant | None = None
+    origin: tuple[Plant, ...] = ()
     spare: tuple[PlantParameter, ...] = ()
 
     def edited(self, plant: Plant) -> "PlantForms":
         """Return the forms after the plant was changed by hand."""
         others = tuple(other for other in self.typed if type(other) is not type(plant))
-        return replace(self, typed=(*others, plant), alike=(plant,), origin=None)
+        return replace(self, typed=(*others, plant), alike=(plant,), origin=())
 
-    def switched(self, before: Plant, after: Plant, *, same: bool) -> "PlantForms":
+    def switched(self, after: Plant, *, same: bool) -> "PlantForms":
         """Return the forms after another form was chosen, which shows the `same` plant or not."""
         if not same:
-            return replace(self, alike=(after,), origin=self.origin or before)
+            return replace(self, alike=(after,), origin=self.origin or self.alike)
         return replace(self, alike=self.alike if after in self.alike else (*self.alike, after))
 
     def remembered(self, form: PlantForm) -> Plant | None:
@@ -72,8 +72,7 @@ class PlantForms:
 
     def same_plant(self, form: PlantForm) -> Plant | None:
         """Return the plant as another form showed it, if nothing was changed by hand since; else None."""
-        known = (*self.alike, self.origin) if self.origin is not None else self.alike
-        return next((plant for plant in known if form_of(plant) == form), None)
+        return next((plant for plant in (*self.alike, *self.origin) if form_of(plant) == form), None)
 
 
 @dataclass(frozen=True, slots=True)

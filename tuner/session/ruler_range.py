@@ -157,8 +157,9 @@ def values_along(span: RulerRange, count: int) -> NDArray[np.float64]:
 def ticks(span: RulerRange) -> tuple[Tick, ...]:
     """Return the lines of the scale: decades with their value, and 2 to 9 between them; tenths on a linear ruler."""
     if not span.logarithmic:
-        count = round((span.high - span.low) * 10.0)
-        values = [(round(span.low + index / 10.0, 10), index % 5 == 0) for index in range(count + 1)]
+        step = _decade(floor(log10((span.high - span.low) / _WEIGHT_END)) - 1)
+        count = round((span.high - span.low) / step)
+        values = [(round(span.low + index * step, 10), index % 5 == 0) for index in range(count + 1)]
     else:
         first, last = round(log10(span.low)), round(log10(span.high))
         values = [(m * _decade(d), m == 1) for d in range(first, last) for m in range(1, 10)] + [(span.high, True)]

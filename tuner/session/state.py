@@ -121,8 +121,7 @@ def with_plant_form(state: State, form: PlantForm) -> Switched:
     """Return the state with the plant in another form."""
     from tuner.session.plants import converted
 
-    before = state.sheet.plant
-    switched = switch(before, state.forms, form, converted)
+    switched = switch(state.sheet.plant, state.forms, form, converted)
     after = switched.plant
-    forms = state.forms.switched(before, after, same=not switched.remark)
+    forms = state.forms.switched(after, same=not switched.remark)
     return Switched(replace(state, sheet=replace(state.sheet, plant=after), forms=forms), switched.remark)

@@ -51,6 +51,8 @@ class LimitRow(QWidget):
 
     def _lay_out(self) -> None:
         name = QLabel(self._measure.label)
+        name.setWordWrap(True)
+        name.setSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Preferred)
         name.setToolTip(self._measure.sentence)
         self.line.setFixedWidth(64)
         sense = QLabel("at least" if self._measure.at_least else "at most")
@@ -93,6 +95,7 @@ class LimitsPage(Page):
         self.column.insertLayout(0, self._list)
         self.adder = QComboBox()
         self.adder.setAccessibleName("add a limit")
+        self.adder.setSizeAdjustPolicy(QComboBox.SizeAdjustPolicy.AdjustToMinimumContentsLengthWithIcon)
         self.adder.setMaxVisibleItems(len(MEASURES) + 1)
         self.adder.activated.connect(self._add)
         self.add(self.adder)

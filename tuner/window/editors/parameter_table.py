@@ -13,7 +13,7 @@ from tuner.window.editors.intake import Words
 from tuner.window.editors.typed_line import TypedLine
 from tuner.window.theme import Theme
 
-NAME_WIDTH, VALUE_WIDTH, UNIT_WIDTH, SPREAD_WIDTH = 88, 60, 56, 64
+NAME_WIDTH, VALUE_WIDTH, UNIT_WIDTH, SPREAD_WIDTH = 104, 60, 52, 56
 FADED = 0.5
 
 

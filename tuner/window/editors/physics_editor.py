@@ -17,6 +17,7 @@ class PhysicsEditor(Page):
         super().__init__()
         self._document = document
         self.model = QComboBox()
+        self.model.setSizeAdjustPolicy(QComboBox.SizeAdjustPolicy.AdjustToMinimumContentsLengthWithIcon)
         self.model.setAccessibleName("physical model")
         self.model.addItems(list(PHYSICS))
         self.model.activated.connect(self._choose)

@@ -18,6 +18,7 @@ class PlantPage(Page):
         super().__init__()
         self._document = document
         self.form = QComboBox()
+        self.form.setSizeAdjustPolicy(QComboBox.SizeAdjustPolicy.AdjustToMinimumContentsLengthWithIcon)
         self.form.setAccessibleName("form of the plant")
         self.form.setToolTip("How the plant is given. Switching converts the nominal plant where that is possible.")
         self.form.addItems([form.capitalize() for form in PLANT_FORMS])
