@@ -66,7 +66,7 @@ class Theme(QObject):
     def _wanted(self) -> Shade:
         if self._choice != "desktop":
             return self._choice
-        return "dark" if QGuiApplication.styleHints().colorScheme() == Qt.ColorScheme.Dark else "light"
+        return desktop_shade()
 
     def _desktop_changed(self) -> None:
         self._refresh()
@@ -79,6 +79,11 @@ class Theme(QObject):
         if isinstance(application := QApplication.instance(), QApplication):
             self.dress(application)
         self.changed.emit()
+
+
+def desktop_shade() -> Shade:
+    """Return the shade of the desktop; light where it has none."""
+    return "dark" if QGuiApplication.styleHints().colorScheme() == Qt.ColorScheme.Dark else "light"
 
 
 @cache
