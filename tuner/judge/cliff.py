@@ -13,7 +13,7 @@ from tuner.model.sheet import Sheet
 FARTHEST = 1000.0
 """A gain is looked for within this factor, up and down."""
 
-LADDER = (1.02, 1.05, 1.1, 1.2, 1.4, 1.7, 2.0, 2.5, 3.2, 4.0, 5.0, 7.0, 10.0, 15.0, 25.0, 50.0, 100.0, 300.0, FARTHEST)
+LADDER = (1.03, 1.1, 1.25, 1.5, 2.0, 3.0, 5.0, 10.0, 25.0, 70.0, 250.0, FARTHEST)
 """Factors at which stability is looked at; between the last unstable and the first stable one the edge is bisected."""
 
 BISECTIONS = 14
@@ -92,12 +92,14 @@ def nearest_edge(controller: Controller, is_stable: IsStable) -> Edge | None:
     """Return the edge of stability that is the smallest change of one gain away; None when there is none in reach."""
     gains = [one for one in rulers(controller.form) if one.name in _MATTERS and controller.value(one.name)]
     for low, high in zip((1.0, *LADDER[:-1]), LADDER, strict=True):
-        reached = list(_reached(controller, gains, high, is_stable))
-        if reached:
-            edges = [
-                _bisected(controller, gain, sign * log(low), sign * log(high), is_stable) for gain, sign in reached
-            ]
-            return min(edges, key=lambda edge: edge.distance)
+        best: Edge | None = None
+        for gain, sign in _reached(controller, gains, high, is_stable):
+            # Worth a bisection only if it is stable nearer than the best edge so far.
+            nearer = log(high) if best is None else best.distance
+            if best is None or is_stable(_changed(controller, gain, sign * nearer)):
+                best = _bisected(controller, gain, sign * log(low), sign * nearer, is_stable)
+        if best is not None:
+            return best
     return next(_left_out(controller, gains, is_stable), None)
 
 
