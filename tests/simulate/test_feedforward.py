@@ -1,0 +1,113 @@
+"""Feedforward filters: inverses that are stable and causal, and their sampled step responses."""
+
+import numpy as np
+import pytest
+
+from tuner.errors import LoopError
+from tuner.model.controller import Controller, Feedforward
+from tuner.simulate.feedforward import disturbance_filter, inverse, reference_filter, step_sequence
+from tuner.simulate.linear import constant, from_zeros_poles
+from tuner.simulate.realise import realise_expression
+
+S = 0.1 + 1j * np.logspace(-2, 2, 7)
+
+
+def test_none_and_static() -> None:
+    """Without feedforward there is no filter; static feedforward is its gain."""
+    assert reference_filter(Controller(), constant(2.0)) is None
+    static = reference_filter(Controller(feedforward=Feedforward("static", gain=0.7)), constant(2.0))
+    assert static is not None
+    assert static.d == 0.7
+
+
+def test_the_inverse_undoes_what_it_can() -> None:
+    """Inverse times process is the filter alone when the process has neither dead time nor right-hand zeros."""
+    process = realise_expression("2 (s + 3)/((s + 1)(4 s + 1)(s^2 + s + 1))", {})
+    found = inverse(process, 0.2)
+    assert found.response(S) * process.response(S) == pytest.approx(1.0 / (0.2 * S + 1.0) ** 3, rel=1e-11)
+
+
+def test_dead_time_and_right_hand_zeros_are_left_out() -> None:
+    """They remain behind the inverse, with a static gain of one."""
+    process = realise_expression("3 (1 - 2 s) exp(-5 s)/((s + 1)(s + 2))", {})
+    found = inverse(process, 0.5)
+    left = (1.0 - 2.0 * S) * np.exp(-5.0 * S) / (0.5 * S + 1.0) ** 2
+    assert found.response(S) * process.response(S) == pytest.approx(left, rel=1e-11)
+    assert found.dead_time == 0.0
+    assert (found.poles.real < 0.0).all()
+
+
+def test_a_pair_of_zeros_on_the_axis_is_left_out() -> None:
+    """An undamped pair of zeros is replaced by its static gain, since its inverse would ring for ever."""
+    process = realise_expression("(s^2 + 4)/(s + 1)^3", {})
+    assert inverse(process, 1.0).static_gain() * process.static_gain() == pytest.approx(1.0)
+    assert (inverse(process, 1.0).poles.real < 0.0).all()
+
+
+def test_an_integrating_plant_has_an_inverse() -> None:
+    """To hold the level of an integrator no effort is needed: the inverse has no static gain."""
+    assert inverse(realise_expression("2/s", {}), 0.3).static_gain() == 0.0
+
+
+def test_the_handbook_disturbance_compensator() -> None:
+    """Ideal feedforward -Gd/Gp (common practice): -0.75 (10 s + 1) exp(-s)/(5 s + 1) for these two paths."""
+    path, process = (realise_expression(f, {}) for f in ("1.5 exp(-3 s)/(5 s + 1)", "2 exp(-2 s)/(10 s + 1)"))
+    found = disturbance_filter(path, process)
+    assert found.response(S) == pytest.approx(-0.75 * (10 * S + 1) * np.exp(-S) / (5 * S + 1), rel=1e-12)
+
+
+def test_factors_that_path_and_process_share_cancel() -> None:
+    """Two paths into one integrating vessel: the compensator is a gain, not an integrator on a differentiator."""
+    path, process = (realise_expression(f, {}) for f in ("3/(s (s + 1))", "2/(s (s + 1))"))
+    found = disturbance_filter(path, process)
+    assert (found.order, found.d) == (0, pytest.approx(-1.5))
+
+
+def test_a_slower_process_compensates_late() -> None:
+    """A process with more dead time than the path is compensated at once, which is too late."""
+    path, process = (realise_expression(f, {}) for f in ("exp(-s)/(s + 1)", "exp(-4 s)/(s + 1)"))
+    assert disturbance_filter(path, process).dead_time == 0.0
+
+
+@pytest.mark.parametrize(("dead_time", "step"), [(0.0, 0.1), (0.3, 0.1), (0.25, 0.1), (0.31, 0.5)])
+def test_the_sampled_step_response_is_the_continuous_one(dead_time: float, step: float) -> None:
+    """(2 s + 3)/(s + 1) = 2 + 1/(s + 1): from each sample on, direct term included, dead time of any fraction."""
+    system = from_zeros_poles((-1.5,), (-1.0,), 2.0, dead_time)
+    late = np.arange(40) * step - dead_time
+    expected = np.where(late > -1e-9, 3.0 - np.exp(-np.maximum(late, 0.0)), 0.0)
+    assert step_sequence(system, step, 40) == pytest.approx(expected, abs=1e-12)
+
+
+@pytest.mark.parametrize(
+    ("call", "sentence"),
+    [
+        (
+            lambda: inverse(realise_expression("1/(s+1)^2", {}), 0.0),
+            "the inverse of the plant needs 2 lags to be proper: expected filter_time above 0 in "
+            "controller.feedforward, found 0",
+        ),
+        (
+            lambda: inverse(realise_expression("1/(s+1)", {}), 0.0),
+            "the inverse of the plant needs a lag to be proper: expected filter_time above 0 in "
+            "controller.feedforward, found 0",
+        ),
+        (
+            lambda: inverse(realise_expression("s/(s+1)^2", {}), 1.0),
+            "a plant with a zero at the origin has no inverse: no steady effort holds its output",
+        ),
+        (
+            lambda: disturbance_filter(constant(1.0), realise_expression("1/(s+1)^2", {})),
+            "the disturbance feedforward would be improper: its numerator has degree 2, above the denominator's 0; "
+            "the disturbance reaches the output with fewer lags than the effort does",
+        ),
+        (
+            lambda: disturbance_filter(realise_expression("1/(s-1)^2", {}), realise_expression("1/(s+1)", {})),
+            "the disturbance feedforward would be unstable: the path of the disturbance is unstable",
+        ),
+    ],
+)
+def test_sentences(call: object, sentence: str) -> None:
+    """What cannot be is refused in one sentence."""
+    with pytest.raises(LoopError) as caught:
+        call()  # type: ignore[operator]  # a call without arguments
+    assert str(caught.value) == sentence
