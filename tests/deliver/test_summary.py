@@ -1,11 +1,14 @@
 """What the head of every file says."""
 
+from dataclasses import replace
+
 import pytest
 
 from tests.deliver.samples import BARE, FULL, OPEN, assessment, specification
 from tuner.deliver.specification import CAUTIONS, digest, specify
 from tuner.deliver.summary import banner, head, plain, printable, unmet
 from tuner.judge.assessment import Instability, LimitResult
+from tuner.model.controller import Form
 
 
 def test_head_says_what_the_controller_is() -> None:
@@ -30,6 +33,28 @@ def test_head_says_what_the_controller_is() -> None:
         "",
         *(f"Caution: {caution}" for caution in CAUTIONS),
     ]
+
+
+@pytest.mark.parametrize(
+    ("form", "given", "parallel"),
+    [
+        ("standard", "kc 2.0, ti 4.0 s, td 0.5 s", "kp 2.0, ki 0.5, kd 1.0"),
+        ("series", "kc 2.0, ti 4.0 s, td 0.5 s", "kp 2.25, ki 0.5, kd 1.0"),
+    ],
+)
+def test_gains_stand_as_given_and_in_the_parallel_form(form: Form, given: str, parallel: str) -> None:
+    """Whoever loads them finds the form of the target and the form that the law runs."""
+    controller = replace(BARE.controller, form=form, gain_1=2.0, gain_2=4.0, gain_3=0.5)
+    lines = head(specification(replace(BARE, controller=controller)))
+    assert f"Gains, {form} form: {given}" in lines
+    assert f"The same, parallel form: {parallel}" in lines
+
+
+def test_computing_delay_is_left_to_the_target() -> None:
+    """The delay that the design reckons with is not built into the files a second time."""
+    late = replace(BARE, controller=replace(BARE.controller, delay_samples=2))
+    told = "Reckoned with 2 samples of computing delay, which are the target's own"
+    assert told in head(specification(late))
 
 
 def test_absent_ends_and_times_are_said_to_be_absent() -> None:

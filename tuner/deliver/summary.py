@@ -134,7 +134,7 @@ def _setting(specification: Specification, key: str, units: dict[str, str]) -> s
     value = specification.sheet.controller.value(key)
     if value is None:
         return f"{key} none"
-    return f"{key} {value!r} {find(f'controller.{key}').unit_for(**units)}".strip()
+    return f"{key} {value!r} {unit(find(f'controller.{key}').unit, **units)}".strip()
 
 
 def _blocks(specification: Specification) -> list[str]:

@@ -40,9 +40,7 @@ def prove(folder: Path, work: Path, specification: Specification, recording: Rec
         raise DeliveryError(f"{_FILE}: its constants are not those of its gains")
     gain = _values(content["parameters"]).get("controller.feedforward.gain")
     reference = Reference(made, gain, feedback=content["feedback"])
-    how = (
-        "read back, its constants made anew from its gains, and the law run with them on the trial and the kicked loop"
-    )
+    how = f"read back, its constants made anew from its gains, and the law run with them {ON_WHAT}"
     return (compared(_FILE, how, recording, reference.run(recording.samples)),)
 
 
@@ -89,7 +87,7 @@ def _parameters(sheet: Sheet) -> Iterator[tuple[str, dict[str, object]]]:
         if value is not None and parameter.name not in foreign:
             yield (
                 parameter.path,
-                {"value": value, "unit": parameter.unit_for(**_units(sheet)), "sentence": parameter.sentence},
+                {"value": value, "unit": words.unit(parameter.unit, **_units(sheet)), "sentence": parameter.sentence},
             )
 
 
