@@ -53,6 +53,13 @@ def test_a_name_too_long_is_refused(tmp_path: Path) -> None:
         refuse_folder(tmp_path / ("x" * 5000), ["a"], [], overwrite=False)
 
 
+def test_a_null_character_is_refused() -> None:
+    """No disk has such a name."""
+    with pytest.raises(DeliveryError) as caught:
+        refuse_folder(Path("a\0b"), ["a"], [], overwrite=False)
+    assert str(caught.value) == r"'a\x00b': expected the name of a folder, found a null character in it"
+
+
 @pytest.mark.skipif(os.geteuid() == 0, reason="root may write everywhere")
 def test_a_folder_that_cannot_be_written_to_is_refused(tmp_path: Path) -> None:
     """Permission denied, in a sentence, and nothing changed."""

@@ -24,6 +24,8 @@ def refuse_folder(folder: Path, files: Sequence[str], others: Sequence[str], *, 
     DeliveryError
         When it is a file, or files would be overwritten that may not be.
     """
+    if "\0" in str(folder):
+        raise DeliveryError(f"{str(folder)!r}: expected the name of a folder, found a null character in it")
     try:
         _refuse_files(folder, files, others, overwrite=overwrite)
     except OSError as error:
