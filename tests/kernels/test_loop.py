@@ -1,6 +1,7 @@
 """The compiled loop against the plain law in a plain loop, bit for bit, and what it does with a run that runs away."""
 
 import math
+from collections.abc import Callable
 from dataclasses import dataclass
 
 import numpy as np
@@ -41,9 +42,11 @@ class Case:
         loops, samples = self.feedforward.shape
         return np.empty((loops, self.points)), np.empty((loops, samples)), np.empty((loops, samples))
 
-    def arguments(self) -> tuple[object, ...]:
-        """Return them in the order of the kernel."""
-        return tuple(getattr(self, name) for name in self.__annotations__ if name != "points")
+    def run(self, function: Callable[..., None] = run) -> tuple[Array, Array, Array]:
+        """Call the kernel with them and return its results."""
+        results = self.outputs()
+        function(*(getattr(self, name) for name in self.__annotations__ if name != "points"), *results)
+        return results
 
 
 def _random_case(seed: int) -> Case:
@@ -146,8 +149,7 @@ class _PlainLoop:
 def test_the_kernel_is_the_law_in_a_plain_loop_bit_for_bit(seed: int) -> None:
     """Limits, rate, wind-up, filters, notch, noise, resolution and dead times: not a bit differs."""
     case = _random_case(seed)
-    y, u, limited = case.outputs()
-    run(*case.arguments(), y, u, limited)  # type: ignore[arg-type]  # in the order of the kernel
+    y, u, limited = case.run()
     for loop in range(len(case.system)):
         plain = _PlainLoop(case, loop).run()
         for found, expected in zip((y, u, limited), plain, strict=True):
@@ -158,10 +160,8 @@ def test_the_kernel_is_the_law_in_a_plain_loop_bit_for_bit(seed: int) -> None:
 def test_the_uncompiled_kernel_gives_the_same_bits() -> None:
     """The kernel's own text, run by Python, agrees with what was compiled of it."""
     case = _random_case(4)
-    compiled, plain = case.outputs(), case.outputs()
-    run(*case.arguments(), *compiled)  # type: ignore[arg-type]  # in the order of the kernel
-    run.py_func(*case.arguments(), *plain)  # type: ignore[attr-defined]  # given by numba
-    assert all(np.array_equal(*pair) for pair in zip(compiled, plain, strict=True))
+    plain = case.run(run.py_func)  # type: ignore[attr-defined]  # given by numba
+    assert all(np.array_equal(*pair) for pair in zip(case.run(), plain, strict=True))
 
 
 @pytest.mark.parametrize("ceiling", [(1e3, 1e12), (1e12, 1e3)])
@@ -172,8 +172,7 @@ def test_a_run_that_runs_away_is_held(ceiling: tuple[float, float]) -> None:
     case.constants[:, 8:10] = -1e300, 1e300
     case.constants[:, 10] = 1e300
     case.ceiling[:] = ceiling
-    y, u, limited = case.outputs()
-    run(*case.arguments(), y, u, limited)  # type: ignore[arg-type]  # in the order of the kernel
+    y, u, _ = case.run()
     assert np.isfinite(y).all()
     assert np.isfinite(u).all()
     assert np.abs(y).max() <= ceiling[0]

@@ -7,8 +7,9 @@ import pytest
 from tuner.errors import LoopError
 from tuner.simulate.algebra import feedback, parallel, series
 from tuner.simulate.linear import Linear, constant, from_zeros_poles
+from tuner.simulate.traces import ComplexArray
 
-S = 0.2 + 1j * np.logspace(-2, 2, 9)
+S: ComplexArray = np.asarray(0.2 + 1j * np.logspace(-2, 2, 9), dtype=complex)
 FIRST = from_zeros_poles((-3.0,), (-1.0, -0.2 + 2j, -0.2 - 2j), 2.0)
 SECOND = from_zeros_poles((1.0,), (-4.0,), -0.5)
 

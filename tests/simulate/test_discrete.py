@@ -6,6 +6,7 @@ from itertools import pairwise
 import control
 import numpy as np
 import pytest
+from numpy.typing import NDArray
 from scipy.integrate import solve_ivp
 from scipy.signal import cont2discrete
 
@@ -21,10 +22,10 @@ def _first_order(time: float, dead_time: float = 0.0) -> Linear:
 def _respond(held: Held, inputs: np.ndarray) -> np.ndarray:
     """Return the output at each sample, just before the jump, by the recursion that the class states."""
     x, y = np.zeros(len(held.c)), []
-    at = lambda k: inputs[k] if k >= 0 else 0.0  # noqa: E731 - the input before its start is zero
+    late = np.concatenate((np.zeros(held.steps + 1), inputs))
     for k in range(len(inputs)):
-        y.append(held.c @ x + held.d * at(k - held.steps - 1))
-        x = x + held.growth @ x + held.old * at(k - held.steps - 1) + held.new * at(k - held.steps)
+        y.append(held.c @ x + held.d * late[k])
+        x = x + held.growth @ x + held.old * late[k] + held.new * late[k + 1]
     return np.array(y)
 
 
@@ -111,18 +112,14 @@ def test_dead_time_of_a_fraction_against_a_dense_solution() -> None:
     jumps = np.arange(25) * step + 0.37
     edges = np.unique(np.concatenate((np.arange(25) * step, jumps[jumps < 24 * step])).round(12))
     x, expected = np.zeros(3), [0.0]
+
+    def slope(_: float, state: NDArray[np.float64], effort: float) -> NDArray[np.float64]:
+        return np.asarray(system.a @ state + system.b * effort)
+
     for start, end in pairwise(edges):
         reached = np.searchsorted(jumps, start + 1e-9, side="right") - 1
         effort = inputs[reached] if reached >= 0 else 0.0
-        piece = solve_ivp(
-            lambda _, state, u=effort: system.a @ state + system.b * u,
-            (start, end),
-            x,
-            "DOP853",
-            rtol=1e-11,
-            atol=1e-13,
-        )
-        x = piece.y[:, -1]
+        x = solve_ivp(slope, (start, end), x, "DOP853", rtol=1e-11, atol=1e-13, args=(effort,)).y[:, -1]
         if min(end % step, step - end % step) < 1e-9:
             expected.append(float(system.c @ x))
     assert _respond(hold(system, step), inputs) == pytest.approx(np.array(expected), abs=1e-9)

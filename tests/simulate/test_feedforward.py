@@ -8,8 +8,9 @@ from tuner.model.controller import Controller, Feedforward
 from tuner.simulate.feedforward import disturbance_filter, inverse, reference_filter, step_sequence
 from tuner.simulate.linear import constant, from_zeros_poles
 from tuner.simulate.realise import realise_expression
+from tuner.simulate.traces import ComplexArray
 
-S = 0.1 + 1j * np.logspace(-2, 2, 7)
+S: ComplexArray = np.asarray(0.1 + 1j * np.logspace(-2, 2, 7), dtype=complex)
 
 
 def test_none_and_static() -> None:
@@ -60,7 +61,8 @@ def test_factors_that_path_and_process_share_cancel() -> None:
     """Two paths into one integrating vessel: the compensator is a gain, not an integrator on a differentiator."""
     path, process = (realise_expression(f, {}) for f in ("3/(s (s + 1))", "2/(s (s + 1))"))
     found = disturbance_filter(path, process)
-    assert (found.order, found.d) == (0, pytest.approx(-1.5))
+    assert found.order == 0
+    assert found.d == pytest.approx(-1.5)
 
 
 def test_a_slower_process_compensates_late() -> None:

@@ -19,7 +19,7 @@ from tuner.simulate.linear import (
 )
 from tuner.simulate.traces import ComplexArray
 
-S = 1j * np.logspace(-3, 3, 25)
+S: ComplexArray = np.asarray(1j * np.logspace(-3, 3, 25), dtype=complex)
 
 _sizes = st.floats(-2.0, 2.0).map(lambda exponent: 10.0**exponent)
 _real = st.one_of(_sizes.map(lambda x: [complex(-x)]), st.just([0j]), _sizes.map(lambda x: [complex(x)]))
@@ -38,7 +38,7 @@ def test_state_space_and_factors_are_one_system(zeros: list[complex], poles: lis
     if len(zeros) > len(poles):
         zeros, poles = poles, zeros
     system = from_zeros_poles(zeros, poles, gain)
-    places = S + 0.31719  # away from the axes, where poles of the examples lie
+    places: ComplexArray = S + 0.31719  # away from the axes, where poles of the examples lie
     factors = [gain * np.prod(s - np.array(zeros)) / np.prod(s - np.array(poles, dtype=complex)) for s in places]
     assert np.allclose(system.response(places), factors, rtol=1e-11, atol=0.0)
     assert np.allclose(_by_state_space(system, places), factors, rtol=1e-7, atol=1e-12 * np.abs(factors).max())

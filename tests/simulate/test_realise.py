@@ -11,8 +11,9 @@ from tuner.errors import LoopError
 from tuner.model.plant import CoefficientPlant, ExpressionPlant, PhysicsPlant, StateSpacePlant, ZeroPolePlant
 from tuner.simulate.linear import Linear
 from tuner.simulate.realise import realise, realise_expression
+from tuner.simulate.traces import ComplexArray
 
-S = 0.13 + 1j * np.logspace(-2, 2, 9)
+S: ComplexArray = np.asarray(0.13 + 1j * np.logspace(-2, 2, 9), dtype=complex)
 
 
 def _formula(text: str, **values: float) -> Linear:

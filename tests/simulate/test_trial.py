@@ -16,6 +16,7 @@ from tuner.law.pid import law
 from tuner.model.controller import Controller, DisturbanceFeedforward, Feedforward, Notch
 from tuner.model.family import family
 from tuner.model.loop import Manipulated
+from tuner.model.plant import ExpressionPlant
 from tuner.model.sheet import Actuator, Sensor, Sheet, Trial
 from tuner.simulate.batch import law_constants
 from tuner.simulate.discrete import chain
@@ -111,7 +112,7 @@ def test_a_saturating_loop_is_that_of_a_slow_simulation(change: dict[str, object
     """Limits, rate, resolution, lags, fractional dead time, computing delay: output and effort to 1e-8 of a step."""
     whole = heater()
     whole = replace(whole, controller=replace(whole.controller, **change))  # type: ignore[arg-type]  # its own fields
-    whole = replace(whole, plant=replace(whole.plant, expression="gain exp(-1.13 s)/((lag s + 1)(6 s + 1)) + 0*delay"))
+    whole = replace(whole, plant=ExpressionPlant("gain exp(-1.13 s)/((lag s + 1)(6 s + 1))", whole.plant.parameters))
     whole = replace(whole, trial=Trial(40.0, 5.0, 10.0))
     found = run(whole, family(whole.plant, 1))[0]
     for trace, steps in ((found.reference, (5.0, 0.0)), (found.disturbance, (0.0, 10.0))):

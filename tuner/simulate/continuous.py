@@ -22,7 +22,7 @@ from tuner.simulate.wiring import Process, processes
 FEWEST, MOST = 1_000, 64_000
 """Steps of the coarser run: to start with, and at most."""
 
-AGREEMENT = 0.01
+AGREEMENT = 0.005
 """Coarse and fine run differ by this share of the step at most; the extrapolated one then errs by its square or so."""
 
 _FAR_AWAY = 100.0

@@ -5,6 +5,7 @@ from dataclasses import dataclass
 from typing import NamedTuple
 
 import numpy as np
+from numpy.typing import ArrayLike
 
 from tuner.errors import LoopError
 from tuner.kernels.exponential import hold as hold_kernel
@@ -56,19 +57,19 @@ class Held:
         """The transition matrix of one step, shape (n, n)."""
         return np.eye(len(self.c)) + self.growth
 
-    def response(self, s: ComplexArray) -> ComplexArray:
+    def response(self, s: ArrayLike) -> ComplexArray:
         """Return the pulse transfer function at z = exp(s step), delay included: complex, shape of `s`.
 
         Exact also where z is near 1, for z - 1 and the growth are both kept as such. Infinite at a pole.
         """
-        s = np.asarray(s, dtype=complex)
-        back = np.exp(-s * self.step)
-        ahead = np.expm1(s * self.step)
-        inner: ComplexArray = (self.new + self.old * back[..., None])[..., None]
-        matrix: ComplexArray = ahead[..., None, None] * np.eye(len(self.c)) - self.growth
+        turned = np.multiply(s, self.step, dtype=complex)
+        back = np.exp(-turned)
+        ahead = np.expm1(turned)
+        inner = np.asarray(self.new + self.old * back[..., None], dtype=complex)[..., None]
+        matrix = np.asarray(ahead[..., None, None] * np.eye(len(self.c)) - self.growth, dtype=complex)
         state = _solved(matrix, inner)
         with np.errstate(invalid="ignore"):
-            value = ((state[..., 0] @ self.c) + self.d * back) * np.exp(-s * (self.step * self.steps))
+            value = ((state[..., 0] @ self.c) + self.d * back) * np.exp(-turned * self.steps)
         return np.where(np.isnan(value), complex(math.inf), value)
 
 

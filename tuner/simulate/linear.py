@@ -5,6 +5,7 @@ from collections.abc import Iterable
 from dataclasses import dataclass
 
 import numpy as np
+from numpy.typing import ArrayLike
 from scipy.linalg import matrix_balance
 
 from tuner.errors import LoopError
@@ -47,17 +48,17 @@ class Linear:
         """Number of states."""
         return len(self.poles)
 
-    def response(self, s: ComplexArray) -> ComplexArray:
+    def response(self, s: ArrayLike) -> ComplexArray:
         """Return the value at any complex `s`, dead time included: complex, shape of `s`; infinite at a pole.
 
         Where `s` is a pole and a zero at once the factors are left out in pairs. Every factor is scaled, so that no
         product overflows on the way although its end is moderate.
         """
-        s = np.asarray(s, dtype=complex)
-        value, surplus = _rational(self, s)
+        at: ComplexArray = np.asarray(s, dtype=complex)
+        value, surplus = _rational(self, at)
         value = np.where(surplus > 0, 0.0, np.where(surplus < 0, complex(math.inf), value))
         with np.errstate(over="ignore", invalid="ignore"):
-            return value * np.exp(-self.dead_time * s) if self.dead_time else value
+            return value * np.exp(-self.dead_time * at) if self.dead_time else value
 
     def static_gain(self) -> float:
         """Return the limit at s -> 0 along positive s: 0 with a zero there, infinite with an integrator, sign kept."""
