@@ -10,11 +10,11 @@ from tuner.cli.command import Arguments, Command, Parser
 from tuner.cli.judging import add_family, assessed
 from tuner.cli.sheets import Source
 from tuner.errors import DeliveryError, TrimwrightError
-from tuner.judge.assessment import Assessment
 from tuner.model.sheet import Sheet
 
 if TYPE_CHECKING:
     from tuner.deliver.delivery import Delivery
+    from tuner.judge.assessment import Assessment
 
 CAUTION = (
     "Before loading: this is no safety function, interlocks and trips stay in force, local codes and licensed "
@@ -43,7 +43,7 @@ def run(arguments: Arguments) -> int:
     return hand_over(sheet, assessment, source.name, arguments)
 
 
-def hand_over(sheet: Sheet, assessment: Assessment, file: str, arguments: Arguments) -> int:
+def hand_over(sheet: Sheet, assessment: "Assessment", file: str, arguments: Arguments) -> int:
     """Deliver and print what was handed over; status 1 when the verdict stands against it."""
     from tuner.deliver.delivery import deliver
 
@@ -62,7 +62,7 @@ def hand_over(sheet: Sheet, assessment: Assessment, file: str, arguments: Argume
     return status.MET
 
 
-def tell(delivery: "Delivery", folder: Path, assessment: Assessment, *, as_json: bool = False) -> None:
+def tell(delivery: "Delivery", folder: Path, assessment: "Assessment", *, as_json: bool = False) -> None:
     """Print what was handed over."""
     if as_json:
         told = {

@@ -2,16 +2,18 @@
 
 import json
 import sys
+from typing import TYPE_CHECKING
 
 from tuner.cli import status
 from tuner.cli.command import Arguments, Command, Parser, whole_number
 from tuner.cli.progress import watched
 from tuner.cli.sheets import Missing, Source, sources
 from tuner.errors import TrimwrightError
-from tuner.judge.as_json import as_json
-from tuner.judge.assessment import Assessment
 from tuner.model.family import FAMILY_SIZE
 from tuner.model.sheet import Sheet
+
+if TYPE_CHECKING:
+    from tuner.judge.assessment import Assessment
 
 LARGEST_FAMILY = 1000
 
@@ -41,7 +43,7 @@ def run(arguments: Arguments) -> int:
     return max(_judge_one(source, arguments) for source in watched(named, "judging"))
 
 
-def assessed(sheet: Sheet, family_size: int) -> Assessment:
+def assessed(sheet: Sheet, family_size: int) -> "Assessment":
     """Return the assessment of a sheet.
 
     Raises
@@ -72,8 +74,10 @@ def _judge_one(source: Source | Missing, arguments: Arguments) -> int:
     return status.of(assessment)
 
 
-def print_json(assessment: Assessment, *, traces: bool = False) -> None:
+def print_json(assessment: "Assessment", *, traces: bool = False) -> None:
     """Print an assessment as one line of strict JSON, at once."""
+    from tuner.judge.as_json import as_json
+
     sys.stdout.write(json.dumps(as_json(assessment, traces=traces), ensure_ascii=False, allow_nan=False) + "\n")
     sys.stdout.flush()
 

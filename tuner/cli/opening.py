@@ -4,6 +4,7 @@ import os
 import sys
 from argparse import Namespace
 from pathlib import Path
+from typing import TYPE_CHECKING
 
 from tuner.cli import status
 from tuner.cli.command import PROGRAM, Arguments, Command, Parser
@@ -12,9 +13,11 @@ from tuner.cli.judging import assessed
 from tuner.cli.sampling import built_in
 from tuner.cli.sheets import Source
 from tuner.errors import TrimwrightError
-from tuner.judge.assessment import Assessment
 from tuner.model.family import FAMILY_SIZE
 from tuner.model.sheet import Sheet
+
+if TYPE_CHECKING:
+    from tuner.judge.assessment import Assessment
 
 NO_DISPLAY = "There is no display here, so no window opens."
 
@@ -72,7 +75,7 @@ def _temporary() -> Path:
     return Path(tempfile.mkdtemp(prefix=f"{PROGRAM}-delivery-"))
 
 
-def _show(sheet: Sheet, assessment: Assessment, file: str) -> None:
+def _show(sheet: Sheet, assessment: "Assessment", file: str) -> None:
     from tuner.cli.printing import console, show
 
     show(sheet, assessment, file, console())

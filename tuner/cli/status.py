@@ -1,9 +1,12 @@
 """Exit status, and how a refusal is told."""
 
 import sys
+from typing import TYPE_CHECKING
 
 from tuner.errors import SheetError
-from tuner.judge.assessment import Assessment
+
+if TYPE_CHECKING:
+    from tuner.judge.assessment import Assessment
 
 MET, NOT_MET, UNUSABLE = 0, 1, 2
 """All limits met; one missed or the loop unstable; the input cannot be used. Of several the largest counts."""
@@ -15,7 +18,7 @@ PIPE_CLOSED = 141
 """Whoever read the output stopped reading, as shells count it."""
 
 
-def of(assessment: Assessment) -> int:
+def of(assessment: "Assessment") -> int:
     """Return the exit status of a verdict."""
     return MET if assessment.verdict == "met" else NOT_MET
 

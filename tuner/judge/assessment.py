@@ -2,10 +2,13 @@
 
 from collections.abc import Mapping
 from dataclasses import dataclass, field
-from typing import Literal
+from typing import TYPE_CHECKING, Literal
 
-from tuner.simulate.margins import Margins
 from tuner.simulate.traces import ComplexArray, Traces
+
+if TYPE_CHECKING:
+    # Margins come with compiled loops, which who only shows an assessment need not load.
+    from tuner.simulate.margins import Margins
 
 Verdict = Literal["met", "missed", "unstable"]
 
@@ -64,7 +67,7 @@ class MemberResult:
     final_reference: float | None = None
     final_disturbance: float | None = None
     notes: tuple[str, ...] = ()
-    margins: Margins | None = None
+    margins: "Margins | None" = None
 
 
 @dataclass(frozen=True, slots=True)
