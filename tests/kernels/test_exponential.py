@@ -34,7 +34,7 @@ def _cases() -> dict[str, Array]:
 def test_growth_is_the_exponential_less_one(name: str, a: Array) -> None:
     """Within 1e-13 of scipy's exponential, relative to its norm or one, over stiff and nilpotent matrices."""
     expected = expm(a)
-    off = np.abs(growth(a) + np.eye(len(a)) - expected).max()
+    off = np.abs(growth(a, 1.0) + np.eye(len(a)) - expected).max()
     assert off <= 1e-13 * max(1.0, np.abs(expected).max()), name
 
 
@@ -44,19 +44,19 @@ def test_growth_against_thirty_digits() -> None:
     with mpmath.workdps(30):
         exact = mpmath.expm(mpmath.matrix(a.tolist()))
         expected = np.array([[float(exact[i, j]) for j in range(5)] for i in range(5)])
-    assert np.allclose(growth(a) + np.eye(5), expected, rtol=0.0, atol=1e-13 * np.abs(expected).max())
+    assert np.allclose(growth(a, 1.0) + np.eye(5), expected, rtol=0.0, atol=1e-13 * np.abs(expected).max())
 
 
 def test_a_slow_mode_survives_beside_a_fast_one() -> None:
     """A decay of 1e-6 beside one of 1e9 is right to 13 digits, where scaling and squaring of 1 + x would lose six."""
-    grown = growth(np.array([[-1e9, 0.0], [0.0, -1e-6]]))
+    grown = growth(np.array([[-1e9, 0.0], [0.0, -1e-6]]), 1.0)
     assert grown[0, 0] == pytest.approx(-1.0, abs=1e-15)
     assert grown[1, 1] == pytest.approx(math.expm1(-1e-6), rel=1e-13)
 
 
 def test_what_is_not_finite_is_not_hidden() -> None:
     """A matrix with infinity in it has no growth."""
-    assert np.isnan(growth(np.array([[math.inf, 0.0], [0.0, 1.0]]))).all()
+    assert np.isnan(growth(np.array([[math.inf, 0.0], [0.0, 1.0]]), 1.0)).all()
 
 
 @pytest.mark.parametrize("offset", [0.0, 0.2, 0.4999])

@@ -78,6 +78,13 @@ def _solve(a: Array, b: Array) -> None:
 
 
 @compiled
+def _scale(a: Array, factor: float, out: Array) -> None:
+    for i in range(a.shape[0]):
+        for j in range(a.shape[1]):
+            out[i, j] = factor * a[i, j]
+
+
+@compiled
 def _halvings(a: Array) -> int:
     """Return how often `a` must be halved until the approximant holds for it; -1 when it is not finite."""
     norm = 0.0
@@ -94,34 +101,66 @@ def _halvings(a: Array) -> int:
 
 
 @compiled
-def growth(a: Array) -> Array:
-    """Return exp(a) - 1, shape of `a`: Pade approximant of order 13, scaling and squaring.
+def _add(out: Array, factors: tuple[float, float, float, float], two: Array, four: Array, six: Array) -> None:
+    """Add to `out` a number times one, and each power times its factor, the factors from the highest power down."""
+    order = out.shape[0]
+    for i in range(order):
+        for j in range(order):
+            out[i, j] += factors[0] * six[i, j] + factors[1] * four[i, j] + factors[2] * two[i, j]
+        out[i, i] += factors[3]
+
+
+@compiled
+def growth(a: Array, factor: float) -> Array:
+    """Return exp(factor a) - 1, shape of `a`: Pade approximant of order 13, scaling and squaring.
 
     Taking the identity off before squaring keeps slow modes beside fast ones: a mode of 1e-12 of the norm would
     otherwise drown in the rounding of one plus its growth. Not finite where `a` is not or the result overflows. Exact
     to rounding of one: where the exponential itself is much smaller than one, only its absolute error is small.
     """
     order = a.shape[0]
-    halvings = _halvings(a)
+    small = np.zeros((order, order))
+    _scale(a, factor, small)
+    halvings = _halvings(small)
     if halvings < 0:
-        return np.full((order, order), math.nan)
-    small = a * 0.5**halvings
+        small[:, :] = math.nan
+        return small
+    _scale(a, factor * 0.5**halvings, small)
     two = _product(small, small)
     four = _product(two, two)
     six = _product(four, two)
-    odd = _product(six, _PADE[13] * six + _PADE[11] * four + _PADE[9] * two)
-    odd += _PADE[7] * six + _PADE[5] * four + _PADE[3] * two
-    even = _product(six, _PADE[12] * six + _PADE[10] * four + _PADE[8] * two)
-    even += _PADE[6] * six + _PADE[4] * four + _PADE[2] * two
-    for i in range(order):
-        odd[i, i] += _PADE[1]
-        even[i, i] += _PADE[0]
+    high = np.zeros((order, order))
+    _add(high, (_PADE[12], _PADE[10], _PADE[8], 0.0), two, four, six)
+    even = _product(six, high)
+    _add(even, (_PADE[6], _PADE[4], _PADE[2], _PADE[0]), two, four, six)
+    high[:, :] = 0.0
+    _add(high, (_PADE[13], _PADE[11], _PADE[9], 0.0), two, four, six)
+    odd = _product(six, high)
+    _add(odd, (_PADE[7], _PADE[5], _PADE[3], _PADE[1]), two, four, six)
     odd = _product(small, odd)
-    _solve(even - odd, odd)
-    grown = 2.0 * odd
+    for i in range(order):
+        for j in range(order):
+            even[i, j] -= odd[i, j]
+            odd[i, j] *= 2.0
+    _solve(even, odd)
     for _ in range(halvings):
-        grown = 2.0 * grown + _product(grown, grown)
-    return grown
+        squared = _product(odd, odd)
+        for i in range(order):
+            for j in range(order):
+                odd[i, j] = 2.0 * odd[i, j] + squared[i, j]
+    return odd
+
+
+@compiled
+def _through(first: Array, rest: Array, column: int, old: Array, new: Array) -> None:
+    """Write the effect of one input held over the first part of a step, and then over the rest of it."""
+    order = old.shape[0]
+    for i in range(order):
+        new[i] = rest[i, column]
+        total = first[i, column]
+        for k in range(order):
+            total += rest[i, k] * first[k, column]
+        old[i] = total
 
 
 @compiled
@@ -147,20 +186,19 @@ def hold(  # noqa: PLR0913, PLR0917 - kernels take bare arrays
     order, inputs = b.shape[1], b.shape[2]
     block = np.zeros((order + inputs, order + inputs))
     for system in range(a.shape[0]):
-        block[:order, :order] = a[system]
-        block[:order, order:] = b[system]
-        whole = growth(block * step)
-        grown[system] = whole[:order, :order]
+        for i in range(order):
+            for j in range(order):
+                block[i, j] = a[system, i, j]
+            for j in range(inputs):
+                block[i, order + j] = b[system, i, j]
+        whole = growth(block, step)
+        for i in range(order):
+            for j in range(order):
+                grown[system, i, j] = whole[i, j]
         for j in range(inputs):
             before = offset[system, j]
-            if before == 0.0:
-                old[system, :, j] = 0.0
-                new[system, :, j] = whole[:order, order + j]
+            if before > 0.0:
+                first, rest = growth(block, before), growth(block, step - before)
+                _through(first, rest, order + j, old[system, :, j], new[system, :, j])
             else:
-                first, rest = growth(block * before), growth(block * (step - before))
-                new[system, :, j] = rest[:order, order + j]
-                for i in range(order):
-                    total = first[i, order + j]
-                    for k in range(order):
-                        total += rest[i, k] * first[k, order + j]
-                    old[system, i, j] = total
+                _through(np.zeros_like(whole), whole, order + j, old[system, :, j], new[system, :, j])
