@@ -20,14 +20,14 @@ def rows(*curves: Curve | Array) -> Array:
 
 def test_a_level_is_reached_between_samples() -> None:
     """A first-order rise reaches 90 % at ln 10, to far better than a sample."""
-    found = first_reach(T, rows(lambda t: 1.0 - np.exp(-t)), 0.9)
+    found = first_reach(T, rows(lambda t: 1.0 - np.exp(-t)), (0.9,))[0]
 
     assert found[0] == pytest.approx(np.log(10.0), abs=1e-9)
 
 
 def test_a_level_that_is_never_reached_has_no_time() -> None:
     """A curve below the level gives NaN, its neighbour above the level from the start gives the first instant."""
-    found = first_reach(T, rows(lambda t: 0.5 * t / 10.0, lambda t: 1.0 + t), 0.9)
+    found = first_reach(T, rows(lambda t: 0.5 * t / 10.0, lambda t: 1.0 + t), (0.9,))[0]
 
     assert np.isnan(found[0])
     assert found[1] == 0.0
@@ -61,14 +61,14 @@ def test_a_peak_at_either_end_stays_there() -> None:
 
 def test_the_first_maximum_is_not_the_highest() -> None:
     """Of two humps above the level the first is taken although the second is higher."""
-    found = first_maximum(T, rows(lambda t: 2.0 + np.sin(t) * np.exp(0.1 * t)), np.array([2.0]))
+    found = first_maximum(T, rows(lambda t: 2.0 + np.sin(t) * np.exp(0.1 * t)), 2.0)
 
     assert found[0] == pytest.approx(np.pi / 2.0 + np.arctan(0.1), abs=1e-4)
 
 
 def test_a_curve_that_still_rises_has_no_maximum() -> None:
     """A rise that lasts to the end of the run turns nowhere."""
-    assert np.isnan(first_maximum(T, rows(lambda t: t), np.array([0.5]))[0])
+    assert np.isnan(first_maximum(T, rows(lambda t: t), 0.5)[0])
 
 
 def test_the_last_exit_is_the_last_one() -> None:
@@ -120,7 +120,7 @@ def test_readings_stay_within_the_run(values: list[float]) -> None:
     """Whatever the samples, a time is NaN or within the run and a peak no lower than the highest sample."""
     y = np.array([values])
     t = np.arange(len(values), dtype=float)
-    times = [first_reach(t, y, 0.7)[0], last_exit(t, y, np.array([0.5]))[0], highest(t, y).time[0]]
+    times = [first_reach(t, y, (0.7,))[0][0], last_exit(t, y, np.array([0.5]))[0], highest(t, y).time[0]]
 
     assert all(np.isnan(time) or 0.0 <= time <= t[-1] for time in times)
     assert highest(t, y).height[0] >= max(values)

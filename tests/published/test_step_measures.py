@@ -69,16 +69,16 @@ def step_response(zeta: float) -> Array:
 def test_the_exact_second_order_table(row: Row) -> None:
     """Every column of the table to its printed digits."""
     y = step_response(row.zeta)
-    rise = first_reach(T, y, 0.9) - first_reach(T, y, 0.1)
+    rise = first_reach(T, y, (0.9,))[0] - first_reach(T, y, (0.1,))[0]
 
     assert rise[0] == pytest.approx(row.rise, rel=PRINTED)
-    assert first_reach(T, y, 0.5)[0] == pytest.approx(row.half, rel=PRINTED)
+    assert first_reach(T, y, (0.5,))[0][0] == pytest.approx(row.half, rel=PRINTED)
     for band, settling in ((0.02, row.settling_2), (0.05, row.settling_5), (0.01, row.settling_1)):
         assert last_exit(T, y - 1.0, np.array([band]))[0] == pytest.approx(settling, rel=PRINTED)
     if row.peak_time is not None and row.first_hit is not None:
         assert 100.0 * (highest(T, y).height[0] - 1.0) == pytest.approx(row.overshoot, rel=PRINTED)
-        assert first_maximum(T, y, np.array([1.0]))[0] == pytest.approx(row.peak_time, rel=PRINTED)
-        assert first_reach(T, y, 1.0)[0] == pytest.approx(row.first_hit, rel=PRINTED)
+        assert first_maximum(T, y, 1.0)[0] == pytest.approx(row.peak_time, rel=PRINTED)
+        assert first_reach(T, y, (1.0,))[0][0] == pytest.approx(row.first_hit, rel=PRINTED)
 
 
 @pytest.mark.parametrize(("band", "factor"), [(0.02, 3.912023), (0.05, 2.995732), (0.01, 4.605170)])
@@ -91,6 +91,6 @@ def test_first_order_rise() -> None:
     """Rise 10-90 % of a first-order lag is T ln 9 (Nise, chapter 4); 63.2 % at T and 28.3 % at T/3 (any text)."""
     y = 1.0 - np.exp(-T)[None]
 
-    assert (first_reach(T, y, 0.9) - first_reach(T, y, 0.1))[0] == pytest.approx(2.197224577, rel=1e-8)
-    assert first_reach(T, y, 0.6321205588)[0] == pytest.approx(1.0, rel=1e-8)
-    assert first_reach(T, y, 0.2834686894)[0] == pytest.approx(1.0 / 3.0, rel=1e-8)
+    assert (first_reach(T, y, (0.9,))[0] - first_reach(T, y, (0.1,))[0])[0] == pytest.approx(2.197224577, rel=1e-8)
+    assert first_reach(T, y, (0.6321205588,))[0][0] == pytest.approx(1.0, rel=1e-8)
+    assert first_reach(T, y, (0.2834686894,))[0][0] == pytest.approx(1.0 / 3.0, rel=1e-8)

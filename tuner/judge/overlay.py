@@ -242,7 +242,7 @@ def _instants(sheet: Sheet, limits: dict[str, float], nominal: MemberResult) -> 
         return
     if (most := limits.get("rise_time")) is not None:
         trace = nominal.traces.reference
-        start = float(first_reach(trace.t, trace.y[None, :] / final, 0.1)[0])
+        start = float(first_reach(trace.t, trace.y[None, :] / final, (0.1,))[0, 0])
         if not isnan(start):
             label = f"90 % by {quantity(start + most, unit)}"
             yield Instant("reference", "rise_time", label, start + most, 0.1 * final, 0.9 * final)

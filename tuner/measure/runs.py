@@ -66,15 +66,16 @@ def _stack(members: Indices, traces: Sequence[Trace], exact: Array, size: float)
     t = traces[0].t
     y = np.stack([trace.y for trace in traces])
     linear = np.array([trace.linear for trace in traces])
-    astray = ~linear & _runs_away(y, np.array([trace.r[-1] for trace in traces]), size)
-    y = np.where(astray[:, None], 0.0, y)
-    tail = y[:, t >= t[-1] - LAST_SHARE * (t[-1] - t[0])]
+    astray = np.logical_not(linear) & _runs_away(y, np.array([trace.r[-1] for trace in traces]), size)
+    if astray.any():
+        y[astray] = 0.0
+    tail = y[:, int(np.searchsorted(t, t[-1] - LAST_SHARE * (t[-1] - t[0]))) :]
     return Runs(
         members=members,
         t=t,
         y=y,
         u=np.stack([trace.u for trace in traces]),
-        saturated=np.array([trace.limited.mean() if trace.limited.size else 0.0 for trace in traces]),
+        saturated=np.array([np.count_nonzero(trace.limited) / max(trace.limited.size, 1) for trace in traces]),
         final=np.where(linear & np.isfinite(exact), exact, tail.mean(axis=1)),
         astray=astray,
     )
@@ -82,10 +83,9 @@ def _stack(members: Indices, traces: Sequence[Trace], exact: Array, size: float)
 
 def _runs_away(y: Array, reference: Array, size: float) -> NDArray[np.bool_]:
     """Return which outputs are far out of bounds, or end farther from the reference than ever and still leave it."""
-    error = np.abs(y - reference[:, None])
-    end = error[:, -1]
-    leaves: NDArray[np.bool_] = (
-        (end > error[:, 0]) & (end >= error.max(axis=1)) & (end > 2.0 * error[:, y.shape[1] // 2])
-    )
-    beyond: NDArray[np.bool_] = np.logical_not(end <= FAR_AWAY * size)
-    return beyond | leaves
+    end = np.abs(y[:, -1] - reference)
+    away: NDArray[np.bool_] = np.logical_not(end <= FAR_AWAY * size)
+    leaving = (end > np.abs(y[:, 0] - reference)) & (end > 2.0 * np.abs(y[:, y.shape[1] // 2] - reference))
+    for row in np.flatnonzero(leaving):
+        away[row] |= end[row] >= np.abs(y[row] - reference[row]).max()
+    return away

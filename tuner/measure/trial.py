@@ -7,7 +7,7 @@ from typing import NamedTuple
 
 import numpy as np
 
-from tuner.measure.curve import Array, absolute_area, first_maximum, first_reach, highest, last_exit
+from tuner.measure.curve import Array, absolute_area, first_maximum, first_reach, highest, largest, last_exit, refined
 from tuner.measure.runs import Runs
 
 PERCENT = 100.0
@@ -39,17 +39,17 @@ def reference_readings(runs: Runs, step: float, band: float) -> Readings:
     final = np.where(np.abs(runs.final) > NOTHING * abs(step), runs.final, np.nan)
     # In parts of its final value every curve goes from 0 to 1, whatever its sign.
     z = runs.y / final[:, None]
-    reach = np.full(len(z), band / PERCENT)
     over = _some(highest(runs.t, z).height - 1.0)
-    peak = np.where(over > 0.0, first_maximum(runs.t, z, np.full(len(z), 1.0 + NOTHING)), np.nan)
-    rise = first_reach(runs.t, z, 0.9) - first_reach(runs.t, z, 0.1)
+    peak = first_maximum(runs.t, z, 1.0 + NOTHING) if (over > 0.0).any() else np.full(len(z), np.nan)
+    low, high = first_reach(runs.t, z, (0.1, 0.9))
+    z -= 1.0
     return {
         "overshoot": Reading(PERCENT * over),
-        "peak_time": Reading(peak, NO_OVERSHOOT),
-        "rise_time": Reading(rise, NOT_REACHED),
-        "settling_time": Reading(last_exit(runs.t, z - 1.0, reach), NOT_SETTLED),
+        "peak_time": Reading(np.where(over > 0.0, peak, np.nan), NO_OVERSHOOT),
+        "rise_time": Reading(high - low, NOT_REACHED),
+        "settling_time": Reading(last_exit(runs.t, z, np.full(len(z), band / PERCENT)), NOT_SETTLED),
         "steady_state_error": Reading(PERCENT * (step - runs.final) / step),
-        "undershoot": Reading(PERCENT * _some(highest(runs.t, -z).height)),
+        "undershoot": Reading(PERCENT * _some(_depth(runs.t, z))),
         "iae_reference": Reading(absolute_area(runs.t, step - runs.y)),
     }
 
@@ -64,9 +64,8 @@ def effort_readings(runs: Runs, *, smooth: bool, infinite: bool) -> Readings:
     infinite : bool
         Whether it holds an infinite kick that no trace can show.
     """
-    size = np.abs(runs.u)
-    peak = highest(runs.t, size).height if smooth else size.max(axis=1)
-    travel = size[:, 0] + np.abs(np.diff(runs.u, axis=1)).sum(axis=1)
+    peak = largest(runs.t, runs.u).height if smooth else np.abs(runs.u).max(axis=1)
+    travel = np.abs(runs.u[:, 0]) + np.abs(np.diff(runs.u, axis=1)).sum(axis=1)
     hidden = np.nan if infinite else 1.0
     return {
         "peak_effort": Reading(peak * hidden, INFINITE_KICK),
@@ -77,7 +76,7 @@ def effort_readings(runs: Runs, *, smooth: bool, infinite: bool) -> Readings:
 
 def disturbance_readings(runs: Runs, band: float) -> Readings:
     """Return the measures of the output after a disturbance step; `band` is in % of the peak."""
-    peak = np.maximum(highest(runs.t, runs.y).height, highest(runs.t, -runs.y).height)
+    peak = largest(runs.t, runs.y).height
     away = runs.y - runs.final[:, None]
     return {
         "iae_disturbance": Reading(absolute_area(runs.t, runs.y)),
@@ -89,3 +88,12 @@ def disturbance_readings(runs: Runs, band: float) -> Readings:
 def _some(excursion: Array) -> Array:
     """Return an excursion, 0 when there is none; NaN stays."""
     return np.where(excursion <= NOTHING, 0.0, excursion)
+
+
+def _depth(t: Array, below_one: Array) -> Array:
+    """Return how far curves go below zero, given less one; a parabola is laid only where one does."""
+    index = below_one.argmin(axis=1)
+    lowest = below_one[np.arange(len(index)), index]
+    if not (lowest < -1.0 - NOTHING).any():
+        return np.where(np.isnan(lowest), np.nan, 0.0)
+    return refined(t, below_one, index, np.full(len(index), -1.0)).height - 1.0
