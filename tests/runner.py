@@ -123,7 +123,7 @@ def _with_display(arguments: list[str]) -> Result:
     start = _begin(title)
     try:
         with virtual_display() as environment:
-            return _end(title, _pytest("real_window", arguments, environment), start)
+            return _end(title, _pytest("real_window", arguments or [str(REAL_WINDOW)], environment), start)
     except NoDisplayError as fault:
         _write(f"{fault}\n")
         # Whoever may install the tools has no excuse; for others the rest of the checks is still worth having.

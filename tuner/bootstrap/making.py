@@ -86,9 +86,9 @@ def _install_system_packages(wish: Wish, has_environment: bool, steps: Steps) ->
     else:
         reason = _advice(lacking)
     if required:
-        raise SetUpError(f"Missing on this machine: {_list(required)}.\n{reason}")
+        raise SetUpError(f"Missing on this machine: {_list([*required, *useful])}.\n{reason}")
     if useful:
-        steps.say(f"Going on without {_list(useful)}. {reason}")
+        steps.say(f"Going on without {_list(useful)}, which this run can do without. {reason}")
 
 
 def _run_apt(lacking: list[system.Need], steps: Steps) -> str:
