@@ -2,11 +2,14 @@
 
 from collections.abc import Sequence
 from dataclasses import dataclass
+from functools import lru_cache
+from typing import NamedTuple
 
 import numpy as np
 
 from tuner.model.controller import Controller
 from tuner.model.family import Member
+from tuner.model.plant import Plant
 from tuner.model.sheet import Sheet
 from tuner.simulate.discrete import Held, chain, held_batch, split
 from tuner.simulate.factors import Factors
@@ -14,6 +17,8 @@ from tuner.simulate.linear import Linear
 from tuner.simulate.pulse import pulse_factors
 from tuner.simulate.realise import realise
 from tuner.simulate.transfer import controller_factors, plant_factors
+
+_Values = tuple[tuple[tuple[str, float], ...], ...]
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -81,8 +86,14 @@ def loop_of(sheet: Sheet, member: Member) -> Loop:
 
 def loops_of(sheet: Sheet, members: Sequence[Member]) -> tuple[Loop, ...]:
     """Return the loops of a sheet with some plants of its family; together they take less time than one by one."""
-    chains = [chain(realise(sheet.plant, member.values), sheet.actuator.lag, sheet.sensor.lag) for member in members]
-    return loops_around(sheet.controller, chains)
+    values = tuple(tuple(member.values.items()) for member in members)
+    return loops_around(sheet.controller, _chains(sheet.plant, values, sheet.actuator.lag, sheet.sensor.lag))
+
+
+@lru_cache(maxsize=16)
+def _chains(plant: Plant, values: _Values, actuator_lag: float, sensor_lag: float) -> tuple[Linear, ...]:
+    """Return the chains of some plants; the same for all gains, so they are kept."""
+    return tuple(chain(realise(plant, dict(items)), actuator_lag, sensor_lag) for items in values)
 
 
 def loops_around(controller: Controller, chains: Sequence[Linear]) -> tuple[Loop, ...]:
@@ -100,23 +111,40 @@ def loops_around(controller: Controller, chains: Sequence[Linear]) -> tuple[Loop
 
 def _sampled(controller: Controller, law: Factors, chains: Sequence[Linear]) -> list[SampledLoop]:
     """Return the sampled loops around chains of one order."""
-    step = controller.sample_time
+    step, extra = controller.sample_time, controller.delay_samples
+    return [
+        SampledLoop(
+            controller,
+            one,
+            Held(seen.held.growth, seen.held.old, seen.held.new, one.c, one.d, seen.held.steps + extra, step),
+            seen.pulse.then(law),
+        )
+        for one, seen in zip(chains, _seen_at_samples(tuple(chains), step), strict=True)
+    ]
+
+
+class _Seen(NamedTuple):
+    """A chain as its samples see it."""
+
+    held: Held
+    pulse: Factors
+
+
+@lru_cache(maxsize=64)
+def _seen_at_samples(chains: tuple[Linear, ...], step: float) -> tuple[_Seen, ...]:
+    """Return chains of one order under the hold; the same for all gains, so they are kept."""
     delays = [split(one.dead_time, step) for one in chains]
     offsets = np.array([[delay.offset] for delay in delays])
     held = held_batch(
         np.array([one.a for one in chains]), np.array([one.b for one in chains])[..., None], step, offsets
     )
     pulses = pulse_factors(chains, held, [delay.steps for delay in delays], step)
-    extra = controller.delay_samples
-    return [
-        SampledLoop(
-            controller,
-            one,
-            Held(held.growth[i], held.old[i, :, 0], held.new[i, :, 0], one.c, one.d, delays[i].steps + extra, step),
-            pulses[i].then(law),
+    return tuple(
+        _Seen(
+            Held(held.growth[i], held.old[i, :, 0], held.new[i, :, 0], one.c, one.d, delays[i].steps, step), pulses[i]
         )
         for i, one in enumerate(chains)
-    ]
+    )
 
 
 def same_shape(loops: Sequence[Loop]) -> list[list[int]]:
