@@ -1,6 +1,7 @@
 """Opens the window; the one entry of this room."""
 
 import sys
+from dataclasses import dataclass
 from pathlib import Path
 
 from PySide6.QtCore import QTimer
@@ -17,6 +18,7 @@ from tuner.window import faults, memory
 from tuner.window.asking import Asking
 from tuner.window.commands import Commands
 from tuner.window.editors import build_editors
+from tuner.window.keeping import Keeping
 from tuner.window.main_window import MainWindow
 from tuner.window.menus import Menus
 from tuner.window.rulers import build_rulers
@@ -26,6 +28,15 @@ from tuner.window.worker import Assessor
 
 _FIRST_SIZE = (1440, 900)
 _EXAMPLE = "heater.toml"
+
+
+@dataclass(frozen=True, slots=True)
+class Wiring:
+    """What a window is wired to; it lives as long as this does."""
+
+    menus: Menus
+    files: SheetFiles
+    keeping: Keeping
 
 
 def open_window(path: Path | None) -> int:
@@ -43,10 +54,11 @@ def open_window(path: Path | None) -> int:
     application = QApplication.instance() or QApplication(sys.argv[:1])
     if not isinstance(application, QApplication):
         raise TrimwrightError("a program without windows runs in this process already")
-    window = built(application, document)
+    window, wiring = built(application, document)
     watch_for_faults(window)
     window.show()
     window.start()
+    QTimer.singleShot(0, wiring.keeping.offer_left_behind)
     return application.exec()
 
 
@@ -60,8 +72,8 @@ def opened(path: Path | None) -> Document:
     return Document(files.read(source), None, source.read_text(encoding="utf-8"))
 
 
-def built(application: QApplication, document: Document, asking: Asking | None = None) -> MainWindow:
-    """Return the window of a document, wired and dressed, not shown yet; what it remembers is where it stood before."""
+def built(application: QApplication, document: Document, asking: Asking | None = None) -> tuple[MainWindow, Wiring]:
+    """Return the window of a document, wired and dressed, not shown yet, standing where it stood before."""
     remembered = memory.recall()
     theme = Theme(next((choice for choice in CHOICES if choice == remembered.theme), "desktop"))
     theme.dress(application)
@@ -71,18 +83,18 @@ def built(application: QApplication, document: Document, asking: Asking | None =
     window = MainWindow(document, theme, assessor, build_editors(document, theme), build_rulers(document, theme))
     window.resize(*_FIRST_SIZE)
     window.restore_layout(remembered)
-    wire(window, asking or Asking(window))
     application.aboutToQuit.connect(assessor.close)
-    return window
+    return window, wire(window, asking or Asking(window))
 
 
-def wire(window: MainWindow, asking: Asking) -> Menus:
+def wire(window: MainWindow, asking: Asking) -> Wiring:
     """Give a window its menus, its files and its manners on closing."""
     files = SheetFiles(window.document, asking)
+    keeping = Keeping(window.document, asking)
     menus = Menus(window, files, Commands(window, asking))
     window.dropped.connect(files.open_path)
-    window.closing.connect(lambda event: _close(window, files, event))
-    return menus
+    window.closing.connect(lambda event: _close(window, files, keeping, event))
+    return Wiring(menus, files, keeping)
 
 
 def watch_for_faults(window: MainWindow) -> None:
@@ -91,9 +103,10 @@ def watch_for_faults(window: MainWindow) -> None:
     faults.tell_faults(lambda sentence: QTimer.singleShot(0, lambda: window.say_fault(f"{sentence} See {log}.")))
 
 
-def _close(window: MainWindow, files: SheetFiles, event: QCloseEvent) -> None:
+def _close(window: MainWindow, files: SheetFiles, keeping: Keeping, event: QCloseEvent) -> None:
     """Let the window close once nothing would be lost, and remember how it stood."""
     if files.may_leave():
+        keeping.end()
         memory.remember(window.layout_memory())
     else:
         event.ignore()

@@ -16,6 +16,7 @@ from PySide6.QtWidgets import (
 )
 
 Unsaved = Literal["save", "discard", "cancel"]
+LeftBehind = Literal["restore", "drop", "later"]
 
 _SHEETS = "Tuning sheets (*.toml);;All files (*)"
 _PICTURES = "PNG pictures (*.png)"
@@ -57,6 +58,19 @@ class Asking:
         box.setDefaultButton(button.Save)
         chosen = box.exec()
         return "save" if chosen == button.Save else "discard" if chosen == button.Discard else "cancel"
+
+    def about_left_behind(self, name: str) -> LeftBehind:
+        """Ask what becomes of unsaved work that an earlier run left behind."""
+        role = QMessageBox.ButtonRole
+        box = QMessageBox(self._parent)
+        box.setWindowTitle("Unsaved work found")
+        box.setText(f"An earlier run ended before {name} was saved.")
+        restore = box.addButton("Bring it back", role.AcceptRole)
+        box.addButton("Ask again later", role.RejectRole)
+        lose = box.addButton("Drop it", role.DestructiveRole)
+        box.setDefaultButton(restore)
+        box.exec()
+        return "restore" if box.clickedButton() is restore else "drop" if box.clickedButton() is lose else "later"
 
     def agree(self, title: str, sentence: str, action: str) -> bool:
         """Ask for agreement to one action, named on its button."""

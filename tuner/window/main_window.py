@@ -63,7 +63,7 @@ class MainWindow(QMainWindow):
 
     def start(self) -> None:
         """Ask for the first answer, once the window has been painted."""
-        QTimer.singleShot(0, self._document_changed)
+        QTimer.singleShot(0, self.ask)
 
     def closeEvent(self, event: QCloseEvent) -> None:
         """Let others object, else end the worker and wait for it."""
@@ -84,8 +84,11 @@ class MainWindow(QMainWindow):
             self.dropped.emit(Path(url.toLocalFile()))
 
     def _document_changed(self) -> None:
-        """Show the name of what is open, and ask for an answer when what decides it has changed."""
         self._show_name()
+        self.ask()
+
+    def ask(self) -> None:
+        """Ask for an answer, unless what decides it has not changed since the last one was asked for."""
         wanted = (self.document.sheet, self.document.kept)
         if wanted == self._requested:
             return

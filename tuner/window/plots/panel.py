@@ -1,10 +1,11 @@
 """One plot with its words: a title, the axis in words, what is missed here, and what the pointer reads."""
 
 from collections.abc import Sequence
+from typing import ClassVar
 
 import pyqtgraph as pg
 from PySide6.QtCore import QEvent, QObject, QPointF, Qt, Signal
-from PySide6.QtGui import QContextMenuEvent, QResizeEvent
+from PySide6.QtGui import QContextMenuEvent, QFocusEvent, QKeyEvent, QResizeEvent
 from PySide6.QtWidgets import QHBoxLayout, QSizePolicy, QVBoxLayout, QWidget
 
 from tuner.window.elided import ElidedLabel, RoleLabel
@@ -28,8 +29,17 @@ class PlotView(pg.PlotWidget):  # type: ignore[misc]  # pyqtgraph publishes no t
     left = Signal()
     menu_wanted = Signal(object)
     whole_wanted = Signal()
+    stepped = Signal(int)
+    """How many small steps the keyboard moves the pointer: to the right, or to the left when negative."""
 
-    def __init__(self) -> None:
+    _STEPS: ClassVar[dict[Qt.Key, int]] = {
+        Qt.Key.Key_Right: 1,
+        Qt.Key.Key_Left: -1,
+        Qt.Key.Key_PageUp: 10,
+        Qt.Key.Key_PageDown: -10,
+    }
+
+    def __init__(self, name: str) -> None:
         super().__init__(enableMenu=False)
         item = self.getPlotItem()
         item.hideButtons()
@@ -39,7 +49,23 @@ class PlotView(pg.PlotWidget):  # type: ignore[misc]  # pyqtgraph publishes no t
         item.getAxis("left").setWidth(_LEFT_AXIS)
         item.getAxis("bottom").setHeight(_BOTTOM_AXIS)
         self.setFrameShape(self.Shape.NoFrame)
-        self.setFocusPolicy(Qt.FocusPolicy.NoFocus)
+        self.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
+        self.viewport().setFocusPolicy(Qt.FocusPolicy.NoFocus)
+        self.setAccessibleName(name)
+
+    def keyPressEvent(self, event: QKeyEvent) -> None:
+        """Move the pointer by the keys, and let it go with Escape."""
+        if event.key() in self._STEPS:
+            self.stepped.emit(self._STEPS[Qt.Key(event.key())])
+        elif event.key() == Qt.Key.Key_Escape:
+            self.left.emit()
+        else:
+            event.ignore()
+
+    def focusOutEvent(self, event: QFocusEvent) -> None:
+        """Let go of the pointer."""
+        super().focusOutEvent(event)
+        self.left.emit()
 
     def resizeEvent(self, event: QResizeEvent) -> None:
         """Say so when the room changes."""
@@ -83,7 +109,7 @@ class Panel(QObject):
         self._theme = theme
         self._by_hand = False
         self._divided: tuple[tuple[Tick, ...], tuple[Tick, ...], str] | None = None
-        self.view = PlotView()
+        self.view = PlotView(name)
         box = self.view.getPlotItem().getViewBox()
         self.ground = GroundLayer(box, theme)
         self.marks = MarkLayer(box, theme)
@@ -107,6 +133,10 @@ class Panel(QObject):
 
     def read(self, x: float, y: float) -> tuple[tuple[float, float], str] | None:
         """Return the point that the pointer means and what it reads there, in words with units."""
+        raise NotImplementedError
+
+    def step(self, steps: int) -> tuple[float, float] | None:
+        """Return where the pointer goes by so many steps of the keyboard, None when there is nowhere to go."""
         raise NotImplementedError
 
     # What the window says ---------------------------------------------------------------------------------------
@@ -245,6 +275,7 @@ class Panel(QObject):
     def _connect(self) -> None:
         self.view.resized.connect(self._resized)
         self.view.left.connect(self._leave)
+        self.view.stepped.connect(self._step)
         self.view.menu_wanted.connect(self.menu_wanted)
         self.view.whole_wanted.connect(self.show_whole)
         self.view.scene().sigMouseMoved.connect(self._pointed)
@@ -262,7 +293,15 @@ class Panel(QObject):
     def _pointed(self, at: QPointF) -> None:
         box = self.view.getPlotItem().getViewBox()
         place = box.mapSceneToView(at)
-        found = self.read(place.x(), place.y()) if box.sceneBoundingRect().contains(at) else None
+        self._point(self.read(place.x(), place.y()) if box.sceneBoundingRect().contains(at) else None)
+
+    def _step(self, steps: int) -> None:
+        if (at := self.step(steps)) is not None:
+            self._point(self.read(*at))
+
+    def _point(self, found: tuple[tuple[float, float], str] | None) -> None:
+        """Show what is read at a point of the plot, in the header and to a screen reader."""
+        self.view.setAccessibleDescription(found[1] if found else "")
         self.marks.pointer = found[0] if found else None
         self.marks.update()
         self._axis.setVisible(found is None)
@@ -270,7 +309,4 @@ class Panel(QObject):
         self._readout.setText(found[1] if found else "")
 
     def _leave(self) -> None:
-        self.marks.pointer = None
-        self.marks.update()
-        self._axis.setVisible(True)
-        self._readout.setVisible(False)
+        self._point(None)

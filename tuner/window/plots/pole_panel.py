@@ -80,11 +80,22 @@ class PolePanel(Panel):
         """Return the nominal pole nearest to the pointer, when one is near."""
         if self.shown is None or not self._nominal.size:
             return None
-        pole = complex(self._nominal[np.argmin(np.abs(self._nominal - complex(x, y)))])
-        across, _ = self.ranges()
-        if abs(pole - complex(x, y)) > _REACH * across.span / self.columns():
+        (across, upwards), box = self.ranges(), self.view.getPlotItem().getViewBox()
+        right = (self._nominal.real - x) / across.span * box.width()
+        up = (self._nominal.imag - y) / upwards.span * box.height()
+        pixels = np.hypot(right, up)
+        if pixels.min() > _REACH:
             return None
+        pole = complex(self._nominal[pixels.argmin()])
         return (pole.real, pole.imag), pole_words(pole, self.shown.sheet.loop.time_unit)
+
+    def step(self, steps: int) -> tuple[float, float] | None:
+        """Return the next pole, from the slowest to faster ones."""
+        if not self._nominal.size:
+            return None
+        points = [(pole.real, pole.imag) for pole in self._nominal]
+        index = points.index(self.marks.pointer) + (1 if steps > 0 else -1) if self.marks.pointer in points else 0
+        return points[index % len(points)]
 
     def dress(self) -> None:
         """Take over the colours."""

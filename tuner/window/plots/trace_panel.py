@@ -143,6 +143,14 @@ class TracePanel(Panel):
         said = quantity(value + self.resting(sheet), self.unit(sheet))
         return (x, value), f"at {time}: {said}".replace("-", "\u2212")
 
+    def step(self, steps: int) -> tuple[float, float] | None:
+        """Return the next place in time, hundredths of what is seen away, from the step on."""
+        if self.shown is None:
+            return None
+        x = self.ranges()[0]
+        now = self.marks.pointer[0] if self.marks.pointer else max(x.low, 0.0) - 0.01 * steps * x.span
+        return float(np.clip(now + 0.01 * steps * x.span, 0.0, self.shown.sheet.trial.duration)), 0.0
+
     def dress(self) -> None:
         """Take over the colours."""
         super().dress()

@@ -1,0 +1,27 @@
+"""Answers and panels for the tests of the plots."""
+
+from pytestqt.qtbot import QtBot
+
+from tests.window import made_up
+from tuner.session.tunings import KeptTuning
+from tuner.window.plots.panel import Panel
+from tuner.window.shown import Request, Shown
+from tuner.window.worker import Assessing
+
+
+def answer(kp: float = 2.0, *, whole: bool = True, kept: tuple[float, ...] = (), **changes: object) -> Shown:
+    """Return the answer for a made-up loop, with kept tunings of these kp beside it."""
+    assessing = Assessing(made_up.judge, made_up.draw)
+    tunings = tuple(
+        KeptTuning("ABC"[index], f"kp {other}", made_up.sheet(other).controller) for index, other in enumerate(kept)
+    )
+    request = Request(1, made_up.sheet(kp, **changes), tunings)
+    return assessing.whole(request) if whole else assessing.nominal(request)
+
+
+def seen(panel: Panel, qtbot: QtBot, width: int = 640, height: int = 400) -> Panel:
+    """Show the widget of a panel at a size."""
+    qtbot.addWidget(panel.widget)
+    panel.widget.resize(width, height)
+    panel.widget.show()
+    return panel

@@ -1,0 +1,209 @@
+"""The window sends every change to the worker and shows every answer everywhere."""
+
+import threading
+
+import pytest
+from PySide6.QtCore import QMimeData, QPoint, QPointF, Qt, QUrl
+from PySide6.QtGui import QDragEnterEvent, QDropEvent
+from PySide6.QtWidgets import QApplication, QWidget
+from pytestqt.qtbot import QtBot
+
+from tests.window import made_up
+from tests.window.windows import Answers, opened
+from tuner.judge.assessment import Assessment
+from tuner.model.sheet import Sheet
+from tuner.session.document import Document
+from tuner.window.plot_grid import POLES, REFERENCE
+
+pytestmark = pytest.mark.usefixtures("qtbot")
+
+
+def test_a_change_is_assessed_and_shown() -> None:
+    """Another gain, another verdict and another curve."""
+    with opened() as (window, _):
+        before = window.plots.panels[REFERENCE].shown
+        window.document.change_value("kp", 4.2)
+        assert window.ribbon.verdict.text() == "Unstable"
+        assert window.plots.panels[REFERENCE].shown is not before
+        window.document.undo()
+        assert window.ribbon.verdict.text() == "1 of 4 limits missed"
+
+
+def test_what_changes_nothing_is_not_assessed_again() -> None:
+    """Saving, or a release of a drag, asks for no answer."""
+    count: list[int] = []
+
+    def judge(sheet: Sheet, size: int) -> Assessment:
+        count.append(size)
+        return made_up.judge(sheet, size)
+
+    with opened(judge=judge) as (window, _):
+        asked = len(count)
+        window.document.release()
+        window.ask()
+        assert len(count) == asked
+
+
+def test_a_loop_that_cannot_be_computed_leaves_the_last_curves() -> None:
+    """The sentence is in the ribbon, the curves are grey, and the next good sheet puts both right."""
+    with opened() as (window, _):
+        window.document.change_value("kp", 0.0)
+        assert window.ribbon.detail.text() == "the loop has no gain: kp is 0"
+        assert window.plots.panels[REFERENCE].stale
+        assert window.why_no_verdict() == "the loop has no gain: kp is 0"
+        window.document.change_value("kp", 1.0)
+        assert not window.plots.panels[REFERENCE].stale
+
+
+def test_a_first_sheet_that_cannot_be_computed_says_so_in_the_plots() -> None:
+    """With nothing to show, each plot holds the sentence."""
+    with opened(made_up_document(0.0)) as (window, _):
+        panel = window.plots.panels[POLES]
+        assert not panel.view.isVisible()
+        assert panel._empty.text() == "the loop has no gain: kp is 0"
+
+
+def test_notes_stand_at_the_foot() -> None:
+    """The notes of the assessment, one after the other."""
+    with opened() as (window, _):
+        assert "made-up loop" in window.notes.text()
+
+
+def test_the_title_names_loop_and_file() -> None:
+    """Loop, file and program; a mark while something is unsaved."""
+    with opened() as (window, _):
+        assert window.windowTitle() == "Ink drier: not saved yet[*] - Trimwright"
+        assert not window.isWindowModified()
+        window.document.change_value("kp", 1.0)
+        assert window.isWindowModified()
+
+
+def test_closing_with_work_in_flight_waits_for_it(qtbot: QtBot) -> None:
+    """The window closes although an assessment is on its way; its thread has ended then."""
+    busy = threading.Event()
+
+    def judge(sheet: Sheet, size: int) -> Assessment:
+        busy.set()
+        threading.Event().wait(0.2)
+        return made_up.judge(sheet, size)
+
+    with opened(judge=judge, synchronous=False) as (window, _):
+        window.start()
+        qtbot.waitUntil(busy.is_set)
+        assert window.close()
+        assert window.assessor._thread is not None
+        assert window.assessor._thread.isFinished()
+
+
+def test_a_dropped_file_is_told(qtbot: QtBot) -> None:
+    """A file is taken, its path is told; text is not taken."""
+    with opened() as (window, wiring):
+        window.dropped.disconnect(wiring.files.open_path)
+        with qtbot.waitSignal(window.dropped) as dropped:
+            _drop(window, QUrl.fromLocalFile("/tmp_sheets/a.toml"))
+        assert dropped.args is not None
+        assert str(dropped.args[0]) == "/tmp_sheets/a.toml"
+        words = QMimeData()
+        words.setText("kp = 3")
+        event = _entering(words)
+        window.dragEnterEvent(event)
+        assert not event.isAccepted()
+
+
+def test_ranges_are_held_while_a_ruler_is() -> None:
+    """The plots know when a hand is on a ruler."""
+    with opened() as (window, _):
+        window.rulers.dragging_started.emit()
+        assert all(panel.held for panel in window.plots.panels.values())
+        window.rulers.dragging_finished.emit()
+        assert not any(panel.held for panel in window.plots.panels.values())
+
+
+@pytest.mark.parametrize("size", [(1024, 640), (1600, 1000), (2560, 1440)], ids=str)
+def test_every_part_has_room(size: tuple[int, int]) -> None:
+    """From the smallest to the largest, the plots have at least 100 by 60 pixels and lie inside the window."""
+    with opened() as (window, _):
+        window.resize(*size)
+        QApplication.processEvents()
+        assert window.size().toTuple() == size
+        for panel in window.plots.panels.values():
+            box = panel.view.getPlotItem().getViewBox()
+            assert box.width() > 100.0
+            assert box.height() > 60.0
+        for part in (window.editors, window.rulers, window.notes, window.ribbon.widget):
+            corner = part.mapTo(window, QPoint(0, 0))
+            assert corner.x() >= 0
+            assert corner.y() < size[1]
+
+
+def test_everything_that_takes_the_keyboard_has_a_name() -> None:
+    """A screen reader finds a name, or a label, for each part that can be reached by Tab."""
+    with opened() as (window, _):
+        nameless = [_place(part) for part in _reached(window) if not _name(part)]
+        assert nameless == []
+
+
+def test_the_layout_comes_back() -> None:
+    """Size and the division of the room survive."""
+    with opened() as (window, _):
+        window.upwards.setSizes([500, 260])
+        remembered = window.layout_memory()
+    with opened() as (other, _):
+        other.restore_layout(remembered)
+        assert other.upwards.sizes()[1] == 260
+
+
+def test_one_plot_can_have_all_the_room() -> None:
+    """Alone, it is the only one in sight; all four come back."""
+    with opened() as (window, _):
+        window.plots.show_alone(POLES)
+        shown = [name for name, panel in window.plots.panels.items() if panel.widget.isVisible()]
+        assert shown == [POLES]
+        window.plots.show_alone("")
+        assert all(panel.widget.isVisible() for panel in window.plots.panels.values())
+
+
+def test_the_window_may_be_kept_from_closing() -> None:
+    """Whoever objects keeps it open, and its worker at work."""
+    with opened(asking=Answers(unsaved="cancel")) as (window, _):
+        window.document.change_value("kp", 1.0)
+        assert not window.close()
+        window.document.change_value("kp", 4.2)
+        assert window.ribbon.verdict.text() == "Unstable"
+
+
+def made_up_document(kp: float) -> Document:
+    """Return a document of a made-up loop."""
+    return Document(made_up.sheet(kp))
+
+
+def _entering(data: QMimeData) -> QDragEnterEvent:
+    action, button, key = Qt.DropAction.CopyAction, Qt.MouseButton.LeftButton, Qt.KeyboardModifier.NoModifier
+    return QDragEnterEvent(QPoint(10, 10), action, data, button, key)
+
+
+def _drop(window: QWidget, url: QUrl) -> None:
+    data = QMimeData()
+    data.setUrls([url])
+    event = _entering(data)
+    window.dragEnterEvent(event)
+    assert event.isAccepted()
+    action, button, key = Qt.DropAction.CopyAction, Qt.MouseButton.LeftButton, Qt.KeyboardModifier.NoModifier
+    window.dropEvent(QDropEvent(QPointF(10.0, 10.0), action, data, button, key))
+
+
+def _reached(window: QWidget) -> list[QWidget]:
+    return [
+        part
+        for part in window.findChildren(QWidget)
+        if part.focusPolicy() & Qt.FocusPolicy.TabFocus and part.isVisibleTo(window) and part.isEnabled()
+    ]
+
+
+def _place(part: QWidget) -> str:
+    parent = part.parentWidget()
+    return f"{type(part).__name__} {part.objectName()} in {type(parent).__name__}"
+
+
+def _name(part: QWidget) -> str:
+    return part.accessibleName() or getattr(part, "text", lambda: "")()

@@ -1,0 +1,97 @@
+"""Windows over made-up loops, and a person who answers every question as told."""
+
+from collections.abc import Iterator, Sequence
+from contextlib import contextmanager
+from pathlib import Path
+from typing import Any
+
+from tests.window import made_up
+from tuner.session.document import Document
+from tuner.window.app import Wiring, wire
+from tuner.window.asking import Asking, LeftBehind, Unsaved
+from tuner.window.editors import build_editors
+from tuner.window.main_window import MainWindow
+from tuner.window.rulers import build_rulers
+from tuner.window.shown import Judge
+from tuner.window.theme import Theme
+from tuner.window.worker import Assessor
+
+
+class Answers(Asking):
+    """Answers as told, and remembers what was said."""
+
+    def __init__(self, **answers: Any) -> None:  # each test knows the type of its own answer
+        self.answers = answers
+        self.asked: list[str] = []
+        self.told: list[tuple[str, str, list[str]]] = []
+
+    def _answer(self, question: str) -> Any:
+        self.asked.append(question)
+        return self.answers.get(question)
+
+    def sheet_to_open(self, start: Path) -> Path | None:
+        """Return the path told."""
+        del start
+        return self._answer("open")  # type: ignore[no-any-return]  # as told by the test
+
+    def sheet_to_save(self, suggested: Path) -> Path | None:
+        """Return the path told."""
+        self.suggested = suggested
+        return self._answer("save")  # type: ignore[no-any-return]  # as told by the test
+
+    def picture_to_save(self, suggested: Path) -> Path | None:
+        """Return the path told."""
+        self.suggested = suggested
+        return self._answer("picture")  # type: ignore[no-any-return]  # as told by the test
+
+    def folder(self, start: Path) -> Path | None:
+        """Return the path told."""
+        del start
+        return self._answer("folder")  # type: ignore[no-any-return]  # as told by the test
+
+    def about_unsaved(self, name: str) -> Unsaved:
+        """Return the answer told, else cancel."""
+        self.name = name
+        return self._answer("unsaved") or "cancel"
+
+    def about_left_behind(self, name: str) -> LeftBehind:
+        """Return the answer told, else later."""
+        self.name = name
+        return self._answer("left behind") or "later"
+
+    def agree(self, title: str, sentence: str, action: str) -> bool:
+        """Return the answer told."""
+        del title, sentence
+        return bool(self._answer(action))
+
+    def tell(self, title: str, opening: str, sentences: Sequence[str]) -> None:
+        """Remember what was said."""
+        self.told.append((title, opening, list(sentences)))
+
+
+@contextmanager
+def opened(
+    document: Document | None = None,
+    asking: Asking | None = None,
+    *,
+    judge: Judge = made_up.judge,
+    synchronous: bool = True,
+    theme: Theme | None = None,
+) -> Iterator[tuple[MainWindow, Wiring]]:
+    """Open a window on a made-up loop, and close it whatever happens."""
+    held = document or Document(made_up.sheet())
+    look = theme or Theme("light")
+    assessor = Assessor(judge, made_up.draw, synchronous=synchronous)
+    window = MainWindow(held, look, assessor, build_editors(held, look), build_rulers(held, look))
+    wiring = wire(window, asking or Answers(unsaved="discard"))
+    window.resize(1280, 800)
+    window.show()
+    if synchronous:
+        window.ask()
+    try:
+        yield window, wiring
+    finally:
+        wiring.keeping.end()
+        assessor.close()
+        window.hide()
+        window.deleteLater()
