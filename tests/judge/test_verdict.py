@@ -66,6 +66,13 @@ def test_a_missing_measure_is_worse_than_any() -> None:
     assert (found.limits[0].value, found.limits[0].plant, found.limits[0].met) == (None, "gain 2", False)
 
 
+def test_an_unstable_plant_is_worse_than_one_that_never_settles() -> None:
+    """Where several have no value, the unstable one is named."""
+    family = [member(settling_time=None), member("gain 2", stable=False, settling_time=None)]
+
+    assert worst_case(BY_NAME["settling_time"], family).plant == "gain 2"
+
+
 def test_no_peak_at_all_is_the_best() -> None:
     """No overshoot keeps every limit of the peak time; where others peak, theirs is the worst."""
     peak = BY_NAME["peak_time"]

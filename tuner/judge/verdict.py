@@ -50,12 +50,13 @@ def verdict(members: Iterable[MemberResult], limits: Iterable[LimitResult]) -> V
 def worst_case(measure: Measure, members: Sequence[MemberResult]) -> WorstCase:
     """Return the worst value of a measure and its plant, the first of equals.
 
-    A measure that does not exist is worse than any value, unless that means "none", which is better than any.
+    A measure that does not exist is worse than any value, an unstable plant's first; unless that means "none", which
+    is better than any.
     """
     present = [member for member in members if member.measures[measure.name] is not None]
     absent = [member for member in members if member.measures[measure.name] is None]
     if absent and (not measure.none_is_good or not present):
-        return WorstCase(None, absent[0].name)
+        return WorstCase(None, next((member for member in absent if not member.stable), absent[0]).name)
     worst = max(present, key=lambda member: _badness(measure, member.measures[measure.name]))
     return WorstCase(worst.measures[measure.name], worst.name)
 
