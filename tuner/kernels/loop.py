@@ -122,16 +122,19 @@ def run(  # noqa: C901, PLR0913, PLR0917 - the whole loop in one place, so that 
     for loop in range(system.shape[0]):
         p = constants[loop]
         which = system[loop]
+        g, before, after = growth[which], old[which], new[which]
+        seen, shown, seen_direct, shown_direct = c[which, 1], c[which, 0], direct[which, 1], direct[which, 0]
+        late_u, late_d = delay[which, 0], delay[which, 1]
         x[:] = 0.0
         effort = integral = derivative = weighted_error = filtered = 0.0
         notch_1 = notch_2 = mode = touched = fault = 0.0
         old_u = old_d = 0.0
         # The effort that reaches the system is that of sample `source`; `phase` counts the steps since its jump.
-        source = -delay[which, 0] // steps
-        phase = -delay[which, 0] - source * steps
+        source = -late_u // steps
+        phase = -late_u - source * steps
         index = 0
         for k in range(samples):
-            measured = _output(c[which, 1], x, direct[which, 1], old_u, old_d)
+            measured = _output(seen, x, seen_direct, old_u, old_d)
             if noise.shape[0] > 0:
                 measured += noise[loop, k]
             measured += p[17]
@@ -153,13 +156,13 @@ def run(  # noqa: C901, PLR0913, PLR0917 - the whole loop in one place, so that 
             for _ in range(steps):
                 if index >= points:
                     break
-                y[loop, index] = _output(c[which, 0], x, direct[which, 0], old_u, old_d)
+                y[loop, index] = _output(shown, x, shown_direct, old_u, old_d)
                 if ran_away or not abs(y[loop, index]) < ceiling[loop, 0]:
                     ran_away = True
                     break
                 new_u = u[loop, source] if source >= 0 else 0.0
-                new_d = disturbance[loop] if index >= delay[which, 1] else 0.0
-                _advance(x, rise, growth[which], old[which], new[which], (old_u, old_d), (new_u, new_d))
+                new_d = disturbance[loop] if index >= late_d else 0.0
+                _advance(x, rise, g, before, after, (old_u, old_d), (new_u, new_d))
                 old_u, old_d = new_u, new_d
                 index += 1
                 phase += 1

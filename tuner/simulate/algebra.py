@@ -3,10 +3,10 @@
 from functools import reduce
 
 import numpy as np
-from scipy.linalg import block_diag
 
 from tuner.errors import LoopError
 from tuner.simulate.linear import Linear, constant, from_state_space
+from tuner.simulate.traces import Array
 
 
 def series(*systems: Linear) -> Linear:
@@ -41,7 +41,7 @@ def feedback(forward: Linear, back: Linear) -> Linear:
     # The inner input is e = (u - back.c xb - back.d forward.c xf) / direct.
     into = np.concatenate((-back.d * forward.c, -back.c)) / direct
     out = np.concatenate((forward.c, np.zeros(back.order))) + forward.d * into
-    a = block_diag(forward.a, back.a) if forward.order and back.order else (forward if forward.order else back).a
+    a = _side_by_side(forward.a, back.a)
     gain_in = np.concatenate((forward.b, back.b * forward.d))
     a = a + np.outer(gain_in, into)
     a[forward.order :, : forward.order] += np.outer(back.b, forward.c)
@@ -49,8 +49,8 @@ def feedback(forward: Linear, back: Linear) -> Linear:
 
 
 def _after(first: Linear, second: Linear) -> Linear:
-    corner = np.zeros((first.order, second.order))
-    a = np.block([[first.a, corner], [np.outer(second.b, first.c), second.a]]) if corner.size else _only(first, second)
+    a = _side_by_side(first.a, second.a)
+    a[first.order :, : first.order] = np.outer(second.b, first.c)
     return Linear(
         zeros=np.concatenate((first.zeros, second.zeros)),
         poles=np.concatenate((first.poles, second.poles)),
@@ -63,8 +63,11 @@ def _after(first: Linear, second: Linear) -> Linear:
     )
 
 
-def _only(first: Linear, second: Linear) -> np.ndarray:
-    return first.a if first.order else second.a
+def _side_by_side(one: Array, other: Array) -> Array:
+    """Return the block diagonal matrix of two square ones, either of which may be empty."""
+    a = np.zeros((len(one) + len(other),) * 2)
+    a[: len(one), : len(one)], a[len(one) :, len(one) :] = one, other
+    return a
 
 
 def _beside(first: Linear, second: Linear) -> Linear:
@@ -73,7 +76,7 @@ def _beside(first: Linear, second: Linear) -> Linear:
             f"only systems with the same dead time can be added, found {first.dead_time:g} and {second.dead_time:g}"
         )
     return from_state_space(
-        block_diag(first.a, second.a) if first.order and second.order else _only(first, second),
+        _side_by_side(first.a, second.a),
         np.concatenate((first.b, second.b)),
         np.concatenate((first.c, second.c)),
         first.d + second.d,

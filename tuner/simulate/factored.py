@@ -65,6 +65,8 @@ def total(terms: Sequence[Factored]) -> Factored:
     if not terms:
         return Factored(0.0)
     dead_time = _common_dead_time(terms)
+    if not any(term.poles or len(term.zeros) > 1 for term in terms):
+        return _first_degree(terms, dead_time)
     poles = _union([Counter(term.poles) for term in terms])
     shared = _intersection([Counter(term.zeros) for term in terms])
     numerators = [list((Counter(term.zeros) - shared + (poles - Counter(term.poles))).elements()) for term in terms]
@@ -106,6 +108,20 @@ def _common_dead_time(terms: Sequence[Factored]) -> float:
                 "a plant has one dead time, as a factor of the whole"
             )
     return first
+
+
+def _first_degree(terms: Sequence[Factored], dead_time: float) -> Factored:
+    """Add terms k and k (s - z): most sums are of this kind, as in (lag s + 1)."""
+    slope = _cleaned_sum([term.gain for term in terms if term.zeros])
+    level = _cleaned_sum([-term.gain * term.zeros[0].real if term.zeros else term.gain for term in terms])
+    if slope == 0.0:
+        return Factored(level, dead_time=dead_time) if level else Factored(0.0)
+    return Factored(slope, (complex(-level / slope) if level else 0j,), (), dead_time)
+
+
+def _cleaned_sum(parts: Sequence[float]) -> float:
+    result = sum(parts)
+    return 0.0 if abs(result) <= _CANCELLED * sum(map(abs, parts)) else result
 
 
 def _union(counts: Sequence[Counter[complex]]) -> Counter[complex]:

@@ -6,7 +6,6 @@ from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import ArrayLike
-from scipy.linalg import matrix_balance
 
 from tuner.errors import LoopError
 from tuner.simulate.sections import cascade, reference_frequency
@@ -222,6 +221,8 @@ def _balanced(a: Array) -> tuple[Array, Array]:
     """Return a diagonal similarity of `a` with rows and columns of like size, and the scale of each state."""
     if a.size == 0:
         return a, np.ones(0)
+    from scipy.linalg import matrix_balance
+
     balanced, (scale, _) = matrix_balance(a, permute=False, separate=True)
     return np.asarray(balanced, dtype=float), np.asarray(scale, dtype=float)
 
