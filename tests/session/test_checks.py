@@ -29,4 +29,5 @@ def test_the_sentence_leaves_out_the_key_it_stands_beside() -> None:
         refuse_new_faults(wash_bath(), with_limit(wash_bath(), "overshoot", -1.0))
     assert sentence(refusal.value, "limits.overshoot").startswith("expected a number")
     assert sentence(refusal.value, "trial.duration").startswith("limits.overshoot: expected a number")
+    assert sentence(refusal.value, "limits").startswith("overshoot: expected a number")
     assert sentence(LoopError("it cannot be")) == "it cannot be"

@@ -1,5 +1,6 @@
 """The open document: changes, tunings, ruler ranges, the plant's forms, and its file."""
 
+from collections.abc import Callable
 from dataclasses import replace
 from pathlib import Path
 
@@ -12,8 +13,9 @@ from tuner.errors import FormulaError, LoopError, SheetError, TrimwrightError
 from tuner.files.sheet import parse, read
 from tuner.model.controller import Controller
 from tuner.model.parameters import find
-from tuner.model.plant import CoefficientPlant, ExpressionPlant, PhysicsPlant, ZeroPolePlant
+from tuner.model.plant import CoefficientPlant, ExpressionPlant, PhysicsPlant, Plant, ZeroPolePlant
 from tuner.session.document import Document, FileChangedError
+from tuner.session.plant_forms import PLANT_FORMS, PlantForm
 
 KP = find("controller.kp")
 ACTIONS = st.one_of(
@@ -35,7 +37,7 @@ def document() -> Document:
 def _act(document: Document, action: tuple[str, object, str | None]) -> None:
     name, value, key = action
     gain = "kp" if document.sheet.controller.form == "parallel" else "kc"
-    deeds = {
+    deeds: dict[str, Callable[[], object]] = {
         "kp": lambda: document.change_value(gain, value, merge_key=key),  # type: ignore[arg-type] # drawn as a float
         "form": lambda: document.set_form(value),  # type: ignore[arg-type] # drawn as a form
         "keep": document.keep,
@@ -218,17 +220,20 @@ def test_a_refused_formula_changes_nothing(document: Document, text: str, error:
 
 def test_the_formula_as_typed_comes_back(document: Document) -> None:
     """A look at every other form and back brings the formula with its names and spreads."""
-    for form in ("coefficients", "zeros and poles", "state space", "physics", "coefficients", "formula"):
-        document.set_plant_form(form)  # type: ignore[arg-type] # the words of the type
+    for form in (*PLANT_FORMS, "coefficients", "formula"):
+        document.set_plant_form(form)
     assert document.sheet.plant == wash_bath().plant
 
 
 def test_forms_are_converted(document: Document) -> None:
     """The nominal plant of the formula, as coefficients and as zeros and poles."""
-    document.set_plant_form("coefficients")
-    assert document.sheet.plant == CoefficientPlant((0.016,), (1.0, 0.02), 4.0)
-    document.set_plant_form("zeros and poles")
-    assert document.sheet.plant == ZeroPolePlant((), (-0.02 + 0j,), 0.016, 4.0)
+    forms: dict[PlantForm, Plant] = {
+        "coefficients": CoefficientPlant((0.016,), (1.0, 0.02), 4.0),
+        "zeros and poles": ZeroPolePlant((), (-0.02 + 0j,), 0.016, 4.0),
+    }
+    for form, plant in forms.items():
+        document.set_plant_form(form)
+        assert document.sheet.plant == plant
 
 
 def test_numbers_changed_by_hand_make_another_formula(document: Document) -> None:

@@ -33,7 +33,7 @@ def refuse_new_faults(before: Sheet, after: Sheet) -> None:
 
 
 def sentence(refusal: Exception, path: str = "") -> str:
-    """Return the words of a refusal, without the path of the key they stand beside."""
+    """Return the words of a refusal, without the path of the key or table they stand beside."""
     if not isinstance(refusal, SheetError):
         return str(refusal)
-    return "\n".join(str(fault).removeprefix(f"{path}: ") for fault in refusal.faults)
+    return "\n".join(str(fault).removeprefix(f"{path}: ").removeprefix(f"{path}.") for fault in refusal.faults)

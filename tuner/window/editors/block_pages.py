@@ -50,11 +50,8 @@ class ControllerPage(TablePage):
         plain = [one for one in in_section("controller") if not one.ruler and one.name != "form"]
         self.add_fields("", plain)
         self.add_fields("Measurement filter", in_section("controller.measurement_filter"))
-        for part in (
-            NotchGroup(document, theme),
-            ReferenceFeedforward(document, theme),
-            DisturbancePath(document, theme),
-        ):
+        self.disturbance_path = DisturbancePath(document, theme)
+        for part in (NotchGroup(document, theme), ReferenceFeedforward(document, theme), self.disturbance_path):
             self.add(part, part)
         found = AsFound(document, theme)
         self.add(found, found)

@@ -24,7 +24,8 @@ class FaultLine(QLabel):
 
     def say(self, sentence: str) -> None:
         """Say a sentence, or nothing."""
-        self.setText(sentence[:1].upper() + sentence[1:])
+        begins_with_key = "." in sentence.partition(" ")[0]
+        self.setText(sentence if begins_with_key else sentence[:1].upper() + sentence[1:])
         self.setVisible(bool(sentence))
 
     def _dress(self) -> None:

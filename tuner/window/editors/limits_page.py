@@ -38,6 +38,7 @@ class LimitRow(QWidget):
         self.remove.setAccessibleName(f"remove the limit of {measure.label}")
         self.remove.setToolTip(f"Remove the limit of {measure.label}")
         self.remove.clicked.connect(self._remove)
+        self.sense = QLabel("at least" if measure.at_least else "at most")
         self.standing = Note(theme)
         self.definition = Note(theme, measure.sentence)
         self._lay_out()
@@ -55,14 +56,13 @@ class LimitRow(QWidget):
         name.setSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Preferred)
         name.setToolTip(self._measure.sentence)
         self.line.setFixedWidth(64)
-        sense = QLabel("at least" if self._measure.at_least else "at most")
-        sense.setProperty("voice", "quiet")
-        sense.setFixedWidth(48)
+        self.sense.setProperty("voice", "quiet")
+        self.sense.setFixedWidth(48)
         grid = QGridLayout(self)
         grid.setContentsMargins(0, 4, 0, 0)
         grid.setHorizontalSpacing(4)
         grid.setVerticalSpacing(2)
-        for column, part in enumerate((name, sense, self.line, self.unit, self.remove)):
+        for column, part in enumerate((name, self.sense, self.line, self.unit, self.remove)):
             grid.addWidget(part, 0, column)
         for row, part in enumerate((self.fault, self.standing, self.definition), start=1):
             grid.addWidget(part, row, 0, 1, 5)

@@ -25,12 +25,14 @@ class EditorPanel(QWidget):
         self._generation = document.generation
         self.limits = LimitsPage(document, theme)
         self.plant = PlantPage(document, theme)
+        controller = ControllerPage(document, theme)
+        self.disturbance_path = controller.disturbance_path
         self.pages: dict[str, Page] = {
             "Loop": loop_page(document, theme),
             "Plant": self.plant,
             "Actuator": TablePage(document, theme, (("", "actuator"),)),
             "Sensor": TablePage(document, theme, (("", "sensor"),)),
-            "Controller": ControllerPage(document, theme),
+            "Controller": controller,
             "Trial": TablePage(document, theme, (("", "trial"),)),
             "Limits": self.limits,
         }

@@ -21,6 +21,7 @@ class NumberField(LineField[float | None]):
 
     def __init__(self, document: Document, parameter: Parameter, theme: Theme) -> None:
         self._document, self._parameter = document, parameter
+        self.path = parameter.path
         super().__init__(theme, _caption(parameter), Source(self._held, Words(self._read, typed.shown), self._take))
         self.intake.left.connect(document.release)
         if _may_be_none(parameter):
@@ -55,6 +56,7 @@ class TextField(LineField[str]):
 
     def __init__(self, document: Document, parameter: Parameter, theme: Theme) -> None:
         self._document, self._parameter = document, parameter
+        self.path = parameter.path
         super().__init__(theme, _caption(parameter), Source(self._held, Words(str, str), self._take))
         self.intake.left.connect(document.release)
         self.unit.hide()
@@ -73,6 +75,7 @@ class ChoiceField(Field):
 
     def __init__(self, document: Document, parameter: Parameter, theme: Theme) -> None:
         self._document, self._parameter = document, parameter
+        self.path = parameter.path
         self.segments = Segments(parameter.choices, theme, self._choose)
         super().__init__(theme, _label(parameter), parameter.sentence, self.segments)
         self.unit.hide()
@@ -92,6 +95,7 @@ class FlagField(Field):
 
     def __init__(self, document: Document, parameter: Parameter, theme: Theme) -> None:
         self._document, self._parameter = document, parameter
+        self.path = parameter.path
         self.box = QCheckBox()
         super().__init__(theme, _label(parameter), parameter.sentence, self.box)
         self.box.clicked.connect(self._choose)
@@ -110,7 +114,7 @@ class FlagField(Field):
 
 ParameterField = NumberField | TextField | ChoiceField | FlagField
 
-_BY_KIND: dict[Kind, Callable[[Document, Parameter, Theme], ParameterField]] = {
+BY_KIND: dict[Kind, Callable[[Document, Parameter, Theme], ParameterField]] = {
     Kind.NUMBER: NumberField,
     Kind.INTEGER: NumberField,
     Kind.TEXT: TextField,
@@ -118,10 +122,12 @@ _BY_KIND: dict[Kind, Callable[[Document, Parameter, Theme], ParameterField]] = {
     Kind.FLAG: FlagField,
 }
 
+"""The field of each kind of value."""
+
 
 def parameter_field(document: Document, parameter: Parameter, theme: Theme) -> ParameterField:
     """Return the field of a parameter, of the kind that the table says."""
-    field = _BY_KIND[parameter.kind](document, parameter, theme)
+    field = BY_KIND[parameter.kind](document, parameter, theme)
     field.refresh(anew=True)
     return field
 

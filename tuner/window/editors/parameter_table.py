@@ -46,6 +46,11 @@ class ParameterRow(QWidget):
         self._fading.setEnabled(not used)
         self.name.setToolTip("" if used else f"{parameter.name}: not in the formula now; its numbers are kept.")
 
+    @property
+    def is_faded(self) -> bool:
+        """Whether the row is shown as one that the formula does not use."""
+        return self._fading.isEnabled()
+
     def _lay_out(self) -> None:
         grid = QGridLayout(self)
         grid.setContentsMargins(0, 0, 0, 0)

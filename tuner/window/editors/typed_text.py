@@ -59,6 +59,10 @@ class TypedText(QPlainTextEdit, Generic[Value]):
         """Return the index of the character where what was typed goes wrong, None when no one character is to blame."""
         return _position(self.intake.fault)
 
+    def marked_characters(self) -> list[int]:
+        """Return the indices of the characters marked as faulty."""
+        return [selection.cursor.selectionStart() for selection in self.extraSelections()]
+
     def sizeHint(self) -> QSize:
         """Return the size that shows the lines."""
         return QSize(240, self._lines * self.fontMetrics().lineSpacing() + 16)

@@ -62,6 +62,10 @@ class RulerPanel(QWidget):
         super().resizeEvent(event)
         self._lay_out()
 
+    def fault_in_sight(self) -> str:
+        """Return what is said to be wrong with what was typed, empty when nothing is."""
+        return "" if self._fault.isHidden() else self._fault.text()
+
     # Inside -----------------------------------------------------------------------------------------------------
 
     def _change_rulers(self) -> None:

@@ -34,7 +34,7 @@ class Ruler(QWidget):
         self._jumped = False
         self.slider = RulerSlider(theme)
         self.box = TypedLine(theme, self._value(), Words(self._read, _written), self._change, live=False)
-        self._unit = QLabel()
+        self.unit = QLabel()
         self._lay_out()
         self._connect()
         self.refresh()
@@ -47,7 +47,7 @@ class Ruler(QWidget):
         )
         self.box.intake.show_value(value)
         unit = self._unit_now()
-        self._unit.setText(unit)
+        self.unit.setText(unit)
         self.slider.setAccessibleDescription(f"{_written(value)} {unit}. {self.parameter.sentence}")
 
     def forget_typing(self) -> None:
@@ -85,12 +85,12 @@ class Ruler(QWidget):
         symbol.setAlignment(Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter)
         self.box.setFixedWidth(BOX_WIDTH)
         self.box.setAlignment(Qt.AlignmentFlag.AlignRight)
-        self._unit.setMinimumWidth(UNIT_WIDTH)
-        self._unit.setProperty("voice", "quiet")
+        self.unit.setMinimumWidth(UNIT_WIDTH)
+        self.unit.setProperty("voice", "quiet")
         row = QHBoxLayout(self)
         row.setContentsMargins(0, 0, 0, 0)
         row.setSpacing(4)
-        for part, stretch in ((symbol, 0), (self.slider, 1), (self.box, 0), (self._unit, 0)):
+        for part, stretch in ((symbol, 0), (self.slider, 1), (self.box, 0), (self.unit, 0)):
             row.addWidget(part, stretch)
         self.setToolTip(f"{self.parameter.name}: {self.parameter.sentence}")
         self.slider.setAccessibleName(f"{self.parameter.name} ruler")
