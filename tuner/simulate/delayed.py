@@ -10,13 +10,13 @@ from math import inf, log, pi
 
 import numpy as np
 
-from tuner.simulate.factors import Stack
+from tuner.simulate.factors import Stack, folded
 from tuner.simulate.linear import from_zeros_poles
-from tuner.simulate.roots import aberth, count_right, newton_steps_in_s
+from tuner.simulate.roots import count_right, newton_step_in_s, together
 from tuner.simulate.traces import Array, ComplexArray
 
-_NODES = (16, 32, 64, 128)
-_BRANCHES = (8, 24, 80, 400)
+_EFFORT = ((16, 8), (32, 24), (64, 80))
+"""Chebyshev pieces and branches of the chain, more and more until nothing is missing."""
 _CONVERGED = 1e-9
 _KEPT = 60
 _NEAREST = 0.98
@@ -33,12 +33,15 @@ class Rightmost:
         In s; every pole whose real part is above `known_from`, as the argument principle confirms.
     known_from : float
         1 per time unit; infinite when nothing could be confirmed.
+    count_unstable : int
+        How many lie right of the imaginary axis; at least one when there is a reason.
     reason : str
         Why the loop is unstable whatever its poles, else empty.
     """
 
     values: ComplexArray
     known_from: float
+    count_unstable: int
     reason: str
 
 
@@ -57,19 +60,22 @@ def delayed_poles(loop: Stack) -> Rightmost:
             f"the loop gain stays at {last:.3g}, not below 1, at infinite frequency: "
             "with dead time around it a change once made comes back as large for ever"
         )
-    best = Rightmost(np.zeros(0, dtype=complex), inf, reason)
-    for nodes, branches in zip(_NODES, _BRANCHES, strict=True):
+    values = np.zeros(0, dtype=complex)
+    for nodes, branches in _EFFORT:
         values = _found(loop, _starts(loop, nodes, branches))
-        line = _line(loop, values, last)
-        best = Rightmost(values, inf, reason)
         if last >= 1.0:
             break
-        if line is None:
-            continue
-        right = values[values.real > line]
-        if count_right(loop, line) == len(right):
-            return Rightmost(right, line, reason)
-    return best
+        for line in _lines(loop, values, last):
+            right = values[values.real > line]
+            if count_right(loop, line) == len(right):
+                return Rightmost(right, line, _unstable(loop, right, line), reason)
+    return Rightmost(values, inf, _unstable(loop, values, inf) if last < 1.0 else 1, reason)
+
+
+def _unstable(loop: Stack, values: ComplexArray, line: float) -> int:
+    """Return how many poles lie right of the imaginary axis, counted where they are not all known; 0 on the axis."""
+    known = int((values.real > 0.0).sum())
+    return known if line <= 0.0 else max(known, count_right(loop, 0.0) or 0)
 
 
 def _last_gain(loop: Stack) -> float:
@@ -91,7 +97,7 @@ def _starts(loop: Stack, nodes: int, branches: int) -> ComplexArray:
         guesses[0] = chain[np.abs(chain.imag) * loop.delay[0] > nodes]
     found = np.concatenate(guesses).astype(complex)
     found = found[found.imag >= 0.0]
-    step = np.abs(newton_steps_in_s(loop, found))
+    step = np.abs(newton_step_in_s(loop, found))
     return found[step <= 0.5 * np.maximum(np.abs(found), 1.0 / loop.delay[0])]
 
 
@@ -154,22 +160,16 @@ def _found(loop: Stack, starts: ComplexArray) -> ComplexArray:
     starts = _distinct(starts)
     real = np.abs(starts.imag) <= 1e-9 * np.abs(starts)
     both = np.concatenate((starts[real].real, starts[~real], starts[~real].conj()))
-    roots, error = aberth(lambda s: newton_steps_in_s(loop, s), both, rounds=30)
+    roots, error = together(loop, both, rounds=30)
     roots = roots[error < _CONVERGED]
     if loop.step:
-        roots = roots.real + 1j * _within(roots.imag, 2.0 * pi / loop.step)
+        roots = roots.real + 1j * folded(roots.imag, loop.step)
     roots = np.where(np.abs(roots.imag) <= 1e-8 * np.abs(roots), roots.real, roots)
     above = roots[roots.imag > 0.0]
     real_roots = roots[roots.imag == 0.0]
     roots = np.concatenate((_distinct(real_roots), _mirrored(_distinct(above), loop.step)))
     ordered: ComplexArray = roots[np.argsort(-roots.real)]
     return ordered
-
-
-def _within(angle: Array, period: float) -> Array:
-    """Return frequencies folded into half a period either side of zero."""
-    folded: Array = angle - period * np.round(angle / period)
-    return folded
 
 
 def _mirrored(above: ComplexArray, step: float) -> ComplexArray:
@@ -187,18 +187,20 @@ def _distinct(values: ComplexArray) -> ComplexArray:
     return np.array(kept, dtype=complex)
 
 
-def _line(loop: Stack, values: ComplexArray, last: float) -> float | None:
-    """Return where to draw the line: in a gap between roots, three times as far left as the rightmost or farther.
+def _lines(loop: Stack, values: ComplexArray, last: float) -> list[float]:
+    """Return where to draw the line, best first: in gaps between roots, clear of them.
 
-    A root chain that does not bend left, at ln(last)/delay, stays left of the line.
+    Three times as far left as the rightmost root or farther; if too many are there to find, just beyond the first few. A
+    root chain that does not bend left, at ln(last)/delay, stays left of the line.
     """
     if not len(values):
-        return None
+        return []
+    unit = 1.0 / float(loop.delay[0])
     rightmost = float(values[0].real)
-    goal = rightmost - max(2.0 * abs(rightmost), 0.5 / float(loop.delay[0]))
-    reals = np.append(values.real, goal - 0.5 / float(loop.delay[0]))
-    bound = log(last / _NEAREST) / float(loop.delay[0]) if last > 0.0 else -inf
-    gaps = [(high, low) for high, low in zip(reals[:-1], reals[1:], strict=True) if 0.5 * (high + low) > bound]
-    wide = [0.5 * (high + low) for high, low in gaps if high - low > 1e-3 / float(loop.delay[0])]
-    beyond = [line for line in wide if line <= goal]
-    return float(max(beyond)) if beyond else (float(min(wide)) if wide else None)
+    goal = rightmost - max(2.0 * abs(rightmost), 0.5 * unit)
+    reals = np.append(values.real, min(goal, float(values[-1].real)) - 0.5 * unit)
+    bound = unit * log(last / _NEAREST) if last > 0.0 else -inf
+    middle, wide = 0.5 * (reals[:-1] + reals[1:]), reals[:-1] - reals[1:] > 1e-3 * unit
+    lines = middle[wide & (middle > bound)].tolist()
+    beyond, before = [line for line in lines if line <= goal], [line for line in lines if line > goal]
+    return [*beyond[:1], *before[::-1][:2], *before[1:2], *before[:1]]

@@ -3,6 +3,7 @@
 from collections.abc import Sequence
 from dataclasses import dataclass
 from functools import cached_property
+from math import pi
 
 import numpy as np
 from numpy.typing import NDArray
@@ -140,6 +141,13 @@ def to_x(s: ComplexArray, step: float) -> ComplexArray:
     """Map s to x, the inverse of `to_s`."""
     x: ComplexArray = np.expm1(s * step) if step else s
     return x
+
+
+def folded(frequency: Array, step: float) -> Array:
+    """Return frequencies of a sampled system folded to within the Nyquist frequency either side of zero."""
+    period = 2.0 * pi / step
+    within: Array = frequency - period * np.round(frequency / period)
+    return within
 
 
 def _unit(roots: ComplexArray) -> float:

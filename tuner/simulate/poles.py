@@ -2,23 +2,24 @@
 
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
+from math import inf, pi
 
 import numpy as np
 
-from tuner.errors import LoopError
 from tuner.law.constants import notch
 from tuner.model.controller import Controller
 from tuner.simulate.delayed import delayed_poles
-from tuner.simulate.factors import Stack, stack, to_s
+from tuner.simulate.factors import Stack, folded, stack, to_s, to_x
 from tuner.simulate.linear import from_zeros_poles
 from tuner.simulate.loop import ContinuousLoop, Loop, SampledLoop, same_shape
-from tuner.simulate.roots import aberth, newton_steps
+from tuner.simulate.roots import newton_steps, together
 from tuner.simulate.traces import Array, ComplexArray
 
 LONGEST_CHAIN = 150
 """States up to which all poles of a sampled loop are found; beyond, those that decide."""
 
 _MARGINAL = 1e-9
+_ROUNDING = 1e-12
 _DEADBEAT = 1e-6
 _SURE = 1e-7
 
@@ -34,7 +35,7 @@ class Poles:
     stable : bool
         Whether all poles lie left of the imaginary axis, or inside the unit circle by more than 1e-9.
     count_unstable : int
-        How many do not; those listed in `values` when there are infinitely many.
+        How many do not; at least so many when there are infinitely many.
     growth : float
         Real part of the rightmost pole, 1 per time unit; minus infinity when there is none.
     complete : bool
@@ -55,13 +56,7 @@ class Poles:
 
 
 def closed_loop_poles(loop: Loop) -> Poles:
-    """Return the poles of a loop; those of what the controller acts on when it is open.
-
-    Raises
-    ------
-    LoopError
-        When the loop gain of a continuous loop is -1 at infinite frequency, so that the effort has no unique value.
-    """
+    """Return the poles of a loop; those of what the controller acts on when it is open."""
     return family_poles((loop,))[0]
 
 
@@ -77,11 +72,34 @@ def family_poles(loops: Sequence[Loop]) -> tuple[Poles, ...]:
 def _of_shape(loops: Sequence[Loop]) -> list[Poles]:
     if loops[0].factors.gain == 0.0:
         return [_open(loop) for loop in loops]
+    loose = [i for i, loop in enumerate(loops) if _is_algebraic(loop)]
+    if loose:
+        rest = [i for i in range(len(loops)) if i not in loose]
+        found = dict(zip(rest, _of_shape([loops[i] for i in rest]) if rest else [], strict=True))
+        return [found.get(i, _ALGEBRAIC) for i in range(len(loops))]
     rows = stack([loop.factors for loop in loops])
     short = [i for i, loop in enumerate(loops) if _states(loop) <= LONGEST_CHAIN]
     out = {i: _delayed(loops[i], rows.take([i])) for i in range(len(loops)) if i not in short}
     out |= dict(zip(short, _finite([loops[i] for i in short], rows.take(short)), strict=True))
     return [out[i] for i in range(len(loops))]
+
+
+_ALGEBRAIC = Poles(
+    values=np.zeros(0, dtype=complex),
+    stable=False,
+    count_unstable=1,
+    growth=inf,
+    complete=False,
+    known_from=inf,
+    reason="the loop gain is -1 at infinite frequency: the effort has no unique value",
+)
+
+
+def _is_algebraic(loop: Loop) -> bool:
+    """Tell whether 1 + L vanishes at infinite frequency, without dead time or samples to prevent it."""
+    factors = loop.factors
+    biproper = len(factors.zeros) == len(factors.poles) and not factors.step and not factors.delay
+    return biproper and abs(1.0 + factors.gain) <= _ROUNDING
 
 
 def _states(loop: Loop) -> float:
@@ -109,7 +127,8 @@ def _delayed(loop: Loop, row: Stack) -> Poles:
     (listed,) = _listed(found.values[None], loop.sample_time, _scale(row.modes))
     return replace(
         listed,
-        stable=listed.stable and not found.reason,
+        stable=listed.stable and not found.reason and found.count_unstable == 0,
+        count_unstable=max(listed.count_unstable, found.count_unstable),
         complete=False,
         known_from=found.known_from,
         reason=found.reason,
@@ -120,7 +139,7 @@ def _listed(s: ComplexArray, step: float, scale: Array) -> list[Poles]:
     """Sort the poles of each row and count those on or beyond the border; minus infinity is none."""
     order = np.lexsort((-s.imag, np.abs(s.imag), -s.real))
     values = np.take_along_axis(s, order, axis=1)
-    border = _MARGINAL / step if step else _MARGINAL * np.abs(values) + 1e-13 * scale[:, None]
+    border = _MARGINAL / step if step else _ROUNDING * (np.abs(values) + scale[:, None])
     unstable = (values.real >= -border).sum(1).tolist()
     present = (values.real > -np.inf).sum(1).tolist()
     return [
@@ -171,8 +190,14 @@ def _refined(rows: Stack, x: ComplexArray) -> ComplexArray:
 
 def _together(row: Stack, x: ComplexArray) -> ComplexArray:
     """Return roots found together, symmetric about the real axis; the given ones where that fails."""
-    roots, error = aberth(lambda at: newton_steps(row, at[None])[0], x)
-    real = np.abs(roots.imag) <= 1e-9 * np.abs(roots)
+    s, error = together(row, to_s(x * row.unit, row.step))
+    if row.step:
+        s = s.real + 1j * folded(s.imag, row.step)
+        own = np.abs(s.imag) >= pi / row.step * (1.0 - 1e-9)
+    roots = to_x(s, row.step) / row.unit
+    real = np.abs(s.imag) <= 1e-9 * np.abs(s)
+    if row.step:
+        real |= own
     above = roots[~real & (roots.imag > 0.0)]
     found = np.concatenate((roots[real].real, above, above.conj()))
     return found if len(found) == len(x) and (error < 1e-3).all() else x
@@ -189,8 +214,6 @@ def _continuous_matrix(loop: ContinuousLoop) -> Array:
     """Return the state matrix of 1 + L = 0, or of 1 + 1/L = 0 when L is improper or larger than one at infinity."""
     zeros, poles, gain = loop.factors.zeros, loop.factors.poles, loop.factors.gain
     excess = len(poles) - len(zeros)
-    if excess == 0 and abs(1.0 + gain) <= 1e-12:
-        raise LoopError("the loop cannot be closed: its direct terms cancel, so the effort has no unique value")
     if excess < 0 or (excess == 0 and abs(gain) > 1.0):
         zeros, poles, gain = poles, zeros, 1.0 / gain
     open_loop = from_zeros_poles(zeros, poles, gain)
@@ -214,8 +237,8 @@ def _sampled_matrices(loops: Sequence[Loop]) -> Array:
     rows = _LawRows(controller, measurement, order + chain_length)
     matrix = np.zeros((len(sampled), size, size))
     matrix[:, :order, :order] = [loop.held.growth for loop in sampled]
-    matrix[every, :order, order + steps] += np.array([loop.held.old for loop in sampled]).reshape(-1, order)
-    new = np.array([loop.held.new for loop in sampled]).reshape(-1, order)
+    matrix[every, :order, order + steps] += np.array([loop.held.old for loop in sampled]).reshape(len(sampled), order)
+    new = np.array([loop.held.new for loop in sampled]).reshape(len(sampled), order)
     # The effort of `steps` samples ago: this sample's own when there is no delay.
     inputs = np.zeros((len(sampled), size))
     inputs[every, order + steps - 1] = 1.0

@@ -1,16 +1,13 @@
 """Zeros of 1 + L in factored form: all at once by Aberth's iteration, and how many lie right of a line."""
 
-from collections.abc import Callable
 from math import pi
 
 import numpy as np
 
+from tuner.kernels import characteristic
 from tuner.simulate.factors import Stack
 from tuner.simulate.traces import Array, ComplexArray
 
-Steps = Callable[[ComplexArray], ComplexArray]
-
-_LONGEST_ANGLE = 0.8
 _MOST_POINTS = 200_000
 
 
@@ -35,16 +32,6 @@ def newton_steps(loops: Stack, x: ComplexArray) -> ComplexArray:
     return _step(gain, below, above)
 
 
-def newton_steps_in_s(loop: Stack, s: ComplexArray) -> ComplexArray:
-    """Return the same in s, for one loop with any delay: roots and steps of shape (k,), rad per time unit."""
-    with np.errstate(all="ignore"):
-        x = np.expm1(s * loop.step) / loop.unit if loop.step else s / loop.unit
-        speed = loop.step * (1.0 / loop.unit + x) if loop.step else 1.0 / loop.unit
-        gain, below, above = (part[0] for part in _parts(loop, x[None]))
-        gain = gain * np.exp(-loop.delay[0] * s)
-        return _step(gain, below * speed, above * speed - loop.delay[0])
-
-
 def _parts(loops: Stack, x: ComplexArray) -> tuple[ComplexArray, ComplexArray, ComplexArray]:
     """Return the rational part of L and the logarithmic derivatives of denominator and numerator."""
     difference = x[..., None] - loops.roots[:, None, :]
@@ -63,35 +50,36 @@ def _step(gain: ComplexArray, below: ComplexArray, above: ComplexArray) -> Compl
     return np.where(np.isfinite(step), step, 0.0)
 
 
-def aberth(steps: Steps, start: ComplexArray, rounds: int = 60) -> tuple[ComplexArray, Array]:
-    """Find roots together, each kept away from the others (Aberth, Mathematics of Computation 27, 1973; from memory).
+def together(loop: Stack, start: ComplexArray, rounds: int = 60) -> tuple[ComplexArray, Array]:
+    """Find roots of 1 + L together, each kept away from the others.
 
     Parameters
     ----------
-    steps : callable
-        Gives Newton's steps at points of shape (k,).
+    loop : Stack
+        One row, with any delay.
     start : ndarray of complex, shape (k,)
+        Guesses in s.
 
     Returns
     -------
     roots : ndarray of complex, shape (k,)
+        In s.
     error : ndarray, shape (k,)
         The last step of each, relative to its root.
     """
-    x = start * (1.0 + 1e-12 * np.arange(len(start)))
-    error = np.full(len(x), np.inf)
-    for _ in range(rounds):
-        step = steps(x)
-        apart = x[:, None] - x[None, :]
-        with np.errstate(all="ignore"):
-            repulsion = np.where(apart == 0.0, 0.0, 1.0 / apart).sum(1)
-            moved = step / (1.0 - step * repulsion)
-        moved = np.where(np.isfinite(moved), moved, 0.0)
-        x = x - moved
-        error = np.abs(moved) / np.maximum(np.abs(x), 1e-300)
-        if (error < 1e-14).all():
-            break
-    return x, error
+    s = start * (1.0 + 1e-12 * np.arange(len(start)))
+    error = np.full(len(s), np.inf)
+    characteristic.aberth(*_numbers(loop), s, rounds, error)
+    return s, error
+
+
+def newton_step_in_s(loop: Stack, s: ComplexArray) -> ComplexArray:
+    """Return Newton's steps from points in s, for one row with any delay."""
+    return np.array([characteristic.newton_step(*_numbers(loop), value) for value in s.tolist()], dtype=complex)
+
+
+def _numbers(loop: Stack) -> tuple[ComplexArray, int, float, float, float, float]:
+    return loop.roots[0], loop.zero_count, float(loop.gain[0]), float(loop.delay[0]), loop.step, loop.unit
 
 
 def count_right(loop: Stack, line: float) -> int | None:
@@ -112,17 +100,8 @@ def count_right(loop: Stack, line: float) -> int | None:
     y = _way(loop, line)
     if y is None:
         return None
-    value = _direction(loop, line + 1j * y)
-    for _ in range(40):
-        angle = np.angle(value[1:] / value[:-1])
-        fast = np.flatnonzero(np.abs(angle) > _LONGEST_ANGLE)
-        if not len(fast):
-            break
-        between = 0.5 * (y[fast] + y[fast + 1])
-        y = np.insert(y, fast + 1, between)
-        value = np.insert(value, fast + 1, _direction(loop, line + 1j * between))
     order = loop.roots.shape[1] - loop.zero_count
-    turned = float(np.angle(value[1:] / value[:-1]).sum())
+    turned = characteristic.turned(*_numbers(loop), line, y)
     if loop.step:
         return round(order - turned / pi)
     return round(0.5 * order - (turned + _rest(loop, line + 1j * float(y[-1]))) / pi)
@@ -160,19 +139,6 @@ def _gain(loop: Stack, s: ComplexArray) -> ComplexArray:
     with np.errstate(all="ignore"):
         x = np.expm1(s * loop.step) / loop.unit if loop.step else s / loop.unit
         value: ComplexArray = _parts(loop, x[None])[0][0] * np.exp(-loop.delay[0] * s)
-    return value
-
-
-def _direction(loop: Stack, s: ComplexArray) -> ComplexArray:
-    """Return D + N without the size of D or N, whichever is larger."""
-    gain = _gain(loop, s)
-    x = np.expm1(s * loop.step) / loop.unit if loop.step else s / loop.unit
-    factors = x[:, None] - loop.roots[0, loop.zero_count :]
-    with np.errstate(all="ignore"):
-        units = np.where(factors == 0.0, 1.0, factors / np.abs(factors)).prod(-1)
-        size = np.abs(gain)
-        whole = np.where(size <= 1.0, 1.0 + gain, 1.0 / size + gain / size)
-    value: ComplexArray = np.where(np.isfinite(size), whole, 1.0) * units
     return value
 
 
