@@ -37,3 +37,8 @@ def test_final_values(controller: Controller, static: StaticGains, reference: fl
 def test_an_open_integrator_ends_nowhere() -> None:
     """Without feedback an integrating plant has no final value."""
     assert isnan(final_values(Controller(feedback=False), TRIAL, StaticGains(inf)).reference)
+
+
+def test_a_pole_at_the_origin_ends_nowhere() -> None:
+    """A loop gain of -1 at rest divides nothing by zero."""
+    assert isnan(final_values(Controller(gain_1=1.0), TRIAL, StaticGains(-1.0)).reference)

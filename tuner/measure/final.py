@@ -88,6 +88,8 @@ def final_values(controller: Controller, trial: Trial, static: StaticGains) -> F
         return _integrating(trial, static, gain, forward)
     through = 1.0 + static.plant * gain
     path = static.plant if static.path is None else static.path
+    if through == 0.0:  # a pole at the origin, so an unstable loop
+        return FinalValues(nan, nan)
     return FinalValues(
         static.plant * forward / through * trial.reference,
         (path + static.plant * static.compensation) / through * trial.disturbance,

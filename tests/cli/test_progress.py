@@ -1,0 +1,42 @@
+"""The bar on stderr: only where a person watches, only when it lasts."""
+
+import io
+import sys
+
+import pytest
+
+from tuner.cli import progress
+from tuner.cli.progress import watched
+
+
+class Terminal(io.StringIO):
+    """Standard error of a person."""
+
+    def isatty(self) -> bool:
+        """Say so."""
+        return True
+
+
+def test_nothing_is_drawn_where_nobody_watches(capsys: pytest.CaptureFixture[str]) -> None:
+    """A pipe gets the items and no bar."""
+    assert list(watched([1, 2, 3], "judging")) == [1, 2, 3]
+    assert capsys.readouterr().err == ""
+
+
+def test_short_work_needs_no_bar(monkeypatch: pytest.MonkeyPatch) -> None:
+    """Less than a second: nothing is drawn on a terminal either."""
+    terminal = Terminal()
+    monkeypatch.setattr(sys, "stderr", terminal)
+
+    assert list(watched([1, 2, 3], "judging")) == [1, 2, 3]
+    assert terminal.getvalue() == ""
+
+
+def test_long_work_shows_how_far_it_is(monkeypatch: pytest.MonkeyPatch) -> None:
+    """Every item comes once, in order, also when the bar starts on the way."""
+    terminal = Terminal()
+    monkeypatch.setattr(sys, "stderr", terminal)
+    monkeypatch.setattr(progress, "PATIENCE", -1.0)
+
+    assert list(watched([1, 2, 3], "judging")) == [1, 2, 3]
+    assert "judging" in terminal.getvalue()
