@@ -4,6 +4,7 @@ from collections.abc import Iterator
 from pathlib import Path
 
 import pytest
+from PySide6.QtWidgets import QApplication
 from pytestqt.qtbot import QtBot
 
 from tuner.window.theme import Theme
@@ -17,8 +18,19 @@ def own_home(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> Path:
     return tmp_path / "home"
 
 
+@pytest.fixture(autouse=True)
+def _same_look(qapp: QApplication) -> Iterator[None]:
+    """Give the application back the look it had, whatever a test put on."""
+    font, colours, sheet = qapp.font(), qapp.palette(), qapp.styleSheet()
+    yield
+    if qapp.styleSheet() != sheet:
+        qapp.setStyleSheet(sheet)
+        qapp.setPalette(colours)
+        qapp.setFont(font)
+
+
 @pytest.fixture
-def theme(qtbot: QtBot) -> Iterator[Theme]:
+def theme(qtbot: QtBot) -> Theme:
     """Return the light theme."""
     del qtbot
-    yield Theme("light")
+    return Theme("light")

@@ -14,10 +14,9 @@ def _own_hook(monkeypatch: pytest.MonkeyPatch) -> None:
 
 
 def _raise(kind: type[BaseException]) -> None:
-    try:
+    with pytest.raises(kind) as caught:
         raise kind("by nothing")
-    except kind as fault:
-        sys.excepthook(kind, fault, fault.__traceback__)
+    sys.excepthook(kind, caught.value, caught.tb)
 
 
 def test_a_fault_is_said_and_logged(own_home: Path, capsys: pytest.CaptureFixture[str]) -> None:

@@ -38,7 +38,9 @@ def test_a_part_can_be_dropped(qtbot: QtBot) -> None:
     _, flow = _flow(qtbot, 2)
     item = flow.itemAt(0)
     assert item is not None
-    flow.drop(item.widget())
+    part = item.widget()
+    assert part is not None
+    flow.drop(part)
     assert flow.count() == 1
     assert flow.itemAt(5) is None
     assert flow.takeAt(5) is None

@@ -53,6 +53,6 @@ def test_the_typeface_comes_with_the_program(theme: Theme) -> None:
 
 def test_three_sizes(theme: Theme) -> None:
     """Small, body and title are those of the theme file."""
-    found = [theme.font(size).pixelSize() for size in ("small", "body", "title")]  # type: ignore[arg-type]  # literals in a tuple
+    found = [theme.font(size).pixelSize() for size in ("small", "body", "title")]
     assert found == [sizes().small, sizes().body, sizes().title]
     assert typeface("body", strong=True).weight() > typeface("body").weight()

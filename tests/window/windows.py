@@ -3,7 +3,7 @@
 from collections.abc import Iterator, Sequence
 from contextlib import contextmanager
 from pathlib import Path
-from typing import Any
+from typing import TypeVar, cast
 
 from tests.window import made_up
 from tuner.session.document import Document
@@ -16,53 +16,57 @@ from tuner.window.shown import Judge
 from tuner.window.theme import Theme
 from tuner.window.worker import Assessor
 
+Answer = TypeVar("Answer")
+
 
 class Answers(Asking):
     """Answers as told, and remembers what was said."""
 
-    def __init__(self, **answers: Any) -> None:  # each test knows the type of its own answer
+    def __init__(self, **answers: object) -> None:
         self.answers = answers
         self.asked: list[str] = []
         self.told: list[tuple[str, str, list[str]]] = []
 
-    def _answer(self, question: str) -> Any:
+    def _answer(self, question: str, kind: type[Answer]) -> Answer | None:
         self.asked.append(question)
-        return self.answers.get(question)
+        answer = self.answers.get(question)
+        assert answer is None or isinstance(answer, kind)
+        return answer
 
     def sheet_to_open(self, start: Path) -> Path | None:
         """Return the path told."""
         del start
-        return self._answer("open")  # type: ignore[no-any-return]  # as told by the test
+        return self._answer("open", Path)
 
     def sheet_to_save(self, suggested: Path) -> Path | None:
         """Return the path told."""
         self.suggested = suggested
-        return self._answer("save")  # type: ignore[no-any-return]  # as told by the test
+        return self._answer("save", Path)
 
     def picture_to_save(self, suggested: Path) -> Path | None:
         """Return the path told."""
         self.suggested = suggested
-        return self._answer("picture")  # type: ignore[no-any-return]  # as told by the test
+        return self._answer("picture", Path)
 
     def folder(self, start: Path) -> Path | None:
         """Return the path told."""
         del start
-        return self._answer("folder")  # type: ignore[no-any-return]  # as told by the test
+        return self._answer("folder", Path)
 
     def about_unsaved(self, name: str) -> Unsaved:
         """Return the answer told, else cancel."""
         self.name = name
-        return self._answer("unsaved") or "cancel"
+        return cast("Unsaved", self._answer("unsaved", str) or "cancel")
 
     def about_left_behind(self, name: str) -> LeftBehind:
         """Return the answer told, else later."""
         self.name = name
-        return self._answer("left behind") or "later"
+        return cast("LeftBehind", self._answer("left behind", str) or "later")
 
     def agree(self, title: str, sentence: str, action: str) -> bool:
         """Return the answer told."""
         del title, sentence
-        return bool(self._answer(action))
+        return bool(self._answer(action, bool))
 
     def tell(self, title: str, opening: str, sentences: Sequence[str]) -> None:
         """Remember what was said."""

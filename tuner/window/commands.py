@@ -27,7 +27,7 @@ class Commands:
             )
             return
         deliverer = self._deliverer or real_deliverer()
-        DeliverDialog(shown, self._delivery_folder(), deliverer, self._window, self._window.theme).exec()
+        DeliverDialog(shown, self._delivery_folder(), deliverer, self._window.theme, self._window).exec()
 
     def save_picture(self, panel: Panel) -> None:
         """Ask for a file and write the picture of a plot to it."""

@@ -65,7 +65,7 @@ class Deliverer(Protocol):
 class DeliverDialog(QDialog):
     """The dialog of one delivery."""
 
-    def __init__(self, shown: Shown, folder: Path, deliverer: Deliverer, window: QWidget, theme: Theme) -> None:
+    def __init__(self, shown: Shown, folder: Path, deliverer: Deliverer, theme: Theme, window: QWidget | None) -> None:
         super().__init__(window)
         self._shown, self._deliverer, self._theme = shown, deliverer, theme
         self.asking = Asking(self)

@@ -6,6 +6,7 @@ import pytest
 
 from tests.window import made_up
 from tuner.judge.overlay import Band, Boundary, Instant, Level, Overlay, Wedge
+from tuner.model.controller import Controller
 from tuner.window.plots.extent import Extent
 from tuner.window.plots.marks import Area, Stroke, pole_marks, rectangle, trace_marks
 
@@ -83,7 +84,7 @@ def test_half_the_sampling_frequency_is_marked_for_a_sampled_loop() -> None:
     """At pi / 0.5 s above and below; a continuous controller has no such line."""
     kept = [stroke.y0 for stroke in pole_marks(SHEET, Overlay()).strokes if stroke.role == "kept"]
     assert sorted(kept) == pytest.approx([-pi / 0.5, pi / 0.5])
-    continuous = made_up.sheet(controller=made_up.Controller(gain_1=1.0))
+    continuous = made_up.sheet(controller=Controller(gain_1=1.0))
     assert not [stroke for stroke in pole_marks(continuous, Overlay()).strokes if stroke.role == "kept"]
 
 

@@ -5,11 +5,14 @@ from dataclasses import replace
 import numpy as np
 import pytest
 from PySide6.QtCore import Qt
+from PySide6.QtTest import QTest
 from pytestqt.qtbot import QtBot
 
-from tests.window import made_up
 from tests.window.plots.answers import answer, seen
-from tuner.judge.assessment import Assessment
+from tuner.judge.assessment import Assessment, MemberResult
+from tuner.model.controller import Controller
+from tuner.model.sheet import Trial
+from tuner.simulate.traces import Trace, Traces
 from tuner.window.plots.trace_panel import DisturbancePanel, EffortPanel, ReferencePanel, TracePanel
 from tuner.window.shown import Shown
 from tuner.window.theme import Theme
@@ -139,23 +142,23 @@ def test_the_pointer_reads_the_nominal_curve(reference: ReferencePanel) -> None:
     trace = shown.assessment.nominal.traces.reference
     found = reference.read(float(trace.t[400]), 0.0)
     assert found is not None
-    assert found[0] == (pytest.approx(trace.t[400]), pytest.approx(trace.y[400]))
+    assert found[0] == pytest.approx((trace.t[400], trace.y[400]))
     assert found[1].startswith("at 50 s: 7")
     assert found[1].endswith("degC")
     assert reference.read(-1.0, 0.0) is None
     assert reference.read(241.0, 0.0) is None
 
 
-def test_the_keyboard_moves_the_pointer(reference: ReferencePanel, qtbot: QtBot) -> None:
+def test_the_keyboard_moves_the_pointer(reference: ReferencePanel) -> None:
     """Right and page keys move the reading in time, Escape lets go of it; a screen reader hears it."""
     reference.show(answer(1.0))
-    qtbot.keyClick(reference.view, Qt.Key.Key_Right)
+    QTest.keyClick(reference.view, Qt.Key.Key_Right)
     assert reference.marks.pointer is not None
     assert reference.marks.pointer[0] == 0.0
-    qtbot.keyClick(reference.view, Qt.Key.Key_PageUp)
+    QTest.keyClick(reference.view, Qt.Key.Key_PageUp)
     assert reference.marks.pointer[0] == pytest.approx(0.1 * reference.ranges()[0].span)
     assert reference.view.accessibleDescription().startswith("at 24.5 s:")
-    qtbot.keyClick(reference.view, Qt.Key.Key_Escape)
+    QTest.keyClick(reference.view, Qt.Key.Key_Escape)
     assert reference.marks.pointer is None
 
 
@@ -215,7 +218,7 @@ def test_a_sampled_effort_is_a_staircase(effort: EffortPanel) -> None:
 
 def test_a_continuous_effort_is_a_curve(effort: EffortPanel) -> None:
     """Without samples the effort is drawn as it runs."""
-    shown = answer(1.0, controller=made_up.Controller(gain_1=1.0))
+    shown = answer(1.0, controller=Controller(gain_1=1.0))
     trace = shown.assessment.nominal.traces.reference
     assert np.array_equal(effort.lines(shown).nominal.t, trace.t)
 
@@ -240,7 +243,7 @@ def test_both_runs_are_named(effort: EffortPanel) -> None:
     """The effort of each run is labelled where it runs; without a disturbance there is one run."""
     effort.show(answer(1.0))
     assert {"reference run", "disturbance run"} <= {words.text for words in effort.marks.words}
-    effort.show(answer(1.0, trial=made_up.Trial(240.0, 5.0, 0.0)))
+    effort.show(answer(1.0, trial=Trial(240.0, 5.0, 0.0)))
     assert "disturbance run" not in {words.text for words in effort.marks.words}
 
 
@@ -263,7 +266,7 @@ def test_it_is_empty_in_words_at_first(reference: ReferencePanel) -> None:
     assert not reference._empty.isVisible()
 
 
-def _with_reference(shown: Shown, trace: made_up.Trace) -> Shown:
+def _with_reference(shown: Shown, trace: Trace) -> Shown:
     nominal = shown.assessment.nominal
     traces = replace(nominal.traces, reference=trace)
     members = (replace(nominal, traces=traces), *shown.assessment.members[1:])
@@ -273,11 +276,11 @@ def _with_reference(shown: Shown, trace: made_up.Trace) -> Shown:
 def _wild(shown: Shown) -> Shown:
     """Return an answer whose traces grow beyond all bounds, with infinities and gaps."""
 
-    def worse(member: made_up.MemberResult) -> made_up.MemberResult:
+    def worse(member: MemberResult) -> MemberResult:
         reference, disturbance = member.traces.reference, member.traces.disturbance
         grow = np.exp(np.minimum(reference.t * 3.0, 700.0)) * np.sin(reference.t)
         grow[-3:] = np.inf, np.nan, -np.inf
-        traces = made_up.Traces(replace(reference, y=grow, u=grow), replace(disturbance, y=-grow, u=grow))
+        traces = Traces(replace(reference, y=grow, u=grow), replace(disturbance, y=-grow, u=grow))
         return replace(member, traces=traces)
 
     wild: Assessment = replace(shown.assessment, members=tuple(worse(member) for member in shown.assessment.members))

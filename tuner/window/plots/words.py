@@ -14,4 +14,5 @@ def missed_words(shown: Shown, plots: Collection[Plot]) -> tuple[str, bool]:
     count = sum(PLOT_OF[limit.measure] in plots for limit in shown.assessment.limits)
     if not count:
         return "nothing here is on the acceptance sheet", False
-    return ("the limit here is met", "both limits here are met", f"all {count} limits here are met")[min(count, 3) - 1], False
+    met = {1: "the limit here is met", 2: "both limits here are met"}
+    return met.get(count, f"all {count} limits here are met"), False
