@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING
 from tuner.cli import status
 from tuner.cli.command import Arguments, Command, Parser
 from tuner.cli.judging import add_family, assessed
+from tuner.cli.progress import working
 from tuner.cli.sheets import Source
 from tuner.errors import DeliveryError, TrimwrightError
 from tuner.model.sheet import Sheet
@@ -49,9 +50,10 @@ def hand_over(sheet: Sheet, assessment: "Assessment", file: str, arguments: Argu
 
     folder = Path(arguments.to)
     try:
-        delivery = deliver(
-            sheet, assessment, folder, accept_unmet=arguments.accept_unmet, overwrite=arguments.overwrite
-        )
+        with working("writing the files and running them against the simulation"):
+            delivery = deliver(
+                sheet, assessment, folder, accept_unmet=arguments.accept_unmet, overwrite=arguments.overwrite
+            )
     except DeliveryError as error:
         status.refuse(error, file)
         refused_by_verdict = assessment.verdict != "met" and not arguments.accept_unmet

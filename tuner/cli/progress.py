@@ -1,8 +1,9 @@
-"""A progress bar on stderr for work that lasts longer than a second, where a person watches."""
+"""What shows on stderr, where a person watches, that work goes on which lasts longer than a second."""
 
 import sys
 import time
 from collections.abc import Iterator, Sequence
+from contextlib import AbstractContextManager, nullcontext
 from typing import TypeVar
 
 PATIENCE = 1.0
@@ -12,8 +13,8 @@ Item = TypeVar("Item")
 
 
 def watched(items: Sequence[Item], what: str) -> Iterator[Item]:
-    """Yield the items; show how far it is once the work lasts, unless stderr is no terminal."""
-    if len(items) < 2 or not sys.stderr.isatty():
+    """Yield the items; show how far it is once the work lasts, unless results appear on the terminal as they come."""
+    if len(items) < 2 or not sys.stderr.isatty() or sys.stdout.isatty():
         yield from items
         return
     start = time.monotonic()
@@ -28,8 +29,18 @@ def _with_bar(items: Sequence[Item], done: int, what: str) -> Iterator[Item]:
     from rich.console import Console
     from rich.progress import Progress
 
-    with Progress(console=Console(stderr=True), transient=True) as bar:
+    # Results go to stdout as always; only what is said on stderr meanwhile is put above the bar.
+    with Progress(console=Console(stderr=True), transient=True, redirect_stdout=False) as bar:
         task = bar.add_task(what, total=len(items), completed=done)
         for item in items[done:]:
             yield item
             bar.advance(task)
+
+
+def working(what: str) -> AbstractContextManager[object]:
+    """Show that one long piece of work goes on, unless stderr is no terminal."""
+    if not sys.stderr.isatty():
+        return nullcontext()
+    from rich.console import Console
+
+    return Console(stderr=True).status(what)
