@@ -62,6 +62,8 @@ if os.environ.get("FAKE_NAME_STATUS"):
 PROGRAM = """
 import json, os, sys
 def main(argv):
+    with open(os.path.join(os.environ["FAKE"], "calls"), "a") as calls:
+        calls.write("\\t".join(["program", *argv]) + "\\n")
     print(json.dumps({"argv": argv, "folder": os.getcwd(), "prefix": sys.prefix}))
     return 7
 run = main

@@ -8,9 +8,7 @@ import os
 import sys
 from pathlib import Path
 
-from tuner.bootstrap.folder import Folder, candidates, is_inside
-
-HANDED_OVER = "TRIMWRIGHT_ENVIRONMENT"
+from tuner.bootstrap.folder import HANDED_OVER, Folder, candidates, is_inside
 
 
 def enter(program: Path, arguments: list[str], testing: bool = False) -> None:

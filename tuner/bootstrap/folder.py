@@ -11,6 +11,9 @@ import zlib
 from collections.abc import Iterator
 from pathlib import Path
 
+HANDED_OVER = "TRIMWRIGHT_ENVIRONMENT"
+"""The variable that tells a program in which environment it has been started, so that it need not look again."""
+
 READY, BEING_MADE = "ready", "being made"
 WINDOW_LACKS, NOTHING_LACKS = "lacks the libraries of the window", "lacks nothing"
 _HEAD = 5

@@ -9,7 +9,7 @@ from pathlib import Path
 from typing import NamedTuple
 
 from tuner.bootstrap import system
-from tuner.bootstrap.folder import BEING_MADE, Folder, choose
+from tuner.bootstrap.folder import BEING_MADE, HANDED_OVER, Folder, choose
 from tuner.bootstrap.lock import locked
 from tuner.bootstrap.requirements import requirements
 from tuner.bootstrap.steps import SetUpError, Steps
@@ -72,7 +72,20 @@ def _complete(folder: Folder, root: Path, wish: Wish, steps: Steps) -> None:
     if not is_ready or lacks_window != folder.lacks_window:
         folder.mark_ready(root, requirements(root, wish.testing), lacks_window)
     if not is_ready:
+        _compile_once(folder, root, steps)
         steps.say("The environment is complete.")
+
+
+def _compile_once(folder: Folder, root: Path, steps: Steps) -> None:
+    """Let the program judge its built-in loop, so that the first start finds it compiled."""
+    command = [
+        str(folder.python),
+        str(root / "tuner" / "__main__.py"),
+        "judge",
+        str(root / "sample_plants/heater.toml"),
+    ]
+    # Whatever it finds, or if it fails: the program itself will say so better.
+    steps.run("compiling the simulation", command, {**os.environ, HANDED_OVER: str(folder.path)})
 
 
 def _install_system_packages(wish: Wish, has_environment: bool, steps: Steps) -> None:
