@@ -88,10 +88,17 @@ def test_banner_names_every_limit_that_is_missed_and_the_instability() -> None:
         instability=runaway,
     )
     assert unmet(FULL, judged) == [
-        "unstable: With gain 2 it doubles every 6.93 s.",
+        "unstable: With gain 2 it doubles every 6.93 s",
         "missed: overshoot does not exist, at most 8 % asked, not met; worst plant: gain 2",
         "missed: gain margin does not exist, at least 2 asked, not met; worst plant: gain 2",
     ]
+
+
+def test_an_instability_that_says_so_itself_is_not_announced_twice() -> None:
+    """The sentence of the assessment is kept as it is."""
+    runaway = Instability("gain 2", 0.1, 6.93, 1.0, "kp", 2.0, "Unstable: doubles every 6.93 s.")
+    judged = assessment("unstable", stable=False, instability=runaway)
+    assert unmet(FULL, judged) == ["Unstable: doubles every 6.93 s"]
 
 
 @pytest.mark.parametrize(

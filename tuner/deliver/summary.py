@@ -64,14 +64,19 @@ def plain(text: str) -> str:
 
 
 def _family(assessment: Assessment) -> str:
-    return f"over a family of {assessment.family_size}" if assessment.family_size > 1 else "for the nominal plant alone"
+    return (
+        f"over a family of {assessment.family_size} plants"
+        if assessment.family_size > 1
+        else "for the nominal plant alone"
+    )
 
 
 def _unstable(assessment: Assessment) -> list[str]:
     if assessment.verdict != "unstable":
         return []
     if assessment.instability is not None:
-        return [f"unstable: {assessment.instability.sentence}"]
+        told = assessment.instability.sentence.rstrip(".")
+        return [told if told.lower().startswith("unstable") else f"unstable: {told}"]
     plants = [member.name for member in assessment.members if not member.stable]
     return [f"unstable, first with the plant {plants[0]}" if plants else "unstable"]
 

@@ -153,4 +153,4 @@ class _Scenario:
 
 def _short(value: float) -> float:
     """Return a number that is short to write."""
-    return float(f"{value:.7g}")
+    return float(f"{value:.9g}")
