@@ -69,6 +69,14 @@ def test_nothing_but_plain_text_where_no_terminal_is() -> None:
     assert text.startswith("Kiln [red]zone[/red]  (kiln.toml)\n")
 
 
+def test_a_unit_in_square_brackets_is_printed() -> None:
+    """Units and plants in a table are no markup either."""
+    asked = sheet({"disturbance_peak": 8.0})
+    odd = replace(asked, loop=replace(asked.loop, controlled=replace(asked.loop.controlled, unit="[pH]")))
+
+    assert "disturbance peak   1 [pH]   at most 8 [pH]   [b]" in printed(odd, judge(odd, [member("[b]")]))
+
+
 def test_the_verdict_in_words() -> None:
     """Met, missed and unstable, in singular and plural."""
     one, two = sheet({"overshoot": 8.0}), sheet({"overshoot": 8.0, "rise_time": 0.5})

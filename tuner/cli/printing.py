@@ -57,7 +57,8 @@ def _table(sheet: Sheet, assessment: Assessment) -> Table:
     for title in columns:
         table.add_column(title, no_wrap=title != "worst plant")
     for row in _limit_rows(sheet, assessment) if assessment.limits else _measure_rows(sheet, assessment):
-        table.add_row(*row)
+        # As texts: a unit in square brackets is no markup.
+        table.add_row(*(cell if isinstance(cell, Text) else Text(cell) for cell in row))
     return table
 
 
@@ -75,7 +76,7 @@ def _value_and_bound(sheet: Sheet, limit: LimitResult) -> tuple[str, str]:
     return quantity(limit.value, unit, digits), f"{bound} {quantity(limit.limit, unit, digits)}"
 
 
-def _measure_rows(sheet: Sheet, assessment: Assessment) -> Iterator[tuple[str, ...]]:
+def _measure_rows(sheet: Sheet, assessment: Assessment) -> Iterator[tuple[str | Text, ...]]:
     for measure in MEASURES:
         worst = assessment.worst[measure.name]
         if worst.value is not None:
