@@ -116,3 +116,13 @@ def test_a_missed_limit_of_the_nominal_plant() -> None:
     assert callouts(asked, judge(asked, [member()])) == (
         Callout("frequency", "gain_margin", "gain margin 1 < 2 at the nominal plant"),
     )
+
+
+def test_a_missing_measure_says_why_beside_its_plot() -> None:
+    """The reason of the plant that is named."""
+    asked = sheet({"settling_time": 90.0})
+    family = [member(), member("gain 2", stable=False, settling_time=None)]
+
+    assert callouts(asked, judge(asked, family))[0].sentence == (
+        "no settling time (at most 90 min) at gain 2: the loop is unstable"
+    )

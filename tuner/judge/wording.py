@@ -40,12 +40,12 @@ def told_apart(value: float, limit: float) -> int:
 
 
 def relation(measure: str, value: float | None, limit: float, loop: Loop) -> str:
-    """Say how a value stands to its limit: "settling time 96 s > 90 s"."""
+    """Say how a value stands to its limit: "settling time 96 s > 90 s", "no settling time (at most 90 s)"."""
     facts = BY_NAME[measure]
     unit = unit_of(measure, loop)
     if value is None:
         bound = "at least" if facts.at_least else "at most"
-        return f"{facts.label} does not exist, asked {bound} {quantity(limit, unit)}"
+        return f"no {facts.label} ({bound} {quantity(limit, unit)})"
     size = abs(value) if facts.by_size else value
     digits = told_apart(size, limit)
     sign = ">" if size > limit else "<" if size < limit else "="
