@@ -203,6 +203,16 @@ def test_an_unstable_loop_ends() -> None:
     assert np.abs(traces.reference.y).max() > 1e6
 
 
+def test_what_does_not_converge_is_said() -> None:
+    """A loop whose limits switch ever faster has curves that the trial does not vouch for."""
+    sliding = Controller(gain_1=1e6, gain_2=1e3)
+    whole = sheet("1/(s (s + 1)(s + 2))", sliding, Trial(400.0), Manipulated(low=-1.0, high=2.0))
+    assert run(whole, NOMINAL)[0].notes == (
+        "The curves of the continuous controller still changed by more than 0.05% of the step when the computing step "
+        "was halved for the last time.",
+    )
+
+
 @pytest.mark.parametrize(
     ("expression", "controller", "sentence"),
     [
@@ -224,6 +234,11 @@ def test_an_unstable_loop_ends() -> None:
             "an unfiltered derivative acts on a plant with a direct term through the measurement filter, with a loop "
             "gain of 4 at infinite frequency, which is not simulated from 1 upwards: expected "
             "controller.filter_time above 0",
+        ),
+        (
+            "1/(s + 1)",
+            Controller(gain_1=1.0, notch=Notch(1e4)),
+            "the notch at 10000 rad per time unit is too fast for a trial of 5: shorten trial.duration",
         ),
     ],
 )

@@ -24,6 +24,9 @@ from tuner.simulate.wiring import Process, processes, wire
 RUNAWAY = 1e12
 """An output or effort this many times its natural size has run away; it is held from there on."""
 
+_LARGEST = 1e150
+"""No ceiling is above this, so that the square of a signal is still a number."""
+
 _NO_NOISE = np.zeros((0, 0))
 
 
@@ -188,7 +191,8 @@ def _ceilings(sheet: Sheet, found: Sequence[Process], constants: Array, feedforw
     frequency = np.array([2j * math.pi / trial.duration])
     rises = [abs(complex((process.disturbance_path or process.plant).response(frequency)[0])) for process in found]
     y = np.array([[abs(trial.reference), abs(trial.disturbance) * min(rise, 1e12)] for rise in rises]).reshape(-1)
-    gain = np.abs(constants[:, [0, 1, 2]]) @ (1.0, feedforward.shape[1], 1.0)
-    effort = gain * y + np.abs(feedforward).max(axis=1) + np.tile([0.0, abs(trial.disturbance)], len(found))
-    sizes = np.column_stack((y, effort))
-    return RUNAWAY * np.where(sizes > 0.0, sizes, 1.0)
+    with np.errstate(over="ignore"):
+        gain = np.abs(constants[:, [0, 1, 2]]) @ (1.0, feedforward.shape[1], 1.0)
+        effort = gain * y + np.abs(feedforward).max(axis=1) + np.tile([0.0, abs(trial.disturbance)], len(found))
+        sizes = np.column_stack((y, effort))
+        return np.minimum(RUNAWAY * np.where(sizes > 0.0, sizes, 1.0), _LARGEST)

@@ -1,9 +1,10 @@
 """Trials of a continuous controller: the sampled law at a step that is halved until the answer no longer depends on it.
 
 Two steps, one half of the other, extrapolate to none at all, for the error of the sampled law is proportional to its
-step (Richardson's extrapolation).
+step (Richardson's extrapolation). Two such extrapolations, from three steps, tell how good the better one is.
 """
 
+import math
 from collections.abc import Sequence
 from typing import NamedTuple
 
@@ -19,18 +20,24 @@ from tuner.simulate.grid import Grid
 from tuner.simulate.traces import Array
 from tuner.simulate.wiring import Process, processes
 
-FEWEST, MOST = 1_000, 64_000
-"""Steps of the coarser run: to start with, and at most."""
+FEWEST, MOST = 500, 64_000
+"""Steps of the coarsest run, and of the finest at most."""
 
-AGREEMENT = 0.005
-"""Coarse and fine run differ by this share of the step at most; the extrapolated one then errs by its square or so."""
+WORK = 3_200_000
+"""Steps of the finest run at most for all loops of a family together."""
+
+CHATTERING = 8_000
+"""Steps of the finest run at most with a resolution, whose chatter has no limit to converge to."""
+
+AGREEMENT = 5e-4
+"""Extrapolated runs differ by this share of the step at most; the finer one then errs by about a third of it."""
 
 _FAR_AWAY = 100.0
 """A run that has grown to this many times the step is unstable, and its error no longer counts."""
 
 
 class Extrapolated(NamedTuple):
-    """Runs at the points of the coarser grid, and whether their accuracy was reached."""
+    """Runs at the points of a grid, and whether their accuracy was reached."""
 
     runs: Runs
     grid: Grid
@@ -46,15 +53,39 @@ def simulate_continuous(sheet: Sheet, members: Sequence[Member]) -> Extrapolated
         When a member cannot be computed, or its loop has no answer.
     """
     gains = [direct_gain(sheet, process) for process in processes(sheet, members)]
-    grid = Grid(sheet.trial.duration / FEWEST, 1, FEWEST + 1)
-    coarse = _run(sheet, members, grid, gains)
+    fewest = _fewest(sheet)
+    grid = Grid(sheet.trial.duration / fewest, 1, fewest + 1)
+    middle_grid = _halved(grid)
+    coarse, middle = _run(sheet, members, grid, gains), _run(sheet, members, middle_grid, gains)
+    rough = _extrapolated(sheet, coarse, middle, any(gains))
     while True:
-        fine_grid = Grid(grid.sample_time / 2.0, 1, 2 * grid.points - 1)
+        fine_grid = _halved(middle_grid)
         fine = _run(sheet, members, fine_grid, gains)
-        reached = _agree(sheet, coarse.y, fine.y[..., ::2])
-        if reached or 2 * grid.points > MOST:
-            return Extrapolated(_extrapolated(sheet, coarse, fine, any(gains)), grid, reached)
-        coarse, grid = fine, fine_grid
+        better = _extrapolated(sheet, middle, fine, any(gains))
+        reached = _agree(sheet, rough.y, better.y[..., ::2])
+        if reached or 2 * fine_grid.points > _most(sheet, members):
+            return Extrapolated(better, middle_grid, reached)
+        middle, rough, middle_grid = fine, better, fine_grid
+
+
+def _fewest(sheet: Sheet) -> int:
+    """Return the steps of the coarsest run: some ten for each cycle of the notch, at least."""
+    notch = sheet.controller.notch
+    wanted = math.ceil(2.0 * sheet.trial.duration * notch.frequency) if notch else 0
+    if notch and wanted > MOST // 4:
+        raise LoopError(
+            f"the notch at {notch.frequency:g} rad per time unit is too fast for a trial of {sheet.trial.duration:g}: "
+            "shorten trial.duration"
+        )
+    return max(FEWEST, wanted)
+
+
+def _halved(grid: Grid) -> Grid:
+    return Grid(grid.sample_time / 2.0, 1, 2 * grid.points - 1)
+
+
+def _most(sheet: Sheet, members: Sequence[Member]) -> int:
+    return CHATTERING if sheet.sensor.resolution else min(MOST, WORK // len(members))
 
 
 def direct_gain(sheet: Sheet, process: Process) -> float:
