@@ -118,6 +118,21 @@ def test_a_first_order_loop_by_hand() -> None:
     assert found.nominal.measures["saturated_share"] == 0.0
 
 
+def test_a_deadbeat_loop_by_hand() -> None:
+    """An integrator with kp = 1/Ts is there after one sample, in a straight line, and stays: every pole at z = 0."""
+    found = assess(bath(plant="gain/(2 s)", sample_time=1, gains="kp = 1", spread=0, reference=1, disturbance=0))
+    measures = found.nominal.measures
+
+    assert found.nominal.stable
+    assert (measures["overshoot"], measures["undershoot"], measures["damping"]) == (0.0, 0.0, 1.0)
+    assert measures["rise_time"] == pytest.approx(0.8, rel=1e-9)
+    assert measures["settling_time"] == pytest.approx(0.98, rel=1e-9)
+    assert measures["iae_reference"] == pytest.approx(0.5, rel=1e-9)
+    assert measures["peak_effort"] == pytest.approx(1.0)
+    assert measures["effort_travel"] == pytest.approx(2.0)
+    assert measures["gain_margin"] == pytest.approx(2.0)
+
+
 def test_a_touched_limit_is_counted() -> None:
     """A heater that is too small saturates, and the error that stays is measured on the run itself."""
     found = assess(bath(high=31, spread=0))

@@ -154,6 +154,28 @@ def test_no_colour_where_no_terminal_is(tmp_path: Path) -> None:
     assert "Unstable: grows e-fold every" in done.stdout
 
 
+def test_a_name_that_the_encoding_lacks(tmp_path: Path) -> None:
+    """A terminal that knows only ASCII gets the letter escaped; JSON is ASCII in any case."""
+    (path,) = put(tmp_path, a=MET.replace("Bath", "Bäckerei Ω").replace("degC", "°C"))
+    program = "import sys; from tuner.cli.main import console; console()"
+    environment = os.environ | {"PYTHONIOENCODING": "ascii", "PYTHONUTF8": "0"}
+
+    plain, machine = (
+        subprocess.run(
+            [sys.executable, "-c", program, "judge", path, *more],
+            env=environment,
+            capture_output=True,
+            text=True,
+            check=False,
+        )
+        for more in ((), ("--json",))
+    )
+
+    assert (plain.returncode, plain.stderr) == (0, "")
+    assert plain.stdout.startswith("B\\xe4ckerei \\u03a9  (")
+    assert json.loads(machine.stdout)["title"] == "Bäckerei Ω"
+
+
 def test_a_reader_that_stops_reading_is_no_fault(tmp_path: Path) -> None:
     """When the pipe closes, the program ends without a word."""
     reading, writing = os.pipe()

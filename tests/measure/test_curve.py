@@ -33,6 +33,15 @@ def test_a_level_that_is_never_reached_has_no_time() -> None:
     assert found[1] == 0.0
 
 
+def test_a_crossing_beside_a_corner() -> None:
+    """Where a held effort jumps, the curve turns a corner; a crossing just before it is found on its own side."""
+    corner = np.minimum(T, 5.0)
+
+    assert first_reach(T, rows(corner), (4.993,), block=100)[0][0] == pytest.approx(4.993, abs=1e-12)
+    assert last_exit(T, rows(corner - 5.0), np.array([0.003]), block=100)[0] == pytest.approx(4.997, abs=1e-12)
+    assert abs(first_reach(T, rows(corner), (4.993,))[0][0] - 4.993) > 1e-5
+
+
 def test_the_highest_point_lies_between_samples() -> None:
     """The first peak of a sine shifted off the grid is found in height and time."""
     peak = highest(T, rows(lambda t: np.sin(0.3 * t - 0.00123)))

@@ -18,6 +18,7 @@ def runs(y: Array, final: float, u: Array | None = None) -> Runs:
     return Runs(
         members=np.array([0]),
         t=T,
+        block=1,
         y=np.asarray(y)[None],
         u=effort[None],
         saturated=np.array([0.25]),

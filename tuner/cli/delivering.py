@@ -73,7 +73,7 @@ def tell(delivery: "Delivery", folder: Path, assessment: "Assessment", *, as_jso
             "files": [str(path) for path in delivery.files],
             "proof": [proof.entry() for proof in delivery.proof],
         }
-        sys.stdout.write(json.dumps(told, ensure_ascii=False, allow_nan=False) + "\n")
+        sys.stdout.write(json.dumps(told, allow_nan=False) + "\n")
         return
     lines = [f"Delivered to {folder}:", *(f"  {path.name}" for path in delivery.files)]
     lines += [f"{proof.file}: {_proof(proof.entry())}" for proof in delivery.proof]

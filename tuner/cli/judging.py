@@ -78,7 +78,7 @@ def print_json(assessment: "Assessment", *, traces: bool = False) -> None:
     """Print an assessment as one line of strict JSON, at once."""
     from tuner.judge.as_json import as_json
 
-    sys.stdout.write(json.dumps(as_json(assessment, traces=traces), ensure_ascii=False, allow_nan=False) + "\n")
+    sys.stdout.write(json.dumps(as_json(assessment, traces=traces), allow_nan=False) + "\n")
     sys.stdout.flush()
 
 

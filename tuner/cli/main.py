@@ -3,6 +3,7 @@
 import os
 import sys
 from collections.abc import Sequence
+from io import TextIOWrapper
 from pathlib import Path
 
 from tuner import __version__
@@ -28,6 +29,7 @@ def console() -> None:
 def main(words: Sequence[str]) -> int:
     """Run one command line and return its exit status: 0 met, 1 missed or unstable, 2 unusable input."""
     keep_compiled_kernels()
+    _print_whatever_it_is()
     try:
         found = _run(list(words))
         sys.stdout.flush()
@@ -43,6 +45,13 @@ def main(words: Sequence[str]) -> int:
     except TrimwrightError as error:
         return status.refuse(error)
     return found
+
+
+def _print_whatever_it_is() -> None:
+    """Let a name that the terminal's encoding lacks come out escaped, rather than end the program."""
+    for stream in (sys.stdout, sys.stderr):
+        if isinstance(stream, TextIOWrapper):
+            stream.reconfigure(errors="backslashreplace")
 
 
 def _run(words: list[str]) -> int:

@@ -4,7 +4,8 @@ Every function takes a whole family at once: `t` of shape (n,) holds evenly spac
 shape (m, n) one curve a row, and the result has shape (m,), NaN where a curve has no such point. With h the spacing,
 crossings lie within O(h^4) of the smooth curve's (a cubic through four points), heights of peaks within O(h^3) and
 their times within O(h^2) (a parabola on either side of the highest point, so that a corner at a sample instant is not
-rounded off), areas within O(h^2).
+rounded off), areas within O(h^2). A curve has corners where a held effort jumps: `block` is the number of steps
+between them, counted from the first instant, and a cubic then keeps to one side; 1 for a curve without corners.
 """
 
 from collections.abc import Sequence
@@ -35,7 +36,7 @@ class _Bracket(NamedTuple):
     sign: Array
 
 
-def first_reach(t: Array, y: Array, levels: Sequence[float]) -> Array:
+def first_reach(t: Array, y: Array, levels: Sequence[float], block: int = 1) -> Array:
     """Return when each curve first reaches each level from below, shape (levels, m); at once if it starts there."""
     count = len(y)
     rows = np.arange(count)
@@ -44,19 +45,19 @@ def first_reach(t: Array, y: Array, levels: Sequence[float]) -> Array:
     ever = y[rows, index] >= level
     row = np.tile(rows, len(levels))
     left = np.maximum(index.ravel() - 1, 0)
-    found = _crossings(t, y, _Bracket(row, left, np.repeat(levels, count), np.ones(len(row))))
+    found = _crossings(t, y, _Bracket(row, left, np.repeat(levels, count), np.ones(len(row))), block)
     times = np.where(index > 0, found.reshape(index.shape), t[0])
     return np.where(ever, times, np.nan)
 
 
-def last_exit(t: Array, y: Array, reach: Array) -> Array:
+def last_exit(t: Array, y: Array, reach: Array, block: int = 1) -> Array:
     """Return after when abs(y) stays within `reach`, of shape (m,): 0 when always, NaN when not at the end."""
     inside = np.abs(y) <= reach[:, None]
     rows, end = np.arange(len(y)), y.shape[1] - 1
     last = end - np.ascontiguousarray(inside[:, ::-1]).argmin(axis=1)
     never = inside[rows, last]
     left = np.minimum(last, end - 1)
-    times = _crossings(t, y, _Bracket(rows, left, reach, np.sign(y[rows, left])))
+    times = _crossings(t, y, _Bracket(rows, left, reach, np.sign(y[rows, left])), block)
     return np.where(never, 0.0, np.where(inside[:, -1], times, np.nan))
 
 
@@ -121,19 +122,23 @@ def _one_side(y: Array, index: Indices, sign: Array, step: int) -> Peaks:
     return Peaks(np.minimum(-slope / bend, 1.0), -0.5 * slope * slope / bend)
 
 
-def _crossings(t: Array, y: Array, at: _Bracket) -> Array:
+def _crossings(t: Array, y: Array, at: _Bracket, block: int) -> Array:
     """Return when the cubic through the four samples around each step passes the level in it."""
     here, there = at.sign * y[at.row, at.left], at.sign * y[at.row, at.left + 1]
     rise = there - here
     share = np.clip((at.level - here) / np.where(rise == 0.0, np.inf, rise), 0.0, 1.0)
     if y.shape[1] >= 4:
-        share = _cubic_share(y, at, share)
+        share = _cubic_share(y, at, share, block)
     return t[at.left] + share * (t[at.left + 1] - t[at.left])
 
 
-def _cubic_share(y: Array, at: _Bracket, share: Array) -> Array:
+def _cubic_share(y: Array, at: _Bracket, share: Array, block: int) -> Array:
     """Improve where in its step each curve passes the level, 0 to 1, from where a straight line does."""
-    first = np.clip(at.left - 1, 0, y.shape[1] - 4)
+    first = at.left - 1
+    if block >= 3:
+        start = at.left // block * block
+        first = np.clip(first, start, start + block - 3)
+    first = np.clip(first, 0, y.shape[1] - 4)
     p0, p1, p2, p3 = at.sign * y[at.row, first + np.arange(4)[:, None]]
     d1, d2, d3 = p1 - p0, p2 - 2.0 * p1 + p0, p3 - 3.0 * p2 + 3.0 * p1 - p0
     # Newton's form p0 + d1 x + d2 x (x - 1) / 2 + d3 x (x - 1)(x - 2) / 6, written in powers of x.

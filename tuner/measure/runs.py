@@ -25,6 +25,8 @@ class Runs:
     members : ndarray of int, shape (m,)
         Which plants of the family they are.
     t : ndarray, shape (n,)
+    block : int
+        Steps of `t` between samples, where a held effort jumps; 1 for a continuous controller.
     y, u : ndarray, shape (m, n)
         Output and effort, deviations.
     saturated : ndarray, shape (m,)
@@ -37,6 +39,7 @@ class Runs:
 
     members: Indices
     t: Array
+    block: int
     y: Array
     u: Array
     saturated: Array
@@ -63,7 +66,7 @@ def stacked(traces: Sequence[Trace], exact: Sequence[float], stable: Sequence[bo
 
 
 def _stack(members: Indices, traces: Sequence[Trace], exact: Array, size: float) -> Runs:
-    t = traces[0].t
+    t, at = traces[0].t, traces[0].sample_index
     y = np.stack([trace.y for trace in traces])
     linear = np.array([trace.linear for trace in traces])
     astray = np.logical_not(linear) & _runs_away(y, np.array([trace.r[-1] for trace in traces]), size)
@@ -73,6 +76,7 @@ def _stack(members: Indices, traces: Sequence[Trace], exact: Array, size: float)
     return Runs(
         members=members,
         t=t,
+        block=int(at[1] - at[0]) if len(at) > 1 else 1,
         y=y,
         u=np.stack([trace.u for trace in traces]),
         saturated=np.array([np.count_nonzero(trace.limited) / max(trace.limited.size, 1) for trace in traces]),

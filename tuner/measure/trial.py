@@ -41,13 +41,13 @@ def reference_readings(runs: Runs, step: float, band: float) -> Readings:
     z = runs.y / final[:, None]
     over = _some(highest(runs.t, z).height - 1.0)
     peak = first_maximum(runs.t, z, 1.0 + NOTHING) if (over > 0.0).any() else np.full(len(z), np.nan)
-    low, high = first_reach(runs.t, z, (0.1, 0.9))
+    low, high = first_reach(runs.t, z, (0.1, 0.9), runs.block)
     z -= 1.0
     return {
         "overshoot": Reading(PERCENT * over),
         "peak_time": Reading(np.where(over > 0.0, peak, np.nan), NO_OVERSHOOT),
         "rise_time": Reading(high - low, NOT_REACHED),
-        "settling_time": Reading(last_exit(runs.t, z, np.full(len(z), band / PERCENT)), NOT_SETTLED),
+        "settling_time": Reading(last_exit(runs.t, z, np.full(len(z), band / PERCENT), runs.block), NOT_SETTLED),
         "steady_state_error": Reading(PERCENT * (step - runs.final) / step),
         "undershoot": Reading(PERCENT * _some(_depth(runs.t, z))),
         "iae_reference": Reading(absolute_area(runs.t, step - runs.y)),
@@ -81,7 +81,7 @@ def disturbance_readings(runs: Runs, band: float) -> Readings:
     return {
         "iae_disturbance": Reading(absolute_area(runs.t, runs.y)),
         "disturbance_peak": Reading(peak),
-        "disturbance_recovery": Reading(last_exit(runs.t, away, peak * band / PERCENT), NOT_RECOVERED),
+        "disturbance_recovery": Reading(last_exit(runs.t, away, peak * band / PERCENT, runs.block), NOT_RECOVERED),
     }
 
 
