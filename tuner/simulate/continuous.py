@@ -23,8 +23,8 @@ from tuner.simulate.wiring import Process, processes
 FEWEST, MOST = 500, 64_000
 """Steps of the coarsest run, and of the finest at most."""
 
-WORK = 3_200_000
-"""Steps of the finest run at most for all loops of a family together."""
+WORK = 800_000
+"""Steps of the finest run at most, summed over the members of a family."""
 
 CHATTERING = 8_000
 """Steps of the finest run at most with a resolution, whose chatter has no limit to converge to."""
