@@ -43,7 +43,7 @@ def test_work_of_a_crashed_run_comes_back(file: Path) -> None:
     found.restore_into(document)
     assert document.sheet.controller.gain_1 == 4.5
     assert [(one.name, one.label, one.controller.gain_1) for one in document.kept] == [("A", "before", 3.0)]
-    assert (document.path, document.dirty) == (file, True)
+    assert (document.path, document.dirty, document.opened) == (file, True, wash_bath())
     document.save()
     assert file.read_text(encoding="utf-8") == TEXT.replace("kp = 3.0", "kp = 4.5")
     drop(found.store)

@@ -14,8 +14,9 @@ from tuner.files.sheet import parse, read
 from tuner.model.controller import Controller
 from tuner.model.parameters import find
 from tuner.model.plant import CoefficientPlant, ExpressionPlant, PhysicsPlant, Plant, ZeroPolePlant
-from tuner.session.document import Document, FileChangedError
+from tuner.session.document import Document
 from tuner.session.plant_forms import PLANT_FORMS, PlantForm
+from tuner.session.sheet_file import FileChangedError
 
 KP = find("controller.kp")
 ACTIONS = st.one_of(
@@ -358,3 +359,12 @@ def test_a_new_sheet_has_no_file(document: Document) -> None:
     """An example shown is not dirty and has no path."""
     document.start(parse(TEXT), TEXT)
     assert (document.path, document.dirty) == (None, False)
+
+
+def test_a_form_that_the_file_would_be_refused_for_is_not_taken(document: Document) -> None:
+    """Coefficients have no names for the disturbance path to share; the remark says so, and the formula stays."""
+    document.change_disturbance_path("rise / (lag s + 1)")
+    before = document.sheet
+    document.set_plant_form("coefficients")
+    assert document.sheet == before
+    assert document.remark.startswith("Not possible: controller.disturbance_feedforward.expression, character 1")

@@ -36,4 +36,10 @@ def sentence(refusal: Exception, path: str = "") -> str:
     """Return the words of a refusal, without the path of the key or table they stand beside."""
     if not isinstance(refusal, SheetError):
         return str(refusal)
-    return "\n".join(str(fault).removeprefix(f"{path}: ").removeprefix(f"{path}.") for fault in refusal.faults)
+    return "\n".join(_beside(str(fault), path) for fault in refusal.faults)
+
+
+def _beside(words: str, path: str) -> str:
+    for ending in (": ", ", ", "."):
+        words = words.removeprefix(f"{path}{ending}")
+    return words

@@ -1,18 +1,18 @@
 """The open document: one tuning sheet with its history, its file and the tunings kept to compare with."""
 
 from collections.abc import Callable
-from dataclasses import dataclass, replace
+from dataclasses import replace
 from pathlib import Path
 
-from tuner.errors import LoopError, TrimwrightError
+from tuner.errors import LoopError, SheetError
 from tuner.model.controller import Controller, Form
 from tuner.model.parameters import Parameter
 from tuner.model.plant import ExpressionPlant, Plant, PlantParameter
 from tuner.model.sheet import Sheet
-from tuner.session import recent
 from tuner.session.history import History
 from tuner.session.plant_forms import PlantForm, PlantForms, form_of
 from tuner.session.ruler_range import RulerRange, range_for, typical_value, widened
+from tuner.session.sheet_file import SheetFile, read_file, unsaved_file
 from tuner.session.state import (
     State,
     first_state,
@@ -28,32 +28,6 @@ from tuner.session.state import (
 from tuner.session.tunings import KeptTuning, Mark, free_name, in_form_or_none, in_words, marks, with_as_found
 
 Listener = Callable[[], None]
-
-
-class FileChangedError(TrimwrightError):
-    """A save that would overwrite what somebody else wrote into the file meanwhile."""
-
-
-@dataclass(frozen=True, slots=True)
-class SheetFile:
-    """Where a sheet comes from and goes to.
-
-    Parameters
-    ----------
-    opened : Sheet
-        As it was read.
-    saved : Sheet or None
-        As it was written last; None for work found unsaved.
-    path : Path or None
-        Its file; None before it has one.
-    text : str
-        The text of the file as last read or written, whose comments a save keeps.
-    """
-
-    opened: Sheet
-    saved: Sheet | None
-    path: Path | None
-    text: str
 
 
 class Document:
@@ -95,10 +69,8 @@ class Document:
         SheetError
             With every fault of the file.
         """
-        file = _read(path)
-        document = cls(file.opened, path, file.text)
-        recent.remember(path)
-        return document
+        file = read_file(path)
+        return cls(file.opened, path, file.text)
 
     # What is shown ----------------------------------------------------------------------------------------------
 
@@ -313,11 +285,11 @@ class Document:
         self._change_checked(state, label, merge_key=f"parameter {parameter.name}")
 
     def set_plant_form(self, form: PlantForm) -> None:
-        """Give the plant in another form; `remark` says so when it is not the same plant there."""
+        """Give the plant in another form; `remark` says so when it is not the same plant there, or not possible."""
         if form == self.plant_form:
             return
         switched = with_plant_form(self._history.present, form)
-        self._show(self._history.changed(switched.state, f"Give the plant as {form}"), switched.remark)
+        self._show_plant(switched.state, f"Give the plant as {form}", switched.remark)
 
     @property
     def has_typed_plant(self) -> bool:
@@ -326,8 +298,7 @@ class Document:
 
     def bring_back_plant(self) -> None:
         """Show the plant as it was last typed in the present form."""
-        state = with_typed_plant(self._history.present)
-        self._show(self._history.changed(state, "Bring back the plant typed before"))
+        self._show_plant(with_typed_plant(self._history.present), "Bring back the plant typed before")
 
     @property
     def spare_parameters(self) -> tuple[PlantParameter, ...]:
@@ -344,9 +315,8 @@ class Document:
         SheetError
             With every fault of the file; the present sheet stays.
         """
-        file = _read(path)
+        file = read_file(path)
         self._begin(History(first_state(file.opened)), file)
-        recent.remember(path)
 
     def start(self, sheet: Sheet, original_text: str = "") -> None:
         """Show a sheet that has no file yet."""
@@ -354,7 +324,7 @@ class Document:
 
     def recover(self, sheet: Sheet, kept: tuple[KeptTuning, ...], path: Path | None, original_text: str) -> None:
         """Show unsaved work found from an earlier run; it stays unsaved until it is saved."""
-        self._begin(History(first_state(sheet, kept)), SheetFile(sheet, None, path, original_text))
+        self._begin(History(first_state(sheet, kept)), unsaved_file(sheet, path, original_text))
 
     def save(self) -> None:
         """Write the sheet to its file, comments kept.
@@ -366,16 +336,7 @@ class Document:
         TrimwrightError
             When it has no file, or the file cannot be written.
         """
-        from tuner.files.sheet import is_unchanged
-
-        path = self._file.path
-        if path is None:
-            raise TrimwrightError("this sheet has no file yet: choose one to save it as")
-        if path.exists() and not is_unchanged(path, self._file.text):
-            raise FileChangedError(
-                f"{path} was changed by somebody else since it was read: save under another name, or open it again"
-            )
-        self.save_as(path)
+        self.save_as(self._file.own_path())
 
     def save_as(self, path: Path) -> None:
         """Write the sheet to another file, comments kept, and go on with that one.
@@ -385,11 +346,7 @@ class Document:
         TrimwrightError
             When the file cannot be written.
         """
-        from tuner.files.sheet import read_text, write
-
-        write(path, self.sheet, self._file.text)
-        self._file = replace(self._file, path=path, text=read_text(path), saved=self.sheet)
-        recent.remember(path)
+        self._file = self._file.written(self.sheet, path)
         self._tell()
 
     # Inside -----------------------------------------------------------------------------------------------------
@@ -414,6 +371,17 @@ class Document:
         refuse_new_faults(self.sheet, state.sheet)
         self._show(self._history.changed(state, label, merge_key))
 
+    def _show_plant(self, state: State, label: str, remark: str = "") -> None:
+        """Show a plant in another form, unless its sheet's file would be refused; then the remark says why."""
+        from tuner.session.checks import refuse_new_faults
+
+        try:
+            refuse_new_faults(self.sheet, state.sheet)
+        except SheetError as refusal:
+            self._show(self._history, f"Not possible: {refusal}")
+            return
+        self._show(self._history.changed(state, label), remark)
+
     def _show(self, history: History[State], remark: str = "") -> None:
         self._history = history
         self.refusal, self.remark = "", remark
@@ -422,11 +390,3 @@ class Document:
     def _tell(self) -> None:
         for listener in tuple(self._listeners):
             listener()
-
-
-def _read(path: Path) -> SheetFile:
-    from tuner.files.sheet import parse, read_text
-
-    text = read_text(path)
-    sheet = parse(text, str(path))
-    return SheetFile(sheet, sheet, path, text)

@@ -6,7 +6,8 @@ from pathlib import Path
 
 from tuner.errors import SheetError, TrimwrightError
 from tuner.places import sample_plants
-from tuner.session.document import Document, FileChangedError
+from tuner.session.document import Document
+from tuner.session.sheet_file import FileChangedError
 from tuner.session.recent import recent_files
 from tuner.window.asking import Asking
 

@@ -12,6 +12,7 @@ from pytestqt.qtbot import QtBot
 
 from tests.session.sheets import TEXT, wash_bath
 from tests.window.editors.typing import enter
+from tuner.errors import Fault, SheetError
 from tuner.model.parameters import Kind, find, in_section
 from tuner.session.document import Document
 from tuner.session.fields import value_at
@@ -291,3 +292,24 @@ def test_a_panel_that_is_gone_hears_nothing(document: Document, theme: Theme) ->
     QApplication.processEvents()
     document.change_value("kp", 5.0)
     assert document.sheet.controller.gain_1 == 5.0
+
+
+def test_a_refused_choice_says_why_and_stays(
+    panel: EditorPanel, document: Document, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    """A word or a switch that the sheet may not have is refused in place, and shows what holds."""
+
+    def refuse(*_args: object, **_keys: object) -> None:
+        raise SheetError([Fault("loop.time_unit", "another unit", "this one")])
+
+    monkeypatch.setattr(document, "edit", refuse)
+    field = _field(panel, "Loop", "loop.time_unit")
+    assert isinstance(field, ChoiceField)
+    QTest.mouseClick(field.segments.buttons["min"], Qt.MouseButton.LeftButton)
+    assert field.fault.text() == "Expected another unit, found this one"
+    assert field.segments.buttons["s"].isChecked()
+    flag = _field(panel, "Controller", "controller.feedback")
+    assert isinstance(flag, FlagField)
+    QTest.keyClick(flag.box, Qt.Key.Key_Space)
+    assert flag.fault.text() == "loop.time_unit: expected another unit, found this one"
+    assert flag.box.isChecked()

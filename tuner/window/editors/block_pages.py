@@ -73,6 +73,7 @@ class OptionalGroup(Group):
     def __init__(self, document: Document, theme: Theme, title: str) -> None:
         super().__init__(document, theme, title)
         self._fields: dict[str, ParameterField] = {}
+        self.fault = FaultLine(theme)
 
     def show_fields(self, parameters: Sequence[Parameter], *, anew: bool) -> None:
         """Have the fields of these parameters, and no others."""
@@ -95,6 +96,7 @@ class NotchGroup(OptionalGroup):
         super().__init__(document, theme, "Notch")
         self.switch = Segments(("none", "notch"), theme, self._choose)
         self.add(self.switch)
+        self.add(self.fault)
 
     def refresh(self, *, anew: bool) -> None:
         """Show the notch of the document."""
@@ -105,7 +107,8 @@ class NotchGroup(OptionalGroup):
     def _choose(self, word: str) -> None:
         sheet = self._document.sheet
         notch = first_notch(sheet) if word == "notch" else None
-        self._document.edit(with_notch(sheet, notch), label="Add a notch" if notch else "Remove the notch")
+        label = "Add a notch" if notch else "Remove the notch"
+        self.fault.attempt(lambda: self._document.edit(with_notch(sheet, notch), label=label))
 
 
 class ReferenceFeedforward(OptionalGroup):
@@ -117,6 +120,7 @@ class ReferenceFeedforward(OptionalGroup):
         super().__init__(document, theme, "Feedforward of the reference")
         self.switch = Segments(("none", *find("controller.feedforward.kind").choices), theme, self._choose)
         self.add(self.switch)
+        self.add(self.fault)
 
     def refresh(self, *, anew: bool) -> None:
         """Show the feedforward of the document."""
@@ -125,7 +129,9 @@ class ReferenceFeedforward(OptionalGroup):
         self.show_fields([find(f"controller.feedforward.{self._NUMBER[present.kind]}")] if present else [], anew=anew)
 
     def _choose(self, word: str) -> None:
-        self._document.edit(with_feedforward(self._document.sheet, word), label=f"Set the feedforward to {word}")
+        changed = with_feedforward(self._document.sheet, word)
+        label = f"Set the feedforward to {word}"
+        self.fault.attempt(lambda: self._document.edit(changed, label=label))
 
 
 class DisturbancePath(Group):

@@ -1,9 +1,12 @@
 """A field: a label, something to set a value with, its unit, and a sentence underneath when it is wrong."""
 
+from collections.abc import Callable
 from typing import Protocol
 
 from PySide6.QtWidgets import QGridLayout, QLabel, QSizePolicy, QVBoxLayout, QWidget
 
+from tuner.errors import TrimwrightError
+from tuner.session.checks import sentence
 from tuner.window.theme import Theme
 
 LABEL_WIDTH, UNIT_WIDTH = 108, 52
@@ -22,11 +25,21 @@ class FaultLine(QLabel):
         theme.changed.connect(self._dress)
         self._dress()
 
-    def say(self, sentence: str) -> None:
+    def say(self, words: str) -> None:
         """Say a sentence, or nothing."""
-        begins_with_key = "." in sentence.partition(" ")[0]
-        self.setText(sentence if begins_with_key else sentence[:1].upper() + sentence[1:])
-        self.setVisible(bool(sentence))
+        begins_with_key = "." in words.partition(" ")[0]
+        self.setText(words if begins_with_key else words[:1].upper() + words[1:])
+        self.setVisible(bool(words))
+
+    def attempt(self, change: Callable[[], None], path: str = "") -> bool:
+        """Make a change and tell whether it was made; say why it was refused, leaving out the `path` it concerns."""
+        try:
+            change()
+        except TrimwrightError as refusal:
+            self.say(sentence(refusal, path))
+            return False
+        self.say("")
+        return True
 
     def _dress(self) -> None:
         self.setStyleSheet(f"color: {self._theme.palette.colours['lost_word']};")
@@ -128,3 +141,11 @@ class Page(QWidget):
         """Show what the document holds."""
         for part in self._parts:
             part.refresh(anew=anew)
+
+    def settle(self) -> None:
+        """Lay everything out at once, inner parts first, so that nothing is seen half laid out."""
+        for inner in reversed(self.findChildren(QWidget)):
+            layout = inner.layout()
+            if layout is not None and not inner.isHidden():
+                layout.activate()
+        self.column.activate()

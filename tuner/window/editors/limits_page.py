@@ -1,7 +1,7 @@
 """The page of the limits: a bound on any of the measures, with its definition and how the family stands to it."""
 
 from PySide6.QtCore import Qt
-from PySide6.QtWidgets import QComboBox, QGridLayout, QLabel, QSizePolicy, QToolButton, QVBoxLayout, QWidget
+from PySide6.QtWidgets import QGridLayout, QLabel, QSizePolicy, QToolButton, QVBoxLayout, QWidget
 
 from tuner.judge.assessment import Assessment, LimitResult
 from tuner.model.measures import BY_NAME, MEASURES, Measure
@@ -9,6 +9,7 @@ from tuner.session import typed
 from tuner.session.document import Document
 from tuner.session.fields import unit_of, with_limit, without_limit
 from tuner.session.typed import NOT_NEGATIVE
+from tuner.window.editors.chooser import Chooser
 from tuner.window.editors.field import FaultLine, Note, Page
 from tuner.window.editors.intake import Words
 from tuner.window.editors.typed_line import TypedLine
@@ -79,7 +80,8 @@ class LimitRow(QWidget):
 
     def _remove(self) -> None:
         changed = without_limit(self._document.sheet, self._measure.name)
-        self._document.edit(changed, label=f"Remove the limit of {self._measure.label}")
+        label = f"Remove the limit of {self._measure.label}"
+        self.fault.attempt(lambda: self._document.edit(changed, label=label))
 
 
 class LimitsPage(Page):
@@ -93,12 +95,12 @@ class LimitsPage(Page):
         self._list = QVBoxLayout()
         self._list.setSpacing(4)
         self.column.insertLayout(0, self._list)
-        self.adder = QComboBox()
-        self.adder.setAccessibleName("add a limit")
-        self.adder.setSizeAdjustPolicy(QComboBox.SizeAdjustPolicy.AdjustToMinimumContentsLengthWithIcon)
+        self.adder = Chooser(theme, "add a limit")
         self.adder.setMaxVisibleItems(len(MEASURES) + 1)
         self.adder.activated.connect(self._add)
         self.add(self.adder)
+        self.fault = FaultLine(theme)
+        self.add(self.fault)
 
     def refresh(self, *, anew: bool) -> None:
         """Show the limits of the document."""
@@ -140,7 +142,9 @@ class LimitsPage(Page):
         if name is None:
             return
         changed = with_limit(self._document.sheet, name, self._first_limit(name))
-        self._document.edit(changed, label=f"Add a limit of {BY_NAME[name].label}")
+        label = f"Add a limit of {BY_NAME[name].label}"
+        if not self.fault.attempt(lambda: self._document.edit(changed, label=label)):
+            return
         line = self.rows[name].line
         line.setFocus(Qt.FocusReason.OtherFocusReason)
         line.selectAll()

@@ -77,6 +77,7 @@ class EditorPanel(QWidget):
                 page.refresh(anew=True)
         else:
             self.pages[self.block].refresh(anew=False)
+        self.pages[self.block].settle()
 
     def show(self, assessment: Assessment | None = None) -> None:
         """Show an assessment: how the family stands to each limit."""
@@ -101,6 +102,7 @@ class EditorPanel(QWidget):
     def _on_block(self, name: str) -> None:
         self._stack.setCurrentIndex(list(self.pages).index(name))
         self.pages[name].refresh(anew=False)
+        self.pages[name].settle()
         self.block_chosen.emit(name)
 
     def _dress(self) -> None:

@@ -86,8 +86,10 @@ class ChoiceField(Field):
         self.segments.show_choice(str(value_at(self._document.sheet, self._parameter.path)))
 
     def _choose(self, word: str) -> None:
-        changed = with_value_at(self._document.sheet, self._parameter.path, word)
-        self._document.edit(changed, label=f"Set {_label(self._parameter)}")
+        changed = with_value_at(self._document.sheet, self.path, word)
+        label = f"Set {_label(self._parameter)}"
+        self.fault.attempt(lambda: self._document.edit(changed, label=label), self.path)
+        self.refresh(anew=False)
 
 
 class FlagField(Field):
@@ -108,8 +110,10 @@ class FlagField(Field):
         self.box.setText("on" if held else "off")
 
     def _choose(self, checked: bool) -> None:  # as Qt hands it over
-        changed = with_value_at(self._document.sheet, self._parameter.path, checked)
-        self._document.edit(changed, label=f"Set {_label(self._parameter)}")
+        changed = with_value_at(self._document.sheet, self.path, checked)
+        label = f"Set {_label(self._parameter)}"
+        self.fault.attempt(lambda: self._document.edit(changed, label=label), self.path)
+        self.refresh(anew=False)
 
 
 ParameterField = NumberField | TextField | ChoiceField | FlagField

@@ -11,9 +11,10 @@ from tuner.session.document import Document
 from tuner.window.editors.field import FaultLine
 from tuner.window.editors.intake import Words
 from tuner.window.editors.typed_line import TypedLine
+from tuner.window.elided import ElidedLabel
 from tuner.window.theme import Theme
 
-NAME_WIDTH, VALUE_WIDTH, UNIT_WIDTH, SPREAD_WIDTH = 104, 60, 52, 56
+NAME_WIDTH, VALUE_WIDTH, UNIT_WIDTH, SPREAD_WIDTH = 84, 64, 60, 60
 FADED = 0.5
 
 
@@ -23,7 +24,7 @@ class ParameterRow(QWidget):
     def __init__(self, document: Document, theme: Theme, parameter: PlantParameter, sentence: str = "") -> None:
         super().__init__()
         self._document, self._parameter = document, parameter
-        self.name = QLabel(parameter.name)
+        self.name = ElidedLabel(parameter.name)
         self.value = TypedLine(theme, parameter.value, Words(self._read_value, typed.shown), self._take_value)
         self.unit: TypedLine[str] = TypedLine(theme, parameter.unit, Words(str.strip, str), self._take_unit)
         self.spread = TypedLine(
@@ -63,9 +64,10 @@ class ParameterRow(QWidget):
             (self.spread, SPREAD_WIDTH),
         )
         for column, (part, width) in enumerate(widths):
-            part.setMinimumWidth(width)
+            if column:
+                part.setFixedWidth(width)
             grid.addWidget(part, 0, column)
-            grid.setColumnStretch(column, width)
+        grid.setColumnStretch(0, 1)
         grid.addWidget(self.fault, 1, 1, 1, 3)
         for what, line in (("value", self.value), ("unit", self.unit), ("spread", self.spread)):
             line.setAccessibleName(f"{what} of {self._parameter.name}")
@@ -152,7 +154,8 @@ def _head(theme: Theme) -> QWidget:
         label = QLabel(word)
         label.setFont(theme.font("small"))
         label.setProperty("voice", "quiet")
-        label.setMinimumWidth(width)
+        if column:
+            label.setFixedWidth(width)
         grid.addWidget(label, 0, column)
-        grid.setColumnStretch(column, width)
+    grid.setColumnStretch(0, 1)
     return head

@@ -1,11 +1,10 @@
 """The plant as a physical model: chosen by name, given by masses, volumes and resistances."""
 
-from PySide6.QtWidgets import QComboBox
-
 from tuner.model.physics import PHYSICS
 from tuner.model.plant import PhysicsPlant
 from tuner.session.document import Document
-from tuner.window.editors.field import Note, Page
+from tuner.window.editors.chooser import Chooser
+from tuner.window.editors.field import FaultLine, Note, Page
 from tuner.window.editors.parameter_table import ParameterTable
 from tuner.window.theme import Theme
 
@@ -16,15 +15,15 @@ class PhysicsEditor(Page):
     def __init__(self, document: Document, theme: Theme) -> None:
         super().__init__()
         self._document = document
-        self.model = QComboBox()
-        self.model.setSizeAdjustPolicy(QComboBox.SizeAdjustPolicy.AdjustToMinimumContentsLengthWithIcon)
-        self.model.setAccessibleName("physical model")
+        self.model = Chooser(theme, "physical model")
         self.model.addItems(list(PHYSICS))
         self.model.activated.connect(self._choose)
+        self.fault = FaultLine(theme)
         self.sentence = Note(theme)
         self.formula = Note(theme)
         self.table = ParameterTable(document, theme, self._sentences)
         self.add(self.model)
+        self.add(self.fault)
         self.add(self.sentence)
         self.add(self.table, self.table)
         self.add(self.formula)
@@ -48,4 +47,6 @@ class PhysicsEditor(Page):
         from tuner.session.plants import with_physics
 
         name = self.model.itemText(index)
-        self._document.change_plant(with_physics(self._document.sheet.plant, name), label=f"Choose {name}")
+        plant = with_physics(self._document.sheet.plant, name)
+        self.fault.attempt(lambda: self._document.change_plant(plant, label=f"Choose {name}"))
+        self.refresh(anew=False)

@@ -1,9 +1,10 @@
 """The page of the plant, in any of its five forms."""
 
-from PySide6.QtWidgets import QComboBox, QPushButton, QWidget
+from PySide6.QtWidgets import QPushButton, QWidget
 
 from tuner.session.document import Document
 from tuner.session.plant_forms import PLANT_FORMS, PlantForm
+from tuner.window.editors.chooser import Chooser
 from tuner.window.editors.field import Note, Page
 from tuner.window.editors.formula_editor import FormulaEditor
 from tuner.window.editors.number_editors import coefficient_editor, state_space_editor, zero_pole_editor
@@ -17,9 +18,7 @@ class PlantPage(Page):
     def __init__(self, document: Document, theme: Theme) -> None:
         super().__init__()
         self._document = document
-        self.form = QComboBox()
-        self.form.setSizeAdjustPolicy(QComboBox.SizeAdjustPolicy.AdjustToMinimumContentsLengthWithIcon)
-        self.form.setAccessibleName("form of the plant")
+        self.form = Chooser(theme, "form of the plant")
         self.form.setToolTip("How the plant is given. Switching converts the nominal plant where that is possible.")
         self.form.addItems([form.capitalize() for form in PLANT_FORMS])
         self.form.activated.connect(self._choose)

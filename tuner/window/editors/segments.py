@@ -2,7 +2,7 @@
 
 from collections.abc import Callable, Sequence
 
-from PySide6.QtCore import Qt
+from PySide6.QtCore import QEvent, QObject, Qt
 from PySide6.QtGui import QKeyEvent
 from PySide6.QtWidgets import QHBoxLayout, QPushButton, QWidget
 
@@ -16,6 +16,8 @@ QPushButton:checked {{ background: {nominal_word}; color: {on_accent}; border-co
 QPushButton:focus {{ border-color: {nominal}; }}
 QPushButton:checked:focus {{ border-color: {ink}; }}
 """
+
+_STEPS = {Qt.Key.Key_Right: 1, Qt.Key.Key_Left: -1}
 
 
 class Segments(QWidget):
@@ -34,6 +36,7 @@ class Segments(QWidget):
         for word, button in self.buttons.items():
             button.setCheckable(True)
             button.clicked.connect(lambda _checked=False, word=word: self._on_clicked(word))
+            button.installEventFilter(self)
             row.addWidget(button)
         row.addStretch(1)
         theme.changed.connect(self._dress)
@@ -46,17 +49,16 @@ class Segments(QWidget):
             button.setChecked(other == word)
             button.setFocusPolicy(Qt.FocusPolicy.StrongFocus if other == word else Qt.FocusPolicy.ClickFocus)
 
-    def keyPressEvent(self, event: QKeyEvent) -> None:
-        """Go to the neighbour by the arrows."""
-        words = list(self.buttons)
-        step = {Qt.Key.Key_Right: 1, Qt.Key.Key_Left: -1}.get(Qt.Key(event.key()), 0)
-        if not step or self._chosen not in words:
-            super().keyPressEvent(event)
-            return
-        word = words[(words.index(self._chosen) + step) % len(words)]
-        self._on_clicked(word)
-        if self._chosen == word:
-            self.buttons[word].setFocus(Qt.FocusReason.OtherFocusReason)
+    def eventFilter(self, watched: QObject, event: QEvent) -> bool:
+        """Choose the neighbour by the arrows, where a button would only move the focus."""
+        step = _STEPS.get(Qt.Key(event.key()), 0) if isinstance(event, QKeyEvent) else 0
+        if not step or self._chosen not in self.buttons:
+            return super().eventFilter(watched, event)
+        if event.type() == QEvent.Type.KeyPress:
+            words = list(self.buttons)
+            self._on_clicked(words[(words.index(self._chosen) + step) % len(words)])
+            self.buttons[self._chosen].setFocus(Qt.FocusReason.OtherFocusReason)
+        return True
 
     def _on_clicked(self, word: str) -> None:
         self.show_choice(self._chosen)

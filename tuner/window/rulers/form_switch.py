@@ -31,7 +31,8 @@ class FormSwitch(QWidget):
     def refresh(self) -> None:
         """Show the document's form, or why another one was refused."""
         self.segments.show_choice(self._document.sheet.controller.form)
-        self.sentence.setText(self._document.refusal)
+        refusal = self._document.refusal
+        self.sentence.setText(refusal[:1].upper() + refusal[1:])
 
     def _choose(self, form: str) -> None:
         chosen: dict[str, Form] = {"parallel": "parallel", "standard": "standard", "series": "series"}

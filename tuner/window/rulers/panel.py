@@ -86,7 +86,7 @@ class RulerPanel(QWidget):
         ruler = Ruler(self._document, parameter, self._theme, self)
         ruler.grasped.connect(self.dragging_started)
         ruler.let_go.connect(self.dragging_finished)
-        ruler.faulted.connect(lambda sentence: self._say(ruler, sentence))
+        ruler.faulted.connect(self._say)
         ruler.setVisible(True)
         return ruler
 
@@ -119,11 +119,12 @@ class RulerPanel(QWidget):
                 QWidget.setTabOrder(previous, part)
                 previous = part
 
-    def _say(self, ruler: Ruler, sentence: str) -> None:
+    def _say(self, name: str, sentence: str) -> None:
         """Say under the box what is wrong with what was typed, over whatever is there, so that nothing moves."""
         self._fault.setVisible(bool(sentence))
         if not sentence:
             return
+        ruler = self.rulers[name]
         self._fault.setText(sentence)
         self._fault.adjustSize()
         corner = ruler.below_box(self)

@@ -25,8 +25,8 @@ class Ruler(QWidget):
 
     grasped = Signal()
     let_go = Signal()
-    faulted = Signal(str)
-    """What is wrong with what was typed, empty when nothing is."""
+    faulted = Signal(str, str)
+    """The name of the parameter, and what is wrong with what was typed for it, empty when nothing is."""
 
     def __init__(self, document: Document, parameter: Parameter, theme: Theme, parent: QWidget | None = None) -> None:
         super().__init__(parent)
@@ -101,7 +101,7 @@ class Ruler(QWidget):
         self.slider.wanted.connect(self._on_wanted)
         self.slider.let_go.connect(self._on_let_go)
         self.slider.reset_wanted.connect(self._on_reset_wanted)
-        self.box.intake.faulted.connect(self.faulted)
+        self.box.intake.faulted.connect(self._on_faulted)
 
     def _value(self) -> float | None:
         controller = self._document.sheet.controller
@@ -137,6 +137,9 @@ class Ruler(QWidget):
     def _on_wanted(self, value: float | None) -> None:
         self._jumped = True
         self._document.change_value(self.parameter.name, value, merge_key=f"hand on {self.parameter.name}")
+
+    def _on_faulted(self, sentence: str) -> None:
+        self.faulted.emit(self.parameter.name, sentence)
 
     def _on_let_go(self) -> None:
         self._document.release()
