@@ -99,7 +99,7 @@ EQUATIONS: dict[str, tuple[int, Callable[[Numbers, Array, float], tuple[list[flo
     "stirred heater": (1, _heater),
     "heat exchanger": (2, _exchanger),
     "gas pressure vessel": (1, _gas),
-    "two-mass drive, load speed": (3, lambda p, x, u: (_drive(p, x, u)[0], _drive(p, x, u)[2])),
+    "two-mass drive": (3, lambda p, x, u: (_drive(p, x, u)[0], _drive(p, x, u)[2])),
     "two-mass drive, motor speed": (3, lambda p, x, u: (_drive(p, x, u)[0], _drive(p, x, u)[1])),
     "magnetic levitation": (2, _levitation),
     "web tension": (2, _web),

@@ -155,7 +155,7 @@ _MODELS = (
         ),
     ),
     PhysicsModel(
-        "two-mass drive, load speed",
+        "two-mass drive",
         "Motor torque (N m) to load speed (rad/s) through an elastic shaft: balance of torque of both masses.",
         f"(damping s + stiffness) / {_DRIVE_BALANCE}",
         _DRIVE,
