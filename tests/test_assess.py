@@ -209,6 +209,19 @@ def test_a_sheet_that_cannot_be_computed() -> None:
         assess(endless)
 
 
+def test_arithmetic_that_fails_is_a_refusal(monkeypatch: pytest.MonkeyPatch) -> None:
+    """Numbers that nothing refused before end in a sentence too, with the cause behind it."""
+
+    def broken(*_: object) -> None:
+        raise OverflowError("too large")
+
+    monkeypatch.setattr(sys.modules["tuner.assess"], "run", broken)
+
+    with pytest.raises(LoopError, match="^the loop cannot be computed with these numbers: too large$") as caught:
+        assess(bath())
+    assert isinstance(caught.value.__cause__, OverflowError)
+
+
 @settings(max_examples=25)
 @given(
     st.floats(0.01, 3.0),

@@ -4,6 +4,7 @@ import sys
 from collections.abc import Callable, Iterator, Sequence
 from types import ModuleType
 
+from tuner.errors import LoopError
 from tuner.judge.assessment import Assessment, Instability, MemberResult
 from tuner.judge.cliff import Runaway, instability
 from tuner.judge.verdict import judge
@@ -40,8 +41,16 @@ def assess(sheet: Sheet, family_size: int = FAMILY_SIZE) -> Assessment:
     Raises
     ------
     LoopError
-        When the loop is well written but cannot be computed, with the reason.
+        When the loop is well written but cannot be computed, with the reason; also when the arithmetic fails on
+        numbers that nothing refused before.
     """
+    try:
+        return _assessed(sheet, family_size)
+    except (ArithmeticError, ValueError, MemoryError) as error:
+        raise LoopError(f"the loop cannot be computed with these numbers: {error}") from error
+
+
+def _assessed(sheet: Sheet, family_size: int) -> Assessment:
     members = family(sheet.plant, family_size)
     loops = loops_of(sheet, members)
     poles = family_poles(loops)

@@ -44,19 +44,16 @@ def run(arguments: Arguments) -> int:
 
 
 def assessed(sheet: Sheet, family_size: int) -> "Assessment":
-    """Return the assessment of a sheet.
+    """Return the assessment of a sheet; what computes it is loaded only now.
 
     Raises
     ------
-    TrimwrightError
-        Also when the arithmetic fails on numbers that nothing refused before.
+    LoopError
+        When the loop cannot be computed, with the reason.
     """
     from tuner.assess import assess
 
-    try:
-        return assess(sheet, family_size)
-    except (ArithmeticError, ValueError, MemoryError) as error:
-        raise TrimwrightError(f"the loop cannot be computed with these numbers: {error}") from error
+    return assess(sheet, family_size)
 
 
 def _judge_one(source: Source | Missing, arguments: Arguments) -> int:
