@@ -217,7 +217,7 @@ def test_arithmetic_that_fails_is_a_refusal(monkeypatch: pytest.MonkeyPatch) -> 
 
     monkeypatch.setattr(sys.modules["tuner.assess"], "run", broken)
 
-    with pytest.raises(LoopError, match="^the loop cannot be computed with these numbers: too large$") as caught:
+    with pytest.raises(LoopError, match=r"^the loop cannot be computed with these numbers: too large$") as caught:
         assess(bath())
     assert isinstance(caught.value.__cause__, OverflowError)
 
