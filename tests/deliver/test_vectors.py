@@ -1,5 +1,6 @@
 """The samples with known answers that every file carries."""
 
+from dataclasses import replace
 from math import isfinite, isinf, isnan
 
 import pytest
@@ -36,6 +37,13 @@ def test_limits_that_exist_are_touched_and_kept(sheet: Sheet) -> None:
     limited = any(row.outcome.flags & Flags.LIMITED for row in made.rows)
     bounded = constants.high < UNLIMITED or constants.low > -UNLIMITED or constants.rate_step < UNLIMITED
     assert limited == bounded
+
+
+@pytest.mark.parametrize("gain", [5e-324, 1e-300, 1e-12, 1e12, 1e300])
+def test_rows_stay_finite_for_absurd_gains(gain: float) -> None:
+    """A gain that is as good as zero asks for no infinite reference, and one without bounds for no infinite effort."""
+    rows = specification(replace(FULL, controller=replace(FULL.controller, gain_1=gain))).rows
+    assert all(isfinite(number) for row in rows for number in (*row.sample, row.outcome.effort))
 
 
 @pytest.mark.parametrize("sheet", [FULL, BARE, OPEN])

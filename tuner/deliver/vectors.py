@@ -66,8 +66,10 @@ def scales(sheet: Sheet, constants: Constants) -> Scales:
     large = span(sheet.loop.controlled, trial.reference)
     steepness = constants.proportional_gain + constants.derivative_gain
     room = min([effort, *(abs(x) for x in (constants.low, constants.high) if 0.0 < abs(x) < UNLIMITED)])
-    small = min(large / 20.0, room / (8.0 * steepness)) if steepness > 0.0 else large / 20.0
-    return Scales(small, max(large, 4.0 * effort / steepness if steepness > 0.0 else 0.0), effort)
+    if steepness == 0.0:
+        return Scales(large / 20.0, large, effort)
+    beyond = min(4.0 * effort / steepness, 1e6 * large)  # a gain may be as good as zero
+    return Scales(min(large / 20.0, room / (8.0 * steepness)), max(large, beyond), effort)
 
 
 def span(signal: Signal, step: float) -> float:
