@@ -2,6 +2,9 @@
 
 from pathlib import Path
 
+from PySide6.QtCore import Qt
+from PySide6.QtWidgets import QDialog
+
 from tuner.errors import TrimwrightError
 from tuner.window.asking import Asking
 from tuner.window.cautions import AboutDialog
@@ -27,7 +30,7 @@ class Commands:
             )
             return
         deliverer = self._deliverer or real_deliverer()
-        DeliverDialog(shown, self._delivery_folder(), deliverer, self._window.theme, self._window).exec()
+        _open(DeliverDialog(shown, self._delivery_folder(), deliverer, self._window.theme, self._window))
 
     def save_picture(self, panel: Panel) -> None:
         """Ask for a file and write the picture of a plot to it."""
@@ -51,7 +54,7 @@ class Commands:
 
     def about(self) -> None:
         """Say what the program is, and the cautions."""
-        AboutDialog(self._window.theme, self._window).exec()
+        _open(AboutDialog(self._window.theme, self._window))
 
     def _folder(self) -> Path:
         path = self._window.document.path
@@ -59,3 +62,9 @@ class Commands:
 
     def _delivery_folder(self) -> Path:
         return self._folder() / suggested_name(f"{self._window.document.sheet.loop.title} delivery", "")
+
+
+def _open(dialog: QDialog) -> None:
+    """Show a dialog over its window, which goes on living beneath it, and let it go when it is closed."""
+    dialog.setAttribute(Qt.WidgetAttribute.WA_DeleteOnClose)
+    dialog.open()

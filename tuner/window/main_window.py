@@ -19,6 +19,9 @@ from tuner.window.worker import Assessor
 
 SMALLEST = (960, 600)
 _EDITOR_WIDTH = 272
+_PATIENCE = 2_000
+"""Milliseconds after which a wait for the first answer is explained."""
+_COMPILING = "Compiling for this machine, once; the next start is quick."
 _ASSESSING = "The loop is still being assessed; try again in a moment."
 
 
@@ -64,6 +67,12 @@ class MainWindow(QMainWindow):
     def start(self) -> None:
         """Ask for the first answer, once the window has been painted."""
         QTimer.singleShot(0, self.ask)
+        QTimer.singleShot(_PATIENCE, self._explain_wait)
+
+    def _explain_wait(self) -> None:
+        """Say why the first answer takes so long, if it does."""
+        if self.shown is None and self._why == _ASSESSING:
+            self.plots.say_empty(_COMPILING)
 
     def closeEvent(self, event: QCloseEvent) -> None:
         """Let others object, else end the worker and wait for it."""
@@ -71,6 +80,7 @@ class MainWindow(QMainWindow):
         self.closing.emit(event)
         if event.isAccepted():
             self._stop_listening()
+            self.hide()  # the worker may need a while to end its last piece of work
             self.assessor.close()
 
     def dragEnterEvent(self, event: QDragEnterEvent) -> None:
@@ -129,6 +139,7 @@ class MainWindow(QMainWindow):
         self.notes.setText("  ".join(notes))
 
     def _show_name(self) -> None:
+        self.ribbon.title.setText(self.document.sheet.loop.title)
         path = self.document.path
         name = path.name if path else "not saved yet"
         self.setWindowTitle(f"{self.document.sheet.loop.title}: {name}[*] - Trimwright")

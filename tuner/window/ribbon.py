@@ -36,6 +36,7 @@ _SIGN: dict[Standing, Sign] = {
     "failed": "cross",
 }
 _GAP, _SIGN_SIZE = 4, 12
+_WIDEST_PLANT = 184
 _ROWS = 2
 """Rows of chips that are shown before the ribbon scrolls."""
 
@@ -77,13 +78,15 @@ class Chip(QWidget):
 
     def __init__(self, words: ChipWords, tip: str, theme: Theme) -> None:
         super().__init__()
-        self._theme = theme
+        self._theme, self._width = theme, 0
         self.setFocusPolicy(Qt.FocusPolicy.TabFocus)
         self.setSizePolicy(QSizePolicy.Policy.Fixed, QSizePolicy.Policy.Fixed)
         self.show_words(words, tip)
 
     def show_words(self, words: ChipWords, tip: str) -> None:
         """Show another result."""
+        if self._width and words.measure != self.words.measure:
+            self._width = 0
         self.words = words
         self.setToolTip(tip)
         self.setAccessibleName(words.sentence())
@@ -91,13 +94,15 @@ class Chip(QWidget):
         self.update()
 
     def sizeHint(self) -> QSize:
-        """Return a width that does not change with the last figures of a value, so that nothing jumps."""
+        """Return a width that holds the widest words so far, so that nothing jumps while a value changes."""
         small, strong = self._metrics()
         first = small.horizontalAdvance(f"{self.words.measure}  {self.words.standing}") + _SIGN_SIZE + 2 * _GAP
         second = max(strong.horizontalAdvance("0.000"), strong.horizontalAdvance(self.words.value))
         second += small.horizontalAdvance(self.words.limit) + 2 * _GAP
-        width = -(-max(first, second, 112) // 16) * 16
-        return QSize(width + 2 * _GAP, 2 * small.height() + strong.height() + 2 * _GAP)
+        third = min(small.horizontalAdvance(self.words.plant), _WIDEST_PLANT)
+        width = -(-max(first, second, third, 112) // 16) * 16 + 2 * _GAP
+        self._width = max(self._width, width)
+        return QSize(self._width, 2 * small.height() + strong.height() + 2 * _GAP)
 
     def paintEvent(self, _event: QPaintEvent) -> None:
         """Paint the sign and three lines."""
@@ -171,7 +176,6 @@ class Ribbon:
     def show(self, shown: Shown) -> None:
         """Show the verdict and the limits of an assessment of the whole family."""
         assessment = shown.assessment
-        self.title.setText(assessment.title)
         self._say(assessment.verdict, *verdict_words(assessment))
         self._show_chips(shown)
 

@@ -7,8 +7,8 @@ from pathlib import Path
 from tuner.errors import SheetError, TrimwrightError
 from tuner.places import sample_plants
 from tuner.session.document import Document
-from tuner.session.sheet_file import FileChangedError
 from tuner.session.recent import recent_files
+from tuner.session.sheet_file import FileChangedError
 from tuner.window.asking import Asking
 
 

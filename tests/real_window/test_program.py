@@ -1,0 +1,90 @@
+"""The program as a person starts it: from the command line, with keys and mouse, to the delivered controller."""
+
+import json
+import os
+import subprocess
+import sys
+import time
+from pathlib import Path
+
+from PySide6.QtWidgets import QApplication
+from pytestqt.qtbot import QtBot
+
+from tests.real_window.hand import click, press, xdotool
+from tests.window.windows import Answers
+from tuner.places import sample_plants
+from tuner.session.document import Document
+from tuner.window.deliver_dialog import DeliverDialog
+from tuner.window.main_window import MainWindow
+
+ROOT = Path(__file__).parents[2]
+PATIENCE = 120_000
+
+
+def test_a_controller_is_delivered(window: MainWindow, qtbot: QtBot, tmp_path: Path) -> None:
+    """Ctrl+D opens the dialog, a click on its button writes the files, and every one of them is proved."""
+    press("ctrl+d")
+    dialog = _dialog(qtbot)
+    folder = tmp_path / "handed over"
+    dialog.folder.setText(str(folder))
+    if dialog.accept_unmet.isVisible():
+        click(dialog.accept_unmet)
+        dialog.accept_unmet.setChecked(True)
+    qtbot.waitUntil(dialog.deliver_button.isEnabled)
+    click(dialog.deliver_button)
+    qtbot.waitUntil(lambda: not dialog.busy and bool(dialog.result_words.text()), timeout=PATIENCE)
+    assert dialog.result_words.text().startswith("Delivered to")
+    proof = json.loads((folder / "proof.json").read_text(encoding="utf-8"))
+    assert {entry["file"] for entry in proof} >= {"controller.py"}
+    assert (folder / "controller.json").is_file()
+    press("Escape")
+    qtbot.waitUntil(lambda: QApplication.activeModalWidget() is None)
+
+
+def test_a_sheet_is_saved_and_opened_again(window: MainWindow, qtbot: QtBot, asking: Answers) -> None:
+    """Ctrl+S on a new sheet asks for a file; that file holds the same loop and its comments."""
+    window.document.change_value("kp", 2.2)
+    press("ctrl+s")
+    qtbot.waitUntil(lambda: not window.document.dirty)
+    assert asking.told == []
+    assert window.document.path is not None
+    again = Document.from_file(window.document.path)
+    assert again.sheet == window.document.sheet
+    assert "#" in again.original_text
+
+
+def test_the_program_starts_and_ends(tmp_path: Path) -> None:
+    """`python -m tuner SHEET` shows a window named after the loop, and the keyboard closes it with status 0."""
+    sheet = tmp_path / "mine.toml"
+    sheet.write_text((sample_plants() / "heater.toml").read_text(encoding="utf-8"), encoding="utf-8")
+    settings = {**os.environ, "XDG_CONFIG_HOME": str(tmp_path / "config")}
+    program = subprocess.Popen([sys.executable, "-m", "tuner", str(sheet)], cwd=ROOT, env=settings)
+    try:
+        found = _found(program)
+        xdotool("windowactivate", "--sync", found)
+        xdotool("key", "--clearmodifiers", "ctrl+q")
+        assert program.wait(120) == 0
+    finally:
+        program.kill()
+        program.wait()
+
+
+def _dialog(qtbot: QtBot) -> DeliverDialog:
+    qtbot.waitUntil(lambda: isinstance(QApplication.activeModalWidget(), DeliverDialog), timeout=20_000)
+    dialog = QApplication.activeModalWidget()
+    assert isinstance(dialog, DeliverDialog)
+    qtbot.waitUntil(dialog.isActiveWindow)
+    return dialog
+
+
+def _found(program: "subprocess.Popen[bytes]") -> str:
+    """Return the window of a program by its title, once it is there."""
+    deadline = time.monotonic() + 60.0
+    while time.monotonic() < deadline:
+        assert program.poll() is None, "The program ended before it showed a window."
+        search = ["xdotool", "search", "--onlyvisible", "--name", "Product heater outlet: mine.toml"]
+        run = subprocess.run(search, capture_output=True, text=True, check=False, timeout=20)
+        if run.stdout.split():
+            return run.stdout.split()[0]
+        time.sleep(0.1)
+    raise AssertionError("The program showed no window within a minute.")
