@@ -132,7 +132,9 @@ def _last(loop: Stack, line: float, largest: float) -> float:
     y = largest * np.geomspace(1e-6, 1e9, 400)
     size = np.abs(_gain(loop, line + 1j * y))
     large = np.flatnonzero(size > max(0.95, 0.5 * (1.0 + float(size[-1]))))
-    return float(y[min(large[-1] + 1, len(y) - 1)]) if len(large) else float(y[0])
+    beyond = float(y[min(large[-1] + 1, len(y) - 1)]) if len(large) else float(y[0])
+    # Above every pole, the way to each of them turns no further than to straight up.
+    return max(beyond, 1.1 * float(np.abs(loop.modes[0].imag).max(initial=0.0)))
 
 
 def _gain(loop: Stack, s: ComplexArray) -> ComplexArray:
