@@ -13,7 +13,9 @@ from tuner.simulate.loop import loops_around
 from tuner.simulate.roots import count_right
 
 
-def row(zeros: list[complex], poles: list[complex], gain: float, dead_time: float, controller: Controller | None = None):
+def row(
+    zeros: list[complex], poles: list[complex], gain: float, dead_time: float, controller: Controller | None = None
+):
     """Return the loop gain of a plant with dead time, under unit gain unless told otherwise."""
     chain = from_zeros_poles(zeros, poles, gain, dead_time)
     return stack([loops_around(controller or Controller(gain_1=1.0), [chain])[0].factors])

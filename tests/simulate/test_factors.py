@@ -6,7 +6,9 @@ import pytest
 from tuner.simulate.factors import Factors, folded, stack, to_s, to_x
 
 
-def factors(*zeros: complex, poles: tuple[complex, ...], gain: float = 1.0, delay: float = 0.0, step: float = 0.0) -> Factors:
+def factors(
+    *zeros: complex, poles: tuple[complex, ...], gain: float = 1.0, delay: float = 0.0, step: float = 0.0
+) -> Factors:
     """Return factors from lists."""
     return Factors(np.array(zeros, dtype=complex), np.array(poles, dtype=complex), gain, delay, step)
 
@@ -46,7 +48,9 @@ def test_frequencies_fold_at_nyquist() -> None:
 @pytest.mark.parametrize("step", [0.0, 0.3])
 def test_the_response_of_a_stack(step: float) -> None:
     """Every row is the plain product of its factors, whatever the unit inside."""
-    rows = [factors(-3.0, poles=(-0.2 + 0.4j, -0.2 - 0.4j), gain=g, delay=2 * step or 0.7, step=step) for g in (2.0, -5.0)]
+    rows = [
+        factors(-3.0, poles=(-0.2 + 0.4j, -0.2 - 0.4j), gain=g, delay=2 * step or 0.7, step=step) for g in (2.0, -5.0)
+    ]
     w = np.array([0.1, 1.0, 5.0])
     x = np.exp(1j * w * step) - 1.0 if step else 1j * w
     plain = (x + 3.0) / ((x + 0.2) ** 2 + 0.16) * np.exp(-1j * w * rows[0].delay)

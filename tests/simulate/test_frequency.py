@@ -20,7 +20,9 @@ from tuner.simulate.linear import from_zeros_poles
 from tuner.simulate.loop import Loop, loops_around
 
 
-def proportional(zeros: list[complex], poles: list[complex], gain: float, dead_time: float = 0.0, step: float = 0.0) -> Loop:
+def proportional(
+    zeros: list[complex], poles: list[complex], gain: float, dead_time: float = 0.0, step: float = 0.0
+) -> Loop:
     """Return a plant under unit gain."""
     return loops_around(Controller(gain_1=1.0, sample_time=step), [from_zeros_poles(zeros, poles, gain, dead_time)])[0]
 

@@ -77,7 +77,11 @@ def test_the_values_of_a_member_are_used() -> None:
 
 def test_loops_of_one_shape_are_put_together() -> None:
     """Numbers of zeros and poles, the order of the chain, and being closed at all make the shape."""
-    chains = [from_zeros_poles([], [-1.0], 1.0), from_zeros_poles([], [-2.0], 3.0), from_zeros_poles([], [-1.0, -2.0], 1.0)]
+    chains = [
+        from_zeros_poles([], [-1.0], 1.0),
+        from_zeros_poles([], [-2.0], 3.0),
+        from_zeros_poles([], [-1.0, -2.0], 1.0),
+    ]
     loops = loops_around(Controller(gain_1=1.0), chains)
     assert same_shape(loops) == [[0, 1], [2]]
     assert same_shape([loops[0], *loops_around(Controller(), chains[:1])]) == [[0], [1]]

@@ -39,7 +39,9 @@ def stable_loops(count: int, **kind: bool) -> list[int]:
 def louder(loop: Loop, factor: float) -> Loop:
     """Return the same loop with all gains of the controller larger by a factor."""
     settings = loop.controller
-    more = replace(settings, gain_1=settings.gain_1 * factor, gain_2=settings.gain_2 * factor, gain_3=settings.gain_3 * factor)
+    more = replace(
+        settings, gain_1=settings.gain_1 * factor, gain_2=settings.gain_2 * factor, gain_3=settings.gain_3 * factor
+    )
     return loops_around(more, [loop.chain])[0]
 
 
@@ -70,7 +72,9 @@ def test_continuous_loops_against_python_control(seed: int) -> None:
     assert found.max_sensitivity == pytest.approx(max(reached), rel=1e-6)
 
 
-@pytest.mark.parametrize("kind", [{"sampled": True}, {"sampled": True, "dead_time": True}, {"sampled": False, "dead_time": True}])
+@pytest.mark.parametrize(
+    "kind", [{"sampled": True}, {"sampled": True, "dead_time": True}, {"sampled": False, "dead_time": True}]
+)
 def test_no_frequency_is_worse(kind: dict[str, bool]) -> None:
     """On a grid of 40,000 frequencies nothing is found beyond the peaks, nor a crossing inside the margins."""
     for seed in stable_loops(40, **kind):

@@ -123,7 +123,10 @@ def test_an_algebraic_loop_is_not_stable() -> None:
 def test_an_open_loop_has_the_poles_of_its_chain(step: float) -> None:
     """With no feedback, or no gains, the modes of actuator, plant and sensor remain, and nothing of the law."""
     chain = from_zeros_poles([-3.0], [-1.0, -2.0, 0.0], 1.0)
-    for controller in (Controller(gain_1=1.0, gain_2=1.0, feedback=False, sample_time=step), Controller(sample_time=step)):
+    for controller in (
+        Controller(gain_1=1.0, gain_2=1.0, feedback=False, sample_time=step),
+        Controller(sample_time=step),
+    ):
         found = poles_of(chain, controller)
         assert found.values.tolist() == [0.0, -1.0, -2.0]
         assert (found.stable, found.count_unstable) == (False, 1)
@@ -133,7 +136,9 @@ def test_an_open_loop_has_the_poles_of_its_chain(step: float) -> None:
 @pytest.mark.parametrize("step", [0.0, 0.25])
 def test_the_law_without_effect_leaves_no_pole(step: float) -> None:
     """Filter time and wind-up time without a derivative or an integral make no pole, and none at z = 1."""
-    found = poles_of(from_zeros_poles([], [-1.0], 1.0), Controller(gain_1=1.0, filter_time=2.0, windup_time=3.0, sample_time=step))
+    found = poles_of(
+        from_zeros_poles([], [-1.0], 1.0), Controller(gain_1=1.0, filter_time=2.0, windup_time=3.0, sample_time=step)
+    )
     assert len(found.values) == 1
     assert found.stable
 

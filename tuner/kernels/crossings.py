@@ -216,9 +216,7 @@ def _crossings(
 
 
 @compiled
-def _turn(
-    one: complex, one_slope: complex, two: complex, two_slope: complex, kind: int
-) -> bool:
+def _turn(one: complex, one_slope: complex, two: complex, two_slope: complex, kind: int) -> bool:
     """Tell whether gain or phase turn round near the critical value, so that two crossings may hide between two points."""
     if kind == GAIN_TURN:
         left, right = math.log(abs(one)), math.log(abs(two))

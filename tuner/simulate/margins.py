@@ -16,6 +16,7 @@ from tuner.simulate.traces import ComplexArray
 BANDWIDTH_LEVEL = 0.707
 """The sensitivity that ends the bandwidth: 0.707 as the measure is defined, not the square root of one half."""
 
+
 @dataclass(frozen=True, slots=True)
 class Margins:
     """Margins of one loop; frequencies in rad per time unit, None where there is no place.

@@ -15,9 +15,7 @@ _FAR = 1.7
 """A point well to the right of z = 1, in z - 1."""
 
 
-def pulse_factors(
-    chains: Sequence[Linear], held: HeldBatch, steps: Sequence[int], step: float
-) -> list[Factors]:
+def pulse_factors(chains: Sequence[Linear], held: HeldBatch, steps: Sequence[int], step: float) -> list[Factors]:
     """Return the pulse transfer functions of k chains of one order n under a hold.
 
     The poles are exact, exp(p step) for each pole p of the chain, and one at z = 0 for the input before the jump.
