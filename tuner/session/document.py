@@ -205,6 +205,11 @@ class Document:
         noted = with_as_found(controller, controller)
         self.change(replace(self.sheet, controller=noted), label="Note the gains as found")
 
+    def forget_as_found(self) -> None:
+        """Forget the gains met on site."""
+        controller = with_as_found(self.sheet.controller, None)
+        self.change(replace(self.sheet, controller=controller), label="Forget the gains as found")
+
     def reset(self, name: str) -> None:
         """Set one number back to its value in the file as opened; nothing happens when it has none in this form."""
         initial = in_form_or_none(self._file.opened.controller, self.sheet.controller.form)

@@ -11,13 +11,15 @@ from PySide6.QtWidgets import QApplication, QPushButton
 from pytestqt.qtbot import QtBot
 
 from tests.session.sheets import TEXT, wash_bath
-from tests.window.editors.typing import enter
+from tests.window.editors.typing import enter, replace_text
 from tuner.errors import Fault, SheetError
 from tuner.model.parameters import Kind, find, in_section
 from tuner.session.document import Document
 from tuner.session.fields import value_at
 from tuner.window.editors import build_editors
 from tuner.window.editors.field import Field, Page
+from tuner.window.editors.intake import PAUSE
+from tuner.window.editors.number_editors import NumberEditor
 from tuner.window.editors.panel import EditorPanel
 from tuner.window.editors.parameter_field import ChoiceField, FlagField, NumberField, ParameterField, TextField
 from tuner.window.editors.segments import Segments
@@ -212,17 +214,20 @@ def _button(page: Page, word: str) -> QPushButton:
     return next(button for button in page.findChildren(QPushButton) if button.text() == word)
 
 
-def test_the_gains_as_found_are_noted_and_restored(panel: EditorPanel, document: Document) -> None:
-    """The controller's page notes the present gains and restores them."""
+def test_the_gains_as_found_are_noted_restored_and_forgotten(panel: EditorPanel, document: Document) -> None:
+    """The controller's page notes the present gains, restores and forgets them."""
     panel.select("Controller")
     page = panel.pages["Controller"]
     _button(page, "Restore").click()
     assert document.sheet.controller.gain_1 == 1.5
     document.change_value("kp", 7.0)
-    _button(page, "Note the present gains").click()
+    _button(page, "Note present").click()
     document.change_value("kp", 1.0)
     _button(page, "Restore").click()
     assert document.sheet.controller.gain_1 == 7.0
+    _button(page, "Forget").click()
+    assert document.sheet.controller.as_found is None
+    assert not _button(page, "Restore").isEnabled()
 
 
 def test_the_disturbance_path_is_a_formula(panel: EditorPanel, document: Document) -> None:
@@ -313,3 +318,31 @@ def test_a_refused_choice_says_why_and_stays(
     QTest.keyClick(flag.box, Qt.Key.Key_Space)
     assert flag.fault.text() == "loop.time_unit: expected another unit, found this one"
     assert flag.box.isChecked()
+
+
+def test_undo_takes_a_block_away_under_the_hand(panel: EditorPanel, document: Document, qtbot: QtBot) -> None:
+    """Undo while a field is typed in removes the block for good: what was half typed does not bring it back."""
+    panel.select("Controller")
+    QTest.mouseClick(_segments(panel.pages["Controller"], "notch").buttons["notch"], Qt.MouseButton.LeftButton)
+    field = _typed_field(panel, "Controller", "controller.notch.depth")
+    replace_text(field.line, "0.3")
+    qtbot.waitUntil(field.line.hasFocus)
+    document.undo()
+    qtbot.wait(2 * PAUSE)
+    assert document.sheet == wash_bath()
+
+
+def test_undo_takes_a_form_away_under_the_hand(panel: EditorPanel, document: Document, qtbot: QtBot) -> None:
+    """Undo of a switch of forms stays undone, and text typed in the other form waits there."""
+    document.set_plant_form("coefficients")
+    panel.select("Plant")
+    editor = panel.plant.editors["coefficients"]
+    assert isinstance(editor, NumberEditor)
+    line = editor.fields["denominator"].line
+    replace_text(line, "1 7")
+    qtbot.waitUntil(line.hasFocus)
+    document.undo()
+    qtbot.wait(2 * PAUSE)
+    assert document.sheet == wash_bath()
+    document.redo()
+    assert line.typed() == "1 7"

@@ -2,6 +2,7 @@
 
 from collections.abc import Iterator
 
+import numpy as np
 import pytest
 from PySide6.QtCore import QPoint, Qt
 from PySide6.QtTest import QTest
@@ -13,6 +14,8 @@ from tuner.session.document import Document
 from tuner.window.rulers import build_rulers
 from tuner.window.rulers.panel import TWO_COLUMNS, RulerPanel
 from tuner.window.rulers.ruler import Ruler
+from tuner.window.rulers.slider import TRACK_TOP
+from tuner.window.rulers.strip import FIRM
 from tuner.window.theme import Theme
 
 
@@ -193,6 +196,16 @@ def test_the_form_switch_converts_or_says_why(panel: RulerPanel, document: Docum
     assert panel.form.sentence.text().endswith("Ti = 60 is less than 4 Td = 400")
     document.undo()
     assert panel.form.sentence.text() == ""
+
+
+def test_a_ruler_is_painted_by_its_own_classes(panel: RulerPanel, theme: Theme) -> None:
+    """The classes given to one ruler paint its track and no other's."""
+    panel.rulers["kp"].paint_classes(np.array([FIRM] * 64))
+    colours = {}
+    for name in ("kp", "ki"):
+        slider = panel.rulers[name].slider
+        colours[name] = slider.grab().toImage().pixelColor(slider.width() // 4, TRACK_TOP + 4)
+    assert colours == {"kp": theme.colour("firm"), "ki": theme.colour("line")}
 
 
 def test_units_and_names_come_from_the_table(panel: RulerPanel) -> None:

@@ -7,6 +7,7 @@ from PySide6.QtWidgets import QHBoxLayout, QPushButton, QWidget
 
 from tuner.model.controller import Feedforward
 from tuner.model.parameters import Parameter, find, in_section
+from tuner.model.sheet import Sheet
 from tuner.session.document import Document
 from tuner.session.fields import first_notch, with_feedforward, with_notch
 from tuner.session.tunings import in_words
@@ -70,10 +71,21 @@ class Group(Page):
 class OptionalGroup(Group):
     """A group whose fields are there only while its block is."""
 
-    def __init__(self, document: Document, theme: Theme, title: str) -> None:
+    def __init__(self, document: Document, theme: Theme, title: str, words: Sequence[str]) -> None:
         super().__init__(document, theme, title)
         self._fields: dict[str, ParameterField] = {}
+        self.switch = Segments(words, theme, self.choose)
         self.fault = FaultLine(theme)
+        self.add(self.switch)
+        self.add(self.fault)
+
+    def choose(self, word: str) -> None:
+        """Have the block that a word of the switch stands for, or none."""
+        raise NotImplementedError
+
+    def try_edit(self, sheet: Sheet, label: str) -> None:
+        """Show another sheet, or say under the switch why it is refused."""
+        self.fault.attempt(lambda: self._document.edit(sheet, label=label))
 
     def show_fields(self, parameters: Sequence[Parameter], *, anew: bool) -> None:
         """Have the fields of these parameters, and no others."""
@@ -93,10 +105,7 @@ class NotchGroup(OptionalGroup):
     """The notch, there or not."""
 
     def __init__(self, document: Document, theme: Theme) -> None:
-        super().__init__(document, theme, "Notch")
-        self.switch = Segments(("none", "notch"), theme, self._choose)
-        self.add(self.switch)
-        self.add(self.fault)
+        super().__init__(document, theme, "Notch", ("none", "notch"))
 
     def refresh(self, *, anew: bool) -> None:
         """Show the notch of the document."""
@@ -104,11 +113,11 @@ class NotchGroup(OptionalGroup):
         self.switch.show_choice("none" if notch is None else "notch")
         self.show_fields(in_section("controller.notch") if notch else (), anew=anew)
 
-    def _choose(self, word: str) -> None:
+    def choose(self, word: str) -> None:
+        """Add a notch, or remove it."""
         sheet = self._document.sheet
         notch = first_notch(sheet) if word == "notch" else None
-        label = "Add a notch" if notch else "Remove the notch"
-        self.fault.attempt(lambda: self._document.edit(with_notch(sheet, notch), label=label))
+        self.try_edit(with_notch(sheet, notch), "Add a notch" if notch else "Remove the notch")
 
 
 class ReferenceFeedforward(OptionalGroup):
@@ -117,10 +126,8 @@ class ReferenceFeedforward(OptionalGroup):
     _NUMBER: ClassVar = {"static": "gain", "inverse": "filter_time"}
 
     def __init__(self, document: Document, theme: Theme) -> None:
-        super().__init__(document, theme, "Feedforward of the reference")
-        self.switch = Segments(("none", *find("controller.feedforward.kind").choices), theme, self._choose)
-        self.add(self.switch)
-        self.add(self.fault)
+        words = ("none", *find("controller.feedforward.kind").choices)
+        super().__init__(document, theme, "Feedforward of the reference", words)
 
     def refresh(self, *, anew: bool) -> None:
         """Show the feedforward of the document."""
@@ -128,10 +135,9 @@ class ReferenceFeedforward(OptionalGroup):
         self.switch.show_choice(present.kind if present else "none")
         self.show_fields([find(f"controller.feedforward.{self._NUMBER[present.kind]}")] if present else [], anew=anew)
 
-    def _choose(self, word: str) -> None:
-        changed = with_feedforward(self._document.sheet, word)
-        label = f"Set the feedforward to {word}"
-        self.fault.attempt(lambda: self._document.edit(changed, label=label))
+    def choose(self, word: str) -> None:
+        """Have feedforward of a kind, or none."""
+        self.try_edit(with_feedforward(self._document.sheet, word), f"Set the feedforward to {word}")
 
 
 class DisturbancePath(Group):
@@ -169,16 +175,19 @@ class AsFound(Group):
     def __init__(self, document: Document, theme: Theme) -> None:
         super().__init__(document, theme, "As found")
         self.gains = Note(theme)
-        self.note = QPushButton("Note the present gains")
+        self.note = QPushButton("Note present")
+        self.note.setToolTip("Note the present gains as those met on site")
         self.restore = QPushButton("Restore")
+        self.forget = QPushButton("Forget")
         self.note.clicked.connect(document.note_as_found)
         self.restore.clicked.connect(document.restore_as_found)
+        self.forget.clicked.connect(document.forget_as_found)
         row = QWidget()
         layout = QHBoxLayout(row)
         layout.setContentsMargins(0, 0, 0, 0)
         layout.setSpacing(4)
-        layout.addWidget(self.note)
-        layout.addWidget(self.restore)
+        for button in (self.note, self.restore, self.forget):
+            layout.addWidget(button)
         layout.addStretch(1)
         self.add(self.gains)
         self.add(row)
@@ -189,4 +198,5 @@ class AsFound(Group):
         found = self._document.sheet.controller.as_found
         words = f"{in_words(found)} ({found.form} form)" if found else "None noted."
         self.gains.say(words)
-        self.restore.setEnabled(found is not None)
+        for button in (self.restore, self.forget):
+            button.setEnabled(found is not None)

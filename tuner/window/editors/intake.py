@@ -32,6 +32,9 @@ class Typist(Protocol):
     def write(self, text: str) -> None:
         """Replace its text."""
 
+    def isVisible(self) -> bool:  # Qt's name
+        """Tell whether it is in sight."""
+
     def hasFocus(self) -> bool:  # Qt's name
         """Tell whether it is being typed in."""
 
@@ -65,7 +68,7 @@ class Intake(QObject, Generic[Value]):
         self._pause = QTimer(self)
         self._pause.setSingleShot(True)
         self._pause.setInterval(PAUSE)
-        self._pause.timeout.connect(self.commit)
+        self._pause.timeout.connect(self._on_pause)
         typist.write(words.write(value))
 
     @property
@@ -138,6 +141,10 @@ class Intake(QObject, Generic[Value]):
         if self.commit() and self._typist.typed() != self._words.write(self._value):
             self._typist.write(self._words.write(self._value))
         self.left.emit()
+
+    def _on_pause(self) -> None:
+        if self._typist.isVisible():
+            self.commit()
 
     def _offer(self, value: Value) -> None:
         """Hand a value on; it counts as shown already, so that its echo leaves the text alone."""

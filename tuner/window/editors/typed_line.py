@@ -30,6 +30,7 @@ class TypedLine(QLineEdit, Generic[Value]):
         super().__init__()
         self._theme = theme
         self.intake = Intake(self, value, words, take)
+        self.intake.setParent(self)
         self.intake.faulted.connect(self._on_faulted)
         self.textEdited.connect(lambda: self.intake.on_typed(live=live))
 
@@ -57,9 +58,9 @@ class TypedLine(QLineEdit, Generic[Value]):
             super().keyPressEvent(event)
 
     def focusOutEvent(self, event: QFocusEvent) -> None:
-        """Take what was typed when the line is left."""
+        """Take what was typed when the line is left; one that goes out of sight was not left by the hand."""
         super().focusOutEvent(event)
-        if event.reason() != Qt.FocusReason.PopupFocusReason:
+        if self.isVisible() and event.reason() != Qt.FocusReason.PopupFocusReason:
             self.intake.leave()
 
     def paintEvent(self, event: QPaintEvent) -> None:

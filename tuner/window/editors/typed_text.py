@@ -35,6 +35,7 @@ class TypedText(QPlainTextEdit, Generic[Value]):
         self.setTabChangesFocus(True)
         self.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
         self.intake = Intake(self, value, words, take)
+        self.intake.setParent(self)
         self.intake.faulted.connect(self._on_faulted)
         self.textChanged.connect(self._on_changed)
         self.setFixedHeight(self.sizeHint().height())
@@ -104,9 +105,9 @@ class TypedText(QPlainTextEdit, Generic[Value]):
             super().keyPressEvent(event)
 
     def focusOutEvent(self, event: QFocusEvent) -> None:
-        """Take what was typed when the text is left."""
+        """Take what was typed when the text is left; one that goes out of sight was not left by the hand."""
         super().focusOutEvent(event)
-        if event.reason() != Qt.FocusReason.PopupFocusReason:
+        if self.isVisible() and event.reason() != Qt.FocusReason.PopupFocusReason:
             self.intake.leave()
 
     def paintEvent(self, event: QPaintEvent) -> None:

@@ -2,6 +2,8 @@
 
 from functools import partial
 
+import numpy as np
+from numpy.typing import NDArray
 from PySide6.QtCore import QPoint, Qt, Signal
 from PySide6.QtGui import QContextMenuEvent
 from PySide6.QtWidgets import QHBoxLayout, QLabel, QMenu, QWidget
@@ -53,6 +55,10 @@ class Ruler(QWidget):
     def forget_typing(self) -> None:
         """Show the document's value whatever was typed: another sheet was opened."""
         self.box.intake.show_value(self._value(), anew=True)
+
+    def paint_classes(self, classes: NDArray[np.integer] | None) -> None:
+        """Paint the track by the classes of equal pieces of it, as in `strip`; grey when nobody computed any."""
+        self.slider.paint_classes(classes)
 
     def menu(self) -> QMenu:
         """Return the menu of a right click."""
