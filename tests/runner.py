@@ -136,7 +136,7 @@ def _may_install() -> bool:
 
 def _pytest(marker: str, arguments: list[str], environment: dict[str, str]) -> Counts:
     colour = "yes" if sys.stdout.isatty() else "no"
-    command = [sys.executable, "-m", "pytest", "-q", f"--color={colour}", "-m", marker, *arguments]
+    command = [sys.executable, "-m", "pytest", "-q", "-rfEs", f"--color={colour}", "-m", marker, *arguments]
     status, output = _call(command, environment)
     return counts_of(output, status)
 

@@ -62,8 +62,8 @@ def test_the_tests_bring_their_own_tools(machine: FakeMachine) -> None:
     machine.run("judge")
     outcome = machine.run("tests/model", program="tests", FAKE_MISSING="/usr/include/stdio.h")
     assert outcome.ran["argv"] == ["tests/model"]
-    packages = ["xvfb", "xauth", "xdotool", "openbox", "imagemagick", "x11-utils", "gcc", "libc6-dev"]
-    assert machine.called("apt")[-1][-8:] == packages
+    packages = ["xvfb", "xauth", "xdotool", "openbox", "imagemagick", "x11-utils", "gcc", "g++", "libc6-dev"]
+    assert machine.called("apt")[-1][-9:] == packages
     assert machine.called("pip")[-1][-len(_requirements(machine, testing=True)) :] == _requirements(
         machine, testing=True
     )
@@ -75,11 +75,11 @@ def test_tools_of_the_tests_that_cannot_be_installed_do_not_stop_them(machine: F
     outcome = machine.run(program="tests", FAKE_USER="1000")
     assert outcome.ran["argv"] == []
     assert (
-        "Going on without Xvfb, xauth, xdotool, openbox, import, xwininfo, gcc, which this run can do without."
+        "Going on without Xvfb, xauth, xdotool, openbox, import, xwininfo, gcc, g++, which this run can do without."
         in outcome.err
     )
     assert (
-        "\n  sudo apt-get install --no-install-recommends xvfb xauth xdotool openbox imagemagick x11-utils gcc\n"
+        "\n  sudo apt-get install --no-install-recommends xvfb xauth xdotool openbox imagemagick x11-utils gcc g++\n"
         in outcome.err
     )
 

@@ -38,6 +38,7 @@ TESTS = (
     Need("imagemagick", "command", "import"),
     Need("x11-utils", "command", "xwininfo"),
     Need("gcc", "command", "gcc"),
+    Need("g++", "command", "g++"),
     Need("libc6-dev", "file", "/usr/include/stdio.h"),
 )
 
