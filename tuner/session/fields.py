@@ -1,6 +1,7 @@
 """The keys of a sheet as its dataclasses hold them: one number or word by its dotted path, read and replaced."""
 
 from dataclasses import replace
+from math import pi
 from typing import Any
 
 from tuner.model.controller import DisturbanceFeedforward, Feedforward, Notch
@@ -32,10 +33,10 @@ def with_notch(sheet: Sheet, notch: Notch | None) -> Sheet:
 
 
 def first_notch(sheet: Sheet) -> Notch:
-    """Return a notch to begin with: at a hundred times the frequency of one trial, a tenth of Nyquist at most."""
-    start = 200.0 * 3.141592653589793 / sheet.trial.duration
+    """Return a notch to begin with: a hundred of its periods fill the trial, at most a tenth of Nyquist."""
+    start = 200.0 * pi / sheet.trial.duration
     sample_time = sheet.controller.sample_time
-    limit = 0.1 * 3.141592653589793 / sample_time if sample_time else start
+    limit = 0.1 * pi / sample_time if sample_time else start
     return Notch(float(f"{min(start, limit):.2g}"))
 
 
