@@ -140,6 +140,17 @@ def test_a_failing_apt_is_explained(machine: FakeMachine, says: str, sentence: s
     assert says in (machine.checkout / ".venv.log").read_text()
 
 
+def test_packages_that_do_not_help_are_told(machine: FakeMachine) -> None:
+    """A Python of another origin does not find what the system's packages bring, which is said instead of repeated."""
+    machine.add_command("apt-get")
+    outcome = machine.run("judge", FAKE_MISSING="ensurepip")
+    assert outcome.status == 2
+    assert outcome.err.endswith(
+        "Missing on this machine: ensurepip.\n"
+        f"apt-get has installed the packages, but {BASE_PYTHON} does not find what is in them.\n"
+    )
+
+
 def test_a_failing_pip_is_explained_and_tried_again(machine: FakeMachine) -> None:
     """Offline, the sentence says so; the next run starts anew and succeeds."""
     failed = machine.run("judge", FAKE_PIP_SAYS="NewConnectionError: no route", FAKE_PIP_STATUS="1")
@@ -172,7 +183,7 @@ def test_ctrl_c_says_what_happens_next(machine: FakeMachine) -> None:
         os.killpg(process.pid, signal.SIGINT)
         _, err = process.communicate()
     assert process.returncode == 130
-    assert err.endswith("Stopped before the environment was complete; the next run makes it anew.\n")
+    assert err.endswith("\nStopped; the next run completes the environment.\n")
     assert "Traceback" not in err
 
 

@@ -97,5 +97,5 @@ def _make(root: Path, arguments: list[str], testing: bool) -> Folder:
         sys.stderr.write(f"{fault}\n")
         sys.exit(2)
     except KeyboardInterrupt:
-        sys.stderr.write("\nStopped before the environment was complete; the next run makes it anew.\n")
+        sys.stderr.write("\nStopped; the next run completes the environment.\n")
         sys.exit(130)

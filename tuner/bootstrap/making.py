@@ -113,6 +113,8 @@ def _run_apt(lacking: list[system.Need], steps: Steps) -> str:
     steps.run("reading the lists of system packages", [*apt, "update"], quiet)
     install = [*apt, "install", "-y", "--no-install-recommends", *packages]
     outcome = steps.run(f"installing {len(packages)} system packages", install, quiet)
+    if not outcome.status:
+        return f"apt-get has installed the packages, but {sys.executable} does not find what is in them."
     return f"apt-get could not install them: {outcome.reason} The whole output is in {steps.log}.\n{_advice(lacking)}"
 
 

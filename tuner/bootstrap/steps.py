@@ -49,7 +49,7 @@ class Steps:
         self.say("Another run is making the environment; waiting for it.")
 
     def run(self, title: str, command: list[str], environment: dict[str, str] | None = None) -> Outcome:
-        """Run a command with its output in the log; a command that cannot be started counts as failed.
+        """Run a command with its output in the log.
 
         The lock goes along to the command, so that one that outlives this process is waited for as well.
         """
