@@ -7,6 +7,7 @@ import sys
 import time
 from pathlib import Path
 
+import pytest
 from PySide6.QtWidgets import QApplication
 from pytestqt.qtbot import QtBot
 
@@ -21,7 +22,8 @@ ROOT = Path(__file__).parents[2]
 PATIENCE = 120_000
 
 
-def test_a_controller_is_delivered(window: MainWindow, qtbot: QtBot, tmp_path: Path) -> None:
+@pytest.mark.usefixtures("window")
+def test_a_controller_is_delivered(qtbot: QtBot, tmp_path: Path) -> None:
     """Ctrl+D opens the dialog, a click on its button writes the files, and every one of them is proved."""
     press("ctrl+d")
     dialog = _dialog(qtbot)

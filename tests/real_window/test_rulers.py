@@ -40,7 +40,7 @@ def test_the_curve_follows_the_hand(window: MainWindow, qtbot: QtBot) -> None:
 
 
 def test_a_gain_too_far_is_called_unstable(window: MainWindow, qtbot: QtBot) -> None:
-    """Dragged to its end, kp makes the loop run away: in words, with drawn curves that stay finite; undo brings it back."""
+    """Dragged to its end, kp makes the loop run away: in words, its curves finite as drawn; undo brings it back."""
     _drag_to_end(window.rulers.rulers["kp"])
     _answered(window, qtbot)
     assert window.shown is not None

@@ -78,14 +78,14 @@ class Chip(QWidget):
 
     def __init__(self, words: ChipWords, tip: str, theme: Theme) -> None:
         super().__init__()
-        self._theme, self._width = theme, 0
+        self._theme, self._width, self.words = theme, 0, words
         self.setFocusPolicy(Qt.FocusPolicy.TabFocus)
         self.setSizePolicy(QSizePolicy.Policy.Fixed, QSizePolicy.Policy.Fixed)
         self.show_words(words, tip)
 
     def show_words(self, words: ChipWords, tip: str) -> None:
         """Show another result."""
-        if self._width and words.measure != self.words.measure:
+        if words.measure != self.words.measure:
             self._width = 0
         self.words = words
         self.setToolTip(tip)

@@ -224,18 +224,21 @@ def test_a_continuous_effort_is_a_curve(effort: EffortPanel) -> None:
 
 
 def test_where_a_limit_holds_the_effort_is_marked(effort: EffortPanel) -> None:
-    """Each sample at a limit is a stroke from it to the next sample, at the limit."""
+    """From each sample at a limit to the next the curve is marked, and between two of them the riser as well."""
     shown = answer(3.9)
     trace = shown.assessment.nominal.traces.reference
     limited = np.zeros_like(trace.limited)
     limited[[3, 4, -1]] = True
     marked = _with_reference(shown, replace(trace, limited=limited))
-    line = effort.lines(marked).limited
-    assert line is not None
+    pieces = effort.lines(marked).limited
+    assert pieces is not None
     samples = trace.t[trace.sample_index]
-    assert list(line.t) == [samples[3], samples[4], samples[4], samples[5], samples[-1], trace.t[-1]]
+    (joined,) = np.nonzero(pieces.connect)
+    assert list(joined) == [6, 7, 8, 2 * samples.size - 2]
+    assert list(pieces.t[joined]) == [samples[3], samples[4], samples[4], samples[-1]]
     effort.show(marked)
-    assert effort.limited.xData.size == 6
+    assert np.count_nonzero(effort.limited.opts["connect"]) == 4
+    assert "at a limit" in {words.text for words in effort.marks.words}
     assert effort.lines(answer(0.5)).limited is None
 
 

@@ -36,6 +36,15 @@ class Line:
 
 
 @dataclass(frozen=True, slots=True, eq=False)
+class Limited:
+    """The pieces of the effort that a limit holds: all corners of its curve, and which join the next one."""
+
+    t: Array
+    values: Array
+    connect: NDArray[np.int32]
+
+
+@dataclass(frozen=True, slots=True, eq=False)
 class Lines:
     """The curves of one plot: the nominal plant's, those of the family over shared times, and of kept tunings."""
 
@@ -44,7 +53,7 @@ class Lines:
     family: Array
     kept: tuple[Line, ...] = ()
     second: Line | None = None
-    limited: Line | None = None
+    limited: Limited | None = None
 
 
 class TracePanel(Panel):
@@ -181,19 +190,27 @@ class TracePanel(Panel):
         curve.setPen(self._colour(role))
         curve.show_points(thinning.single(line.t, line.values, seen, columns))
 
-    def _draw_limited(self, line: Line | None, seen: Extent) -> None:
-        if line is None or not line.t.size:
+    def _draw_limited(self, limited: Limited | None, seen: Extent) -> None:
+        if limited is None:
             self.limited.clear_points()
             return
         self.limited.setPen(self._colour("limit"))
-        self.limited.show_pairs(thinning.Points(line.t, thinning.clipped(line.values, seen)))
+        self.limited.show_points(thinning.Points(limited.t, thinning.clipped(limited.values, seen), limited.connect))
 
     def _names(self, lines: Lines, seen: Extent) -> list[Words]:
         """Return the names of the curves, each where it runs."""
         named = [(lines.nominal, "nominal_word", 0.55)]
         named += [(lines.second, "disturbance_word", 0.3)] if lines.second is not None else []
         named += [(line, "kept_word", 0.12 + 0.06 * index) for index, line in enumerate(lines.kept)]
-        return [_name(line, role, share, seen) for line, role, share in named if line.name]
+        names = [_name(line, role, share, seen) for line, role, share in named if line.name]
+        if lines.limited is not None:
+            first = int(lines.limited.connect.argmax())
+            names.append(
+                _name(
+                    Line(lines.limited.t[first:], lines.limited.values[first:], "at a limit"), "limit_word", 0.0, seen
+                )
+            )
+        return names
 
 
 def _name(line: Line, role: str, share: float, seen: Extent) -> Words:
@@ -274,7 +291,7 @@ class EffortPanel(TracePanel):
         kept = tuple(Line(*_effort(sheet, kept.member.traces.reference), kept.name) for kept in shown.kept)
         second = Line(*_effort(sheet, nominal.disturbance), "disturbance run") if sheet.trial.disturbance else None
         main = Line(*_effort(sheet, nominal.reference), "reference run")
-        return Lines(main, t, family, kept, second, _limited(nominal.reference, "at a limit"))
+        return Lines(main, t, family, kept, second, _limited(sheet, nominal.reference))
 
     def axis_words(self, sheet: Sheet) -> str:
         """Return the name and the unit of the manipulated signal."""
@@ -298,15 +315,18 @@ def _effort(sheet: Sheet, trace: Trace) -> tuple[Array, Array]:
     return thinning.staircase(trace.t[at], trace.u[at], float(trace.t[-1]))
 
 
-def _limited(trace: Trace, name: str) -> Line | None:
-    """Return the pieces of the effort that a limit holds, as pairs of points."""
-    at = trace.sample_index[: trace.limited.size][trace.limited]
-    if not at.size:
+def _limited(sheet: Sheet, trace: Trace) -> Limited | None:
+    """Return where a limit holds the effort, along the corners of its curve; None where none does."""
+    held = np.append(trace.limited, np.zeros(trace.sample_index.size - trace.limited.size, dtype=bool))
+    if not held.any():
         return None
-    following = np.append(trace.sample_index, trace.t.size - 1)
-    ends = following[np.searchsorted(trace.sample_index, at) + 1]
-    t = np.column_stack((trace.t[at], trace.t[ends])).ravel()
-    return Line(t, np.repeat(trace.u[at], 2), name)
+    t, u = _effort(sheet, trace)
+    following = np.append(held[1:], False)
+    if sheet.controller.sample_time > 0.0:
+        joined = np.column_stack((held, held & following)).ravel()
+    else:
+        joined = np.interp(t, trace.t[trace.sample_index], held.astype(float)) > 0.5
+    return Limited(t, u, joined.astype(np.int32))
 
 
 def _family(curves: list[tuple[Array, Array]]) -> tuple[Array, Array]:
