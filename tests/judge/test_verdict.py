@@ -7,6 +7,7 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from tests.judge.invented import member, sheet
+from tuner.judge.assessment import WorstCase
 from tuner.judge.verdict import judge, meets, worst_case
 from tuner.model.measures import BY_NAME, MEASURES, Measure
 
@@ -54,7 +55,7 @@ def test_infinite_margins_are_the_best() -> None:
     worst = worst_case(BY_NAME["gain_margin"], [member(gain_margin=INF), member("gain 2", gain_margin=40.0)])
 
     assert (worst.value, worst.plant) == (40.0, "gain 2")
-    assert meets(BY_NAME["gain_margin"], INF, 3.0)
+    assert meets(BY_NAME["gain_margin"], WorstCase(INF, "nominal"), 3.0)
 
 
 def test_a_missing_measure_is_worse_than_any() -> None:
@@ -76,9 +77,29 @@ def test_an_unstable_plant_is_worse_than_one_that_never_settles() -> None:
 def test_no_peak_at_all_is_the_best() -> None:
     """No overshoot keeps every limit of the peak time; where others peak, theirs is the worst."""
     peak = BY_NAME["peak_time"]
+    flat = replace(member(peak_time=None), reasons={"peak_time": "there is no overshoot"})
 
-    assert meets(peak, worst_case(peak, [member(peak_time=None)]).value, 1.0)
-    assert worst_case(peak, [member(peak_time=None), member("gain 2", peak_time=3.0)]).plant == "gain 2"
+    assert meets(peak, worst_case(peak, [flat]), 1.0)
+    assert worst_case(peak, [flat, member("gain 2", peak_time=3.0)]).plant == "gain 2"
+
+
+def test_a_peak_time_that_an_unstable_loop_lacks_is_missed() -> None:
+    """Only the absence of overshoot means that there is none; an unstable loop has no peak time either."""
+    flat = replace(member(peak_time=None), reasons={"peak_time": "there is no overshoot"})
+    lost = member("delay 9", stable=False, peak_time=None)
+
+    found = judge(sheet({"peak_time": 5.0}), [flat, lost])
+
+    assert (found.limits[0].value, found.limits[0].plant, found.limits[0].met) == (None, "delay 9", False)
+
+
+def test_a_reference_outside_the_range_is_noted() -> None:
+    """The trial may leave the range of the signal, but the reader is told."""
+    found = judge(sheet({"overshoot": 8.0}, reference=300.0), [member()])
+
+    assert found.notes == (
+        "The reference step ends at 940 degC, outside the range of the controlled signal (0 degC to 900 degC).",
+    )
 
 
 def test_notes_say_once_why_a_measure_is_missing() -> None:
@@ -130,6 +151,6 @@ def test_the_worst_plant_decides(measure: Measure, values: list[float | None], l
     ordinary = member()
     family = [replace(ordinary, measures={**ordinary.measures, measure.name: value}) for value in values]
 
-    decided = meets(measure, worst_case(measure, family).value, limit)
+    decided = meets(measure, worst_case(measure, family), limit)
 
-    assert decided == all(meets(measure, value, limit) for value in values)
+    assert decided == all(meets(measure, WorstCase(value, "nominal"), limit) for value in values)

@@ -15,10 +15,14 @@ Verdict = Literal["met", "missed", "unstable"]
 
 @dataclass(frozen=True, slots=True)
 class WorstCase:
-    """The worst value of a measure over the family, and the plant that gave it; None when it does not exist there."""
+    """The worst value of a measure over the family, and the plant that gave it.
+
+    A `value` of None does not exist there; `none` tells that this means "none", as no peak without an overshoot.
+    """
 
     value: float | None
     plant: str
+    none: bool = False
 
 
 @dataclass(frozen=True, slots=True)

@@ -1,13 +1,17 @@
 """Limits laid over the measures of a whole family: the worst plant of each, the verdict, and the notes."""
 
 from collections.abc import Iterable, Sequence
+from math import inf
 
 from tuner.judge.assessment import Assessment, Instability, LimitResult, MemberResult, Verdict, WorstCase
+from tuner.judge.wording import quantity
 from tuner.measure.family import DISTURBANCE, REFERENCE
 from tuner.measure.loop import MARGINS
+from tuner.measure.trial import NO_OVERSHOOT
 from tuner.model.measures import BY_NAME, MEASURES, Measure
 from tuner.model.sheet import Sheet
 
+OUT_OF_RANGE = "The reference step ends at {end}, outside the range of the controlled signal ({low} to {high})."
 NO_LIMITS = "The sheet gives no limits; only stability is judged."
 
 _GROUPS = (
@@ -53,18 +57,22 @@ def worst_case(measure: Measure, members: Sequence[MemberResult]) -> WorstCase:
     A measure that does not exist is worse than any value, an unstable plant's first; unless that means "none", which
     is better than any.
     """
-    present = [member for member in members if member.measures[measure.name] is not None]
-    absent = [member for member in members if member.measures[measure.name] is None]
-    if absent and (not measure.none_is_good or not present):
-        return WorstCase(None, next((member for member in absent if not member.stable), absent[0]).name)
-    worst = max(present, key=lambda member: _badness(measure, member.measures[measure.name]))
-    return WorstCase(worst.measures[measure.name], worst.name)
+    name = measure.name
+    present = [member for member in members if member.measures[name] is not None]
+    missing = [member for member in members if member.measures[name] is None and not _means_none(measure, member)]
+    if missing:
+        return WorstCase(None, next((member for member in missing if not member.stable), missing[0]).name)
+    if not present:
+        return WorstCase(None, members[0].name, none=True)
+    worst = max(present, key=lambda member: _badness(measure, member.measures[name]))
+    return WorstCase(worst.measures[name], worst.name)
 
 
-def meets(measure: Measure, value: float | None, limit: float) -> bool:
-    """Return whether a value keeps a limit; one that does not exist keeps it only when that means "none"."""
+def meets(measure: Measure, worst: WorstCase, limit: float) -> bool:
+    """Return whether the worst value keeps a limit; one that does not exist keeps it only when that means "none"."""
+    value = worst.value
     if value is None:
-        return measure.none_is_good
+        return worst.none
     if measure.at_least:
         return value >= limit
     return (abs(value) if measure.by_size else value) <= limit
@@ -72,7 +80,12 @@ def meets(measure: Measure, value: float | None, limit: float) -> bool:
 
 def limit_result(name: str, limit: float, worst: WorstCase) -> LimitResult:
     """Return one line of the acceptance sheet."""
-    return LimitResult(name, limit, worst.value, worst.plant, meets(BY_NAME[name], worst.value, limit))
+    return LimitResult(name, limit, worst.value, worst.plant, meets(BY_NAME[name], worst, limit))
+
+
+def _means_none(measure: Measure, member: MemberResult) -> bool:
+    """Return whether a plant has no such measure because there is nothing to measure, and that is good."""
+    return measure.none_is_good and member.reasons.get(measure.name) == NO_OVERSHOOT
 
 
 def _badness(measure: Measure, value: float | None) -> float:
@@ -85,8 +98,20 @@ def _badness(measure: Measure, value: float | None) -> float:
 
 def _notes(sheet: Sheet, members: Sequence[MemberResult]) -> list[str]:
     notes = [] if sheet.limits else [NO_LIMITS]
+    notes += _range_note(sheet)
     notes += dict.fromkeys(note for member in members for note in member.notes)
     return notes + _absences(members)
+
+
+def _range_note(sheet: Sheet) -> list[str]:
+    signal = sheet.loop.controlled
+    end = signal.resting + sheet.trial.reference
+    low = -inf if signal.low is None else signal.low
+    high = inf if signal.high is None else signal.high
+    if low <= end <= high:
+        return []
+    words = {"end": end, "low": low, "high": high}
+    return [OUT_OF_RANGE.format(**{key: quantity(value, signal.unit) for key, value in words.items()})]
 
 
 def _absences(members: Sequence[MemberResult]) -> list[str]:
