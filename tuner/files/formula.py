@@ -4,6 +4,7 @@ import re
 from typing import TYPE_CHECKING, Final
 
 from tuner.errors import FormulaError
+from tuner.files.spelling import NAME
 from tuner.model.formula import Node, children
 
 if TYPE_CHECKING:
@@ -17,12 +18,6 @@ DEEPEST: Final = 100
 
 RESERVED: Final = ("s", "exp", "sqrt", "pi", "π")
 """Names with a meaning of their own, which no parameter may take."""
-
-SUPERSCRIPTS: Final = "⁰¹²³⁴⁵⁶⁷⁸⁹"
-"""Digits that raise to a power; they are no part of a name."""
-
-NAME: Final = rf"(?![{SUPERSCRIPTS}])[^\W\d_](?:(?![{SUPERSCRIPTS}])\w)*"
-"""What a name looks like: letters of any alphabet, digits and _, a letter first."""
 
 _CLOSING: Final = {"(": ")", "[": "]", "{": "}"}
 

@@ -7,7 +7,7 @@ from typing import Final
 
 from lark import Lark, Token, Transformer
 
-from tuner.files.formula import NAME, SUPERSCRIPTS
+from tuner.files.spelling import NAME, SUPERSCRIPTS
 from tuner.model.formula import Exponential, Name, Negative, Node, Number, Power, Product, Quotient, SquareRoot, Sum
 
 _PLAIN_DIGITS: Final = str.maketrans(SUPERSCRIPTS + "⁻", "0123456789-")
