@@ -7,18 +7,18 @@ import pytest
 
 from tuner.kernels import crossings
 
-LEVEL = 0.707
+LEVEL = crossings.LEVEL
 
 
-def scan(
-    roots: list[complex], zeros: int, gain: float, delay: float = 0.0, step: float = 0.0, points: int = 60
+def scan(  # noqa: PLR0913 - the numbers of one loop
+    roots: list[complex], zeros: int, gain: float, *, delay: float = 0.0, step: float = 0.0, points: int = 60
 ) -> list[float]:
     """Return what is found on a logarithmic grid."""
     top = math.pi / step if step else 1e3
     w = np.geomspace(1e-3, top, points)[None]
     out = np.empty((1, crossings.COLUMNS))
     row = np.array([roots], dtype=complex)
-    crossings.scan(w, row, zeros, np.array([gain]), np.array([delay]), step, 1.0, LEVEL, out)
+    crossings.scan(w, row, zeros, np.array([gain]), np.array([delay]), step, 1.0, out)
     found: list[float] = out[0].tolist()
     return found
 
@@ -27,11 +27,12 @@ def scan(
 def test_a_point_and_its_derivatives(step: float) -> None:
     """L is the product of its factors; its logarithmic derivatives are those of finite differences."""
     roots = np.array([-2.0, 0.5 + 1j, 0.5 - 1j, -0.3], dtype=complex)
+    loop = crossings.LoopGain(roots, 1, 2.0, 0.7, step, 1.0)
 
     def logarithm(w: float) -> complex:
-        return complex(np.log(crossings.point(roots, 1, 2.0, 0.7, step, 1.0, w)[0]))
+        return complex(np.log(crossings.point(loop, w).gain))
 
-    value, slope, curvature = crossings.point(roots, 1, 2.0, 0.7, step, 1.0, 1.3)
+    _, value, slope, curvature = crossings.point(loop, 1.3)
     x = np.exp(1.3j * step) - 1.0 if step else 1.3j
     expected = 2.0 * (x + 2.0) / ((x - 0.5 - 1j) * (x - 0.5 + 1j) * (x + 0.3)) * np.exp(-0.91j)
     h = 1e-4
@@ -74,7 +75,7 @@ def test_a_sampled_integrator() -> None:
 
 @pytest.mark.parametrize("points", [4, 30, 300])
 def test_dead_time_between_the_points(points: int) -> None:
-    """exp(-50 s)/2 turns eight times a radian: the first crossing is found though the grid has a few points a decade."""
+    """Between points of exp(-50 s)/2 the phase turns many times: the first crossing is found all the same."""
     found = scan([], 0, 0.5, delay=50.0, points=points)
     assert found[crossings.LARGEST_BELOW_ONE] == pytest.approx(0.5, rel=1e-13)
     assert found[crossings.SENSITIVITY_PEAK] == pytest.approx(2.0, rel=1e-13)
@@ -91,9 +92,10 @@ def test_a_touch_between_two_points() -> None:
 def test_signals_and_their_slopes(kind: int) -> None:
     """The derivative that goes with each signal is that of finite differences."""
     roots = np.array([-2.0, -0.5 + 1j, -0.5 - 1j, -0.3], dtype=complex)
+    loop = crossings.LoopGain(roots, 1, 2.0, 0.3, 0.0, 1.0)
 
     def at(w: float) -> tuple[float, float]:
-        return crossings.signal(kind, LEVEL, *crossings.point(roots, 1, 2.0, 0.3, 0.0, 1.0, w))
+        return crossings.signal(kind, crossings.point(loop, w))
 
     h = 1e-5
     assert at(1.1)[1] == pytest.approx((at(1.1 + h)[0] - at(1.1 - h)[0]) / (2.0 * h), rel=1e-6)

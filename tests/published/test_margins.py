@@ -1,7 +1,7 @@
 """Margins and sensitivity peaks against published loops and tuning tables.
 
-Unless a source says otherwise, numbers were computed independently (refined root finding, mpmath at 20 to 30 digits) and
-the attribution is from memory: "computed; attribution from memory". Each is compared to the digits printed.
+Unless a source says otherwise, numbers were computed independently (refined root finding, mpmath at 20 to 30 digits)
+and the attribution is from memory: "computed; attribution from memory". Each is compared to the digits printed.
 """
 
 from math import asin, degrees, floor, inf, isinf, log10, pi, sqrt
@@ -104,7 +104,7 @@ SECOND_ORDER = (
     SecondOrder(sqrt(0.5), 65.5302, 1.0, 0.643594),
     SecondOrder(0.8, 69.8600, 1.0, 0.586784),
 )
-"""Computed from PM = atan(2 zeta/sqrt(sqrt(1 + 4 zeta^4) - 2 zeta^2)) and Mr = 1/(2 zeta sqrt(1 - zeta^2)), all texts."""
+"""Computed: PM = atan(2 zeta/sqrt(sqrt(1 + 4 zeta^4) - 2 zeta^2)), Mr = 1/(2 zeta sqrt(1 - zeta^2)), all texts."""
 
 
 @pytest.mark.parametrize("row", SECOND_ORDER, ids=lambda row: f"zeta {row.zeta:.3g}")
@@ -263,7 +263,7 @@ def test_sensitivity_of_the_e_cases(case: Case) -> None:
 
 
 def peak_with_series_filter(case: Case) -> float:
-    """Return the peak when the whole factor (tD s + 1) has a filter: (tD s + 1)/(0.01 tD s + 1) written into the plant."""
+    """Return the peak with (tD s + 1)/(0.01 tD s + 1) written into the plant in place of the derivative."""
     lead = f"({case.td!r}s+1)/({0.01 * case.td!r}s+1)"
     return margins_of(f"({case.plant})*{lead}", series(case.gain, case.ti)).max_sensitivity
 
@@ -308,7 +308,7 @@ COMPLEMENTARY_BOUNDS = ((1.3, 1.76923, 45.2397), (2.0, 1.5, 28.9550))
 
 @pytest.mark.parametrize(("peak", "gain", "phase"), COMPLEMENTARY_BOUNDS)
 def test_bounds_from_the_complementary_peak(peak: float, gain: float, phase: float) -> None:
-    """GM >= 1 + 1/Mt and PM >= 2 asin(1/(2 Mt)) hold for every tabled loop (Skogestad and Postlethwaite; from memory)."""
+    """GM >= 1 + 1/Mt, PM >= 2 asin(1/(2 Mt)) hold for every tabled loop (Skogestad and Postlethwaite; from memory)."""
     assert (1.0 + 1.0 / peak, degrees(2.0 * asin(0.5 / peak))) == (digits(gain), digits(phase))
     for row in LOOPS:
         found = margins_of(row.formula)

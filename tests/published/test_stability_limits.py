@@ -1,7 +1,7 @@
 """Where stability ends in continuous loops: Routh limits, ultimate gains with dead time, hidden modes.
 
-Limits are found by bisection on the verdict of the closed-loop poles and compared to closed forms or to numbers computed
-independently; attributions of worked examples are from memory: "computed; attribution from memory".
+Limits are found by bisection on the verdict of the closed-loop poles and compared to closed forms or to numbers
+computed independently; attributions of worked examples are from memory: "computed; attribution from memory".
 """
 
 from collections.abc import Callable
@@ -42,7 +42,7 @@ ROUTH = (
     Routh("1/(s(s+1)(s+2))", 1.0, 100.0, 6.0, sqrt(2.0), "classic"),
     Routh("3/((s+1)(0.5s+1)(s+3))", 1.0, 100.0, 10.0, sqrt(11.0), "Coughanowr, Process Systems Analysis, Example 14.3"),
     Routh("1/(s(s^2+s+1)(s+2))", 1.0, 100.0, 14.0 / 9.0, None, "Ogata, Modern Control Engineering, ch. 5; from memory"),
-    Routh("1/(s(s+7)(s+11))", 1.0, 1e4, 1386.0, sqrt(77.0), "Nise, Control Systems Engineering, Example 6.9; from memory"),
+    Routh("1/(s(s+7)(s+11))", 1.0, 1e4, 1386.0, sqrt(77.0), "Nise, Control Systems Engineering, Ex. 6.9; from memory"),
     Routh("(s+1)/(s(s-1)(s+6))", 10.0, 1.0, 7.5, None, "Franklin, Powell and Emami-Naeini, Routh example; from memory"),
     Routh("1/(s(s+1)(s+5))", 1.0, 100.0, 30.0, sqrt(5.0), "Ogata, Modern Control Engineering, Example 8-1"),
     Routh("1/(s+1)^3", 1.0, 100.0, 8.0, sqrt(3.0), "classic"),
@@ -117,7 +117,7 @@ def test_ultimate_gains_with_dead_time(row: Ultimate) -> None:
 
 @pytest.mark.parametrize(("gain", "ratio"), [(2.0, 0.02), (0.5, 0.7), (7.0, 5.0), (1.0, 100.0)])
 def test_the_exact_condition_of_first_order_plants(gain: float, ratio: float) -> None:
-    """wu L + atan(wu T) = pi and Ku = sqrt(1 + (wu T)^2)/K hold for any dead time over lag (classic)."""
+    """Both wu L + atan(wu T) = pi and Ku = sqrt(1 + (wu T)^2)/K hold for any dead time over lag (classic)."""
     ku, found = ultimate(f"{gain!r} exp(-{ratio!r} s)/(s + 1)")
     w = found.values[0].imag
     assert w * ratio + atan(w) == pytest.approx(pi, rel=1e-7)

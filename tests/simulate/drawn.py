@@ -8,7 +8,7 @@ from tuner.simulate.loop import Loop, loops_around
 
 
 def plant(random: np.random.Generator, dead_time: float = 0.0, least_excess: int = 0) -> Linear:
-    """Return a plant with up to five poles around 1 rad per time unit, now and then resonant, integrating or unstable."""
+    """Return a plant of up to five poles around 1 rad per time unit, now and then resonant, integrating or unstable."""
     poles: list[complex] = []
     count = int(random.integers(max(1, least_excess), 6))
     while len(poles) < count:

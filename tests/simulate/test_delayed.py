@@ -7,25 +7,26 @@ from scipy.special import lambertw
 from tests.simulate import drawn
 from tuner.model.controller import Controller
 from tuner.simulate.delayed import delayed_poles
-from tuner.simulate.factors import stack
+from tuner.simulate.factors import Stack, stack
 from tuner.simulate.linear import from_zeros_poles
 from tuner.simulate.loop import loops_around
 from tuner.simulate.roots import count_right
+from tuner.simulate.traces import ComplexArray
 
 
 def row(
     zeros: list[complex], poles: list[complex], gain: float, dead_time: float, controller: Controller | None = None
-):
+) -> Stack:
     """Return the loop gain of a plant with dead time, under unit gain unless told otherwise."""
     chain = from_zeros_poles(zeros, poles, gain, dead_time)
     return stack([loops_around(controller or Controller(gain_1=1.0), [chain])[0].factors])
 
 
-def all_poles(pole: float, gain: float, dead_time: float) -> np.ndarray:
-    """Return poles of s - pole + gain exp(-dead_time s) = 0: pole + W_k(-gain dead_time exp(-pole dead_time))/dead_time."""
+def all_poles(pole: float, gain: float, dead_time: float) -> ComplexArray:
+    """Return roots of s - p + k exp(-L s): p + W(-k L exp(-p L))/L on every branch of W."""
     branches = np.array([lambertw(-gain * dead_time * np.exp(-pole * dead_time), k) for k in range(-25, 25)])
     values = pole + branches / dead_time
-    return values[np.argsort(-values.real)]
+    return values[np.argsort(-values.real)].astype(complex)
 
 
 CASES = [
@@ -38,7 +39,7 @@ CASES = [
 
 @pytest.mark.parametrize(("pole", "gain", "dead_time"), CASES)
 def test_every_pole_of_a_first_order_loop(pole: float, gain: float, dead_time: float) -> None:
-    """What is listed is every pole right of the line, to nine digits (Corless and others, 1996: the Lambert W function)."""
+    """Every pole right of the line is listed (Corless and others, 1996: the Lambert W function)."""
     found = delayed_poles(row([], [pole], gain, dead_time))
     exact = all_poles(pole, gain, dead_time)
     expected = exact[exact.real > found.known_from]
@@ -78,7 +79,7 @@ def test_an_unfiltered_derivative_with_dead_time() -> None:
 
 
 def test_a_strong_gain_has_many_unstable_poles() -> None:
-    """k exp(-s)/(s + 1) with k = 1000: a pair crosses every 2 pi, and all are counted."""
+    """At k = 1000 in k exp(-s)/(s + 1) a pair has crossed every 2 pi, and all are counted."""
     found = delayed_poles(row([], [-1.0], 1000.0, 1.0))
     w = np.sqrt(1000.0**2 - 1.0)
     crossings = np.floor((w + np.arctan(w) - np.pi) / (2.0 * np.pi)) + 1.0

@@ -34,7 +34,7 @@ def test_the_real_part_near_the_circle_keeps_its_digits() -> None:
 
 
 def test_a_root_at_z_zero_lies_infinitely_far_left() -> None:
-    """z = 0 has no place in s."""
+    """The point z = 0 has no place in s."""
     assert to_s(np.array([-1.0 + 0j]), 0.1).real.tolist() == [-np.inf]
 
 

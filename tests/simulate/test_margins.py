@@ -136,6 +136,7 @@ def test_a_resonance_thinner_than_the_grid(zeta: float) -> None:
     pair = [complex(-zeta, np.sqrt(1.0 - zeta**2)), complex(-zeta, -np.sqrt(1.0 - zeta**2))]
     found = margins_of(loop_of(from_zeros_poles([0.0], pair, 4.0 * zeta)))
     assert found.phase_margin == pytest.approx(120.0, rel=1e-6)
+    assert found.phase_margin_at is not None
     assert abs(found.phase_margin_at - 1.0) == pytest.approx(np.sqrt(3.0) * zeta, rel=0.01)
     assert found.max_complementary == pytest.approx(2.0 / 3.0, rel=1e-9)
     crossed = margins_of(loop_of(from_zeros_poles([0.0, -0.1], [*pair, -3.0], -4.0 * zeta)))

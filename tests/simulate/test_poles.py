@@ -7,11 +7,12 @@ import numpy as np
 import pytest
 
 from tests.simulate import drawn
-from tests.simulate.test_transfer import Controller, bake, notch, pid
-from tuner.law.constants import NO_NOTCH
+from tests.simulate.lone_law import AT_REST, State, constants_of, sample
+from tuner.model.controller import Controller
 from tuner.simulate.linear import Linear, from_zeros_poles
 from tuner.simulate.loop import ContinuousLoop, Loop, SampledLoop, loops_around
 from tuner.simulate.poles import Poles, closed_loop_poles, family_poles
+from tuner.simulate.traces import ComplexArray
 
 
 def poles_of(chain: Linear, controller: Controller) -> Poles:
@@ -19,7 +20,7 @@ def poles_of(chain: Linear, controller: Controller) -> Poles:
     return closed_loop_poles(loops_around(controller, [chain])[0])
 
 
-def matched(found: np.ndarray, expected: np.ndarray) -> float:
+def matched(found: ComplexArray, expected: ComplexArray) -> float:
     """Return the largest distance from an expected pole to the nearest found, relative to its size or to one."""
     distance = np.abs(np.asarray(found)[:, None] - np.asarray(expected)[None, :]).min(0)
     return float(np.max(distance / np.maximum(np.abs(expected), 1.0), initial=0.0))
@@ -59,26 +60,37 @@ def test_sampled_loops_against_python_control(seed: int) -> None:
     assert found.stable == bool(np.all(np.abs(expected) < 1.0))
 
 
+def scaled(state: State, size: float) -> State:
+    """Return a state of the law divided by a size: it is linear while nothing limits it."""
+    one, two, three, four, five, six, seven, *flags = state
+    mode, limited, fault = flags
+    return (
+        one / size,
+        two / size,
+        three / size,
+        four / size,
+        five / size,
+        six / size,
+        seven / size,
+        mode,
+        limited,
+        fault,
+    )
+
+
 def iterated_growth(loop: SampledLoop, samples: int) -> float:
     """Return by what factor a loop grows in each sample: the law itself, sample after sample, around the held chain."""
     settings, held = loop.controller, loop.held
-    gains, step = settings.parallel(), settings.sample_time
-    section = NO_NOTCH
-    if settings.notch is not None:
-        section = notch(step, settings.notch.frequency, settings.notch.depth, settings.notch.width)
-    constants = bake(
-        sample_time=step, kp=gains.kp, ki=gains.ki, kd=gains.kd, filter_time=settings.filter_time,
-        action=settings.sign, measurement_filter_time=settings.measurement_filter, notch_section=section,
-    )  # fmt: skip
+    constants, step = constants_of(settings), settings.sample_time
     x, past = np.random.default_rng(1).normal(size=loop.chain.order), [0.0] * (held.steps + 2)
-    state, sizes, scale = (0.0,) * len(pid.STATE), [], 0.0
+    state, sizes, scale = AT_REST, [], 0.0
     for _ in range(samples):
-        state = pid.law(0.0, float(held.c @ x + held.d * past[held.steps]), 0.0, 0.0, *state, *constants)
+        state = sample(float(held.c @ x + held.d * past[held.steps]), state, constants)
         past = [state[0], *past[:-1]]
         x = x + held.growth @ x + held.old * past[held.steps + 1] + held.new * past[held.steps]
         size = float(np.abs(x).max()) + max(map(abs, past)) + 1e-300
         if size > 1e30 or size < 1e-30:
-            x, past, state = x / size, [u / size for u in past], tuple(value / size for value in state)
+            x, past, state = x / size, [u / size for u in past], scaled(state, size)
             scale += np.log(size)
             size = 1.0
         sizes.append(scale + np.log(size))
@@ -106,7 +118,7 @@ def test_equal_poles_under_a_small_gain_keep_their_digits() -> None:
 
 
 def test_an_improper_loop() -> None:
-    """An unfiltered derivative around a plant that answers at once: s^2 + 4 s + 3 of (1 + s)(s + 1) + (s + 2)... exactly."""
+    """An unfiltered derivative around a plant that answers at once: (1 + s)(s + 1) + (s + 2) = s^2 + 3 s + 3."""
     found = poles_of(from_zeros_poles([-1.0], [-2.0], 1.0), Controller(gain_1=1.0, gain_3=1.0))
     assert np.sort(found.values.real) == pytest.approx(np.sort(np.roots([1.0, 3.0, 3.0]).real))
     assert np.sort(np.abs(found.values.imag)) == pytest.approx(np.sort(np.abs(np.roots([1.0, 3.0, 3.0]).imag)))
@@ -136,9 +148,8 @@ def test_an_open_loop_has_the_poles_of_its_chain(step: float) -> None:
 @pytest.mark.parametrize("step", [0.0, 0.25])
 def test_the_law_without_effect_leaves_no_pole(step: float) -> None:
     """Filter time and wind-up time without a derivative or an integral make no pole, and none at z = 1."""
-    found = poles_of(
-        from_zeros_poles([], [-1.0], 1.0), Controller(gain_1=1.0, filter_time=2.0, windup_time=3.0, sample_time=step)
-    )
+    silent = Controller(gain_1=1.0, filter_time=2.0, windup_time=3.0, sample_time=step)
+    found = poles_of(from_zeros_poles([], [-1.0], 1.0), silent)
     assert len(found.values) == 1
     assert found.stable
 
@@ -178,17 +189,16 @@ def test_a_chain_too_long_for_eigenvalues() -> None:
         characteristic = np.zeros(count + 2)
         characteristic[0], characteristic[1] = 1.0, -np.exp(-0.1)
         characteristic[-1] += gain * (1.0 - np.exp(-0.1))
-        z = np.roots(characteristic)
+        z = np.roots(characteristic).astype(complex)
         assert not found.complete
         assert found.count_unstable == int((np.abs(z) >= 1.0).sum())
-        assert matched(np.exp(found.values * 0.1)[:2], z) < np.inf
         nearest = np.abs(np.exp(found.values * 0.1)[:, None] - z[None, :]).min(1)
         assert np.max(nearest) < 1e-9
         assert found.growth == pytest.approx(np.log(np.abs(z).max()) / 0.1, rel=1e-8)
 
 
 def test_a_continuous_loop_with_dead_time_is_not_complete() -> None:
-    """It has infinitely many poles; those listed are all to the right of a line, at least to three times the rightmost."""
+    """It has infinitely many poles; listed are all right of a line, at least to three times the rightmost."""
     found = poles_of(from_zeros_poles([], [-1.0], 1.0, 1.0), Controller(gain_1=0.5))
     assert isinstance(loops_around(Controller(gain_1=0.5), [from_zeros_poles([], [-1.0], 1.0, 1.0)])[0], ContinuousLoop)
     assert not found.complete

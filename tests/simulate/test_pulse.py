@@ -12,7 +12,7 @@ from tuner.simulate.loop import SampledLoop, loops_around
 
 
 def worst(chain: Linear, step: float) -> float:
-    """Return the largest difference of factors and state space, relative to the response or a millionth of its largest."""
+    """Return the largest difference, relative to the response or to a millionth of its largest."""
     w = np.geomspace(1e-3, 1.0, 80) * np.pi / step
     (loop,) = loops_around(Controller(gain_1=1.0, sample_time=step), [chain])
     expected = hold(chain, step).response(1j * w)
@@ -22,7 +22,7 @@ def worst(chain: Linear, step: float) -> float:
 
 @pytest.mark.parametrize("seed", range(150))
 def test_factors_are_the_state_space(seed: int) -> None:
-    """The product of factors is the pulse transfer function to 1e-9, dead time with its fraction and direct term included."""
+    """The product of factors is the pulse transfer function to 1e-9, with dead time of any fraction."""
     random = np.random.default_rng(seed)
     step = 10.0 ** random.uniform(-2.0, 0.5)
     dead_time = float(random.choice([0.0, random.uniform(0.0, 3.0), 7.0 * step, 1e-4 * step, 0.9999 * step]))
@@ -50,7 +50,7 @@ def test_a_static_chain() -> None:
 
 
 def test_sampling_zeros_of_integrators() -> None:
-    """Two integrators sampled have a zero at z = -1, three at -2 +- sqrt 3 (Astrom, Hagander and Sternby; from memory)."""
+    """Two integrators have a zero at z = -1, three at -2 +- sqrt 3 (Astrom, Hagander and Sternby; from memory)."""
     for order, expected in ((2, [-1.0]), (3, [-2.0 - np.sqrt(3.0), -2.0 + np.sqrt(3.0)])):
         (loop,) = loops_around(Controller(gain_1=1.0, sample_time=0.5), [from_zeros_poles([], [0.0] * order, 1.0)])
         zeros = sorted((1.0 + loop.factors.zeros).real.tolist())

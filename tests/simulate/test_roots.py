@@ -5,6 +5,7 @@ import pytest
 
 from tuner.simulate.factors import Factors, Stack, stack
 from tuner.simulate.roots import count_right, newton_step_in_s, newton_steps, together
+from tuner.simulate.traces import ComplexArray
 
 
 def row(poles: list[complex], gain: float, delay: float = 0.0, step: float = 0.0) -> Stack:
@@ -12,21 +13,31 @@ def row(poles: list[complex], gain: float, delay: float = 0.0, step: float = 0.0
     return stack([Factors(np.zeros(0, dtype=complex), np.array(poles, dtype=complex), gain, delay, step)])
 
 
+def complex_roots(*coefficients: float) -> ComplexArray:
+    """Return the roots of a polynomial, highest power first."""
+    return np.roots(coefficients).astype(complex)
+
+
+def scaled(x: ComplexArray, loop: Stack) -> ComplexArray:
+    """Return one row of roots in the units of a stack."""
+    return (x[None] / loop.unit).astype(complex)
+
+
 def test_newton_steps_vanish_at_roots() -> None:
     """At the roots of (x + 1)(x + 2) + 6 there is nothing to take; nearby it is what is missing."""
     loop = row([-1.0, -2.0], 6.0)
-    roots = np.roots([1.0, 3.0, 8.0])
-    assert newton_steps(loop, roots[None] / loop.unit) == pytest.approx(np.zeros((1, 2)), abs=1e-14)
-    near = newton_steps(loop, (roots[None] + 1e-4) / loop.unit) * loop.unit
+    roots = complex_roots(1.0, 3.0, 8.0)
+    assert newton_steps(loop, scaled(roots, loop)) == pytest.approx(np.zeros((1, 2)), abs=1e-14)
+    near = newton_steps(loop, scaled(roots + 1e-4, loop)) * loop.unit
     assert near == pytest.approx(np.full((1, 2), 1e-4), rel=1e-3)
 
 
 def test_whole_samples_count_as_factors() -> None:
-    """z (z - .5) + .3: a sample of delay is a pole at z = 0."""
+    """Of z (z - .5) + .3: a sample of delay is a pole at z = 0."""
     loop = row([-0.5], 0.3, delay=0.2, step=0.2)
-    roots = np.roots([1.0, -0.5, 0.3])
-    assert newton_steps(loop, (roots[None] - 1.0) / loop.unit) == pytest.approx(np.zeros((1, 2)), abs=1e-14)
-    assert newton_step_in_s(loop, np.log(roots) / 0.2) == pytest.approx(np.zeros(2), abs=1e-12)
+    roots = complex_roots(1.0, -0.5, 0.3)
+    assert newton_steps(loop, scaled(roots - 1.0, loop)) == pytest.approx(np.zeros((1, 2)), abs=1e-14)
+    assert newton_step_in_s(loop, (np.log(roots) / 0.2).astype(complex)) == pytest.approx(np.zeros(2), abs=1e-12)
 
 
 def test_a_hidden_mode_is_a_root() -> None:

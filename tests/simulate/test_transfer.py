@@ -1,42 +1,37 @@
 """Transfer functions of the controller, against the law itself and against their formulas."""
 
+from dataclasses import replace
+
 import numpy as np
 import pytest
 
 from tests.simulate import drawn
-from tuner.law import pid
-from tuner.law.constants import NO_NOTCH, bake, notch
+from tests.simulate.lone_law import AT_REST, constants_of, sample
 from tuner.model.controller import Controller, Notch
 from tuner.simulate.factors import stack
 from tuner.simulate.linear import from_zeros_poles
+from tuner.simulate.traces import Array
 from tuner.simulate.transfer import controller_factors, plant_factors, quadratic_roots
 
 LENGTH = 4000
 
 
-def impulse_response(controller: Controller) -> np.ndarray:
+def impulse_response(controller: Controller) -> Array:
     """Return the efforts that the law itself answers to minus one at the first sample and zero after."""
-    gains, step = controller.parallel(), controller.sample_time
-    section = NO_NOTCH
-    if controller.notch is not None:
-        section = notch(step, controller.notch.frequency, controller.notch.depth, controller.notch.width)
-    constants = bake(
-        sample_time=step, kp=gains.kp, ki=gains.ki, kd=gains.kd, filter_time=controller.filter_time,
-        action=controller.sign, measurement_filter_time=controller.measurement_filter, notch_section=section,
-    )  # fmt: skip
-    state, efforts = (0.0,) * len(pid.STATE), []
+    constants = constants_of(controller)
+    state, efforts = AT_REST, []
     for k in range(LENGTH):
-        state = pid.law(0.0, -1.0 if k == 0 else 0.0, 0.0, 0.0, *state, *constants)
+        state = sample(-1.0 if k == 0 else 0.0, state, constants)
         efforts.append(state[0])
     return np.array(efforts)
 
 
 @pytest.mark.parametrize("seed", range(40))
 def test_the_sampled_controller_is_the_law(seed: int) -> None:
-    """The z-transform of what the law does to an impulse is the transfer function, action, filter and notch included."""
+    """The z-transform of what the law does to an impulse is the transfer function, with filter and notch."""
     random = np.random.default_rng(seed)
     controller = drawn.controller(random, float(random.uniform(0.05, 0.5)))
-    controller = Controller(**{name: getattr(controller, name) for name in controller.__slots__} | {"delay_samples": 0})
+    controller = replace(controller, delay_samples=0)
     step = controller.sample_time
     z = 1.02 * np.exp(1j * np.linspace(0.1, 3.0, 7))
     efforts = impulse_response(controller)
@@ -52,7 +47,7 @@ def test_the_sampled_controller_is_the_law(seed: int) -> None:
 @pytest.mark.parametrize("filter_time", [0.0, 0.2])
 @pytest.mark.parametrize("action", ["reverse", "direct"])
 def test_the_continuous_controller(gains: tuple[float, float, float], filter_time: float, action: str) -> None:
-    """kp + ki/s + kd s/(Tf s + 1) behind filter and notch, the sign of the action in front."""
+    """It is kp + ki/s + kd s/(Tf s + 1) behind filter and notch, the sign of the action in front."""
     kp, ki, kd = gains
     controller = Controller(
         gain_1=kp, gain_2=ki, gain_3=kd, filter_time=filter_time, action=action,  # type: ignore[arg-type]  # both names are valid
@@ -68,7 +63,7 @@ def test_the_continuous_controller(gains: tuple[float, float, float], filter_tim
 
 @pytest.mark.parametrize("step", [0.0, 0.1])
 def test_parts_without_effect_leave_no_modes(step: float) -> None:
-    """No integral without ki, no derivative without kd, and nothing at all when all gains are zero or feedback is off."""
+    """No integral without ki, no derivative without kd, nothing at all without gains or with feedback off."""
     assert len(controller_factors(Controller(gain_1=1.0, filter_time=0.5, sample_time=step)).poles) == 0
     assert len(controller_factors(Controller(gain_1=1.0, gain_2=1.0, sample_time=step)).poles) == 1
     for silent in (Controller(sample_time=step), Controller(gain_1=1.0, feedback=False, sample_time=step)):

@@ -11,6 +11,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from tuner.kernels.compiled import compiled
+from tuner.kernels.crossings import LoopGain
 
 Array = NDArray[np.float64]
 ComplexArray = NDArray[np.complex128]
@@ -27,13 +28,12 @@ def _expm1(z: complex) -> complex:
 
 
 @compiled
-def newton_step(
-    roots: ComplexArray, zeros: int, gain: float, delay: float, step: float, unit: float, s: complex
-) -> complex:
+def newton_step(loop: LoopGain, s: complex) -> complex:
     """Return Newton's step from `s` for D + N, where L = N/D and nothing is cancelled; 0 where it has none.
 
-    In this form a mode that the loop gain does not show is a root like any other. Parameters as for `crossings.point`.
+    In this form a mode that the loop gain does not show is a root like any other.
     """
+    roots, zeros, gain, delay, step, unit = loop
     if step > 0.0:
         x = _expm1(s * step) / unit
         speed = step * (x + 1.0 / unit)
@@ -64,12 +64,7 @@ def newton_step(
 
 @compiled
 def aberth(
-    roots: ComplexArray,
-    zeros: int,
-    gain: float,
-    delay: float,
-    step: float,
-    unit: float,
+    loop: LoopGain,
     s: ComplexArray,
     rounds: int,
     error: Array,
@@ -78,8 +73,7 @@ def aberth(
 
     Parameters
     ----------
-    roots, zeros, gain, delay, step, unit
-        See `crossings.point`.
+    loop : LoopGain
     s : ndarray of complex, shape (k,)
         Guesses; receives the roots.
     error : ndarray, shape (k,)
@@ -90,7 +84,7 @@ def aberth(
     for _ in range(rounds):
         largest = 0.0
         for i in range(count):
-            moved = newton_step(roots, zeros, gain, delay, step, unit, s[i])
+            moved = newton_step(loop, s[i])
             repulsion = complex(0.0, 0.0)
             for j in range(count):
                 if s[i] != s[j]:
@@ -106,10 +100,9 @@ def aberth(
 
 
 @compiled
-def direction(
-    roots: ComplexArray, zeros: int, gain: float, delay: float, step: float, unit: float, s: complex
-) -> complex:
+def direction(loop: LoopGain, s: complex) -> complex:
     """Return D + N at `s` without the size of D or of N, whichever is larger: its angle is what counts."""
+    roots, zeros, gain, delay, step, unit = loop
     x = _expm1(s * step) / unit if step > 0.0 else s / unit
     size = math.log(abs(gain)) - delay * s.real
     turn = -delay * s.imag + (math.pi if gain < 0.0 else 0.0)
@@ -131,12 +124,7 @@ def direction(
 
 @compiled
 def turned(
-    roots: ComplexArray,
-    zeros: int,
-    gain: float,
-    delay: float,
-    step: float,
-    unit: float,
+    loop: LoopGain,
     line: float,
     y: Array,
 ) -> float:
@@ -145,14 +133,13 @@ def turned(
     Steps are halved until each turns by less than a radian. `y` must be dense enough that none turns by more than half
     a turn unseen.
     """
-    args = (zeros, gain, delay, step, unit)
     total = 0.0
-    here, value = y[0], direction(roots, *args, complex(line, y[0]))
+    here, value = y[0], direction(loop, complex(line, y[0]))
     for i in range(1, y.shape[0]):
         while here < y[i]:
             end = y[i]
             for _ in range(_HALVINGS):
-                ahead = direction(roots, *args, complex(line, end))
+                ahead = direction(loop, complex(line, end))
                 quotient = ahead * value.conjugate()
                 angle = math.atan2(quotient.imag, quotient.real)
                 if abs(angle) < _LONGEST_ANGLE:

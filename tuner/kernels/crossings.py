@@ -1,10 +1,11 @@
 """Crossings and peaks of a loop gain along a frequency grid, found exactly by Newton's method between grid points.
 
-Plain loops because a crossing is found from a handful of points, one after the other: as array operations each would cost
-more in calls than in arithmetic, twenty times over for the plants of a family.
+Plain loops because a crossing is found from a handful of points, one after the other: as array operations each would
+cost more in calls than in arithmetic, twenty times over for the plants of a family.
 """
 
 import math
+from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
@@ -15,7 +16,7 @@ Array = NDArray[np.float64]
 ComplexArray = NDArray[np.complex128]
 
 GAIN, PHASE, SENSITIVITY, COMPLEMENTARY, BANDWIDTH, GAIN_TURN, PHASE_TURN = range(7)
-"""What is sought: |L| = 1, the phase at -180 degrees, peaks of |S| and |T|, |S| at its level, turns of gain and phase."""
+"""What is sought: |L| = 1, phase -180 degrees, peaks of |S| and |T|, |S| at its level, turns of gain and phase."""
 
 COLUMNS = 11
 (
@@ -31,8 +32,11 @@ COLUMNS = 11
     COMPLEMENTARY_AT,
     REACHED_AT,
 ) = range(COLUMNS)
-"""What `scan` finds: largest |L| < 1 at -180 degrees; smallest angle from -180 degrees, rad, and smallest dead time that
-makes up for it, where |L| = 1; largest peaks of |S| and |T|; lowest frequency at which |S| rises to its level."""
+"""What `scan` finds: largest |L| < 1 at -180 degrees; smallest angle from there, rad, and smallest dead time that makes
+up for it, where |L| = 1; largest peaks of |S| and |T|; lowest frequency at which |S| rises to its level."""
+
+LEVEL = 0.707
+"""The sensitivity that ends the bandwidth."""
 
 _NEAR = 0.5
 _ROUNDS = 80
@@ -40,11 +44,8 @@ _LONGEST_TURN = 1.0
 _PIECES = 4000
 
 
-@compiled
-def point(
-    roots: ComplexArray, zeros: int, gain: float, delay: float, step: float, unit: float, w: float
-) -> tuple[complex, complex, complex]:
-    """Return L at a frequency, and the first and second derivative of its logarithm with respect to frequency.
+class LoopGain(NamedTuple):
+    """L = gain * prod(x - zeros)/prod(x - poles) * exp(-delay s).
 
     Parameters
     ----------
@@ -53,10 +54,30 @@ def point(
     zeros : int
         How many of the roots are zeros.
     gain, delay, step, unit : float
-        L = gain * prod(x - zeros)/prod(x - poles) * exp(-j w delay).
-    w : float
-        rad per time unit.
+        Delay and step in time units.
     """
+
+    roots: ComplexArray
+    zeros: int
+    gain: float
+    delay: float
+    step: float
+    unit: float
+
+
+class Point(NamedTuple):
+    """A frequency, L there, and the first and second derivative of its logarithm with respect to frequency."""
+
+    w: float
+    gain: complex
+    slope: complex
+    curvature: complex
+
+
+@compiled
+def point(loop: LoopGain, w: float) -> Point:
+    """Return what L is and how it changes at a frequency, rad per time unit."""
+    roots, zeros, gain, delay, step, unit = loop
     if step > 0.0:
         half = math.sin(0.5 * step * w)
         x = complex(-2.0 * half * half, math.sin(step * w)) / unit
@@ -81,12 +102,14 @@ def point(
     turn = delay * w
     value = over * under * complex(math.cos(turn), -math.sin(turn))
     first *= speed
-    return value, complex(first.real, first.imag - delay), second * speed * speed + complex(0.0, step) * first
+    slope = complex(first.real, first.imag - delay)
+    return Point(w, value, slope, second * speed * speed + complex(0.0, step) * first)
 
 
 @compiled
-def signal(kind: int, level: float, value: complex, slope: complex, curvature: complex) -> tuple[float, float]:
+def signal(kind: int, at: Point) -> tuple[float, float]:  # noqa: PLR0911 - one return for each kind
     """Return the function whose zero is of a kind, and its derivative with respect to frequency."""
+    _, value, slope, curvature = at
     if kind == GAIN:
         return math.log(abs(value)), slope.real
     if kind == PHASE:
@@ -98,7 +121,7 @@ def signal(kind: int, level: float, value: complex, slope: complex, curvature: c
     share = value / (1.0 + value)
     inward = slope * share
     if kind == BANDWIDTH:
-        return math.log(abs(1.0 + value) * level), inward.real
+        return math.log(abs(1.0 + value) * LEVEL), inward.real
     inward_slope = share * (curvature + slope * slope) - inward * inward
     if kind == SENSITIVITY:
         return inward.real, inward_slope.real
@@ -106,24 +129,11 @@ def signal(kind: int, level: float, value: complex, slope: complex, curvature: c
 
 
 @compiled
-def zero(
-    roots: ComplexArray,
-    zeros: int,
-    gain: float,
-    delay: float,
-    step: float,
-    unit: float,
-    kind: int,
-    level: float,
-    low: float,
-    high: float,
-    rising: bool,
-) -> float:
+def zero(loop: LoopGain, kind: int, low: float, high: float, rising: bool) -> Point:
     """Return where a signal vanishes between two frequencies: Newton's method, or halving when it would leave them."""
     here = 0.5 * (low + high)
     for _ in range(_ROUNDS):
-        value, slope, curvature = point(roots, zeros, gain, delay, step, unit, here)
-        height, rate = signal(kind, level, value, slope, curvature)
+        height, rate = signal(kind, point(loop, here))
         if (height > 0.0) == rising:
             high = here
         else:
@@ -136,12 +146,13 @@ def zero(
         here = there
         if moved <= 4e-16 * here:
             break
-    return here
+    return point(loop, here)
 
 
 @compiled
-def _note(kind: int, value: complex, w: float, out: Array) -> None:
+def _note(kind: int, at: Point, out: Array) -> None:
     """Keep a crossing or a peak when it is the worst of its kind so far."""
+    w, value = at.w, at.gain
     size = abs(value)
     if kind == PHASE and size < 1.0 and size > out[LARGEST_BELOW_ONE]:
         out[LARGEST_BELOW_ONE], out[LARGEST_AT] = size, w
@@ -161,106 +172,70 @@ def _note(kind: int, value: complex, w: float, out: Array) -> None:
 
 
 @compiled
-def _present(kind: int, level: float, one: complex, one_slope: complex, two: complex, two_slope: complex) -> int:
+def _present(kind: int, one: Point, two: Point) -> int:
     """Return +1 or -1 when a zero of a kind lies between two points, as its signal rises or falls there; else 0."""
+    wanted = 0
     if kind == GAIN:
-        left, right = abs(one) > 1.0, abs(two) > 1.0
+        left, right = abs(one.gain) > 1.0, abs(two.gain) > 1.0
     elif kind == PHASE:
-        left, right = one.imag < 0.0, two.imag < 0.0
+        left, right = one.gain.imag < 0.0, two.gain.imag < 0.0
         # Through the negative real axis, not the positive: by the shorter way round.
-        if (two.real * one.imag - two.imag * one.real > 0.0) != left:
+        if ((one.gain * two.gain.conjugate()).imag > 0.0) != left:
             return 0
     elif kind == BANDWIDTH:
-        left, right = abs(1.0 + one) * level > 1.0, abs(1.0 + two) * level > 1.0
-        if right:
-            return 0
+        left, right = abs(1.0 + one.gain) * LEVEL > 1.0, abs(1.0 + two.gain) * LEVEL > 1.0
+        wanted = -1
     elif kind == SENSITIVITY:
-        left = (one_slope * one * (1.0 + one).conjugate()).real > 0.0
-        right = (two_slope * two * (1.0 + two).conjugate()).real > 0.0
-        if left:
-            return 0
+        left = (one.slope * one.gain * (1.0 + one.gain).conjugate()).real > 0.0
+        right = (two.slope * two.gain * (1.0 + two.gain).conjugate()).real > 0.0
+        wanted = 1
     else:
-        left = (one_slope * (1.0 + one).conjugate()).real > 0.0
-        right = (two_slope * (1.0 + two).conjugate()).real > 0.0
-        if right:
-            return 0
-    if left == right:
-        return 0
-    return 1 if right else -1
+        left = (one.slope * (1.0 + one.gain).conjugate()).real > 0.0
+        right = (two.slope * (1.0 + two.gain).conjugate()).real > 0.0
+        wanted = -1
+    direction = int(right) - int(left)
+    return direction if wanted in (0, direction) else 0
 
 
 @compiled
-def _crossings(
-    roots: ComplexArray,
-    zeros: int,
-    gain: float,
-    delay: float,
-    step: float,
-    unit: float,
-    level: float,
-    a: float,
-    one: complex,
-    one_slope: complex,
-    b: float,
-    two: complex,
-    two_slope: complex,
-    out: Array,
-) -> None:
-    """Find and note what lies between two frequencies."""
+def _crossings(loop: LoopGain, one: Point, two: Point, out: Array) -> None:
+    """Find and note what lies between two points."""
     for kind in range(5):
-        direction = _present(kind, level, one, one_slope, two, two_slope)
+        direction = _present(kind, one, two)
         if direction != 0:
-            w = zero(roots, zeros, gain, delay, step, unit, kind, level, a, b, direction > 0)
-            value, _, _ = point(roots, zeros, gain, delay, step, unit, w)
-            _note(kind, value, w, out)
+            _note(kind, zero(loop, kind, one.w, two.w, direction > 0), out)
 
 
 @compiled
-def _turn(one: complex, one_slope: complex, two: complex, two_slope: complex, kind: int) -> bool:
-    """Tell whether gain or phase turn round near the critical value, so that two crossings may hide between two points."""
+def _turns(kind: int, one: Point, two: Point) -> bool:
+    """Tell whether gain or phase turn round near the critical value: two crossings may hide between two points."""
     if kind == GAIN_TURN:
-        left, right = math.log(abs(one)), math.log(abs(two))
-        turns = (one_slope.real > 0.0) != (two_slope.real > 0.0)
+        left, right = math.log(abs(one.gain)), math.log(abs(two.gain))
+        turns = (one.slope.real > 0.0) != (two.slope.real > 0.0)
     else:
-        left, right = math.atan2(-one.imag, -one.real), math.atan2(-two.imag, -two.real)
-        turns = (one_slope.imag > 0.0) != (two_slope.imag > 0.0)
+        left, right = math.atan2(-one.gain.imag, -one.gain.real), math.atan2(-two.gain.imag, -two.gain.real)
+        turns = (one.slope.imag > 0.0) != (two.slope.imag > 0.0)
     return turns and (left > 0.0) == (right > 0.0) and min(abs(left), abs(right)) < _NEAR
 
 
 @compiled
-def _between(
-    roots: ComplexArray,
-    zeros: int,
-    gain: float,
-    delay: float,
-    step: float,
-    unit: float,
-    level: float,
-    a: float,
-    one: complex,
-    one_slope: complex,
-    b: float,
-    two: complex,
-    two_slope: complex,
-    out: Array,
-) -> None:
+def _between(loop: LoopGain, one: Point, two: Point, out: Array) -> None:
     """Find what lies between two points, first cutting where gain or phase turn round."""
     for kind in (GAIN_TURN, PHASE_TURN):
-        if _turn(one, one_slope, two, two_slope, kind):
-            rising = two_slope.real > 0.0 if kind == GAIN_TURN else two_slope.imag > 0.0
-            w = zero(roots, zeros, gain, delay, step, unit, kind, level, a, b, rising)
-            value, slope, _ = point(roots, zeros, gain, delay, step, unit, w)
-            _crossings(roots, zeros, gain, delay, step, unit, level, a, one, one_slope, w, value, slope, out)
-            a, one, one_slope = w, value, slope
-    _crossings(roots, zeros, gain, delay, step, unit, level, a, one, one_slope, b, two, two_slope, out)
+        if _turns(kind, one, two):
+            rising = two.slope.real > 0.0 if kind == GAIN_TURN else two.slope.imag > 0.0
+            middle = zero(loop, kind, one.w, two.w, rising)
+            _crossings(loop, one, middle, out)
+            one = middle
+    _crossings(loop, one, two, out)
 
 
 @compiled
 def _pieces(turn: float, size: float, out: Array) -> int:
     """Return in how many pieces to look at a step in which the dead time turns the phase far.
 
-    One will do when |L| is too small there for a margin less than those found. The grid resolves every root, so |L| does
-    not exceed its size at both ends by much.
+    One will do when |L| is too small there for a margin less than those found. The grid resolves every root, so |L|
+    does not exceed its size at both ends by much.
     """
     if turn <= _LONGEST_TURN:
         return 1
@@ -273,16 +248,27 @@ def _pieces(turn: float, size: float, out: Array) -> int:
 
 
 @compiled
-def scan(
-    w: Array,
-    roots: ComplexArray,
-    zeros: int,
-    gain: Array,
-    delay: Array,
-    step: float,
-    unit: float,
-    level: float,
-    out: Array,
+def _scan(loop: LoopGain, w: Array, out: Array) -> None:
+    """Find the worst crossings and peaks of one loop gain along its grid."""
+    out[:] = 0.0
+    out[SMALLEST_ANGLE], out[SMALLEST_DELAY], out[REACHED_AT] = math.inf, math.inf, math.inf
+    here = point(loop, w[0])
+    for i in range(1, w.shape[0]):
+        if w[i] == here.w:
+            continue
+        start, end = here.w, point(loop, w[i])
+        pieces = _pieces((end.w - start) * loop.delay, max(abs(here.gain), abs(end.gain)), out)
+        for piece in range(1, pieces):
+            ahead = point(loop, start + (end.w - start) * piece / pieces)
+            _between(loop, here, ahead, out)
+            here = ahead
+        _between(loop, here, end, out)
+        here = end
+
+
+@compiled
+def scan(  # noqa: PLR0913, PLR0917 - arrays in, arrays out
+    w: Array, roots: ComplexArray, zeros: int, gain: Array, delay: Array, step: float, unit: float, out: Array
 ) -> None:
     """Find the worst crossings and peaks of several loop gains.
 
@@ -291,31 +277,10 @@ def scan(
     w : ndarray, shape (rows, n)
         Rising frequencies for each loop, dense enough that each root of its gain and of 1 + L is resolved.
     roots : ndarray of complex, shape (rows, m)
-        See `point`.
+        See `LoopGain`, like those that follow.
     gain, delay : ndarray, shape (rows,)
-    level : float
-        Of abs(S), which ends the bandwidth.
     out : ndarray, shape (rows, COLUMNS)
         Receives what is found: 0 for the largest, infinity for the smallest where there is none.
     """
-    out[:] = 0.0
     for row in range(w.shape[0]):
-        mine = out[row]
-        mine[SMALLEST_ANGLE], mine[SMALLEST_DELAY], mine[REACHED_AT] = math.inf, math.inf, math.inf
-        here, args = roots[row], (zeros, gain[row], delay[row], step, unit)
-        a = w[row, 0]
-        one, one_slope, _ = point(here, *args, a)
-        for i in range(1, w.shape[1]):
-            end = w[row, i]
-            if end == a:
-                continue
-            last, last_slope, _ = point(here, *args, end)
-            pieces = _pieces((end - a) * delay[row], max(abs(one), abs(last)), mine)
-            start = a
-            for piece in range(1, pieces + 1):
-                b = end if piece == pieces else start + (end - start) * piece / pieces
-                two, two_slope = last, last_slope
-                if piece < pieces:
-                    two, two_slope, _ = point(here, *args, b)
-                _between(here, *args, level, a, one, one_slope, b, two, two_slope, mine)
-                a, one, one_slope = b, two, two_slope
+        _scan(LoopGain(roots[row], zeros, gain[row], delay[row], step, unit), w[row], out[row])

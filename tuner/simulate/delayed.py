@@ -98,7 +98,8 @@ def _starts(loop: Stack, nodes: int, branches: int) -> ComplexArray:
     found = np.concatenate(guesses).astype(complex)
     found = found[found.imag >= 0.0]
     step = np.abs(newton_step_in_s(loop, found))
-    return found[step <= 0.5 * np.maximum(np.abs(found), 1.0 / loop.delay[0])]
+    kept: ComplexArray = found[step <= 0.5 * np.maximum(np.abs(found), 1.0 / loop.delay[0])]
+    return kept
 
 
 def _chebyshev(loop: Stack, nodes: int) -> Array:
@@ -152,14 +153,14 @@ def _chain(loop: Stack, branches: int) -> ComplexArray:
         angle = np.angle(np.exp(1j * logarithm.imag) * -np.sign(loop.gain[0]))
         following = (logarithm.real + 1j * (angle + 2.0 * pi * m)) / delay
         s = np.where(np.isfinite(following), following, s)
-    return s
+    return s.astype(complex)
 
 
 def _found(loop: Stack, starts: ComplexArray) -> ComplexArray:
     """Return the roots that the starts lead to, with their conjugates, rightmost first."""
     starts = _distinct(starts)
     real = np.abs(starts.imag) <= 1e-9 * np.abs(starts)
-    both = np.concatenate((starts[real].real, starts[~real], starts[~real].conj()))
+    both = np.concatenate((starts[real].real, starts[~real], starts[~real].conj())).astype(complex)
     roots, error = together(loop, both, rounds=30)
     roots = roots[error < _CONVERGED]
     if loop.step:
@@ -190,8 +191,8 @@ def _distinct(values: ComplexArray) -> ComplexArray:
 def _lines(loop: Stack, values: ComplexArray, last: float) -> list[float]:
     """Return where to draw the line, best first: in gaps between roots, clear of them.
 
-    Three times as far left as the rightmost root or farther; if too many are there to find, just beyond the first few. A
-    root chain that does not bend left, at ln(last)/delay, stays left of the line.
+    Three times as far left as the rightmost root or farther; if too many are there to find, just beyond the first few.
+    A root chain that does not bend left, at ln(last)/delay, stays left of the line.
     """
     if not len(values):
         return []

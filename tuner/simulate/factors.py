@@ -78,7 +78,7 @@ class Stack:
     @property
     def excess(self) -> int:
         """Poles less zeros."""
-        return self.roots.shape[1] - 2 * self.zero_count
+        return int(self.roots.shape[1]) - 2 * self.zero_count
 
     @cached_property
     def sign(self) -> Array:
@@ -104,8 +104,8 @@ class Stack:
         return value
 
     def _x(self, w: Array) -> ComplexArray:
-        x: ComplexArray = np.expm1(1j * self.step * w) / self.unit if self.step else 1j * w / self.unit
-        return x
+        s: ComplexArray = np.asarray(1j * w, dtype=complex)
+        return to_x(s, self.step) / self.unit
 
 
 def stack(factors: Sequence[Factors]) -> Stack:
@@ -122,7 +122,9 @@ def stack(factors: Sequence[Factors]) -> Stack:
     step = factors[0].step
     unit = _unit(roots[0])
     gain = np.array([one.gain for one in factors]) * unit ** (zeros.shape[1] - poles.shape[1])
-    return Stack(roots / unit, zeros.shape[1], gain, np.array([one.delay for one in factors]), step, unit)
+    return Stack(
+        (roots / unit).astype(complex), zeros.shape[1], gain, np.array([one.delay for one in factors]), step, unit
+    )
 
 
 def to_s(x: ComplexArray, step: float) -> ComplexArray:
@@ -139,8 +141,7 @@ def to_s(x: ComplexArray, step: float) -> ComplexArray:
 
 def to_x(s: ComplexArray, step: float) -> ComplexArray:
     """Map s to x, the inverse of `to_s`."""
-    x: ComplexArray = np.expm1(s * step) if step else s
-    return x
+    return np.expm1(s * step).astype(complex) if step else s.astype(complex)
 
 
 def folded(frequency: Array, step: float) -> Array:

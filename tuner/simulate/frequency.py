@@ -31,7 +31,7 @@ def loop_response(loop: Loop, w: Array) -> ComplexArray:
         Infinite at w = 0 with an integrator.
     """
     w = np.asarray(w, dtype=float)
-    value = stack([loop.factors]).response(w)[0]
+    value: ComplexArray = stack([loop.factors]).response(w)[0]
     value[w == 0.0] = at_zero(loop.factors)
     return value
 

@@ -148,7 +148,7 @@ def _seen_at_samples(chains: tuple[Linear, ...], step: float) -> tuple[_Seen, ..
 
 
 def same_shape(loops: Sequence[Loop]) -> list[list[int]]:
-    """Return the places of loops whose gains have as many zeros and poles as each other, and can be evaluated as one."""
+    """Return the places of loops whose gains have equally many zeros and poles, and can be evaluated as one."""
     groups: dict[tuple[int, int, int, bool, float], list[int]] = {}
     for i, loop in enumerate(loops):
         factors = loop.factors

@@ -13,7 +13,7 @@ from tuner.simulate.frequency import at_end, at_zero, grid
 from tuner.simulate.loop import Loop, same_shape
 from tuner.simulate.traces import ComplexArray
 
-BANDWIDTH_LEVEL = 0.707
+BANDWIDTH_LEVEL = crossings.LEVEL
 """The sensitivity that ends the bandwidth: 0.707 as the measure is defined, not the square root of one half."""
 
 
@@ -67,9 +67,7 @@ def margins(loops: Sequence[Loop], poles: Sequence[ComplexArray]) -> tuple[Margi
         rows = stack([loops[i].factors for i in places])
         w = grid(rows, _padded([poles[i] for i in places]))
         out = np.empty((rows.rows, crossings.COLUMNS))
-        crossings.scan(
-            w, rows.roots, rows.zero_count, rows.gain, rows.delay, rows.step, rows.unit, BANDWIDTH_LEVEL, out
-        )
+        crossings.scan(w, rows.roots, rows.zero_count, rows.gain, rows.delay, rows.step, rows.unit, out)
         for place, row in zip(places, out.tolist(), strict=True):
             found[place] = _margins(loops[place], row)
     return tuple(found[i] for i in range(len(loops)))
@@ -128,9 +126,8 @@ def _margins(loop: Loop, found: list[float]) -> Margins:
 
 def _gain_margin(size: float, at: float, ends: tuple[_End, _End]) -> tuple[float, float | None]:
     candidates = [(1.0 / size, at)] if size else []
-    for end in ends:
-        if 0.0 < abs(end.gain) < 1.0 and (end.gain < 0.0 or end.turning):
-            candidates.append((1.0 / abs(end.gain), end.at))
+    small = [end for end in ends if 0.0 < abs(end.gain) < 1.0]
+    candidates += [(1.0 / abs(end.gain), end.at) for end in small if end.gain < 0.0 or end.turning]
     return min(candidates) if candidates else (inf, None)
 
 

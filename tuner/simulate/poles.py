@@ -64,8 +64,7 @@ def family_poles(loops: Sequence[Loop]) -> tuple[Poles, ...]:
     """Return the poles of several loops; together they take less time than one by one. See `closed_loop_poles`."""
     found: dict[int, Poles] = {}
     for places in same_shape(loops):
-        for place, poles in zip(places, _of_shape([loops[i] for i in places]), strict=True):
-            found[place] = poles
+        found |= dict(zip(places, _of_shape([loops[i] for i in places]), strict=True))
     return tuple(found[i] for i in range(len(loops)))
 
 
@@ -119,7 +118,8 @@ def _scale(modes: ComplexArray) -> Array:
     sizes = np.abs(modes)
     usable = np.isfinite(sizes) & (sizes > 0.0)
     logarithm = np.log(np.where(usable, sizes, 1.0)).sum(1) / np.maximum(usable.sum(1), 1)
-    return np.exp(logarithm)
+    scale: Array = np.exp(logarithm)
+    return scale
 
 
 def _delayed(loop: Loop, row: Stack) -> Poles:
@@ -160,7 +160,8 @@ def _finite(loops: Sequence[Loop], rows: Stack) -> list[Poles]:
     if not loops:
         return []
     matrices = _sampled_matrices(loops) if rows.step else _continuous_matrices(loops)
-    x = _refined(rows, np.linalg.eigvals(matrices).astype(complex) / rows.unit) * rows.unit
+    eigenvalues: ComplexArray = (np.linalg.eigvals(matrices) / rows.unit).astype(complex)
+    x = _refined(rows, eigenvalues) * rows.unit
     s = to_s(x, rows.step)
     if rows.step:
         s[np.abs(1.0 + x) <= _DEADBEAT] = -np.inf
@@ -182,7 +183,7 @@ def _refined(rows: Stack, x: ComplexArray) -> ComplexArray:
     poor = (np.abs(step) > _SURE * np.maximum(np.abs(x), 1e-6)).any(1)
     refined = x - step
     refined = np.where(x.imag < 0.0, np.roll(refined, 1, axis=1).conj(), refined)
-    for row in np.flatnonzero(poor):
+    for row in np.flatnonzero(poor).tolist():
         live = ~deadbeat[row]
         refined[row, live] = _together(rows.take([row]), x[row, live])
     return refined
@@ -199,7 +200,7 @@ def _together(row: Stack, x: ComplexArray) -> ComplexArray:
     if row.step:
         real |= own
     above = roots[~real & (roots.imag > 0.0)]
-    found = np.concatenate((roots[real].real, above, above.conj()))
+    found = np.concatenate((roots[real].real, above, above.conj())).astype(complex)
     return found if len(found) == len(x) and (error < 1e-3).all() else x
 
 

@@ -87,7 +87,8 @@ def _zeros(a: Array, b: Array, c: Array, x0: float) -> tuple[ComplexArray, Array
     closed = np.where((value != 0.0)[:, None, None], closed, 0.0)
     m = np.linalg.eigvals(_deflated(closed, left)).astype(complex)
     tiny = np.abs(m) < 1e-30
-    return x0 + 1.0 / np.where(tiny, 1e-30, m), value
+    zeros = x0 + 1.0 / np.where(tiny, 1e-30, m)
+    return zeros.astype(complex), np.asarray(value)
 
 
 def _views(near: float) -> list[float]:

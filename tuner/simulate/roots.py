@@ -5,7 +5,8 @@ from math import pi
 import numpy as np
 
 from tuner.kernels import characteristic
-from tuner.simulate.factors import Stack
+from tuner.kernels.crossings import LoopGain
+from tuner.simulate.factors import Stack, to_x
 from tuner.simulate.traces import Array, ComplexArray
 
 _MOST_POINTS = 200_000
@@ -69,21 +70,21 @@ def together(loop: Stack, start: ComplexArray, rounds: int = 60) -> tuple[Comple
     """
     s = start * (1.0 + 1e-12 * np.arange(len(start)))
     error = np.full(len(s), np.inf)
-    characteristic.aberth(*_numbers(loop), s, rounds, error)
+    characteristic.aberth(_numbers(loop), s, rounds, error)
     return s, error
 
 
 def newton_step_in_s(loop: Stack, s: ComplexArray) -> ComplexArray:
     """Return Newton's steps from points in s, for one row with any delay."""
-    return np.array([characteristic.newton_step(*_numbers(loop), value) for value in s.tolist()], dtype=complex)
+    return np.array([characteristic.newton_step(_numbers(loop), value) for value in s.tolist()], dtype=complex)
 
 
-def _numbers(loop: Stack) -> tuple[ComplexArray, int, float, float, float, float]:
-    return loop.roots[0], loop.zero_count, float(loop.gain[0]), float(loop.delay[0]), loop.step, loop.unit
+def _numbers(loop: Stack) -> LoopGain:
+    return LoopGain(loop.roots[0], loop.zero_count, float(loop.gain[0]), float(loop.delay[0]), loop.step, loop.unit)
 
 
 def count_right(loop: Stack, line: float) -> int | None:
-    """Return how many zeros of 1 + L lie right of Re s = line, by the argument principle; None when it is too far to see.
+    """Return how many zeros of 1 + L lie right of Re s = line, by the argument principle; None if it is too long.
 
     The angle of D (1 + L) = D + N is followed up the line, in steps halved until each turns by less than a radian;
     there are no poles to count, and none to avoid. For a continuous loop it is followed as far as |L| may exceed one;
@@ -100,8 +101,8 @@ def count_right(loop: Stack, line: float) -> int | None:
     y = _way(loop, line)
     if y is None:
         return None
-    order = loop.roots.shape[1] - loop.zero_count
-    turned = characteristic.turned(*_numbers(loop), line, y)
+    order = int(loop.roots.shape[1]) - loop.zero_count
+    turned = characteristic.turned(_numbers(loop), line, y)
     if loop.step:
         return round(order - turned / pi)
     return round(0.5 * order - (turned + _rest(loop, line + 1j * float(y[-1]))) / pi)
@@ -130,7 +131,7 @@ _AROUND = np.array((-3.0, -1.0, -0.3, 0.3, 1.0, 3.0))
 def _last(loop: Stack, line: float, largest: float) -> float:
     """Return a frequency above which |L| on the line stays below one, as far as a wide logarithmic grid can tell."""
     y = largest * np.geomspace(1e-6, 1e9, 400)
-    size = np.abs(_gain(loop, line + 1j * y))
+    size = np.abs(_gain(loop, (line + 1j * y).astype(complex)))
     large = np.flatnonzero(size > max(0.95, 0.5 * (1.0 + float(size[-1]))))
     beyond = float(y[min(large[-1] + 1, len(y) - 1)]) if len(large) else float(y[0])
     # Above every pole, the way to each of them turns no further than to straight up.
@@ -139,7 +140,7 @@ def _last(loop: Stack, line: float, largest: float) -> float:
 
 def _gain(loop: Stack, s: ComplexArray) -> ComplexArray:
     with np.errstate(all="ignore"):
-        x = np.expm1(s * loop.step) / loop.unit if loop.step else s / loop.unit
+        x = to_x(s, loop.step) / loop.unit
         value: ComplexArray = _parts(loop, x[None])[0][0] * np.exp(-loop.delay[0] * s)
     return value
 

@@ -1,4 +1,4 @@
-"""Transfer functions of the controller's blocks and of a continuous plant as factors; in s, or in z - 1 when sampled."""
+"""Transfer functions of the controller's blocks and of a continuous plant, as factors in s or in z - 1."""
 
 from math import sqrt, tan
 
