@@ -15,7 +15,7 @@ from tuner.simulate.linear import from_zeros_poles
 from tuner.simulate.roots import count_right, newton_step_in_s, together
 from tuner.simulate.traces import Array, ComplexArray
 
-_EFFORT = ((16, 8), (32, 24), (64, 80))
+_EFFORT = ((0, 6), (16, 8), (32, 24), (64, 80))
 """Chebyshev pieces and branches of the chain, more and more until nothing is missing."""
 _CONVERGED = 1e-9
 _KEPT = 60
@@ -90,7 +90,7 @@ def _starts(loop: Stack, nodes: int, branches: int) -> ComplexArray:
     chain = _chain(loop, branches)
     modes = loop.modes[0]
     guesses = [chain, modes[np.isfinite(modes)] * (1.0 + 1e-3) - 1e-3 / loop.delay[0]]
-    if not loop.step and loop.excess >= 0 and _last_gain(loop) != 1.0:
+    if nodes and not loop.step and loop.excess >= 0:
         values = np.linalg.eigvals(_chebyshev(loop, nodes))
         values = values[np.argsort(-values.real)]
         guesses[1:] = [values[: max(_KEPT, nodes)]]

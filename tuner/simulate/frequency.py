@@ -9,8 +9,8 @@ from tuner.simulate.factors import Factors, Stack, stack
 from tuner.simulate.loop import Loop
 from tuner.simulate.traces import Array, ComplexArray
 
-_PER_DECADE = 12
-_AROUND = np.array((-10.0, -4.0, -1.7, -0.7, -0.2, 0.2, 0.7, 1.7, 4.0, 10.0))
+_PER_DECADE = 9
+_AROUND = np.array((-8.0, -2.5, -0.9, -0.2, 0.2, 0.9, 2.5, 8.0))
 """Where to look around a lightly damped root, in units of its decay rate."""
 _TURNS = 8.0 * pi
 """The phase of the dead time that is looked at closely from the start, rad."""

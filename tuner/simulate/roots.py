@@ -10,6 +10,7 @@ from tuner.simulate.factors import Stack, to_x
 from tuner.simulate.traces import Array, ComplexArray
 
 _MOST_POINTS = 200_000
+_WIDE = np.geomspace(1e-6, 1e9, 151)
 
 
 def newton_steps(loops: Stack, x: ComplexArray) -> ComplexArray:
@@ -130,7 +131,7 @@ _AROUND = np.array((-3.0, -1.0, -0.3, 0.3, 1.0, 3.0))
 
 def _last(loop: Stack, line: float, largest: float) -> float:
     """Return a frequency above which |L| on the line stays below one, as far as a wide logarithmic grid can tell."""
-    y = largest * np.geomspace(1e-6, 1e9, 400)
+    y = largest * _WIDE
     size = np.abs(_gain(loop, (line + 1j * y).astype(complex)))
     large = np.flatnonzero(size > max(0.95, 0.5 * (1.0 + float(size[-1]))))
     beyond = float(y[min(large[-1] + 1, len(y) - 1)]) if len(large) else float(y[0])
