@@ -7,7 +7,7 @@ connect array, and the ground they cover is one item of vertical strokes.
 
 import numpy as np
 import pyqtgraph as pg
-from PySide6.QtCore import Qt
+from PySide6.QtCore import QRectF, Qt
 from PySide6.QtGui import QColor, QPainter, QTransform
 from PySide6.QtWidgets import QStyleOptionGraphicsItem, QWidget
 
@@ -31,21 +31,29 @@ class Curve(pg.PlotCurveItem):  # type: ignore[misc]  # pyqtgraph publishes no t
     def __init__(self, *, strong: bool = False, smooth: bool = True, depth: float = 0.0) -> None:
         super().__init__(antialias=smooth, skipFiniteCheck=True)
         self._offsets = _STRONG if strong else _PLAIN
+        self._bounds = QRectF()
         self.setZValue(depth)
         self.setSegmentedLineMode("on")
 
     def show_points(self, points: Points) -> None:
         """Show the points of a curve, or of several joined by their connect array."""
+        self._bounds = _bounds(points)
         connect = "all" if points.connect is None else points.connect
         self.setData(points.x, points.y, connect=connect)
 
     def show_pairs(self, points: Points) -> None:
         """Show every two points as a stroke of its own."""
+        self._bounds = _bounds(points)
         self.setData(points.x, points.y, connect="pairs")
 
     def clear_points(self) -> None:
         """Show nothing."""
+        self._bounds = QRectF()
         self.setData(np.empty(0), np.empty(0), connect="all")
+
+    def boundingRect(self) -> QRectF:
+        """Return where the points lie, with room for the stroke; found once for each curve, not at every question."""
+        return self._bounds
 
     def paint(self, painter: QPainter, option: QStyleOptionGraphicsItem, widget: QWidget | None) -> None:
         """Paint the stroke, several times when it is a strong one."""
@@ -68,6 +76,16 @@ class Poles(pg.ScatterPlotItem):  # type: ignore[misc]  # pyqtgraph publishes no
     def show_poles(self, re: np.ndarray, im: np.ndarray, colour: QColor, width: float) -> None:
         """Show crosses at real and imaginary parts."""
         self.setData(re, im, pen=pg.mkPen(colour, width=width), brush=None)
+
+
+def _bounds(points: Points) -> QRectF:
+    """Return a rectangle around points, wider by a hundredth of their reach: a few pixels at any size of plot."""
+    if not points.x.size:
+        return QRectF()
+    left, right = float(points.x.min()), float(points.x.max())
+    low, high = float(points.y.min()), float(points.y.max())
+    x, y = 0.01 * (right - left), 0.01 * (high - low) + 1e-9
+    return QRectF(left - x, low - y, right - left + 2.0 * x, high - low + 2.0 * y)
 
 
 def pen(colour: QColor, width: float = 1.0) -> object:

@@ -4,7 +4,7 @@ from collections.abc import Iterable
 from math import isinf
 
 import pyqtgraph as pg
-from PySide6.QtCore import QPointF, QRectF, Qt
+from PySide6.QtCore import QPointF, QRectF, QSizeF, Qt
 from PySide6.QtGui import QBrush, QColor, QFontMetricsF, QPainter, QPen, QPolygonF, QTransform
 from PySide6.QtWidgets import QStyleOptionGraphicsItem, QWidget
 
@@ -13,6 +13,8 @@ from tuner.window.plots.placing import Box, place_words
 from tuner.window.theme import Theme
 
 _GAP = 4.0
+_REMEMBERED = 500
+"""Texts whose width is remembered."""
 
 
 class Layer(pg.GraphicsObject):  # type: ignore[misc]  # pyqtgraph publishes no types
@@ -63,7 +65,7 @@ class GroundLayer(Layer):
     def draw(self, painter: QPainter, place: QTransform, frame: QRectF) -> None:
         """Paint the areas and the grid."""
         for area in sorted(self.areas, key=lambda area: area.hatched):
-            _fill(painter, _polygon(area, place, frame), self._theme.colour(area.role), hatched=area.hatched)
+            _fill(painter, area, _polygon(area, place, frame), self._theme.colour(area.role))
         painter.setPen(QPen(self._theme.colour("grid"), 1.0))
         for at in self.columns:
             x = _crisp(place.map(QPointF(at, 0.0)).x())
@@ -81,6 +83,8 @@ class MarkLayer(Layer):
         self.strokes: tuple[Stroke, ...] = ()
         self.words: tuple[Words, ...] = ()
         self.pointer: tuple[float, float] | None = None
+        self._metrics = QFontMetricsF(theme.font("small"))
+        self._widths: dict[str, float] = {}
 
     def show_marks(self, marks: Marks, more: Iterable[Words] = ()) -> None:
         """Show strokes and words, and the names of curves beside them."""
@@ -97,10 +101,8 @@ class MarkLayer(Layer):
             self._draw_pointer(painter, _pixel(*self.pointer, place, frame), frame)
 
     def _draw_words(self, painter: QPainter, place: QTransform, frame: QRectF) -> None:
-        font = self._theme.font("small")
-        painter.setFont(font)
-        metrics = QFontMetricsF(font)
-        boxes = [_box(word, metrics, _pixel(word.x, word.y, place, frame)) for word in self.words]
+        painter.setFont(self._theme.font("small"))
+        boxes = [_box(word, self._size(word.text), _pixel(word.x, word.y, place, frame)) for word in self.words]
         seen = Box(frame.left(), frame.top(), frame.right(), frame.bottom())
         ground = self._theme.colour("page")
         ground.setAlpha(200)
@@ -108,7 +110,15 @@ class MarkLayer(Layer):
             if box is not None:
                 painter.fillRect(QRectF(box.left, box.top, box.width, box.height), ground)
                 painter.setPen(self._theme.colour(word.role))
-                painter.drawText(QPointF(box.left, box.top + metrics.ascent()), word.text)
+                painter.drawText(QPointF(box.left, box.top + self._metrics.ascent()), word.text)
+
+    def _size(self, text: str) -> QSizeF:
+        """Return the size of words; measured once, since the same ones come with every answer."""
+        if len(self._widths) > _REMEMBERED:
+            self._widths.clear()
+        if text not in self._widths:
+            self._widths[text] = self._metrics.horizontalAdvance(text)
+        return QSizeF(self._widths[text], self._metrics.height())
 
     def _draw_pointer(self, painter: QPainter, at: QPointF, frame: QRectF) -> None:
         painter.setPen(QPen(self._theme.colour("quiet"), 1.0))
@@ -126,17 +136,26 @@ def _stroke_pen(stroke: Stroke, colour: QColor) -> QPen:
     return pen
 
 
-def _fill(painter: QPainter, polygon: QPolygonF, colour: QColor, *, hatched: bool) -> None:
-    style = Qt.BrushStyle.BDiagPattern if hatched else Qt.BrushStyle.SolidPattern
-    painter.setPen(Qt.PenStyle.NoPen)
-    if hatched:
+def _fill(painter: QPainter, area: Area, polygon: QPolygonF, colour: QColor) -> None:
+    style = Qt.BrushStyle.BDiagPattern if area.hatched else Qt.BrushStyle.SolidPattern
+    if area.hatched:
         colour.setAlpha(110)
-    painter.setBrush(QBrush(colour, style))
+    brush = QBrush(colour, style)
+    if area.upright:
+        painter.fillRect(polygon.boundingRect(), brush)
+        return
+    painter.setPen(Qt.PenStyle.NoPen)
+    painter.setBrush(brush)
     painter.drawPolygon(polygon)
 
 
 def _polygon(area: Area, place: QTransform, frame: QRectF) -> QPolygonF:
-    return QPolygonF([_pixel(x, y, place, frame) for x, y in area.corners])
+    """Return the part of an area that is seen, in pixels: filling what is not takes its time all the same."""
+    whole = QPolygonF([_pixel(x, y, place, frame) for x, y in area.corners])
+    near = frame.adjusted(-2.0, -2.0, 2.0, 2.0)
+    if area.upright:
+        return QPolygonF(whole.boundingRect().intersected(near))
+    return whole.intersected(QPolygonF(near))
 
 
 def _pixel(x: float, y: float, place: QTransform, frame: QRectF) -> QPointF:
@@ -152,9 +171,9 @@ def _crisp(at: float) -> float:
     return float(int(max(min(at, 1e7), -1e7))) + 0.5
 
 
-def _box(word: Words, metrics: QFontMetricsF, at: QPointF) -> Box:
+def _box(word: Words, size: QSizeF, at: QPointF) -> Box:
     """Return the box of words that touch a point, a gap away from it."""
-    width, height = metrics.horizontalAdvance(word.text), metrics.height()
+    width, height = size.width(), size.height()
     left = {"left": at.x() + _GAP, "right": at.x() - width - _GAP, "centre": at.x() - width / 2}[word.anchor]
     top = {"above": at.y() - height - 1.0, "below": at.y() + 2.0, "middle": at.y() - height / 2}[word.side]
     return Box(left, top, left + width, top + height)

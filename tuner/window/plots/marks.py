@@ -22,6 +22,12 @@ class Area:
     role: str
     hatched: bool = False
 
+    @property
+    def upright(self) -> bool:
+        """Whether it is a rectangle along the axes, which is filled faster than any other shape."""
+        across, upwards = ({corner[axis] for corner in self.corners} for axis in (0, 1))
+        return len(self.corners) == 4 and len(across) == len(upwards) == 2
+
 
 @dataclass(frozen=True, slots=True)
 class Stroke:

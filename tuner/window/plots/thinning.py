@@ -62,7 +62,7 @@ def single(t: Array, y: Array, seen: Extent, bins: int) -> Points:
 
 
 def bundle(t: Array, curves: Array, seen: Extent, bins: int) -> Points:
-    """Return many curves as one."""
+    """Return many curves, clipped and thinned, as one."""
     if not curves.size:
         return Points(np.empty(0), np.empty(0), np.empty(0, dtype=np.int32))
     x, y = thinned(t, clipped(curves, seen), bins)
@@ -75,10 +75,9 @@ def envelope(t: Array, curves: Array, seen: Extent, columns: int) -> Points:
     """Return the ground that curves cover, as one vertical stroke for each column of pixels."""
     if not curves.size:
         return Points(np.empty(0), np.empty(0))
-    held = clipped(curves, seen)
     at = np.linspace(t[0], t[-1], max(columns, 2))
-    low = np.interp(at, t, held.min(axis=0))
-    high = np.interp(at, t, held.max(axis=0))
+    low = np.interp(at, t, clipped(np.fmin.reduce(curves, axis=0), seen))
+    high = np.interp(at, t, clipped(np.fmax.reduce(curves, axis=0), seen))
     return Points(np.repeat(at, 2), np.column_stack((low, high)).ravel())
 
 

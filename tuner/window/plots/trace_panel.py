@@ -56,6 +56,22 @@ class Lines:
     limited: Limited | None = None
 
 
+@dataclass(frozen=True, slots=True, eq=False)
+class _Drawn:
+    """What a family was drawn from, and for which picture."""
+
+    family: Array
+    seen: Extent
+    columns: int
+    shade: str
+
+    def same_as(self, other: "_Drawn | None") -> bool:
+        """Tell whether the picture would be the same."""
+        if other is None or other.family is not self.family:
+            return False
+        return (other.seen, other.columns, other.shade) == (self.seen, self.columns, self.shade)
+
+
 class TracePanel(Panel):
     """A plot over time; subclasses say which curves."""
 
@@ -65,6 +81,7 @@ class TracePanel(Panel):
         self._lines: Lines | None = None
         self._marks = Marks()
         self._steady = SteadyExtent()
+        self._drawn: _Drawn | None = None
         self.band = Curve(smooth=False, depth=-50.0)
         self.family = Curve(smooth=False, depth=-40.0)
         self.kept: list[Curve] = []
@@ -171,9 +188,14 @@ class TracePanel(Panel):
         return pen(self._theme.colour("kept" if self.stale and role != "band" else role))
 
     def _draw_family(self, lines: Lines, seen: Extent, columns: int) -> None:
-        self.band.setPen(pen(self._theme.colour("band"), 2.0))
+        """Draw the family, unless it is drawn already: a first answer leaves it as it was."""
+        drawn = _Drawn(lines.family, seen, columns, self._theme.palette.shade)
+        if drawn.same_as(self._drawn):
+            return
+        self._drawn = drawn
+        self.band.setPen(pen(self._theme.colour("band")))
         self.family.setPen(pen(self._theme.colour("family")))
-        self.band.show_pairs(thinning.envelope(lines.family_t, lines.family, seen, columns))
+        self.band.show_pairs(thinning.envelope(lines.family_t, lines.family, seen, columns * 3 // 2))
         self.family.show_points(thinning.bundle(lines.family_t, lines.family, seen, min(_FAMILY_BINS, columns // 2)))
 
     def _draw_kept(self, lines: Lines, seen: Extent, columns: int) -> None:
@@ -334,5 +356,5 @@ def _family(curves: list[tuple[Array, Array]]) -> tuple[Array, Array]:
     if not curves:
         return np.empty(0), np.empty((0, 0))
     t = curves[0][0]
-    same = all(other.size == t.size and np.array_equal(other, t) for other, _ in curves[1:])
+    same = all(other is t or np.array_equal(other, t) for other, _ in curves[1:])
     return t, np.stack([y if same else np.interp(t, times, y) for times, y in curves])
