@@ -86,8 +86,9 @@ def method_of_steps(halves: Delayed, reference: float, disturbance: float, times
         start, end = k * late, (k + 1) * late
         solved = solve_ivp(slope, (start, end), x, "DOP853", rtol=1e-9, atol=1e-11, dense_output=True, args=(arriving,))
         here = (times > start) & (times <= end) | ((times == 0.0) & (k == 0))
-        state = solved.sol(times[here])
-        out[here] = outer.C[0] @ state[:order] + outer.D[0, 0] * arriving(times[here])
+        if here.any():
+            state = solved.sol(times[here])
+            out[here] = outer.C[0] @ state[:order] + outer.D[0, 0] * arriving(times[here])
         sent = Chebyshev.interpolate(
             lambda t, sol=solved.sol, known=arriving: effort(sol(t), known(t)) + disturbance, _DEGREE, (start, end)
         )

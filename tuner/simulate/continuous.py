@@ -170,7 +170,9 @@ def _extrapolated(sheet: Sheet, coarse: Runs, fine: Runs, algebraic: bool) -> Ru
     y = _beyond(coarse.y, fine.y[..., ::2], scales)
     u = _effort(coarse.u, fine.u[..., ::2], fine.limited)
     if algebraic:
-        u[..., 0] = fine.u[..., 1]
+        # A loop of direct gain settles within the first step, so the coarse run knows nothing before its second.
+        y[..., 1] = fine.y[..., 2] + (fine.y[..., 4] - coarse.y[..., 2])
+        u[..., 0] = _start(coarse.u, fine.u, fine.limited)
     return Runs(y, u, fine.limited[..., ::2])
 
 
@@ -185,3 +187,12 @@ def _effort(coarse: Array, fine: Array, limited: NDArray[np.bool_]) -> Array:
     u = np.where(free, 2.0 * fine - coarse, fine)
     u[..., 0] = fine[..., 0]
     return np.asarray(u)
+
+
+def _start(coarse: Array, fine: Array, limited: NDArray[np.bool_]) -> Array:
+    """Return the effort just after time 0: that of the next steps led back by a parabola, where no limit was met."""
+
+    def led_back(u: Array) -> Array:
+        return np.asarray(3.0 * (u[..., 1] - u[..., 2]) + u[..., 3])
+
+    return np.where(limited.any(axis=-1), fine[..., 1], 2.0 * led_back(fine) - led_back(coarse))
