@@ -5,18 +5,19 @@ that every dead time makes, and the roots of the loop gain. What is found is exa
 characteristic function; that nothing is missing is shown by the argument principle.
 """
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from math import inf, log, pi
 
 import numpy as np
 
-from tuner.simulate.factors import Stack, folded
+from tuner.simulate.factors import Factors, Stack, folded, stack
 from tuner.simulate.linear import from_zeros_poles
 from tuner.simulate.roots import count_right, newton_step_in_s, together
 from tuner.simulate.traces import Array, ComplexArray
 
 _EFFORT = ((0, 6), (16, 8), (32, 24), (64, 80))
 """Chebyshev pieces and branches of the chain, more and more until nothing is missing."""
+_FEW, _TURNS_TRIED = 8, 50
 _CONVERGED = 1e-9
 _KEPT = 60
 _NEAREST = 0.98
@@ -89,17 +90,32 @@ def _starts(loop: Stack, nodes: int, branches: int) -> ComplexArray:
     """Return guesses in the upper half plane, the rightmost of each kind."""
     chain = _chain(loop, branches)
     modes = loop.modes[0]
-    guesses = [chain, modes[np.isfinite(modes)] * (1.0 + 1e-3) - 1e-3 / loop.delay[0]]
-    if nodes and not loop.step and loop.excess >= 0:
-        values = np.linalg.eigvals(_chebyshev(loop, nodes))
+    modes = modes[np.isfinite(modes)]
+    guesses = [chain, modes * (1.0 + 1e-3) - 1e-3 / loop.delay[0]]
+    if nodes:
+        guesses += [modes + shift / loop.delay[0] for shift in (0.4, -0.4, 0.4j, -0.4j)]
+    alike = _slow_part(loop) if nodes and loop.step else loop
+    if nodes and alike.excess >= 0:
+        values = np.linalg.eigvals(_chebyshev(alike, nodes))
         values = values[np.argsort(-values.real)]
-        guesses[1:] = [values[: max(_KEPT, nodes)]]
+        guesses += [values[: max(_KEPT, nodes)]]
         guesses[0] = chain[np.abs(chain.imag) * loop.delay[0] > nodes]
     found = np.concatenate(guesses).astype(complex)
     found = found[found.imag >= 0.0]
     step = np.abs(newton_step_in_s(loop, found))
     kept: ComplexArray = found[step <= 0.5 * np.maximum(np.abs(found), 1.0 / loop.delay[0])]
     return kept
+
+
+def _slow_part(loop: Stack) -> Stack:
+    """Return the continuous loop that a sampled one is much like at low frequency: for guesses."""
+    modes, count = loop.modes[0], loop.zero_count
+    slow = np.abs(modes) * loop.step < 1.0
+    zeros, poles = modes[:count][slow[:count]], modes[count:][slow[count:]]
+    alike = stack([Factors(zeros, poles, 1.0, float(loop.delay[0]), 0.0)])
+    w = np.array([1.0 / float(loop.delay[0])])
+    ratio = float((loop.response(w) / alike.response(w))[0, 0].real)
+    return replace(alike, gain=alike.gain * ratio)
 
 
 def _chebyshev(loop: Stack, nodes: int) -> Array:
@@ -139,9 +155,12 @@ def _differentiation(nodes: int) -> Array:
 
 
 def _chain(loop: Stack, branches: int) -> ComplexArray:
-    """Return approximate roots of exp(delay s) = -R(s), one for each turn: s = (ln(-R(s)) + 2 pi j m)/delay."""
+    """Return approximate roots of exp(delay s) = -R(s), one for each turn: s = (ln(-R(s)) + 2 pi j m)/delay.
+
+    A resonance far up the chain may hold the rightmost, so more turns are tried than the rightmost that are returned.
+    """
     delay = float(loop.delay[0])
-    m = np.arange(branches, dtype=float)
+    m = np.arange(branches * _TURNS_TRIED if branches > _FEW or loop.step else branches, dtype=float)
     if loop.step:
         m = m[: int(0.5 * delay / loop.step) + 2]
     s = 1j * (2.0 * pi * m + pi) / delay
@@ -153,7 +172,7 @@ def _chain(loop: Stack, branches: int) -> ComplexArray:
         angle = np.angle(np.exp(1j * logarithm.imag) * -np.sign(loop.gain[0]))
         following = (logarithm.real + 1j * (angle + 2.0 * pi * m)) / delay
         s = np.where(np.isfinite(following), following, s)
-    return s.astype(complex)
+    return s[np.argsort(-s.real)[:branches]].astype(complex)
 
 
 def _found(loop: Stack, starts: ComplexArray) -> ComplexArray:

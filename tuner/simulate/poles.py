@@ -129,6 +129,7 @@ def _delayed(loop: Loop, row: Stack) -> Poles:
         listed,
         stable=listed.stable and not found.reason and found.count_unstable == 0,
         count_unstable=max(listed.count_unstable, found.count_unstable),
+        growth=max(listed.growth, 0.0) if found.count_unstable else listed.growth,
         complete=False,
         known_from=found.known_from,
         reason=found.reason,

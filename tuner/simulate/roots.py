@@ -102,11 +102,14 @@ def count_right(loop: Stack, line: float) -> int | None:
     y = _way(loop, line)
     if y is None:
         return None
+    end = np.array([line + 1j * y[-1]])
+    if not loop.step and not abs(_gain(loop, end)[0]) < 1.0:
+        return None
     order = int(loop.roots.shape[1]) - loop.zero_count
     turned = characteristic.turned(_numbers(loop), line, y)
     if loop.step:
         return round(order - turned / pi)
-    return round(0.5 * order - (turned + _rest(loop, line + 1j * float(y[-1]))) / pi)
+    return round(0.5 * order - (turned + _rest(loop, end)) / pi)
 
 
 def _way(loop: Stack, line: float) -> Array | None:
@@ -146,8 +149,8 @@ def _gain(loop: Stack, s: ComplexArray) -> ComplexArray:
     return value
 
 
-def _rest(loop: Stack, s: complex) -> float:
-    """Return by how much D + N turns from `s` straight up, where |L| stays below one: 1 + L ends near one."""
+def _rest(loop: Stack, s: ComplexArray) -> float:
+    """Return by how much D + N turns from one point straight up, where |L| stays below one: 1 + L ends near one."""
     poles = loop.roots[0, loop.zero_count :] * loop.unit
     behind = float((0.5 * pi - np.angle(s - poles)).sum())
-    return behind - float(np.angle(1.0 + _gain(loop, np.array([s])))[0])
+    return behind - float(np.angle(1.0 + _gain(loop, s))[0])
