@@ -34,8 +34,8 @@ def test_a_controller_is_delivered(qtbot: QtBot, tmp_path: Path) -> None:
         dialog.accept_unmet.setChecked(True)
     qtbot.waitUntil(dialog.deliver_button.isEnabled)
     click(dialog.deliver_button)
-    qtbot.waitUntil(lambda: not dialog.busy and bool(dialog.result_words.text()), timeout=PATIENCE)
-    assert dialog.result_words.text().startswith("Delivered to")
+    qtbot.waitUntil(lambda: not dialog.busy and bool(dialog.outcome.toPlainText()), timeout=PATIENCE)
+    assert dialog.outcome.toPlainText().startswith("Delivered to")
     proof = json.loads((folder / "proof.json").read_text(encoding="utf-8"))
     assert {entry["file"] for entry in proof} >= {"controller.py"}
     assert (folder / "controller.json").is_file()

@@ -17,6 +17,7 @@ from tuner.places import sample_plants
 from tuner.session.document import Document
 from tuner.window import app, memory
 from tuner.window.app import built, open_window, opened
+from tuner.window.main_window import MainWindow
 
 ROOT = Path(__file__).parents[2]
 
@@ -57,7 +58,7 @@ def test_the_window_runs_until_it_is_closed(qtbot: QtBot, monkeypatch: pytest.Mo
     monkeypatch.setattr(app, "Asking", lambda _window: Answers(unsaved="discard"))
 
     def close_when_answered() -> None:
-        windows = [widget for widget in QApplication.topLevelWidgets() if isinstance(widget, app.MainWindow)]
+        windows = [widget for widget in QApplication.topLevelWidgets() if isinstance(widget, MainWindow)]
         answered = [window for window in windows if window.isVisible() and window.shown is not None]
         for window in answered:
             window.close()

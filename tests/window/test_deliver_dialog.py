@@ -62,7 +62,7 @@ def test_a_met_sheet_is_delivered_at_once(qtbot: QtBot, theme: Theme, tmp_path: 
     made.languages["c"].setChecked(False)
     deliver(made, qtbot)
     assert recorder.asked == [(tmp_path / "out", ["json", "python"], False, False)]
-    assert "proved: controller.py, run over 100000 samples" in made.result_words.text()
+    assert "proved: controller.py, run over 100000 samples" in made.outcome.toPlainText()
 
 
 @pytest.mark.parametrize("kp", [2.2, 4.5], ids=["missed", "unstable"])
@@ -104,7 +104,7 @@ def test_a_refusal_is_said_and_can_be_put_right(qtbot: QtBot, theme: Theme, tmp_
     recorder = Recorder(refusal="out: already holds controller.py; say so if they may be overwritten")
     made = dialog(qtbot, theme, answer(1.0, limits=LOOSE), recorder, tmp_path)
     deliver(made, qtbot)
-    assert made.result_words.text() == f"Nothing was written. {recorder.refusal}"
+    assert made.outcome.toPlainText() == f"Nothing was written. {recorder.refusal}"
     recorder.refusal = ""
     made.overwrite.setChecked(True)
     deliver(made, qtbot)
@@ -116,7 +116,7 @@ def test_a_file_that_was_not_proved_is_not_called_proved(qtbot: QtBot, theme: Th
     recorder = Recorder((Proof("controller.c", "not run here, because no compiler", 0, None, proved=False),))
     made = dialog(qtbot, theme, answer(1.0, limits=LOOSE), recorder, tmp_path)
     deliver(made, qtbot)
-    assert "not proved: controller.c, not run here, because no compiler" in made.result_words.text()
+    assert "not proved: controller.c, not run here, because no compiler" in made.outcome.toPlainText()
 
 
 def test_closing_waits_for_a_delivery(qtbot: QtBot, theme: Theme, tmp_path: Path) -> None:

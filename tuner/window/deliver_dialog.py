@@ -4,7 +4,6 @@ from collections.abc import Callable, Sequence
 from pathlib import Path
 from typing import Protocol
 
-from PySide6.QtCore import Qt
 from PySide6.QtGui import QCloseEvent
 from PySide6.QtWidgets import (
     QCheckBox,
@@ -14,6 +13,7 @@ from PySide6.QtWidgets import (
     QHBoxLayout,
     QLabel,
     QLineEdit,
+    QPlainTextEdit,
     QProgressBar,
     QPushButton,
     QVBoxLayout,
@@ -28,7 +28,7 @@ from tuner.window.shown import Shown
 from tuner.window.task import Task
 from tuner.window.theme import Theme
 
-RESPONSIBILITY = "I deliver it all the same, and answer for a loop that does not meet its acceptance sheet."
+RESPONSIBILITY = "I answer for delivering a loop that does not meet its acceptance sheet."
 
 LANGUAGES = (
     ("json", "JSON: the gains and the law as data"),
@@ -71,7 +71,7 @@ class DeliverDialog(QDialog):
         self.asking = Asking(self)
         self._task: Task | None = None
         self.setWindowTitle(f"Deliver {shown.assessment.title}")
-        self.setMinimumWidth(560)
+        self.setMinimumWidth(600)
         self.folder = QLineEdit(str(folder))
         self.folder.setAccessibleName("Folder of the delivery")
         self.languages = {key: QCheckBox(words) for key, words in LANGUAGES}
@@ -79,12 +79,15 @@ class DeliverDialog(QDialog):
             box.setChecked(True)
         self.overwrite = QCheckBox("Replace files of the same names")
         self.accept_unmet = QCheckBox(RESPONSIBILITY)
-        self.result_words = QLabel(wordWrap=True)
-        self.result_words.setTextInteractionFlags(Qt.TextInteractionFlag.TextSelectableByMouse)
+        self.outcome = QPlainTextEdit(readOnly=True, tabChangesFocus=True)
+        self.outcome.setAccessibleName("Result of the delivery")
+        self.outcome.setMinimumHeight(148)
+        self.outcome.setVisible(False)
         self.progress = QProgressBar(maximum=0, textVisible=False)
         self.progress.setVisible(False)
         self.buttons = QDialogButtonBox(QDialogButtonBox.StandardButton.Close)
         self.deliver_button = self.buttons.addButton("Deliver", QDialogButtonBox.ButtonRole.ActionRole)
+        self.deliver_button.setDefault(True)
         self._arrange()
         self._connect()
         self._refresh()
@@ -142,8 +145,9 @@ class DeliverDialog(QDialog):
         self._refresh()
 
     def _say(self, words: str, role: str) -> None:
-        self.result_words.setText(words)
-        self.result_words.setStyleSheet(f"color: {self._theme.palette.colours[role]}")
+        self.outcome.setPlainText(words)
+        self.outcome.setStyleSheet(f"color: {self._theme.palette.colours[role]}")
+        self.outcome.setVisible(True)
 
     def _refresh(self) -> None:
         """Let the button work when there is a folder, a language, and, if need be, somebody who answers for it."""
@@ -164,7 +168,7 @@ class DeliverDialog(QDialog):
         column.addWidget(self.accept_unmet)
         caution = QLabel(CAUTION, wordWrap=True)
         caution.setProperty("voice", "quiet")
-        for part in (caution, self.progress, self.result_words):
+        for part in (caution, self.progress, self.outcome):
             column.addWidget(part)
         column.addStretch(1)
         column.addWidget(self.buttons)
@@ -189,6 +193,7 @@ class DeliverDialog(QDialog):
         grid.setVerticalSpacing(4)
         row = QHBoxLayout()
         browse = QPushButton("Browse…")
+        browse.setAutoDefault(False)
         browse.clicked.connect(self._browse)
         row.addWidget(self.folder, 1)
         row.addWidget(browse)
@@ -196,10 +201,9 @@ class DeliverDialog(QDialog):
         label.setBuddy(self.folder)
         grid.addWidget(label, 0, 0)
         grid.addLayout(row, 0, 1)
-        grid.addWidget(self.overwrite, 1, 1)
-        grid.addWidget(QLabel("Files"), 2, 0)
-        for index, box in enumerate(self.languages.values()):
-            grid.addWidget(box, 2 + index, 1)
+        grid.addWidget(QLabel("Files"), 1, 0)
+        for row, box in enumerate((*self.languages.values(), self.overwrite), start=1):
+            grid.addWidget(box, row, 1)
         grid.setColumnStretch(1, 1)
         return grid
 

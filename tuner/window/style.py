@@ -2,6 +2,7 @@
 
 from PySide6.QtGui import QColor, QPalette
 
+from tuner.places import resources
 from tuner.window.palette import Palette, sizes
 
 _SHEET = """
@@ -33,6 +34,12 @@ QPushButton:hover, QToolButton:hover {{ background: {hover}; }}
 QPushButton:focus, QToolButton:focus {{ border: 1px solid {nominal}; }}
 QPushButton:default {{ background: {nominal_word}; color: {on_accent}; border: 1px solid {nominal_word}; }}
 QPushButton:disabled, QToolButton:disabled {{ color: {kept_word}; background: {page}; border: 1px solid {line}; }}
+QCheckBox {{ spacing: {step2}px; }}
+QCheckBox::indicator {{ width: 12px; height: 12px; background: {field};
+    border: 1px solid {quiet}; border-radius: 2px; }}
+QCheckBox::indicator:focus {{ border: 1px solid {nominal}; }}
+QCheckBox::indicator:checked {{ background: {nominal_word}; border: 1px solid {nominal_word}; image: url("{tick}"); }}
+QCheckBox::indicator:disabled {{ border: 1px solid {line}; }}
 QScrollArea {{ border: 0; }}
 QScrollBar:vertical {{ background: {page}; width: {step2}px; margin: 0; }}
 QScrollBar:horizontal {{ background: {page}; height: {step2}px; margin: 0; }}
@@ -49,7 +56,8 @@ def style_sheet(palette: Palette) -> str:
     """Return the style sheet of the whole application in a palette."""
     grid = sizes().grid
     steps = {"step": grid} | {f"step{count}": count * grid for count in (2, 3, 4, 6)}
-    return _SHEET.format(**palette.colours, **steps)
+    tick = (resources() / "icons" / f"tick_{palette.shade}.svg").as_posix()
+    return _SHEET.format(**palette.colours, **steps, tick=tick)
 
 
 def qt_palette(palette: Palette) -> QPalette:

@@ -22,6 +22,9 @@ QUICK = 0.012
 SLOW = 0.050
 """Seconds from which on a family waits for the hand to rest, so that it does not hold up the nominal curves."""
 
+FRAME = 0.016
+"""Seconds that the family waits after the nominal plant, so that the main thread can paint undisturbed."""
+
 REST = 0.060
 """Seconds that such a family waits for a newer request."""
 
@@ -131,7 +134,7 @@ class Assessor(QObject):
         if cost > QUICK:
             if not self._tell(request, self._assessing.nominal):
                 return
-            if self._slot.newer(REST if cost > SLOW else 0.0):
+            if self._slot.newer(REST if cost > SLOW else FRAME):
                 return
         self._answer_whole(request)
 
