@@ -70,6 +70,40 @@ def test_notes_stand_at_the_foot() -> None:
         assert "made-up loop" in window.notes.text()
 
 
+def test_a_fault_of_the_program_stays_in_sight() -> None:
+    """It stands before the notes, and the next answer does not wipe it away; another sheet does."""
+    with opened() as (window, _):
+        window.say_fault("A fault of the program.")
+        window.document.change_value("kp", 1.0)
+        assert window.notes.text().startswith("A fault of the program.  ")
+        window.document.start(made_up.sheet(1.5))
+        assert "A fault" not in window.notes.text()
+
+
+def test_another_sheet_starts_with_its_own_ranges() -> None:
+    """A closer look and a wide range belong to the loop they were taken on."""
+    with opened(made_up_document(3.5)) as (window, _):
+        panel = window.plots.panels[REFERENCE]
+        box = panel.view.getPlotItem().getViewBox()
+        box.setRange(xRange=(10.0, 20.0), yRange=(1.0, 2.0), padding=0.0)
+        box.sigRangeChangedManually.emit([True, True])
+        window.document.start(made_up.sheet(0.5))
+        across, upwards = panel.ranges()
+        assert across.high == 240.0
+        assert upwards.high < 8.0
+
+
+def test_answers_on_a_loop_that_was_left_are_not_shown() -> None:
+    """What was asked before another sheet was opened is dropped when it comes."""
+    with opened() as (window, _):
+        old = window.shown
+        window.document.start(made_up.sheet(0.5))
+        new = window.shown
+        assert old is not None
+        window.assessor.answered.emit(old)
+        assert window.shown is new
+
+
 def test_the_title_names_loop_and_file() -> None:
     """Loop, file and program; a mark while something is unsaved."""
     with opened() as (window, _):

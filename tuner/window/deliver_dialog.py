@@ -202,8 +202,8 @@ class DeliverDialog(QDialog):
         grid.addWidget(label, 0, 0)
         grid.addLayout(row, 0, 1)
         grid.addWidget(QLabel("Files"), 1, 0)
-        for row, box in enumerate((*self.languages.values(), self.overwrite), start=1):
-            grid.addWidget(box, row, 1)
+        for index, box in enumerate((*self.languages.values(), self.overwrite)):
+            grid.addWidget(box, 1 + index, 1)
         grid.setColumnStretch(1, 1)
         return grid
 

@@ -53,7 +53,9 @@ class MainWindow(QMainWindow):
         self.editors, self.rulers = editors, rulers
         self.ribbon, self.plots, self.notes = Ribbon(theme), PlotGrid(theme), ElidedLabel()
         self.shown: Shown | None = None
-        self._asked = 0
+        self._asked = self._first = 0
+        self._generation = document.generation
+        self._fault = ""
         self._requested: object = None
         self._why = _ASSESSING
         self.setMinimumSize(*SMALLEST)
@@ -100,15 +102,20 @@ class MainWindow(QMainWindow):
     def ask(self) -> None:
         """Ask for an answer, unless what decides it has not changed since the last one was asked for."""
         wanted = (self.document.sheet, self.document.kept)
-        if wanted == self._requested:
+        anew = self.document.generation != self._generation
+        if wanted == self._requested and not anew:
             return
         self._requested = wanted
         self._asked += 1
+        if anew:
+            self._leave_loop()
         self._why = _ASSESSING
         self.assessor.submit(Request(self._asked, *wanted))
 
     def _answered(self, shown: Shown) -> None:
-        """Show an answer, everywhere; one that gives no verdict only in the plots."""
+        """Show an answer: one without a verdict only in the plots, one on a loop that was left nowhere."""
+        if shown.number < self._first:
+            return
         self.shown = shown
         self.plots.show(shown)
         if shown.whole:
@@ -116,6 +123,12 @@ class MainWindow(QMainWindow):
             self.editors.show(shown.assessment)
             self.rulers.show(shown.assessment)
             self._say_notes(shown.assessment.notes)
+
+    def _leave_loop(self) -> None:
+        """Forget the loop that was open before: its answers on the way are not shown any more."""
+        self._generation, self._first = self.document.generation, self._asked
+        self._fault = ""
+        self.plots.forget()
 
     def _failed(self, failure: Failure) -> None:
         """Say why there is no answer; the last curves stay, greyed."""
@@ -131,12 +144,12 @@ class MainWindow(QMainWindow):
         return self._why
 
     def say_fault(self, sentence: str) -> None:
-        """Say what went wrong in the program itself, in the line of notes."""
-        self.notes.setText(sentence)
-        self.notes.setToolTip(sentence)
+        """Say what went wrong in the program itself, before the notes, for as long as this loop is open."""
+        self._fault = sentence
+        self._say_notes(self.shown.assessment.notes if self.shown else ())
 
     def _say_notes(self, notes: tuple[str, ...]) -> None:
-        self.notes.setText("  ".join(notes))
+        self.notes.setText("  ".join((self._fault, *notes) if self._fault else notes))
 
     def _show_name(self) -> None:
         self.ribbon.title.setText(self.document.sheet.loop.title)

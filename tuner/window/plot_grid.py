@@ -48,6 +48,11 @@ class PlotGrid(QObject):
         for panel in self.panels.values():
             panel.show_whole()
 
+    def forget(self) -> None:
+        """Forget ranges and curves of a loop that is left."""
+        for panel in self.panels.values():
+            panel.forget()
+
     def say_empty(self, sentence: str) -> None:
         """Say in every plot why it is empty."""
         for panel in self.panels.values():

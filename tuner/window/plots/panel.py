@@ -165,6 +165,10 @@ class Panel(QObject):
         if self.shown is not None:
             self.draw(self.shown)
 
+    def forget(self) -> None:
+        """Forget ranges and curves: what comes next is another loop."""
+        self._by_hand = False
+
     def say_empty(self, sentence: str) -> None:
         """Say why there is nothing to show yet."""
         self._empty.setText(sentence)

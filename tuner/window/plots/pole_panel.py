@@ -97,6 +97,13 @@ class PolePanel(Panel):
         index = points.index(self.marks.pointer) + (1 if steps > 0 else -1) if self.marks.pointer in points else 0
         return points[index % len(points)]
 
+    def forget(self) -> None:
+        """Forget ranges and poles."""
+        super().forget()
+        self._family = np.empty(0, dtype=np.complex128)
+        self._across.forget()
+        self._upwards.forget()
+
     def dress(self) -> None:
         """Take over the colours."""
         super().dress()

@@ -177,6 +177,12 @@ class TracePanel(Panel):
         now = self.marks.pointer[0] if self.marks.pointer else max(x.low, 0.0) - 0.01 * steps * x.span
         return float(np.clip(now + 0.01 * steps * x.span, 0.0, self.shown.sheet.trial.duration)), 0.0
 
+    def forget(self) -> None:
+        """Forget ranges and curves."""
+        super().forget()
+        self._lines = None
+        self._steady.forget()
+
     def dress(self) -> None:
         """Take over the colours."""
         super().dress()

@@ -11,7 +11,7 @@ from tuner.window.rulers.form_switch import FormSwitch
 from tuner.window.rulers.ruler import SYMBOL_WIDTH, Ruler
 from tuner.window.theme import Theme
 
-TWO_COLUMNS = 1080
+TWO_COLUMNS = 960
 """Width, pixels, from which the gains and the other rulers stand side by side."""
 
 
