@@ -224,7 +224,7 @@ def test_a_continuous_effort_is_a_curve(effort: EffortPanel) -> None:
 
 
 def test_where_a_limit_holds_the_effort_is_marked(effort: EffortPanel) -> None:
-    """From each sample at a limit to the next the curve is marked, and between two of them the riser as well."""
+    """From each sample at a limit to the next the curve is marked, and between two of them the riser too; long, it is named."""
     shown = answer(3.9)
     trace = shown.assessment.nominal.traces.reference
     limited = np.zeros_like(trace.limited)
@@ -238,6 +238,9 @@ def test_where_a_limit_holds_the_effort_is_marked(effort: EffortPanel) -> None:
     assert list(pieces.t[joined]) == [samples[3], samples[4], samples[4], samples[-1]]
     effort.show(marked)
     assert np.count_nonzero(effort.limited.opts["connect"]) == 4
+    assert "at a limit" not in {words.text for words in effort.marks.words}
+    limited[:100] = True
+    effort.show(_with_reference(shown, replace(trace, limited=limited)))
     assert "at a limit" in {words.text for words in effort.marks.words}
     assert effort.lines(answer(0.5)).limited is None
 

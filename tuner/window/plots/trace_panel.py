@@ -22,6 +22,8 @@ from tuner.window.theme import Theme
 Array = NDArray[np.float64]
 
 _FAMILY_BINS = 150
+_WORTH_WORDS = 0.05
+"""Share of the run at a limit from which it is named; words on a shorter piece would hide it."""
 _BEFORE = 0.02
 """Share of the duration that is shown before the step."""
 
@@ -231,7 +233,7 @@ class TracePanel(Panel):
         named += [(lines.second, "disturbance_word", 0.3)] if lines.second is not None else []
         named += [(line, "kept_word", 0.12 + 0.06 * index) for index, line in enumerate(lines.kept)]
         names = [_name(line, role, share, seen) for line, role, share in named if line.name]
-        if lines.limited is not None:
+        if lines.limited is not None and lines.limited.connect.mean() >= _WORTH_WORDS:
             first = int(lines.limited.connect.argmax())
             names.append(
                 _name(
