@@ -18,6 +18,7 @@ from tuner.model.parameters import (
     rulers,
 )
 from tuner.model.sheet import Actuator, Sensor, Trial
+from tuner.model.units import unit_in
 
 BLOCK_OF = {
     "loop": Loop("A"),
@@ -44,7 +45,7 @@ def test_paths_are_unique() -> None:
 def test_a_parameter_is_whole(parameter: Parameter) -> None:
     """It has a sentence, a unit that can be filled in, words when it is a choice, and a default within its range."""
     assert parameter.sentence.endswith(".")
-    assert "{" not in parameter.unit_for(t="s", y="degC", u="%")
+    assert "{" not in unit_in(parameter.unit, Loop("x"))
     assert bool(parameter.choices) == (parameter.kind is Kind.CHOICE)
     if isinstance(parameter.default, str):
         assert parameter.default in (parameter.choices or ("",))
@@ -80,12 +81,6 @@ def test_rulers_are_those_of_the_form(form: str) -> None:
     """A form's rulers begin with its gains and hold none of another form's."""
     names = [parameter.name for parameter in rulers(form)]
     assert names == [*GAIN_KEYS[form], "filter_time", "b", "c", "windup_time"]
-
-
-def test_units_of_signals_without_unit() -> None:
-    """A signal without unit counts as 1."""
-    assert find("controller.ki").unit_for(t="s", y="", u="") == "1/(1 s)"
-    assert find("controller.kp").unit_for(t="s", y="degC", u="%") == "%/degC"
 
 
 def test_as_found_repeats_the_controller() -> None:

@@ -3,12 +3,12 @@
 import unicodedata
 
 from tuner.deliver.specification import CAUTIONS, Specification
-from tuner.deliver.words import unit
 from tuner.judge.assessment import Assessment, LimitResult
 from tuner.model.loop import Manipulated, Signal
 from tuner.model.measures import BY_NAME
 from tuner.model.parameters import GAIN_KEYS, find
 from tuner.model.sheet import Sheet
+from tuner.model.units import unit_in
 
 _PLAIN = {"°": "deg ", "µ": "u", "μ": "u", "Ω": "Ohm", "·": "*", "×": "x", "–": "-", "—": "-", "−": "-", "ß": "ss"}  # noqa: RUF001 - the signs that are replaced
 
@@ -87,17 +87,12 @@ def _missed(sheet: Sheet, limit: LimitResult) -> str:
 
 def _limit(sheet: Sheet, limit: LimitResult) -> str:
     measure = BY_NAME[limit.measure]
-    symbol = unit(measure.unit, **_units(sheet))
+    symbol = unit_in(measure.unit, sheet.loop)
     bound = "at least" if measure.at_least else "at most"
     found = "does not exist" if limit.value is None else f"{limit.value:.4g} {symbol}".strip()
     verdict = "met" if limit.met else "not met"
     asked = f"{bound} {limit.limit:g} {symbol}".strip()
     return f"{measure.label} {found}, {asked} asked, {verdict}; worst plant: {limit.plant}"
-
-
-def _units(sheet: Sheet) -> dict[str, str]:
-    loop = sheet.loop
-    return {"t": loop.time_unit, "y": loop.controlled.unit, "u": loop.manipulated.unit}
 
 
 def _signals(sheet: Sheet) -> list[str]:
@@ -122,9 +117,9 @@ def _range(signal: Signal, symbol: str) -> str:
 
 
 def _settings(specification: Specification) -> list[str]:
-    controller, units = specification.sheet.controller, _units(specification.sheet)
-    given = [_setting(specification, key, units) for key in GAIN_KEYS[controller.form]]
-    others = [_setting(specification, key, units) for key in ("filter_time", "b", "c", "windup_time")]
+    controller = specification.sheet.controller
+    given = [_setting(specification, key) for key in GAIN_KEYS[controller.form]]
+    others = [_setting(specification, key) for key in ("filter_time", "b", "c", "windup_time")]
     gains = controller.parallel()
     parallel = f"kp {gains.kp!r}, ki {gains.ki!r}, kd {gains.kd!r}"
     return [
@@ -135,11 +130,11 @@ def _settings(specification: Specification) -> list[str]:
     ]
 
 
-def _setting(specification: Specification, key: str, units: dict[str, str]) -> str:
+def _setting(specification: Specification, key: str) -> str:
     value = specification.sheet.controller.value(key)
     if value is None:
         return f"{key} none"
-    return f"{key} {value!r} {unit(find(f'controller.{key}').unit, **units)}".strip()
+    return f"{key} {value!r} {unit_in(find(f'controller.{key}').unit, specification.sheet.loop)}".strip()
 
 
 def _blocks(specification: Specification) -> list[str]:

@@ -44,10 +44,3 @@ CONSTANTS: dict[str, Meaning] = {
     "resting_measurement": Meaning("Measurement at the resting point", "{y}"),
     "resting_effort": Meaning("Effort at the resting point", "{u}"),
 }
-
-
-def unit(text: str, *, t: str, y: str, u: str) -> str:
-    """Return a unit with those of the loop put in; a signal without one leaves no trace but in 1/s and the like."""
-    symbol = text.format(t=t, y=y or "1", u=u or "1")
-    short = symbol.replace(f"/(1 {t})", f"/{t}").removesuffix("/1").removeprefix("1 ")
-    return "" if short == "1" else short

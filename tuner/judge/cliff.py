@@ -9,6 +9,7 @@ from tuner.judge.wording import number, quantity
 from tuner.model.controller import Controller
 from tuner.model.parameters import Parameter, rulers
 from tuner.model.sheet import Sheet
+from tuner.model.units import unit_in
 
 FARTHEST = 1000.0
 """A gain is looked for within this factor, up and down."""
@@ -155,7 +156,7 @@ def _way_back(sheet: Sheet, edge: Edge | None) -> str:
     if edge is None:
         return f"no single gain, changed up to {FARTHEST:g}-fold, brings it back"
     name, value = edge.gain.name, controller.value(edge.gain.name) or 0.0
-    unit = edge.gain.unit_for(t=sheet.loop.time_unit, y=sheet.loop.controlled.unit, u=sheet.loop.manipulated.unit)
+    unit = unit_in(edge.gain.unit, sheet.loop)
     if edge.factor == 0.0:
         return f"it holds only without {name}, which is {quantity(value, unit)}"
     side = "beyond" if edge.factor < 1.0 else "short of"

@@ -4,6 +4,7 @@ from math import isinf
 
 from tuner.model.loop import Loop
 from tuner.model.measures import BY_NAME
+from tuner.model.units import unit_in
 
 _DIGITS = 4
 _ALL_DIGITS = 17
@@ -19,8 +20,7 @@ def number(value: float, digits: int = _DIGITS) -> str:
 
 def unit_of(measure: str, loop: Loop) -> str:
     """Return the unit of a measure on one loop; '' for a plain ratio or a signal without unit."""
-    units = {"t": loop.time_unit, "y": loop.controlled.unit, "u": loop.manipulated.unit}
-    return BY_NAME[measure].unit.format(**units).strip()
+    return unit_in(BY_NAME[measure].unit, loop)
 
 
 def quantity(value: float | None, unit: str, digits: int = _DIGITS) -> str:

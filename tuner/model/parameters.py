@@ -67,10 +67,6 @@ class Parameter:
         """The dotted path of the key in the sheet."""
         return f"{self.section}.{self.name}" if self.section else self.name
 
-    def unit_for(self, *, t: str, y: str, u: str) -> str:
-        """Return the unit with the symbols of one loop put in; '1' stands for a signal without unit."""
-        return self.unit.format(t=t, y=y or "1", u=u or "1")
-
 
 def _number(section: str, name: str, symbol: str, sentence: str, **more: object) -> Parameter:
     return Parameter(section, name, symbol, Kind.NUMBER, sentence, **more)  # type: ignore[arg-type] # keys are checked by the dataclass

@@ -8,6 +8,7 @@ from tuner.model.controller import DisturbanceFeedforward, Feedforward, Notch
 from tuner.model.measures import Measure
 from tuner.model.parameters import Parameter
 from tuner.model.sheet import Sheet
+from tuner.model.units import unit_in
 
 _HELD_AS = {"controller.measurement_filter.time": "controller.measurement_filter"}
 """Keys that the dataclasses hold under another path."""
@@ -66,9 +67,7 @@ def without_limit(sheet: Sheet, measure: str) -> Sheet:
 
 def unit_of(parameter: Parameter | Measure, sheet: Sheet) -> str:
     """Return the unit of a parameter or a measure in the units of a sheet's loop."""
-    loop = sheet.loop
-    y, u = loop.controlled.unit or "1", loop.manipulated.unit or "1"
-    return parameter.unit.format(t=loop.time_unit, y=y, u=u)
+    return unit_in(parameter.unit, sheet.loop)
 
 
 def _replaced(held: Any, names: list[str], value: object) -> Any:  # noqa: ANN401 # blocks of every kind

@@ -15,6 +15,7 @@ from tuner.deliver.vectors import Row
 from tuner.errors import DeliveryError
 from tuner.law import feedforward, pid, print_c, translate
 from tuner.law.print_c import number
+from tuner.model.units import unit_in
 
 _SOURCE, _HEADER = "controller.c", "controller.h"
 _COMPILERS = ("cc", "gcc", "clang")
@@ -115,8 +116,7 @@ def _constants(specification: Specification) -> Iterator[str]:
 
 
 def _bracketed(specification: Specification, unit: str) -> str:
-    loop = specification.sheet.loop
-    symbol = plain(words.unit(unit, t=loop.time_unit, y=loop.controlled.unit, u=loop.manipulated.unit))
+    symbol = plain(unit_in(unit, specification.sheet.loop))
     return f" [{symbol}]" if symbol else ""
 
 

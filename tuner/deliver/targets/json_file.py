@@ -22,6 +22,7 @@ from tuner.model.loop import Signal
 from tuner.model.measures import BY_NAME
 from tuner.model.parameters import GAIN_KEYS, PARAMETERS, Parameter
 from tuner.model.sheet import Sheet
+from tuner.model.units import unit_in
 
 _FILE = "controller.json"
 
@@ -71,10 +72,6 @@ def _content(specification: Specification) -> dict[str, object]:
     }
 
 
-def _units(sheet: Sheet) -> dict[str, str]:
-    return {"t": sheet.loop.time_unit, "y": sheet.loop.controlled.unit, "u": sheet.loop.manipulated.unit}
-
-
 def _signal(signal: Signal) -> dict[str, object]:
     return {key: getattr(signal, key) for key in ("name", "unit", "low", "high", "resting")}
 
@@ -87,7 +84,7 @@ def _parameters(sheet: Sheet) -> Iterator[tuple[str, dict[str, object]]]:
         if value is not None and parameter.name not in foreign:
             yield (
                 parameter.path,
-                {"value": value, "unit": words.unit(parameter.unit, **_units(sheet)), "sentence": parameter.sentence},
+                {"value": value, "unit": unit_in(parameter.unit, sheet.loop), "sentence": parameter.sentence},
             )
 
 
@@ -111,14 +108,14 @@ def _constants(specification: Specification) -> Iterator[tuple[str, dict[str, ob
         sentence, unit = words.CONSTANTS[name]
         yield (
             name,
-            {"value": value, "unit": words.unit(unit, **_units(specification.sheet)), "sentence": f"{sentence}."},
+            {"value": value, "unit": unit_in(unit, specification.sheet.loop), "sentence": f"{sentence}."},
         )
 
 
 def _limit(specification: Specification, limit: LimitResult) -> dict[str, object]:
     measure = BY_NAME[limit.measure]
     value = limit.value if limit.value is None or isfinite(limit.value) else "inf"
-    unit = words.unit(measure.unit, **_units(specification.sheet))
+    unit = unit_in(measure.unit, specification.sheet.loop)
     return asdict(limit) | {"value": value, "unit": unit, "bound": "at least" if measure.at_least else "at most"}
 
 

@@ -12,6 +12,7 @@ from tuner.deliver.summary import banner, head, printable
 from tuner.deliver.target import Target, fill, template
 from tuner.deliver.vectors import Row
 from tuner.law import feedforward, pid, print_python, translate
+from tuner.model.units import unit_in
 
 _FILE = "controller.py"
 _SHIFTED = ("resting_measurement", "resting_effort")
@@ -76,7 +77,7 @@ def _constants(specification: Specification) -> str:
     for name, value in specification.constants._asdict().items():
         if name not in _SHIFTED:
             sentence, unit = words.CONSTANTS[name]
-            symbol = printable(words.unit(unit, t=loop.time_unit, y=loop.controlled.unit, u=loop.manipulated.unit))
+            symbol = printable(unit_in(unit, loop))
             lines.append(f"{name.upper()} = {value!r}  # {sentence}{f' [{symbol}]' if symbol else ''}")
     return "\n".join(lines)
 

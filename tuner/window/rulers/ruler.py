@@ -9,6 +9,7 @@ from PySide6.QtGui import QContextMenuEvent
 from PySide6.QtWidgets import QHBoxLayout, QLabel, QMenu, QWidget
 
 from tuner.model.parameters import Parameter
+from tuner.model.units import unit_in
 from tuner.session import typed
 from tuner.session.document import Document
 from tuner.session.typed import Bounds, TypedError
@@ -115,7 +116,7 @@ class Ruler(QWidget):
 
     def _unit_now(self) -> str:
         loop = self._document.sheet.loop
-        return self.parameter.unit_for(t=loop.time_unit, y=loop.controlled.unit, u=loop.manipulated.unit)
+        return unit_in(self.parameter.unit, loop)
 
     def _read(self, text: str) -> float | None:
         name = self.parameter.name
