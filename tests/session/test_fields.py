@@ -61,9 +61,9 @@ def test_limits_are_set_in_place_added_and_removed() -> None:
 
 
 def test_units_are_the_loops() -> None:
-    """Parameters and measures carry the units of the loop, 1 for a signal without."""
+    """Parameters and measures carry the units of the loop, none for a signal without."""
     sheet = wash_bath()
     assert unit_of(find("controller.ki"), sheet) == "%/(degC s)"
     assert unit_of(BY_NAME["iae_reference"], sheet) == "degC s"
     bare = replace(sheet, loop=replace(sheet.loop, controlled=replace(sheet.loop.controlled, unit="")))
-    assert unit_of(find("controller.kp"), bare) == "%/1"
+    assert unit_of(find("controller.kp"), bare) == "%"
