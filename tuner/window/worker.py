@@ -16,7 +16,7 @@ from tuner.session.tunings import KeptTuning
 from tuner.window.shown import Draw, Failure, Judge, KeptResult, Request, Shown
 from tuner.window.slot import Slot
 
-QUICK = 0.012
+QUICK = 0.005
 """Seconds that a whole family may take before the nominal plant is shown ahead of it."""
 
 SLOW = 0.050

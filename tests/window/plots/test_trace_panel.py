@@ -224,7 +224,7 @@ def test_a_continuous_effort_is_a_curve(effort: EffortPanel) -> None:
 
 
 def test_where_a_limit_holds_the_effort_is_marked(effort: EffortPanel) -> None:
-    """From each sample at a limit to the next the curve is marked, and between two of them the riser too; long, it is named."""
+    """Each sample at a limit is marked up to the next, with the riser between two; a long stretch is named."""
     shown = answer(3.9)
     trace = shown.assessment.nominal.traces.reference
     limited = np.zeros_like(trace.limited)

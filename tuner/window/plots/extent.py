@@ -48,6 +48,8 @@ class Extent:
 
 def of_values(values: Array) -> Extent | None:
     """Return the extent of the finite values of an array, None when it has none."""
+    if values.size and np.isfinite(ends := np.array([values.min(), values.max()])).all():
+        return Extent(float(ends[0]), float(ends[1]))
     finite = values[np.isfinite(values)]
     return Extent(float(finite.min()), float(finite.max())) if finite.size else None
 

@@ -32,8 +32,15 @@ class Curve(pg.PlotCurveItem):  # type: ignore[misc]  # pyqtgraph publishes no t
         super().__init__(antialias=smooth, skipFiniteCheck=True)
         self._offsets = _STRONG if strong else _PLAIN
         self._bounds = QRectF()
+        self._colour = QColor()
         self.setZValue(depth)
         self.setSegmentedLineMode("on")
+
+    def set_colour(self, colour: QColor) -> None:
+        """Take a colour; does nothing when it has it, since another pen is another picture."""
+        if colour != self._colour:
+            self._colour = colour
+            self.setPen(pen(colour))
 
     def show_points(self, points: Points) -> None:
         """Show the points of a curve, or of several joined by their connect array."""

@@ -49,7 +49,12 @@ class PlotView(pg.PlotWidget):  # type: ignore[misc]  # pyqtgraph publishes no t
         item.getAxis("left").setWidth(_LEFT_AXIS)
         item.getAxis("bottom").setHeight(_BOTTOM_AXIS)
         self.setFrameShape(self.Shape.NoFrame)
+        # Every answer changes the whole picture, so that finding out what changed is time lost.
+        self.setViewportUpdateMode(self.ViewportUpdateMode.FullViewportUpdate)
+        self.scene().setItemIndexMethod(self.scene().ItemIndexMethod.NoIndex)
         self.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
+        # It covers its whole ground itself; without this Qt paints the ground of every parent first.
+        self.viewport().setAttribute(Qt.WidgetAttribute.WA_OpaquePaintEvent)
         self.viewport().setFocusPolicy(Qt.FocusPolicy.NoFocus)
         self.setAccessibleName(name)
 
@@ -108,7 +113,7 @@ class Panel(QObject):
         self.shown: Shown | None = None
         self._theme = theme
         self._by_hand = False
-        self._divided: tuple[tuple[Tick, ...], tuple[Tick, ...], str] | None = None
+        self._divided: tuple[object, ...] = ()
         self.view = PlotView(name)
         box = self.view.getPlotItem().getViewBox()
         self.ground = GroundLayer(box, theme)
@@ -213,9 +218,6 @@ class Panel(QObject):
 
     def set_ticks(self, x: Sequence[Tick], y: Sequence[Tick], x_unit: str) -> None:
         """Divide both axes and draw the grid; the unit stands behind the last number of the horizontal axis."""
-        if (tuple(x), tuple(y), x_unit) == self._divided:
-            return
-        self._divided = (tuple(x), tuple(y), x_unit)
         item = self.view.getPlotItem()
         named = [(tick.at, tick.text) for tick in x]
         if named and x_unit:
@@ -229,8 +231,13 @@ class Panel(QObject):
     def divide(self, x_unit: str, *, x_offset: float = 0.0, y_offset: float = 0.0, time: bool = True) -> None:
         """Divide the axes as finely as there is room."""
         x, y = self.ranges()
+        box = self.view.getPlotItem().getViewBox()
+        asked = (x, y, box.width(), box.height(), x_unit, x_offset, y_offset)
+        if asked == self._divided:
+            return
+        self._divided = asked
         across = max(int(self.columns() / _TICK_WIDTH), 2)
-        upwards = max(int(self.view.getPlotItem().getViewBox().height() / _TICK_HEIGHT), 2)
+        upwards = max(int(box.height() / _TICK_HEIGHT), 2)
         self.set_ticks(
             ticks(x.low, x.high, across, offset=x_offset, time=time),
             ticks(y.low, y.high, upwards, offset=y_offset),

@@ -31,6 +31,7 @@ class PolePanel(Panel):
         self._across, self._upwards = SteadyExtent(), SteadyExtent()
         self._family: ComplexArray = np.empty(0, dtype=np.complex128)
         self._nominal: ComplexArray = np.empty(0, dtype=np.complex128)
+        self._drawn: tuple[ComplexArray, QColor] | None = None
         self.family = Poles(size=7, depth=-10.0)
         self.nominal = Poles(size=10, depth=120.0)
         super().__init__(name, theme)
@@ -70,7 +71,10 @@ class PolePanel(Panel):
         """Draw the poles in the colours that hold now."""
         if self.shown is None:
             return
-        _show(self.family, self._family, self._theme.colour("kept" if self.stale else "family"), 1.5)
+        colour = self._theme.colour("kept" if self.stale else "family")
+        if self._drawn is None or self._drawn[0] is not self._family or self._drawn[1] != colour:
+            self._drawn = (self._family, colour)
+            _show(self.family, self._family, colour, 1.5)
         _show(self.nominal, self._nominal, self._theme.colour("kept" if self.stale else "nominal"), 2.0)
         self.ground.areas = self._marks.areas
         self.divide(f"1/{self.shown.sheet.loop.time_unit}", time=False)

@@ -41,7 +41,9 @@ def thinned(t: Array, curves: Array, bins: int) -> tuple[Array, Array]:
     if size <= 2:
         return np.broadcast_to(t, curves.shape), curves
     pieces = -(-length // size)
-    padded = np.pad(curves, ((0, 0), (0, pieces * size - length)), mode="edge").reshape(count, pieces, size)
+    padded = np.empty((count, pieces * size))
+    padded[:, :length], padded[:, length:] = curves, curves[:, -1:]
+    padded = padded.reshape(count, pieces, size)
     lowest, highest = padded.argmin(axis=2), padded.argmax(axis=2)
     within = np.sort(np.stack((lowest, highest), axis=2), axis=2)
     index = np.minimum(within + size * np.arange(pieces)[None, :, None], length - 1).reshape(count, 2 * pieces)

@@ -4,6 +4,7 @@ from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
+from PySide6.QtGui import QColor
 
 from tuner.judge.assessment import MemberResult
 from tuner.judge.overlay import Plot
@@ -12,7 +13,7 @@ from tuner.model.sheet import Sheet
 from tuner.simulate.traces import Trace
 from tuner.window.plots import thinning
 from tuner.window.plots.extent import Extent, SteadyExtent, wanted
-from tuner.window.plots.items import Curve, pen
+from tuner.window.plots.items import Curve
 from tuner.window.plots.marks import Marks, Words, trace_marks
 from tuner.window.plots.panel import Panel
 from tuner.window.plots.words import missed_words
@@ -192,8 +193,8 @@ class TracePanel(Panel):
 
     # Inside -----------------------------------------------------------------------------------------------------
 
-    def _colour(self, role: str) -> object:
-        return pen(self._theme.colour("kept" if self.stale and role != "band" else role))
+    def _colour(self, role: str) -> QColor:
+        return self._theme.colour("kept" if self.stale else role)
 
     def _draw_family(self, lines: Lines, seen: Extent, columns: int) -> None:
         """Draw the family, unless it is drawn already: a first answer leaves it as it was."""
@@ -201,8 +202,8 @@ class TracePanel(Panel):
         if drawn.same_as(self._drawn):
             return
         self._drawn = drawn
-        self.band.setPen(pen(self._theme.colour("band")))
-        self.family.setPen(pen(self._theme.colour("family")))
+        self.band.set_colour(self._theme.colour("band"))
+        self.family.set_colour(self._theme.colour("family"))
         self.band.show_pairs(thinning.envelope(lines.family_t, lines.family, seen, columns * 3 // 2))
         self.family.show_points(thinning.bundle(lines.family_t, lines.family, seen, min(_FAMILY_BINS, columns // 2)))
 
@@ -217,14 +218,14 @@ class TracePanel(Panel):
         if line is None:
             curve.clear_points()
             return
-        curve.setPen(self._colour(role))
+        curve.set_colour(self._colour(role))
         curve.show_points(thinning.single(line.t, line.values, seen, columns))
 
     def _draw_limited(self, limited: Limited | None, seen: Extent) -> None:
         if limited is None:
             self.limited.clear_points()
             return
-        self.limited.setPen(self._colour("limit"))
+        self.limited.set_colour(self._colour("limit"))
         self.limited.show_points(thinning.Points(limited.t, thinning.clipped(limited.values, seen), limited.connect))
 
     def _names(self, lines: Lines, seen: Extent) -> list[Words]:
