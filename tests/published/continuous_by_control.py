@@ -1,19 +1,20 @@
 """A loop with a continuous controller put together by python-control and scipy alone, to compare ours with.
 
 Without dead time it is a finite system of python-control. With it, curves come from the method of steps: over each
-interval as long as the dead time the loop is an ordinary differential equation driven by what is known already (Bellman
-and Cooke, Differential-Difference Equations, 1963), solved by the eighth-order method of Dormand and Prince. Its poles are
-eigenvalues of the derivative along Chebyshev points with the loop's equation as its end (Breda, Maset and Vermiglio,
-SIAM Journal on Scientific Computing 27, 2005; from memory).
+interval as long as the dead time the loop is an ordinary differential equation driven by what is known already
+(Bellman and Cooke, Differential-Difference Equations, 1963), solved by the eighth-order method of Dormand and Prince.
+Its poles are eigenvalues of the derivative along Chebyshev points with the loop's equation as its end (Breda, Maset and
+Vermiglio, SIAM Journal on Scientific Computing 27, 2005; from memory).
 """
 
 from collections.abc import Callable
-from functools import reduce
+from functools import partial, reduce
 from typing import NamedTuple
 
 import control
 import numpy as np
 from numpy.polynomial import Chebyshev
+from numpy.polynomial.chebyshev import chebpts1
 from scipy.integrate import solve_ivp
 
 from tests.published.sampled_by_control import ONE, Array, Block, ComplexArray, continuous_process, gains, lag, static
@@ -70,7 +71,7 @@ def method_of_steps(halves: Delayed, reference: float, disturbance: float, times
     inner, outer, late = halves.law, halves.plant, halves.dead_time
     order = outer.A.shape[0]
     x, out = np.zeros(order + inner.A.shape[0]), np.empty_like(times)
-    arriving: Callable[[Array], Array] = lambda t: 0.0 * t  # noqa: E731 - nothing arrives before the first dead time
+    sent: Callable[[Array], Array] = _nothing
 
     def effort(state: Array, entering: Array) -> Array:
         measured = outer.C[1] @ state[:order] + outer.D[1, 0] * entering
@@ -84,17 +85,27 @@ def method_of_steps(halves: Delayed, reference: float, disturbance: float, times
 
     for k in range(int(np.ceil(times[-1] / late)) + 1):
         start, end = k * late, (k + 1) * late
+        arriving = partial(_later, sent, late)
         solved = solve_ivp(slope, (start, end), x, "DOP853", rtol=1e-9, atol=1e-11, dense_output=True, args=(arriving,))
+        assert solved.sol is not None
         here = (times > start) & (times <= end) | ((times == 0.0) & (k == 0))
         if here.any():
             state = solved.sol(times[here])
             out[here] = outer.C[0] @ state[:order] + outer.D[0, 0] * arriving(times[here])
-        sent = Chebyshev.interpolate(
-            lambda t, sol=solved.sol, known=arriving: effort(sol(t), known(t)) + disturbance, _DEGREE, (start, end)
-        )
-        arriving = lambda t, sent=sent: sent(t - late)  # type: ignore[misc]  # noqa: E731 - one of a chain
+        points = chebpts1(_DEGREE + 1) * 0.5 * late + (start + 0.5 * late)
+        wanted = effort(solved.sol(points), arriving(points)) + disturbance
+        sent = Chebyshev.fit(points, wanted, _DEGREE, (start, end)).__call__
         x = solved.y[:, -1]
     return out
+
+
+def _nothing(t: Array) -> Array:
+    """Return what is under way before the first dead time is over."""
+    return 0.0 * t
+
+
+def _later(sent: Callable[[Array], Array], late: float, t: Array) -> Array:
+    return np.asarray(sent(t - late))
 
 
 def poles_with_dead_time(halves: Delayed) -> ComplexArray:
@@ -127,14 +138,15 @@ def _matrices(halves: Delayed) -> tuple[Array, Array]:
     return now, late
 
 
-def loop_gain(sheet: Sheet) -> Callable[[ComplexArray], ComplexArray]:
-    """Return L(s), by the formulas of its blocks; an unfiltered derivative is allowed."""
+def loop_gain(sheet: Sheet) -> Callable[[Array], ComplexArray]:
+    """Return L(jw) as a function of w, by the formulas of its blocks; an unfiltered derivative is allowed."""
     plant, controller = sheet.plant, sheet.controller
     assert isinstance(plant, ZeroPolePlant)
     kp, ki, kd = gains(controller)
     sign = 1.0 if controller.action == "reverse" else -1.0
 
-    def response(s: ComplexArray) -> ComplexArray:
+    def response(w: Array) -> ComplexArray:
+        s = 1j * w
         value = sign * plant.gain * np.exp(-plant.dead_time * s) * np.ones_like(s)
         for zero in plant.zeros:
             value = value * (s - zero)

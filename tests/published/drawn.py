@@ -107,21 +107,16 @@ def _roots(kind: str, draw: np.random.Generator) -> _Roots:
 
     some = int(draw.integers(1, 4))
     ringing = complex(-draw.uniform(0.02, 0.5), draw.uniform(0.4, 2.0))
-    match kind:
-        case "resonant":
-            return _Roots(left(some - 1)[:1], (ringing, ringing.conjugate(), *left(some - 1)))
-        case "integrating":
-            return _Roots(left(some - 1)[:1], (0j, *left(some)))
-        case "unstable":
-            return _Roots(left(1) if some > 1 else (), (complex(draw.uniform(0.05, 0.8)), *left(some)))
-        case "wrong way":
-            return _Roots((complex(draw.uniform(0.5, 4.0)),), left(some + 1))
-        case "biproper":
-            return _Roots(left(some), left(some))
-        case "double integrator":
-            return _Roots(left(1), (0j, 0j, *left(some - 1)))
-        case _:
-            return _Roots(left(some - 1), left(some + 1))
+    made = {
+        "lags": _Roots(left(some - 1), left(some + 1)),
+        "resonant": _Roots(left(some - 1)[:1], (ringing, ringing.conjugate(), *left(some - 1))),
+        "integrating": _Roots(left(some - 1)[:1], (0j, *left(some))),
+        "unstable": _Roots(left(1) if some > 1 else (), (complex(draw.uniform(0.05, 0.8)), *left(some))),
+        "wrong way": _Roots((complex(draw.uniform(0.5, 4.0)),), left(some + 1)),
+        "biproper": _Roots(left(some), left(some)),
+        "double integrator": _Roots(left(1), (0j, 0j, *left(some - 1))),
+    }
+    return made[kind]
 
 
 def _sign(plant: ZeroPolePlant) -> float:

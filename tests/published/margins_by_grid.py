@@ -96,7 +96,10 @@ def _at_half_a_turn(gain: LoopGain, w: Array, value: ComplexArray, found: GridMa
 
 def _roots(function: Callable[[Array], Array], w: Array, value: Array) -> list[float]:
     places = np.flatnonzero(np.sign(value[1:]) != np.sign(value[:-1]))
-    one = lambda at: float(function(np.array([at]))[0])  # noqa: E731 - brentq wants a function of a number
+
+    def one(at: float) -> float:
+        return float(function(np.array([at]))[0])
+
     return [float(brentq(one, w[i], w[i + 1], xtol=1e-15, rtol=1e-14)) for i in places if one(w[i]) * one(w[i + 1]) < 0]
 
 

@@ -57,7 +57,7 @@ def unmatched(ours: ComplexArray, theirs: ComplexArray) -> float:
 
 @pytest.mark.parametrize("seed", LOOPS)
 def test_a_random_sampled_loop(seed: int) -> None:
-    """Both runs at the samples, poles, stability, static error and all margins are those of python-control and scipy."""
+    """Both runs at the samples, poles, stability, static error, all margins are those of python-control and scipy."""
     sheet = sampled_sheet(seed)
     found, closed = judged(sheet), closed_loop(sheet)
     poles = control.poles(closed)

@@ -52,7 +52,8 @@ def simulate_continuous(sheet: Sheet, members: Sequence[Member]) -> Extrapolated
     LoopError
         When a member cannot be computed, or its loop has no answer.
     """
-    gains = [direct_gain(sheet, process) for process in processes(sheet, members)]
+    family = processes(sheet, members)
+    gains, steps_show = [direct_gain(sheet, process) for process in family], _steps_show(sheet, family)
     fewest = _fewest(sheet)
     grid = Grid(sheet.trial.duration / fewest, 1, fewest + 1)
     middle_grid = _halved(grid)
@@ -63,9 +64,15 @@ def simulate_continuous(sheet: Sheet, members: Sequence[Member]) -> Extrapolated
         fine = _run(sheet, members, fine_grid, gains)
         better = _extrapolated(sheet, middle, fine, any(gains))
         reached = _agree(sheet, rough.y, better.y[..., ::2])
+        reached = reached and (not steps_show or _agree(sheet, middle.y, fine.y[..., ::2]))
         if reached or 2 * fine_grid.points > _most(sheet, members):
             return Extrapolated(better, middle_grid, reached)
         middle, rough, middle_grid = fine, better, fine_grid
+
+
+def _steps_show(sheet: Sheet, family: Sequence[Process]) -> bool:
+    """Return whether the output shows the steps of the effort: two runs that agree may then both be off."""
+    return not sheet.actuator.lag and any(one.plant.d and one.plant.dead_time for one in family)
 
 
 def _fewest(sheet: Sheet) -> int:
@@ -162,7 +169,10 @@ def _scales(sheet: Sheet, y: Array) -> tuple[Array, Array]:
 def _agree(sheet: Sheet, coarse: Array, fine: Array) -> bool:
     size, scales = _scales(sheet, fine)
     allowed = np.maximum(AGREEMENT * scales, 2.0 * sheet.sensor.resolution)
-    return bool(((np.abs(fine - coarse) <= allowed) | (scales > _FAR_AWAY * size)).all())
+    far = scales > _FAR_AWAY * size
+    # The size of the disturbance run is not known beforehand; where the reference run is far away, so is this one.
+    far[:, 1] |= far[:, 0]
+    return bool(((np.abs(fine - coarse) <= allowed) | far).all())
 
 
 def _extrapolated(sheet: Sheet, coarse: Runs, fine: Runs, algebraic: bool) -> Runs:
