@@ -90,24 +90,40 @@ def test_the_size_of_the_family(capsys: Captured) -> None:
     assert json.loads(capsys.readouterr().out)["family_size"] == 4
 
 
+def typed(data: bytes) -> io.TextIOWrapper:
+    """Return a standard input that holds these bytes, of a terminal that knows only ASCII."""
+    return io.TextIOWrapper(io.BytesIO(data), "ascii")
+
+
 def test_a_sheet_on_standard_input(monkeypatch: pytest.MonkeyPatch, capsys: Captured) -> None:
     """A dash reads the sheet from standard input, and faults say so."""
-    monkeypatch.setattr(sys, "stdin", io.StringIO(MET))
+    monkeypatch.setattr(sys, "stdin", typed(MET.encode()))
     assert main(["judge", "-", "--json"]) == 0
-    monkeypatch.setattr(sys, "stdin", io.StringIO(""))
+    monkeypatch.setattr(sys, "stdin", typed(b""))
     assert main(["judge", "-", "--json"]) == 2
     assert capsys.readouterr().err == "standard input: expected a tuning sheet, found an empty file\n"
+
+
+def test_standard_input_is_utf_8(monkeypatch: pytest.MonkeyPatch, capsys: Captured) -> None:
+    """Whatever the terminal's encoding, a sheet is read as UTF-8; what is none is told."""
+    monkeypatch.setattr(sys, "stdin", typed(MET.replace("Bath", "Bäckerei").encode()))
+    assert main(["judge", "-", "--json"]) == 0
+    assert json.loads(capsys.readouterr().out)["title"] == "Bäckerei"
+    monkeypatch.setattr(sys, "stdin", typed(b"sheet = 1 # \xff"))
+    assert main(["judge", "-"]) == 2
+    assert capsys.readouterr().err == "standard input: expected text in UTF-8, found byte 13, which is none\n"
 
 
 @pytest.mark.parametrize(
     ("name", "said"),
     [
         ("none.toml", "expected a file that can be read, found no such file"),
+        ("a" * 300 + ".toml", "expected a file that can be read, found file name too long"),
         ("", "expected a folder with tuning sheets (*.toml), found none in it"),
     ],
 )
 def test_what_is_not_there(name: str, said: str, tmp_path: Path, capsys: Captured) -> None:
-    """A missing file and an empty folder are one sentence each."""
+    """A missing file, a name that cannot be one and an empty folder are one sentence each."""
     path = str(tmp_path / name) if name else str(tmp_path)
 
     assert main(["judge", path]) == 2

@@ -48,6 +48,7 @@ def test_every_command_explains_itself(one: Command, capsys: Captured) -> None:
             "trimwright: expected a command or a tuning sheet, found 'juge'; the nearest valid name is judge\n",
         ),
         (["zzz"], "trimwright: expected a command or a tuning sheet, found 'zzz'\n"),
+        (["z" * 300], f"trimwright: expected a command or a tuning sheet, found '{'z' * 300}'\n"),
         (
             ["--versoin"],
             "trimwright: expected a command, a sheet or an option, found '--versoin'; "

@@ -19,6 +19,15 @@ def test_a_folder_stands_for_its_sheets(tmp_path: Path) -> None:
     assert found == [Source("x.toml"), Source(str(tmp_path / "a.toml")), Source(str(tmp_path / "b.toml"))]
 
 
+def test_a_name_that_cannot_be_one_is_left_to_its_reading() -> None:
+    """A name too long for any file is no folder; reading it says why."""
+    name = "a" * 300
+
+    assert sources([name]) == [Source(name)]
+    with pytest.raises(SheetError, match=r": expected a file that can be read, found file name too long$"):
+        Source(name).read()
+
+
 def test_a_folder_without_sheets_is_a_fault(tmp_path: Path) -> None:
     """An empty folder is said, and does not pass as nothing to do."""
     assert sources([str(tmp_path)]) == [Missing(str(tmp_path))]

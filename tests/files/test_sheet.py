@@ -131,9 +131,9 @@ def test_a_file_that_is_not_text_is_told(said: str) -> None:
 
 
 def test_a_large_file_is_told(said: str) -> None:
-    """A file beyond the limit is told with its size and the limit."""
+    """A file beyond the limit is told with the limit."""
     Path(said).write_bytes(b"#" * (LARGEST + 1))
-    assert told(said) == f"{said}: expected at most 1,000,000 bytes, found 1,000,001"
+    assert told(said) == f"{said}: expected at most 1,000,000 bytes, found more"
 
 
 def test_an_empty_file_is_told(said: str) -> None:
@@ -191,6 +191,13 @@ def test_a_failed_writing_leaves_the_file(said: str, monkeypatch: pytest.MonkeyP
         write(Path(said), parse(TEXT))
     assert Path(said).read_text(encoding="utf-8") == "as it was"
     assert list(Path(said).parent.iterdir()) == [Path(said)]
+
+
+def test_a_file_where_a_folder_should_be_is_told(said: str) -> None:
+    """A path through a file is told like any other that cannot be written."""
+    Path(said).touch()
+    with pytest.raises(SheetError, match="expected a file that can be written, found not a directory"):
+        write(Path(said) / "loop.toml", parse(TEXT))
 
 
 def test_writing_to_a_folder_or_a_locked_file_is_told(

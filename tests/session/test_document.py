@@ -11,7 +11,7 @@ from hypothesis import strategies as st
 from tests.session.sheets import TEXT, wash_bath
 from tuner.errors import FormulaError, LoopError, SheetError, TrimwrightError
 from tuner.files.sheet import parse, read
-from tuner.model.controller import Controller
+from tuner.model.controller import Notch
 from tuner.model.parameters import find
 from tuner.model.plant import CoefficientPlant, ExpressionPlant, PhysicsPlant, Plant, ZeroPolePlant
 from tuner.session.document import Document
@@ -122,14 +122,15 @@ def test_as_found_is_restored_and_kept(document: Document) -> None:
     assert document.sheet.controller.gain_1 == 3.0
 
 
-def test_as_found_holds_only_what_its_table_can(document: Document) -> None:
-    """Noted gains follow the controller in what the as-found table has no key for, so that saving loses nothing."""
+def test_the_controller_as_found_stays_whole(document: Document) -> None:
+    """What was met on site follows no change of the controller, neither in its action nor in its blocks."""
     document.note_as_found()
-    changed = replace(document.sheet.controller, action="direct", delay_samples=2)
+    noted = document.sheet.controller.as_found
+    changed = replace(document.sheet.controller, action="direct", delay_samples=2, notch=Notch(0.5))
     document.change(replace(document.sheet, controller=changed), label="Turn")
-    found = document.sheet.controller.as_found
-    assert isinstance(found, Controller)
-    assert (found.action, found.delay_samples, found.gain_1) == ("direct", 2, 3.0)
+    assert document.sheet.controller.as_found == noted
+    document.restore_as_found()
+    assert document.sheet.controller == replace(wash_bath().controller, as_found=noted)
 
 
 def test_reset_is_the_value_as_opened(document: Document) -> None:

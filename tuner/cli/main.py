@@ -4,7 +4,6 @@ import os
 import sys
 from collections.abc import Sequence
 from io import TextIOWrapper
-from pathlib import Path
 
 from tuner import __version__
 from tuner.cli import status
@@ -72,7 +71,7 @@ def _command(words: list[str]) -> tuple[Command, list[str]]:
             return command, words[1:]
     if first.startswith("-") and first != "-":
         raise UsageError(f"{PROGRAM}: {unexpected(first, _OWN_OPTIONS, 'a command, a sheet or an option')}")
-    if first.endswith(".toml") or Path(first).exists():
+    if first.endswith(".toml") or os.path.exists(first):  # noqa: PTH110 - Path's refuses what cannot be a name
         return OPEN, words
     raise UsageError(
         f"{PROGRAM}: {unexpected(first, [command.name for command in COMMANDS], 'a command or a tuning sheet')}"

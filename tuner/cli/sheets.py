@@ -1,5 +1,6 @@
 """The tuning sheets that a command line names: files, folders of them, or standard input."""
 
+import os
 import sys
 from collections.abc import Iterable
 from dataclasses import dataclass
@@ -28,7 +29,8 @@ class Source:
         from tuner.files import sheet
 
         if self.name == STANDARD_INPUT:
-            return sheet.parse(sys.stdin.read(), "standard input")
+            # As bytes: a sheet is UTF-8 whatever the terminal's encoding.
+            return sheet.parse(sheet.read_stream(sys.stdin.buffer, "standard input"), "standard input")
         return sheet.read(Path(self.name))
 
 
@@ -47,7 +49,8 @@ def sources(words: Iterable[str]) -> list[Source | Missing]:
     """Return the sheets that words name, in order; a folder stands for the sheets in it, by name."""
     found: list[Source | Missing] = []
     for word in words:
-        if word != STANDARD_INPUT and Path(word).is_dir():
+        # Unlike Path's, this takes what cannot even be a name for no folder; reading it then says why.
+        if word != STANDARD_INPUT and os.path.isdir(word):  # noqa: PTH112 - see above
             inside = sorted(path for path in Path(word).glob("*.toml") if path.is_file())
             found += [Source(str(path)) for path in inside] or [Missing(word)]
         else:

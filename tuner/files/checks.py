@@ -6,6 +6,7 @@ from typing import Any, Final
 
 from tuner.errors import Fault
 from tuner.files import words
+from tuner.files.schema import NONE
 from tuner.model.parameters import GAIN_KEYS
 
 Table = dict[str, Any]
@@ -32,15 +33,15 @@ def _ranges(sheet: Table) -> Iterator[Fault]:
         signal = table(sheet, key)
         low, high, resting = signal.get("low"), signal.get("high"), signal.get("resting", 0.0)
         if low is not None and high is not None and low >= high:
-            yield Fault(f"{key}.low", f"a number below {key}.high, {high:g}", f"{low:g}")
+            yield Fault(f"{key}.low", f"a number below {key}.high, {words.number(high)}", words.number(low))
         elif low is not None and resting < low:
-            yield Fault(f"{key}.resting", f"a number of at least {key}.low, {low:g}", _resting(signal))
+            yield Fault(f"{key}.resting", f"a number of at least {key}.low, {words.number(low)}", _resting(signal))
         elif high is not None and resting > high:
-            yield Fault(f"{key}.resting", f"a number of at most {key}.high, {high:g}", _resting(signal))
+            yield Fault(f"{key}.resting", f"a number of at most {key}.high, {words.number(high)}", _resting(signal))
 
 
 def _resting(signal: Table) -> str:
-    return f"{signal['resting']:g}" if "resting" in signal else "nothing, which means 0"
+    return words.number(signal["resting"]) if "resting" in signal else "nothing, which means 0"
 
 
 def _foreign_gains(written: Table, sound: Table) -> Iterator[Fault]:
@@ -75,13 +76,17 @@ def _feedforward_at(path: str, block: Table) -> Iterator[Fault]:
 
 
 def _notch(sheet: Table) -> Iterator[Fault]:
-    period: float = table(sheet, "controller").get("sample_time", 0.0)
+    """Tell of notches that a sampled controller cannot have; what as found leaves out is the controller's."""
+    period, frequency = 0.0, 0.0
     for path in ("controller", "controller.as_found"):
-        period = table(sheet, path).get("sample_time", period)
-        frequency = table(sheet, f"{path}.notch").get("frequency", 0.0)
-        if frequency * period >= pi:
+        here = table(sheet, path)
+        own = table(here, "notch").get("frequency")
+        period = here.get("sample_time", period)
+        frequency = 0.0 if here.get("notch") == NONE else frequency if own is None else own
+        if frequency * period >= pi and here.keys() & {"sample_time", "notch"}:
             top = f"a frequency below pi / sample_time, {pi / period:.4g}"
-            yield Fault(f"{path}.notch.frequency", top, f"{frequency:g}")
+            inherited = f'{top}, or notch = "{NONE}"', f"the controller's, {words.number(frequency)}"
+            yield Fault(f"{path}.notch.frequency", *(inherited if own is None else (top, words.number(frequency))))
 
 
 def _seconds(sheet: Table) -> Iterator[Fault]:
@@ -97,9 +102,11 @@ def _samples(sheet: Table) -> Iterator[Fault]:
         if duration is None or not period:
             continue
         if period > duration:
-            yield Fault(f"{path}.sample_time", f"at most trial.duration, {duration:g}", f"{period:g}")
+            yield Fault(
+                f"{path}.sample_time", f"at most trial.duration, {words.number(duration)}", words.number(period)
+            )
         elif duration > MOST_SAMPLES * period:
-            most = f"at most {MOST_SAMPLES:,} samples of {path}.sample_time, {period:g}"
+            most = f"at most {MOST_SAMPLES:,} samples of {path}.sample_time, {words.number(period)}"
             yield Fault("trial.duration", most, f"{duration / period:,.0f}")
 
 

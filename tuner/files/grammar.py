@@ -7,6 +7,7 @@ from typing import Final
 
 from lark import Lark, Token, Transformer
 
+from tuner.files import words
 from tuner.files.spelling import NAME, SUPERSCRIPTS
 from tuner.model.formula import Exponential, Name, Negative, Node, Number, Power, Product, Quotient, SquareRoot, Sum
 
@@ -86,12 +87,7 @@ class _Builder(Transformer[Token, Node]):
     """Each method builds the node of the grammar's rule of that name."""
 
     def number(self, children: list[Token]) -> Node:
-        value = float(children[0])
-        if not isfinite(value):
-            raise RefusedError(
-                _start(children[0]), "a number that is not too large to compute with", f"'{children[0]}'"
-            )
-        return Number(value)
+        return _number(children[0], str(children[0]))
 
     def name(self, children: list[Token]) -> Node:
         return Number(pi) if children[0] in ("pi", "π") else Name(str(children[0]), _start(children[0]))
@@ -113,7 +109,7 @@ class _Builder(Transformer[Token, Node]):
 
     def superscript(self, children: tuple[Node, Token]) -> Node:
         base, raised = children
-        return self.power((base, raised, Number(float(raised.translate(_PLAIN_DIGITS)))))
+        return self.power((base, raised, _number(raised, raised.translate(_PLAIN_DIGITS))))
 
     def signed(self, children: tuple[Token, Node]) -> Node:
         sign, node = children
@@ -140,6 +136,13 @@ class _Builder(Transformer[Token, Node]):
 
 def _start(token: Token) -> int:
     return token.start_pos or 0
+
+
+def _number(token: Token, digits: str) -> Number:
+    value = float(digits)
+    if not isfinite(value):
+        raise RefusedError(_start(token), "a number that is not too large to compute with", words.quoted(token))
+    return Number(value)
 
 
 def _negative(node: Node) -> Node:

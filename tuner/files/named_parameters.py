@@ -1,6 +1,6 @@
 """The named parameters of a plant: their values, units and spreads, and whether formula and names agree."""
 
-from collections.abc import Iterable
+from collections.abc import Collection, Iterable
 from typing import TYPE_CHECKING, Any, Final
 
 from tuner.errors import Fault, FormulaError, nearest
@@ -27,7 +27,7 @@ def formula_names(text: str, key: str, faults: list[Fault]) -> dict[str, int] | 
         return None
 
 
-def told_names(used: dict[str, int], elsewhere: dict[str, int], named: Iterable[str]) -> list[Fault]:
+def told_names(used: dict[str, int], elsewhere: dict[str, int], named: Collection[str]) -> list[Fault]:
     """Tell of names in the formula without a value, and of values that no formula uses."""
     given = set(named)
     unknown = [name for name in used if name not in given]
@@ -71,18 +71,19 @@ def _spread(key: str, value: float, written: str | list[float], faults: list[Fau
     if isinstance(written, str):
         return _spread_in_percent(key, value, float(written.replace("%", "")), faults)
     low, high = (float(end) for end in written)
+    found = f"[{words.number(low)}, {words.number(high)}]"
     if low > high:
-        faults.append(Fault(key, "[low, high], the lower end first", f"[{low:g}, {high:g}]"))
+        faults.append(Fault(key, "[low, high], the lower end first", found))
     elif not low <= value <= high:
-        faults.append(Fault(key, f"a range that contains the value {value:g}", f"[{low:g}, {high:g}]"))
+        faults.append(Fault(key, f"a range that contains the value {words.number(value)}", found))
     return Spread(low, high)
 
 
 def _spread_in_percent(key: str, value: float, percent: float, faults: list[Fault]) -> Spread:
     if percent > 100.0:
-        faults.append(Fault(key, "a spread of at most 100 %, or [low, high]", f"{percent:g} %"))
+        faults.append(Fault(key, "a spread of at most 100 %, or [low, high]", f"{words.number(percent)} %"))
     if value == 0.0 and percent:
-        faults.append(Fault(key, "[low, high] for a value of 0", f"{percent:g} % of nothing"))
+        faults.append(Fault(key, "[low, high] for a value of 0", f"{words.number(percent)} % of nothing"))
     return spread_percent(value, percent)
 
 
@@ -114,7 +115,7 @@ def _told_physical(model: "PhysicalParameter", given: PlantParameter) -> list[Fa
     faults = []
     if lowest < model.minimum:
         bound = f"of at least {model.minimum:g}" if model.minimum == 0.0 or model.minimum > _SMALL else "above 0"
-        faults.append(Fault(key, f"a number {bound}, drift included", f"{lowest:g}"))
+        faults.append(Fault(key, f"a number {bound}, drift included", words.number(lowest)))
     if given.unit and given.unit != model.unit:
         faults.append(Fault(f"{key}.unit", f"'{model.unit}', the unit of this model", words.quoted(given.unit)))
     return faults

@@ -1,6 +1,7 @@
 """A sheet as plain tables of what to write: each value beside what its absence would mean."""
 
 from dataclasses import dataclass
+from decimal import Decimal
 from typing import Final
 
 from tuner.files.schema import NONE
@@ -159,7 +160,7 @@ def _spread(parameter: PlantParameter) -> Value:
         return None
     percent = spread.percent
     if percent is not None and spread == spread_percent(parameter.value, percent):
-        return f"{int(percent) if percent.is_integer() else percent} %"
+        return f"{Decimal(str(percent).removesuffix('.0')):f} %"
     return [spread.low, spread.high]
 
 

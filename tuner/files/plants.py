@@ -145,7 +145,8 @@ def _roots(written: list[Any], key: str, faults: list[Fault]) -> tuple[complex, 
     roots = tuple(complex(*root) if isinstance(root, list) else complex(root) for root in written)
     alone = Counter(roots) - Counter(root.conjugate() for root in roots)
     for root in alone:
-        expected = f"its conjugate [{root.real:g}, {-root.imag:g}] beside [{root.real:g}, {root.imag:g}]"
+        real, above, below = (words.number(part) for part in (root.real, root.imag, -root.imag))
+        expected = f"its conjugate [{real}, {below}] beside [{real}, {above}]"
         faults.append(Fault(key, expected, "none"))
     return roots
 

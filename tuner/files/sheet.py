@@ -4,9 +4,10 @@ import os
 import re
 import tomllib
 from collections.abc import Iterator
+from contextlib import suppress
 from errno import EISDIR
 from pathlib import Path
-from typing import Any, Final
+from typing import Any, BinaryIO, Final
 
 from tuner.errors import Fault, SheetError
 from tuner.files import words
@@ -38,10 +39,13 @@ def parse(text: str, file: str = "") -> Sheet:
     version = written.get("sheet")
     if isinstance(version, int) and version > VERSION:
         expected = f"{VERSION}, the newest format that this version of Trimwright reads"
-        raise SheetError([Fault("sheet", expected, str(version))], file)
+        raise SheetError([Fault("sheet", expected, words.found(version))], file)
     from tuner.files.checking import check
 
-    checked = check(written)
+    try:
+        checked = check(written)
+    except RecursionError:  # dotted keys nest tables deeper than the TOML reader itself ever goes
+        raise SheetError([_TOO_DEEP], file) from None
     if checked.faults or checked.sheet is None:
         raise SheetError(checked.faults, file)
     return checked.sheet
@@ -51,9 +55,11 @@ def _tables(text: str, file: str) -> dict[str, Any]:
     if not text.strip():
         raise SheetError([Fault("", "a tuning sheet", "an empty file")], file)
     try:
-        return tomllib.loads(text)
+        tables = tomllib.loads(text)
+        repr(tables)  # fails for an integer like 0xfff..., of more digits than Python spells out
     except (ValueError, RecursionError) as error:
         raise SheetError([_syntax_fault(text, error)], file) from None
+    return tables
 
 
 _SYNTAX: Final = {
@@ -82,6 +88,8 @@ _SYNTAX: Final = {
 }
 """What was expected, by the beginning of the TOML reader's message."""
 
+_TOO_DEEP: Final = Fault("", "TOML that can be read", "numbers too long or tables nested too deep")
+
 _PLACE: Final = re.compile(r"\(at (?:line (\d+), column (\d+)|end of document)\)$")
 
 
@@ -89,12 +97,12 @@ def _syntax_fault(text: str, error: Exception) -> Fault:
     """Say in words where a text stops being TOML."""
     place = _PLACE.search(str(error))
     if place is None:
-        return Fault("", "TOML that can be read", "numbers too long or tables nested too deep")
-    expected = next((words for start, words in _SYNTAX.items() if str(error).startswith(start)), "TOML")
+        return _TOO_DEEP
+    expected = next((wanted for start, wanted in _SYNTAX.items() if str(error).startswith(start)), "TOML")
     if place[1] is None:
         return Fault("at the end", expected, "the end of the file")
-    line = text.splitlines()[int(place[1]) - 1 : int(place[1])]
-    return Fault(f"line {place[1]}, column {place[2]}", expected, words.quoted(line[0].strip() if line else ""))
+    line = text.split("\n")[int(place[1]) - 1]
+    return Fault(f"line {place[1]}, column {place[2]}", expected, words.quoted(line.strip()))
 
 
 def read(path: Path) -> Sheet:
@@ -120,17 +128,26 @@ def read_text(path: Path) -> str:
         if path.is_dir():
             raise SheetError([Fault("", "a tuning sheet", "a folder")], str(path))
         with path.open("rb") as file:
-            data = file.read(LARGEST + 1)
-            size = path.stat().st_size
+            return read_stream(file, str(path))
     except OSError as error:
         raise SheetError([Fault("", "a file that can be read", _reason(error))], str(path)) from None
+
+
+def read_stream(stream: BinaryIO, file: str) -> str:
+    """Return the text of a sheet that comes as bytes; `file` is its name in faults.
+
+    Raises
+    ------
+    SheetError
+        When it is too large or not text.
+    """
+    data = stream.read(LARGEST + 1)
     if len(data) > LARGEST:
-        raise SheetError([Fault("", f"at most {LARGEST:,} bytes", f"{size:,}")], str(path))
+        raise SheetError([Fault("", f"at most {LARGEST:,} bytes", "more")], file)
     try:
         return data.decode("utf-8-sig")
     except UnicodeDecodeError as error:
-        found = f"byte {error.start + 1}, which is none"
-        raise SheetError([Fault("", "text in UTF-8", found)], str(path)) from None
+        raise SheetError([Fault("", "text in UTF-8", f"byte {error.start + 1}, which is none")], file) from None
 
 
 def _reason(error: OSError) -> str:
@@ -198,7 +215,8 @@ def write(path: Path, sheet: Sheet, original_text: str = "") -> None:
     except OSError as error:
         raise SheetError([Fault("", "a file that can be written", _reason(error))], str(path)) from None
     finally:
-        beside.unlink(missing_ok=True)
+        with suppress(OSError):  # there is none when it could not be made, whatever stood in the way
+            beside.unlink()
 
 
 def _check_writable(path: Path) -> None:

@@ -70,16 +70,18 @@ def _told(error: ValidationError, above: tuple[str | int, ...] = ()) -> Iterator
         yield from _unknown(names, error)
     elif error.validator == "required":
         yield from _missing(names, error)
-    elif error.validator == "anyOf" and isinstance(error.instance, dict):
+    elif (branch := _branch_of_table(error)) is not None:
         for inner in error.context or ():
-            if inner.schema_path[0] == _branch_of_table(error):
+            if inner.schema_path[0] == branch:
                 yield from _told(inner, path)
     else:
         yield _wrong(names, path, error), names
 
 
 def _branch_of_table(error: ValidationError) -> int | None:
-    """Return which of the alternatives is a table, for a table must mean that one."""
+    """Return which of several alternatives is a table, for a table must mean that one; None where there is none."""
+    if error.validator != "anyOf" or not isinstance(error.instance, dict):
+        return None
     branches = cast("list[Schema]", error.validator_value)
     return next((index for index, branch in enumerate(branches) if branch.get("type") == "object"), None)
 

@@ -24,9 +24,16 @@ def found(value: object) -> str:
     return "a table" if isinstance(value, dict) else f"the date or time {value}"
 
 
+def number(value: float) -> str:
+    """Return a number with the digits that tell it from another one nearby."""
+    return f"{value:.15g}"
+
+
 def _number(value: float) -> str:
-    text = str(value)
-    return text if len(text) <= _LONGEST else f"a number of {len(text)} digits"
+    # Python refuses to spell out an integer of thousands of digits, which a sheet can hold as 0xfff...
+    return (
+        str(value) if isinstance(value, float) or abs(value) < 10**_LONGEST else f"a number over {_LONGEST} digits long"
+    )
 
 
 def _array(value: list[object]) -> str:

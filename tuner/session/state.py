@@ -2,10 +2,11 @@
 
 from dataclasses import dataclass, field, replace
 
+from tuner.model.controller import Controller
 from tuner.model.plant import ExpressionPlant, PhysicsPlant, Plant, PlantParameter
 from tuner.model.sheet import Sheet
 from tuner.session.plant_forms import PlantForm, PlantForms, form_of, switch
-from tuner.session.tunings import KeptTuning, with_as_found
+from tuner.session.tunings import KeptTuning
 
 
 @dataclass(frozen=True, slots=True)
@@ -31,10 +32,9 @@ def first_state(sheet: Sheet, kept: tuple[KeptTuning, ...] = ()) -> State:
 
 
 def with_sheet(state: State, sheet: Sheet) -> State:
-    """Return the state with another sheet; the gains as found follow the controller in all but themselves."""
-    controller = with_as_found(sheet.controller, sheet.controller.as_found)
+    """Return the state with another sheet."""
     forms = state.forms if sheet.plant == state.sheet.plant else state.forms.edited(sheet.plant)
-    return replace(state, sheet=replace(sheet, controller=controller), forms=forms)
+    return replace(state, sheet=sheet, forms=forms)
 
 
 def with_plant(state: State, plant: Plant) -> State:
@@ -61,8 +61,7 @@ def with_formula(state: State, text: str) -> State:
     """
     from tuner.session.plants import names_in, with_names
 
-    path = state.sheet.controller.disturbance_feedforward
-    used = (*names_in(text), *names_in(path.expression if path else ""))
+    used = (*names_in(text), *_names_of_paths(state.sheet.controller))
     known = state.sheet.plant.parameters if isinstance(state.sheet.plant, ExpressionPlant) else ()
     plant, spare = with_names(ExpressionPlant(text, known), state.forms.spare, used)
     changed = with_plant(state, plant)
@@ -80,13 +79,21 @@ def with_disturbance_path(state: State, text: str) -> State:
     from tuner.session.fields import with_disturbance_feedforward
     from tuner.session.plants import names_in, with_names
 
-    used = names_in(text)
     sheet, plant = with_disturbance_feedforward(state.sheet, text), state.sheet.plant
+    used = _names_of_paths(sheet.controller)
     if not isinstance(plant, ExpressionPlant):
         return with_sheet(state, sheet)
     plant, spare = with_names(plant, state.forms.spare, (*names_in(plant.expression), *used))
     changed = with_sheet(state, replace(sheet, plant=plant))
     return replace(changed, forms=replace(changed.forms, spare=spare))
+
+
+def _names_of_paths(controller: Controller) -> tuple[str, ...]:
+    """Return the names in the paths of a measured disturbance, now and as found."""
+    from tuner.session.plants import names_in
+
+    paths = [one.disturbance_feedforward for one in (controller, controller.as_found) if one is not None]
+    return tuple(name for path in paths if path is not None for name in names_in(path.expression))
 
 
 def with_typed_plant(state: State) -> State:

@@ -1,7 +1,7 @@
 """Tunings: kept ones to compare with, and the words and marks that tell one from another."""
 
 from collections.abc import Iterable
-from dataclasses import dataclass, fields, replace
+from dataclasses import dataclass, replace
 from string import ascii_uppercase
 from typing import Literal
 
@@ -10,8 +10,6 @@ from tuner.model.controller import Controller, Form
 from tuner.model.parameters import GAIN_KEYS
 
 MarkKind = Literal["reset", "as_found", "kept"]
-
-_FOUND_ON_SITE = ("form", "gain_1", "gain_2", "gain_3", "filter_time", "b", "c", "windup_time", "sample_time")
 
 
 @dataclass(frozen=True, slots=True)
@@ -56,14 +54,8 @@ def in_form_or_none(controller: Controller | None, form: Form) -> Controller | N
 
 
 def with_as_found(controller: Controller, found: Controller | None) -> Controller:
-    """Return a controller with the gains met on site beside it.
-
-    Whatever the as-found table of a sheet cannot hold (action, filters, feedforward ...) is the controller's own.
-    """
-    if found is None:
-        return replace(controller, as_found=None)
-    own = {field.name: getattr(found, field.name) for field in fields(found) if field.name in _FOUND_ON_SITE}
-    return replace(controller, as_found=replace(controller, as_found=None, **own))
+    """Return a controller with the whole one met on site beside it, which itself has none beside it."""
+    return replace(controller, as_found=None if found is None else replace(found, as_found=None))
 
 
 def marks(name: str, present: Controller, opened: Controller, kept: Iterable[KeptTuning]) -> tuple[Mark, ...]:

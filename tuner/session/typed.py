@@ -145,7 +145,7 @@ def shown(value: float | None) -> str:
     """Return a number as it is shown for editing: all its digits, none more; empty for None."""
     if value is None:
         return ""
-    text = repr(float(value))
+    text = repr(float(value) + 0.0)  # no "-0"
     return text.removesuffix(".0") if "e" not in text else text.replace(".0e", "e")
 
 
