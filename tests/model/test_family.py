@@ -44,10 +44,8 @@ def test_all_corners_come_while_they_fit(count: int) -> None:
 
 @pytest.mark.parametrize("count", [5, 6, 8, 12, 15])
 def test_a_fraction_of_the_corners_is_balanced(count: int) -> None:
-    """Each parameter is at either end equally often, and no two always move together or apart.
-
-    The property of a two-level fractional design of resolution III or more (Box, Hunter and Hunter).
-    """
+    """Each parameter is at either end equally often, and no two always move together or apart."""
+    # The property of a two-level fractional design of resolution III or more (Box, Hunter and Hunter).
     columns = list(zip(*corners(count), strict=True))
     assert len(columns[0]) == 16
     assert all(sum(column) == 8 for column in columns)

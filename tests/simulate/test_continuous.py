@@ -49,10 +49,8 @@ def _settled(trace: Trace) -> float:
 def test_the_ultimate_cycle_example_of_ogata(
     gains: tuple[float, float, float], overshoot: float, peak_time: float, settling_time: float
 ) -> None:
-    """Ogata, Modern Control Engineering, example 8-1, and its retunes: an unfiltered PID on the error.
-
-    The book prints about 62, 18 and 28 % overshoot; the digits here were computed independently.
-    """
+    """Ogata, Modern Control Engineering, example 8-1, and its retunes: an unfiltered PID on the error."""
+    # The book prints about 62, 18 and 28 % overshoot; the digits here were computed independently.
     ideal = Controller("standard", 0.0, *gains, c=1.0)
     traces = run(sheet("1/(s (s + 1)(s + 5))", ideal, Trial(30.0)), NOMINAL)[0]
     time, height = _peak(traces.reference)
@@ -76,10 +74,8 @@ def test_the_ultimate_cycle_example_of_ogata(
 def test_an_integrator_that_saturates(
     windup_time: float | None, leaves: float, peak: float, peak_time: float, settling_time: float
 ) -> None:
-    """1/s under PI with the effort limited to 0.1: the closed form, with and without back-calculation.
-
-    Method: Astrom and Hagglund, PID Controllers, 1995; numbers from the closed form.
-    """
+    """1/s under PI with the effort limited to 0.1: the closed form, with and without back-calculation."""
+    # Method: Astrom and Hagglund, PID Controllers, 1995; numbers from the closed form.
     pi = Controller(gain_1=1.0, gain_2=1.0, windup_time=windup_time)
     trace = run(sheet("1/s", pi, Trial(120.0), Manipulated(low=-0.1, high=0.1)), NOMINAL)[0].reference
     spacing = trace.t[1] - trace.t[0]
