@@ -88,8 +88,8 @@ def test_the_second_order_loop(  # noqa: PLR0913, PLR0917 - the columns of the t
 def test_worked_examples(
     expression: str, overshoot: float, peak_time: float, rise_time: float, settling_time: float
 ) -> None:
-    """Ogata, Modern Control Engineering, Example 5-1 (.785, .095); Nise, Example 4.5 (.475, 2.838, .23): from memory."""
-    # Settling times are true last exits, not the envelope's 4/sigma that both books print.
+    """Ogata, Modern Control Engineering, Example 5-1 (.785, .095), and Nise, Example 4.5 (.475, 2.838, .23)."""
+    # Both from memory. Settling times are true last exits, not the envelope's 4/sigma that both books print.
     found = judged(expression, "kp = 1", "duration = 6")
 
     assert value(found, "overshoot") == pytest.approx(overshoot, abs=HEIGHT)
