@@ -7,6 +7,7 @@ from PySide6.QtWidgets import QGridLayout, QLabel, QSizePolicy, QVBoxLayout, QWi
 
 from tuner.errors import TrimwrightError
 from tuner.session.checks import sentence
+from tuner.window.elided import ElidedLabel
 from tuner.window.theme import Theme
 
 LABEL_WIDTH, UNIT_WIDTH = 108, 52
@@ -70,6 +71,14 @@ def heading(theme: Theme, text: str) -> QLabel:
     return label
 
 
+def unit_label() -> ElidedLabel:
+    """Return the place of a unit behind a control."""
+    label = ElidedLabel(stretch=False)
+    label.setProperty("voice", "quiet")
+    label.setFixedWidth(UNIT_WIDTH)
+    return label
+
+
 class Field(QWidget):
     """One labelled control of a page.
 
@@ -88,9 +97,7 @@ class Field(QWidget):
     def __init__(self, theme: Theme, label: str, sentence: str, control: QWidget, *, above: bool = False) -> None:
         super().__init__()
         self.control = control
-        self.unit = QLabel()
-        self.unit.setProperty("voice", "quiet")
-        self.unit.setFixedWidth(UNIT_WIDTH)
+        self.unit = unit_label()
         self.fault = FaultLine(theme)
         name = QLabel(label)
         name.setFixedWidth(LABEL_WIDTH)

@@ -10,7 +10,7 @@ from tuner.session.document import Document
 from tuner.session.fields import unit_of, with_limit, without_limit
 from tuner.session.typed import NOT_NEGATIVE
 from tuner.window.editors.chooser import Chooser
-from tuner.window.editors.field import FaultLine, Note, Page
+from tuner.window.editors.field import FaultLine, Note, Page, unit_label
 from tuner.window.editors.intake import Words
 from tuner.window.editors.typed_line import TypedLine
 from tuner.window.theme import Theme
@@ -31,9 +31,7 @@ class LimitRow(QWidget):
         self.line.intake.left.connect(document.release)
         self.fault = FaultLine(theme)
         self.line.intake.faulted.connect(self.fault.say)
-        self.unit = QLabel()
-        self.unit.setProperty("voice", "quiet")
-        self.unit.setFixedWidth(52)
+        self.unit = unit_label()
         self.remove = QToolButton()
         self.remove.setText("\u00d7")
         self.remove.setAccessibleName(f"remove the limit of {measure.label}")

@@ -60,7 +60,7 @@ class NumberEditor(Page):
         field.intake.left.connect(self._document.release)
         if isinstance(field.line, TypedText):
             field.line.take_rows()
-        field.unit.setVisible(not entry.long)
+        field.unit.setVisible(entry is _DEAD_TIME)
         return field
 
     def _plant(self) -> NumberPlant:

@@ -1,6 +1,7 @@
 """The column of editors: a list of the blocks, and the page of the chosen one."""
 
 from PySide6.QtCore import Qt, Signal
+from PySide6.QtGui import QResizeEvent, QShowEvent
 from PySide6.QtWidgets import QFrame, QListView, QListWidget, QScrollArea, QStackedWidget, QVBoxLayout, QWidget
 
 from tuner.judge.assessment import Assessment
@@ -85,6 +86,16 @@ class EditorPanel(QWidget):
             super().show()
         else:
             self.limits.show_assessment(assessment)
+
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        """Lay the page out for another width at once."""
+        super().resizeEvent(event)
+        self.pages[self.block].settle()
+
+    def showEvent(self, event: QShowEvent) -> None:
+        """Lay the page out before it is seen for the first time."""
+        super().showEvent(event)
+        self.pages[self.block].settle()
 
     def _block_list(self) -> QListWidget:
         """Return the list of the blocks, flowing like words in two lines."""

@@ -3,14 +3,17 @@
 from collections.abc import Callable
 from typing import Generic, TypeVar
 
-from PySide6.QtCore import Qt
-from PySide6.QtGui import QFocusEvent, QKeyEvent, QPainter, QPaintEvent
-from PySide6.QtWidgets import QLineEdit
+from PySide6.QtCore import QEvent, Qt
+from PySide6.QtGui import QFocusEvent, QHelpEvent, QKeyEvent, QPainter, QPaintEvent
+from PySide6.QtWidgets import QLineEdit, QToolTip
 
 from tuner.window.editors.intake import Intake, Words
 from tuner.window.theme import Theme
 
 Value = TypeVar("Value")
+
+_BESIDE_TEXT = 18
+"""Pixels of a line that its text cannot have: frame, padding and cursor."""
 
 
 class TypedLine(QLineEdit, Generic[Value]):
@@ -42,6 +45,17 @@ class TypedLine(QLineEdit, Generic[Value]):
         """Replace the text, its beginning in sight."""
         self.setText(text)
         self.setCursorPosition(0)
+
+    def width_of_text(self) -> int:
+        """Return the width at which the text is seen whole, pixels."""
+        return self.fontMetrics().horizontalAdvance(self.text()) + _BESIDE_TEXT
+
+    def event(self, event: QEvent) -> bool:
+        """Say the whole text on hovering where it does not fit."""
+        if isinstance(event, QHelpEvent) and self.width_of_text() > self.width():
+            QToolTip.showText(event.globalPos(), self.text(), self)
+            return True
+        return super().event(event)
 
     def _on_faulted(self, sentence: str) -> None:
         self.setAccessibleDescription(sentence)
