@@ -10,6 +10,7 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
+from tests.files.told import edited, sentences
 from tuner.errors import SheetError
 from tuner.files.sheet import LARGEST, is_unchanged, parse, read, read_text, render, write
 from tuner.model.controller import Controller
@@ -229,6 +230,61 @@ def test_reading_loads_no_heavy_library() -> None:
     heavy = "{'lark', 'jsonschema', 'tomlkit', 'scipy', 'numpy'}"
     run = subprocess.run([sys.executable, "-c", code.replace("{}", heavy)], capture_output=True, text=True, check=True)
     assert run.stdout.strip() == "[]"
+
+
+SYNTAX = [
+    ("kp 3.0", "line 2, column 4: expected '=' after the key, found 'kp 3.0'"),
+    (
+        "kp = ",
+        'at the end: expected a value: a number, a "text", true, false, an [array] or a { table }, '
+        "found the end of the file",
+    ),
+    ("kp = 3 4", "line 2, column 8: expected the end of the line after the value, found 'kp = 3 4'"),
+    ("kp = 3\nkp = 4", "at the end: expected each key once, found the end of the file"),
+    ("kp = 3\nkp = 4\n", "line 3, column 7: expected each key once, found 'kp = 4'"),
+    ("kp = 'x", "at the end: expected the quote that ends the text, found the end of the file"),
+    ("[a\nb = 2", "line 2, column 3: expected ']' after the name of the table, found '[a'"),
+    ("[a]\n[a]", "line 3, column 3: expected each table once, found '[a]'"),
+    ("a = [1, 2", "at the end: expected ',' or ']' in the array, found the end of the file"),
+    ("a = 1e", "line 2, column 6: expected the end of the line after the value, found 'a = 1e'"),
+    ("a = { b = 1", "at the end: expected ',' or '}' in the table, found the end of the file"),
+    ("= 3", "line 2, column 1: expected a key, a [table] or a comment, found '= 3'"),
+    (f"a = 1{'0' * 5000}", "expected TOML that can be read, found numbers too long or tables nested too deep"),
+    (f"a = 0x{'f' * 4000}", "expected TOML that can be read, found numbers too long or tables nested too deep"),
+    (f"a{'.a' * 3000} = 1", "expected TOML that can be read, found numbers too long or tables nested too deep"),
+    (
+        f"[limits]\na{'.a' * 900} = 1",
+        "expected TOML that can be read, found numbers too long or tables nested too deep",
+    ),
+    ("# \u2028\nkp 3", "line 3, column 4: expected '=' after the key, found 'kp 3'"),
+    (f"a = {'[' * 50000}", "expected TOML that can be read, found numbers too long or tables nested too deep"),
+]
+
+
+@pytest.mark.parametrize(("line", "said"), SYNTAX)
+def test_a_text_that_is_no_toml_is_told_by_line_and_column(line: str, said: str) -> None:
+    """Where the text stops being TOML is said in words, with the line as it stands."""
+    assert sentences(f"sheet = 1\n{line}") == [said]
+
+
+@pytest.mark.parametrize("text", ["", " \n\t\n"])
+def test_an_empty_text_is_told(text: str) -> None:
+    """A text with nothing in it gets one sentence rather than one for each key that is missing."""
+    assert sentences(text) == ["expected a tuning sheet, found an empty file"]
+
+
+def test_the_file_stands_before_each_sentence() -> None:
+    """A sentence about a file begins with its name."""
+    with pytest.raises(SheetError) as caught:
+        parse(edited(("kp = 3.0", "kpp = 3.0"), ("overshoot = 8", "overshot = 8")), "loops/heater.toml")
+    assert [said.partition(": ")[0] for said in caught.value.sentences()] == ["loops/heater.toml"] * 2
+
+
+@pytest.mark.parametrize("version", ["2", "3000"])
+def test_a_newer_format_is_told_alone(version: str) -> None:
+    """A sheet of a later format gets one sentence, not one for each key that is new in it."""
+    said = f"sheet: expected 1, the newest format that this version of Trimwright reads, found {version}"
+    assert sentences(f"sheet = {version}\nnovelty = true") == [said]
 
 
 lines = st.sampled_from([line for line in TEXT.splitlines() if line.strip()])
