@@ -1,7 +1,7 @@
 """Holds, derivatives, limits and error integrals as they show in the curves of an assessment.
 
-Numbers to the digits given were computed independently; closed forms are given beside them. Attributions are from memory
-where no closed form makes them certain.
+Numbers to the digits given were computed independently; closed forms are given beside them. Attributions are from
+memory where no closed form makes them certain.
 """
 
 from math import exp, sqrt
@@ -128,7 +128,7 @@ PLANTS = ["2/(5 s + 1)", "2 exp(-1.5 s)/(5 s + 1)", "3/((s + 1)(2 s + 1))", "0.4
 @pytest.mark.parametrize("step", [0.0, 0.1])
 @pytest.mark.parametrize("plant", PLANTS)
 def test_the_error_integral_of_a_load_step(plant: str, step: float) -> None:
-    """Any plant, any b: a step d at the plant input leaves the error integral -d/ki (algebra; Astrom, Hagglund, 1995)."""
+    """Any plant, any b: a step d at the plant input leaves the error integral -d/ki (algebra; Astrom and Hagglund)."""
     controller = Controller(sample_time=step, gain_1=0.4, gain_2=0.05, b=0.3)
     found = judged(plant, controller, Trial(400.0, disturbance=1.5))
     trace = found.traces.disturbance
