@@ -15,8 +15,7 @@ from tuner.errors import SheetError
 from tuner.files.sheet import LARGEST, is_unchanged, parse, read, read_text, render, write
 from tuner.model.controller import Controller
 from tuner.model.loop import Loop, Manipulated, Signal
-from tuner.model.physics import PHYSICS
-from tuner.model.plant import ExpressionPlant, PhysicsPlant, PlantParameter, Spread
+from tuner.model.plant import ExpressionPlant, PlantParameter, Spread
 from tuner.model.sheet import Actuator, Sensor, Trial
 
 HEATER = Path(__file__).parent / "heater.toml"
@@ -47,48 +46,12 @@ def test_the_example_is_read() -> None:
     assert sheet.limits == (("overshoot", 8.0), ("settling_time", 90.0), ("max_sensitivity", 1.7))
 
 
-def test_absent_keys_have_their_defaults() -> None:
-    """The shortest sheet is one of a bare loop in seconds."""
-    plant, controller, trial = "expression = '1/s'", "sample_time = 0", "duration = 9"
-    sheet = parse(f"sheet = 1\n[loop]\ntitle = 'A'\n[plant]\n{plant}\n[controller]\n{controller}\n[trial]\n{trial}")
-    assert sheet.loop == Loop("A", "s", Signal(), Manipulated())
-    assert (sheet.controller, sheet.trial) == (Controller(), Trial(9.0, 1.0, 0.0, 2.0))
-    assert (sheet.actuator, sheet.sensor, sheet.limits) == (Actuator(), Sensor(), ())
-
-
 def test_signals_may_be_tables_of_their_own() -> None:
     """A signal in a table of its own says what one within the line says."""
     inline = 'controlled  = { name = "Outlet temperature", unit = "degC", low = 0, high = 150, resting = 72 }\n'
     assert inline in TEXT
     table = '[loop.controlled]\nname = "Outlet temperature"\nunit = "degC"\nlow = 0\nhigh = 150\nresting = 72\n'
     assert parse(TEXT.replace(inline, "").replace("[plant] ", f"{table}[plant] ")) == parse(TEXT)
-
-
-@pytest.mark.parametrize("written", ['"15%"', '"15 %"', '" 15.0  % "'])
-def test_a_spread_in_percent_is_exact(written: str) -> None:
-    """However the percentage is spelt, it is the same number, and kept."""
-    assert parse(TEXT.replace('"15 %"', written)) == parse(TEXT)
-
-
-def test_physical_parameters_have_defaults_and_units() -> None:
-    """Of a physical model all parameters are there, in its order, those of the sheet with the sheet's numbers."""
-    text = TEXT[: TEXT.index("[plant] ")] + '[plant]\nphysics = "dc motor speed"\nparameters = { inertia = 0.5 }\n'
-    plant = parse(text + TEXT[TEXT.index("[actuator]") :]).plant
-    models = PHYSICS["dc motor speed"].parameters
-    values = {model.name: model.default for model in models} | {"inertia": 0.5}
-    units = [PlantParameter(model.name, values[model.name], model.unit) for model in models]
-    assert plant == PhysicsPlant("dc motor speed", tuple(units))
-
-
-def test_as_found_takes_over_what_it_leaves_out() -> None:
-    """Gains and blocks not named are the controller's; "none" takes one away; another form starts from no gains."""
-    lines = "[controller.as_found]\nkp = 1\nwindup_time = 'none'\n#"
-    controller = parse(TEXT.replace("[controller.as_found] ", lines)).controller
-    assert controller.as_found == replace(controller, gain_1=1.0, windup_time=None, as_found=None)
-    other = parse(
-        TEXT.replace("[controller.as_found] ", "[controller.as_found]\nform = 'series'\nkc = 2\n#")
-    ).controller
-    assert other.as_found == replace(other, form="series", gain_1=2.0, gain_2=0.0, gain_3=0.0, as_found=None)
 
 
 @pytest.fixture

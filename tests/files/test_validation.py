@@ -1,8 +1,13 @@
 """Keys and values that the schema refuses, each in its sentence."""
 
+import tomllib
+from copy import deepcopy
+
 import pytest
 
-from tests.files.told import bare, edited, sentences
+from tests.files.told import HEATER, bare, edited, sentences
+from tuner.errors import Fault
+from tuner.files.validation import dotted, validate
 
 CASES = [
     ("sheet = 1 ", "", "sheet: expected a whole number, 1, found nothing"),
@@ -159,3 +164,62 @@ PLANTS = [
 def test_a_wrong_number_in_an_array_is_told_with_its_place(plant: str, said: str) -> None:
     """Arrays of a plant are told by what is in them, rows and places counted from one."""
     assert sentences(bare(plant)) == [said]
+
+
+def test_a_right_sheet_is_sound_as_written() -> None:
+    """Nothing is told and nothing is dropped; the tables handed in stay as they are."""
+    written = tomllib.loads(HEATER)
+    written["controller"] = {key: value for key, value in written["controller"].items() if value != {}}
+    before = deepcopy(written)
+    found = validate(written)
+    assert (found.faults, found.sound, written) == ([], before, before)
+    assert found.sound is not written
+
+
+def test_what_is_faulty_is_dropped_from_the_sound_copy() -> None:
+    """The faulty values go, their neighbours stay, so that what remains can be checked further."""
+    written = tomllib.loads(
+        edited(("kp = 3.0", "kp = -3.0"), ("[3, 6]", "[3, 6, 7]"), ("overshoot = 8", "overshot = 8"))
+    )
+    sound = validate(written).sound
+    assert "kp" not in sound["controller"]
+    assert sound["controller"]["ki"] == 0.08
+    assert sound["plant"]["parameters"]["delay"] == {"value": 4}
+    assert list(sound["limits"]) == ["settling_time", "max_sensitivity"]
+
+
+def test_a_table_that_is_none_is_dropped_whole() -> None:
+    """A value where a table should be is told once, and what would be in it is not asked for."""
+    found = validate(tomllib.loads(HEATER) | {"trial": 3})
+    assert [fault.key for fault in found.faults if fault.key.startswith("trial")] == ["trial"]
+    assert "trial" not in found.sound
+
+
+def test_each_fault_is_told_once() -> None:
+    """A row with two wrong numbers is two faults, the same fault twice is one."""
+    written = tomllib.loads(bare('a = [["x", 1], [1, "x"]]\nb = [1, 2]\nc = [1, 2]'))
+    assert [fault.found for fault in validate(written).faults] == [
+        "the text 'x' in row 1, place 1",
+        "the text 'x' in row 2, place 2",
+    ]
+    written["controller"]["as_found"] = {"notch": {"depth": 1, "width": 1}}
+    (missing,) = [fault for fault in validate(written).faults if "notch" in fault.key]
+    assert missing == Fault("controller.as_found.notch.frequency", "a number above 0", "nothing")
+
+
+@pytest.mark.parametrize("value", [2.0, 2])
+def test_a_count_may_be_written_as_a_number(value: float) -> None:
+    """A whole number is one, with a point or without."""
+    written = tomllib.loads(HEATER)
+    assert validate({"controller": written["controller"] | {"delay_samples": value}}).sound["controller"][
+        "delay_samples"
+    ] == pytest.approx(2)
+
+
+@pytest.mark.parametrize(
+    ("names", "path"),
+    [((), ""), (("a",), "a"), (("a", "κ", "b_1"), "a.κ.b_1"), (("a", "b c"), "a.'b c'"), (("a", ""), "a.''")],
+)
+def test_a_path_is_written_with_dots(names: tuple[str, ...], path: str) -> None:
+    """A name that is no plain word stands in quotes."""
+    assert dotted(names) == path
