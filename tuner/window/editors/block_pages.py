@@ -75,6 +75,7 @@ class OptionalGroup(Group):
         super().__init__(document, theme, title)
         self._fields: dict[str, ParameterField] = {}
         self.switch = Segments(words, theme, self.choose)
+        self.switch.setAccessibleName(title)
         self.fault = FaultLine(theme)
         self.add(self.switch)
         self.add(self.fault)
@@ -98,6 +99,7 @@ class OptionalGroup(Group):
             if path not in self._fields:
                 self._fields[path] = parameter_field(self._document, parameter, self._theme)
                 self.column.insertWidget(self.column.count() - 1, self._fields[path])
+                self._fields[path].setVisible(True)
             self._fields[path].refresh(anew=anew)
 
 

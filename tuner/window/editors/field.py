@@ -3,7 +3,8 @@
 from collections.abc import Callable
 from typing import Protocol
 
-from PySide6.QtWidgets import QGridLayout, QLabel, QSizePolicy, QVBoxLayout, QWidget
+from PySide6.QtCore import QTimer
+from PySide6.QtWidgets import QGridLayout, QLabel, QScrollArea, QSizePolicy, QVBoxLayout, QWidget
 
 from tuner.errors import TrimwrightError
 from tuner.session.checks import sentence
@@ -31,6 +32,8 @@ class FaultLine(QLabel):
         begins_with_key = "." in words.partition(" ")[0]
         self.setText(words if begins_with_key else words[:1].upper() + words[1:])
         self.setVisible(bool(words))
+        if words:
+            QTimer.singleShot(0, self._come_in_sight)
 
     def attempt(self, change: Callable[[], None], path: str = "") -> bool:
         """Make a change and tell whether it was made; say why it was refused, leaving out the `path` it concerns."""
@@ -41,6 +44,14 @@ class FaultLine(QLabel):
             return False
         self.say("")
         return True
+
+    def _come_in_sight(self) -> None:
+        """Scroll the page so far that the sentence is read, once it is laid out."""
+        above = self.parentWidget()
+        while above is not None and not isinstance(above, QScrollArea):
+            above = above.parentWidget()
+        if above is not None and self.isVisible():
+            above.ensureWidgetVisible(self, 0, 4)
 
     def _dress(self) -> None:
         self.setStyleSheet(f"color: {self._theme.palette.colours['lost_word']};")

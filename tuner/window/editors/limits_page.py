@@ -121,6 +121,7 @@ class LimitsPage(Page):
             row = before.pop(name) if known else LimitRow(self._document, self._theme, BY_NAME[name], limit)
             self.rows[name] = row
             self._list.insertWidget(place, row)
+            row.setVisible(True)
         for row in before.values():
             row.hide()
             row.deleteLater()

@@ -10,6 +10,7 @@ from tuner.window.editors.block_pages import ControllerPage, TablePage, loop_pag
 from tuner.window.editors.field import Page
 from tuner.window.editors.limits_page import LimitsPage
 from tuner.window.editors.plant_page import PlantPage
+from tuner.window.tab_order import order_tabs
 from tuner.window.theme import Theme
 
 WIDTH = 320
@@ -97,6 +98,11 @@ class EditorPanel(QWidget):
         super().showEvent(event)
         self.pages[self.block].settle()
 
+    def focusNextPrevChild(self, forward: bool) -> bool:  # as Qt calls it
+        """Let Tab go through the page as it is laid out now, whatever was put between since."""
+        order_tabs(self.blocks, self.pages[self.block].column)
+        return super().focusNextPrevChild(forward)
+
     def _block_list(self) -> QListWidget:
         """Return the list of the blocks, flowing like words in two lines."""
         blocks = QListWidget()
@@ -113,7 +119,7 @@ class EditorPanel(QWidget):
     def _on_block(self, name: str) -> None:
         self._stack.setCurrentIndex(list(self.pages).index(name))
         self.pages[name].refresh(anew=False)
-        self.pages[name].settle()
+        self.pages[self.block].settle()
         self.block_chosen.emit(name)
 
     def _dress(self) -> None:

@@ -1,6 +1,7 @@
 """Fields made from the table of parameters: one small class for each kind of value."""
 
 from collections.abc import Callable
+from dataclasses import replace
 
 from PySide6.QtWidgets import QCheckBox
 
@@ -14,6 +15,9 @@ from tuner.window.editors.intake import Words
 from tuner.window.editors.line_field import Caption, LineField, Source
 from tuner.window.editors.segments import Segments
 from tuner.window.theme import Theme
+
+LONG_TEXTS = ("loop.story",)
+"""Texts of a sentence or more, which have the whole width and some lines."""
 
 
 class NumberField(LineField[float | None]):
@@ -57,7 +61,9 @@ class TextField(LineField[str]):
     def __init__(self, document: Document, parameter: Parameter, theme: Theme) -> None:
         self._document, self._parameter = document, parameter
         self.path = parameter.path
-        super().__init__(theme, _caption(parameter), Source(self._held, Words(str, str), self._take))
+        caption = replace(_caption(parameter), above=parameter.path in LONG_TEXTS)
+        source = Source(self._held, Words(_one_line, str), self._take)
+        super().__init__(theme, caption, source, lines=3 if caption.above else 1)
         self.intake.left.connect(document.release)
         self.unit.hide()
 
@@ -132,12 +138,18 @@ BY_KIND: dict[Kind, Callable[[Document, Parameter, Theme], ParameterField]] = {
 def parameter_field(document: Document, parameter: Parameter, theme: Theme) -> ParameterField:
     """Return the field of a parameter, of the kind that the table says."""
     field = BY_KIND[parameter.kind](document, parameter, theme)
+    field.control.setAccessibleName(parameter.path.replace(".", " ").replace("_", " "))
     field.refresh(anew=True)
     return field
 
 
 def _label(parameter: Parameter) -> str:
     return parameter.name.replace("_", " ")
+
+
+def _one_line(text: str) -> str:
+    """Return a text without the line breaks that a paste may bring."""
+    return " ".join(text.splitlines())
 
 
 def _caption(parameter: Parameter) -> Caption:

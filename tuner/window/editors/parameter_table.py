@@ -224,6 +224,7 @@ class ParameterTable(QWidget):
             )
             self.rows[name] = row
             self._column.insertWidget(place, row)
+            row.setVisible(True)
         for row in before.values():
             row.hide()
             row.deleteLater()

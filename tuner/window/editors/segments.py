@@ -49,6 +49,12 @@ class Segments(QWidget):
             button.setChecked(other == word)
             button.setFocusPolicy(Qt.FocusPolicy.StrongFocus if other == word else Qt.FocusPolicy.ClickFocus)
 
+    def setAccessibleName(self, name: str) -> None:
+        """Take a name for assistive technology, said before each word."""
+        super().setAccessibleName(name)
+        for word, button in self.buttons.items():
+            button.setAccessibleName(f"{name}: {word}")
+
     def eventFilter(self, watched: QObject, event: QEvent) -> bool:
         """Choose the neighbour by the arrows, where a button would only move the focus."""
         step = _STEPS.get(Qt.Key(event.key()), 0) if isinstance(event, QKeyEvent) else 0

@@ -9,6 +9,7 @@ from tuner.model.parameters import GAIN_KEYS, Parameter, rulers
 from tuner.session.document import Document
 from tuner.window.rulers.form_switch import FormSwitch
 from tuner.window.rulers.ruler import SYMBOL_WIDTH, Ruler
+from tuner.window.tab_order import order_tabs, stops
 from tuner.window.theme import Theme
 
 TWO_COLUMNS = 960
@@ -27,7 +28,7 @@ class RulerPanel(QWidget):
         self._generation, self._form = document.generation, ""
         self._columns = 0
         self.rulers: dict[str, Ruler] = {}
-        self.form = FormSwitch(document, theme)
+        self.form = FormSwitch(document, theme, self)
         self._grid = QGridLayout(self)
         self._grid.setContentsMargins(8, 4, 8, 4)
         self._grid.setHorizontalSpacing(24)
@@ -101,7 +102,8 @@ class RulerPanel(QWidget):
             self._grid.addWidget(part, row, column)
         self._grid.setColumnStretch(0, 1)
         self._grid.setColumnStretch(1, 1 if columns == 2 else 0)
-        self._order_tabs()
+        first, *_ = stops(self._grid)
+        order_tabs(first, self._grid)
 
     def _places(self, columns: int) -> list[tuple[QWidget, int, int]]:
         gains = [self.rulers[name] for name in GAIN_KEYS[self._document.sheet.controller.form]]
@@ -111,13 +113,6 @@ class RulerPanel(QWidget):
             return [(part, row, 0) for row, part in enumerate([*first, *others])]
         left = [(part, row, 0) for row, part in enumerate(first)]
         return left + [(part, row, 1) for row, part in enumerate(others)]
-
-    def _order_tabs(self) -> None:
-        previous: QWidget = self.form
-        for ruler in self.rulers.values():
-            for part in (ruler.slider, ruler.box):
-                QWidget.setTabOrder(previous, part)
-                previous = part
 
     def _say(self, name: str, sentence: str) -> None:
         """Say under the box what is wrong with what was typed, over whatever is there, so that nothing moves."""
