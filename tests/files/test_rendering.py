@@ -14,6 +14,7 @@ from tuner.files.sheet import parse, render
 from tuner.model.controller import Controller, Feedforward, Notch
 from tuner.model.plant import CoefficientPlant, ExpressionPlant, PlantParameter, Spread, ZeroPolePlant, spread_percent
 from tuner.model.sheet import Sheet
+from tuner.places import sample_plants
 
 HEATER = (Path(__file__).parent / "heater.toml").read_text(encoding="utf-8")
 BARE = """sheet = 1
@@ -215,6 +216,14 @@ def test_limits_come_in_the_order_given() -> None:
     rendered = render(changed, text)
     assert parse(rendered) == changed
     assert rendered.endswith("damping = 0.4\nbandwidth = 2\novershoot = 8  # of the step\n")
+
+
+def test_physical_parameters_stay_in_the_order_of_the_text() -> None:
+    """A physical model knows its parameters by name, so a person may write them in any order and finds it again."""
+    text = (sample_plants() / "spindle_speed.toml").read_text(encoding="utf-8")
+    sheet = parse(text)
+    assert render(sheet, text) == text
+    assert list(tomllib.loads(text)["plant"]["parameters"]) != [parameter.name for parameter in sheet.plant.parameters]
 
 
 @pytest.mark.parametrize("text", ["not TOML", "sheet = 1\nother = 3", "[loop]\n" * 2])

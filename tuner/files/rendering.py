@@ -13,6 +13,7 @@ from tomlkit.items import Comment, InlineTable, Integer, Item, Key, Table, White
 from tuner.files.plain import Inherited, Leaf, Tree, Value, tree
 from tuner.files.schema import PERCENT
 from tuner.model.parameters import GAIN_KEYS
+from tuner.model.plant import PhysicsPlant
 from tuner.model.sheet import Sheet
 
 _Written = MutableMapping[str, Any]
@@ -39,10 +40,15 @@ def merged(sheet: Sheet, text: str, *, inline: bool = False) -> str | None:
     """
     try:
         document = tomlkit.parse(_with_gains_renamed(text, sheet))
-        _merge(document, tree(sheet), _Place(inline=inline))
+        _merge(document, tree(sheet), _Place(inline=inline, ordered=_ordered(sheet)))
         return document.as_string()
     except (TOMLKitError, ValueError, RecursionError):
         return None
+
+
+def _ordered(sheet: Sheet) -> tuple[str, ...]:
+    """Return the tables whose order has a meaning; a physical model has its parameters in an order of its own."""
+    return ("limits",) if isinstance(sheet.plant, PhysicsPlant) else ("limits", "plant.parameters")
 
 
 @dataclass(frozen=True, slots=True)
@@ -51,10 +57,11 @@ class _Place:
 
     path: str = ""
     inline: bool = False
+    ordered: tuple[str, ...] = ()
 
     def at(self, name: str) -> "_Place":
         path = f"{self.path}.{name}".lstrip(".")
-        return _Place(path, self.inline or _INLINE.match(path) is not None)
+        return replace(self, path=path, inline=self.inline or _INLINE.match(path) is not None)
 
 
 def _merge(table: _Written, wanted: Tree, place: _Place) -> None:
@@ -63,7 +70,7 @@ def _merge(table: _Written, wanted: Tree, place: _Place) -> None:
         _take_out(table, name)
     for name, node in wanted.items():
         _put(table, name, node, place.at(name))
-    if place.path in ("limits", "plant.parameters"):
+    if place.path in place.ordered:
         _put_in_order(table, [name for name in wanted if name in table])
 
 
