@@ -32,7 +32,7 @@ def spreads(draw: st.DrawFn, value: float) -> Spread | None:
     """Draw a spread around a value, or none."""
     kind = draw(st.sampled_from(["none", "percent", "range"]))
     if kind == "percent" and value:
-        return spread_percent(value, draw(st.integers(0, 100).map(float) | st.floats(0.01, 100.0)))
+        return spread_percent(value, draw(st.integers(0, 100).map(float) | st.floats(0.0, 100.0)))
     reach = (draw(naturals), draw(naturals))
     return Spread(value - reach[0], value + reach[1]) if kind == "range" else None
 

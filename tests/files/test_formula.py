@@ -1,8 +1,5 @@
 """Plant formulas are read as ordinary mathematics, and what is wrong is told where it stands."""
 
-from collections.abc import Callable
-from math import exp, pi, prod, sqrt
-
 import pytest
 from hypothesis import example, given
 from hypothesis import strategies as st
@@ -10,108 +7,12 @@ from hypothesis import strategies as st
 from tuner.errors import FormulaError
 from tuner.files.formula import DEEPEST, LONGEST, is_name, parse
 from tuner.model.formula import (
-    Exponential,
     Name,
-    Negative,
-    Node,
-    Number,
-    Power,
-    Product,
-    Quotient,
-    SquareRoot,
-    Sum,
-    children,
     names,
 )
 
-VALUES = {
-    "s": 0.7,
-    "gain": 1.9,
-    "lag": 2.5,
-    "delay": 1.3,
-    "s2": 3.0,
-    "e": 5.0,
-    "τ": 0.4,
-    "K_1": 6.0,
-    "a": 2.0,
-    "b": 3.0,
-}
-
-
-def value(node: Node) -> float:
-    """Compute a tree with the values above, independently of the program's own evaluation."""
-    if isinstance(node, Number):
-        return node.value
-    if isinstance(node, Name):
-        return VALUES[node.name]
-    return COMPUTE[type(node)](*(value(below) for below in children(node)))
-
-
-COMPUTE: dict[type, Callable[..., float]] = {
-    Sum: lambda *terms: sum(terms),
-    Product: lambda *factors: prod(factors),
-    Quotient: lambda over, under: over / under,
-    Negative: lambda of: -of,
-    Power: lambda base, exponent: base**exponent,
-    Exponential: exp,
-    SquareRoot: sqrt,
-}
-
-
-S, GAIN, LAG, DELAY, TAU = (VALUES[name] for name in ("s", "gain", "lag", "delay", "τ"))
-MEANT = [
-    ("gain exp(-delay s) / ((lag s + 1)(τ s + 1))", GAIN * exp(-DELAY * S) / ((LAG * S + 1) * (TAU * S + 1))),
-    ("2/(10 s+1) exp(-3 s)", 2 / (10 * S + 1) * exp(-3 * S)),
-    ("2/(10 s+1) exp(-3 s)^2", 2 / (10 * S + 1) * exp(-3 * S) ** 2),
-    ("2/(10 s+1) e^(-3 s)", 2 / (10 * S + 1) * exp(-3 * S)),
-    ("gain(lag s + 1)", GAIN * (LAG * S + 1)),
-    ("2s", 2 * S),
-    ("s2", 3.0),
-    ("1e-3 s", 1e-3 * S),
-    ("3e s", 3 * 5.0 * S),
-    ("2exp(-3s)", 2 * exp(-3 * S)),
-    ("2e3", 2000.0),
-    (".5 + 5.", 5.5),
-    ("-s^2", -(S**2)),
-    ("2^-s", 2**-S),
-    ("2^3^2", 512.0),
-    ("(-2)^2", 4.0),
-    ("s**2", S**2),
-    ("s² + s⁻¹ + 2³", S**2 + 1 / S + 8),
-    ("s^{2}", S**2),
-    ("e^(-delay s)", exp(-DELAY * S)),
-    ("e^{-delay s}", exp(-DELAY * S)),
-    ("e ^ [2]", exp(2)),
-    ("e", 5.0),
-    ("1/[s(s + 1)]", 1 / (S * (S + 1))),
-    ("8/4/2", 1.0),
-    ("8/4*2", 4.0),
-    ("8 - 4 - 2", 2.0),
-    ("2*-3", -6.0),
-    ("a/-b", -2 / 3),
-    ("--2", 2.0),
-    ("+2", 2.0),
-    ("a \u2212 b \u2013 1", -2.0),
-    ("a·b \u00d7 2 \u22c5 3", 36.0),
-    ("6 ÷ 2", 3.0),
-    ("sqrt(K_1 a)", sqrt(12.0)),
-    ("2 pi s", 2 * pi * S),
-    ("π", pi),
-    ("s\u00a0+\n1", S + 1),
-    ("a b/2", 3.0),
-]
-
-
-@pytest.mark.parametrize(("text", "meant"), MEANT)
-def test_a_formula_means_what_mathematics_means(text: str, meant: float) -> None:
-    """Products without signs, powers, signs, brackets and the dead time are read as they are written by hand."""
-    assert value(parse(text)) == pytest.approx(meant, rel=1e-14)
-
-
 PLACE = "an operator such as + or *, or the end of the formula"
 OPERAND = "a number, a name or an opening bracket"
-BELOW = "brackets around all that '/' divides by, or a sign between the factors after it"
-EITHER = "a product without a sign, which could be meant either way"
 REFUSED = [
     ("", 0, "a formula in s", "nothing"),
     ("  ", 0, "a formula in s", "nothing"),
@@ -130,13 +31,6 @@ REFUSED = [
     ("_a", 0, OPERAND, "'_'"),
     ("{s}", 0, OPERAND, "'{'"),
     ("s²²^2", 3, PLACE, "'^'"),
-    ("1e999 s", 0, "a number that is not too large to compute with", "'1e999'"),
-    ("e^-delay s", 2, "an opening bracket around the exponent of e", "none"),
-    ("e^2", 2, "an opening bracket around the exponent of e", "none"),
-    ("1/2s", 1, BELOW, EITHER),
-    ("1/(s+1)(s+2)", 1, BELOW, EITHER),
-    ("1/(s+1) exp(-s) (s+2)", 1, BELOW, EITHER),
-    ("a + b/a b", 5, BELOW, EITHER),
     ("(s+1", 0, "a ')' that closes this '('", "none"),
     ("s+1)", 3, "an opening bracket before this one", "')' alone"),
     ("[s+1)", 4, "']' for the '[' at character 1", "')'"),
@@ -155,6 +49,15 @@ def test_a_wrong_formula_is_told(text: str, position: int, expected: str, found:
     error = caught.value
     assert (error.position, error.expected, error.found) == (position, expected, found)
     assert str(error) == f"expected {expected} at character {position + 1}, found {found}"
+
+
+def test_what_the_grammar_refuses_has_its_text_too() -> None:
+    """A formula that could be meant either way is told as every other, with the formula for an editor to show."""
+    with pytest.raises(
+        FormulaError, match=r"^expected brackets around all that '/' divides by, .* at character 2, "
+    ) as caught:
+        parse("1/2s")
+    assert (caught.value.text, caught.value.position) == ("1/2s", 1)
 
 
 def test_names_keep_their_first_place() -> None:
