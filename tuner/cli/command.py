@@ -69,8 +69,10 @@ class Command:
         """
         parser = self.parser()
         known, unknown = parser.parse_known_args(words)
-        if unknown:
+        if unknown and unknown[0].startswith("-"):
             raise UsageError(f"{parser.prog}: {unexpected(unknown[0], parser.option_names(), 'an option')}")
+        if unknown:
+            raise UsageError(f"{parser.prog}: {unexpected(unknown[0], (), 'nothing more')}")
         return known
 
 
