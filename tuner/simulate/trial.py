@@ -65,7 +65,7 @@ def _notes(sheet: Sheet, reached: bool) -> tuple[str, ...]:
         )
     if not reached:
         notes.append(
-            "The curves of the continuous controller still changed by more than "
+            "The curves of the continuous controller still changed in places by more than "
             f"{AGREEMENT:.2%} of the step when the computing step was halved for the last time."
         )
     return tuple(notes)
