@@ -205,8 +205,8 @@ def test_what_does_not_converge_is_said() -> None:
     sliding = Controller(gain_1=1e6, gain_2=1e3)
     whole = sheet("1/(s (s + 1)(s + 2))", sliding, Trial(400.0), Manipulated(low=-1.0, high=2.0))
     assert run(whole, NOMINAL)[0].notes == (
-        "The curves of the continuous controller still changed in places by more than 0.05% of the step when the computing step "
-        "was halved for the last time.",
+        "The curves of the continuous controller still changed in places by more than 0.05% of the step when the "
+        "computing step was halved for the last time.",
     )
 
 
