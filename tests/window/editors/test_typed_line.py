@@ -1,9 +1,10 @@
 """A line to type into: when it takes, when it keeps, what it says."""
 
 import pytest
-from PySide6.QtCore import Qt
+from PySide6.QtCore import QEvent, Qt
+from PySide6.QtGui import QHelpEvent
 from PySide6.QtTest import QTest
-from PySide6.QtWidgets import QLineEdit, QWidget
+from PySide6.QtWidgets import QApplication, QLineEdit, QToolTip, QWidget
 from pytestqt.qtbot import QtBot
 
 from tests.window.editors.typing import enter, replace_text
@@ -116,3 +117,14 @@ def test_wrong_text_outlives_what_others_do(desk: Desk) -> None:
     assert desk.line.text() == "2.."
     desk.line.intake.show_value(1.0, anew=True)
     assert desk.line.text() == "1"
+
+
+def test_a_text_that_does_not_fit_is_said_whole_on_hovering(desk: Desk) -> None:
+    """Hovering a line that is too short for its text shows all of it; one that is long enough adds nothing."""
+    desk.line.resize(60, 24)
+    place = desk.line.rect().center()
+    for text, said in (("2", ""), ("0.016666666666666666", "0.016666666666666666")):
+        replace_text(desk.line, text)
+        QApplication.sendEvent(desk.line, QHelpEvent(QEvent.Type.ToolTip, place, desk.line.mapToGlobal(place)))
+        assert QToolTip.text() == said
+    QToolTip.hideText()

@@ -24,6 +24,8 @@ class FaultLine(QLabel):
         self.setFont(theme.font("small"))
         self.setSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Minimum)
         self.hide()
+        self._laid_out = QTimer(self, singleShot=True, interval=0)
+        self._laid_out.timeout.connect(self._come_in_sight)
         theme.changed.connect(self._dress)
         self._dress()
 
@@ -33,7 +35,7 @@ class FaultLine(QLabel):
         self.setText(words if begins_with_key else words[:1].upper() + words[1:])
         self.setVisible(bool(words))
         if words:
-            QTimer.singleShot(0, self._come_in_sight)
+            self._laid_out.start()
 
     def attempt(self, change: Callable[[], None], path: str = "") -> bool:
         """Make a change and tell whether it was made; say why it was refused, leaving out the `path` it concerns."""
