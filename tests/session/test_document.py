@@ -9,13 +9,12 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from tests.session.sheets import TEXT, wash_bath
-from tuner.errors import FormulaError, LoopError, SheetError, TrimwrightError
+from tuner.errors import FormulaError, LoopError, SheetError
 from tuner.files.sheet import parse, read
 from tuner.model.controller import Notch
 from tuner.model.parameters import find
-from tuner.model.plant import CoefficientPlant, ExpressionPlant, PhysicsPlant, Plant, ZeroPolePlant
+from tuner.model.plant import CoefficientPlant, ExpressionPlant, PhysicsPlant
 from tuner.session.document import Document
-from tuner.session.plant_forms import PLANT_FORMS, PlantForm
 from tuner.session.sheet_file import FileChangedError
 
 KP = find("controller.kp")
@@ -197,20 +196,6 @@ def test_ranges_are_stable_and_widen(document: Document) -> None:
 # The plant ------------------------------------------------------------------------------------------------------
 
 
-def test_a_formula_brings_its_parameters(document: Document) -> None:
-    """New names get the value 1, old ones keep their numbers, those left over are spare and come back."""
-    document.change_formula("gain / (lag s + 1)(tail s + 1)".replace("/ (", "/ ((") + ")")
-    assert [(one.name, one.value) for one in document.sheet.plant.parameters] == [
-        ("gain", 0.8),
-        ("lag", 50.0),
-        ("tail", 1.0),
-    ]
-    assert [one.name for one in document.spare_parameters] == ["delay"]
-    document.change_formula("gain exp(-delay s) / (lag s + 1)")
-    assert document.sheet.plant == wash_bath().plant
-    assert document.spare_parameters == ()
-
-
 @pytest.mark.parametrize(("text", "error"), [("gain / (lag s + ", FormulaError), ("lag s^2 + 1", LoopError)])
 def test_a_refused_formula_changes_nothing(document: Document, text: str, error: type[Exception]) -> None:
     """A formula that cannot be read, or is no plant, leaves the last one."""
@@ -218,24 +203,6 @@ def test_a_refused_formula_changes_nothing(document: Document, text: str, error:
         document.change_formula(text)
     assert document.sheet == wash_bath()
     assert document.undo_label is None
-
-
-def test_the_formula_as_typed_comes_back(document: Document) -> None:
-    """A look at every other form and back brings the formula with its names and spreads."""
-    for form in (*PLANT_FORMS, "coefficients", "formula"):
-        document.set_plant_form(form)
-    assert document.sheet.plant == wash_bath().plant
-
-
-def test_forms_are_converted(document: Document) -> None:
-    """The nominal plant of the formula, as coefficients and as zeros and poles."""
-    forms: dict[PlantForm, Plant] = {
-        "coefficients": CoefficientPlant((0.016,), (1.0, 0.02), 4.0),
-        "zeros and poles": ZeroPolePlant((), (-0.02 + 0j,), 0.016, 4.0),
-    }
-    for form, plant in forms.items():
-        document.set_plant_form(form)
-        assert document.sheet.plant == plant
 
 
 def test_numbers_changed_by_hand_make_another_formula(document: Document) -> None:
@@ -258,28 +225,6 @@ def test_a_form_without_conversion_says_so(document: Document) -> None:
         "Not converted (a physical model is chosen by name, not found from numbers); "
         "this is a first plant to be overwritten."
     )
-
-
-def test_a_physical_model_becomes_its_formula(document: Document) -> None:
-    """The formula of a physical model has its quantities with their numbers."""
-    document.set_plant_form("physics")
-    quantities = document.sheet.plant.parameters
-    document.change_parameter(replace(quantities[0], value=0.07), label="Set it")
-    document.set_plant_form("formula")
-    assert document.sheet.plant.parameters == (replace(quantities[0], value=0.07), *quantities[1:])
-
-
-def test_the_disturbance_path_shares_the_parameters(document: Document) -> None:
-    """A name used by the path alone is a parameter of the plant, and spare once the path is gone."""
-    document.change_disturbance_path("rise / (lag s + 1)")
-    rise = document.sheet.plant.parameters[-1]
-    assert (rise.name, rise.value) == ("rise", 1.0)
-    document.change_parameter(replace(rise, value=0.3), label="Set it")
-    document.change_formula("gain / (lag s + 1)")
-    assert [one.name for one in document.sheet.plant.parameters] == ["gain", "lag", "rise"]
-    document.change_disturbance_path("")
-    assert document.sheet.controller.disturbance_feedforward is None
-    assert "rise" in [one.name for one in document.spare_parameters]
 
 
 def test_edit_refuses_what_the_file_would_be_refused_for(document: Document) -> None:
@@ -325,12 +270,6 @@ def test_a_file_changed_by_somebody_else_is_not_overwritten(file: Path) -> None:
         document.save()
     assert file.read_text(encoding="utf-8").endswith("# mine")
     assert document.dirty
-
-
-def test_a_sheet_without_file_asks_for_one(document: Document) -> None:
-    """Saving what has no file is refused with the way out."""
-    with pytest.raises(TrimwrightError, match=r"^this sheet has no file yet: choose one to save it as$"):
-        document.save()
 
 
 def test_opening_begins_anew(document: Document, file: Path) -> None:
