@@ -1,7 +1,7 @@
 """The one road from a tuning sheet to its assessment, which window, commands, report and Python callers all take."""
 
 import sys
-from collections.abc import Callable, Iterator, Sequence
+from collections.abc import Callable, Iterator, Mapping, Sequence
 from types import ModuleType
 
 from tuner.errors import LoopError
@@ -10,7 +10,7 @@ from tuner.judge.cliff import Runaway, instability
 from tuner.judge.verdict import judge
 from tuner.measure.family import Measured, measure_trials
 from tuner.measure.final import family_final_values
-from tuner.measure.loop import add_margins, damping
+from tuner.measure.loop import add_damping, add_margins
 from tuner.model.controller import Controller
 from tuner.model.family import FAMILY_SIZE, Member, family
 from tuner.model.sheet import Sheet
@@ -75,7 +75,7 @@ def _result(  # noqa: PLR0913, PLR0917 - what is known of one plant
     member: Member, loop: Loop, poles: Poles, traces: Traces, measured: Measured, found: Margins | None
 ) -> MemberResult:
     add_margins(measured, found, stable=poles.stable)
-    measured.values["damping"] = damping(poles.values, endless=not poles.complete).value
+    add_damping(measured, poles)
     return MemberResult(
         name=member.name,
         stable=poles.stable,
@@ -85,13 +85,13 @@ def _result(  # noqa: PLR0913, PLR0917 - what is known of one plant
         reasons=measured.reasons,
         final_reference=measured.final_reference,
         final_disturbance=measured.final_disturbance,
-        notes=tuple(_notes(loop, poles, traces)),
+        notes=tuple(_notes(loop, poles, traces, measured.values)),
         margins=found,
     )
 
 
-def _notes(loop: Loop, poles: Poles, traces: Traces) -> Iterator[str]:
-    if not poles.complete:
+def _notes(loop: Loop, poles: Poles, traces: Traces, found: Mapping[str, float | None]) -> Iterator[str]:
+    if poles.stable and not poles.complete and found["damping"] is not None:
         yield DOMINANT
     if loop.sample_time and loop.chain.d and not loop.chain.dead_time:
         yield DIRECT

@@ -1,11 +1,12 @@
 """Measures of the loop itself: its margins, and the smallest damping of its poles."""
 
-from dataclasses import dataclass
+from math import inf
 
 import numpy as np
 
 from tuner.measure.family import UNSTABLE, Measured
 from tuner.simulate.margins import Margins
+from tuner.simulate.poles import Poles
 from tuner.simulate.traces import ComplexArray
 
 MARGINS = (
@@ -20,38 +21,44 @@ MARGINS = (
 
 NO_FEEDBACK = "there is no feedback"
 NO_BANDWIDTH = "abs(S) does not rise through 0.707"
+ENDLESS = "there are endless poles along a line, with damping ratios down to zero"
 
 DOMINANT_SHARE = 3.0
 """A loop with endless poles is judged by those no farther left than this many times its rightmost one."""
 
 
-@dataclass(frozen=True, slots=True)
-class Damping:
-    """The smallest damping ratio of a set of poles, and whether only the dominant ones were looked at."""
-
-    value: float
-    dominant_only: bool
-
-
-def damping(poles: ComplexArray, *, endless: bool) -> Damping:
+def damping(poles: ComplexArray, known_from: float = -inf) -> float | None:
     """Return the smallest damping ratio -Re(s) / abs(s) of closed-loop poles.
 
     Parameters
     ----------
     poles : ndarray of complex, shape (n,)
         In s, rightmost first. None at all is a deadbeat loop, whose damping ratio is 1.
-    endless : bool
-        Whether there are infinitely many (a continuous loop with dead time); then only poles with
-        Re(s) >= `DOMINANT_SHARE` Re(rightmost) count.
+    known_from : float
+        Poles farther left than this are not among `poles`, though there are infinitely many: a continuous loop with
+        dead time. Then those of a stable loop with Re(s) >= `DOMINANT_SHARE` Re(rightmost) count.
+
+    Returns
+    -------
+    float or None
+        None when not all poles that count are known: a loop whose gain does not die away at high frequency has
+        endless ones along a line, with damping ratios down to zero.
     """
     if not poles.size:
-        return Damping(1.0, dominant_only=False)
-    right = poles.real.max()
-    if endless and right < 0.0:
+        return 1.0
+    right = float(poles.real.max())
+    if known_from > -inf and right < 0.0:
+        if known_from > DOMINANT_SHARE * right:
+            return None
         poles = poles[poles.real >= DOMINANT_SHARE * right]
     size = np.abs(poles)
     ratios = np.where(size > 0.0, -poles.real / np.where(size > 0.0, size, 1.0), 0.0)
-    return Damping(float(ratios.min()) + 0.0, dominant_only=endless)
+    return float(ratios.min()) + 0.0
+
+
+def add_damping(measured: Measured, poles: Poles) -> None:
+    """Add the damping to the measures of the trial."""
+    measured.put("damping", damping(poles.values, -inf if poles.complete else poles.known_from), ENDLESS)
 
 
 def add_margins(measured: Measured, margins: Margins | None, *, stable: bool) -> None:
