@@ -1,5 +1,6 @@
 """What a program that called ours learns from its exit status, and a person from stderr."""
 
+import os
 import subprocess
 import sys
 
@@ -63,7 +64,13 @@ def test_a_refusal_is_told_on_stderr(capsys: pytest.CaptureFixture[str]) -> None
 def test_a_refusal_comes_after_what_was_printed() -> None:
     """Where both streams end in one file, what was printed before stands before."""
     program = "import sys; from tuner.cli import status; sys.stdout.write('before\\n'); status.refuse(Exception('no'))"
+    buffered = {name: value for name, value in os.environ.items() if name != "PYTHONUNBUFFERED"}
     done = subprocess.run(
-        [sys.executable, "-c", program], stdout=subprocess.PIPE, stderr=subprocess.STDOUT, text=True, check=True
+        [sys.executable, "-c", program],
+        env=buffered,
+        stdout=subprocess.PIPE,
+        stderr=subprocess.STDOUT,
+        text=True,
+        check=True,
     )
     assert done.stdout == "before\nno\n"

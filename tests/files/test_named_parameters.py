@@ -158,9 +158,9 @@ def test_formula_and_names_that_agree_are_silent() -> None:
 
 def test_the_nearest_name_is_an_idle_one() -> None:
     """Of a misspelt name the nearest is sought among those that the formula leaves unused."""
-    unknown, idle = told_names({"lag": 0, "lagg": 9}, {}, ["lag", "laggy"])
-    assert (unknown.nearest, unknown.position) == ("laggy", 9)
-    assert idle.key == "plant.parameters.laggy"
+    unknown, idle = told_names({"lag": 0, "lagg": 9}, {}, ["lag", "large"])
+    assert (unknown.nearest, unknown.position) == ("large", 9)
+    assert idle.key == "plant.parameters.large"
 
 
 def test_names_of_a_formula_that_cannot_be_read() -> None:

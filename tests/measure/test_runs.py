@@ -121,7 +121,7 @@ def test_a_linear_run_never_runs_away() -> None:
         (lambda t: 0.5 * (1.0 - np.exp(-t)), False),
         (lambda t: -0.5 * (1.0 - np.exp(-t)), False),
         (lambda t: 1.0 + np.exp(-0.5 * t) * np.cos(3.0 * t), False),
-        (lambda t: 1.0 - 3.0 * np.exp(-((t - 3.0) ** 2)) - 0.3 * t, False),
+        (lambda t: 1.0 - 8.0 * np.exp(-((t - 3.0) ** 2)) - 0.03 * t * t, False),
     ],
     ids=["down", "up", "held short", "held below rest", "ringing", "back from farther away"],
 )

@@ -23,19 +23,19 @@ def test_every_form_has_a_first_plant(form: PlantForm) -> None:
 
 def test_what_was_converted_is_not_typed() -> None:
     """A converted plant is alike, and what was typed in its form is still the older one."""
-    forms = TYPED.edited(NUMBERS).switched(ZeroPolePlant((), (-1 + 0j,), 1.0), same=True)
+    forms = TYPED.edited(NUMBERS).switched(ZeroPolePlant((), (-1 + 0j,), 1.0))
     assert forms.remembered("zeros and poles") is None
-    assert forms.same_plant("coefficients") == NUMBERS
+    assert forms.shown_before("coefficients") == NUMBERS
     assert forms.remembered("formula") == FORMULA
-    assert forms.same_plant("formula") is None
+    assert forms.shown_before("formula") is None
 
 
 def test_a_look_at_a_form_without_conversion_forgets_nothing() -> None:
     """After a form that could not show the plant, all forms seen before it come back as they were."""
-    forms = TYPED.switched(NUMBERS, same=True).switched(start("physics"), same=False)
-    assert forms.same_plant("formula") == FORMULA
-    assert forms.same_plant("coefficients") == NUMBERS
-    assert forms.edited(start("physics")).same_plant("formula") is None
+    forms = TYPED.switched(NUMBERS).switched(start("physics"))
+    assert forms.shown_before("formula") == FORMULA
+    assert forms.shown_before("coefficients") == NUMBERS
+    assert forms.edited(start("physics")).shown_before("formula") is None
 
 
 def test_a_refused_conversion_shows_what_was_typed_there_last() -> None:

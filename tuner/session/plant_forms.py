@@ -42,37 +42,32 @@ class PlantForms:
     ----------
     typed : tuple of Plant
         What was last typed in each form, at most one of each; what was converted is not among them.
-    alike : tuple of Plant
-        Those that are the present plant in another form: it was converted, and not changed since.
-    origin : tuple of Plant
-        The plant in the forms shown before one could not show it; kept until a plant is changed by hand.
+    seen : tuple of Plant
+        What each form has shown since a plant was last changed by hand, at most one of each.
     spare : tuple of PlantParameter
         Parameters that the formula used once and does not now, with the numbers that were typed for them.
     """
 
     typed: tuple[Plant, ...] = ()
-    alike: tuple[Plant, ...] = ()
-    origin: tuple[Plant, ...] = ()
+    seen: tuple[Plant, ...] = ()
     spare: tuple[PlantParameter, ...] = ()
 
     def edited(self, plant: Plant) -> "PlantForms":
         """Return the forms after the plant was changed by hand."""
         others = tuple(other for other in self.typed if type(other) is not type(plant))
-        return replace(self, typed=(*others, plant), alike=(plant,), origin=())
+        return replace(self, typed=(*others, plant), seen=(plant,))
 
-    def switched(self, after: Plant, *, same: bool) -> "PlantForms":
-        """Return the forms after another form was chosen, which shows the `same` plant or not."""
-        if not same:
-            return replace(self, alike=(after,), origin=self.origin or self.alike)
-        return replace(self, alike=self.alike if after in self.alike else (*self.alike, after))
+    def switched(self, after: Plant) -> "PlantForms":
+        """Return the forms after another form was chosen, which shows this plant."""
+        return replace(self, seen=self.seen if after in self.seen else (*self.seen, after))
 
     def remembered(self, form: PlantForm) -> Plant | None:
         """Return what was last typed in a form, None if nothing was."""
         return next((plant for plant in self.typed if form_of(plant) == form), None)
 
-    def same_plant(self, form: PlantForm) -> Plant | None:
+    def shown_before(self, form: PlantForm) -> Plant | None:
         """Return the plant as another form showed it, if nothing was changed by hand since; else None."""
-        return next((plant for plant in (*self.alike, *self.origin) if form_of(plant) == form), None)
+        return next((plant for plant in self.seen if form_of(plant) == form), None)
 
 
 @dataclass(frozen=True, slots=True)
@@ -91,9 +86,9 @@ def switch(plant: Plant, forms: PlantForms, form: PlantForm, convert: Callable[[
     convert : callable
         Gives a plant in a form, or raises a `TrimwrightError` when it has none there.
     """
-    shown_there = forms.same_plant(form)
-    if shown_there is not None:
-        return Switch(shown_there)
+    before = forms.shown_before(form)
+    if before is not None:
+        return Switch(before)
     try:
         return Switch(convert(plant, form))
     except TrimwrightError as refusal:

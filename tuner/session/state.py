@@ -130,5 +130,5 @@ def with_plant_form(state: State, form: PlantForm) -> Switched:
 
     switched = switch(state.sheet.plant, state.forms, form, converted)
     after = switched.plant
-    forms = state.forms.switched(after, same=not switched.remark)
-    return Switched(replace(state, sheet=replace(state.sheet, plant=after), forms=forms), switched.remark)
+    changed = replace(state, sheet=replace(state.sheet, plant=after), forms=state.forms.switched(after))
+    return Switched(changed, switched.remark)
