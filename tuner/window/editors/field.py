@@ -3,8 +3,8 @@
 from collections.abc import Callable
 from typing import Protocol
 
-from PySide6.QtCore import QTimer
-from PySide6.QtWidgets import QGridLayout, QLabel, QScrollArea, QSizePolicy, QVBoxLayout, QWidget
+from PySide6.QtCore import QEvent, QTimer
+from PySide6.QtWidgets import QApplication, QGridLayout, QLabel, QScrollArea, QSizePolicy, QVBoxLayout, QWidget
 
 from tuner.errors import TrimwrightError
 from tuner.session.checks import sentence
@@ -12,6 +12,9 @@ from tuner.window.elided import ElidedLabel
 from tuner.window.theme import Theme
 
 LABEL_WIDTH, UNIT_WIDTH = 108, 52
+
+_ROUNDS = 3
+"""Times that a page is laid out before it is seen: for what it needs, and for a scroll bar that comes of it."""
 
 
 class FaultLine(QLabel):
@@ -163,9 +166,19 @@ class Page(QWidget):
             part.refresh(anew=anew)
 
     def settle(self) -> None:
-        """Lay everything out at once, inner parts first, so that nothing is seen half laid out."""
+        """Lay everything out at once, so that nothing is seen half laid out."""
+        for _ in range(_ROUNDS):
+            before = self.size()
+            self._lay_out()
+            if self.size() == before:
+                return
+
+    def _lay_out(self) -> None:
+        """Lay out the inner parts first, then the page, and let what scrolls it hear of its size."""
         for inner in reversed(self.findChildren(QWidget)):
             layout = inner.layout()
             if layout is not None and not inner.isHidden():
                 layout.activate()
         self.column.activate()
+        if (around := self.parentWidget()) is not None:
+            QApplication.sendEvent(around, QEvent(QEvent.Type.LayoutRequest))

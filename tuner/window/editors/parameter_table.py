@@ -197,8 +197,10 @@ class ParameterTable(QWidget):
         names = {parameter.name for parameter in used}
         for name, parameter in shown.items():
             self.rows[name].show_parameter(parameter, used=name in names, anew=anew)
-        self.head.setVisible(bool(shown))
         self._lay_out()
+        self.head.setVisible(bool(shown))
+        for row in self.rows.values():
+            row.setVisible(True)
 
     def resizeEvent(self, event: QResizeEvent) -> None:
         """Share another width among the columns."""
@@ -224,7 +226,6 @@ class ParameterTable(QWidget):
             )
             self.rows[name] = row
             self._column.insertWidget(place, row)
-            row.setVisible(True)
         for row in before.values():
             row.hide()
             row.deleteLater()
