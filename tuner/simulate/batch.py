@@ -3,6 +3,7 @@
 import math
 from collections.abc import Sequence
 from dataclasses import dataclass
+from functools import lru_cache
 
 import numpy as np
 from numpy.typing import NDArray
@@ -188,11 +189,18 @@ def _feedforward(sheet: Sheet, grid: Grid) -> Array:
 def _ceilings(sheet: Sheet, found: Sequence[Process], constants: Array, feedforward: Array) -> Array:
     """Return where output and effort of each run have run away, shape (2 p, 2), from the sizes of its steps."""
     trial = sheet.trial
-    frequency = np.array([2j * math.pi / trial.duration])
-    rises = [abs(complex((process.disturbance_path or process.plant).response(frequency)[0])) for process in found]
-    y = np.array([[abs(trial.reference), abs(trial.disturbance) * min(rise, 1e12)] for rise in rises]).reshape(-1)
+    rises = _rises(tuple(found), trial.duration)
+    y = np.array([[abs(trial.reference), abs(trial.disturbance) * rise] for rise in rises]).reshape(-1)
     with np.errstate(over="ignore"):
         gain = np.abs(constants[:, [0, 1, 2]]) @ (1.0, feedforward.shape[1], 1.0)
         effort = gain * y + np.abs(feedforward).max(axis=1) + np.tile([0.0, abs(trial.disturbance)], len(found))
         sizes = np.column_stack((y, effort))
         return np.minimum(RUNAWAY * np.where(sizes > 0.0, sizes, 1.0), _LARGEST)
+
+
+@lru_cache(maxsize=64)
+def _rises(found: tuple[Process, ...], duration: float) -> tuple[float, ...]:
+    """Return about how far a unit disturbance takes the output in a trial; the same for all gains, so it is kept."""
+    frequency = np.array([2j * math.pi / duration])
+    paths = [process.disturbance_path or process.plant for process in found]
+    return tuple(min(abs(complex(path.response(frequency)[0])), 1e12) for path in paths)
