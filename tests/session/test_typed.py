@@ -173,3 +173,9 @@ def test_matrices_come_back() -> None:
     """A matrix is one row a line; empty lines do not count."""
     matrix = ((0.0, 1.0), (-2.0, -0.5))
     assert typed.rows(typed.shown_rows(matrix) + "\n\n") == matrix
+
+
+def test_no_zero_is_negative() -> None:
+    """A zero that came out of a conversion with a sign is shown without one."""
+    assert typed.shown(-0.0) == "0"
+    assert typed.shown_complex(complex(-0.0, 2.0)) == "0 + 2j"

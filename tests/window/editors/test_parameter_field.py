@@ -3,6 +3,7 @@
 import pytest
 from PySide6.QtCore import Qt
 from PySide6.QtTest import QTest
+from PySide6.QtWidgets import QApplication
 
 from tests.session.sheets import wash_bath
 from tests.window.editors import finding
@@ -139,3 +140,28 @@ def test_a_refused_choice_says_why_and_stays(
     QTest.keyClick(flag.box, Qt.Key.Key_Space)
     assert flag.fault.text() == "loop.time_unit: expected another unit, found this one"
     assert flag.box.isChecked()
+
+
+def test_a_story_is_one_line_however_it_was_pasted(panel: EditorPanel, document: Document) -> None:
+    """The story has the whole width and some lines of room; line breaks of a paste become spaces."""
+    field = typed_field(panel, "Loop", "loop.story")
+    assert field.line.width() > panel.width() - 40
+    QApplication.clipboard().setText("Rinses and dries,\nthen waits.")
+    field.line.setFocus()
+    field.line.selectAll()
+    field.line.paste()
+    QTest.keyClick(field.line, Qt.Key.Key_Return)
+    assert document.sheet.loop.story == "Rinses and dries, then waits."
+    assert field.line.typed() == "Rinses and dries, then waits."
+
+
+def test_fields_are_named_by_their_place_in_the_sheet(panel: EditorPanel) -> None:
+    """Two fields called low or unit are told apart by a screen reader."""
+    names = [
+        finding.field(panel, "Loop", f"loop.{signal}.low").control.accessibleName()
+        for signal in ("controlled", "manipulated")
+    ]
+    assert names == ["loop controlled low", "loop manipulated low"]
+    word = finding.field(panel, "Loop", "loop.time_unit")
+    assert isinstance(word, ChoiceField)
+    assert word.segments.buttons["min"].accessibleName() == "loop time unit: min"
