@@ -4,7 +4,7 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from tuner.law import print_c
-from tuner.law.translate import Name, Number, Operation, parse
+from tuner.law.translate import parse
 
 
 @given(st.floats(allow_nan=False, allow_infinity=False))
@@ -13,14 +13,6 @@ def test_numbers_are_hexadecimal_and_exact(value: float) -> None:
     text = print_c.number(value)
     assert float.fromhex(text).hex() == value.hex()
     assert "p" in text
-
-
-def test_expressions_are_parenthesised_and_respelt() -> None:
-    """Every operation stands in parentheses; only the outermost pair may go."""
-    node = Operation("-", Operation("*", Name("a"), Number(2.0)), Name("b"))
-    assert print_c.expression(node, {"b": "state->b"}) == "((a * 2.0) - state->b)"
-    assert print_c.bare(node, {}) == "(a * 2.0) - b"
-    assert print_c.bare(Name("a"), {}) == "a"
 
 
 def test_locals_are_declared_in_the_smallest_block_that_holds_them() -> None:

@@ -2,7 +2,8 @@
 
 from collections.abc import Collection, Iterable, Mapping, Sequence
 
-from tuner.law.translate import Assignment, Choice, Comparison, Expression, Name, Number, Operation, Statement, used
+from tuner.law.expressions import bare, comparison
+from tuner.law.translate import Assignment, Choice, Comparison, Statement, used
 
 
 def number(value: float) -> str:
@@ -12,23 +13,6 @@ def number(value: float) -> str:
     whole, _, fraction = mantissa.partition(".")
     fraction = fraction.rstrip("0") or "0"
     return f"{whole}.{fraction}p{exponent}"
-
-
-def expression(node: Expression, names: Mapping[str, str]) -> str:
-    """Return an expression as text; `names` respells names where it holds them."""
-    match node:
-        case Number(value):
-            return repr(value)
-        case Name(name):
-            return names.get(name, name)
-        case Operation(operator, left, right):
-            return f"({expression(left, names)} {operator} {expression(right, names)})"
-
-
-def bare(node: Expression, names: Mapping[str, str]) -> str:
-    """Return an expression as text, without the parentheses around the whole of it."""
-    text = expression(node, names)
-    return text[1:-1] if isinstance(node, Operation) else text
 
 
 def block(nodes: Sequence[Statement], names: Mapping[str, str], local: Collection[str], indent: str) -> list[str]:
@@ -72,11 +56,7 @@ def _statement(node: Statement, names: Mapping[str, str], local: Collection[str]
 
 
 def _head(conditions: Sequence[Comparison], names: Mapping[str, str], indent: str) -> list[str]:
-    texts = [_comparison(condition, names) for condition in conditions]
+    texts = [comparison(condition, names) for condition in conditions]
     if len(texts) == 1:
         return [f"{indent}if ({texts[0]})"]
     return f" &&\n{indent}    ".join(f"({text})" for text in texts).join((f"{indent}if (", ")")).splitlines()
-
-
-def _comparison(node: Comparison, names: Mapping[str, str]) -> str:
-    return f"{expression(node.left, names)} {node.operator} {expression(node.right, names)}"

@@ -14,6 +14,7 @@ from tuner.deliver.target import Target, fill, template
 from tuner.deliver.vectors import Row
 from tuner.errors import DeliveryError
 from tuner.law import feedforward, pid, print_c, translate
+from tuner.law.expressions import bare
 from tuner.law.print_c import number
 from tuner.model.units import unit_in
 
@@ -129,7 +130,7 @@ def _feedforward(specification: Specification) -> str:
     if gain is None:
         return "0.0"
     (result,) = translate.read(feedforward.static).results
-    return print_c.bare(result, {"feedforward_gain": number(gain)})
+    return bare(result, {"feedforward_gain": number(gain)})
 
 
 def _row(row: Row) -> str:

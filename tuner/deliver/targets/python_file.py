@@ -12,6 +12,7 @@ from tuner.deliver.summary import banner, head, printable
 from tuner.deliver.target import Target, fill, template
 from tuner.deliver.vectors import Row
 from tuner.law import feedforward, pid, print_python, translate
+from tuner.law.expressions import bare
 from tuner.model.units import unit_in
 
 _FILE = "controller.py"
@@ -95,7 +96,7 @@ def _feedforward(specification: Specification) -> str:
     if gain is None:
         return "0.0"
     (result,) = translate.read(feedforward.static).results
-    return print_python.bare(result, {"feedforward_gain": repr(gain)})
+    return bare(result, {"feedforward_gain": repr(gain)})
 
 
 def _row(row: Row) -> str:
