@@ -138,6 +138,18 @@ def test_chips_wrap_and_then_scroll(ribbon: Ribbon) -> None:
     assert one_row < ribbon._scroll.height() < 3 * one_row
 
 
+def test_a_chip_grows_with_its_words(ribbon: Ribbon) -> None:
+    """When a limit turns unstable, its longer word is not cut."""
+    ribbon.widget.resize(1600, 100)
+    ribbon.widget.show()
+    ribbon.show(shown(1.0))
+    QApplication.processEvents()
+    ribbon.show(shown(made_up.EDGE * 1.2))
+    QApplication.processEvents()
+
+    assert [chip.width() for chip in ribbon.chips] == [chip.sizeHint().width() for chip in ribbon.chips]
+
+
 def test_the_shade_is_taken_over(ribbon: Ribbon, theme: Theme) -> None:
     """A chip painted light and the same chip painted dark differ in their ground."""
     ribbon.show(shown(2.2))

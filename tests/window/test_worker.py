@@ -11,6 +11,7 @@ from tuner.errors import LoopError
 from tuner.judge.assessment import Assessment
 from tuner.model.sheet import Sheet
 from tuner.session.tunings import KeptTuning
+from tuner.window import worker
 from tuner.window.shown import Failure, Request, Shown
 from tuner.window.worker import Assessing, Assessor
 
@@ -73,6 +74,31 @@ def test_the_newest_request_wins(make: Make, qtbot: QtBot) -> None:
     qtbot.waitUntil(lambda: any(shown.whole for shown in answers))
     assert set(judged) == {1.0, 1.3}
     assert [shown.number for shown in answers if shown.whole] == [4]
+
+
+@pytest.mark.parametrize(("late", "whole"), [(0.0, {1, 2, 3, 4, 5}), (1e9, {1, 5})])
+def test_the_family_is_not_put_off_for_ever(
+    make: Make, qtbot: QtBot, monkeypatch: pytest.MonkeyPatch, late: float, whole: set[int]
+) -> None:
+    """While newer requests keep coming, the family waits until it is due, and then comes between them."""
+    monkeypatch.setattr(worker, "LATE", late)
+    monkeypatch.setattr(worker, "LATE_TIMES", 0.0)
+    monkeypatch.setattr(worker, "QUICK", 0.0)
+
+    def judge(sheet: Sheet, size: int) -> Assessment:
+        number = round(sheet.controller.gain_1)
+        if size == 1 and 1 < number < 5:
+            assessor.submit(Request(number + 1, made_up.sheet(number + 1.0)))
+        return made_up.judge(sheet, size)
+
+    assessor = make(judge)
+    answers: list[Shown] = []
+    assessor.answered.connect(answers.append)
+    assessor.submit(Request(1, made_up.sheet(1.0)))
+    qtbot.waitUntil(lambda: any(shown.whole for shown in answers))
+    assessor.submit(Request(2, made_up.sheet(2.0)))
+    qtbot.waitUntil(lambda: any(shown.whole and shown.number == 5 for shown in answers))
+    assert {shown.number for shown in answers if shown.whole} == whole
 
 
 def test_a_loop_that_cannot_be_computed_is_a_sentence(make: Make, qtbot: QtBot) -> None:

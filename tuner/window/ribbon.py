@@ -223,6 +223,7 @@ class Ribbon:
                 self._flow.addWidget(self.chips[-1])
         if sizes != [chip.sizeHint() for chip in self.chips]:
             self._flow.invalidate()
+            self._flow.activate()
             self._fit()
 
     def _arranged(self) -> QWidget:

@@ -33,6 +33,11 @@ class Slot(Generic[Thing]):
         with self._turn:
             return self._turn.wait_for(lambda: self._closed or self._waiting is not None, patience)
 
+    @property
+    def closed(self) -> bool:
+        """Whether nothing more comes."""
+        return self._closed
+
     def close(self) -> None:
         """Let every `take` return None, now and from now on; what waits is dropped."""
         with self._turn:

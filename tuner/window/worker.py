@@ -28,6 +28,9 @@ FRAME = 0.016
 REST = 0.060
 """Seconds that such a family waits for a newer request."""
 
+LATE, LATE_TIMES = 0.150, 4.0
+"""Seconds, or times its cost, after which the family is due although the hand still moves."""
+
 _REMEMBERED = 32
 
 _log = logging.getLogger(__name__)
@@ -45,11 +48,14 @@ class Assessing:
         The road from sheet to assessment, and from there to the overlay.
     cost : float
         Seconds that the last whole family took.
+    ended : float
+        When it was done, on the clock of `time.perf_counter`.
     """
 
     judge: Judge
     draw: Draw
     cost: float = float("inf")
+    ended: float = float("-inf")
     _kept: OrderedDict[Sheet, MemberResult | None] = field(default_factory=OrderedDict)
 
     def nominal(self, request: Request) -> Shown:
@@ -60,8 +66,13 @@ class Assessing:
         """Answer for the whole family."""
         began = time.perf_counter()
         shown = self._shown(request, FAMILY_SIZE)
-        self.cost = time.perf_counter() - began
+        self.ended = time.perf_counter()
+        self.cost = self.ended - began
         return shown
+
+    def due(self) -> bool:
+        """Tell whether the last whole family is so old that the next one should wait no longer."""
+        return time.perf_counter() - self.ended > max(LATE, LATE_TIMES * self.cost)
 
     def _shown(self, request: Request, size: int) -> Shown:
         assessment = self.judge(request.sheet, size)
@@ -134,7 +145,8 @@ class Assessor(QObject):
         if cost > QUICK:
             if not self._tell(request, self._assessing.nominal):
                 return
-            if self._slot.newer(REST if cost > SLOW else FRAME):
+            overtaken = self._slot.newer(REST if cost > SLOW else FRAME)
+            if self._slot.closed or (overtaken and not self._assessing.due()):
                 return
         self._answer_whole(request)
 
