@@ -1,6 +1,7 @@
 """Folders that files cannot go to, and moves that fail half way."""
 
-import os
+import tempfile
+from errno import EACCES
 from pathlib import Path
 
 import pytest
@@ -60,15 +61,17 @@ def test_a_null_character_is_refused() -> None:
     assert str(caught.value) == r"'a\x00b': expected the name of a folder, found a null character in it"
 
 
-@pytest.mark.skipif(os.geteuid() == 0, reason="root may write everywhere")
-def test_a_folder_that_cannot_be_written_to_is_refused(tmp_path: Path) -> None:
-    """Permission denied, in a sentence, and nothing changed."""
-    tmp_path.chmod(0o500)
-    try:
-        with pytest.raises(DeliveryError, match="cannot be written to: Permission denied"):
-            fill(tmp_path / "to", "a")
-    finally:
-        tmp_path.chmod(0o700)
+def test_a_folder_that_cannot_be_written_to_is_refused(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:
+    """Permission denied, in a sentence, and the folders that were made are taken back; holds for root as well."""
+
+    def denied(**_: object) -> str:
+        raise PermissionError(EACCES, "Permission denied")
+
+    monkeypatch.setattr(tempfile, "mkdtemp", denied)
+    with pytest.raises(DeliveryError) as caught:
+        fill(tmp_path / "deep" / "to", "a")
+    assert str(caught.value) == f"{tmp_path / 'deep' / 'to'}: cannot be written to: Permission denied"
+    assert list(tmp_path.iterdir()) == []
 
 
 @pytest.mark.parametrize("fails_at", [1, 2, 3, 4, 5])

@@ -2,8 +2,10 @@
 
 import threading
 from pathlib import Path
+from typing import Any
 
 import pytest
+from PySide6 import __version_info__
 from PySide6.QtCore import QMimeData, QPoint, QPointF, Qt, QUrl
 from PySide6.QtGui import QDragEnterEvent, QDropEvent
 from PySide6.QtWidgets import QApplication, QWidget
@@ -214,7 +216,9 @@ def made_up_document(kp: float) -> Document:
 
 def _entering(data: QMimeData) -> QDragEnterEvent:
     action, button, key = Qt.DropAction.CopyAction, Qt.MouseButton.LeftButton, Qt.KeyboardModifier.NoModifier
-    return QDragEnterEvent(QPoint(10, 10), action, data, button, key)
+    # PySide6 6.12 deprecates whole pixels, which are all that the versions before it take.
+    place: Any = QPointF(10.0, 10.0) if __version_info__ >= (6, 12) else QPoint(10, 10)
+    return QDragEnterEvent(place, action, data, button, key)
 
 
 def _drop(window: QWidget, url: QUrl) -> None:
