@@ -1,7 +1,9 @@
 """Files and functions stay small, and every name says what is inside."""
 
 import ast
+import shutil
 import statistics
+import subprocess
 import sys
 from pathlib import Path
 
@@ -66,11 +68,19 @@ def test_names_say_what_is_inside() -> None:
 
 
 def test_the_top_level_holds_what_is_agreed() -> None:
-    """Besides dot-files the top level has these names and no others."""
+    """Besides dot-files the top level hands on these names and no others; what a person delivers there is theirs."""
     agreed = {"README.md", "DEVELOPERS.md", "pyproject.toml", "tuner", "resources", "sample_plants", "tests"}
-    produced = {"build", "dist"}
-    found = {path.name for path in ROOT.iterdir() if not path.name.startswith(".") and path.suffix != ".egg-info"}
-    assert found - produced - agreed == set(), "Put it in the folder where its kind belongs."
+    there = {path.name for path in ROOT.iterdir()}
+    assert agreed - there == set(), "These are missing."
+    assert tops_in_git() - agreed == set(), "Put it in the folder where its kind belongs."
+
+
+def tops_in_git() -> set[str]:
+    """Return what git tracks at the top level, dot-files left out; nothing in a copy without its history."""
+    if not (ROOT / ".git").exists() or not (git := shutil.which("git")):
+        return set()
+    listed = subprocess.run([git, "ls-files", "-z"], cwd=ROOT, capture_output=True, text=True, check=False).stdout
+    return {name.partition("/")[0] for name in listed.split("\0") if name and not name.startswith(".")}
 
 
 def test_a_body_is_counted_without_its_docstring() -> None:
