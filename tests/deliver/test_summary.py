@@ -3,6 +3,8 @@
 from dataclasses import replace
 
 import pytest
+from hypothesis import given
+from hypothesis import strategies as st
 
 from tests.deliver.samples import BARE, FULL, OPEN, assessment, specification
 from tuner.deliver.specification import CAUTIONS, digest, specify
@@ -109,6 +111,7 @@ def test_an_instability_that_says_so_itself_is_not_announced_twice() -> None:
         ("what??/", "what? ?/"),
         ("20 °C µm Öl", "20 deg C um Ol"),
         ("back\\slash", "back/slash"),
+        ("a *\\ b \\* c \\\\ d", "a * / b / * c / / d"),
         ("two\nlines\u2028three", "two lines three"),
         ("\N{FIRE}", "?"),
     ],
@@ -116,6 +119,12 @@ def test_an_instability_that_says_so_itself_is_not_announced_twice() -> None:
 def test_plain_text_cannot_end_a_comment(text: str, expected: str) -> None:
     """ASCII, one line, no comment signs, no trigraphs, no line joins."""
     assert plain(text) == expected
+
+
+@given(st.text("*/\\? \N{FULLWIDTH REVERSE SOLIDUS}\N{FULLWIDTH ASTERISK}\N{DOUBLE QUESTION MARK}\n", max_size=8))
+def test_no_text_at_all_ends_a_comment(text: str) -> None:
+    """Whatever signs meet, also those that are respelt."""
+    assert not any(sign in plain(text) for sign in ("*/", "/*", "//", "??", "\\", "\n"))
 
 
 def test_printable_text_keeps_its_letters() -> None:

@@ -57,10 +57,11 @@ def plain(text: str) -> str:
     respelt = "".join(_PLAIN.get(sign, sign) for sign in printable(text))
     apart = unicodedata.normalize("NFKD", respelt)
     kept = "".join(sign if sign.isascii() else "?" for sign in apart if not unicodedata.combining(sign))
+    kept = kept.replace("\\", "/")  # first, since the slash that it leaves may close a comment
     for dangerous in ("*/", "/*", "??", "//"):
         while dangerous in kept:
             kept = kept.replace(dangerous, " ".join(dangerous))
-    return kept.replace("\\", "/")
+    return kept
 
 
 def _family(assessment: Assessment) -> str:
