@@ -113,9 +113,7 @@ def _without_display(arguments: list[str]) -> Result:
     title = "tests without a display"
     start = _begin(title)
     environment = {**os.environ, "QT_QPA_PLATFORM": "offscreen"}
-    return _end(
-        title, _pytest("not real_window and not benchmark and not fresh_machine", arguments, environment), start
-    )
+    return _end(title, _pytest("not real_window and not fresh_machine", arguments, environment), start)
 
 
 def _with_display(arguments: list[str]) -> Result:
