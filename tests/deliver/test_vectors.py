@@ -39,6 +39,21 @@ def test_limits_that_exist_are_touched_and_kept(sheet: Sheet) -> None:
     assert limited == bounded
 
 
+def test_a_rate_faster_than_the_gains_ask_for_is_touched_by_hand() -> None:
+    """Without gains only the hand moves the effort, and it moves it further than the rate allows."""
+    loop = replace(BARE.loop, manipulated=replace(BARE.loop.manipulated, rate=300.0))
+    rows = specification(replace(BARE, loop=loop, controller=replace(BARE.controller, gain_1=0.0))).rows
+    assert any(row.outcome.flags & Flags.LIMITED for row in rows)
+
+
+@pytest.mark.parametrize("rate", [1e12, 1e308])
+def test_rows_stay_finite_for_absurd_rates(rate: float) -> None:
+    """A rate beyond every measure is left alone rather than reached."""
+    loop = replace(BARE.loop, manipulated=replace(BARE.loop.manipulated, rate=rate))
+    rows = specification(replace(BARE, loop=loop)).rows
+    assert all(isfinite(number) for row in rows for number in (*row.sample, row.outcome.effort))
+
+
 @pytest.mark.parametrize("gain", [5e-324, 1e-300, 1e-12, 1e12, 1e300])
 def test_rows_stay_finite_for_absurd_gains(gain: float) -> None:
     """A gain that is as good as zero asks for no infinite reference, and one without bounds for no infinite effort."""

@@ -97,6 +97,8 @@ class _Scenario:
         self._rest_effort = constants.resting_effort
         self._low = constants.low if constants.low > -UNLIMITED else -scale.effort
         self._high = constants.high if constants.high < UNLIMITED else scale.effort
+        # A rate beyond every measure is as good as none.
+        self._rate = constants.rate_step if constants.rate_step < 1e6 * scale.effort else 0.0
 
     def samples(self) -> Iterator[tuple[Sample, Spoiled]]:
         """Yield samples and what spoils them."""
@@ -115,7 +117,7 @@ class _Scenario:
         yield from self._automatic(21, self._scale.large / 4.0)
 
     def _by_hand(self) -> Iterator[tuple[Sample, Spoiled]]:
-        reach = self._high - self._low
+        reach = max(self._high - self._low, self._rate)
         for effort in (self._between(0.5), self._high + reach, self._low - reach, self._between(0.4)):
             yield self._row(Before.MANUAL, effort)
             for _ in range(10):
