@@ -18,7 +18,10 @@ BASE_PYTHON = str(getattr(sys, "_base_executable", sys.executable))
 EVERYTHING = "ensurepip,libGL.so.1,libEGL.so.1,/usr/include/stdio.h"
 
 SITECUSTOMIZE = """
-import ctypes, importlib.util, os, pathlib, sys
+import ctypes, importlib.util, os, pathlib, signal, sys
+
+# Where the tests run in the background Ctrl-C is ignored, and whoever they start would ignore it too.
+signal.signal(signal.SIGINT, signal.default_int_handler)
 
 def lacks(name):
     installed = os.path.exists(os.path.join(os.environ["FAKE"], "installed"))

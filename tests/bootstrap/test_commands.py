@@ -140,6 +140,22 @@ def test_a_failing_apt_is_explained(machine: FakeMachine, says: str, sentence: s
     assert says in (machine.checkout / ".venv.log").read_text()
 
 
+def test_an_interrupted_installation_is_completed(machine: FakeMachine) -> None:
+    """When Ctrl-C has cut apt off half-way, the next run lets dpkg end that first and mends what is broken."""
+    interrupted = "E: dpkg was interrupted, you must manually run 'dpkg --configure -a' to correct the problem."
+    machine.add_command("dpkg", 'echo "$@" > "$FAKE/dpkg"')
+    machine.add_command(
+        "apt-get",
+        f'"{BASE_PYTHON}" -m apt "$@"\ncase "$*" in *" install "*) ;; *) exit 0;; esac\n'
+        f'[ -e "$FAKE/dpkg" ] || {{ echo "{interrupted}"; exit 100; }}\n: > "$FAKE/installed"',
+    )
+    outcome = machine.run("judge", FAKE_MISSING="ensurepip")
+    assert outcome.status == 7
+    assert (machine.tools / "dpkg").read_text() == "--configure -a\n"
+    _, cut_off, mended = machine.called("apt")
+    assert mended == [*cut_off, "--fix-broken"]
+
+
 def test_packages_that_do_not_help_are_told(machine: FakeMachine) -> None:
     """A Python of another origin does not find what the system's packages bring, which is said instead of repeated."""
     machine.add_command("apt-get")

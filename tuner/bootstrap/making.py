@@ -113,6 +113,10 @@ def _run_apt(lacking: list[system.Need], steps: Steps) -> str:
     steps.run("reading the lists of system packages", [*apt, "update"], quiet)
     install = [*apt, "install", "-y", "--no-install-recommends", *packages]
     outcome = steps.run(f"installing {len(packages)} system packages", install, quiet)
+    if outcome.status and "dpkg was interrupted" in outcome.reason:
+        steps.run("completing an interrupted installation", ["dpkg", "--configure", "-a"], quiet)
+        # Packages of which only a part has been unpacked are for apt to mend.
+        outcome = steps.run(f"installing {len(packages)} system packages", [*install, "--fix-broken"], quiet)
     if not outcome.status:
         return f"apt-get has installed the packages, but {sys.executable} does not find what is in them."
     return f"apt-get could not install them: {outcome.reason} The whole output is in {steps.log}.\n{_advice(lacking)}"
