@@ -222,6 +222,8 @@ class Ribbon:
                 self.chips.append(Chip(words, tip, self._theme))
                 self._flow.addWidget(self.chips[-1])
         if sizes != [chip.sizeHint() for chip in self.chips]:
+            for chip in self.chips:
+                chip.updateGeometry()  # the layout remembers what each asked for
             self._flow.invalidate()
             self._flow.activate()
             self._fit()
