@@ -40,7 +40,7 @@ def test_newton_step_of_a_sampled_loop() -> None:
 def test_all_roots_of_a_polynomial() -> None:
     """From guesses on a circle all six roots of (s + 1)^6 + 64 are found, each once."""
     roots = np.full(6, -1.0 + 0j)
-    s = 3.0 * np.exp(1j * (np.arange(6.0) + 0.3))
+    s = (3.0 * np.exp(1j * (np.arange(6.0) + 0.3))).astype(complex)
     error = np.full(6, np.inf)
     characteristic.aberth(LoopGain(roots, 0, 64.0, 0.0, 0.0, 1.0), s, 60, error)
     expected = -1.0 + 2.0 * np.exp(1j * np.pi * (2.0 * np.arange(6) + 1.0) / 6.0)

@@ -61,7 +61,7 @@ def _random_case(seed: int) -> Case:
         bake(
             sample_time=0.1 * steps, kp=random.random() * 2, ki=random.random(), kd=random.random() * 0.3,
             filter_time=random.random() * 0.2, windup_time=1.0 + random.random(), c=random.random(),
-            action=random.choice([-1.0, 1.0]), low=40.0 - bound, high=40.0 + bound, rate=20.0 * random.random(),
+            action=float(random.choice([-1.0, 1.0])), low=40.0 - bound, high=40.0 + bound, rate=20.0 * random.random(),
             measurement_filter_time=0.1 * random.random(), notch_section=notch(0.1 * steps, 3.0, 0.1, 1.0),
             resting_measurement=72.0, resting_effort=40.0,
         )

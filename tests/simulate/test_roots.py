@@ -51,7 +51,8 @@ def test_a_hidden_mode_is_a_root() -> None:
 def test_roots_found_together_are_all_different() -> None:
     """From guesses far away, and close to each other, each of five roots is found once."""
     loop = row([-1.0] * 5, 1.0)
-    roots, _ = together(loop, 0.1 * np.exp(1j * np.arange(5.0)) + 0.3)
+    guesses = (0.1 * np.exp(1j * np.arange(5.0)) + 0.3).astype(complex)
+    roots, _ = together(loop, guesses)
     expected = -1.0 + np.exp(1j * np.pi * (2 * np.arange(5) + 1) / 5)
     assert np.abs(roots[:, None] - expected[None, :]).min(0) == pytest.approx(np.zeros(5), abs=1e-12)
 
