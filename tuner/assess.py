@@ -54,11 +54,28 @@ def _assessed(sheet: Sheet, family_size: int) -> Assessment:
     members = family(sheet.plant, family_size)
     loops = loops_of(sheet, members)
     poles = family_poles(loops)
+    results = _results(sheet, members, loops, poles)
+    return judge(sheet, results, _instability(sheet, members, loops, poles))
+
+
+def results_of(sheet: Sheet, members: Sequence[Member]) -> tuple[MemberResult, ...]:
+    """Return what each of some plants makes of the loop, as an assessment has it.
+
+    Raises
+    ------
+    LoopError
+        When a loop cannot be computed.
+    """
+    loops = loops_of(sheet, members)
+    return _results(sheet, members, loops, family_poles(loops))
+
+
+def _results(
+    sheet: Sheet, members: Sequence[Member], loops: Sequence[Loop], poles: Sequence[Poles]
+) -> tuple[MemberResult, ...]:
     traces = run(sheet, members)
     measured = measure_trials(sheet, traces, [found.stable for found in poles], family_final_values(sheet, members))
-    found = _margins(loops, poles)
-    results = tuple(map(_result, members, loops, poles, traces, measured, found))
-    return judge(sheet, results, _instability(sheet, members, loops, poles))
+    return tuple(map(_result, members, loops, poles, traces, measured, _margins(loops, poles)))
 
 
 def _margins(loops: Sequence[Loop], poles: Sequence[Poles]) -> list[Margins | None]:

@@ -20,11 +20,25 @@ def compiled(function: Function) -> Function:
     Arithmetic is that of IEEE 754 in the order written: no fast arithmetic, no contraction. The lock of the
     interpreter is let go while it runs. ``function.py_func`` is the plain function.
     """
-    return cast(Function, _decorator()(function))
+    return cast(Function, _decorator(EXACT)(function))
+
+
+def compiled_lanes(function: Function) -> Function:
+    """Compile a function whose inner loops run along lanes, with arithmetic that lets them share instructions.
+
+    Products and sums may be contracted, and no number is taken to be infinite or none: what is computed agrees with
+    `compiled` to rounding, and only there where every number is finite.
+    """
+    return cast(Function, _decorator(ALONG_LANES)(function))
+
+
+EXACT: frozenset[str] = frozenset()
+ALONG_LANES = frozenset({"contract", "nsz", "nnan", "ninf"})
+"""Freedoms of the compiler's arithmetic; none of them lets sums be taken in another order."""
 
 
 @cache
-def _decorator() -> Callable[[Callable[..., object]], object]:
+def _decorator(freedoms: frozenset[str]) -> Callable[[Callable[..., object]], object]:
     keep_compiled_kernels()
     import numba
     from numba.core import config
@@ -32,7 +46,7 @@ def _decorator() -> Callable[[Callable[..., object]], object]:
     vars(config)["CACHE_DIR"] = str(Path(os.environ["NUMBA_CACHE_DIR"]) / _stamp())
     return cast(
         Callable[[Callable[..., object]], object],
-        numba.njit(cache=True, nogil=True, fastmath=False, error_model="numpy"),
+        numba.njit(cache=True, nogil=True, fastmath=set(freedoms) or False, error_model="numpy"),
     )
 
 

@@ -79,7 +79,7 @@ def simulate(
     times = softening or [sheet.controller.measurement_filter] * count
     constants = np.repeat(np.array([law_constants(sheet, grid.sample_time, time) for time in times]), 2, axis=0)
     sizes = np.tile([[sheet.trial.reference, 0.0], [0.0, sheet.trial.disturbance]], (count, 1))
-    feedforward = np.tile(_feedforward(sheet, grid), (count, 1))
+    feedforward = np.tile(feedforward_of(sheet, grid), (count, 1))
     delay = wired.delay.copy()
     if sheet.controller.sample_time:
         delay[:, 0] += sheet.controller.delay_samples * grid.steps
@@ -163,7 +163,7 @@ def _notch(controller: Controller, sample_time: float) -> NotchCoefficients:
     return notch(sample_time, asked.frequency, asked.depth, asked.width)
 
 
-def _feedforward(sheet: Sheet, grid: Grid) -> Array:
+def feedforward_of(sheet: Sheet, grid: Grid) -> Array:
     """Return the feedforward of the reference run and of the disturbance run, shape (2, samples).
 
     It is designed for the nominal plant, whatever member it then meets.

@@ -1,0 +1,1 @@
+"""The road of an assessment for whole rulers and maps: what the loop would be at every notch."""

@@ -1,0 +1,113 @@
+"""What of a loop does not depend on its gains: every plant's chain on a grid of frequencies, kept from frame to frame."""
+
+from collections.abc import Sequence
+from dataclasses import dataclass, replace
+from functools import lru_cache
+from math import ceil, pi
+
+import numpy as np
+from numpy.typing import NDArray
+
+from tuner.footing.affine import Contour, contour
+from tuner.model.controller import Controller
+from tuner.model.family import family
+from tuner.model.sheet import Sheet
+from tuner.simulate.factors import Stack, stack, to_x
+from tuner.simulate.frequency import grid
+from tuner.simulate.loop import loops_of, same_shape
+from tuner.simulate.traces import Array, ComplexArray
+
+_TURN = pi / 6.0
+"""Phase that the dead time may turn between two frequencies."""
+
+_MOST = 4000
+"""Frequencies at most for the sake of the dead time."""
+
+_CLOSER = 1e-4
+"""Where the ends of a contour are looked at, in parts of the lowest frequency."""
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Chains:
+    """Chains of one shape, from the effort of an ideal proportional gain of one to the measurement that the law takes.
+
+    Parameters
+    ----------
+    members : tuple of int
+        Which plants of the family they are.
+    rows : Stack
+        Their gains as factors, action and filters of the measurement included.
+    w : ndarray, shape (p, n)
+        Frequencies, rising, rad per time unit.
+    at : Contour
+        The law's blocks there.
+    inverse : ndarray of complex, shape (p, n)
+        1/G.
+    """
+
+    members: tuple[int, ...]
+    rows: Stack
+    w: Array
+    at: Contour
+    inverse: ComplexArray
+
+    def look(self, rows: NDArray[np.intp], w: Array) -> tuple[ComplexArray, Contour]:
+        """Return 1/G of some rows at one frequency each, and the law's blocks there; shapes (k, 1)."""
+        with np.errstate(all="ignore"):
+            inverse = 1.0 / self.rows.take(rows).response(w[:, None])
+        return inverse, contour(to_x(1j * w[:, None], self.rows.step), self.rows.step)
+
+
+def chains_of(sheet: Sheet, size: int) -> tuple[Chains, ...]:
+    """Return the chains of a sheet's family; the same for all gains, so they are kept."""
+    return _chains(_without_gains(sheet), size)
+
+
+def _without_gains(sheet: Sheet) -> Sheet:
+    """Return a sheet with an ideal proportional gain of one in place of the law, and nothing that no pole sees."""
+    old = sheet.controller
+    probe = Controller(
+        sample_time=old.sample_time,
+        gain_1=1.0,
+        action=old.action,
+        delay_samples=old.delay_samples,
+        measurement_filter=old.measurement_filter,
+        notch=old.notch,
+    )
+    return replace(sheet, controller=probe, limits=())
+
+
+@lru_cache(maxsize=8)
+def _chains(sheet: Sheet, size: int) -> tuple[Chains, ...]:
+    loops = loops_of(sheet, family(sheet.plant, size))
+    return tuple(_stacked(stack([loops[i].factors for i in places]), tuple(places)) for places in same_shape(loops))
+
+
+def _stacked(rows: Stack, members: Sequence[int]) -> Chains:
+    w = _frequencies(rows)
+    with np.errstate(all="ignore"):
+        inverse = 1.0 / rows.response(w)
+    return Chains(tuple(members), rows, w, contour(to_x(1j * w, rows.step), rows.step), inverse)
+
+
+def _frequencies(rows: Stack) -> Array:
+    """Return frequencies that show every turn of a chain, its ends looked at closely."""
+    w = grid(rows, np.zeros((rows.rows, 0), dtype=complex))
+    # Twice as many as for the margins of one tuning: here every tuning is looked at through the same points.
+    w = np.concatenate((w, np.sqrt(w[:, 1:] * w[:, :-1]), _turning(rows, w[:, -1])), axis=1)
+    low, high = w.min(axis=1), w.max(axis=1)
+    w = np.concatenate((w, _CLOSER * low[:, None]), axis=1)
+    w.sort(axis=1)
+    if rows.step:
+        w[:, -1] = high - _CLOSER * low
+    return w
+
+
+def _turning(rows: Stack, high: Array) -> Array:
+    """Return even steps over the turns of the dead time's phase, as many as there may be."""
+    longest = float(rows.delay.max(initial=0.0))
+    if longest == 0.0:
+        return np.zeros((rows.rows, 0))
+    steps = min(ceil(float((rows.delay * high).max()) / _TURN), _MOST)
+    end = np.minimum(high, steps * _TURN / longest)
+    return np.asarray(end[:, None] * (np.arange(steps) + 0.5) / steps)

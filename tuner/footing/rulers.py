@@ -1,0 +1,225 @@
+"""Whole rulers: the class at every notch of every gain, and where it changes in between."""
+
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass, replace
+
+import numpy as np
+from numpy.typing import NDArray
+
+from tuner.footing.classes import LOST, SOFT, UNKNOWN, Classes, Edge, PaintedTrack, Track, never, painted
+from tuner.footing.grading import Grading, Ground, ground_of
+from tuner.footing.stability import Stretches, counts, stretches
+from tuner.model.family import FAMILY_SIZE
+from tuner.model.sheet import Sheet
+from tuner.simulate.traces import Array
+
+_WIDEST = 0.009
+"""Share of a value within which an edge lies between two notches; in the middle it is then within half of that."""
+
+_POINTS = 15
+"""Values looked at between two notches where the class changes."""
+
+_BESIDE = 1e-4
+"""How near to the edge of stability the stable side is looked at, as a share of the value."""
+
+_ROUNDS = 12
+
+Flags = NDArray[np.bool_]
+
+
+@dataclass(slots=True, eq=False)
+class _Line:
+    """A track while it is being painted: values looked at so far, rising, and their classes."""
+
+    track: Track
+    stretches: Stretches | None
+    values: Array
+    classes: Classes
+
+    def add(self, values: Array, classes: Classes) -> None:
+        """Take in further values."""
+        together = np.concatenate((self.values, values))
+        order = np.argsort(together, kind="stable")
+        self.values, self.classes = together[order], np.concatenate((self.classes, classes))[order]
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class _Asked:
+    """Values of some lines put together, for one call."""
+
+    lines: Sequence[_Line]
+    values: Sequence[Array]
+
+
+def paint_rulers(
+    sheet: Sheet,
+    tracks: Sequence[Track],
+    family_size: int = FAMILY_SIZE,
+    stop: Callable[[], bool] = never,
+) -> tuple[PaintedTrack, ...]:
+    """Return each track with the class at all its values and the edges between them.
+
+    The classes are those that `assess` gives with the gain at that value: 'met' is firm, 'missed' soft, 'unstable' lost.
+    An edge of stability is exact; any other is found within 0.5 % of its value.
+
+    Parameters
+    ----------
+    sheet : Sheet
+        What is held while one gain moves.
+    tracks : sequence of Track
+    family_size : int
+        Plants to judge by.
+    stop : callable
+        Asked now and then; the question is given up when it returns true.
+
+    Raises
+    ------
+    LoopError
+        When a loop cannot be computed, with the reason.
+    Overtaken
+        When `stop` said so.
+    """
+    painter = _Painter(sheet, ground_of(sheet, family_size), family_size, stop)
+    return painter.paint(tracks)
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class _Painter:
+    sheet: Sheet
+    ground: Ground
+    size: int
+    stop: Callable[[], bool]
+
+    def paint(self, tracks: Sequence[Track]) -> tuple[PaintedTrack, ...]:
+        """Paint all tracks together."""
+        lines = self._lines(tracks)
+        values = [np.concatenate((line.track.values, _beside(line))) for line in lines]
+        self._grade(lines, values, settle=True)
+        self._narrow(lines)
+        return tuple(_finished(line) for line in lines)
+
+    def _lines(self, tracks: Sequence[Track]) -> list[_Line]:
+        base = counts(self.sheet, self.ground.members).tolist()
+        none = np.zeros(0), np.zeros(0, dtype=np.int8)
+        return [_Line(track, stretches(self.sheet, self.ground.members, track, self.size, base), *none) for track in tracks]
+
+    def _grade(self, lines: Sequence[_Line], values: Sequence[Array], *, settle: bool) -> None:
+        """Find the classes at some values of some lines, all in one go."""
+        lost, unsure = [], []
+        for line, some in zip(lines, values, strict=True):
+            known = line.stretches
+            lost.append(np.zeros(len(some), dtype=bool) if known is None else known.at(some))
+            unsure.append(np.ones(len(some), dtype=bool) if known is None else known.unsure(some) | (some <= 0.0))
+        controller = self.sheet.controller
+        tunings = [
+            controller.with_value(line.track.name, value)
+            for line, some in zip(lines, values, strict=True)
+            for value in some.tolist()
+        ]
+        if not tunings:
+            return
+        order = [*range(1, len(self.ground.members)), 0]
+        grading = Grading(self.sheet, self.ground, tunings, order, self.stop)
+        classes = grading.classes(np.concatenate(lost), np.concatenate(unsure), settle=settle)
+        ends = np.cumsum([len(some) for some in values])[:-1]
+        for line, some, found in zip(lines, values, np.split(classes, ends), strict=True):
+            line.add(some, found)
+
+    def _narrow(self, lines: Sequence[_Line]) -> None:
+        """Look between notches where the class changes, until it changes within the share of a value."""
+        wide = [_between(line) for line in lines]
+        self._grade(lines, wide, settle=False)
+        for line in lines:
+            for _ in range(_ROUNDS):
+                middle = _still_wide(line)
+                if not len(middle):
+                    break
+                self._settle(line, middle)
+
+    def _settle(self, line: _Line, values: Array) -> None:
+        """Find the class at values for good."""
+        known = np.isin(line.values, values)
+        line.values, line.classes = line.values[~known], line.classes[~known]
+        self._grade([line], [values], settle=True)
+
+
+def _beside(line: _Line) -> Array:
+    """Return values right beside the edges of stability, on their stable side and on the track."""
+    if line.stretches is None or not len(line.track.values):
+        return np.zeros(0)
+    low, high = line.track.values[0], line.track.values[-1]
+    edges, lost = line.stretches.edges, line.stretches.lost
+    near = edges * np.where(lost[1:], 1.0 - _BESIDE, 1.0 + _BESIDE)
+    return np.asarray(near[(near > low) & (near < high)])
+
+
+def _changes(line: _Line) -> list[tuple[float, float]]:
+    """Return neighbouring values, unknown ones left out, between which the class changes though both are stable."""
+    sure = (line.classes != UNKNOWN) & (line.values > 0.0)
+    values, classes = line.values[sure], line.classes[sure]
+    at = np.flatnonzero((classes[1:] != classes[:-1]) & (np.maximum(classes[1:], classes[:-1]) <= SOFT))
+    pairs = [(float(values[i]), float(values[i + 1])) for i in at.tolist()]
+    return [one for one in pairs if not _parted(line, *one)]
+
+
+def _parted(line: _Line, low: float, high: float) -> bool:
+    """Return whether an edge of stability lies between two values."""
+    return line.stretches is not None and bool(((line.stretches.edges > low) & (line.stretches.edges < high)).any())
+
+
+def _is_wide(low: float, high: float) -> bool:
+    return high - low > _WIDEST * high
+
+
+def _between(line: _Line) -> Array:
+    """Return values to look at where the class changes."""
+    found = [np.geomspace(low, high, _POINTS + 2)[1:-1] for low, high in _changes(line) if _is_wide(low, high)]
+    return np.concatenate(found) if found else np.zeros(0)
+
+
+def _still_wide(line: _Line) -> Array:
+    """Return one value in each stretch in which the class changes and that is still too wide: one looked at if any."""
+    found = []
+    for low, high in _changes(line):
+        if _is_wide(low, high):
+            inside = line.values[(line.values > low) & (line.values < high)]
+            found.append(inside[len(inside) // 2] if len(inside) else (low * high) ** 0.5)
+    return np.array(found)
+
+
+def _finished(line: _Line) -> PaintedTrack:
+    """Return the track with the classes of its notches, and the edges between all that was looked at."""
+    places = np.searchsorted(line.values, line.track.values)
+    edges = [*_edges_of_stability(line), *_other_edges(line)]
+    return painted(line.track, line.classes[places], edges)
+
+
+def _other_edges(line: _Line) -> list[Edge]:
+    sure = line.classes != UNKNOWN
+    values, classes = line.values[sure], line.classes[sure]
+    at = np.flatnonzero(classes[1:] != classes[:-1])
+    return [
+        Edge(_middle(float(values[i]), float(values[i + 1])), int(classes[i]), int(classes[i + 1]))
+        for i in at.tolist()
+        if not _parted(line, float(values[i]), float(values[i + 1]))
+    ]
+
+
+def _middle(low: float, high: float) -> float:
+    return (low * high) ** 0.5 if low > 0.0 else 0.5 * high
+
+
+def _edges_of_stability(line: _Line) -> list[Edge]:
+    """Return the exact edges on the track, with the class on the stable side."""
+    if line.stretches is None or not len(line.track.values):
+        return []
+    low, high = line.track.values[0], line.track.values[-1]
+    found = []
+    for value, before, after in zip(
+        line.stretches.edges.tolist(), line.stretches.lost[:-1], line.stretches.lost[1:], strict=True
+    ):
+        if low < value < high:
+            beside = value * (1.0 - _BESIDE if after else 1.0 + _BESIDE)
+            near = int(line.classes[np.abs(line.values - beside).argmin()])
+            found.append(Edge(value, LOST if before else near, LOST if after else near))
+    return found

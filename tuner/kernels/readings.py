@@ -1,0 +1,354 @@
+"""Measures of the runs of a block of lanes, each held between two bounds that follow from the points alone.
+
+What the measures of a run are exactly takes cubics and parabolas between the points; where the limit lies outside the
+bounds, they need not be laid. Bounds hold for the exact measures of the same points, see `measure.curve`: a crossing lies
+between two points, a peak at most half the largest bend above the highest one, an area within what the pieces that change
+sign can differ by. A measure that does not exist is infinite: minus where that is good.
+
+Plain loops over the points, inside of each of which all lanes are looked at with one instruction for several.
+"""
+
+import math
+
+import numpy as np
+from numpy.typing import NDArray
+
+from tuner.kernels.compiled import compiled, compiled_lanes
+from tuner.kernels.lanes import AWAY, LANES, LIMITED, PEAK, TRAVEL
+
+Array = NDArray[np.float64]
+
+MEASURES = (
+    "overshoot",
+    "peak_time",
+    "rise_time",
+    "settling_time",
+    "steady_state_error",
+    "undershoot",
+    "iae_reference",
+    "peak_effort",
+    "effort_travel",
+    "saturated_share",
+    "iae_disturbance",
+    "disturbance_peak",
+    "disturbance_recovery",
+)
+"""In the order in which bounds stand."""
+
+REFERENCE_COUNT = 10
+"""So many of them are of the reference run."""
+
+NOTHING = 1e-6
+"""Excursions below this share of the final value are none; as `measure.trial.NOTHING`."""
+
+ROUNDING = 1e-9
+"""Two computations of the same measure differ by this share of its natural size at most."""
+
+_ROWS = 12
+(_TOP, _BOTTOM, _BEND, _SAG, _LAST, _TENTH, _NINE, _TURN, _AREA, _CUT, _WORK, _MORE) = range(_ROWS)
+
+WORK_ROWS = _ROWS
+
+
+@compiled_lanes
+def _tail_mean(y: Array, first: int, points: int, work: Array) -> None:
+    """Write the mean of the last points of every lane."""
+    row = _WORK * LANES
+    for i in range(LANES):
+        work[row + i] = 0.0
+    for p in range(first, points):
+        for i in range(LANES):
+            work[row + i] += y[p * LANES + i]
+    for i in range(LANES):
+        work[row + i] /= points - first
+
+
+@compiled_lanes
+def _excursions(y: Array, points: int, scale: Array, work: Array) -> None:
+    """Write how high and how low each lane goes in parts of its scale, and how much it bends there."""
+    top, bottom, bend, sag = _TOP * LANES, _BOTTOM * LANES, _BEND * LANES, _SAG * LANES
+    for i in range(LANES):
+        work[top + i] = y[i] * scale[i]
+        work[bottom + i] = y[i] * scale[i]
+        work[bend + i] = 0.0
+        work[sag + i] = 0.0
+    for p in range(points):
+        before = (p - 1 if p > 0 else 0) * LANES
+        after = (p + 1 if p + 1 < points else p) * LANES
+        at = p * LANES
+        for i in range(LANES):
+            here = y[at + i] * scale[i]
+            bent = abs((y[before + i] + y[after + i]) * scale[i] - 2.0 * here)
+            work[top + i] = max(work[top + i], here)
+            work[bottom + i] = min(work[bottom + i], here)
+            work[bend + i] = max(work[bend + i], bent if here > 0.98 else 0.0)
+            work[sag + i] = max(work[sag + i], bent if here < 0.02 else 0.0)
+
+
+@compiled_lanes
+def _last_outside(y: Array, points: int, centre: Array, reach: Array, work: Array) -> None:
+    """Write the last point of each lane that is farther from its centre than its reach; -1 for none."""
+    row = _LAST * LANES
+    for i in range(LANES):
+        work[row + i] = -1.0
+    for p in range(points):
+        at, place = p * LANES, float(p)
+        for i in range(LANES):
+            work[row + i] = place if abs(y[at + i] - centre[i]) > reach[i] else work[row + i]
+
+
+@compiled_lanes
+def _rise(y: Array, points: int, scale: Array, work: Array) -> None:
+    """Write the first points of each lane at a tenth and at nine tenths of its scale; -1 for none."""
+    tenth, nine = _TENTH * LANES, _NINE * LANES
+    for i in range(LANES):
+        work[tenth + i] = -1.0
+        work[nine + i] = -1.0
+    for back in range(points):
+        p = points - 1 - back
+        at, place = p * LANES, float(p)
+        for i in range(LANES):
+            here = y[at + i] * scale[i]
+            work[tenth + i] = place if here >= 0.1 else work[tenth + i]
+            work[nine + i] = place if here >= 0.9 else work[nine + i]
+
+
+@compiled_lanes
+def _first_turn(y: Array, points: int, scale: Array, work: Array) -> None:
+    """Write the first point of each lane at which it turns down above its scale; -1 for none."""
+    row = _TURN * LANES
+    for i in range(LANES):
+        work[row + i] = -1.0
+    for back in range(points - 1):
+        p = points - 2 - back
+        before, at, after, place = (p - 1 if p > 0 else 0) * LANES, p * LANES, (p + 1) * LANES, float(p)
+        rises = 1.0 if p > 0 else 0.0
+        for i in range(LANES):
+            here = y[at + i] * scale[i]
+            turns = (here > 1.0 + NOTHING) & (y[after + i] * scale[i] <= here)
+            turns &= (here > y[before + i] * scale[i]) | (rises == 0.0)
+            work[row + i] = place if turns else work[row + i]
+
+
+@compiled_lanes
+def _area(y: Array, points: int, centre: float, work: Array) -> None:
+    """Write the sum of the distances of each lane from a centre, and what pieces that cross it may take away."""
+    area, cut = _AREA * LANES, _CUT * LANES
+    last = (points - 1) * LANES
+    for i in range(LANES):
+        work[area + i] = -0.5 * (abs(y[i] - centre) + abs(y[last + i] - centre))
+        work[cut + i] = 0.0
+    for p in range(points):
+        at, before = p * LANES, (p - 1 if p > 0 else 0) * LANES
+        for i in range(LANES):
+            here, there = y[at + i] - centre, y[before + i] - centre
+            size = abs(here)
+            work[area + i] += size
+            work[cut + i] += min(size, abs(there)) if (here > 0.0) != (there > 0.0) else 0.0
+
+
+@compiled
+def reference_bounds(  # noqa: PLR0913, PLR0917, C901 - every measure of a run in one place, to be read beside `measure`
+    y: Array,
+    points: int,
+    samples: int,
+    tail: int,
+    spacing: float,
+    totals: Array,
+    exact: Array,
+    step: float,
+    band: float,
+    asked: Array,
+    work: Array,
+    low: Array,
+    high: Array,
+) -> None:
+    """Write bounds of the measures of a reference run that are asked for.
+
+    Parameters
+    ----------
+    y : ndarray, shape (g lanes,)
+        Output at the points.
+    tail : int
+        First point of the last tenth of the run.
+    spacing : float
+        Time between points.
+    totals : ndarray, shape (4 lanes,)
+        What the run has counted.
+    exact : ndarray, shape (lanes,)
+        Final value of the output where no limit acts; NaN for none.
+    step : float
+        Of the reference; not 0.
+    band : float
+        Settling band, 0 to 1.
+    asked : ndarray of bool, shape (13,)
+        Measures to bound.
+    work : ndarray, shape (12 lanes,)
+        Scratch.
+    low, high : ndarray, shape (13, lanes)
+        Bounds, written to.
+    """
+    final, scale, reach = np.empty(LANES), np.empty(LANES), np.empty(LANES)
+    _final_values(y, points, tail, totals, exact, final, work)
+    for i in range(LANES):
+        usable = abs(final[i]) > NOTHING * abs(step)
+        scale[i] = 1.0 / final[i] if usable else math.inf
+        reach[i] = band * abs(final[i])
+    safe = np.where(np.isfinite(scale), scale, 0.0)
+    if asked[0] or asked[1] or asked[5]:
+        _excursions(y, points, safe, work)
+        for i in range(LANES):
+            low[0, i], high[0, i] = _excess(work[_TOP * LANES + i] - 1.0, work[_BEND * LANES + i])
+            low[5, i], high[5, i] = _excess(-work[_BOTTOM * LANES + i], work[_SAG * LANES + i])
+    if asked[1]:
+        _first_turn(y, points, safe, work)
+        for i in range(LANES):
+            low[1, i], high[1, i] = _turn_time(work[_TURN * LANES + i], spacing, low[0, i], high[0, i])
+    if asked[2]:
+        _rise(y, points, safe, work)
+        for i in range(LANES):
+            low[2, i], high[2, i] = _rise_time(work[_TENTH * LANES + i], work[_NINE * LANES + i], spacing)
+    if asked[3]:
+        _last_outside(y, points, final, reach, work)
+        for i in range(LANES):
+            low[3, i], high[3, i] = _exit_time(work[_LAST * LANES + i], points, spacing)
+    if asked[6]:
+        _area(y, points, step, work)
+    shown_scale = 1.0 / samples
+    for i in range(LANES):
+        error = 100.0 * (step - final[i]) / step
+        low[4, i], high[4, i] = abs(error), abs(error)
+        area, cut = work[_AREA * LANES + i], work[_CUT * LANES + i]
+        low[6, i], high[6, i] = (area - cut) * spacing, (area - 0.5 * cut) * spacing
+        low[7, i] = high[7, i] = totals[PEAK * LANES + i]
+        low[8, i] = high[8, i] = totals[TRAVEL * LANES + i]
+        low[9, i] = high[9, i] = totals[LIMITED * LANES + i] * shown_scale
+        if not math.isfinite(scale[i]):
+            for measure in (0, 1, 2, 3, 5):
+                low[measure, i] = high[measure, i] = math.inf
+        if _doubtful(y, points, totals, step, i):
+            for measure in range(REFERENCE_COUNT):
+                low[measure, i], high[measure, i] = -math.inf, math.inf
+
+
+@compiled
+def disturbance_bounds(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
+    y: Array,
+    points: int,
+    tail: int,
+    spacing: float,
+    totals: Array,
+    exact: Array,
+    band: float,
+    asked: Array,
+    work: Array,
+    low: Array,
+    high: Array,
+) -> None:
+    """Write bounds of the measures of a disturbance run that are asked for; see `reference_bounds`."""
+    final, one, reach = np.empty(LANES), np.ones(LANES), np.empty(LANES)
+    _final_values(y, points, tail, totals, exact, final, work)
+    _excursions(y, points, one, work)
+    peak, most = np.empty(LANES), np.empty(LANES)
+    for i in range(LANES):
+        size = max(work[_TOP * LANES + i], -work[_BOTTOM * LANES + i])
+        peak[i], most[i] = size, size + 0.5 * max(work[_BEND * LANES + i], work[_SAG * LANES + i])
+        low[11, i], high[11, i] = peak[i], most[i]
+    _bend_everywhere(y, points, work)
+    for i in range(LANES):
+        most[i] = peak[i] + 0.5 * work[_BEND * LANES + i]
+        high[11, i] = most[i]
+    if asked[10]:
+        _area(y, points, 0.0, work)
+        for i in range(LANES):
+            area, cut = work[_AREA * LANES + i], work[_CUT * LANES + i]
+            low[10, i], high[10, i] = (area - cut) * spacing, (area - 0.5 * cut) * spacing
+    if asked[12]:
+        for i in range(LANES):
+            reach[i] = band * most[i]
+        _last_outside(y, points, final, reach, work)
+        for i in range(LANES):
+            low[12, i], _ = _exit_time(work[_LAST * LANES + i], points, spacing)
+            reach[i] = band * peak[i]
+        _last_outside(y, points, final, reach, work)
+        for i in range(LANES):
+            _, high[12, i] = _exit_time(work[_LAST * LANES + i], points, spacing)
+    for i in range(LANES):
+        if _doubtful(y, points, totals, 0.0, i):
+            for measure in range(REFERENCE_COUNT, len(MEASURES)):
+                low[measure, i], high[measure, i] = -math.inf, math.inf
+
+
+@compiled_lanes
+def _bend_everywhere(y: Array, points: int, work: Array) -> None:
+    """Write how much each lane bends at most."""
+    bend = _BEND * LANES
+    for i in range(LANES):
+        work[bend + i] = 0.0
+    for p in range(1, points - 1):
+        at = p * LANES
+        for i in range(LANES):
+            bent = abs(y[at - LANES + i] + y[at + LANES + i] - 2.0 * y[at + i])
+            work[bend + i] = max(work[bend + i], bent)
+
+
+@compiled
+def _final_values(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
+    y: Array, points: int, tail: int, totals: Array, exact: Array, final: Array, work: Array
+) -> None:
+    """Write where each lane ends: exactly where no limit acted, else the mean of its last tenth."""
+    mean = False
+    for i in range(LANES):
+        mean |= totals[LIMITED * LANES + i] > 0.0 or not math.isfinite(exact[i])
+    if mean:
+        _tail_mean(y, tail, points, work)
+    for i in range(LANES):
+        free = totals[LIMITED * LANES + i] == 0.0 and math.isfinite(exact[i])
+        final[i] = exact[i] if free else work[_WORK * LANES + i]
+
+
+@compiled
+def _excess(height: float, bend: float) -> tuple[float, float]:
+    """Return bounds of an excursion in percent, exactly 0 for none."""
+    most = height + 0.5 * bend
+    return (100.0 * height if height > NOTHING else 0.0), (100.0 * most if most > NOTHING else 0.0)
+
+
+@compiled
+def _turn_time(place: float, spacing: float, low: float, high: float) -> tuple[float, float]:
+    if high == 0.0:
+        return -math.inf, -math.inf
+    if low == 0.0:
+        return -math.inf, math.inf
+    if place < 0.0:
+        return math.inf, math.inf
+    return (place - 1.0) * spacing, (place + 1.0) * spacing
+
+
+@compiled
+def _rise_time(tenth: float, nine: float, spacing: float) -> tuple[float, float]:
+    if nine < 0.0:
+        return math.inf, math.inf
+    started, arrived = max(tenth - 1.0, 0.0), max(nine - 1.0, 0.0)
+    return max(arrived - tenth, 0.0) * spacing, (nine - started) * spacing
+
+
+@compiled
+def _exit_time(last: float, points: int, spacing: float) -> tuple[float, float]:
+    if last < 0.0:
+        return 0.0, 0.0
+    if last >= points - 1:
+        return math.inf, math.inf
+    return last * spacing, (last + 1.0) * spacing
+
+
+@compiled
+def _doubtful(y: Array, points: int, totals: Array, target: float, lane: int) -> bool:
+    """Return whether a lane has run away, or may be found to under a limit."""
+    if totals[AWAY * LANES + lane] > 0.0:
+        return True
+    if totals[LIMITED * LANES + lane] == 0.0:
+        return False
+    end = abs(y[(points - 1) * LANES + lane] - target)
+    middle = abs(y[points // 2 * LANES + lane] - target)
+    return end > abs(y[lane] - target) and end > 2.0 * middle
