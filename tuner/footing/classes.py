@@ -7,6 +7,8 @@ import numpy as np
 from numpy.typing import NDArray
 
 from tuner.errors import TrimwrightError
+from tuner.model.controller import Controller
+from tuner.model.parameters import find
 
 Array = NDArray[np.float64]
 Classes = NDArray[np.int8]
@@ -73,6 +75,12 @@ class PaintedTrack:
         between = np.array([self.edges[0].below, *(edge.above for edge in self.edges)], dtype=np.int8)
         found: Classes = between[np.searchsorted(places, values, side="right")]
         return found
+
+
+def tuned(controller: Controller, name: str, value: float) -> Controller:
+    """Return a controller with one number changed; 0 leaves out a number that is never 0, such as the wind-up time."""
+    left_out = value == 0.0 and find(f"controller.{name}").above_minimum
+    return controller.with_value(name, None if left_out else value)
 
 
 def painted(track: Track, classes: Classes, edges: Sequence[Edge]) -> PaintedTrack:

@@ -6,7 +6,7 @@ from dataclasses import dataclass, replace
 import numpy as np
 from numpy.typing import NDArray
 
-from tuner.footing.classes import LOST, SOFT, UNKNOWN, Classes, Edge, PaintedTrack, Track, never, painted
+from tuner.footing.classes import LOST, SOFT, UNKNOWN, Classes, Edge, PaintedTrack, Track, never, painted, tuned
 from tuner.footing.grading import Grading, Ground, ground_of
 from tuner.footing.stability import Stretches, counts, stretches
 from tuner.model.family import FAMILY_SIZE
@@ -101,7 +101,9 @@ class _Painter:
     def _lines(self, tracks: Sequence[Track]) -> list[_Line]:
         base = counts(self.sheet, self.ground.members).tolist()
         none = np.zeros(0), np.zeros(0, dtype=np.int8)
-        return [_Line(track, stretches(self.sheet, self.ground.members, track, self.size, base), *none) for track in tracks]
+        return [
+            _Line(track, stretches(self.sheet, self.ground.members, track, self.size, base), *none) for track in tracks
+        ]
 
     def _grade(self, lines: Sequence[_Line], values: Sequence[Array], *, settle: bool) -> None:
         """Find the classes at some values of some lines, all in one go."""
@@ -112,7 +114,7 @@ class _Painter:
             unsure.append(np.ones(len(some), dtype=bool) if known is None else known.unsure(some) | (some <= 0.0))
         controller = self.sheet.controller
         tunings = [
-            controller.with_value(line.track.name, value)
+            tuned(controller, line.track.name, value)
             for line, some in zip(lines, values, strict=True)
             for value in some.tolist()
         ]
