@@ -14,7 +14,8 @@ from PySide6.QtWidgets import QApplication
 from tests.benchmarks.row import MILLI, Row, Times, summed_up, timed
 from tuner.places import keep_compiled_kernels
 from tuner.window.main_window import MainWindow
-from tuner.window.rulers.slider import TRACK_HEIGHT, TRACK_TOP, RulerSlider
+from tuner.window.rulers.face import TRACK_HEIGHT, TRACK_TOP
+from tuner.window.rulers.slider import RulerSlider
 
 SIZE = (1600, 1000)
 RULER = "kp"

@@ -13,6 +13,7 @@ from tuner.session.ruler_range import (
     OFF_NOTCH,
     POSITIONS,
     RulerRange,
+    notches,
     place,
     position,
     range_for,
@@ -120,12 +121,25 @@ def test_steps_end_at_the_ends() -> None:
 
 
 def test_values_along_are_those_of_the_middles() -> None:
-    """The values along a track rise, are not numbers in the off notch, and lie at the middles of equal pieces."""
+    """The values along a track rise, are 0 in the off notch, and lie at the middles of equal pieces."""
     values = values_along(GAIN, 64)
-    outside = np.isnan(values)
+    outside = values == 0.0
     assert outside.sum() == np.sum((np.arange(64) + 0.5) * POSITIONS / 64 < OFF_NOTCH)
     assert np.all(np.diff(values[~outside]) > 0)
     assert place(GAIN, values[40]) == pytest.approx(40.5 * POSITIONS / 64)
+
+
+@given(SPANS, st.integers(2, 200))
+def test_notches_go_from_end_to_end(span: RulerRange, count: int) -> None:
+    """The notches rise from the low end to the high one, with 0 before them for an off notch, evenly on the track."""
+    values = notches(span, count)
+    scale = values[1:] if span.has_off else values
+    assert (values[0] == 0.0) == (span.has_off or span.low == 0.0)
+    assert (scale[0], scale[-1], len(scale)) == (span.low, span.high, count)
+    assert np.all(np.diff(values) > 0.0)
+    gaps = np.diff([place(span, value) for value in scale])
+    assert gaps == pytest.approx((POSITIONS - span.start) / (count - 1))
+    assert notches(span, count) is values
 
 
 def test_decades_are_marked() -> None:

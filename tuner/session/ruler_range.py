@@ -1,6 +1,7 @@
 """What a ruler spans, and the exact mapping between a place on it and a value."""
 
 from dataclasses import dataclass, replace
+from functools import lru_cache
 from math import ceil, floor, isfinite, log10
 from typing import Literal
 
@@ -15,6 +16,9 @@ POSITIONS = 10_000
 
 OFF_NOTCH = 500
 """Positions at the left end that mean off, where a ruler has an off notch; the scale begins behind them."""
+
+NOTCHES = 64
+"""Values along a ruler at which its footing is computed; between them the edges are looked for."""
 
 Step = Literal["fine", "coarse"]
 
@@ -143,14 +147,28 @@ def stepped(span: RulerRange, value: float | None, step: Step, direction: int) -
     return min(max(moved, span.low), span.high)
 
 
+@lru_cache(maxsize=64)
 def values_along(span: RulerRange, count: int) -> NDArray[np.float64]:
-    """Return the values at the middles of `count` equal pieces of the whole track; NaN in the off notch.
+    """Return the values at the middles of `count` equal pieces of the whole track; 0 in the off notch.
 
-    Shape (count,), in the parameter's unit.
+    Shape (count,), rising, in the parameter's unit, read-only: rulers ask for the same ones again and again.
     """
     places = (np.arange(count) + 0.5) * POSITIONS / count
-    values = np.array([_raw(span, float(at)) for at in places])
-    values[places < span.start] = np.nan
+    values = _scale(span, (places - span.start) / (POSITIONS - span.start))
+    values[places < span.start] = 0.0
+    values.setflags(write=False)
+    return values
+
+
+@lru_cache(maxsize=64)
+def notches(span: RulerRange, count: int = NOTCHES) -> NDArray[np.float64]:
+    """Return `count` values from end to end of the scale, and 0 before them where the ruler has an off notch.
+
+    Shape (count,) or (count + 1,), rising, in the parameter's unit, read-only.
+    """
+    values = _scale(span, np.linspace(0.0, 1.0, count))
+    values = np.concatenate(([0.0], values)) if span.has_off else values
+    values.setflags(write=False)
     return values
 
 
@@ -170,6 +188,17 @@ def _share(span: RulerRange, value: float) -> float:
     if span.logarithmic:
         return (log10(value) - log10(span.low)) / (log10(span.high) - log10(span.low))
     return (value - span.low) / (span.high - span.low)
+
+
+def _scale(span: RulerRange, shares: NDArray[np.float64]) -> NDArray[np.float64]:
+    """Return the values at shares of the scale, exact at its ends."""
+    held = np.clip(shares, 0.0, 1.0)
+    if not span.logarithmic:
+        return span.low + held * (span.high - span.low)
+    low, high = log10(span.low), log10(span.high)
+    values: NDArray[np.float64] = np.clip(10.0 ** (low + held * (high - low)), span.low, span.high)
+    values[held == 0.0], values[held == 1.0] = span.low, span.high
+    return values
 
 
 def _raw(span: RulerRange, at: float) -> float:

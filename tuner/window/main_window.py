@@ -121,7 +121,6 @@ class MainWindow(QMainWindow):
         if shown.whole:
             self.ribbon.show(shown)
             self.editors.show(shown.assessment)
-            self.rulers.show(shown.assessment)
             self._say_notes(shown.assessment.notes)
 
     def _leave_loop(self) -> None:

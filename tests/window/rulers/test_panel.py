@@ -3,17 +3,19 @@
 import numpy as np
 import pytest
 from PySide6.QtCore import Qt
+from PySide6.QtGui import QColor
 from PySide6.QtTest import QTest
 from PySide6.QtWidgets import QApplication
 from pytestqt.qtbot import QtBot
 
 from tests.session.sheets import TEXT, wash_bath
 from tests.window.rulers.hands import drag, type_in
+from tuner.footing.classes import FIRM, SOFT, painted
 from tuner.session.document import Document
 from tuner.window.rulers import build_rulers
-from tuner.window.rulers.panel import TWO_COLUMNS, RulerPanel
-from tuner.window.rulers.slider import TRACK_TOP
-from tuner.window.rulers.strip import FIRM
+from tuner.window.rulers.face import TRACK_TOP
+from tuner.window.rulers.painting import Painting, Reading
+from tuner.window.rulers.panel import TWO_COLUMNS, Place, RulerPanel
 from tuner.window.theme import Theme
 
 
@@ -85,14 +87,76 @@ def test_another_sheet_forgets_what_was_typed(panel: RulerPanel, document: Docum
     assert panel.fault_in_sight() == ""
 
 
-def test_a_ruler_is_painted_by_its_own_classes(panel: RulerPanel, theme: Theme) -> None:
-    """The classes given to one ruler paint its track and no other's."""
-    panel.rulers["kp"].paint_classes(np.array([FIRM] * 64))
-    colours = {}
-    for name in ("kp", "ki"):
-        slider = panel.rulers[name].slider
-        colours[name] = slider.grab().toImage().pixelColor(slider.width() // 4, TRACK_TOP + 4)
-    assert colours == {"kp": theme.colour("firm"), "ki": theme.colour("line")}
+def _colours(panel: RulerPanel) -> dict[str, QColor]:
+    """Return the colour of the tracks of kp and ki, a quarter from the left."""
+    sliders = {name: panel.rulers[name].slider for name in ("kp", "ki")}
+    return {
+        name: slider.grab().toImage().pixelColor(slider.width() // 4, TRACK_TOP + 4) for name, slider in sliders.items()
+    }
+
+
+def _painting(panel: RulerPanel, document: Document, *names: str) -> Painting:
+    """Return a painting in which some rulers are firm, and the others are missing."""
+    tracks = {track.name: track for track in panel.tracks() if track.name in names}
+    firm = {name: painted(track, np.full(len(track.values), FIRM, np.int8), ()) for name, track in tracks.items()}
+    return Painting(1, document.sheet, firm)
+
+
+def test_a_ruler_is_painted_by_its_own_classes(panel: RulerPanel, document: Document, theme: Theme) -> None:
+    """What was found along one ruler paints its track and no other's, until it is taken away."""
+    panel.paint(_painting(panel, document, "kp"))
+    assert _colours(panel) == {"kp": theme.colour("firm"), "ki": theme.colour("line")}
+    panel.unpaint()
+    assert set(map(QColor.name, _colours(panel).values())) == {theme.colour("line").name()}
+
+
+def test_only_untrue_paint_fades(panel: RulerPanel, document: Document, theme: Theme) -> None:
+    """After kp moved, its own ruler is as true as before, since the others are held; theirs fade."""
+    painting = _painting(panel, document, "kp", "ki")
+    panel.paint(painting)
+    document.change_value("kp", 9.0)
+    panel.fade(painting, document.sheet)
+    colours = _colours(panel)
+    assert colours["kp"] == theme.colour("firm")
+    assert colours["ki"] not in (theme.colour("firm"), theme.colour("line"))
+
+
+def test_the_tracks_are_those_of_the_rulers(panel: RulerPanel) -> None:
+    """What is asked for is named like the rulers, from end to end of each, the off notch as 0."""
+    tracks = {track.name: track.values for track in panel.tracks()}
+    assert list(tracks) == list(panel.rulers)
+    assert (tracks["kp"][0], tracks["kp"][1], tracks["kp"][-1]) == (0.0, 0.1, 100.0)
+    assert min(len(values) for values in tracks.values()) >= 64
+
+
+def test_the_line_reads_where_the_mouse_points(panel: RulerPanel, document: Document) -> None:
+    """The place pointed at goes before the ruler with the focus; with neither the line explains the patterns."""
+    legend = panel.line.text()
+    panel.paint(_painting(panel, document, "kp"))
+    panel.rulers["kp"].slider.pointed.emit(4.2)
+    assert panel.place == Place("kp", 4.2)
+    panel.show_reading(Reading(1, document.sheet, "kp", 4.2, SOFT, "overshoot 9 % > 8 %"))
+    assert panel.line.text() == "kp 4.2 %/degC  soft  overshoot 9 % > 8 %"
+    panel.show_reading(None)
+    assert panel.line.text() == "kp 4.2 %/degC  firm"
+    panel.rulers["ki"].slider.pointed.emit(0.5)
+    panel.show_reading(None)
+    assert panel.line.text() == "ki 0.5 %/(degC s)  not known yet"
+    panel.rulers["ki"].slider.left.emit()
+    panel.show_reading(None)
+    assert panel.line.text() == legend
+
+
+def test_the_line_reads_where_the_keys_are(panel: RulerPanel, monkeypatch: pytest.MonkeyPatch) -> None:
+    """With nothing pointed at, the place is the value of the ruler that has the focus."""
+    monkeypatch.setattr(panel.rulers["windup_time"].slider, "hasFocus", lambda: True)
+    assert panel.place == Place("windup_time", 20.0)
+
+
+def test_the_line_says_why_nothing_is_painted(panel: RulerPanel) -> None:
+    """A loop that cannot be computed leaves the rulers grey and the reason in words."""
+    panel.unpaint("the loop has no gain")
+    assert panel.line.text() == "the loop has no gain"
 
 
 @pytest.mark.parametrize(("width", "columns"), [(TWO_COLUMNS + 200, 2), (600, 1)])

@@ -4,19 +4,27 @@ from typing import Any
 
 import numpy as np
 import pytest
-from PySide6.QtCore import QPoint, QPointF, Qt
-from PySide6.QtGui import QColor, QWheelEvent
+from PySide6.QtCore import QEvent, QPoint, QPointF, Qt
+from PySide6.QtGui import QColor, QFocusEvent, QWheelEvent
 from PySide6.QtTest import QTest
 from PySide6.QtWidgets import QApplication
 from pytestqt.qtbot import QtBot
 
-from tuner.session.ruler_range import POSITIONS, RulerRange
+from tuner.footing.classes import FIRM, LOST, SOFT, Edge, PaintedTrack
+from tuner.session.ruler_range import OFF_NOTCH, POSITIONS, RulerRange, notches, values_along
 from tuner.session.tunings import Mark
-from tuner.window.rulers.slider import MARGIN, TRACK_HEIGHT, TRACK_TOP, RulerSlider
-from tuner.window.rulers.strip import FIRM, LOST
+from tuner.window.rulers.face import MARGIN, TRACK_HEIGHT, TRACK_TOP
+from tuner.window.rulers.slider import RulerSlider
 from tuner.window.theme import Theme
 
 SPAN = RulerRange(0.1, 100.0, has_off=True)
+VALUES = notches(SPAN)
+TRACK = PaintedTrack(
+    "kp",
+    VALUES,
+    np.where(VALUES < 1.0, LOST, np.where(VALUES < 8.0, FIRM, np.where(VALUES < 20.0, SOFT, FIRM))).astype(np.int8),
+    (Edge(1.0, LOST, FIRM), Edge(8.0, FIRM, SOFT), Edge(20.0, SOFT, FIRM)),
+)
 MIDDLE = TRACK_TOP + TRACK_HEIGHT // 2
 
 
@@ -163,17 +171,105 @@ def test_the_track_is_grey_until_there_are_classes(hand: Hand, theme: Theme) -> 
     """Nobody's guess is painted: grey without classes, their colours with them, grey again without."""
     x = hand.x(50.0)
     assert _pixel(hand.slider, x, MIDDLE) == theme.colour("line")
-    hand.slider.paint_classes(np.array([LOST] * 32 + [FIRM] * 32))
+    hand.slider.show_footing(TRACK)
     assert _pixel(hand.slider, x, MIDDLE) == theme.colour("firm")
-    hand.slider.paint_classes(None)
+    hand.slider.show_footing(None)
     assert _pixel(hand.slider, x, MIDDLE) == theme.colour("line")
+
+
+def test_every_pixel_has_the_class_of_its_value(hand: Hand, theme: Theme) -> None:
+    """Along the whole track each column of pixels is coloured by the class at the value in its middle."""
+    hand.slider.show_footing(TRACK)
+    hand.slider.show_value(SPAN, (), 0.0)
+    image = hand.slider.grab().toImage()
+    length = hand.slider.width() - 2 * MARGIN
+    expected = TRACK.class_at(values_along(SPAN, length))
+    plain = {theme.colour(role).name(): grade for role, grade in (("firm", FIRM), ("soft", SOFT), ("lost", LOST))}
+    seen = [{image.pixelColor(MARGIN + x, y).name() for y in rows()} & set(plain) for x in range(length)]
+    handle_and_notch = MARGIN + OFF_NOTCH * length // POSITIONS
+    wrong = [x for x in range(handle_and_notch, length) if {plain[name] for name in seen[x]} != {expected[x]}]
+    assert wrong == []
+    assert set(expected) == {FIRM, SOFT, LOST}
+
+
+def rows() -> range:
+    """Return the rows of pixels of the track."""
+    return range(TRACK_TOP, TRACK_TOP + TRACK_HEIGHT)
+
+
+def test_paint_that_is_out_of_date_is_paler(hand: Hand, theme: Theme) -> None:
+    """A faded track is neither what it was nor grey, and comes back as it was."""
+    x = hand.x(50.0)
+    hand.slider.show_footing(TRACK, faded=True)
+    faded = _pixel(hand.slider, x, MIDDLE)
+    assert theme.colour("firm").lightness() < faded.lightness() < theme.colour("page").lightness()
+    hand.slider.show_footing(TRACK)
+    assert _pixel(hand.slider, x, MIDDLE) == theme.colour("firm")
+
+
+def test_another_range_moves_the_paint(hand: Hand, theme: Theme) -> None:
+    """The paint belongs to values: on a wider range the same value keeps its class."""
+    hand.slider.show_footing(TRACK)
+    before = hand.x(50.0)
+    hand.slider.show_value(RulerRange(0.1, 10_000.0, has_off=True), (), 0.0)
+    assert hand.x(50.0) < before
+    assert _pixel(hand.slider, hand.slider.x_of(50.0), MIDDLE) == theme.colour("firm")
 
 
 def test_another_look_repaints_the_track(hand: Hand, theme: Theme) -> None:
     """The colours follow the theme."""
-    hand.slider.paint_classes(np.array([7]))
+    hand.slider.show_footing(TRACK)
+    light = theme.colour("page")
     theme.choose("dark")
-    assert _pixel(hand.slider, hand.x(50.0), MIDDLE) == theme.colour("line")
+    assert theme.colour("page") != light
+    x = MARGIN + OFF_NOTCH * (hand.slider.width() - 2 * MARGIN) // POSITIONS
+    assert _pixel(hand.slider, x, MIDDLE) == theme.colour("page")
+
+
+@pytest.mark.parametrize(
+    ("start", "key", "value"),
+    [
+        (3.0, Qt.Key.Key_Right, 7.92),
+        (7.92, Qt.Key.Key_Right, 8.08),
+        (8.08, Qt.Key.Key_Right, 19.8),
+        (3.0, Qt.Key.Key_Left, 1.01),
+        (0.99, Qt.Key.Key_Left, None),
+    ],
+)
+def test_alt_and_an_arrow_go_to_the_next_edge(hand: Hand, start: float, key: Qt.Key, value: float | None) -> None:
+    """First to the near side of an edge, then across it; where there is no edge any more nothing moves."""
+    hand.slider.show_footing(TRACK)
+    hand.slider.show_value(SPAN, (), start)
+    QTest.keyClick(hand.slider, key, Qt.KeyboardModifier.AltModifier)
+    assert hand.values == ([] if value is None else [value])
+
+
+def test_without_paint_there_is_no_edge_to_go_to(hand: Hand) -> None:
+    """On a grey track Alt and an arrow do nothing."""
+    QTest.keyClick(hand.slider, Qt.Key.Key_Right, Qt.KeyboardModifier.AltModifier)
+    assert hand.values == []
+
+
+def test_it_tells_where_the_mouse_points(hand: Hand, qtbot: QtBot) -> None:
+    """Pointing changes nothing; it names the value under the mouse, and its end is told."""
+    pointed: list[float | None] = []
+    hand.slider.pointed.connect(pointed.append)
+    QTest.mouseMove(hand.slider, QPoint(hand.x(10.0), MIDDLE))
+    QApplication.processEvents()
+    assert pointed[-1] == 10.0
+    assert hand.values == []
+    with qtbot.waitSignal(hand.slider.left, timeout=500):
+        QApplication.sendEvent(hand.slider, QEvent(QEvent.Type.Leave))
+
+
+def test_it_tells_when_keys_come_and_go(hand: Hand) -> None:
+    """The focus is told, and its loss."""
+    heard: list[str] = []
+    hand.slider.focused.connect(lambda: heard.append("focused"))
+    hand.slider.left.connect(lambda: heard.append("left"))
+    for kind in (QEvent.Type.FocusIn, QEvent.Type.FocusOut):
+        QApplication.sendEvent(hand.slider, QFocusEvent(kind))
+    assert heard == ["focused", "left"]
 
 
 def test_marks_and_handle_are_painted(hand: Hand, theme: Theme) -> None:

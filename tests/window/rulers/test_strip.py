@@ -2,9 +2,10 @@
 
 import numpy as np
 import pytest
-from PySide6.QtGui import QImage
+from PySide6.QtGui import QColor, QImage
 
-from tuner.window.rulers.strip import FIRM, LOST, SOFT, UNKNOWN, class_strip
+from tuner.footing.classes import FIRM, LOST, SOFT, UNKNOWN
+from tuner.window.rulers.strip import class_strip
 from tuner.window.theme import Theme
 
 
@@ -37,6 +38,15 @@ def test_pieces_change_where_they_should(theme: Theme) -> None:
     image = class_strip(np.array([FIRM] * 16 + [UNKNOWN] * 48), 256, 4, theme)
     firm = theme.colour("firm").name()
     assert [image.pixelColor(x, 0).name() == firm for x in (0, 63, 64, 255)] == [True, True, False, False]
+
+
+def test_faded_classes_are_still_told_apart(theme: Theme) -> None:
+    """Paler paint keeps its pattern, and lies between the paint and the page."""
+    image = class_strip(np.array([FIRM, SOFT, LOST]), 180, 12, theme, faded=True)
+    pieces = [_colours(image, range(start + 2, start + 58)) for start in (0, 60, 120)]
+    assert [len(piece) for piece in pieces] == [1, 2, 2]
+    (firm,) = pieces[0]
+    assert theme.colour("firm").lightness() < QColor(firm).lightness() < theme.colour("page").lightness()
 
 
 def test_classes_out_of_the_table_are_unknown(theme: Theme) -> None:

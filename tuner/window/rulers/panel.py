@@ -1,13 +1,19 @@
 """The panel of all rulers of the controller, in one column or two."""
 
+from dataclasses import dataclass
+from functools import partial
+
 from PySide6.QtCore import Signal
 from PySide6.QtGui import QResizeEvent
 from PySide6.QtWidgets import QGridLayout, QLabel, QSizePolicy, QWidget
 
-from tuner.judge.assessment import Assessment
+from tuner.footing.classes import Track
 from tuner.model.parameters import GAIN_KEYS, Parameter, rulers
+from tuner.model.sheet import Sheet
 from tuner.session.document import Document
 from tuner.window.rulers.form_switch import FormSwitch
+from tuner.window.rulers.painting import Painting, Reading
+from tuner.window.rulers.reading_line import ReadingLine
 from tuner.window.rulers.ruler import SYMBOL_WIDTH, Ruler
 from tuner.window.tab_order import order_tabs, stops
 from tuner.window.theme import Theme
@@ -16,11 +22,21 @@ TWO_COLUMNS = 960
 """Width, pixels, from which the gains and the other rulers stand side by side."""
 
 
+@dataclass(frozen=True, slots=True)
+class Place:
+    """A value on a ruler; None is an absent one."""
+
+    name: str
+    value: float | None
+
+
 class RulerPanel(QWidget):
     """The rulers of the present form of the gains; `dragging_started` and `dragging_finished` tell of the hand."""
 
     dragging_started = Signal()
     dragging_finished = Signal()
+    place_changed = Signal()
+    """Mouse or keys look at another place, or at none."""
 
     def __init__(self, document: Document, theme: Theme, parent: QWidget | None = None) -> None:
         super().__init__(parent)
@@ -28,7 +44,11 @@ class RulerPanel(QWidget):
         self._generation, self._form = document.generation, ""
         self._columns = 0
         self.rulers: dict[str, Ruler] = {}
+        self._pointed: Place | None = None
+        self._reading: Reading | None = None
+        self._fault_of_paint = ""
         self.form = FormSwitch(document, theme, self)
+        self.line = ReadingLine(theme, self)
         self._grid = QGridLayout(self)
         self._grid.setContentsMargins(8, 4, 8, 4)
         self._grid.setHorizontalSpacing(24)
@@ -53,10 +73,42 @@ class RulerPanel(QWidget):
             ruler.refresh()
         self.form.refresh()
 
-    def show(self, assessment: Assessment | None = None) -> None:
-        """Show an assessment; the tracks stay grey, since it judges one tuning and not the length of a ruler."""
-        if assessment is None:
-            super().show()
+    def tracks(self) -> tuple[Track, ...]:
+        """Return what there is to find out along all rulers."""
+        return tuple(ruler.track() for ruler in self.rulers.values())
+
+    def paint(self, painting: Painting) -> None:
+        """Paint every ruler by what was found out about it."""
+        self._fault_of_paint = ""
+        for name, ruler in self.rulers.items():
+            ruler.show_footing(painting.tracks.get(name))
+        self._say_reading()
+
+    def fade(self, painting: Painting, sheet: Sheet) -> None:
+        """Show paler what is painted by a painting that is not true of a sheet."""
+        for name, ruler in self.rulers.items():
+            ruler.show_footing(painting.tracks.get(name), faded=not painting.holds(name, sheet))
+
+    def unpaint(self, sentence: str = "") -> None:
+        """Leave all rulers grey, and say why."""
+        self._fault_of_paint = sentence
+        for ruler in self.rulers.values():
+            ruler.show_footing(None)
+        self._say_reading()
+
+    @property
+    def place(self) -> Place | None:
+        """The place looked at: where the mouse points, else where the ruler stands that keys or hand are at."""
+        if self._pointed is not None and self._pointed.name in self.rulers:
+            return self._pointed
+        with_focus = (name for name, ruler in self.rulers.items() if ruler.slider.hasFocus())
+        name = next(with_focus, None)
+        return None if name is None else Place(name, self._document.sheet.controller.value(name))
+
+    def show_reading(self, reading: Reading | None) -> None:
+        """Say why the footing is what it is at the place looked at; until that is known, what it is."""
+        self._reading = reading
+        self._say_reading()
 
     def resizeEvent(self, event: QResizeEvent) -> None:
         """Lay the rulers in one column or two, as the width has it."""
@@ -88,18 +140,44 @@ class RulerPanel(QWidget):
         ruler.grasped.connect(self.dragging_started)
         ruler.let_go.connect(self.dragging_finished)
         ruler.faulted.connect(self._say)
+        ruler.slider.pointed.connect(partial(self._point, parameter.name))
+        for signal in (ruler.slider.left, ruler.slider.focused, ruler.grasped):
+            signal.connect(self._point_nowhere)
         ruler.setVisible(True)
         return ruler
+
+    def _point(self, name: str, value: float | None) -> None:
+        self._pointed = Place(name, value)
+        self.place_changed.emit()
+
+    def _point_nowhere(self) -> None:
+        self._pointed = None
+        self.place_changed.emit()
+
+    def _say_reading(self) -> None:
+        place, reading = self.place, self._reading
+        if place is None:
+            if self._fault_of_paint:
+                self.line.show_fault(self._fault_of_paint)
+            else:
+                self.line.show_legend()
+            return
+        ruler = self.rulers[place.name]
+        grade = ruler.grade_at(place.value) if reading is None else reading.grade
+        sentence = self._fault_of_paint if reading is None else reading.sentence
+        self.line.show_place(ruler.in_words(place.value), grade, sentence)
 
     def _lay_out(self) -> None:
         columns = 2 if self.width() >= TWO_COLUMNS else 1
         if columns == self._columns:
             return
         self._columns = columns
-        for part in (self.form, *self.rulers.values()):
+        for part in (self.form, *self.rulers.values(), self.line):
             self._grid.removeWidget(part)
-        for part, row, column in self._places(columns):
+        places = self._places(columns)
+        for part, row, column in places:
             self._grid.addWidget(part, row, column)
+        self._grid.addWidget(self.line, 1 + max(row for _, row, _ in places), 0, 1, columns)
         self._grid.setColumnStretch(0, 1)
         self._grid.setColumnStretch(1, 1 if columns == 2 else 0)
         first, *_ = stops(self._grid)

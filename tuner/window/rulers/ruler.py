@@ -2,19 +2,20 @@
 
 from functools import partial
 
-import numpy as np
-from numpy.typing import NDArray
 from PySide6.QtCore import QPoint, Qt, Signal
 from PySide6.QtGui import QContextMenuEvent
 from PySide6.QtWidgets import QHBoxLayout, QLabel, QMenu, QWidget
 
+from tuner.footing.classes import UNKNOWN, PaintedTrack, Track
 from tuner.model.parameters import Parameter
 from tuner.model.units import unit_in
 from tuner.session import typed
 from tuner.session.document import Document
+from tuner.session.ruler_range import notches
 from tuner.session.typed import Bounds, TypedError
 from tuner.window.editors.intake import Words
 from tuner.window.editors.typed_line import TypedLine
+from tuner.window.rulers.edges import class_of, in_words
 from tuner.window.rulers.slider import RulerSlider
 from tuner.window.theme import Theme
 
@@ -35,6 +36,7 @@ class Ruler(QWidget):
         super().__init__(parent)
         self._document, self.parameter, self._theme = document, parameter, theme
         self._jumped = False
+        self.painted: PaintedTrack | None = None
         self.slider = RulerSlider(theme)
         self.box = TypedLine(theme, self._value(), Words(self._read, _written), self._change, live=False)
         self.unit = QLabel()
@@ -49,17 +51,31 @@ class Ruler(QWidget):
             self._document.range_of(self.parameter), self._document.marks(self.parameter.name), value
         )
         self.box.intake.show_value(value)
-        unit = self._unit_now()
-        self.unit.setText(unit)
-        self.slider.setAccessibleDescription(f"{_written(value)} {unit}. {self.parameter.sentence}")
+        self.unit.setText(self._unit_now())
+        self._describe()
 
     def forget_typing(self) -> None:
         """Show the document's value whatever was typed: another sheet was opened."""
         self.box.intake.show_value(self._value(), anew=True)
 
-    def paint_classes(self, classes: NDArray[np.integer] | None) -> None:
-        """Paint the track by the classes of equal pieces of it, as in `strip`; grey when nobody computed any."""
-        self.slider.paint_classes(classes)
+    def track(self) -> Track:
+        """Return what there is to find out along this ruler."""
+        return Track(self.parameter.name, notches(self._document.range_of(self.parameter)))
+
+    def show_footing(self, track: PaintedTrack | None, *, faded: bool = False) -> None:
+        """Paint the track, paler where it is out of date; grey when nobody computed any classes."""
+        self.painted = track
+        self.slider.show_footing(track, faded=faded)
+        self._describe()
+
+    def grade_at(self, value: float | None) -> int:
+        """Return the class at a value, as far as it is painted."""
+        return UNKNOWN if self.painted is None else class_of(self.painted, value)
+
+    def in_words(self, value: float | None) -> str:
+        """Return the name, a value and its unit: "kp 4.2 %/degC"."""
+        unit = "" if value is None else self._unit_now()
+        return " ".join(filter(None, (self.parameter.name, _written(value), unit)))
 
     def menu(self) -> QMenu:
         """Return the menu of a right click."""
@@ -109,6 +125,15 @@ class Ruler(QWidget):
         self.slider.let_go.connect(self._on_let_go)
         self.slider.reset_wanted.connect(self._on_reset_wanted)
         self.box.intake.faulted.connect(self._on_faulted)
+
+    def _describe(self) -> None:
+        """Say value, unit and how far the footing reaches to assistive technology."""
+        value = self._value()
+        words = f"{_written(value)} {self._unit_now()}. {self.parameter.sentence}"
+        if self.painted is not None:
+            span = self._document.range_of(self.parameter)
+            words += f" Footing: {in_words(self.painted, span, value)}."
+        self.slider.setAccessibleDescription(words)
 
     def _value(self) -> float | None:
         controller = self._document.sheet.controller

@@ -3,27 +3,21 @@
 from collections.abc import Sequence
 from typing import ClassVar
 
-import numpy as np
-from numpy.typing import NDArray
-from PySide6.QtCore import QPointF, QRect, QRectF, QSize, Qt, QTimer, Signal
-from PySide6.QtGui import QColor, QImage, QKeyEvent, QMouseEvent, QPainter, QPaintEvent, QPen, QPolygonF, QWheelEvent
+from PySide6.QtCore import QEvent, QSize, Qt, QTimer, Signal
+from PySide6.QtGui import QFocusEvent, QImage, QKeyEvent, QMouseEvent, QPainter, QPaintEvent, QWheelEvent
 from PySide6.QtWidgets import QSizePolicy, QSlider, QWidget
 
-from tuner.session.ruler_range import POSITIONS, RulerRange, Step, place, position, stepped, ticks, value_at
+from tuner.footing.classes import PaintedTrack
+from tuner.session.ruler_range import POSITIONS, RulerRange, Step, place, position, stepped, value_at, values_along
 from tuner.session.tunings import Mark
+from tuner.window.rulers.edges import around, stop_beyond
+from tuner.window.rulers.face import MARGIN, TRACK_HEIGHT, Face, paint_face
 from tuner.window.rulers.strip import class_strip
 from tuner.window.theme import Theme
 
-MARGIN = 8
-"""Pixels left and right of the track, so that handle and first number fit."""
-
-TRACK_TOP, TRACK_HEIGHT = 12, 12
 HEIGHT = 40
 WHEEL_PAUSE = 400
 """Milliseconds after the last turn of the wheel when the hand counts as off."""
-
-_LEAST_GAP = 4  # pixels between two lines of the scale
-_MARK_HEIGHT = 6
 
 
 class RulerSlider(QSlider):
@@ -37,6 +31,11 @@ class RulerSlider(QSlider):
     grasped = Signal()
     let_go = Signal()
     reset_wanted = Signal()
+    pointed = Signal(object)
+    """The value under the mouse, the button up; None for an absent one."""
+    focused = Signal()
+    left = Signal()
+    """Neither mouse nor keys are at this slider any more, or one of them left it to the other."""
 
     _STEPS: ClassVar[dict[Qt.Key, tuple[Step, int]]] = {
         Qt.Key.Key_Right: ("fine", 1),
@@ -53,12 +52,15 @@ class RulerSlider(QSlider):
         self._span = RulerRange(1.0, 10.0)
         self._marks: tuple[Mark, ...] = ()
         self._value: float | None = None
-        self._classes: NDArray[np.integer] | None = None
+        self._track: PaintedTrack | None = None
+        self._faded = False
         self._strip: QImage | None = None
+        self._pointer: float | None = None
         self._grasp = ""
         self.pressed_twice = False
         self.setRange(0, POSITIONS)
         self.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
+        self.setMouseTracking(True)
         self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Fixed)
         self._wheel_pause = QTimer(self, singleShot=True, interval=WHEEL_PAUSE)
         self._wheel_pause.timeout.connect(lambda: self._let_go("wheel"))
@@ -68,14 +70,17 @@ class RulerSlider(QSlider):
         """Show a value on a range, with the marks beside it; the value is not altered by the slider's whole steps."""
         if (span, tuple(marks), value) == (self._span, self._marks, self._value):
             return
+        if span != self._span:
+            self._strip = None
         self._span, self._marks, self._value = span, tuple(marks), value
         self.setValue(position(span, value))
         self.update()
 
-    def paint_classes(self, classes: NDArray[np.integer] | None) -> None:
-        """Paint the track by the classes of equal pieces of it, from the left; grey when there are none."""
-        self._classes = classes
-        self._repaint_strip()
+    def show_footing(self, track: PaintedTrack | None, *, faded: bool = False) -> None:
+        """Paint the track by its classes and edges, paler where they are out of date; grey when there are none."""
+        if track is not self._track or faded != self._faded:
+            self._track, self._faded = track, faded
+            self._repaint_strip()
 
     @property
     def marks(self) -> tuple[Mark, ...]:
@@ -103,6 +108,24 @@ class RulerSlider(QSlider):
         """Follow the hand."""
         if self._grasp == "mouse":
             self._follow(event)
+        else:
+            self._point(event)
+
+    def leaveEvent(self, event: QEvent) -> None:
+        """Forget where the mouse pointed."""
+        super().leaveEvent(event)
+        self._point_nowhere()
+        self.left.emit()
+
+    def focusInEvent(self, event: QFocusEvent) -> None:
+        """Tell that keys go here."""
+        super().focusInEvent(event)
+        self.focused.emit()
+
+    def focusOutEvent(self, event: QFocusEvent) -> None:
+        """Tell that keys go elsewhere."""
+        super().focusOutEvent(event)
+        self.left.emit()
 
     def mouseReleaseEvent(self, event: QMouseEvent) -> None:
         """Let go."""
@@ -128,9 +151,15 @@ class RulerSlider(QSlider):
         event.accept()
 
     def keyPressEvent(self, event: QKeyEvent) -> None:
-        """Step by the keys: arrows fine, with Shift or by page coarse, Home and End to the ends, Backspace resets."""
+        """Step by the keys: arrows fine, with Shift or by page coarse, Home and End to the ends, Backspace resets.
+
+        Alt and an arrow go to the next edge of the footing: first to its near side, then across it.
+        """
         key = Qt.Key(event.key())
-        if key in self._STEPS:
+        if key in self._STEPS and event.modifiers() & Qt.KeyboardModifier.AltModifier:
+            self._take_hold("key")
+            self._want_edge(self._STEPS[key][1])
+        elif key in self._STEPS:
             pace, direction = self._STEPS[key]
             self._take_hold("key")
             self._want_step(_pace(event.modifiers(), pace), direction)
@@ -149,9 +178,28 @@ class RulerSlider(QSlider):
         super().keyReleaseEvent(event)
 
     def _follow(self, event: QMouseEvent) -> None:
+        self._point_nowhere()
+        value = self._value_under(event)
+        if value != self._value:
+            self.wanted.emit(value)
+
+    def _point(self, event: QMouseEvent) -> None:
+        self._pointer = min(max(event.position().x(), MARGIN), MARGIN + self._length - 1)
+        self.update()
+        self.pointed.emit(self._value_under(event))
+
+    def _point_nowhere(self) -> None:
+        if self._pointer is not None:
+            self._pointer = None
+            self.update()
+
+    def _value_under(self, event: QMouseEvent) -> float | None:
         per_pixel = POSITIONS / self._length
         at = round((event.position().x() - MARGIN) * per_pixel)
-        value = value_at(self._span, min(max(at, 0), POSITIONS), per_pixel)
+        return value_at(self._span, min(max(at, 0), POSITIONS), per_pixel)
+
+    def _want_edge(self, direction: int) -> None:
+        value = stop_beyond(self._track, self._span, self._value, direction) if self._track else self._value
         if value != self._value:
             self.wanted.emit(value)
 
@@ -185,98 +233,34 @@ class RulerSlider(QSlider):
         return QSize(120, HEIGHT)
 
     def paintEvent(self, _event: QPaintEvent) -> None:
-        """Paint track, scale, marks and handle."""
+        """Paint track, edges, scale, marks and handle."""
         painter = QPainter(self)
-        self._paint_track(painter)
-        self._paint_scale(painter)
-        painter.setRenderHint(QPainter.RenderHint.Antialiasing)
-        for mark in reversed(self._marks):
-            if mark.kind == "kept":
-                self._paint_kept(painter, mark)
-            else:
-                self._paint_triangle(painter, mark)
-        self._paint_handle(painter)
+        paint_face(painter, self._face(), self._theme)
         painter.end()
+
+    def _face(self) -> Face:
+        below_above = around(self._track, self._value) if self._track else ()
+        return Face(
+            self._span,
+            self.width(),
+            self._picture(),
+            self._marks,
+            self._value,
+            tuple(edge for edge in below_above if edge),
+            self._pointer,
+            self.hasFocus(),
+        )
+
+    def _picture(self) -> QImage | None:
+        """Return the picture of the track, made anew only when something about it changed."""
+        if self._track is not None and (self._strip is None or self._strip.width() != self._length):
+            classes = self._track.class_at(values_along(self._span, self._length))
+            self._strip = class_strip(classes, self._length, TRACK_HEIGHT, self._theme, faded=self._faded)
+        return self._strip if self._track is not None else None
 
     def _repaint_strip(self) -> None:
         self._strip = None
         self.update()
-
-    def _track(self) -> QRect:
-        return QRect(MARGIN, TRACK_TOP, self._length, TRACK_HEIGHT)
-
-    def _paint_track(self, painter: QPainter) -> None:
-        track = self._track()
-        if self._classes is None or not len(self._classes):
-            painter.fillRect(track, self._theme.colour("line"))
-        else:
-            if self._strip is None or self._strip.width() != track.width():
-                self._strip = class_strip(self._classes, track.width(), track.height(), self._theme)
-            painter.drawImage(track.topLeft(), self._strip)
-        if self._span.has_off:
-            edge = round(MARGIN + self._span.start / POSITIONS * self._length)
-            painter.fillRect(edge - 2, track.top(), 3, track.height(), self._theme.colour("page"))
-
-    def _paint_scale(self, painter: QPainter) -> None:
-        painter.setFont(self._theme.font("small"))
-        quiet, line = self._theme.colour("quiet"), self._theme.colour("line")
-        bottom, last, free = TRACK_TOP + TRACK_HEIGHT, -1e9, -1e9
-        for tick in ticks(self._span):
-            x = MARGIN + tick.position / POSITIONS * self._length
-            if not tick.main and x - last < _LEAST_GAP:
-                continue
-            last = x
-            painter.fillRect(round(x), bottom + 1, 1, 4 if tick.main else 2, quiet if tick.main else line)
-            if tick.main and x > free:
-                free = self._paint_number(painter, x, tick.text)
-        if self._span.has_off:
-            painter.setPen(quiet)
-            painter.drawText(QPointF(0.0, bottom + 15.0), "off")
-
-    def _paint_number(self, painter: QPainter, x: float, text: str) -> float:
-        """Write a number under its line, kept within the widget; return where the next may begin."""
-        width = painter.fontMetrics().horizontalAdvance(text)
-        least = painter.fontMetrics().horizontalAdvance("off ") if self._span.has_off else 0
-        left = min(max(x - width / 2.0, float(least)), float(self.width() - width))
-        painter.setPen(self._theme.colour("quiet"))
-        painter.drawText(QPointF(left, TRACK_TOP + TRACK_HEIGHT + 15.0), text)
-        return left + width * 1.5 + 8.0
-
-    def _paint_kept(self, painter: QPainter, mark: Mark) -> None:
-        """Paint a kept tuning: a line across the track with its name; names at one value stand beside one another."""
-        x = self.x_of(mark.value)
-        colour = self._theme.colour("kept_word")
-        painter.fillRect(round(x), 1, 1, TRACK_TOP + TRACK_HEIGHT - 1, colour)
-        painter.setPen(colour)
-        painter.setFont(self._theme.font("small"))
-        before = [other for other in self._marks[: self._marks.index(mark)] if other.kind == "kept"]
-        near = sum(abs(self.x_of(other.value) - x) < 8.0 for other in before)
-        painter.drawText(QPointF(x + 6.0 + 8.0 * near, TRACK_TOP - 2.0), mark.label)
-
-    def _paint_triangle(self, painter: QPainter, mark: Mark) -> None:
-        """Paint a mark above the track: as opened a full triangle, as found a hollow one around it."""
-        x = self.x_of(mark.value)
-        full = mark.kind == "reset"
-        colour = self._theme.colour("ink" if full else "quiet")
-        painter.setPen(QPen(colour, 1.0))
-        painter.setBrush(colour if full else self._theme.colour("page"))
-        tip, top = float(TRACK_TOP - 1), float(TRACK_TOP - 1 - _MARK_HEIGHT)
-        half = _MARK_HEIGHT / 2.0 + (0.0 if full else 2.0)
-        painter.drawPolygon(QPolygonF([QPointF(x, tip), QPointF(x - half, top), QPointF(x + half, top)]))
-
-    def _paint_handle(self, painter: QPainter) -> None:
-        x = self.x_of(self._value)
-        ink, page = self._theme.colour("ink"), self._theme.colour("page")
-        accent = self._theme.colour("nominal") if self.hasFocus() else ink
-        for width, beyond, colour in ((9.0, 5.0, page), (7.0, 4.0, accent), (1.0, 1.0, page)):
-            bar = QRectF(x - width / 2.0, TRACK_TOP - beyond, width, TRACK_HEIGHT + 2.0 * beyond)
-            _bar(painter, bar, colour)
-
-
-def _bar(painter: QPainter, bar: QRectF, colour: QColor) -> None:
-    painter.setPen(Qt.PenStyle.NoPen)
-    painter.setBrush(colour)
-    painter.drawRoundedRect(bar, bar.width() / 4.0, bar.width() / 4.0)
 
 
 def _pace(modifiers: Qt.KeyboardModifier, otherwise: Step) -> Step:

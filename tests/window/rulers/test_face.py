@@ -1,0 +1,63 @@
+"""The face of a slider: the places of the edges beside marks and handle."""
+
+import pytest
+from PySide6.QtGui import QImage, QPainter
+
+from tuner.footing.classes import FIRM, SOFT, Edge
+from tuner.session.ruler_range import RulerRange
+from tuner.session.tunings import Mark
+from tuner.window.rulers.face import TRACK_TOP, Face, paint_face
+from tuner.window.theme import Theme
+
+SPAN = RulerRange(0.1, 100.0, has_off=True)
+EDGE = Edge(10.0, FIRM, SOFT)
+
+
+def above(face: Face, theme: Theme, left: float, right: float) -> int:
+    """Return how many pixels above the track are written on, in a stretch of it."""
+    image = QImage(face.width, 40, QImage.Format.Format_RGB32)
+    page = theme.colour("page")
+    image.fill(page)
+    painter = QPainter(image)
+    paint_face(painter, face, theme)
+    painter.end()
+    places = [(x, y) for x in range(round(left), round(right)) for y in range(TRACK_TOP - 1)]
+    return sum(image.pixelColor(x, y) != page for x, y in places)
+
+
+def face(value: float, *marks: Mark, edges: tuple[Edge, ...] = (EDGE,)) -> Face:
+    """Return a face 516 pixels wide."""
+    return Face(SPAN, 516, None, marks, value, edges)
+
+
+@pytest.mark.parametrize(("value", "side"), [(1.0, 1), (50.0, -1)])
+def test_the_place_of_an_edge_is_written_away_from_the_handle(theme: Theme, value: float, side: int) -> None:
+    """A handle that comes near its edge does not cover the number."""
+    shown = face(value)
+    x = shown.x_of(EDGE.value)
+    beyond = sorted((x + side * 2.0, x + side * 30.0))
+    before = sorted((x - side * 30.0, x - side * 2.0))
+    assert above(shown, theme, *beyond) > 20
+    assert above(shown, theme, *before) == 0
+    assert above(face(value, edges=()), theme, *beyond) == 0
+
+
+def test_a_mark_goes_before_the_place_of_an_edge(theme: Theme) -> None:
+    """Where a mark stands, no number is written over it."""
+    mark = Mark("reset", "as opened", 11.0)
+    shown = face(1.0, mark)
+    alone = face(1.0, mark, edges=())
+    stretch = (shown.x_of(9.0), shown.x_of(30.0))
+    assert above(shown, theme, *stretch) == above(alone, theme, *stretch)
+
+
+def test_an_edge_outside_the_scale_is_not_written(theme: Theme) -> None:
+    """The change from off to the low end has no place on the scale."""
+    assert above(face(1.0, edges=(Edge(0.05, SOFT, FIRM),)), theme, 0, 60) == 0
+
+
+def test_the_pointer_is_a_line_across_the_track(theme: Theme) -> None:
+    """Where the mouse points, and only there, a line reaches over the track."""
+    shown = Face(SPAN, 516, None, (), 1.0, pointer=300.0)
+    assert above(shown, theme, 299, 302) > 0
+    assert above(face(1.0, edges=()), theme, 299, 302) == 0

@@ -1,0 +1,167 @@
+"""The rulers stay painted: newest sheet first, never an older one, paler when late, grey when there is nothing."""
+
+from collections.abc import Callable, Iterator
+from dataclasses import replace
+
+import pytest
+from pytestqt.qtbot import QtBot
+
+from tests.session.sheets import wash_bath
+from tests.window import made_up_footing
+from tuner.errors import LoopError
+from tuner.footing.classes import PaintedTrack
+from tuner.session.document import Document
+from tuner.window.beside import Beside
+from tuner.window.rulers import painted
+from tuner.window.rulers.painted import PaintedRulers
+from tuner.window.rulers.painting import Painter, Painting, PaintRequest
+from tuner.window.rulers.panel import RulerPanel
+from tuner.window.shown import Failure
+
+
+class Asked(Beside[PaintRequest]):
+    """A worker that only notes what it is asked; the test answers in its place."""
+
+    def __init__(self) -> None:
+        super().__init__(lambda _request, _stop: None, synchronous=True)
+        self.requests: list[PaintRequest] = []
+
+    def submit(self, request: PaintRequest) -> None:
+        """Note the request."""
+        self.requests.append(request)
+
+    def answer(self, number: int) -> Painting:
+        """Answer the request of a number."""
+        request = next(request for request in self.requests if request.number == number)
+        painting = Painter(made_up_footing.Painting()).answer(request, lambda: False)
+        self.answered.emit(painting)
+        return painting
+
+
+@pytest.fixture
+def worker() -> Asked:
+    """Return a worker that waits for the test."""
+    return Asked()
+
+
+@pytest.fixture
+def kept(document: Document, panel: RulerPanel, worker: Asked) -> Iterator[PaintedRulers]:
+    """Return what keeps the rulers painted, awake."""
+    kept = PaintedRulers(document, panel, worker)
+    kept.wake()
+    yield kept
+    kept.close()
+
+
+def shown(panel: RulerPanel) -> PaintedTrack | None:
+    """Return what kp's ruler is painted by."""
+    return panel.rulers["kp"].painted
+
+
+def test_it_sleeps_until_it_is_woken(document: Document, panel: RulerPanel, worker: Asked) -> None:
+    """Before the first curves nothing is asked; waking asks once, and waking again asks nothing."""
+    kept = PaintedRulers(document, panel, worker)
+    document.change_value("kp", 4.0)
+    assert worker.requests == []
+    kept.wake()
+    kept.wake()
+    (request,) = worker.requests
+    assert request.sheet == document.sheet
+    assert [track.name for track in request.tracks] == list(panel.rulers)
+    kept.close()
+
+
+@pytest.mark.usefixtures("kept")
+def test_a_change_is_asked_for_once(document: Document, worker: Asked) -> None:
+    """A change of a gain asks; one that leaves the sheet as it is does not."""
+    document.change_value("kp", 4.0)
+    document.keep()
+    document.change_value("kp", 4.0)
+    assert [request.number for request in worker.requests] == [1, 2]
+
+
+@pytest.mark.usefixtures("kept")
+def test_a_wider_ruler_is_asked_for(document: Document, panel: RulerPanel, worker: Asked) -> None:
+    """A value beyond the end widens the ruler, whose further part needs paint as well."""
+    document.change_value("kp", 5000.0)
+    assert worker.requests[-1].tracks[0].values[-1] == panel.tracks()[0].values[-1] >= 5000.0
+
+
+def test_answers_come_in_order(document: Document, panel: RulerPanel, worker: Asked, kept: PaintedRulers) -> None:
+    """An answer to an older sheet is shown while nothing newer is there, and dropped afterwards."""
+    for kp in (4.0, 5.0):
+        document.change_value("kp", kp)
+    second = worker.answer(2)
+    assert shown(panel) is second.tracks["kp"]
+    worker.answer(1)
+    assert kept.painting is second
+    third = worker.answer(3)
+    assert shown(panel) is third.tracks["kp"]
+
+
+def test_late_paint_fades_and_comes_back(
+    document: Document, panel: RulerPanel, worker: Asked, kept: PaintedRulers, qtbot: QtBot
+) -> None:
+    """Paint that a change made untrue pales after a while, kp's own does not, and the next answer brings it back."""
+    worker.answer(1)
+    document.change_value("kp", 4.0)
+    sliders = {name: panel.rulers[name].slider for name in ("kp", "ki")}
+    qtbot.waitUntil(lambda: sliders["ki"]._faded, timeout=10 * painted.LATE)
+    assert not sliders["kp"]._faded
+    worker.answer(2)
+    assert not sliders["ki"]._faded
+    assert not kept._late.isActive()
+
+
+@pytest.mark.usefixtures("kept")
+def test_another_loop_begins_grey(document: Document, panel: RulerPanel, worker: Asked) -> None:
+    """Nothing of the loop before is shown for the next one, not even what was on the way."""
+    worker.answer(1)
+    document.change_value("kp", 4.0)
+    document.start(replace(wash_bath(), limits=()))
+    assert shown(panel) is None
+    worker.answer(2)
+    assert shown(panel) is None
+    worker.answer(3)
+    assert shown(panel) is not None
+
+
+@pytest.mark.usefixtures("kept")
+def test_a_failure_leaves_the_rulers_grey(document: Document, panel: RulerPanel, worker: Asked) -> None:
+    """The newest failure takes the paint away and is said; an older one is dropped."""
+    worker.answer(1)
+    document.change_value("kp", 0.0)
+    worker.failed.emit(Failure(1, "old"))
+    assert shown(panel) is not None
+    worker.failed.emit(Failure(2, "the loop has no gain"))
+    assert shown(panel) is None
+    assert panel.line.text() == "the loop has no gain"
+
+
+def test_in_a_thread_the_last_sheet_is_the_last_painted(document: Document, panel: RulerPanel, qtbot: QtBot) -> None:
+    """After a burst of changes the rulers end with the paint of the last sheet, and the main thread painted nothing."""
+    import threading
+
+    paint = made_up_footing.Painting()
+    kept = PaintedRulers(document, panel, Beside(Painter(paint).answer))
+    kept.wake()
+    for step in range(50):
+        document.change_value("ki", 0.05 + 0.001 * step)
+    qtbot.waitUntil(lambda: kept.painting is not None and kept.painting.sheet == document.sheet)
+    assert threading.get_ident() not in paint.threads
+    kept.close()
+
+
+Refuse = Callable[..., tuple[PaintedTrack, ...]]
+
+
+def test_a_loop_without_gain_is_said_in_the_line(document: Document, panel: RulerPanel) -> None:
+    """What the footing refuses ends in the line under the rulers."""
+
+    def refuse(*_args: object, **_named: object) -> tuple[PaintedTrack, ...]:
+        raise LoopError("the loop has no gain")
+
+    kept = PaintedRulers(document, panel, Beside(Painter(refuse).answer, synchronous=True))
+    kept.wake()
+    assert panel.line.text() == "the loop has no gain"
+    kept.close()
