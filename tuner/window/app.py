@@ -1,14 +1,17 @@
 """Opens the window; the one entry of this room."""
 
 import sys
+from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass
 from pathlib import Path
+from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QTimer
 from PySide6.QtGui import QCloseEvent, QIcon
 from PySide6.QtWidgets import QApplication
 
 from tuner.errors import TrimwrightError
+from tuner.footing.classes import PaintedTrack, Track
 from tuner.judge.assessment import Assessment
 from tuner.judge.overlay import Overlay
 from tuner.model.sheet import Sheet
@@ -21,10 +24,13 @@ from tuner.window.editors import build_editors
 from tuner.window.keeping import Keeping
 from tuner.window.main_window import MainWindow
 from tuner.window.menus import Menus
-from tuner.window.rulers import build_rulers
+from tuner.window.rulers import Footing, build_rulers, keep_painted
 from tuner.window.sheet_files import SheetFiles
 from tuner.window.theme import CHOICES, Theme
 from tuner.window.worker import Assessor
+
+if TYPE_CHECKING:  # the reason's road is loaded when it is first taken
+    from tuner.footing.reason import Reason
 
 _FIRST_SIZE = (1440, 900)
 _EXAMPLE = "heater.toml"
@@ -37,6 +43,7 @@ class Wiring:
     menus: Menus
     files: SheetFiles
     keeping: Keeping
+    footing: Footing | None = None
 
 
 def open_window(path: Path | None) -> int:
@@ -79,22 +86,28 @@ def built(application: QApplication, document: Document, asking: Asking | None =
     theme.dress(application)
     application.setApplicationName("Trimwright")
     application.setWindowIcon(QIcon(str(resources() / "icons" / "trimwright.svg")))
-    assessor = Assessor(_judge, _draw)
-    window = MainWindow(document, theme, assessor, build_editors(document, theme), build_rulers(document, theme))
+    assessor, rulers = Assessor(_judge, _draw), build_rulers(document, theme)
+    footing = keep_painted(document, rulers, _paint_rulers, _reason_at)
+    window = MainWindow(document, theme, assessor, build_editors(document, theme), rulers)
     window.resize(*_FIRST_SIZE)
     window.restore_layout(remembered)
-    application.aboutToQuit.connect(assessor.close)
-    return window, wire(window, asking or Asking(window))
+    for worker in (assessor, footing.painted, footing.reader):
+        application.aboutToQuit.connect(worker.close)
+    return window, wire(window, asking or Asking(window), footing)
 
 
-def wire(window: MainWindow, asking: Asking) -> Wiring:
-    """Give a window its menus, its files and its manners on closing."""
+def wire(window: MainWindow, asking: Asking, footing: Footing | None = None) -> Wiring:
+    """Give a window its menus, its files, its footing and its manners on closing."""
     files = SheetFiles(window.document, asking)
     keeping = Keeping(window.document, asking)
     menus = Menus(window, files, Commands(window, asking))
     window.dropped.connect(files.open_path)
-    window.closing.connect(lambda event: _close(window, files, keeping, event))
-    return Wiring(menus, files, keeping)
+    wiring = Wiring(menus, files, keeping, footing)
+    window.closing.connect(lambda event: _close(window, wiring, event))
+    if footing is not None:
+        window.assessor.answered.connect(lambda shown: footing.wake_after(shown.whole))
+        window.assessor.failed.connect(lambda _failure: footing.wake_after(True))
+    return wiring
 
 
 def watch_for_faults(window: MainWindow) -> None:
@@ -103,10 +116,12 @@ def watch_for_faults(window: MainWindow) -> None:
     faults.tell_faults(lambda sentence: QTimer.singleShot(0, lambda: window.say_fault(f"{sentence} See {log}.")))
 
 
-def _close(window: MainWindow, files: SheetFiles, keeping: Keeping, event: QCloseEvent) -> None:
+def _close(window: MainWindow, wiring: Wiring, event: QCloseEvent) -> None:
     """Let the window close once nothing would be lost, and remember how it stood."""
-    if files.may_leave():
-        keeping.end()
+    if wiring.files.may_leave():
+        wiring.keeping.end()
+        if wiring.footing is not None:
+            wiring.footing.close()
         memory.remember(window.layout_memory())
     else:
         event.ignore()
@@ -116,6 +131,18 @@ def _judge(sheet: Sheet, size: int) -> Assessment:
     from tuner.assess import assess
 
     return assess(sheet, size)
+
+
+def _paint_rulers(sheet: Sheet, tracks: Sequence[Track], *, stop: Callable[[], bool]) -> tuple[PaintedTrack, ...]:
+    from tuner.footing.rulers import paint_rulers
+
+    return paint_rulers(sheet, tracks, stop=stop)
+
+
+def _reason_at(sheet: Sheet, changes: Mapping[str, float], /) -> "Reason":
+    from tuner.footing.reason import reason_at
+
+    return reason_at(sheet, changes)
 
 
 def _draw(sheet: Sheet, assessment: Assessment) -> Overlay:

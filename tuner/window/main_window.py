@@ -164,9 +164,9 @@ class MainWindow(QMainWindow):
         self.across = _splitter(Qt.Orientation.Horizontal, self.editors, self.plots.widget)
         self.across.setStretchFactor(1, 1)
         self.across.setSizes([_EDITOR_WIDTH, 1000])
-        self.upwards = _splitter(Qt.Orientation.Vertical, self.across, _scrolled(self.rulers))
+        self.upwards = _splitter(Qt.Orientation.Vertical, self.across, _with_line(self.rulers))
         self.upwards.setStretchFactor(0, 1)
-        self.upwards.setSizes([1000, 184])
+        self.upwards.setSizes([1000, 208])
         self.notes.setProperty("voice", "quiet")
         self.notes.setAccessibleName("Notes")
         self.notes.setContentsMargins(12, 4, 12, 4)
@@ -218,6 +218,17 @@ def _splitter(orientation: Qt.Orientation, *parts: QWidget) -> QSplitter:
     for part in parts:
         splitter.addWidget(part)
     return splitter
+
+
+def _with_line(rulers: RulerPanel) -> QWidget:
+    """Return the rulers, to be scrolled where there is no room, with the line that reads them always in sight."""
+    whole = QWidget()
+    column = QVBoxLayout(whole)
+    column.setContentsMargins(0, 0, 0, 0)
+    column.setSpacing(0)
+    column.addWidget(_scrolled(rulers), 1)
+    column.addWidget(rulers.line)
+    return whole
 
 
 def _scrolled(part: QWidget) -> QScrollArea:

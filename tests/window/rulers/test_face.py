@@ -43,12 +43,22 @@ def test_the_place_of_an_edge_is_written_away_from_the_handle(theme: Theme, valu
 
 
 def test_a_mark_goes_before_the_place_of_an_edge(theme: Theme) -> None:
-    """Where a mark stands, no number is written over it."""
-    mark = Mark("reset", "as opened", 11.0)
-    shown = face(1.0, mark)
-    alone = face(1.0, mark, edges=())
-    stretch = (shown.x_of(9.0), shown.x_of(30.0))
-    assert above(shown, theme, *stretch) == above(alone, theme, *stretch)
+    """Where a mark stands, the number is written behind it, and not at all where marks leave no room near the edge."""
+    mark = Mark("reset", "as opened", 10.5)
+    shown, alone = face(1.0, mark), face(1.0, mark, edges=())
+    x = shown.x_of(10.5)
+    assert above(shown, theme, x - 6, x + 6) == above(alone, theme, x - 6, x + 6)
+    assert above(shown, theme, x + 7, x + 40) > 20
+    crowd = [Mark("reset", "as opened", 10.0 * 1.06**step) for step in range(6)]
+    shown, alone = face(1.0, *crowd), face(1.0, *crowd, edges=())
+    assert above(shown, theme, 0, 516) == above(alone, theme, 0, 516)
+
+
+def test_a_number_is_written_past_the_handle(theme: Theme) -> None:
+    """A handle that stands on the edge does not cover its place."""
+    shown = face(9.9)
+    x = shown.x_of(9.9)
+    assert above(shown, theme, x + 6, x + 40) > 20
 
 
 def test_an_edge_outside_the_scale_is_not_written(theme: Theme) -> None:

@@ -9,7 +9,7 @@ from tuner.errors import LoopError
 from tuner.footing.classes import SOFT, Overtaken, Track
 from tuner.model.sheet import Sheet
 from tuner.session.ruler_range import RulerRange, notches
-from tuner.window.rulers.painting import Painter, Painting, PaintRequest, ReasonRequest, reader
+from tuner.window.rulers.painting import Painter, Painting, PaintRequest, ReasonRequest, reading_by
 
 SPAN = RulerRange(0.1, 100.0, has_off=True)
 NAMES = ("kp", "ki", "kd")
@@ -96,7 +96,7 @@ def test_a_loop_that_cannot_be_computed_is_said_so() -> None:
 def test_a_place_is_read() -> None:
     """The reason is asked for at the place, an absent value as 0, and comes back with the names of the request."""
     reasons = made_up_footing.Reasons()
-    read = reader(reasons)
+    read = reading_by(reasons)
     reading = read(ReasonRequest(4, made_up.sheet(), "kp", 3.0), never)
     assert (reading.number, reading.name, reading.value, reading.grade) == (4, "kp", 3.0, SOFT)
     assert reading.sentence == "made up: soft with {'kp': 3.0}"

@@ -8,7 +8,7 @@ from pytestqt.qtbot import QtBot
 from tests.window.made_up_footing import Reasons
 from tuner.session.document import Document
 from tuner.window.beside import Beside
-from tuner.window.rulers.painting import Reading, ReasonRequest, reader
+from tuner.window.rulers.painting import Reading, ReasonRequest, reading_by
 from tuner.window.rulers.panel import RulerPanel
 from tuner.window.rulers.reader import REST, RulerReader
 
@@ -22,7 +22,7 @@ def reasons() -> Reasons:
 @pytest.fixture
 def worker(reasons: Reasons) -> Beside[ReasonRequest]:
     """Return a worker that answers at once."""
-    return Beside(reader(reasons), synchronous=True)
+    return Beside(reading_by(reasons), synchronous=True)
 
 
 @pytest.fixture

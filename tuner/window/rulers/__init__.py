@@ -5,7 +5,7 @@ from dataclasses import dataclass
 from tuner.session.document import Document
 from tuner.window.beside import Beside
 from tuner.window.rulers.painted import PaintedRulers
-from tuner.window.rulers.painting import Painter, PaintRulers, ReasonAt, reader
+from tuner.window.rulers.painting import Painter, PaintRulers, ReasonAt, reading_by
 from tuner.window.rulers.panel import RulerPanel
 from tuner.window.rulers.reader import RulerReader
 from tuner.window.theme import Theme
@@ -17,6 +17,11 @@ class Footing:
 
     painted: PaintedRulers
     reader: RulerReader
+
+    def wake_after(self, whole: bool) -> None:
+        """Begin to paint once there is a whole answer: the first curves have the machine to themselves."""
+        if whole:
+            self.painted.wake()
 
     def close(self) -> None:
         """End both workers and wait for them."""
@@ -42,5 +47,5 @@ def keep_painted(
         Answer at once, without threads, for tests.
     """
     painter = Beside(Painter(paint).answer, synchronous=synchronous)
-    read = Beside(reader(reason_at), synchronous=synchronous)
+    read = Beside(reading_by(reason_at), synchronous=synchronous)
     return Footing(PaintedRulers(document, panel, painter), RulerReader(document, panel, read))

@@ -18,6 +18,8 @@ TRACK_TOP, TRACK_HEIGHT = 12, 12
 _LEAST_GAP = 4  # pixels between two lines of the scale
 _MARK_HEIGHT = 6
 _LETTER = 12  # pixels that the name of a kept tuning takes
+_HANDLE = 5.0  # pixels that the handle takes on each side
+_FARTHEST = 24.0  # pixels between an edge and its number
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -125,23 +127,33 @@ def _paint_edge(painter: QPainter, face: Face, edge: Edge, theme: Theme) -> None
         return
     x, text = face.x_of(edge.value), edge_number(edge)
     width = painter.fontMetrics().horizontalAdvance(text)
-    left = x + 4.0 if edge.value > (face.value or 0.0) else x - 4.0 - width
-    if left < 0.0 or left + width > face.width or _is_taken(face, min(left, x), max(left + width, x)):
+    left = _free_place(face, x, width, to_the_right=edge.value > (face.value or 0.0))
+    if left is None:
         return
     ink = theme.colour("ink")
-    painter.fillRect(round(x), 2, 1, TRACK_TOP - 2, ink)
+    if not _taken(face, x, x + 1.0):
+        painter.fillRect(round(x), 2, 1, TRACK_TOP - 2, ink)
     painter.setPen(ink)
     painter.drawText(QPointF(left, TRACK_TOP - 3.0), text)
 
 
-def _is_taken(face: Face, left: float, right: float) -> bool:
-    """Tell whether a mark stands in a stretch above the track."""
+def _free_place(face: Face, x: float, width: float, *, to_the_right: bool) -> float | None:
+    """Return where a number of some width begins beside a place, past what stands there; None when that is far."""
+    left = x + 4.0 if to_the_right else x - 4.0 - width
+    while taken := _taken(face, left, left + width):
+        left = max(end for _, end in taken) + 3.0 if to_the_right else min(start for start, _ in taken) - 3.0 - width
+    gap = left - x if to_the_right else x - left - width
+    return left if gap <= _FARTHEST and left >= 0.0 and left + width <= face.width else None
+
+
+def _taken(face: Face, left: float, right: float) -> list[tuple[float, float]]:
+    """Return the stretches above the track that marks and handle take, of those that reach into one."""
+    at = face.x_of(face.value)
+    taken = [(at - _HANDLE, at + _HANDLE)]
     for mark in face.marks:
         x = face.x_of(mark.value)
-        before, behind = (1.0, _LETTER + 6.0) if mark.kind == "kept" else (_MARK_HEIGHT, _MARK_HEIGHT)
-        if x - before < right and x + behind > left:
-            return True
-    return False
+        taken.append((x - 1.0, x + _LETTER + 6.0) if mark.kind == "kept" else (x - _MARK_HEIGHT, x + _MARK_HEIGHT))
+    return [(start, end) for start, end in taken if start < right and end > left]
 
 
 def _paint_kept(painter: QPainter, face: Face, mark: Mark, theme: Theme) -> None:

@@ -74,7 +74,8 @@ class PaintedRulers(QObject):
 
     def _leave_loop(self) -> None:
         """Forget the loop that was open before, and what is on the way for it."""
-        self._generation, self._first, self.painting = self._document.generation, self._asked + 1, None
+        self._generation, self._first = self._document.generation, self._asked + 1
+        self._wanted = self.painting = None
         self._panel.unpaint()
 
     def _answered(self, painting: Painting) -> None:

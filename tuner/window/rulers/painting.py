@@ -136,7 +136,7 @@ class Reasoned(Protocol):
 ReadPlace = Callable[[ReasonRequest, Stop], Reading]
 
 
-def reader(reason_at: ReasonAt) -> ReadPlace:
+def reading_by(reason_at: ReasonAt) -> ReadPlace:
     """Return what answers requests for the reason at a place."""
 
     def read(request: ReasonRequest, _stop: Stop) -> Reading:

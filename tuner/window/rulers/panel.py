@@ -31,7 +31,13 @@ class Place:
 
 
 class RulerPanel(QWidget):
-    """The rulers of the present form of the gains; `dragging_started` and `dragging_finished` tell of the hand."""
+    """The rulers of the present form of the gains; `dragging_started` and `dragging_finished` tell of the hand.
+
+    Attributes
+    ----------
+    line : ReadingLine
+        Says what holds where mouse or keys are; whoever shows the panel puts it where it stays in sight.
+    """
 
     dragging_started = Signal()
     dragging_finished = Signal()
@@ -48,7 +54,7 @@ class RulerPanel(QWidget):
         self._reading: Reading | None = None
         self._fault_of_paint = ""
         self.form = FormSwitch(document, theme, self)
-        self.line = ReadingLine(theme, self)
+        self.line = ReadingLine(theme)
         self._grid = QGridLayout(self)
         self._grid.setContentsMargins(8, 4, 8, 4)
         self._grid.setHorizontalSpacing(24)
@@ -172,12 +178,10 @@ class RulerPanel(QWidget):
         if columns == self._columns:
             return
         self._columns = columns
-        for part in (self.form, *self.rulers.values(), self.line):
+        for part in (self.form, *self.rulers.values()):
             self._grid.removeWidget(part)
-        places = self._places(columns)
-        for part, row, column in places:
+        for part, row, column in self._places(columns):
             self._grid.addWidget(part, row, column)
-        self._grid.addWidget(self.line, 1 + max(row for _, row, _ in places), 0, 1, columns)
         self._grid.setColumnStretch(0, 1)
         self._grid.setColumnStretch(1, 1 if columns == 2 else 0)
         first, *_ = stops(self._grid)

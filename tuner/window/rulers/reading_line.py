@@ -12,9 +12,9 @@ from tuner.footing.classes import FIRM, LOST, SOFT, UNKNOWN, WORDS
 from tuner.window.rulers.strip import class_strip
 from tuner.window.theme import Theme
 
-HEIGHT = 20
+HEIGHT = 24
 _SWATCH = (20, 10)
-_GAP, _FAR = 6, 20
+_GAP, _FAR, _INDENT = 6, 20, 12
 
 ROLES = {FIRM: "firm_word", SOFT: "soft_word", LOST: "lost_word", UNKNOWN: "quiet"}
 """The colour of a class in words."""
@@ -83,7 +83,7 @@ class ReadingLine(QWidget):
     def paintEvent(self, _event: QPaintEvent) -> None:
         """Paint the words as far as there is room."""
         painter = QPainter(self)
-        x = 0
+        x = _INDENT
         for piece in self._pieces:
             x = self._paint(painter, piece, x)
 
@@ -115,7 +115,7 @@ class ReadingLine(QWidget):
         self.setToolTip(self.text() if self._wished_width() > self.width() else "")
 
     def _wished_width(self) -> int:
-        return sum(self._width(piece) + piece.gap for piece in self._pieces)
+        return _INDENT + sum(self._width(piece) + piece.gap for piece in self._pieces)
 
     def _width(self, piece: Piece) -> int:
         metrics = QFontMetrics(self._theme.font("small", strong=piece.strong))

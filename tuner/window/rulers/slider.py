@@ -95,6 +95,10 @@ class RulerSlider(QSlider):
     def _length(self) -> int:
         return max(self.width() - 2 * MARGIN, 1)
 
+    def event(self, event: QEvent) -> bool:
+        """Show no tip over the track: the line under the rulers reads it, and a tip would cover the next ruler."""
+        return event.type() == QEvent.Type.ToolTip or super().event(event)
+
     # The hand ---------------------------------------------------------------------------------------------------
 
     def mousePressEvent(self, event: QMouseEvent) -> None:
