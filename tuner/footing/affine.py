@@ -1,4 +1,4 @@
-"""How the loop depends on one gain: in each, 1 + L is a part that holds plus the gain times a part that goes with it."""
+"""How the loop depends on one gain: 1 + L is a part that holds plus the gain times a part that goes with it."""
 
 from typing import NamedTuple
 

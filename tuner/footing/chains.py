@@ -1,4 +1,4 @@
-"""What of a loop does not depend on its gains: every plant's chain on a grid of frequencies, kept from frame to frame."""
+"""What of a loop no gain changes: every plant's chain on a grid of frequencies, kept from frame to frame."""
 
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
@@ -22,6 +22,9 @@ _TURN = pi / 6.0
 
 _MOST = 4000
 """Frequencies at most for the sake of the dead time."""
+
+_SAME = 1e-6
+"""Frequencies that differ by less than this share are one."""
 
 _CLOSER = 1e-4
 """Where the ends of a contour are looked at, in parts of the lowest frequency."""
@@ -55,7 +58,7 @@ class Chains:
         """Return 1/G of some rows at one frequency each, and the law's blocks there; shapes (k, 1)."""
         with np.errstate(all="ignore"):
             inverse = 1.0 / self.rows.take(rows).response(w[:, None])
-        return inverse, contour(to_x(1j * w[:, None], self.rows.step), self.rows.step)
+        return inverse, _contour(w[:, None], self.rows.step)
 
 
 def chains_of(sheet: Sheet, size: int) -> tuple[Chains, ...]:
@@ -87,20 +90,35 @@ def _stacked(rows: Stack, members: Sequence[int]) -> Chains:
     w = _frequencies(rows)
     with np.errstate(all="ignore"):
         inverse = 1.0 / rows.response(w)
-    return Chains(tuple(members), rows, w, contour(to_x(1j * w, rows.step), rows.step), inverse)
+    return Chains(tuple(members), rows, w, _contour(w, rows.step), inverse)
+
+
+def _contour(w: Array, step: float) -> Contour:
+    s: ComplexArray = np.asarray(1j * w, dtype=complex)
+    return contour(to_x(s, step), step)
 
 
 def _frequencies(rows: Stack) -> Array:
     """Return frequencies that show every turn of a chain, its ends looked at closely."""
     w = grid(rows, np.zeros((rows.rows, 0), dtype=complex))
     # Twice as many as for the margins of one tuning: here every tuning is looked at through the same points.
-    w = np.concatenate((w, np.sqrt(w[:, 1:] * w[:, :-1]), _turning(rows, w[:, -1])), axis=1)
+    w = np.concatenate((w, np.sqrt(w[:, 1:] * w[:, :-1]), _turning(rows, w[:, -1]), _beyond(rows, w[:, -1])), axis=1)
     low, high = w.min(axis=1), w.max(axis=1)
     w = np.concatenate((w, _CLOSER * low[:, None]), axis=1)
-    w.sort(axis=1)
     if rows.step:
-        w[:, -1] = high - _CLOSER * low
+        w = np.minimum(w, (high - _CLOSER * low)[:, None])
+    w.sort(axis=1)
+    # A point that falls on another says nothing; half-way to the next it does.
+    same = w[:, 1:-1] - w[:, :-2] <= _SAME * w[:, 1:-1]
+    w[:, 1:-1] = np.where(same, 0.5 * (w[:, 1:-1] + w[:, 2:]), w[:, 1:-1])
     return w
+
+
+def _beyond(rows: Stack, high: Array) -> Array:
+    """Return frequencies beyond those at which a gain of one matters, for gains far above it."""
+    if rows.step:
+        return np.zeros((rows.rows, 0))
+    return np.asarray(high[:, None] * np.geomspace(1.1, 1e4, 80))
 
 
 def _turning(rows: Stack, high: Array) -> Array:

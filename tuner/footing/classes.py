@@ -19,7 +19,7 @@ FIRM, SOFT, LOST, UNKNOWN = 0, 1, 2, 3
 WORDS = ("firm", "soft", "lost", "unknown")
 
 
-class Overtaken(TrimwrightError):
+class Overtaken(TrimwrightError):  # noqa: N818 - nothing went wrong
     """A newer question has come; the answer to this one is not wanted any more."""
 
 

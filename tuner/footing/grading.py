@@ -2,10 +2,12 @@
 
 from collections.abc import Callable, Mapping, Sequence
 from concurrent.futures import ThreadPoolExecutor
-from dataclasses import dataclass, replace
-from functools import cache, lru_cache
-from math import ceil, nan
+from dataclasses import astuple, dataclass, field, replace
+from functools import cache, lru_cache, partial
+from itertools import pairwise
+from math import ceil, inf, nan
 from os import cpu_count
+from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
@@ -15,31 +17,34 @@ from tuner.footing.chains import Chains, chains_of
 from tuner.footing.classes import FIRM, LOST, SOFT, UNKNOWN, Classes, Overtaken, never
 from tuner.judge.verdict import limit_result, verdict, worst_case
 from tuner.kernels import grades, lanes, readings, responses
-from tuner.measure.final import StaticGains, family_final_values, final_values, has_integral
+from tuner.law.constants import gain_constants
+from tuner.measure.final import family_final_values
+from tuner.measure.runs import LAST_SHARE
 from tuner.model.controller import Controller
 from tuner.model.family import Member, family
 from tuner.model.measures import BY_NAME
 from tuner.model.sheet import Sheet
 from tuner.simulate.batch import RUNAWAY, feedforward_of, law_constants, nominal
 from tuner.simulate.grid import Grid, sampled_grid
-from tuner.simulate.pace import Pace, paced
+from tuner.simulate.pace import paced
 from tuner.simulate.traces import Array
-from tuner.simulate.wiring import wire
+from tuner.simulate.wiring import processes, wire
 
 _FIRST = 3
 """Plants that every tuning is tried with before those that are left are put together anew."""
+
+_CONTINUOUS = 1000
+"""Steps of the coarser of two runs of a continuous controller."""
+
+_STEPS_OF_WINDUP = 8.0
+"""Steps of a continuous controller's runs that its wind-up time takes at least."""
 
 _GRADES: Mapping[str, int] = {"met": FIRM, "missed": SOFT, "unstable": LOST}
 
 Flags = NDArray[np.bool_]
 
-
-@dataclass(frozen=True, slots=True, eq=False)
-class Watched:
-    """Bounds of one measure for each tuning and plant, shape (t, p); not a number where it was not looked at."""
-
-    low: Array
-    high: Array
+_NOTHING = (-1, np.zeros((2, 0, 0)))
+"""No measure is watched."""
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -49,20 +54,22 @@ class Ground:
     Parameters
     ----------
     members : tuple of Member
-    grid : Grid
-    pace : Pace
+    speeds : tuple of Speed
+    steps : tuple of float
+        At which the law runs, for each speed.
     size : tuple of int
         See `lanes.size_for`.
     chains : tuple of Chains
-    feedforward : ndarray, shape (2, s)
+    bounded : bool
+        Whether bounds can be had at all: not where effort and measurement depend on each other in the same instant.
     """
 
     members: tuple[Member, ...]
-    grid: Grid
-    pace: Pace
+    speeds: tuple[grades.Speed, ...]
+    steps: tuple[float, ...]
     size: lanes.Size
     chains: tuple[Chains, ...]
-    feedforward: Array
+    bounded: bool
 
 
 def ground_of(sheet: Sheet, size: int) -> Ground:
@@ -90,11 +97,29 @@ def ground_of(sheet: Sheet, size: int) -> Ground:
 @lru_cache(maxsize=8)
 def _ground(sheet: Sheet, size: int) -> Ground:
     members = family(sheet.plant, size)
-    grid = sampled_grid(sheet.trial.duration, sheet.controller.sample_time, nominal(sheet).plant)
-    wired = wire(sheet, members, grid.step)
-    kernel = lanes.size_for(wired.c.shape[2])
-    pace = paced(wired, grid, sheet.controller.delay_samples, len(kernel))
-    return Ground(members, grid, pace, kernel, chains_of(sheet, size), feedforward_of(sheet, grid))
+    grids = _grids(sheet)
+    order = wire(sheet, members, grids[0].step).c.shape[2]
+    kernel = lanes.size_for(order)
+    speeds = tuple(_speed(sheet, members, grid, len(kernel)) for grid in grids)
+    bounded = bool(sheet.controller.sample_time) or not any(one.plant.d for one in processes(sheet, members))
+    steps = tuple(grid.sample_time for grid in grids)
+    return Ground(members, speeds, steps, kernel, chains_of(sheet, size), bounded)
+
+
+def _grids(sheet: Sheet) -> tuple[Grid, ...]:
+    """Return the grid of the trial; two, the second twice as fine, for a continuous controller."""
+    duration, step = sheet.trial.duration, sheet.controller.sample_time
+    if step:
+        return (sampled_grid(duration, step, nominal(sheet).plant),)
+    return tuple(Grid(duration / count, 1, count + 1) for count in (_CONTINUOUS, 2 * _CONTINUOUS))
+
+
+def _speed(sheet: Sheet, members: Sequence[Member], grid: Grid, size: int) -> grades.Speed:
+    delay = sheet.controller.delay_samples if sheet.controller.sample_time else 0
+    times = grid.times()
+    tail = int(np.searchsorted(times, times[-1] - LAST_SHARE * (times[-1] - times[0])))
+    pace = paced(wire(sheet, members, grid.step), grid, delay, size)
+    return grades.Speed(*pace, feedforward_of(sheet, grid), grid.step, tail)
 
 
 @cache
@@ -107,8 +132,29 @@ def spread_out(work: Callable[[int, int], object], count: int) -> None:
     """Let all threads share a range, a stretch each."""
     threads = min(cpu_count() or 1, count)
     places = [round(count * k / threads) for k in range(threads + 1)] if threads else []
-    for done in [pool().submit(work, begin, end) for begin, end in zip(places, places[1:], strict=False)]:
+    for done in [pool().submit(work, begin, end) for begin, end in pairwise(places)]:
         done.result()
+
+
+class Numbers(NamedTuple):
+    """What tunings differ in, shape (t,) each: parallel gains, times and weights."""
+
+    kp: Array
+    ki: Array
+    kd: Array
+    filter_time: Array
+    windup_time: Array
+    b: Array
+    c: Array
+
+
+def numbers_of(tunings: Sequence[Controller]) -> Numbers:
+    """Return the numbers of tunings; an absent wind-up time is infinite."""
+    rows = [
+        (*astuple(one.parallel()), one.filter_time, inf if one.windup_time is None else one.windup_time, one.b, one.c)
+        for one in tunings
+    ]
+    return Numbers(*np.array(rows).reshape(-1, 7).T)
 
 
 @dataclass(slots=True, eq=False)
@@ -132,7 +178,11 @@ class Grading:
     tunings: Sequence[Controller]
     order: Sequence[int]
     stop: Callable[[], bool] = never
-    watched: str = ""
+    numbers: Numbers = field(init=False)
+
+    def __post_init__(self) -> None:
+        """Take the numbers of the tunings out, for what looks at all of them at once."""
+        self.numbers = numbers_of(self.tunings)
 
     def classes(self, lost: Flags, unsure: Flags, *, settle: bool = True) -> Classes:
         """Return the class of every tuning, shape (t,), given which are lost and of which that is not sure.
@@ -152,6 +202,58 @@ class Grading:
             found[at] = self._exactly(at, range(len(self.ground.members)))
         return found
 
+    def watch(self, measure: str, stable: Flags) -> Array:
+        """Return the worst value of a measure over the family for every tuning that is stable, shape (t,).
+
+        Not a number where the measure does not exist for some plant, where it is not told, and where a tuning is not
+        stable. Between the bounds of a value its middle is taken.
+        """
+        out = np.full(len(self.tunings), nan)
+        left = np.flatnonzero(stable)
+        if not len(left):
+            return out
+        if measure in readings.MEASURES:
+            low, high = self._watched_trials(left, readings.MEASURES.index(measure))
+        elif measure in responses.MEASURES and self.sheet.controller.feedback:
+            low, high = self._watched_margins(left, responses.MEASURES.index(measure))
+        else:
+            low = high = self._exact_values(left, measure)
+        with np.errstate(invalid="ignore"):
+            middle = 0.5 * (low + high)
+            worst = middle.min(axis=1) if BY_NAME[measure].at_least else middle.max(axis=1)
+        out[left] = np.where(np.isfinite(worst), worst, nan)
+        return out
+
+    def _watched_trials(self, left: NDArray[np.intp], which: int) -> tuple[Array, Array]:
+        none = np.full(len(readings.MEASURES), nan)
+        values = np.full((2, len(left), len(self.ground.members)), nan)
+        size = self._runs()[0 if which < readings.REFERENCE_COUNT else 1][0]
+        if size and self.ground.bounded:
+            active = np.ones(len(self.tunings), dtype=np.uint8)
+            self._run(left, range(len(self.ground.members)), none, active, _no_doubt(self), (which, values))
+        return values[0], values[1]
+
+    def _watched_margins(self, left: NDArray[np.intp], which: int) -> tuple[Array, Array]:
+        values = np.full((2, len(left), len(self.ground.members)), nan)
+        gains, none = self._gains()[left], np.full(len(responses.MEASURES), nan)
+        active, doubt = np.ones(len(left), dtype=np.uint8), np.zeros(values.shape[1:], dtype=np.uint8)
+        for chains in self.ground.chains:
+            spread_out(partial(_decide, chains, gains, none, active, doubt, (which, values)), len(left))
+        return values[0], values[1]
+
+    def _exact_values(self, left: NDArray[np.intp], measure: str) -> Array:
+        rows = []
+        for at in left.tolist():
+            self._check()
+            sheet = replace(self.sheet, controller=self.tunings[at])
+            found = [result.measures[measure] for result in results_of(sheet, self.ground.members)]
+            rows.append([nan if value is None else value for value in found])
+        return np.array(rows)
+
+    def _gains(self) -> Array:
+        some = self.numbers
+        return np.column_stack((some.kp, some.ki, some.kd, some.filter_time))
+
     def _check(self) -> None:
         if self.stop():
             raise Overtaken("a newer question has come")
@@ -160,14 +262,17 @@ class Grading:
         limits = self._limits(readings.MEASURES)
         if np.isnan(limits).all():
             return
-        if any(not size for size, names in self._runs() if self._has_limit(names)):
+        if not self.ground.bounded or any(not size for size, names in self._runs() if self._has_limit(names)):
             # Measures of a run without a step do not exist: a limit on one is missed, which the assessment says.
             doubt[active != 0] = 1
             return
+        if not self.sheet.controller.sample_time:
+            # So fast a return from a limit the steps of the law do not show.
+            doubt[(active != 0) & (self.numbers.windup_time < _STEPS_OF_WINDUP * self.ground.steps[0])] = 1
         first, rest = self.order[:_FIRST], self.order[_FIRST:]
         for members in (first, rest):
             self._check()
-            left = np.flatnonzero(active)
+            left = np.flatnonzero((active != 0) & ~doubt.all(axis=1))
             if len(left) and members:
                 self._run(left, members, limits, active, doubt)
 
@@ -183,77 +288,72 @@ class Grading:
         known = dict(self.sheet.limits)
         return np.array([known.get(name, nan) for name in names])
 
-    def _run(
+    def _run(  # noqa: PLR0913, PLR0917 - what is run, and where it is noted
         self,
         left: NDArray[np.intp],
         members: Sequence[int],
         limits: Array,
         active: NDArray[np.uint8],
         doubt: NDArray[np.uint8],
+        watched: tuple[int, Array] = _NOTHING,
     ) -> None:
-        """Run the tunings that are left with some plants."""
+        """Run the tunings that are left with some plants; `watched` is a measure, and where its bounds go."""
         count = ceil(len(left) / lanes.LANES)
         filled = np.resize(left, count * lanes.LANES)
-        tunings = [self.tunings[i] for i in filled.tolist()]
-        constants = self._constants(tunings)
+        constants = np.array([self._constants(filled, step) for step in self.ground.steps])
+        together = constants.reshape(len(constants), count, lanes.LANES, -1).swapaxes(2, 3)
         blocks = grades.Blocks(
-            np.ascontiguousarray(constants.reshape(count, lanes.LANES, -1).swapaxes(1, 2)).reshape(count, -1),
-            self._finals(tunings).reshape(2, len(self.ground.members), count, lanes.LANES),
+            np.ascontiguousarray(together).reshape(len(constants), count, -1),
+            self._finals(filled).reshape(2, len(self.ground.members), count, lanes.LANES),
             np.ones((count, lanes.LANES), dtype=np.uint8),
             np.zeros((count, len(self.ground.members), lanes.LANES), dtype=np.uint8),
-            np.zeros((2, 0, 0, 0)),
+            np.full((2, count, len(self.ground.members), lanes.LANES) if watched[0] >= 0 else (2, 0, 0, 0), nan),
         )
-        course = self._course(members, limits)
+        course = self._course(members, limits)._replace(watched=watched[0])
         filters = (0,) if self.sheet.controller.measurement_filter or self.sheet.controller.notch else ()
         spread_out(lambda begin, end: grades.grade(self.ground.size, filters, course, blocks, begin, end), count)
         active[left] = blocks.active.reshape(-1)[: len(left)]
         doubt[left] |= blocks.doubt.swapaxes(1, 2).reshape(-1, len(self.ground.members))[: len(left)]
+        if watched[0] >= 0:
+            flat = blocks.values.swapaxes(2, 3).reshape(2, -1, len(self.ground.members))
+            watched[1][:] = flat[:, : len(left)]
 
-    def _constants(self, tunings: Sequence[Controller]) -> Array:
-        sheet = self.sheet
-        return np.array(
-            [
-                law_constants(replace(sheet, controller=one), one.sample_time, one.measurement_filter)
-                for one in tunings
-            ]
+    def _constants(self, places: NDArray[np.intp], step: float) -> Array:
+        """Return the constants of the law of some tunings at a step, shape (k, 19)."""
+        controller, some = self.sheet.controller, Numbers(*(one[places] for one in self.numbers))
+        own = law_constants(self.sheet, step, controller.measurement_filter)
+        feedback = 1.0 if controller.feedback else 0.0
+        gains = gain_constants(
+            step, feedback * some.kp, feedback * some.ki, feedback * some.kd, some.filter_time, some.windup_time
         )
+        out = np.tile(np.array(own), (len(places), 1))
+        out[:, : len(gains)] = np.array(gains).T
+        out[:, len(gains)], out[:, len(gains) + 1] = some.b, some.c
+        if not controller.feedback:
+            out[:, len(gains) - 1] = 0.0
+        return out
 
     def _course(self, members: Sequence[int], limits: Array) -> grades.Course:
-        sheet, ground = self.sheet, self.ground
-        times = ground.grid.times()
-        tail = int(np.searchsorted(times, times[-1] - 0.1 * (times[-1] - times[0])))
-        rest = sheet.loop.controlled.resting
+        sheet = self.sheet
         size = max(abs(sheet.trial.reference), abs(sheet.trial.disturbance), 1e-300)
-        common = (rest, float(sheet.sensor.resolution), RUNAWAY * size)
+        common = (sheet.loop.controlled.resting, float(sheet.sensor.resolution), RUNAWAY * size)
         wanted = np.array([(sheet.trial.reference, 0.0, *common), (0.0, sheet.trial.disturbance, *common)])
-        return grades.Course(
-            ground.pace.rows,
-            ground.pace.push,
-            ground.pace.timing,
-            np.array(members, dtype=np.int64),
-            wanted,
-            ground.feedforward,
-            ground.grid.step,
-            sheet.trial.settling_band / 100.0,
-            tail,
-            limits,
-            -1,
-        )
+        band = sheet.trial.settling_band / 100.0
+        return grades.Course(self.ground.speeds, np.array(members, dtype=np.int64), wanted, band, limits, -1)
 
-    def _finals(self, tunings: Sequence[Controller]) -> Array:
+    def _finals(self, places: NDArray[np.intp]) -> Array:
         """Return the exact final values, shape (2, p, t); not a number under a resolution, which leaves none."""
-        members = self.ground.members
-        out = np.full((2, len(members), len(tunings)), nan)
+        members, some = self.ground.members, self.numbers
+        out = np.full((2, len(members), len(places)), nan)
         if self.sheet.sensor.resolution:
             return out
-        known: dict[tuple[bool, float, float], tuple[Array, Array]] = {}
-        for at, one in enumerate(tunings):
-            gains = one.parallel()
-            key = (True, 0.0, 0.0) if has_integral(one) else (False, gains.kp, one.b)
-            if key not in known:
-                ends = family_final_values(replace(self.sheet, controller=one), members)
-                known[key] = (np.array([end.reference for end in ends]), np.array([end.disturbance for end in ends]))
-            out[0, :, at], out[1, :, at] = known[key]
+        integral = some.ki[places] > 0.0
+        keys = np.where(integral, 0.0, np.column_stack((some.kp[places], some.b[places])).T)
+        _, first, which = np.unique(np.column_stack((integral, keys.T)), axis=0, return_index=True, return_inverse=True)
+        for kind, at in enumerate(first.tolist()):
+            ends = family_final_values(replace(self.sheet, controller=self.tunings[places[at]]), members)
+            out[0][:, which == kind] = np.array([end.reference for end in ends])[:, None]
+            out[1][:, which == kind] = np.array([end.disturbance for end in ends])[:, None]
         return out
 
     def _try_margins(self, active: NDArray[np.uint8], doubt: NDArray[np.uint8]) -> None:
@@ -265,24 +365,14 @@ class Grading:
             doubt[active != 0] = 1
             return
         left = np.flatnonzero(active)
-        gains = np.array([self._law(self.tunings[i]) for i in left.tolist()]).reshape(-1, 4)
-        unclear, still = np.zeros((len(left), doubt.shape[1]), dtype=np.uint8), np.ones(len(left), dtype=np.uint8)
+        rows = self._gains()[left]
+        # Neither the weights nor the wind-up time change a margin.
+        gains, which = np.unique(rows, axis=0, return_inverse=True)
+        unclear, still = np.zeros((len(gains), doubt.shape[1]), dtype=np.uint8), np.ones(len(gains), dtype=np.uint8)
         for chains in self.ground.chains:
-            members = np.array(chains.members)
-            spread_out(
-                lambda begin, end, chains=chains, members=members: responses.decide(
-                    chains.w, *chains.at, chains.inverse, members, gains, limits, still, unclear, -1,
-                    np.zeros((2, 0, 0)), begin, end,
-                ),  # fmt: skip
-                len(left),
-            )
-        active[left] = still
-        doubt[left] |= unclear
-
-    @staticmethod
-    def _law(controller: Controller) -> tuple[float, float, float, float]:
-        gains = controller.parallel()
-        return gains.kp, gains.ki, gains.kd, controller.filter_time
+            spread_out(partial(_decide, chains, gains, limits, still, unclear, _NOTHING), len(gains))
+        active[left] = still[which]
+        doubt[left] |= unclear[which]
 
     def _settle_doubts(
         self, found: Classes, active: NDArray[np.uint8], doubt: NDArray[np.uint8], *, settle: bool
@@ -299,3 +389,24 @@ class Grading:
         results = results_of(sheet, [self.ground.members[i] for i in members])
         limits = [limit_result(name, limit, worst_case(BY_NAME[name], results)) for name, limit in sheet.limits]
         return _GRADES[verdict(results, limits)]
+
+
+def _decide(  # noqa: PLR0913, PLR0917 - what a kernel takes, less what its chains hold
+    chains: Chains,
+    gains: Array,
+    limits: Array,
+    active: NDArray[np.uint8],
+    doubt: NDArray[np.uint8],
+    watched: tuple[int, Array],
+    begin: int,
+    end: int,
+) -> None:
+    """Lay limits on the margins of some tunings with the plants of some chains."""
+    members = np.array(chains.members)
+    responses.decide(
+        chains.w, *chains.at, chains.inverse, members, gains, limits, active, doubt, *watched, begin, end
+    )  # fmt: skip
+
+
+def _no_doubt(grading: Grading) -> NDArray[np.uint8]:
+    return np.zeros((len(grading.tunings), len(grading.ground.members)), dtype=np.uint8)

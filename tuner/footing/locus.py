@@ -1,10 +1,10 @@
-"""Where poles cross the border of stability as one gain moves: exact, dead time included, without a simulation.
+"""Where poles cross the border of stability as one gain moves: exact with dead time, without a simulation.
 
-Along one gain q the characteristic function is A + q B (`affine`). On the border, q = -A/B is real at the gains at which a
-pole crosses it: D-decomposition along one parameter (Neimark, 1948; see Ackermann, Robust Control, 1993; both from
-memory). A map that is analytic keeps the right-hand side of a curve on its right-hand side: where the image -A/B of the
-border, run through upwards in frequency, crosses the real axis upwards, the poles for greater q lie beyond the border.
-So each crossing says how many poles come or go, and one count at one gain gives it for all gains.
+Along one gain q the characteristic function is A + q B (`affine`). On the border, q = -A/B is real at the gains at
+which a pole crosses it: D-decomposition along one parameter (Neimark, 1948; see Ackermann, Robust Control, 1993; both
+from memory). A map that is analytic keeps the right-hand side of a curve on its right-hand side: where the image -A/B
+of the border, run through upwards in frequency, crosses the real axis upwards, the poles for greater q lie beyond the
+border. So each crossing says how many poles come or go, and one count at one gain gives it for all gains.
 """
 
 from typing import NamedTuple

@@ -1,7 +1,7 @@
 """Whole rulers: the class at every notch of every gain, and where it changes in between."""
 
 from collections.abc import Callable, Sequence
-from dataclasses import dataclass, replace
+from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import NDArray
@@ -59,8 +59,8 @@ def paint_rulers(
 ) -> tuple[PaintedTrack, ...]:
     """Return each track with the class at all its values and the edges between them.
 
-    The classes are those that `assess` gives with the gain at that value: 'met' is firm, 'missed' soft, 'unstable' lost.
-    An edge of stability is exact; any other is found within 0.5 % of its value.
+    The classes are those that `assess` gives with the gain at that value: 'met' is firm, 'missed' soft, 'unstable'
+    lost. An edge of stability is exact, any other within 0.5 % of its value.
 
     Parameters
     ----------
@@ -99,7 +99,7 @@ class _Painter:
         return tuple(_finished(line) for line in lines)
 
     def _lines(self, tracks: Sequence[Track]) -> list[_Line]:
-        base = counts(self.sheet, self.ground.members).tolist()
+        base = counts(self.sheet, self.ground.members)
         none = np.zeros(0), np.zeros(0, dtype=np.int8)
         return [
             _Line(track, stretches(self.sheet, self.ground.members, track, self.size, base), *none) for track in tracks
@@ -180,7 +180,7 @@ def _between(line: _Line) -> Array:
 
 
 def _still_wide(line: _Line) -> Array:
-    """Return one value in each stretch in which the class changes and that is still too wide: one looked at if any."""
+    """Return one value in each stretch in which the class changes and that is too wide: one looked at if any."""
     found = []
     for low, high in _changes(line):
         if _is_wide(low, high):

@@ -1,25 +1,25 @@
 """For which values of a gain some plant of the family is unstable: whole stretches of a track, not single notches."""
 
 from collections.abc import Sequence
-from dataclasses import dataclass
-from math import sqrt
+from dataclasses import dataclass, replace
 from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
 
-from tuner.footing.affine import MOTIONLESS, coordinate, value_of
+from tuner.footing.affine import INVERSE, MOTIONLESS, coordinate, value_of
 from tuner.footing.chains import Chains, chains_of
 from tuner.footing.classes import Track
 from tuner.footing.locus import Crossings, crossings
 from tuner.model.controller import Controller
 from tuner.model.family import Member
 from tuner.model.sheet import Sheet
-from tuner.simulate.loop import loops_around, loops_of
+from tuner.simulate.loop import loops_of
 from tuner.simulate.poles import family_poles
 from tuner.simulate.traces import Array
 
 Flags = NDArray[np.bool_]
+Counts = NDArray[np.int64]
 
 _CLOSE = 1e-6
 """A value this near to an edge, relatively, is looked at with the poles themselves."""
@@ -57,28 +57,30 @@ class _Counted(NamedTuple):
     """Crossings of one group of chains, and the poles beyond the border at one gain, shape (p,)."""
 
     crossings: Crossings
-    base: NDArray[np.int64]
+    base: Counts
     at: float
 
 
-def counts(sheet: Sheet, members: Sequence[Member]) -> NDArray[np.int64]:
+def counts(sheet: Sheet, members: Sequence[Member]) -> Counts:
     """Return how many poles each plant's loop has on or beyond the border, shape (m,)."""
     return np.array([found.count_unstable for found in family_poles(loops_of(sheet, members))], dtype=np.int64)
 
 
-def stretches(sheet: Sheet, members: Sequence[Member], track: Track, size: int, base: Sequence[int] | None) -> Stretches | None:
+def stretches(
+    sheet: Sheet, members: Sequence[Member], track: Track, size: int, base: Counts | None
+) -> Stretches | None:
     """Return where a track is lost; None when that cannot be told but at every value by itself.
 
     Parameters
     ----------
     size : int
         Of the family.
-    base : sequence of int or None
+    base : ndarray of int, shape (m,), or None
         What `counts` says of the sheet as it is, where that is known.
     """
     controller = sheet.controller
     if not controller.feedback or track.name in MOTIONLESS:
-        known = np.asarray(counts(sheet, members) if base is None else base)
+        known = counts(sheet, members) if base is None else base
         return Stretches(np.zeros(0), np.array([bool(known.any())]))
     usable = track.values[track.values > 0.0]
     if not len(usable):
@@ -87,10 +89,12 @@ def stretches(sheet: Sheet, members: Sequence[Member], track: Track, size: int, 
     if present <= 0.0 or base is None:
         present = present if present > 0.0 else float(usable[len(usable) // 2])
         base = counts(_with(sheet, track.name, present), members)
+    if not controller.sample_time and any(_is_flat(controller, chains) for chains in chains_of(sheet, size)):
+        return None
     groups = [
         _Counted(
             crossings(controller, track.name, chains),
-            np.asarray(base)[list(chains.members)],
+            base[list(chains.members)],
             float(coordinate(track.name, np.array([present]))[0]),
         )
         for chains in chains_of(sheet, size)
@@ -98,9 +102,12 @@ def stretches(sheet: Sheet, members: Sequence[Member], track: Track, size: int, 
     return _stretches(track.name, groups)
 
 
-def _with(sheet: Sheet, name: str, value: float) -> Sheet:
-    from dataclasses import replace
+def _is_flat(controller: Controller, chains: Chains) -> bool:
+    """Return whether the gain of a continuous loop may stay above nothing for ever: its poles are endless."""
+    return chains.rows.excess <= (1 if controller.parallel().kd and not controller.filter_time else 0)
 
+
+def _with(sheet: Sheet, name: str, value: float) -> Sheet:
     return replace(sheet, controller=sheet.controller.with_value(name, value))
 
 
@@ -117,7 +124,7 @@ def _stretches(name: str, groups: Sequence[_Counted]) -> Stretches | None:
     changes = np.flatnonzero(lost[1:] != lost[:-1])
     edges = value_of(name, places[changes])
     kept = np.append(lost[:1], lost[1:][changes])
-    if len(edges) > 1 and edges[0] > edges[-1] or (name == "ti"):
+    if name in INVERSE:
         edges, kept = edges[::-1], kept[::-1]
     return Stretches(np.ascontiguousarray(edges), np.ascontiguousarray(kept))
 

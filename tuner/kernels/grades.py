@@ -5,7 +5,6 @@ soon as every tuning in it has missed a limit with some plant: most of a ruler i
 """
 
 import math
-from collections.abc import Callable
 from typing import NamedTuple
 
 import numpy as np
@@ -18,7 +17,38 @@ from tuner.kernels.readings import MEASURES, REFERENCE_COUNT, ROUNDING, WORK_ROW
 Array = NDArray[np.float64]
 Integers = NDArray[np.int64]
 Flags = NDArray[np.uint8]
-Compiled = Callable[..., object]
+
+BEYOND = 0.15
+"""Share of the change between two steps that the extrapolation may be off."""
+
+EXTRAPOLATED = 1e-3
+"""What the extrapolated curves of the assessment may be off, as a share; in percentage points a tenth."""
+
+PERCENTS = (0, 4, 5)
+"""Measures in percent."""
+
+
+class Speed(NamedTuple):
+    """A family at one step of the law.
+
+    Parameters
+    ----------
+    rows, push, timing : ndarray
+        See `simulate.pace.Pace`.
+    feedforward : ndarray, shape (2, s)
+        For the reference and the disturbance run.
+    spacing : float
+        Time between points.
+    tail : int
+        First point of the last tenth of the runs.
+    """
+
+    rows: Array
+    push: Array
+    timing: Integers
+    feedforward: Array
+    spacing: float
+    tail: int
 
 
 class Course(NamedTuple):
@@ -26,32 +56,25 @@ class Course(NamedTuple):
 
     Parameters
     ----------
-    rows, push, timing : ndarray
-        The family, see `simulate.pace.Pace`.
+    speeds : tuple of Speed
+        One for a sampled controller. For a continuous one two, the second at half the step of the first, so that what
+        comes of them can be extrapolated to no step at all (Richardson's extrapolation).
     order : ndarray of int, shape (q,)
         Plants to try, in this order.
     wanted : ndarray, shape (2, 5)
         See `lanes.run`, for the reference and the disturbance run.
-    feedforward : ndarray, shape (2, s)
-    spacing, band : float
-        Time between points; settling band, 0 to 1.
-    tail : int
-        First point of the last tenth of the runs.
+    band : float
+        Settling band, 0 to 1.
     limits : ndarray, shape (13,)
         Largest value of each measure of `readings.MEASURES`; NaN for none.
     watched : int
         Measure whose bounds are kept for every plant, and for whose sake no block is left; -1 for none.
     """
 
-    rows: Array
-    push: Array
-    timing: Integers
+    speeds: tuple[Speed, ...]
     order: Integers
     wanted: Array
-    feedforward: Array
-    spacing: float
     band: float
-    tail: int
     limits: Array
     watched: int
 
@@ -61,8 +84,8 @@ class Blocks(NamedTuple):
 
     Parameters
     ----------
-    constants : ndarray, shape (g, 19 lanes)
-        See `lanes.run`.
+    constants : ndarray, shape (v, g, 19 lanes)
+        See `lanes.run`; for each of v speeds.
     finals : ndarray, shape (2, p, g, lanes)
         Exact final values of both runs; NaN for none.
     active : ndarray of uint8, shape (g, lanes)
@@ -81,16 +104,9 @@ class Blocks(NamedTuple):
 
 
 @compiled
-def _asked(limits: Array, watched: int, begin: int, end: int) -> bool:
-    """Return whether any measure of a run is asked for."""
-    found = begin <= watched < end
-    for measure in range(begin, end):
-        found |= not math.isnan(limits[measure])
-    return found
-
-
-@compiled
-def _decide(limits: Array, begin: int, end: int, low: Array, high: Array, active: Flags, doubt: Flags) -> bool:
+def _decide(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
+    limits: Array, begin: int, end: int, low: Array, high: Array, active: Flags, doubt: Flags
+) -> bool:
     """Lay the limits over the bounds of a block; return whether anything is left to look at."""
     left = False
     for i in range(LANES):
@@ -111,7 +127,80 @@ def _decide(limits: Array, begin: int, end: int, low: Array, high: Array, active
 
 
 @compiled
-def grade(size: Size, filters: Size, course: Course, blocks: Blocks, begin: int, end: int) -> None:
+def _extrapolate(begin: int, end: int, coarse: Array, low: Array, high: Array) -> None:
+    """Lead bounds at two steps, one half of the other, to those at none; they then hold for a good extrapolation too.
+
+    Parameters
+    ----------
+    coarse : ndarray, shape (2, 13, lanes)
+        Bounds at the longer step.
+    """
+    for measure in range(begin, end):
+        for i in range(LANES):
+            a, b = 0.5 * (coarse[0, measure, i] + coarse[1, measure, i]), 0.5 * (low[measure, i] + high[measure, i])
+            if math.isfinite(a) and math.isfinite(b):
+                wide = 0.5 * (coarse[1, measure, i] - coarse[0, measure, i]) + (high[measure, i] - low[measure, i])
+                wide += BEYOND * abs(b - a) + EXTRAPOLATED * (abs(b) + (100.0 if measure in PERCENTS else 0.0))
+                low[measure, i], high[measure, i] = 2.0 * b - a - wide, 2.0 * b - a + wide
+            elif not (coarse[0, measure, i] == low[measure, i] and coarse[1, measure, i] == high[measure, i]):
+                low[measure, i], high[measure, i] = -math.inf, math.inf
+
+
+@compiled
+def _both(  # noqa: PLR0913, PLR0917 - what a run takes
+    size: Size,
+    filters: Size,
+    course: Course,
+    blocks: Blocks,
+    which: int,
+    g: int,
+    m: int,
+    asked: Flags,
+    scratch: tuple[Array, Array, Array, Array, Array],
+    low: Array,
+    high: Array,
+) -> None:
+    """Run a block with a plant, the reference run or the disturbance run, and bound its measures."""
+    y, u, state, work, coarse = scratch
+    totals = state[(2 * len(size) + 2 + 8) * LANES :]
+    coarse_bounds = coarse.reshape((2, len(MEASURES), LANES))
+    begin, end = (0, REFERENCE_COUNT) if which == 0 else (REFERENCE_COUNT, len(MEASURES))
+    for v in range(len(course.speeds)):
+        speed = course.speeds[v]
+        points, samples = speed.timing[m, 2], speed.timing[m, 3]
+        run(
+            size, filters, blocks.constants[v, g], speed.rows[m], speed.push[m], speed.timing[m],
+            course.wanted[which], speed.feedforward[which], y, u, state,
+        )  # fmt: skip
+        if which == 0:
+            reference_bounds(
+                y, points, samples, speed.tail, speed.spacing, totals, blocks.finals[0, m, g],
+                course.wanted[0, 0], course.band, asked, work, low, high,
+            )  # fmt: skip
+        else:
+            disturbance_bounds(
+                y,
+                points,
+                speed.tail,
+                speed.spacing,
+                totals,
+                blocks.finals[1, m, g],
+                course.band,
+                asked,
+                work,
+                low,
+                high,
+            )
+        if v == 0 and len(course.speeds) > 1:
+            coarse_bounds[0, begin:end], coarse_bounds[1, begin:end] = low[begin:end], high[begin:end]
+        if v > 0:
+            _extrapolate(begin, end, coarse_bounds, low, high)
+
+
+@compiled
+def grade(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
+    size: Size, filters: Size, course: Course, blocks: Blocks, begin: int, end: int
+) -> None:
     """Run blocks `begin` to `end` with the plants of `course.order`.
 
     Parameters
@@ -119,49 +208,28 @@ def grade(size: Size, filters: Size, course: Course, blocks: Blocks, begin: int,
     size, filters : tuple of int
         See `lanes.run`.
     """
-    points, samples = course.timing[0, 2], course.timing[0, 3]
-    y, u = np.empty(points * LANES), np.empty(samples * LANES)
-    state = np.empty((2 * len(size) + 2 + 12) * LANES)
-    totals = state[(2 * len(size) + 2 + 8) * LANES :]
-    work = np.empty(WORK_ROWS * LANES)
+    points, samples = course.speeds[-1].timing[0, 2], course.speeds[-1].timing[0, 3]
+    scratch = (
+        np.empty(points * LANES), np.empty(samples * LANES), np.empty((2 * len(size) + 2 + 12) * LANES),
+        np.empty(WORK_ROWS * LANES), np.empty(2 * len(MEASURES) * LANES),
+    )  # fmt: skip
     low, high = np.zeros((len(MEASURES), LANES)), np.zeros((len(MEASURES), LANES))
-    asked = ~np.isnan(course.limits)
-    if course.watched >= 0:
-        asked[course.watched] = True
-    first = _asked(course.limits, course.watched, 0, REFERENCE_COUNT)
-    second = _asked(course.limits, course.watched, REFERENCE_COUNT, len(MEASURES))
+    asked = np.zeros(len(MEASURES), dtype=np.uint8)
+    for measure in range(len(MEASURES)):
+        asked[measure] = 1 if not math.isnan(course.limits[measure]) or measure == course.watched else 0
+    first, second = asked[:REFERENCE_COUNT].any(), asked[REFERENCE_COUNT:].any()
     for g in range(begin, end):
         for q in range(course.order.shape[0]):
             m = course.order[q]
-            left = course.watched >= 0
-            for i in range(LANES):
-                left |= blocks.active[g, i] != 0
-            if not left:
+            if course.watched < 0 and not blocks.active[g].any():
                 break
+            left = True
             if first:
-                run(
-                    size, filters, blocks.constants[g], course.rows[m], course.push[m], course.timing[m],
-                    course.wanted[0], course.feedforward[0], y, u, state,
-                )  # fmt: skip
-                reference_bounds(
-                    y, points, samples, course.tail, course.spacing, totals, blocks.finals[0, m, g],
-                    course.wanted[0, 0], course.band, asked, work, low, high,
-                )  # fmt: skip
-                left = _decide(
-                    course.limits, 0, REFERENCE_COUNT, low, high, blocks.active[g], blocks.doubt[g, m]
-                ) or (course.watched >= REFERENCE_COUNT)
-            if second and left:
-                run(
-                    size, filters, blocks.constants[g], course.rows[m], course.push[m], course.timing[m],
-                    course.wanted[1], course.feedforward[1], y, u, state,
-                )  # fmt: skip
-                disturbance_bounds(
-                    y, points, course.tail, course.spacing, totals, blocks.finals[1, m, g], course.band, asked, work,
-                    low, high,
-                )  # fmt: skip
-                _decide(
-                    course.limits, REFERENCE_COUNT, len(MEASURES), low, high, blocks.active[g], blocks.doubt[g, m]
-                )
+                _both(size, filters, course, blocks, 0, g, m, asked, scratch, low, high)
+                left = _decide(course.limits, 0, REFERENCE_COUNT, low, high, blocks.active[g], blocks.doubt[g, m])
+            if second and (left or course.watched >= REFERENCE_COUNT):
+                _both(size, filters, course, blocks, 1, g, m, asked, scratch, low, high)
+                _decide(course.limits, REFERENCE_COUNT, len(MEASURES), low, high, blocks.active[g], blocks.doubt[g, m])
             if course.watched >= 0:
                 for i in range(LANES):
                     blocks.values[0, g, m, i] = low[course.watched, i]

@@ -115,7 +115,9 @@ def _combine(size: Size, state: Array, into: int, row: Array, constant: float) -
 
 
 @compiled_lanes
-def _show(size: Size, state: Array, y: Array, into: int, row: Array, constant: float) -> None:
+def _show(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
+    size: Size, state: Array, y: Array, into: int, row: Array, constant: float
+) -> None:
     """Write a combination of the states and both efforts of every lane to the output."""
     for i in range(LANES):
         total = constant
@@ -141,7 +143,7 @@ def _look(size: Size, state: Array, y: Array, at: int, ceiling: float) -> bool:
 
 
 @compiled_lanes
-def run(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
+def run(  # noqa: C901, PLR0913, PLR0917 - the whole loop in one place, so that it can be read against the law
     size: Size,
     filters: Size,
     constants: Array,

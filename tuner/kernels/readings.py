@@ -1,9 +1,9 @@
 """Measures of the runs of a block of lanes, each held between two bounds that follow from the points alone.
 
 What the measures of a run are exactly takes cubics and parabolas between the points; where the limit lies outside the
-bounds, they need not be laid. Bounds hold for the exact measures of the same points, see `measure.curve`: a crossing lies
-between two points, a peak at most half the largest bend above the highest one, an area within what the pieces that change
-sign can differ by. A measure that does not exist is infinite: minus where that is good.
+bounds, they need not be laid. Bounds hold for the exact measures of the same points, see `measure.curve`: a crossing
+lies between two points, a peak at most half the largest bend above the highest one, an area within what the pieces that
+change sign can differ by. A measure that does not exist is infinite: minus where that is good.
 
 Plain loops over the points, inside of each of which all lanes are looked at with one instruction for several.
 """
@@ -17,6 +17,7 @@ from tuner.kernels.compiled import compiled, compiled_lanes
 from tuner.kernels.lanes import AWAY, LANES, LIMITED, PEAK, TRAVEL
 
 Array = NDArray[np.float64]
+Flags = NDArray[np.uint8]
 
 MEASURES = (
     "overshoot",
@@ -148,7 +149,7 @@ def _area(y: Array, points: int, centre: float, work: Array) -> None:
 
 
 @compiled
-def reference_bounds(  # noqa: PLR0913, PLR0917, C901 - every measure of a run in one place, to be read beside `measure`
+def reference_bounds(  # noqa: C901, PLR0912, PLR0913, PLR0917 - every measure of a run in one place, to be read beside `measure`
     y: Array,
     points: int,
     samples: int,
@@ -158,7 +159,7 @@ def reference_bounds(  # noqa: PLR0913, PLR0917, C901 - every measure of a run i
     exact: Array,
     step: float,
     band: float,
-    asked: Array,
+    asked: Flags,
     work: Array,
     low: Array,
     high: Array,
@@ -181,7 +182,7 @@ def reference_bounds(  # noqa: PLR0913, PLR0917, C901 - every measure of a run i
         Of the reference; not 0.
     band : float
         Settling band, 0 to 1.
-    asked : ndarray of bool, shape (13,)
+    asked : ndarray of uint8, shape (13,)
         Measures to bound.
     work : ndarray, shape (12 lanes,)
         Scratch.
@@ -232,7 +233,7 @@ def reference_bounds(  # noqa: PLR0913, PLR0917, C901 - every measure of a run i
 
 
 @compiled
-def disturbance_bounds(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
+def disturbance_bounds(  # noqa: C901, PLR0913, PLR0917 - kernels take bare numbers and arrays
     y: Array,
     points: int,
     tail: int,
@@ -240,7 +241,7 @@ def disturbance_bounds(  # noqa: PLR0913, PLR0917 - kernels take bare numbers an
     totals: Array,
     exact: Array,
     band: float,
-    asked: Array,
+    asked: Flags,
     work: Array,
     low: Array,
     high: Array,
@@ -351,4 +352,5 @@ def _doubtful(y: Array, points: int, totals: Array, target: float, lane: int) ->
         return False
     end = abs(y[(points - 1) * LANES + lane] - target)
     middle = abs(y[points // 2 * LANES + lane] - target)
-    return end > abs(y[lane] - target) and end > 2.0 * middle
+    leaves: bool = end > abs(y[lane] - target) and end > 2.0 * middle
+    return leaves

@@ -1,11 +1,11 @@
 """Margins of many tunings read off a frequency grid that all share, each held between two bounds.
 
-Where a margin is exactly takes Newton's method between the points (`crossings`); where its limit lies outside the bounds
-that the points give, that need not be done. Peaks are at least as high as at any point, crossings lie between two
-points; how far beyond is told from how much the points next to them differ.
+Where a margin is exactly takes Newton's method between the points (`crossings`); where its limit lies outside the
+bounds that the points give, that need not be done. Peaks are at least as high as at any point, crossings lie between
+two points; how far beyond is told from how much the points next to them differ.
 
-Plain loops because each point is a handful of operations on numbers that a tuning changes; as arrays over tunings, plants
-and frequencies they would not fit the cache.
+Plain loops because each point is a handful of operations on numbers that a tuning changes; as arrays over tunings,
+plants and frequencies they would not fit the cache.
 """
 
 import math
@@ -37,11 +37,14 @@ _SHARE = 0.35
 _ALMOST = 0.05
 """A curve that turns back this near to where it would cross may cross between two points."""
 
+_BACK = 1.0 - 1e-6
+"""A curve has turned back when it is farther away by more than rounding: at the ends of a grid points may coincide."""
+
 _FINAL = 1e-12
 
 
 @compiled
-def bound(  # noqa: C901, PLR0912, PLR0913, PLR0915, PLR0917 - one walk along the grid, which finds all of them
+def bound(  # noqa: PLR0913, PLR0917 - one walk along the grid, which finds all of them
     w: Array,
     x: ComplexArray,
     integral: ComplexArray,
@@ -70,8 +73,8 @@ def bound(  # noqa: C901, PLR0912, PLR0913, PLR0915, PLR0917 - one walk along th
     for measure in range(3):
         low[measure] = high[measure] = math.inf
     low[BANDWIDTH] = high[BANDWIDTH] = -math.inf
-    before, size_before, s_before = 0j, 0.0, 0.0
-    turned, turned_size = 0.0, 0.0
+    earlier, before = 0j, 0j
+    size_earlier, size_before, s_before = 0.0, 0.0, 0.0
     for i in range(count):
         law = kp + ki * integral[i]
         if kd != 0.0:
@@ -93,24 +96,29 @@ def bound(  # noqa: C901, PLR0912, PLR0913, PLR0915, PLR0917 - one walk along th
                 low[BANDWIDTH] = w[i - 1] + step * max(share - _SHARE, 0.0)
                 high[BANDWIDTH] = w[i - 1] + step * min(share + _SHARE, 1.0)
         if i > 1:
-            turned_now = abs(loop.imag / loop.real) if loop.real < 0.0 else 1.0
-            turned_before = abs(before.imag / before.real) if before.real < 0.0 else 1.0
-            if turned_before < _ALMOST and turned_before <= min(turned, turned_now) and before.real > -1.0:
-                low[GAIN] = min(low[GAIN], 1.0)
-            near = abs(math.log(max(size_before, 1e-300)))
-            if near < _ALMOST and near <= min(
-                abs(math.log(max(turned_size, 1e-300))), abs(math.log(max(size, 1e-300)))
-            ):
-                low[PHASE] = min(low[PHASE], 0.0)
-                low[DELAY] = min(low[DELAY], 0.0)
-        turned = abs(before.imag / before.real) if before.real < 0.0 else 1.0
-        turned_size = size_before
-        before, size_before, s_before = loop, size, s
+            _touching(earlier, before, loop, size_earlier, size_before, size, low)
+        earlier, before, s_before = before, loop, s
+        size_earlier, size_before = size_before, size
     if before.real < 0.0 and before.real > -1.0 and abs(before.imag) < 1e-3 * abs(before.real):
         low[GAIN] = min(low[GAIN], 1.0 / abs(before) * (1.0 - 1e-3))
         high[GAIN] = min(high[GAIN], 1.0 / abs(before) * (1.0 + 1e-3))
     low[SENSITIVITY], high[SENSITIVITY] = _peak(work[0])
     low[COMPLEMENTARY], high[COMPLEMENTARY] = _peak(work[1])
+
+
+@compiled
+def _touching(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
+    earlier: complex, before: complex, after: complex, size_earlier: float, size_before: float, size: float, low: Array
+) -> None:
+    """Leave open whether a curve that turns back just before it would cross does cross between the points."""
+    if before.real < 0.0 and before.real > -1.0 and (earlier.imag > 0.0) == (before.imag > 0.0) == (after.imag > 0.0):
+        near = abs(before.imag / before.real)
+        if near < _ALMOST and near < _BACK * min(abs(earlier.imag / earlier.real), abs(after.imag / after.real)):
+            low[GAIN] = min(low[GAIN], 1.0)
+    over = 1.0 < size_before < min(1.0 + _ALMOST, _BACK * size_earlier, _BACK * size)
+    under = max(1.0 - _ALMOST, size_earlier / _BACK, size / _BACK) < size_before < 1.0
+    if over or under:
+        low[PHASE], low[DELAY] = 0.0, 0.0
 
 
 @compiled

@@ -1,8 +1,11 @@
 """Gains and times, as an engineer gives them, made into the constants that the law multiplies with."""
 
-from math import tan
+from math import inf, tan
 from sys import float_info
-from typing import NamedTuple
+from typing import Generic, NamedTuple, TypeVar
+
+import numpy as np
+from numpy.typing import NDArray
 
 UNLIMITED = float_info.max
 """Stands for an absent limit: a finite number, so that every target language can write it."""
@@ -30,6 +33,27 @@ class Constants(NamedTuple):
     notch_a2: float
     resting_measurement: float
     resting_effort: float
+
+
+Number = TypeVar("Number", float, NDArray[np.float64])
+
+
+class GainConstants(NamedTuple, Generic[Number]):
+    """The constants that gains and times make, the first of `Constants`; arrays for many tunings."""
+
+    proportional_gain: Number
+    integral_gain: Number
+    derivative_gain: Number
+    derivative_decay: Number
+    windup_gain: Number
+
+
+def gain_constants(  # noqa: PLR0913, PLR0917 - one argument for each number that an engineer gives
+    sample_time: float, kp: Number, ki: Number, kd: Number, filter_time: Number, windup_time: Number
+) -> GainConstants[Number]:
+    """Make gains and times into constants; see `bake`. An infinite wind-up time is none."""
+    span = filter_time + sample_time
+    return GainConstants(kp, ki * sample_time, kd / span, filter_time / span, sample_time / windup_time)
 
 
 class NotchCoefficients(NamedTuple):
@@ -114,13 +138,8 @@ def bake(  # noqa: PLR0913 - one argument for each number that an engineer gives
     Constants
         In the order in which the law takes them.
     """
-    span = filter_time + sample_time
     return Constants(
-        proportional_gain=kp,
-        integral_gain=ki * sample_time,
-        derivative_gain=kd / span,
-        derivative_decay=filter_time / span,
-        windup_gain=0.0 if windup_time is None else sample_time / windup_time,
+        *gain_constants(sample_time, kp, ki, kd, filter_time, inf if windup_time is None else windup_time),
         b=b,
         c=c,
         action=action,

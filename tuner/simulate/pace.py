@@ -13,9 +13,9 @@ from tuner.simulate.wiring import Wired
 class Pace(NamedTuple):
     """A family of p plants over one sample of m points, n states.
 
-    During sample k the effort that acts is a = u[k - q - 1] up to some point and b = u[k - q] from there on, q being the
-    whole samples of dead time. All that happens until the next sample is a combination of the state at the sample, of a
-    and b, and of what the disturbance adds.
+    During sample k the effort that acts is a = u[k - q - 1] up to some point and b = u[k - q] from there on, q being
+    the whole samples of dead time. All that happens until the next sample is a combination of the state at the sample,
+    of a and b, and of what the disturbance adds.
 
     Parameters
     ----------
@@ -89,7 +89,7 @@ def _composed(
 
 
 def _disturbance(shape: tuple[int, ...], order: int, arrives: NDArray[np.int64], step: int) -> Array:
-    """Return the unit disturbance that acts from a step of the sample on, as a row; -1 is the step before the sample."""
+    """Return the unit disturbance that acts from a step of the sample on, as a row; -1 is the step before it."""
     row = np.zeros(shape)
     row[:, order + 3] = step >= arrives
     row[:, order + 4] = 1.0

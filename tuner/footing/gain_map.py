@@ -1,0 +1,93 @@
+"""Two gains at once: the class at every pair of their values, and what one measure comes to there."""
+
+from collections.abc import Callable
+from dataclasses import dataclass, replace
+
+import numpy as np
+
+from tuner.footing.classes import LOST, Classes, Overtaken, Track, never
+from tuner.footing.grading import Grading, ground_of
+from tuner.footing.stability import Flags, stretches
+from tuner.model.family import FAMILY_SIZE
+from tuner.model.sheet import Sheet
+from tuner.simulate.traces import Array
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class GainMap:
+    """Classes over two gains.
+
+    Parameters
+    ----------
+    x, y : Track
+        The gains, of nx and ny values.
+    classes : ndarray of int, shape (ny, nx)
+    measure : str
+        Which measure `worst` is of; empty for none.
+    worst : ndarray, shape (ny, nx)
+        Its worst value over the family; not a number where it is lost, or the measure does not exist.
+    """
+
+    x: Track
+    y: Track
+    classes: Classes
+    measure: str
+    worst: Array
+
+
+def paint_map(  # noqa: PLR0913, PLR0917 - the question as it is asked
+    sheet: Sheet,
+    x: Track,
+    y: Track,
+    measure: str = "",
+    family_size: int = FAMILY_SIZE,
+    stop: Callable[[], bool] = never,
+) -> GainMap:
+    """Return the class at every pair of values of two gains, as `assess` gives it.
+
+    Parameters
+    ----------
+    sheet : Sheet
+        What is held; its own values of the two gains do not matter.
+    measure : str
+        A measure to tell the worst value of, within the bounds that the points of a trial give; empty for none.
+    family_size : int
+        Plants to judge by.
+    stop : callable
+        Asked now and then; the question is given up when it returns true.
+
+    Raises
+    ------
+    LoopError
+        When a loop cannot be computed, with the reason.
+    Overtaken
+        When `stop` said so.
+    """
+    ground = ground_of(sheet, family_size)
+    lost, unsure = _lost(sheet, x, y, family_size, stop)
+    tunings = [
+        sheet.controller.with_value(y.name, up).with_value(x.name, across)
+        for up in y.values.tolist()
+        for across in x.values.tolist()
+    ]
+    grading = Grading(sheet, ground, tunings, [*range(1, len(ground.members)), 0], stop)
+    classes = grading.classes(lost.ravel(), unsure.ravel())
+    worst = grading.watch(measure, classes != LOST) if measure else np.full(len(tunings), np.nan)
+    return GainMap(x, y, classes.reshape(lost.shape), measure, worst.reshape(lost.shape))
+
+
+def _lost(sheet: Sheet, x: Track, y: Track, size: int, stop: Callable[[], bool]) -> tuple[Flags, Flags]:
+    """Return where some plant is unstable and where that is not sure, row by row, each a track of its own."""
+    members = ground_of(sheet, size).members
+    lost, unsure = (
+        np.zeros((len(y.values), len(x.values)), dtype=bool),
+        np.ones((len(y.values), len(x.values)), dtype=bool),
+    )
+    for row, value in enumerate(y.values.tolist()):
+        if stop():
+            raise Overtaken("a newer question has come")
+        held = replace(sheet, controller=sheet.controller.with_value(y.name, value))
+        known = stretches(held, members, x, size, None)
+        if known is not None:
+            lost[row], unsure[row] = known.at(x.values), known.unsure(x.values) | (x.values <= 0.0)
+    return lost, unsure
