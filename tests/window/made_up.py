@@ -102,8 +102,8 @@ def _traces(asked: Sheet, damping: float, natural: float) -> Traces:
 
 
 def _step(t: Array, damping: float, natural: float) -> Array:
-    """Return the unit step answer of natural^2 / (s^2 + 2 damping natural s + natural^2), damping below 1."""
-    held = min(damping, 0.999)
+    """Return the unit step answer of natural^2 / (s^2 + 2 damping natural s + natural^2), damping held within 1."""
+    held = min(max(damping, -0.999), 0.999)
     rate, ring = held * natural, natural * sqrt(1.0 - held**2)
     return 1.0 - np.exp(-rate * t) * (np.cos(ring * t) + rate / ring * np.sin(ring * t))
 

@@ -9,6 +9,8 @@ import numpy as np
 from tuner.footing.classes import FIRM, LOST, SOFT, WORDS, Edge, Overtaken, PaintedTrack, Track, painted
 from tuner.model.sheet import Sheet
 
+Stop = Callable[[], bool]
+
 SOFT_FROM, LOST_FROM = 2.0, 3.5
 """Values of kp, of whichever track."""
 
@@ -37,11 +39,11 @@ class Painting:
         Called before every painting, with its `stop`; a test makes it wait there.
     """
 
-    hold: Callable[[Callable[[], bool]], None] = lambda _stop: None
+    hold: Callable[[Stop], None] = lambda _stop: None
     asked: list[tuple[float, tuple[str, ...]]] = field(default_factory=list)
     threads: set[int] = field(default_factory=set)
 
-    def __call__(self, sheet: Sheet, tracks: Sequence[Track], *, stop: Callable[[], bool]) -> tuple[PaintedTrack, ...]:
+    def __call__(self, sheet: Sheet, tracks: Sequence[Track], *, stop: Stop) -> tuple[PaintedTrack, ...]:
         """Return the painted tracks."""
         self.threads.add(threading.get_ident())
         self.asked.append((sheet.controller.gain_1, tuple(track.name for track in tracks)))

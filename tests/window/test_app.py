@@ -9,7 +9,7 @@ from PySide6.QtCore import QTimer
 from PySide6.QtWidgets import QApplication
 from pytestqt.qtbot import QtBot
 
-from tests.window import made_up
+from tests.window import made_up, made_up_footing
 from tests.window.test_sheet_files import BAD, GOOD
 from tests.window.windows import Answers
 from tuner.errors import SheetError
@@ -25,6 +25,8 @@ ROOT = Path(__file__).parents[2]
 @pytest.fixture(autouse=True)
 def _made_up_judge(monkeypatch: pytest.MonkeyPatch) -> None:
     monkeypatch.setattr(app, "_judge", made_up.judge)
+    monkeypatch.setattr(app, "_paint_rulers", made_up_footing.Painting())
+    monkeypatch.setattr(app, "_reason_at", made_up_footing.Reasons())
     monkeypatch.setattr(sys, "excepthook", sys.excepthook)
 
 
@@ -34,6 +36,21 @@ def test_a_sample_becomes_a_sheet_without_a_file() -> None:
         assert document.path is None
         assert document.sheet.loop.title == "Product heater outlet"
         assert not document.dirty
+
+
+def test_the_rulers_are_painted_after_the_first_answer(qtbot: QtBot, qapp: QApplication) -> None:
+    """The footing sleeps until the first verdict is shown, then paints every ruler; a close ends its threads."""
+    window, wiring = built(qapp, opened(None), Answers(unsaved="discard"))
+    rulers = window.rulers.rulers.values()
+    assert wiring.footing is not None
+    wiring.footing.painted.ask()
+    assert wiring.footing.painted.painting is None
+    window.show()
+    window.start()
+    qtbot.waitUntil(lambda: all(ruler.painted is not None for ruler in rulers))
+    assert window.shown is not None
+    window.close()
+    window.deleteLater()
 
 
 def test_a_sheet_keeps_its_file(tmp_path: Path) -> None:

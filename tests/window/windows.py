@@ -5,13 +5,14 @@ from contextlib import contextmanager
 from pathlib import Path
 from typing import TypeVar, cast
 
-from tests.window import made_up
+from tests.window import made_up, made_up_footing
 from tuner.session.document import Document
 from tuner.window.app import Wiring, wire
 from tuner.window.asking import Asking, LeftBehind, Unsaved
 from tuner.window.editors import build_editors
 from tuner.window.main_window import MainWindow
-from tuner.window.rulers import build_rulers
+from tuner.window.rulers import build_rulers, keep_painted
+from tuner.window.rulers.painting import PaintRulers, ReasonAt
 from tuner.window.shown import Judge
 from tuner.window.theme import Theme
 from tuner.window.worker import Assessor
@@ -74,20 +75,25 @@ class Answers(Asking):
 
 
 @contextmanager
-def opened(
+def opened(  # noqa: PLR0913 - each is what some test is about
     document: Document | None = None,
     asking: Asking | None = None,
     *,
     judge: Judge = made_up.judge,
     synchronous: bool = True,
     theme: Theme | None = None,
+    paint: PaintRulers | None = None,
+    reason_at: ReasonAt | None = None,
 ) -> Iterator[tuple[MainWindow, Wiring]]:
     """Open a window on a made-up loop, and close it whatever happens."""
     held = document or Document(made_up.sheet())
     look = theme or Theme("light")
     assessor = Assessor(judge, made_up.draw, synchronous=synchronous)
-    window = MainWindow(held, look, assessor, build_editors(held, look), build_rulers(held, look))
-    wiring = wire(window, asking or Answers(unsaved="discard"))
+    rulers = build_rulers(held, look)
+    window = MainWindow(held, look, assessor, build_editors(held, look), rulers)
+    painting, reasons = paint or made_up_footing.Painting(), reason_at or made_up_footing.Reasons()
+    footing = keep_painted(held, rulers, painting, reasons, synchronous=synchronous)
+    wiring = wire(window, asking or Answers(unsaved="discard"), footing)
     window.resize(1280, 800)
     window.show()
     if synchronous:
@@ -96,6 +102,7 @@ def opened(
         yield window, wiring
     finally:
         wiring.keeping.end()
+        footing.close()
         assessor.close()
         window.hide()
         window.deleteLater()
