@@ -157,6 +157,13 @@ def numbers_of(tunings: Sequence[Controller]) -> Numbers:
     return Numbers(*np.array(rows).reshape(-1, 7).T)
 
 
+def exactly(sheet: Sheet, ground: Ground, tuning: Controller, members: Sequence[int]) -> int:
+    """Return the class of one tuning with some plants of the family, as the assessment has it."""
+    results = results_of(replace(sheet, controller=tuning), [ground.members[i] for i in members])
+    limits = [limit_result(name, limit, worst_case(BY_NAME[name], results)) for name, limit in sheet.limits]
+    return _GRADES[verdict(results, limits)]
+
+
 @dataclass(slots=True, eq=False)
 class Grading:
     """Tunings being graded.
@@ -179,6 +186,7 @@ class Grading:
     order: Sequence[int]
     stop: Callable[[], bool] = never
     numbers: Numbers = field(init=False)
+    doubts: dict[int, list[int]] = field(default_factory=dict)
 
     def __post_init__(self) -> None:
         """Take the numbers of the tunings out, for what looks at all of them at once."""
@@ -187,7 +195,8 @@ class Grading:
     def classes(self, lost: Flags, unsure: Flags, *, settle: bool = True) -> Classes:
         """Return the class of every tuning, shape (t,), given which are lost and of which that is not sure.
 
-        Those that bounds leave in doubt are unknown, unless they are to be settled.
+        Those that bounds leave in doubt are unknown, unless they are to be settled: `doubts` then says with which
+        plants.
         """
         found = np.where(lost, LOST, FIRM).astype(np.int8)
         active = (~lost & ~unsure).astype(np.uint8)
@@ -197,9 +206,13 @@ class Grading:
             self._try_trials(active, doubt)
             self._try_margins(active, doubt)
             found[(looked_at != 0) & (active == 0)] = SOFT
-            self._settle_doubts(found, active, doubt, settle=settle)
-        for at in np.flatnonzero(unsure).tolist():
-            found[at] = self._exactly(at, range(len(self.ground.members)))
+            self._note_doubts(found, active, doubt)
+        found[unsure] = UNKNOWN
+        self.doubts |= {at: list(range(len(self.ground.members))) for at in np.flatnonzero(unsure).tolist()}
+        if settle:
+            for at, members in self.doubts.items():
+                self._check()
+                found[at] = exactly(self.sheet, self.ground, self.tunings[at], members)
         return found
 
     def watch(self, measure: str, stable: Flags) -> Array:
@@ -374,21 +387,12 @@ class Grading:
         active[left] = still[which]
         doubt[left] |= unclear[which]
 
-    def _settle_doubts(
-        self, found: Classes, active: NDArray[np.uint8], doubt: NDArray[np.uint8], *, settle: bool
-    ) -> None:
+    def _note_doubts(self, found: Classes, active: NDArray[np.uint8], doubt: NDArray[np.uint8]) -> None:
         if self._has_limit(("damping",)):
             doubt[active != 0] = 1
         for at in np.flatnonzero((active != 0) & doubt.any(axis=1)).tolist():
-            self._check()
-            found[at] = UNKNOWN if not settle else self._exactly(at, np.flatnonzero(doubt[at]).tolist())
-
-    def _exactly(self, at: int, members: Sequence[int]) -> int:
-        """Return the class of one tuning with some plants, as the assessment has it."""
-        sheet = replace(self.sheet, controller=self.tunings[at])
-        results = results_of(sheet, [self.ground.members[i] for i in members])
-        limits = [limit_result(name, limit, worst_case(BY_NAME[name], results)) for name, limit in sheet.limits]
-        return _GRADES[verdict(results, limits)]
+            found[at] = UNKNOWN
+            self.doubts[at] = np.flatnonzero(doubt[at]).tolist()
 
 
 def _decide(  # noqa: PLR0913, PLR0917 - what a kernel takes, less what its chains hold

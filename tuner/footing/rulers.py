@@ -1,13 +1,14 @@
 """Whole rulers: the class at every notch of every gain, and where it changes in between."""
 
-from collections.abc import Callable, Sequence
+from collections.abc import Callable, Mapping, Sequence
 from dataclasses import dataclass
+from itertools import pairwise
 
 import numpy as np
 from numpy.typing import NDArray
 
 from tuner.footing.classes import LOST, SOFT, UNKNOWN, Classes, Edge, PaintedTrack, Track, never, painted, tuned
-from tuner.footing.grading import Grading, Ground, ground_of
+from tuner.footing.grading import Grading, Ground, exactly, ground_of
 from tuner.footing.stability import Stretches, counts, stretches
 from tuner.model.family import FAMILY_SIZE
 from tuner.model.sheet import Sheet
@@ -35,9 +36,11 @@ class _Line:
     stretches: Stretches | None
     values: Array
     classes: Classes
+    doubts: dict[float, list[int]]
 
-    def add(self, values: Array, classes: Classes) -> None:
-        """Take in further values."""
+    def add(self, values: Array, classes: Classes, doubts: Mapping[float, list[int]]) -> None:
+        """Take in further values, and with which plants those that are unknown are in doubt."""
+        self.doubts.update(doubts)
         together = np.concatenate((self.values, values))
         order = np.argsort(together, kind="stable")
         self.values, self.classes = together[order], np.concatenate((self.classes, classes))[order]
@@ -56,6 +59,8 @@ def paint_rulers(
     tracks: Sequence[Track],
     family_size: int = FAMILY_SIZE,
     stop: Callable[[], bool] = never,
+    *,
+    fine: bool = True,
 ) -> tuple[PaintedTrack, ...]:
     """Return each track with the class at all its values and the edges between them.
 
@@ -71,6 +76,8 @@ def paint_rulers(
         Plants to judge by.
     stop : callable
         Asked now and then; the question is given up when it returns true.
+    fine : bool
+        Whether edges are looked for between notches; if not, those that are not of stability lie half-way.
 
     Raises
     ------
@@ -80,7 +87,7 @@ def paint_rulers(
         When `stop` said so.
     """
     painter = _Painter(sheet, ground_of(sheet, family_size), family_size, stop)
-    return painter.paint(tracks)
+    return painter.paint(tracks, fine=fine)
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -90,20 +97,20 @@ class _Painter:
     size: int
     stop: Callable[[], bool]
 
-    def paint(self, tracks: Sequence[Track]) -> tuple[PaintedTrack, ...]:
+    def paint(self, tracks: Sequence[Track], *, fine: bool) -> tuple[PaintedTrack, ...]:
         """Paint all tracks together."""
         lines = self._lines(tracks)
         values = [np.concatenate((line.track.values, _beside(line))) for line in lines]
         self._grade(lines, values, settle=True)
-        self._narrow(lines)
+        if fine:
+            self._narrow(lines)
         return tuple(_finished(line) for line in lines)
 
     def _lines(self, tracks: Sequence[Track]) -> list[_Line]:
         base = counts(self.sheet, self.ground.members)
+        found = [stretches(self.sheet, self.ground.members, track, self.size, base) for track in tracks]
         none = np.zeros(0), np.zeros(0, dtype=np.int8)
-        return [
-            _Line(track, stretches(self.sheet, self.ground.members, track, self.size, base), *none) for track in tracks
-        ]
+        return [_Line(track, known, *none, {}) for track, known in zip(tracks, found, strict=True)]
 
     def _grade(self, lines: Sequence[_Line], values: Sequence[Array], *, settle: bool) -> None:
         """Find the classes at some values of some lines, all in one go."""
@@ -123,9 +130,10 @@ class _Painter:
         order = [*range(1, len(self.ground.members)), 0]
         grading = Grading(self.sheet, self.ground, tunings, order, self.stop)
         classes = grading.classes(np.concatenate(lost), np.concatenate(unsure), settle=settle)
-        ends = np.cumsum([len(some) for some in values])[:-1]
-        for line, some, found in zip(lines, values, np.split(classes, ends), strict=True):
-            line.add(some, found)
+        ends = np.cumsum([0, *(len(some) for some in values)]).tolist()
+        for line, some, (begin, end) in zip(lines, values, pairwise(ends), strict=True):
+            doubts = {float(some[at - begin]): who for at, who in grading.doubts.items() if begin <= at < end}
+            line.add(some, classes[begin:end], doubts)
 
     def _narrow(self, lines: Sequence[_Line]) -> None:
         """Look between notches where the class changes, until it changes within the share of a value."""
@@ -140,9 +148,12 @@ class _Painter:
 
     def _settle(self, line: _Line, values: Array) -> None:
         """Find the class at values for good."""
-        known = np.isin(line.values, values)
-        line.values, line.classes = line.values[~known], line.classes[~known]
-        self._grade([line], [values], settle=True)
+        new = values[~np.isin(values, line.values)]
+        self._grade([line], [new], settle=True)
+        for at in np.flatnonzero(np.isin(line.values, values) & (line.classes == UNKNOWN)).tolist():
+            value = float(line.values[at])
+            tuning = self.sheet.controller.with_value(line.track.name, value)
+            line.classes[at] = exactly(self.sheet, self.ground, tuning, line.doubts[value])
 
 
 def _beside(line: _Line) -> Array:

@@ -105,28 +105,6 @@ def _decide(size: Size, filters: Size, state: Array, constants: Array, asked: Ar
 
 
 @compiled_lanes
-def _combine(size: Size, state: Array, into: int, row: Array, constant: float) -> None:
-    """Write a combination of the states and both efforts of every lane to a row of the states."""
-    for i in range(LANES):
-        total = constant
-        for j in range(len(size) + 2):
-            total += row[j] * state[j * LANES + i]
-        state[into + i] = total
-
-
-@compiled_lanes
-def _show(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
-    size: Size, state: Array, y: Array, into: int, row: Array, constant: float
-) -> None:
-    """Write a combination of the states and both efforts of every lane to the output."""
-    for i in range(LANES):
-        total = constant
-        for j in range(len(size) + 2):
-            total += row[j] * state[j * LANES + i]
-        y[into + i] = total
-
-
-@compiled_lanes
 def _look(size: Size, state: Array, y: Array, at: int, ceiling: float) -> bool:
     """Mark lanes that have run away and let them start anew; return whether all have."""
     kept = (2 * len(size) + 2) * LANES
@@ -143,7 +121,7 @@ def _look(size: Size, state: Array, y: Array, at: int, ceiling: float) -> bool:
 
 
 @compiled_lanes
-def run(  # noqa: C901, PLR0913, PLR0917 - the whole loop in one place, so that it can be read against the law
+def run(  # noqa: C901, PLR0912, PLR0913, PLR0917 - the whole loop in one place, so that it can be read against the law
     size: Size,
     filters: Size,
     constants: Array,
@@ -157,6 +135,9 @@ def run(  # noqa: C901, PLR0913, PLR0917 - the whole loop in one place, so that 
     state: Array,
 ) -> None:
     """Run one block from rest.
+
+    Rows are multiplied out in three places rather than in a function of their own: with more than four states the
+    compiler would not lay such a function into the loops, and then not along the lanes either.
 
     Parameters
     ----------
@@ -190,7 +171,12 @@ def run(  # noqa: C901, PLR0913, PLR0917 - the whole loop in one place, so that 
     at = 0
     for k in range(samples):
         when = 0 if k < arrival else (1 if k == arrival else 2)
-        _combine(size, state, seen, pace[0], push[when, 0] * disturbance + resting)
+        constant = push[when, 0] * disturbance + resting
+        for i in range(LANES):
+            total = constant
+            for c in range(n + 1):
+                total += pace[0, c] * state[c * LANES + i]
+            state[seen + i] = total
         if quantum > 0.0:
             for i in range(LANES):
                 state[seen + i] = quantum * np.floor(state[seen + i] / quantum + 0.5)
@@ -203,10 +189,20 @@ def run(  # noqa: C901, PLR0913, PLR0917 - the whole loop in one place, so that 
             for i in range(LANES):
                 state[now + i] = u[(k - delay) * LANES + i]
         for j in range(min(steps, points - k * steps)):
-            _show(size, state, y, at, pace[1 + j], push[when, 1 + j] * disturbance)
+            constant = push[when, 1 + j] * disturbance
+            for i in range(LANES):
+                total = constant
+                for c in range(n + 2):
+                    total += pace[1 + j, c] * state[c * LANES + i]
+                y[at + i] = total
             at += LANES
         for j in range(n):
-            _combine(size, state, ahead + j * LANES, pace[1 + steps + j], push[when, 1 + steps + j] * disturbance)
+            constant = push[when, 1 + steps + j] * disturbance
+            for i in range(LANES):
+                total = constant
+                for c in range(n + 2):
+                    total += pace[1 + steps + j, c] * state[c * LANES + i]
+                state[ahead + j * LANES + i] = total
         for i in range(n * LANES):
             state[i] = state[ahead + i]
         for i in range(LANES):
