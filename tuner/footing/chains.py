@@ -44,8 +44,8 @@ class Chains:
         Frequencies, rising, rad per time unit.
     at : Contour
         The law's blocks there.
-    inverse : ndarray of complex, shape (p, n)
-        1/G.
+    inverse, gain : ndarray of complex, shape (p, n)
+        1/G and G.
     """
 
     members: tuple[int, ...]
@@ -53,6 +53,7 @@ class Chains:
     w: Array
     at: Contour
     inverse: ComplexArray
+    gain: ComplexArray
 
     def look(self, rows: NDArray[np.intp], w: Array) -> tuple[ComplexArray, Contour]:
         """Return 1/G of some rows at one frequency each, and the law's blocks there; shapes (k, 1)."""
@@ -88,9 +89,10 @@ def _chains(sheet: Sheet, size: int) -> tuple[Chains, ...]:
 
 def _stacked(rows: Stack, members: Sequence[int]) -> Chains:
     w = _frequencies(rows)
+    gain = rows.response(w)
     with np.errstate(all="ignore"):
-        inverse = 1.0 / rows.response(w)
-    return Chains(tuple(members), rows, w, _contour(w, rows.step), inverse)
+        inverse = 1.0 / gain
+    return Chains(tuple(members), rows, w, _contour(w, rows.step), inverse, gain)
 
 
 def _contour(w: Array, step: float) -> Contour:

@@ -408,7 +408,7 @@ def _decide(  # noqa: PLR0913, PLR0917 - what a kernel takes, less what its chai
     """Lay limits on the margins of some tunings with the plants of some chains."""
     members = np.array(chains.members)
     responses.decide(
-        chains.w, *chains.at, chains.inverse, members, gains, limits, active, doubt, *watched, begin, end
+        chains.w, *chains.at, chains.gain, members, gains, limits, active, doubt, *watched, begin, end
     )  # fmt: skip
 
 

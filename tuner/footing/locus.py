@@ -17,7 +17,13 @@ from tuner.footing.chains import Chains
 from tuner.model.controller import Controller
 from tuner.simulate.traces import Array
 
-_ROUNDS = 12
+_ROUNDS = 40
+_FOUND = 1e-11
+"""A crossing is found where the image is real to this share."""
+
+_BEYOND = 3.0
+"""A crossing between two points lies within this factor of both."""
+
 _ENDS = 1e-3
 """An end of the contour is real to this share if a pole crosses there."""
 
@@ -43,16 +49,23 @@ class Crossings(NamedTuple):
     w: Array
 
 
-def crossings(controller: Controller, name: str, chains: Chains) -> Crossings:
-    """Return where poles cross the border of stability as one gain of a controller goes from 0 to infinity."""
+def crossings(controller: Controller, name: str, chains: Chains, span: tuple[float, float]) -> Crossings:
+    """Return where poles cross the border of stability as one gain of a controller goes along a span.
+
+    Parameters
+    ----------
+    span : tuple of float
+        Least and greatest gain that matter, as `affine.coordinate` has them; some crossings beyond may be left out.
+    """
     held, moving = pair(controller, name, chains.inverse, chains.at)
     with np.errstate(all="ignore"):
         q = -held / moving
     rising = _side(q)
     row, left = np.nonzero((rising[:, 1:] != rising[:, :-1]) & np.isfinite(q[:, 1:]) & np.isfinite(q[:, :-1]))
-    near = (q.real[row, left] > 0.0) | (q.real[row, left + 1] > 0.0)
+    one, other = q.real[row, left], q.real[row, left + 1]
+    near = (np.maximum(one, other) > span[0] / _BEYOND) & (np.minimum(one, other) < span[1] * _BEYOND)
     row, left = row[near], left[near]
-    w, found = _refined(controller, name, chains, row, left)
+    w, found = _refined(controller, name, chains, row, left, q)
     change = np.where(rising[row, left + 1], 2, -2)
     parts = [(row, found, change, w), _end(chains, q, rising, 0)]
     if chains.rows.step:
@@ -79,8 +92,13 @@ def _end(
     return row, end.real[row], np.where(upwards, 1, -1), chains.w[row, at]
 
 
-def _refined(
-    controller: Controller, name: str, chains: Chains, row: NDArray[np.intp], left: NDArray[np.intp]
+def _refined(  # noqa: PLR0913, PLR0917 - where to look, and what is known there
+    controller: Controller,
+    name: str,
+    chains: Chains,
+    row: NDArray[np.intp],
+    left: NDArray[np.intp],
+    known: NDArray[np.complex128],
 ) -> tuple[Array, Array]:
     """Return frequency and gain of crossings between two points, by regula falsi with the Illinois rule."""
     if not len(row):
@@ -93,13 +111,15 @@ def _refined(
             found: NDArray[np.complex128] = -held[:, 0] / moving[:, 0]
         return found
 
-    at_low, at_high = image(low).imag, image(high).imag
-    w, q, last = high, image(high), np.zeros(len(row))
+    at_low, at_high = known.imag[row, left], known.imag[row, left + 1]
+    w, q, last = high, known[row, left + 1], np.zeros(len(row))
     for _ in range(_ROUNDS):
         with np.errstate(all="ignore"):
             share = at_low / (at_low - at_high)
         w = low + np.where((share > 0.0) & (share < 1.0), share, 0.5) * (high - low)
         q = image(w)
+        if (np.abs(q.imag) <= _FOUND * np.abs(q.real)).all():
+            break
         side = np.where((q.imag > 0.0) == (at_high > 0.0), 1.0, -1.0)
         upper = side > 0.0
         # An end that stays twice counts half, or else it would stay for ever.

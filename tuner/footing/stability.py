@@ -91,9 +91,11 @@ def stretches(
         base = counts(_with(sheet, track.name, present), members)
     if not controller.sample_time and any(_is_flat(controller, chains) for chains in chains_of(sheet, size)):
         return None
+    places = coordinate(track.name, np.array([present, usable[0], usable[-1]]))
+    span = float(places.min()), float(places.max())
     groups = [
         _Counted(
-            crossings(controller, track.name, chains),
+            crossings(controller, track.name, chains, span),
             base[list(chains.members)],
             float(coordinate(track.name, np.array([present]))[0]),
         )

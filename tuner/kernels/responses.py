@@ -28,11 +28,14 @@ GAIN, PHASE, DELAY, SENSITIVITY, COMPLEMENTARY, BANDWIDTH = range(6)
 LEVEL = 0.707
 """The sensitivity that ends the bandwidth; as `crossings.LEVEL`."""
 
-_SLACK = 0.004
+_SLACK = 0.002
 """What a peak between points is allowed beyond what a parabola says, as a share."""
 
 _SHARE = 0.35
 """What a crossing is allowed to be off the straight line, as a share of the step."""
+
+_LEAST_ANGLE = 0.006
+"""What an angle is allowed to be off where it hardly turns, rad."""
 
 _ALMOST = 0.05
 """A curve that turns back this near to where it would cross may cross between two points."""
@@ -44,13 +47,23 @@ _FINAL = 1e-12
 
 
 @compiled
-def bound(  # noqa: PLR0913, PLR0917 - one walk along the grid, which finds all of them
+def lead(x: ComplexArray, numerator: ComplexArray, time: float, out: ComplexArray) -> None:
+    """Write what a derivative gain of one makes at each frequency: x / (time x + numerator)."""
+    for i in range(x.shape[0]):
+        under = time * x[i] + numerator[i]
+        square = under.real * under.real + under.imag * under.imag
+        over = x[i] * complex(under.real, -under.imag)
+        out[i] = complex(over.real / square, over.imag / square)
+
+
+@compiled
+def bound(  # noqa: C901, PLR0913, PLR0917 - one walk along the grid, which finds all of them
     w: Array,
-    x: ComplexArray,
     integral: ComplexArray,
-    lead: ComplexArray,
-    inverse: ComplexArray,
+    derivative: ComplexArray,
+    chain: ComplexArray,
     gains: Array,
+    asked: Flags,
     work: Array,
     low: Array,
     high: Array,
@@ -59,51 +72,69 @@ def bound(  # noqa: PLR0913, PLR0917 - one walk along the grid, which finds all 
 
     Parameters
     ----------
-    w, x, integral, lead, inverse : ndarray, shape (n,)
-        Frequencies, rising, and the law's blocks and 1/G there, see `footing.chains.Chains`.
+    w, integral, derivative, chain : ndarray, shape (n,)
+        Frequencies, rising; what an integral and a derivative gain of one make there; and all else of the loop.
     gains : ndarray, shape (4,)
-        kp, ki, kd and the filter time.
+        kp, ki, kd and the filter time, which `derivative` was made with.
+    asked : ndarray of uint8, shape (6,)
+        Margins that are asked for; the bounds of others mean nothing.
     work : ndarray, shape (2, n)
         Scratch.
     low, high : ndarray, shape (6,)
         Bounds in the order of `MEASURES`, written to.
     """
-    count = w.shape[0]
-    kp, ki, kd, time = gains
     for measure in range(3):
         low[measure] = high[measure] = math.inf
     low[BANDWIDTH] = high[BANDWIDTH] = -math.inf
+    crossed = asked[GAIN] + asked[PHASE] + asked[DELAY] > 0
+    kp, ki, kd = gains[0], gains[1], gains[2]
     earlier, before = 0j, 0j
-    size_earlier, size_before, s_before = 0.0, 0.0, 0.0
-    for i in range(count):
-        law = kp + ki * integral[i]
-        if kd != 0.0:
-            law += kd * x[i] / (time * x[i] + lead[i])
-        under = inverse[i].real * inverse[i].real + inverse[i].imag * inverse[i].imag
-        turn = law * complex(inverse[i].real, -inverse[i].imag)
-        loop = complex(turn.real / under, turn.imag / under)
-        size = loop.real * loop.real + loop.imag * loop.imag
-        distance = (1.0 + loop.real) * (1.0 + loop.real) + loop.imag * loop.imag
-        s = 1.0 / max(distance, 1e-300)
-        work[0, i] = s
-        work[1, i] = size * s
-        if i > 0:
-            _gain_margin(before, loop, low, high)
-            _phase_margin(before, loop, size_before, size, w[i - 1], w[i], low, high)
-            if high[BANDWIDTH] == -math.inf and s >= LEVEL * LEVEL > s_before:
-                share = (LEVEL - math.sqrt(s_before)) / (math.sqrt(s) - math.sqrt(s_before))
-                step = w[i] - w[i - 1]
-                low[BANDWIDTH] = w[i - 1] + step * max(share - _SHARE, 0.0)
-                high[BANDWIDTH] = w[i - 1] + step * min(share + _SHARE, 1.0)
-        if i > 1:
-            _touching(earlier, before, loop, size_earlier, size_before, size, low)
-        earlier, before, s_before = before, loop, s
-        size_earlier, size_before = size_before, size
+    size_earlier, size_before, distance_before = 0.0, 0.0, 0.0
+    for i in range(w.shape[0]):
+        law_real = kp + ki * integral[i].real + kd * derivative[i].real
+        law_imag = ki * integral[i].imag + kd * derivative[i].imag
+        real = law_real * chain[i].real - law_imag * chain[i].imag
+        imag = law_real * chain[i].imag + law_imag * chain[i].real
+        size = real * real + imag * imag
+        distance = size + 2.0 * real + 1.0
+        work[0, i] = distance
+        if asked[COMPLEMENTARY]:
+            work[1, i] = distance / max(size, 1e-300)
+        if crossed:
+            after = complex(real, imag)
+            # Most points are far from any crossing, and a call for each would take longer than all else.
+            if i > 0 and (before.imag > 0.0) != (imag > 0.0) and min(before.real, real) < 0.0:
+                _gain_margin(before, after, low, high)
+            if i > 0 and (size_before > 1.0) != (size > 1.0):
+                _phase_margin(before, after, size_before, size, w[i - 1], w[i], low, high)
+            flat = abs(before.imag) < -_ALMOST * before.real or abs(size_before - 1.0) < _ALMOST
+            if i > 1 and flat:
+                _touching(earlier, before, after, size_earlier, size_before, size, low)
+            earlier, before = before, after
+            size_earlier, size_before = size_before, size
+        if asked[BANDWIDTH] and high[BANDWIDTH] == -math.inf and i > 0:
+            _bandwidth(distance_before, distance, w[i - 1], w[i], low, high)
+        distance_before = distance
     if before.real < 0.0 and before.real > -1.0 and abs(before.imag) < 1e-3 * abs(before.real):
         low[GAIN] = min(low[GAIN], 1.0 / abs(before) * (1.0 - 1e-3))
         high[GAIN] = min(high[GAIN], 1.0 / abs(before) * (1.0 + 1e-3))
-    low[SENSITIVITY], high[SENSITIVITY] = _peak(work[0])
-    low[COMPLEMENTARY], high[COMPLEMENTARY] = _peak(work[1])
+    if asked[SENSITIVITY]:
+        low[SENSITIVITY], high[SENSITIVITY] = _peak(w, work[0])
+    if asked[COMPLEMENTARY]:
+        low[COMPLEMENTARY], high[COMPLEMENTARY] = _peak(w, work[1])
+
+
+@compiled
+def _bandwidth(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
+    before: float, after: float, w_before: float, w: float, low: Array, high: Array
+) -> None:
+    """Take the place where the sensitivity first rises to its level into the bounds of the bandwidth."""
+    level = 1.0 / (LEVEL * LEVEL)
+    if before > level >= after:
+        one, other = 1.0 / math.sqrt(before), 1.0 / math.sqrt(max(after, 1e-300))
+        share, step = (LEVEL - one) / (other - one), w - w_before
+        low[BANDWIDTH] = w_before + step * max(share - _SHARE, 0.0)
+        high[BANDWIDTH] = w_before + step * min(share + _SHARE, 1.0)
 
 
 @compiled
@@ -124,8 +155,6 @@ def _touching(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
 @compiled
 def _gain_margin(before: complex, after: complex, low: Array, high: Array) -> None:
     """Take a crossing of -180 degrees between two points into the bounds of the gain margin."""
-    if (before.imag > 0.0) == (after.imag > 0.0):
-        return
     share = before.imag / (before.imag - after.imag)
     step = after.real - before.real
     place, slack = before.real + share * step, _SHARE * abs(step)
@@ -152,15 +181,13 @@ def _phase_margin(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arr
     high: Array,
 ) -> None:
     """Take a crossing of one between two points into the bounds of phase and delay margin."""
-    if (size_before > 1.0) == (size > 1.0):
-        return
     over, under = math.log(max(size_before, 1e-300)), math.log(max(size, 1e-300))
     share = over / (over - under)
     # The angle turns by less than half a turn from point to point.
     start = math.atan2(-before.imag, -before.real)
     turn = after * complex(before.real, -before.imag)
     step = math.atan2(turn.imag, turn.real)
-    angle, slack = start + share * step, _SHARE * abs(step)
+    angle, slack = start + share * step, _SHARE * abs(step) + _LEAST_ANGLE
     place, wide = w_before + share * (w - w_before), _SHARE * (w - w_before)
     nearest, farthest = max(abs(angle) - slack, 0.0), abs(angle) + slack
     low[PHASE] = min(low[PHASE], math.degrees(nearest))
@@ -174,22 +201,41 @@ def _phase_margin(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arr
 
 
 @compiled
-def _peak(square: Array) -> tuple[float, float]:
-    """Return bounds of the largest root of a curve of squares."""
-    top = 0
+def _peak(w: Array, square: Array) -> tuple[float, float]:
+    """Return bounds of the largest of 1/sqrt(square).
+
+    Near a peak, however sharp, the square of the distance from the critical point is a parabola in frequency.
+    """
+    at = 0
     for i in range(square.shape[0]):
-        if square[i] > square[top]:
-            top = i
-    here = math.sqrt(square[top])
-    beyond = 0.0
-    if 0 < top < square.shape[0] - 1:
-        left, right = math.sqrt(square[top - 1]), math.sqrt(square[top + 1])
-        bend = left - 2.0 * here + right
-        slope = 0.5 * (right - left)
-        if bend < 0.0:
-            beyond = -0.5 * slope * slope / bend
-        beyond += 0.1 * (here - min(left, right))
-    return here * (1.0 - _FINAL), (here + beyond) * (1.0 + _SLACK)
+        if square[i] < square[at]:
+            at = i
+    least = square[at]
+    if 0 < at < square.shape[0] - 1:
+        left, right = w[at] - w[at - 1], w[at + 1] - w[at]
+        falls, rises = (square[at - 1] - least) / max(left, 1e-300), (square[at + 1] - least) / max(right, 1e-300)
+        bend = (falls + rises) / max(left + right, 1e-300)
+        slope = (rises * left - falls * right) / max(left + right, 1e-300)
+        if bend > 0.0:
+            least -= (1.0 + _SHARE) * 0.25 * slope * slope / bend
+        least -= _SLACK * (max(square[at - 1], square[at + 1]) - square[at])
+    low = (1.0 - _FINAL) / math.sqrt(max(square[at], 1e-300))
+    return low, math.inf if least <= 0.0 else (1.0 + _SLACK) / math.sqrt(least)
+
+
+@compiled
+def _keeps(limits: Array, low: Array, high: Array, doubt: Flags, member: int) -> bool:
+    """Return whether a loop misses no limit for sure, and note where it is in doubt."""
+    for measure in range(6):
+        limit = limits[measure]
+        if math.isnan(limit):
+            continue
+        least = measure < SENSITIVITY or measure == BANDWIDTH
+        if (high[measure] < limit) if least else (low[measure] > limit):
+            return False
+        if not ((low[measure] >= limit) if least else (high[measure] <= limit)):
+            doubt[member] = 1
+    return True
 
 
 @compiled
@@ -197,8 +243,8 @@ def decide(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
     w: Array,
     x: ComplexArray,
     integral: ComplexArray,
-    lead: ComplexArray,
-    inverse: ComplexArray,
+    numerator: ComplexArray,
+    chain: ComplexArray,
     members: Integers,
     gains: Array,
     limits: Array,
@@ -213,8 +259,8 @@ def decide(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
 
     Parameters
     ----------
-    w, x, integral, lead, inverse : ndarray, shape (p, n)
-        See `bound`.
+    w, x, integral, numerator, chain : ndarray, shape (p, n)
+        See `bound` and `lead`.
     members : ndarray of int, shape (p,)
         Places of the plants in `doubt` and `values`.
     gains : ndarray, shape (t, 4)
@@ -230,22 +276,22 @@ def decide(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
     begin, end : int
         Tunings to look at.
     """
-    work = np.empty((2, w.shape[1]))
+    work, derivative = np.empty((2, w.shape[1])), np.empty(w.shape[1], dtype=np.complex128)
     low, high = np.empty(6), np.empty(6)
-    for tuning in range(begin, end):
-        for row in range(members.shape[0]):
+    asked = np.zeros(6, dtype=np.uint8)
+    for measure in range(6):
+        asked[measure] = 1 if not math.isnan(limits[measure]) or measure == watched else 0
+    for row in range(members.shape[0]):
+        made_with = -1.0
+        for tuning in range(begin, end):
             if active[tuning] == 0 and watched < 0:
-                break
-            bound(w[row], x[row], integral[row], lead[row], inverse[row], gains[tuning], work, low, high)
+                continue
+            if gains[tuning, 3] != made_with:
+                made_with = gains[tuning, 3]
+                lead(x[row], numerator[row], made_with, derivative)
+            bound(w[row], integral[row], derivative, chain[row], gains[tuning], asked, work, low, high)
             if watched >= 0:
                 values[0, tuning, members[row]] = low[watched]
                 values[1, tuning, members[row]] = high[watched]
-            for measure in range(6):
-                limit = limits[measure]
-                if math.isnan(limit):
-                    continue
-                least = measure < SENSITIVITY or measure == BANDWIDTH
-                if (high[measure] < limit) if least else (low[measure] > limit):
-                    active[tuning] = 0
-                elif not ((low[measure] >= limit) if least else (high[measure] <= limit)):
-                    doubt[tuning, members[row]] = 1
+            if not _keeps(limits, low, high, doubt[tuning], members[row]):
+                active[tuning] = 0
