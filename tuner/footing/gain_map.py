@@ -70,7 +70,7 @@ def paint_map(  # noqa: PLR0913, PLR0917 - the question as it is asked
         for up in y.values.tolist()
         for across in x.values.tolist()
     ]
-    grading = Grading(sheet, ground, tunings, [*range(1, len(ground.members)), 0], stop)
+    grading = Grading(sheet, ground, tunings, stop)
     classes = grading.classes(lost.ravel(), unsure.ravel())
     worst = grading.watch(measure, classes != LOST) if measure else np.full(len(tunings), np.nan)
     return GainMap(x, y, classes.reshape(lost.shape), measure, worst.reshape(lost.shape))

@@ -54,6 +54,9 @@ class Ground:
     Parameters
     ----------
     members : tuple of Member
+    misses : ndarray of int, shape (p,)
+        With each plant, how many tunings missed a limit with it first, lately: those that miss most are tried first,
+        which changes how long grading takes and nothing else.
     speeds : tuple of Speed
     steps : tuple of float
         At which the law runs, for each speed.
@@ -65,6 +68,7 @@ class Ground:
     """
 
     members: tuple[Member, ...]
+    misses: NDArray[np.int64]
     speeds: tuple[grades.Speed, ...]
     steps: tuple[float, ...]
     size: lanes.Size
@@ -103,7 +107,8 @@ def _ground(sheet: Sheet, size: int) -> Ground:
     speeds = tuple(_speed(sheet, members, grid, len(kernel)) for grid in grids)
     bounded = bool(sheet.controller.sample_time) or not any(one.plant.d for one in processes(sheet, members))
     steps = tuple(grid.sample_time for grid in grids)
-    return Ground(members, speeds, steps, kernel, chains_of(sheet, size), bounded)
+    misses = np.zeros(len(members), dtype=np.int64)
+    return Ground(members, misses, speeds, steps, kernel, chains_of(sheet, size), bounded)
 
 
 def _grids(sheet: Sheet) -> tuple[Grid, ...]:
@@ -174,8 +179,6 @@ class Grading:
         Whose controller each of the tunings takes the place of.
     ground : Ground
     tunings : sequence of Controller
-    order : list of int
-        Plants, those that are likeliest to miss a limit first.
     stop : callable
         Whether a newer question has come.
     """
@@ -183,14 +186,21 @@ class Grading:
     sheet: Sheet
     ground: Ground
     tunings: Sequence[Controller]
-    order: Sequence[int]
     stop: Callable[[], bool] = never
     numbers: Numbers = field(init=False)
     doubts: dict[int, list[int]] = field(default_factory=dict)
+    misses: NDArray[np.int64] = field(init=False)
 
     def __post_init__(self) -> None:
         """Take the numbers of the tunings out, for what looks at all of them at once."""
         self.numbers = numbers_of(self.tunings)
+        self.misses = np.zeros(len(self.ground.members), dtype=np.int64)
+
+    def order(self) -> list[int]:
+        """Return the plants, those that are likeliest to miss a limit first, the nominal one last."""
+        order = np.roll(np.arange(len(self.ground.members)), -1)
+        found: list[int] = order[np.argsort(-self.ground.misses[order], kind="stable")].tolist()
+        return found
 
     def classes(self, lost: Flags, unsure: Flags, *, settle: bool = True) -> Classes:
         """Return the class of every tuning, shape (t,), given which are lost and of which that is not sure.
@@ -209,6 +219,8 @@ class Grading:
             self._note_doubts(found, active, doubt)
         found[unsure] = UNKNOWN
         self.doubts |= {at: list(range(len(self.ground.members))) for at in np.flatnonzero(unsure).tolist()}
+        # Half of what was is forgotten, so that the plants that matter now come first.
+        self.ground.misses[:] = self.ground.misses // 2 + self.misses
         if settle:
             for at, members in self.doubts.items():
                 self._check()
@@ -251,7 +263,7 @@ class Grading:
         gains, none = self._gains()[left], np.full(len(responses.MEASURES), nan)
         active, doubt = np.ones(len(left), dtype=np.uint8), np.zeros(values.shape[1:], dtype=np.uint8)
         for chains in self.ground.chains:
-            spread_out(partial(_decide, chains, gains, none, active, doubt, (which, values)), len(left))
+            spread_out(partial(_decide, chains, gains, none, active, self.misses, doubt, (which, values)), len(left))
         return values[0], values[1]
 
     def _exact_values(self, left: NDArray[np.intp], measure: str) -> Array:
@@ -282,7 +294,8 @@ class Grading:
         if not self.sheet.controller.sample_time:
             # So fast a return from a limit the steps of the law do not show.
             doubt[(active != 0) & (self.numbers.windup_time < _STEPS_OF_WINDUP * self.ground.steps[0])] = 1
-        first, rest = self.order[:_FIRST], self.order[_FIRST:]
+        order = self.order()
+        first, rest = order[:_FIRST], order[_FIRST:]
         for members in (first, rest):
             self._check()
             left = np.flatnonzero((active != 0) & ~doubt.all(axis=1))
@@ -319,6 +332,7 @@ class Grading:
             np.ascontiguousarray(together).reshape(len(constants), count, -1),
             self._finals(filled).reshape(2, len(self.ground.members), count, lanes.LANES),
             np.ones((count, lanes.LANES), dtype=np.uint8),
+            self.misses,
             np.zeros((count, len(self.ground.members), lanes.LANES), dtype=np.uint8),
             np.full((2, count, len(self.ground.members), lanes.LANES) if watched[0] >= 0 else (2, 0, 0, 0), nan),
         )
@@ -383,7 +397,7 @@ class Grading:
         gains, which = np.unique(rows, axis=0, return_inverse=True)
         unclear, still = np.zeros((len(gains), doubt.shape[1]), dtype=np.uint8), np.ones(len(gains), dtype=np.uint8)
         for chains in self.ground.chains:
-            spread_out(partial(_decide, chains, gains, limits, still, unclear, _NOTHING), len(gains))
+            spread_out(partial(_decide, chains, gains, limits, still, self.misses, unclear, _NOTHING), len(gains))
         active[left] = still[which]
         doubt[left] |= unclear[which]
 
@@ -400,6 +414,7 @@ def _decide(  # noqa: PLR0913, PLR0917 - what a kernel takes, less what its chai
     gains: Array,
     limits: Array,
     active: NDArray[np.uint8],
+    misses: NDArray[np.int64],
     doubt: NDArray[np.uint8],
     watched: tuple[int, Array],
     begin: int,
@@ -408,7 +423,7 @@ def _decide(  # noqa: PLR0913, PLR0917 - what a kernel takes, less what its chai
     """Lay limits on the margins of some tunings with the plants of some chains."""
     members = np.array(chains.members)
     responses.decide(
-        chains.w, *chains.at, chains.gain, members, gains, limits, active, doubt, *watched, begin, end
+        chains.w, *chains.at, chains.gain, members, gains, limits, active, misses, doubt, *watched, begin, end
     )  # fmt: skip
 
 

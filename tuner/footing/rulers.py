@@ -127,8 +127,7 @@ class _Painter:
         ]
         if not tunings:
             return
-        order = [*range(1, len(self.ground.members)), 0]
-        grading = Grading(self.sheet, self.ground, tunings, order, self.stop)
+        grading = Grading(self.sheet, self.ground, tunings, self.stop)
         classes = grading.classes(np.concatenate(lost), np.concatenate(unsure), settle=settle)
         ends = np.cumsum([0, *(len(some) for some in values)]).tolist()
         for line, some, (begin, end) in zip(lines, values, pairwise(ends), strict=True):
@@ -137,8 +136,7 @@ class _Painter:
 
     def _narrow(self, lines: Sequence[_Line]) -> None:
         """Look between notches where the class changes, until it changes within the share of a value."""
-        wide = [_between(line) for line in lines]
-        self._grade(lines, wide, settle=False)
+        self._grade(lines, [_between(line) for line in lines], settle=False)
         for line in lines:
             for _ in range(_ROUNDS):
                 middle = _still_wide(line)
@@ -152,7 +150,7 @@ class _Painter:
         self._grade([line], [new], settle=True)
         for at in np.flatnonzero(np.isin(line.values, values) & (line.classes == UNKNOWN)).tolist():
             value = float(line.values[at])
-            tuning = self.sheet.controller.with_value(line.track.name, value)
+            tuning = tuned(self.sheet.controller, line.track.name, value)
             line.classes[at] = exactly(self.sheet, self.ground, tuning, line.doubts[value])
 
 

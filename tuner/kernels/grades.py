@@ -90,6 +90,8 @@ class Blocks(NamedTuple):
         Exact final values of both runs; NaN for none.
     active : ndarray of uint8, shape (g, lanes)
         1 for tunings to look at; set to 0 once one has missed a limit for sure.
+    misses : ndarray of int, shape (p,)
+        Counts with each plant the tunings that missed a limit with it first.
     doubt : ndarray of uint8, shape (g, p, lanes)
         Set to 1 where a measure cannot be told from its limit.
     values : ndarray, shape (2, g, p, lanes), or (2, 0, 0, 0)
@@ -99,15 +101,16 @@ class Blocks(NamedTuple):
     constants: Array
     finals: Array
     active: Flags
+    misses: Integers
     doubt: Flags
     values: Array
 
 
 @compiled
 def _decide(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
-    limits: Array, begin: int, end: int, low: Array, high: Array, active: Flags, doubt: Flags
+    limits: Array, begin: int, end: int, low: Array, high: Array, active: Flags, doubt: Flags, misses: Integers, m: int
 ) -> bool:
-    """Lay the limits over the bounds of a block; return whether anything is left to look at."""
+    """Lay the limits over the bounds of a block with plant m; return whether anything is left to look at."""
     left = False
     for i in range(LANES):
         if active[i] == 0:
@@ -119,6 +122,7 @@ def _decide(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
             near = ROUNDING * (abs(limit) + 1e-3 * abs(low[measure, i])) if math.isfinite(low[measure, i]) else 0.0
             if low[measure, i] > limit + near:
                 active[i] = 0
+                misses[m] += 1
                 break
             if high[measure, i] > limit - near and not (high[measure, i] == 0.0 and limit >= 0.0):
                 doubt[i] = 1
@@ -226,10 +230,16 @@ def grade(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
             left = True
             if first:
                 _both(size, filters, course, blocks, 0, g, m, asked, scratch, low, high)
-                left = _decide(course.limits, 0, REFERENCE_COUNT, low, high, blocks.active[g], blocks.doubt[g, m])
+                left = _decide(
+                    course.limits, 0, REFERENCE_COUNT, low, high, blocks.active[g], blocks.doubt[g, m],
+                    blocks.misses, m,
+                )  # fmt: skip
             if second and (left or course.watched >= REFERENCE_COUNT):
                 _both(size, filters, course, blocks, 1, g, m, asked, scratch, low, high)
-                _decide(course.limits, REFERENCE_COUNT, len(MEASURES), low, high, blocks.active[g], blocks.doubt[g, m])
+                _decide(
+                    course.limits, REFERENCE_COUNT, len(MEASURES), low, high, blocks.active[g], blocks.doubt[g, m],
+                    blocks.misses, m,
+                )  # fmt: skip
             if course.watched >= 0:
                 for i in range(LANES):
                     blocks.values[0, g, m, i] = low[course.watched, i]

@@ -2,7 +2,7 @@
 
 What the measures of a run are exactly takes cubics and parabolas between the points; where the limit lies outside the
 bounds, they need not be laid. Bounds hold for the exact measures of the same points, see `measure.curve`: a crossing
-lies between two points, a peak at most half the largest bend above the highest one, an area within what the pieces that
+lies between two points, a peak on a parabola through the highest ones, an area within what the pieces that
 change sign can differ by. A measure that does not exist is infinite: minus where that is good.
 
 Plain loops over the points, inside of each of which all lanes are looked at with one instruction for several.
@@ -46,7 +46,7 @@ ROUNDING = 1e-9
 """Two computations of the same measure differ by this share of its natural size at most."""
 
 _ROWS = 12
-(_TOP, _BOTTOM, _BEND, _SAG, _LAST, _TENTH, _NINE, _TURN, _AREA, _CUT, _WORK, _MORE) = range(_ROWS)
+(_TOP, _BOTTOM, _TOP_AT, _BOTTOM_AT, _LAST, _TENTH, _NINE, _TURN, _AREA, _CUT, _WORK, _MORE) = range(_ROWS)
 
 WORK_ROWS = _ROWS
 
@@ -66,24 +66,37 @@ def _tail_mean(y: Array, first: int, points: int, work: Array) -> None:
 
 @compiled_lanes
 def _excursions(y: Array, points: int, scale: Array, work: Array) -> None:
-    """Write how high and how low each lane goes in parts of its scale, and how much it bends there."""
-    top, bottom, bend, sag = _TOP * LANES, _BOTTOM * LANES, _BEND * LANES, _SAG * LANES
+    """Write the highest and the lowest value of each lane in parts of its scale, and at which points they are first."""
+    top, top_at, bottom, bottom_at = _TOP * LANES, _TOP_AT * LANES, _BOTTOM * LANES, _BOTTOM_AT * LANES
     for i in range(LANES):
         work[top + i] = y[i] * scale[i]
         work[bottom + i] = y[i] * scale[i]
-        work[bend + i] = 0.0
-        work[sag + i] = 0.0
-    for p in range(points):
-        before = (p - 1 if p > 0 else 0) * LANES
-        after = (p + 1 if p + 1 < points else p) * LANES
-        at = p * LANES
+        work[top_at + i] = 0.0
+        work[bottom_at + i] = 0.0
+    for p in range(1, points):
+        at, place = p * LANES, float(p)
         for i in range(LANES):
             here = y[at + i] * scale[i]
-            bent = abs((y[before + i] + y[after + i]) * scale[i] - 2.0 * here)
-            work[top + i] = max(work[top + i], here)
-            work[bottom + i] = min(work[bottom + i], here)
-            work[bend + i] = max(work[bend + i], bent if here > 0.98 else 0.0)
-            work[sag + i] = max(work[sag + i], bent if here < 0.02 else 0.0)
+            higher, lower = here > work[top + i], here < work[bottom + i]
+            work[top + i] = here if higher else work[top + i]
+            work[top_at + i] = place if higher else work[top_at + i]
+            work[bottom + i] = here if lower else work[bottom + i]
+            work[bottom_at + i] = place if lower else work[bottom_at + i]
+
+
+@compiled
+def _height(y: Array, points: int, at: int, sign: float, lane: int) -> float:
+    """Return how high a lane goes near one of its points: by a parabola on either side, as `measure.curve.refined`."""
+    here: float = sign * y[at * LANES + lane]
+    beyond = 0.0
+    for side in (-1, 1):
+        far = at + 2 * side
+        if 0 <= far < points:
+            near, end = sign * y[(at + side) * LANES + lane], sign * y[far * LANES + lane]
+            slope, bend = -1.5 * here + 2.0 * near - 0.5 * end, here - 2.0 * near + end
+            if slope > 0.0 and bend < 0.0:
+                beyond = max(beyond, -0.5 * slope * slope / bend)
+    return here + beyond
 
 
 @compiled_lanes
@@ -199,8 +212,10 @@ def reference_bounds(  # noqa: C901, PLR0912, PLR0913, PLR0917 - every measure o
     if asked[0] or asked[1] or asked[5]:
         _excursions(y, points, safe, work)
         for i in range(LANES):
-            low[0, i], high[0, i] = _excess(work[_TOP * LANES + i] - 1.0, work[_BEND * LANES + i])
-            low[5, i], high[5, i] = _excess(-work[_BOTTOM * LANES + i], work[_SAG * LANES + i])
+            highest = _height(y, points, int(work[_TOP_AT * LANES + i]), safe[i], i)
+            lowest = _height(y, points, int(work[_BOTTOM_AT * LANES + i]), -safe[i], i)
+            low[0, i], high[0, i] = _excess(highest - 1.0)
+            low[5, i], high[5, i] = _excess(lowest if work[_BOTTOM * LANES + i] < -NOTHING else 0.0)
     if asked[1]:
         _first_turn(y, points, safe, work)
         for i in range(LANES):
@@ -233,7 +248,7 @@ def reference_bounds(  # noqa: C901, PLR0912, PLR0913, PLR0917 - every measure o
 
 
 @compiled
-def disturbance_bounds(  # noqa: C901, PLR0913, PLR0917 - kernels take bare numbers and arrays
+def disturbance_bounds(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
     y: Array,
     points: int,
     tail: int,
@@ -250,15 +265,12 @@ def disturbance_bounds(  # noqa: C901, PLR0913, PLR0917 - kernels take bare numb
     final, one, reach = np.empty(LANES), np.ones(LANES), np.empty(LANES)
     _final_values(y, points, tail, totals, exact, final, work)
     _excursions(y, points, one, work)
-    peak, most = np.empty(LANES), np.empty(LANES)
+    peak = np.empty(LANES)
     for i in range(LANES):
-        size = max(work[_TOP * LANES + i], -work[_BOTTOM * LANES + i])
-        peak[i], most[i] = size, size + 0.5 * max(work[_BEND * LANES + i], work[_SAG * LANES + i])
-        low[11, i], high[11, i] = peak[i], most[i]
-    _bend_everywhere(y, points, work)
-    for i in range(LANES):
-        most[i] = peak[i] + 0.5 * work[_BEND * LANES + i]
-        high[11, i] = most[i]
+        up = work[_TOP * LANES + i] >= -work[_BOTTOM * LANES + i]
+        at = int(work[(_TOP_AT if up else _BOTTOM_AT) * LANES + i])
+        peak[i] = _height(y, points, at, 1.0 if up else -1.0, i)
+        low[11, i] = high[11, i] = peak[i]
     if asked[10]:
         _area(y, points, 0.0, work)
         for i in range(LANES):
@@ -266,31 +278,14 @@ def disturbance_bounds(  # noqa: C901, PLR0913, PLR0917 - kernels take bare numb
             low[10, i], high[10, i] = (area - cut) * spacing, (area - 0.5 * cut) * spacing
     if asked[12]:
         for i in range(LANES):
-            reach[i] = band * most[i]
-        _last_outside(y, points, final, reach, work)
-        for i in range(LANES):
-            low[12, i], _ = _exit_time(work[_LAST * LANES + i], points, spacing)
             reach[i] = band * peak[i]
         _last_outside(y, points, final, reach, work)
         for i in range(LANES):
-            _, high[12, i] = _exit_time(work[_LAST * LANES + i], points, spacing)
+            low[12, i], high[12, i] = _exit_time(work[_LAST * LANES + i], points, spacing)
     for i in range(LANES):
         if _doubtful(y, points, totals, 0.0, i):
             for measure in range(REFERENCE_COUNT, len(MEASURES)):
                 low[measure, i], high[measure, i] = -math.inf, math.inf
-
-
-@compiled_lanes
-def _bend_everywhere(y: Array, points: int, work: Array) -> None:
-    """Write how much each lane bends at most."""
-    bend = _BEND * LANES
-    for i in range(LANES):
-        work[bend + i] = 0.0
-    for p in range(1, points - 1):
-        at = p * LANES
-        for i in range(LANES):
-            bent = abs(y[at - LANES + i] + y[at + LANES + i] - 2.0 * y[at + i])
-            work[bend + i] = max(work[bend + i], bent)
 
 
 @compiled
@@ -309,10 +304,10 @@ def _final_values(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arr
 
 
 @compiled
-def _excess(height: float, bend: float) -> tuple[float, float]:
+def _excess(height: float) -> tuple[float, float]:
     """Return bounds of an excursion in percent, exactly 0 for none."""
-    most = height + 0.5 * bend
-    return (100.0 * height if height > NOTHING else 0.0), (100.0 * most if most > NOTHING else 0.0)
+    least, most = height - ROUNDING, height + ROUNDING
+    return (100.0 * least if least > NOTHING else 0.0), (100.0 * most if most > NOTHING else 0.0)
 
 
 @compiled

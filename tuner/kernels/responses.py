@@ -249,6 +249,7 @@ def decide(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
     gains: Array,
     limits: Array,
     active: Flags,
+    misses: Integers,
     doubt: Flags,
     watched: int,
     values: Array,
@@ -267,8 +268,8 @@ def decide(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
         Of each of t tunings.
     limits : ndarray, shape (6,)
         In the order of `MEASURES`, the first three and the last at least, the others at most; NaN for none.
-    active : ndarray of uint8, shape (t,)
-        See `grades.Blocks`.
+    active, misses : ndarray
+        Shapes (t,) and (m,), see `grades.Blocks`.
     doubt : ndarray of uint8, shape (t, m)
     watched : int
         Measure whose bounds are kept; -1 for none.
@@ -295,3 +296,4 @@ def decide(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
                 values[1, tuning, members[row]] = high[watched]
             if not _keeps(limits, low, high, doubt[tuning], members[row]):
                 active[tuning] = 0
+                misses[members[row]] += 1
