@@ -4,8 +4,8 @@ import argparse
 import sys
 from collections.abc import Callable, Sequence
 
-from tests.benchmarks import kernels, processes, rehearsal, road, windows
-from tests.benchmarks.report import NAMES, as_json, as_text
+from tests.benchmarks import changes, kernels, processes, rehearsal, road, windows
+from tests.benchmarks.report import LONG, NAMES, as_json, as_text
 from tests.benchmarks.row import Row
 
 GROUPS: tuple[tuple[tuple[str, ...], Callable[[], Sequence[Row]]], ...] = (
@@ -14,6 +14,7 @@ GROUPS: tuple[tuple[tuple[str, ...], Callable[[], Sequence[Row]]], ...] = (
     (NAMES[6:7], road.rows),
     (NAMES[7:9], processes.rows),
     (NAMES[9:10], rehearsal.rows),
+    (LONG, changes.rows),
 )
 
 
@@ -21,11 +22,16 @@ def main() -> int:
     """Measure what is asked for, all by default, and print it; progress goes to the error output."""
     parser = argparse.ArgumentParser(prog="python3 tests bench", description=__doc__)
     parser.add_argument("--json", action="store_true", help="print one JSON object instead of a table")
-    parser.add_argument("names", nargs="*", metavar="NAME", help=f"rows to print: {', '.join(NAMES)}")
+    parser.add_argument(
+        "names",
+        nargs="*",
+        metavar="NAME",
+        help=f"rows to print: {', '.join(NAMES)}; and, only when asked for, {', '.join(LONG)}",
+    )
     asked = parser.parse_args()
     wanted = set(asked.names or NAMES)
-    if unknown := sorted(wanted - set(NAMES)):
-        parser.error(f"no row is called {', '.join(unknown)}; there are {', '.join(NAMES)}")
+    if unknown := sorted(wanted - {*NAMES, *LONG}):
+        parser.error(f"no row is called {', '.join(unknown)}; there are {', '.join((*NAMES, *LONG))}")
     rows = [row for names, measure in GROUPS if wanted & set(names) for row in _measured(names, measure)]
     rows = [row for row in rows if row.name in wanted]
     sys.stdout.write(as_json(rows) + "\n" if asked.json else as_text(rows))

@@ -21,6 +21,9 @@ NAMES = (
 )
 """The rows, in the order in which they are told."""
 
+LONG = ("changes_growth_mb",)
+"""Rows that take minutes; measured only when they are asked for by name."""
+
 _HEAD = ("name", "figure", "p99", "yardstick", "ratio", "goal")
 
 

@@ -66,7 +66,7 @@ class Stage:
 
 def rows() -> list[Row]:
     """Drag the ruler of a gain where the loop is calm, and where it rings and diverges."""
-    with _stage() as stage:
+    with stage_of_a_drag() as stage:
         calm, ringing = _drag(stage, CALM), _drag(stage, RINGING)
         still, still_rulers = timed(stage.window.plots.widget.grab, 50), timed(stage.window.rulers.grab, 50)
     curves = f"The nominal curves alone: median {calm.first.median:.1f} ms, p99 {calm.first.p99:.1f} ms."
@@ -111,7 +111,7 @@ def rows() -> list[Row]:
 
 
 @contextmanager
-def _stage() -> Iterator[Stage]:
+def stage_of_a_drag() -> Iterator[Stage]:
     """Open the program's own window on its own example, and wait for its first answer and paint."""
     os.environ.setdefault("QT_QPA_PLATFORM", "offscreen")
     keep_compiled_kernels()
@@ -129,7 +129,7 @@ def _stage() -> Iterator[Stage]:
     others = [ruler.slider for name, ruler in window.rulers.rulers.items() if name != RULER]
     plots = [part for part in window.plots.widget.findChildren(QObject) if part.isWidgetType()]
     stage = Stage(window, wiring.footing.painted, Paints(plots), Paints(others))
-    _wait(stage)
+    wait(stage)
     try:
         yield stage
     finally:
@@ -160,10 +160,10 @@ def _drag(stage: Stage, span: tuple[float, float]) -> Drag:
     slider = stage.window.rulers.rulers[RULER].slider
     left, right = (round(slider.x_of(value)) for value in span)
     QTest.mousePress(slider, Qt.MouseButton.LeftButton, pos=_place(left))
-    _wait(stage)
+    wait(stage)
     taken = [_move(stage, slider, left + 1 + (7 * move) % max(right - left, 1)) for move in range(MOVES)]
     QTest.mouseRelease(slider, Qt.MouseButton.LeftButton, pos=_place(left))
-    _wait(stage)
+    wait(stage)
     warm = taken[MOVES // 10 :]
     return Drag(
         summed_up([one.first for one in warm]),
@@ -202,7 +202,7 @@ def _is_painted(stage: Stage) -> bool:
     return painting is not None and painting.sheet == stage.window.document.sheet
 
 
-def _wait(stage: Stage) -> None:
+def wait(stage: Stage) -> None:
     """Let the window work until it shows the whole answer to what its document holds, and its rulers are painted."""
     end = time.perf_counter() + PATIENCE
     while not (_is_answered(stage.window) and _is_painted(stage)) and time.perf_counter() < end:

@@ -41,6 +41,11 @@ class PaintedRulers(QObject):
         worker.failed.connect(self._failed)
         self._stop_listening = document.listen(self.ask)
 
+    @property
+    def asked(self) -> int:
+        """How often the footing was asked for."""
+        return self._asked
+
     def wake(self) -> None:
         """Begin to ask; before, the first curves of the window have the machine to themselves."""
         if not self._awake:
