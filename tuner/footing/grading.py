@@ -17,7 +17,7 @@ from tuner.footing.chains import Chains, chains_of
 from tuner.footing.classes import FIRM, LOST, SOFT, UNKNOWN, Classes, Overtaken, never
 from tuner.judge.verdict import limit_result, verdict, worst_case
 from tuner.kernels import grades, lanes, readings, responses
-from tuner.law.constants import gain_constants
+from tuner.law.constants import GainConstants, gain_constants
 from tuner.measure.final import family_final_values
 from tuner.measure.runs import LAST_SHARE
 from tuner.model.controller import Controller
@@ -35,6 +35,8 @@ _FIRST = 3
 
 _CONTINUOUS = 1000
 """Steps of the coarser of two runs of a continuous controller."""
+
+_WEIGHTS = ("b", "c")
 
 _STEPS_OF_WINDUP = 8.0
 """Steps of a continuous controller's runs that its wind-up time takes at least."""
@@ -347,17 +349,13 @@ class Grading:
 
     def _constants(self, places: NDArray[np.intp], step: float) -> Array:
         """Return the constants of the law of some tunings at a step, shape (k, 19)."""
-        controller, some = self.sheet.controller, Numbers(*(one[places] for one in self.numbers))
-        own = law_constants(self.sheet, step, controller.measurement_filter)
-        feedback = 1.0 if controller.feedback else 0.0
-        gains = gain_constants(
-            step, feedback * some.kp, feedback * some.ki, feedback * some.kd, some.filter_time, some.windup_time
-        )
-        out = np.tile(np.array(own), (len(places), 1))
-        out[:, : len(gains)] = np.array(gains).T
-        out[:, len(gains)], out[:, len(gains) + 1] = some.b, some.c
-        if not controller.feedback:
-            out[:, len(gains) - 1] = 0.0
+        controller = self.sheet.controller
+        out = np.tile(np.array(law_constants(self.sheet, step, controller.measurement_filter)), (len(places), 1))
+        some = np.array(self.numbers).T[places]
+        if controller.feedback:
+            own = np.array([gain_constants(step, *gains) for gains in some[:, : -len(_WEIGHTS)].tolist()])
+            out[:, : own.shape[1]] = own
+        out[:, len(GainConstants._fields) : len(GainConstants._fields) + len(_WEIGHTS)] = some[:, -len(_WEIGHTS) :]
         return out
 
     def _course(self, members: Sequence[int], limits: Array) -> grades.Course:

@@ -2,10 +2,7 @@
 
 from math import inf, tan
 from sys import float_info
-from typing import Generic, NamedTuple, TypeVar
-
-import numpy as np
-from numpy.typing import NDArray
+from typing import NamedTuple
 
 UNLIMITED = float_info.max
 """Stands for an absent limit: a finite number, so that every target language can write it."""
@@ -35,22 +32,19 @@ class Constants(NamedTuple):
     resting_effort: float
 
 
-Number = TypeVar("Number", float, NDArray[np.float64])
+class GainConstants(NamedTuple):
+    """The constants that gains and times make, the first of `Constants`."""
 
-
-class GainConstants(NamedTuple, Generic[Number]):
-    """The constants that gains and times make, the first of `Constants`; arrays for many tunings."""
-
-    proportional_gain: Number
-    integral_gain: Number
-    derivative_gain: Number
-    derivative_decay: Number
-    windup_gain: Number
+    proportional_gain: float
+    integral_gain: float
+    derivative_gain: float
+    derivative_decay: float
+    windup_gain: float
 
 
 def gain_constants(  # noqa: PLR0913, PLR0917 - one argument for each number that an engineer gives
-    sample_time: float, kp: Number, ki: Number, kd: Number, filter_time: Number, windup_time: Number
-) -> GainConstants[Number]:
+    sample_time: float, kp: float, ki: float, kd: float, filter_time: float, windup_time: float
+) -> GainConstants:
     """Make gains and times into constants; see `bake`. An infinite wind-up time is none."""
     span = filter_time + sample_time
     return GainConstants(kp, ki * sample_time, kd / span, filter_time / span, sample_time / windup_time)
