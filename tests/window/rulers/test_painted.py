@@ -114,6 +114,14 @@ def test_late_paint_fades_and_comes_back(
 
 
 @pytest.mark.usefixtures("kept")
+def test_a_long_wait_is_explained(panel: RulerPanel, worker: Asked, qtbot: QtBot) -> None:
+    """While nothing was painted yet, the line says what is waited for, until the first paint is there."""
+    qtbot.waitUntil(lambda: panel.line.text() == painted.WAITING, timeout=10 * painted.LATE)
+    worker.answer(1)
+    assert panel.line.text().startswith("firm: ")
+
+
+@pytest.mark.usefixtures("kept")
 def test_another_loop_begins_grey(document: Document, panel: RulerPanel, worker: Asked) -> None:
     """Nothing of the loop before is shown for the next one, not even what was on the way."""
     worker.answer(1)

@@ -51,10 +51,10 @@ def test_a_class_that_is_not_known_is_said_so(line: ReadingLine) -> None:
     assert line.text() == "kp 4.2 %  not known yet"
 
 
-def test_a_fault_is_said_in_words(line: ReadingLine) -> None:
+def test_why_the_rulers_are_grey_is_said(line: ReadingLine) -> None:
     """Why the rulers are grey takes the place of the legend, until the legend comes back."""
     legend = line.text()
-    line.show_fault("the loop has no gain")
+    line.show_note("the loop has no gain")
     assert line.text() == "the loop has no gain"
     line.show_legend()
     assert line.text() == legend
@@ -66,7 +66,7 @@ def test_what_does_not_fit_is_in_its_tip(line: ReadingLine) -> None:
     line.resize(200, 20)
     assert line.toolTip() == line.text()
     assert line.minimumSizeHint().width() == 0
-    line.show_fault("short")
+    line.show_note("short")
     assert line.toolTip() == ""
 
 

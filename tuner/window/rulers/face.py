@@ -18,6 +18,7 @@ TRACK_TOP, TRACK_HEIGHT = 12, 12
 _LEAST_GAP = 4  # pixels between two lines of the scale
 _MARK_HEIGHT = 6
 _LETTER = 12  # pixels that the name of a kept tuning takes
+_RAIL = 4  # pixels that a track without classes is thinner above and below
 _HANDLE = 5.0  # pixels that the handle takes on each side
 _FARTHEST = 24.0  # pixels between an edge and its number
 
@@ -82,8 +83,8 @@ def paint_face(painter: QPainter, face: Face, theme: Theme) -> None:
 
 def _paint_track(painter: QPainter, face: Face, theme: Theme) -> None:
     track = QRect(MARGIN, TRACK_TOP, face.length, TRACK_HEIGHT)
-    if face.strip is None:
-        painter.fillRect(track, theme.colour("line"))
+    if face.strip is None:  # a thin rail: grey of the full height might be taken for a class by those who see no green
+        painter.fillRect(track.adjusted(0, _RAIL, 0, -_RAIL), theme.colour("line"))
     else:
         painter.drawImage(track.topLeft(), face.strip)
     if face.span.has_off:

@@ -10,6 +10,8 @@ from tuner.window.rulers.painting import Painting, PaintRequest
 from tuner.window.rulers.panel import RulerPanel
 from tuner.window.shown import Failure
 
+WAITING = "The rulers are grey until their footing is computed; the first time on a machine that takes a while."
+
 LATE = 250
 """Milliseconds after which paint that a change made untrue is shown paler, if nothing newer has come."""
 
@@ -100,9 +102,11 @@ class PaintedRulers(QObject):
         self._panel.unpaint(failure.sentence)
 
     def _fade(self) -> None:
-        """Show paler what is not true of the present sheet any more."""
+        """Show paler what is not true of the present sheet any more, or say why there is nothing to show yet."""
         if self.painting is not None:
             self._panel.fade(self.painting, self._document.sheet)
+        else:
+            self._panel.explain_grey(WAITING)
 
 
 def _are_same(one: tuple[Track, ...], other: tuple[Track, ...]) -> bool:

@@ -52,7 +52,7 @@ class RulerPanel(QWidget):
         self.rulers: dict[str, Ruler] = {}
         self._pointed: Place | None = None
         self._reading: Reading | None = None
-        self._fault_of_paint = ""
+        self._why_grey = ""
         self.form = FormSwitch(document, theme, self)
         self.line = ReadingLine(theme)
         self._grid = QGridLayout(self)
@@ -85,7 +85,7 @@ class RulerPanel(QWidget):
 
     def paint(self, painting: Painting) -> None:
         """Paint every ruler by what was found out about it."""
-        self._fault_of_paint = ""
+        self._why_grey = ""
         for name, ruler in self.rulers.items():
             ruler.show_footing(painting.tracks.get(name))
         self._say_reading()
@@ -97,9 +97,13 @@ class RulerPanel(QWidget):
 
     def unpaint(self, sentence: str = "") -> None:
         """Leave all rulers grey, and say why."""
-        self._fault_of_paint = sentence
         for ruler in self.rulers.values():
             ruler.show_footing(None)
+        self.explain_grey(sentence)
+
+    def explain_grey(self, sentence: str) -> None:
+        """Say why the rulers that are grey are so."""
+        self._why_grey = sentence
         self._say_reading()
 
     @property
@@ -163,14 +167,14 @@ class RulerPanel(QWidget):
     def _say_reading(self) -> None:
         place, reading = self.place, self._reading
         if place is None:
-            if self._fault_of_paint:
-                self.line.show_fault(self._fault_of_paint)
+            if self._why_grey:
+                self.line.show_note(self._why_grey)
             else:
                 self.line.show_legend()
             return
         ruler = self.rulers[place.name]
         grade = ruler.grade_at(place.value) if reading is None else reading.grade
-        sentence = self._fault_of_paint if reading is None else reading.sentence
+        sentence = self._why_grey if reading is None else reading.sentence
         self.line.show_place(ruler.in_words(place.value), grade, sentence)
 
     def _lay_out(self) -> None:

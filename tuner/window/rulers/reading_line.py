@@ -54,9 +54,9 @@ class ReadingLine(QWidget):
         """Say what the patterns mean."""
         self._show(LEGEND)
 
-    def show_fault(self, sentence: str) -> None:
-        """Say why the rulers are not painted."""
-        self._show([Piece(sentence, UNKNOWN, "lost_word")])
+    def show_note(self, sentence: str) -> None:
+        """Say why the rulers are grey."""
+        self._show([Piece(sentence, UNKNOWN)])
 
     def show_place(self, place: str, grade: int, sentence: str) -> None:
         """Say what holds at a place of a ruler: the place and its value, the class, and why."""
