@@ -19,7 +19,8 @@ from numpy.typing import NDArray
 from tests.benchmarks.row import Row, Times, timed
 from tests.published.sampled_by_control import closed_loop
 from tuner.files.sheet import read
-from tuner.footing.grading import Grading, ground_of
+from tuner.footing.grading import Grading
+from tuner.footing.ground import ground_of
 from tuner.model.family import family
 from tuner.model.plant import ZeroPolePlant
 from tuner.model.sheet import Sheet

@@ -6,7 +6,8 @@ from dataclasses import dataclass, replace
 import numpy as np
 
 from tuner.footing.classes import LOST, Classes, Overtaken, Track, never
-from tuner.footing.grading import Grading, ground_of
+from tuner.footing.grading import Grading
+from tuner.footing.ground import ground_of
 from tuner.footing.stability import Flags, stretches
 from tuner.model.family import FAMILY_SIZE
 from tuner.model.sheet import Sheet

@@ -1,146 +1,44 @@
 """The class of many tunings of one sheet at once: bounds decide most, the road of the assessment itself the rest."""
 
-from collections.abc import Callable, Mapping, Sequence
-from concurrent.futures import ThreadPoolExecutor
+from collections.abc import Callable, Sequence
 from dataclasses import astuple, dataclass, field, replace
-from functools import cache, lru_cache, partial
-from itertools import pairwise
+from functools import partial
 from math import ceil, inf, nan
-from os import cpu_count
 from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
 
 from tuner.assess import results_of
-from tuner.footing.chains import Chains, chains_of
+from tuner.footing.chains import Chains
 from tuner.footing.classes import FIRM, LOST, SOFT, UNKNOWN, Classes, Overtaken, never
-from tuner.judge.verdict import limit_result, verdict, worst_case
+from tuner.footing.exact import exactly
+from tuner.footing.ground import Ground
+from tuner.footing.threads import spread_out
 from tuner.kernels import grades, lanes, readings, responses
 from tuner.law.constants import GainConstants, gain_constants
 from tuner.measure.final import family_final_values
-from tuner.measure.runs import LAST_SHARE
+from tuner.measure.loop import damping
 from tuner.model.controller import Controller
-from tuner.model.family import Member, family
 from tuner.model.measures import BY_NAME
 from tuner.model.sheet import Sheet
-from tuner.simulate.batch import RUNAWAY, feedforward_of, law_constants, nominal
-from tuner.simulate.grid import Grid, sampled_grid
-from tuner.simulate.pace import paced
+from tuner.simulate.batch import RUNAWAY, law_constants
+from tuner.simulate.loop import loops_of
+from tuner.simulate.poles import family_poles
 from tuner.simulate.traces import Array
-from tuner.simulate.wiring import processes, wire
 
 _FIRST = 3
 """Plants that every tuning is tried with before those that are left are put together anew."""
-
-_CONTINUOUS = 1000
-"""Steps of the coarser of two runs of a continuous controller."""
 
 _WEIGHTS = ("b", "c")
 
 _STEPS_OF_WINDUP = 8.0
 """Steps of a continuous controller's runs that its wind-up time takes at least."""
 
-_GRADES: Mapping[str, int] = {"met": FIRM, "missed": SOFT, "unstable": LOST}
-
 Flags = NDArray[np.bool_]
 
 _NOTHING = (-1, np.zeros((2, 0, 0)))
 """No measure is watched."""
-
-
-@dataclass(frozen=True, slots=True, eq=False)
-class Ground:
-    """What grading needs of a sheet and that no gain changes.
-
-    Parameters
-    ----------
-    members : tuple of Member
-    misses : ndarray of int, shape (p,)
-        With each plant, how many tunings missed a limit with it first, lately: those that miss most are tried first,
-        which changes how long grading takes and nothing else.
-    speeds : tuple of Speed
-    steps : tuple of float
-        At which the law runs, for each speed.
-    size : tuple of int
-        See `lanes.size_for`.
-    chains : tuple of Chains
-    bounded : bool
-        Whether bounds can be had at all: not where effort and measurement depend on each other in the same instant.
-    """
-
-    members: tuple[Member, ...]
-    misses: NDArray[np.int64]
-    speeds: tuple[grades.Speed, ...]
-    steps: tuple[float, ...]
-    size: lanes.Size
-    chains: tuple[Chains, ...]
-    bounded: bool
-
-
-def ground_of(sheet: Sheet, size: int) -> Ground:
-    """Return the ground of a sheet; the same for all gains, so it is kept.
-
-    Raises
-    ------
-    LoopError
-        When a plant of the family cannot be computed.
-    """
-    controller = sheet.controller
-    bare = Controller(
-        sample_time=controller.sample_time,
-        delay_samples=controller.delay_samples,
-        action=controller.action,
-        measurement_filter=controller.measurement_filter,
-        notch=controller.notch,
-        feedforward=controller.feedforward,
-        disturbance_feedforward=controller.disturbance_feedforward,
-        gain_1=1.0,
-    )
-    return _ground(replace(sheet, controller=bare, limits=()), size)
-
-
-@lru_cache(maxsize=8)
-def _ground(sheet: Sheet, size: int) -> Ground:
-    members = family(sheet.plant, size)
-    grids = _grids(sheet)
-    order = wire(sheet, members, grids[0].step).c.shape[2]
-    kernel = lanes.size_for(order)
-    speeds = tuple(_speed(sheet, members, grid, len(kernel)) for grid in grids)
-    bounded = bool(sheet.controller.sample_time) or not any(one.plant.d for one in processes(sheet, members))
-    steps = tuple(grid.sample_time for grid in grids)
-    misses = np.zeros(len(members), dtype=np.int64)
-    return Ground(members, misses, speeds, steps, kernel, chains_of(sheet, size), bounded)
-
-
-def _grids(sheet: Sheet) -> tuple[Grid, ...]:
-    """Return the grid of the trial; two, the second twice as fine, for a continuous controller."""
-    duration, step = sheet.trial.duration, sheet.controller.sample_time
-    if step:
-        return (sampled_grid(duration, step, nominal(sheet).plant),)
-    return tuple(Grid(duration / count, 1, count + 1) for count in (_CONTINUOUS, 2 * _CONTINUOUS))
-
-
-def _speed(sheet: Sheet, members: Sequence[Member], grid: Grid, size: int) -> grades.Speed:
-    delay = sheet.controller.delay_samples if sheet.controller.sample_time else 0
-    times = grid.times()
-    tail = int(np.searchsorted(times, times[-1] - LAST_SHARE * (times[-1] - times[0])))
-    pace = paced(wire(sheet, members, grid.step), grid, delay, size)
-    return grades.Speed(*pace, feedforward_of(sheet, grid), grid.step, tail)
-
-
-@cache
-def pool() -> ThreadPoolExecutor:
-    """Return the threads that kernels run in."""
-    return ThreadPoolExecutor(cpu_count() or 1, thread_name_prefix="footing")
-
-
-def spread_out(work: Callable[[int, int], object], count: int) -> None:
-    """Let all threads share a range, a stretch each."""
-    threads = min(cpu_count() or 1, count)
-    places = [round(count * k / threads) for k in range(threads + 1)] if threads else []
-    for done in [pool().submit(work, begin, end) for begin, end in pairwise(places)]:
-        done.result()
 
 
 class Numbers(NamedTuple):
@@ -162,13 +60,6 @@ def numbers_of(tunings: Sequence[Controller]) -> Numbers:
         for one in tunings
     ]
     return Numbers(*np.array(rows).reshape(-1, 7).T)
-
-
-def exactly(sheet: Sheet, ground: Ground, tuning: Controller, members: Sequence[int]) -> int:
-    """Return the class of one tuning with some plants of the family, as the assessment has it."""
-    results = results_of(replace(sheet, controller=tuning), [ground.members[i] for i in members])
-    limits = [limit_result(name, limit, worst_case(BY_NAME[name], results)) for name, limit in sheet.limits]
-    return _GRADES[verdict(results, limits)]
 
 
 @dataclass(slots=True, eq=False)
@@ -217,6 +108,7 @@ class Grading:
             looked_at = active.copy()
             self._try_trials(active, doubt)
             self._try_margins(active, doubt)
+            self._try_damping(active)
             found[(looked_at != 0) & (active == 0)] = SOFT
             self._note_doubts(found, active, doubt)
         found[unsure] = UNKNOWN
@@ -399,9 +291,18 @@ class Grading:
         active[left] = still[which]
         doubt[left] |= unclear[which]
 
+    def _try_damping(self, active: NDArray[np.uint8]) -> None:
+        """Lay a limit on the damping, for which every tuning's poles are found."""
+        least = dict(self.sheet.limits).get("damping")
+        if least is None:
+            return
+        for at in np.flatnonzero(active).tolist():
+            self._check()
+            loops = loops_of(replace(self.sheet, controller=self.tunings[at]), self.ground.members)
+            found = [damping(one.values, -inf if one.complete else one.known_from) for one in family_poles(loops)]
+            active[at] = all(one is not None and one >= least for one in found)
+
     def _note_doubts(self, found: Classes, active: NDArray[np.uint8], doubt: NDArray[np.uint8]) -> None:
-        if self._has_limit(("damping",)):
-            doubt[active != 0] = 1
         for at in np.flatnonzero((active != 0) & doubt.any(axis=1)).tolist():
             found[at] = UNKNOWN
             self.doubts[at] = np.flatnonzero(doubt[at]).tolist()

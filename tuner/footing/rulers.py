@@ -8,7 +8,9 @@ import numpy as np
 from numpy.typing import NDArray
 
 from tuner.footing.classes import LOST, SOFT, UNKNOWN, Classes, Edge, PaintedTrack, Track, never, painted, tuned
-from tuner.footing.grading import Grading, Ground, exactly, ground_of
+from tuner.footing.exact import exactly
+from tuner.footing.grading import Grading
+from tuner.footing.ground import Ground, ground_of
 from tuner.footing.stability import Stretches, counts, stretches
 from tuner.model.family import FAMILY_SIZE
 from tuner.model.sheet import Sheet
