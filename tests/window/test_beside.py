@@ -102,7 +102,7 @@ def test_long_work_is_due_in_the_end() -> None:
     long = Pace(1.0, ended=100.0)
     assert long.gives_way(100.0 + LATE_TIMES - 0.01)
     assert not long.gives_way(100.0 + LATE_TIMES + 0.01)
-    assert not Pace(0.05, ended=100.0).gives_way(100.0 + LATE + 0.01)
+    assert not Pace(1.1 * SHORT, ended=100.0).gives_way(100.0 + max(LATE, 1.1 * LATE_TIMES * SHORT) + 0.01)
     assert not Pace().gives_way(0.0)
 
 

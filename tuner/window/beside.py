@@ -13,13 +13,13 @@ from tuner.footing.classes import Overtaken
 from tuner.window.shown import Failure
 from tuner.window.slot import Slot
 
-SHORT = 0.040
+SHORT = 0.120
 """Seconds that a piece of work may take and still be done whole when something newer is asked."""
 
 REST = 0.060
 """Seconds that longer work waits for the hand to rest before it begins."""
 
-LATE, LATE_TIMES = 0.150, 1.5
+LATE, LATE_TIMES = 0.100, 1.0
 """Seconds, or times its cost, after which longer work is due although the hand still moves."""
 
 _log = logging.getLogger(__name__)
