@@ -131,22 +131,34 @@ def _decide(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
 
 
 @compiled
-def _extrapolate(begin: int, end: int, coarse: Array, low: Array, high: Array) -> None:
+def _any(flags: Flags, begin: int, end: int) -> bool:
+    """Return whether any flag of a stretch is set."""
+    found = False
+    for i in range(begin, end):
+        found |= bool(flags[i] != 0)
+    return found
+
+
+@compiled
+def _extrapolate(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
+    begin: int, end: int, coarse_low: Array, coarse_high: Array, low: Array, high: Array
+) -> None:
     """Lead bounds at two steps, one half of the other, to those at none; they then hold for a good extrapolation too.
 
     Parameters
     ----------
-    coarse : ndarray, shape (2, 13, lanes)
+    coarse_low, coarse_high : ndarray, shape (13, lanes)
         Bounds at the longer step.
     """
     for measure in range(begin, end):
         for i in range(LANES):
-            a, b = 0.5 * (coarse[0, measure, i] + coarse[1, measure, i]), 0.5 * (low[measure, i] + high[measure, i])
+            least, most = coarse_low[measure, i], coarse_high[measure, i]
+            a, b = 0.5 * (least + most), 0.5 * (low[measure, i] + high[measure, i])
             if math.isfinite(a) and math.isfinite(b):
-                wide = 0.5 * (coarse[1, measure, i] - coarse[0, measure, i]) + (high[measure, i] - low[measure, i])
+                wide = 0.5 * (most - least) + (high[measure, i] - low[measure, i])
                 wide += BEYOND * abs(b - a) + EXTRAPOLATED * (abs(b) + (100.0 if measure in PERCENTS else 0.0))
                 low[measure, i], high[measure, i] = 2.0 * b - a - wide, 2.0 * b - a + wide
-            elif not (coarse[0, measure, i] == low[measure, i] and coarse[1, measure, i] == high[measure, i]):
+            elif not (least == low[measure, i] and most == high[measure, i]):
                 low[measure, i], high[measure, i] = -math.inf, math.inf
 
 
@@ -160,14 +172,15 @@ def _both(  # noqa: PLR0913, PLR0917 - what a run takes
     g: int,
     m: int,
     asked: Flags,
-    scratch: tuple[Array, Array, Array, Array, Array],
+    scratch: tuple[Array, Array, Array, Array],
+    coarse_low: Array,
+    coarse_high: Array,
     low: Array,
     high: Array,
 ) -> None:
     """Run a block with a plant, the reference run or the disturbance run, and bound its measures."""
-    y, u, state, work, coarse = scratch
+    y, u, state, work = scratch
     totals = state[(2 * len(size) + 2 + 8) * LANES :]
-    coarse_bounds = coarse.reshape((2, len(MEASURES), LANES))
     begin, end = (0, REFERENCE_COUNT) if which == 0 else (REFERENCE_COUNT, len(MEASURES))
     for v in range(len(course.speeds)):
         speed = course.speeds[v]
@@ -196,9 +209,11 @@ def _both(  # noqa: PLR0913, PLR0917 - what a run takes
                 high,
             )
         if v == 0 and len(course.speeds) > 1:
-            coarse_bounds[0, begin:end], coarse_bounds[1, begin:end] = low[begin:end], high[begin:end]
+            for measure in range(begin, end):
+                for i in range(LANES):
+                    coarse_low[measure, i], coarse_high[measure, i] = low[measure, i], high[measure, i]
         if v > 0:
-            _extrapolate(begin, end, coarse_bounds, low, high)
+            _extrapolate(begin, end, coarse_low, coarse_high, low, high)
 
 
 @compiled
@@ -215,27 +230,28 @@ def grade(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
     points, samples = course.speeds[-1].timing[0, 2], course.speeds[-1].timing[0, 3]
     scratch = (
         np.empty(points * LANES), np.empty(samples * LANES), np.empty((2 * len(size) + 2 + 12) * LANES),
-        np.empty(WORK_ROWS * LANES), np.empty(2 * len(MEASURES) * LANES),
+        np.empty(WORK_ROWS * LANES),
     )  # fmt: skip
     low, high = np.zeros((len(MEASURES), LANES)), np.zeros((len(MEASURES), LANES))
+    coarse_low, coarse_high = np.zeros((len(MEASURES), LANES)), np.zeros((len(MEASURES), LANES))
     asked = np.zeros(len(MEASURES), dtype=np.uint8)
     for measure in range(len(MEASURES)):
         asked[measure] = 1 if not math.isnan(course.limits[measure]) or measure == course.watched else 0
-    first, second = asked[:REFERENCE_COUNT].any(), asked[REFERENCE_COUNT:].any()
+    first, second = _any(asked, 0, REFERENCE_COUNT), _any(asked, REFERENCE_COUNT, len(MEASURES))
     for g in range(begin, end):
         for q in range(course.order.shape[0]):
             m = course.order[q]
-            if course.watched < 0 and not blocks.active[g].any():
+            if course.watched < 0 and not _any(blocks.active[g], 0, LANES):
                 break
             left = True
             if first:
-                _both(size, filters, course, blocks, 0, g, m, asked, scratch, low, high)
+                _both(size, filters, course, blocks, 0, g, m, asked, scratch, coarse_low, coarse_high, low, high)
                 left = _decide(
                     course.limits, 0, REFERENCE_COUNT, low, high, blocks.active[g], blocks.doubt[g, m],
                     blocks.misses, m,
                 )  # fmt: skip
             if second and (left or course.watched >= REFERENCE_COUNT):
-                _both(size, filters, course, blocks, 1, g, m, asked, scratch, low, high)
+                _both(size, filters, course, blocks, 1, g, m, asked, scratch, coarse_low, coarse_high, low, high)
                 _decide(
                     course.limits, REFERENCE_COUNT, len(MEASURES), low, high, blocks.active[g], blocks.doubt[g, m],
                     blocks.misses, m,

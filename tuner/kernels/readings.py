@@ -206,22 +206,21 @@ def reference_bounds(  # noqa: C901, PLR0912, PLR0913, PLR0917 - every measure o
     _final_values(y, points, tail, totals, exact, final, work)
     for i in range(LANES):
         usable = abs(final[i]) > NOTHING * abs(step)
-        scale[i] = 1.0 / final[i] if usable else math.inf
+        scale[i] = 1.0 / final[i] if usable else 0.0
         reach[i] = band * abs(final[i])
-    safe = np.where(np.isfinite(scale), scale, 0.0)
     if asked[0] or asked[1] or asked[5]:
-        _excursions(y, points, safe, work)
+        _excursions(y, points, scale, work)
         for i in range(LANES):
-            highest = _height(y, points, int(work[_TOP_AT * LANES + i]), safe[i], i)
-            lowest = _height(y, points, int(work[_BOTTOM_AT * LANES + i]), -safe[i], i)
+            highest = _height(y, points, int(work[_TOP_AT * LANES + i]), scale[i], i)
+            lowest = _height(y, points, int(work[_BOTTOM_AT * LANES + i]), -scale[i], i)
             low[0, i], high[0, i] = _excess(highest - 1.0)
             low[5, i], high[5, i] = _excess(lowest if work[_BOTTOM * LANES + i] < -NOTHING else 0.0)
     if asked[1]:
-        _first_turn(y, points, safe, work)
+        _first_turn(y, points, scale, work)
         for i in range(LANES):
             low[1, i], high[1, i] = _turn_time(work[_TURN * LANES + i], spacing, low[0, i], high[0, i])
     if asked[2]:
-        _rise(y, points, safe, work)
+        _rise(y, points, scale, work)
         for i in range(LANES):
             low[2, i], high[2, i] = _rise_time(work[_TENTH * LANES + i], work[_NINE * LANES + i], spacing)
     if asked[3]:
@@ -239,7 +238,7 @@ def reference_bounds(  # noqa: C901, PLR0912, PLR0913, PLR0917 - every measure o
         low[7, i] = high[7, i] = totals[PEAK * LANES + i]
         low[8, i] = high[8, i] = totals[TRAVEL * LANES + i]
         low[9, i] = high[9, i] = totals[LIMITED * LANES + i] * shown_scale
-        if not math.isfinite(scale[i]):
+        if scale[i] == 0.0:
             for measure in (0, 1, 2, 3, 5):
                 low[measure, i] = high[measure, i] = math.inf
         if _doubtful(y, points, totals, step, i):
