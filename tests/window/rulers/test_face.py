@@ -49,7 +49,7 @@ def test_a_mark_goes_before_the_place_of_an_edge(theme: Theme) -> None:
     x = shown.x_of(10.5)
     assert above(shown, theme, x - 6, x + 6) == above(alone, theme, x - 6, x + 6)
     assert above(shown, theme, x + 7, x + 40) > 20
-    crowd = [Mark("reset", "as opened", 10.0 * 1.06**step) for step in range(6)]
+    crowd = [Mark("reset", "as opened", 10.0 * 1.06**step) for step in range(-6, 6)]
     shown, alone = face(1.0, *crowd), face(1.0, *crowd, edges=())
     assert above(shown, theme, 0, 516) == above(alone, theme, 0, 516)
 

@@ -102,13 +102,16 @@ def test_answers_come_in_order(document: Document, panel: RulerPanel, worker: As
 def test_late_paint_fades_and_comes_back(
     document: Document, panel: RulerPanel, worker: Asked, kept: PaintedRulers, qtbot: QtBot
 ) -> None:
-    """Paint that a change made untrue pales after a while, kp's own does not, and the next answer brings it back."""
+    """Paint that a change made untrue pales after a while, kp's own does not; it stays so until it is up to date."""
     worker.answer(1)
     document.change_value("kp", 4.0)
     sliders = {name: panel.rulers[name].slider for name in ("kp", "ki")}
     qtbot.waitUntil(lambda: sliders["ki"]._faded, timeout=10 * painted.LATE)
     assert not sliders["kp"]._faded
+    document.change_value("kp", 5.0)
     worker.answer(2)
+    assert sliders["ki"]._faded
+    worker.answer(3)
     assert not sliders["ki"]._faded
     assert not kept._late.isActive()
 

@@ -115,7 +115,7 @@ def test_only_untrue_paint_fades(panel: RulerPanel, document: Document, theme: T
     painting = _painting(panel, document, "kp", "ki")
     panel.paint(painting)
     document.change_value("kp", 9.0)
-    panel.fade(painting, document.sheet)
+    panel.paint(painting, document.sheet)
     colours = _colours(panel)
     assert colours["kp"] == theme.colour("firm")
     assert colours["ki"] not in (theme.colour("firm"), theme.colour("line"))

@@ -123,12 +123,14 @@ def _paint_number(painter: QPainter, face: Face, x: float, text: str, colour: QC
 
 
 def _paint_edge(painter: QPainter, face: Face, edge: Edge, theme: Theme) -> None:
-    """Write the place of an edge above it, as a flag on the side away from the handle, where nothing else stands."""
+    """Write the place of an edge above it: past what stands there, away from the handle if there is room."""
     if edge.value < face.span.low or edge.value > face.span.high:
         return
     x, text = face.x_of(edge.value), edge_number(edge)
     width = painter.fontMetrics().horizontalAdvance(text)
-    left = _free_place(face, x, width, to_the_right=edge.value > (face.value or 0.0))
+    away = edge.value > (face.value or 0.0)
+    sides = (_free_place(face, x, width, to_the_right=side) for side in (away, not away))
+    left = next((place for place in sides if place is not None), None)
     if left is None:
         return
     ink = theme.colour("ink")

@@ -32,7 +32,7 @@ class PaintedRulers(QObject):
     def __init__(self, document: Document, panel: RulerPanel, worker: Beside[PaintRequest]) -> None:
         super().__init__(panel)
         self._document, self._panel, self._worker = document, panel, worker
-        self._awake = False
+        self._awake = self._is_pale = False
         self._asked = self._shown = self._first = 0
         self._generation = document.generation
         self._wanted: tuple[Sheet, tuple[Track, ...]] | None = None
@@ -83,16 +83,19 @@ class PaintedRulers(QObject):
         """Forget the loop that was open before, and what is on the way for it."""
         self._generation, self._first = self._document.generation, self._asked + 1
         self._wanted = self.painting = None
+        self._is_pale = False
         self._panel.unpaint()
 
     def _answered(self, painting: Painting) -> None:
         if painting.number < max(self._first, self._shown):
             return
         self._shown, self.painting = painting.number, painting
-        self._late.stop()
-        if painting.number < self._asked:
+        if painting.number == self._asked:
+            self._late.stop()
+            self._is_pale = False
+        elif not self._is_pale:
             self._late.start()
-        self._panel.paint(painting)
+        self._show()
 
     def _failed(self, failure: Failure) -> None:
         if failure.number < self._asked:
@@ -103,10 +106,15 @@ class PaintedRulers(QObject):
 
     def _fade(self) -> None:
         """Show paler what is not true of the present sheet any more, or say why there is nothing to show yet."""
-        if self.painting is not None:
-            self._panel.fade(self.painting, self._document.sheet)
-        else:
+        self._is_pale = True
+        self._show()
+
+    def _show(self) -> None:
+        """Show what there is; once late it stays pale until something is up to date, so that nothing flickers."""
+        if self.painting is None:
             self._panel.explain_grey(WAITING)
+        else:
+            self._panel.paint(self.painting, self._document.sheet if self._is_pale else None)
 
 
 def _are_same(one: tuple[Track, ...], other: tuple[Track, ...]) -> bool:

@@ -83,17 +83,12 @@ class RulerPanel(QWidget):
         """Return what there is to find out along all rulers."""
         return tuple(ruler.track() for ruler in self.rulers.values())
 
-    def paint(self, painting: Painting) -> None:
-        """Paint every ruler by what was found out about it."""
-        self._why_grey = ""
+    def paint(self, painting: Painting, late_for: Sheet | None = None) -> None:
+        """Paint every ruler by what was found out about it, paler where that is untrue of a sheet it is late for."""
         for name, ruler in self.rulers.items():
-            ruler.show_footing(painting.tracks.get(name))
-        self._say_reading()
-
-    def fade(self, painting: Painting, sheet: Sheet) -> None:
-        """Show paler what is painted by a painting that is not true of a sheet."""
-        for name, ruler in self.rulers.items():
-            ruler.show_footing(painting.tracks.get(name), faded=not painting.holds(name, sheet))
+            faded = late_for is not None and not painting.holds(name, late_for)
+            ruler.show_footing(painting.tracks.get(name), faded=faded)
+        self.explain_grey("")
 
     def unpaint(self, sentence: str = "") -> None:
         """Leave all rulers grey, and say why."""
