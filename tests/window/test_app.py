@@ -40,6 +40,7 @@ def test_a_sample_becomes_a_sheet_without_a_file() -> None:
 
 def test_the_rulers_are_painted_after_the_first_answer(qtbot: QtBot, qapp: QApplication) -> None:
     """The footing sleeps until the first verdict is shown, then paints every ruler; a close ends its threads."""
+    memory.remember(memory.Memory(theme="light"))
     window, wiring = built(qapp, opened(None), Answers(unsaved="discard"))
     rulers = window.rulers.rulers.values()
     assert wiring.footing is not None

@@ -105,8 +105,8 @@ def wire(window: MainWindow, asking: Asking, footing: Footing | None = None) -> 
     wiring = Wiring(menus, files, keeping, footing)
     window.closing.connect(lambda event: _close(window, wiring, event))
     if footing is not None:
-        window.assessor.answered.connect(lambda shown: footing.wake_after(shown.whole))
-        window.assessor.failed.connect(lambda _failure: footing.wake_after(True))
+        window.assessor.answered.connect(footing.painted.wake_after_answer)
+        window.assessor.failed.connect(footing.painted.wake_after_failure)
     return wiring
 
 

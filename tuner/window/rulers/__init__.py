@@ -18,11 +18,6 @@ class Footing:
     painted: PaintedRulers
     reader: RulerReader
 
-    def wake_after(self, whole: bool) -> None:
-        """Begin to paint once there is a whole answer: the first curves have the machine to themselves."""
-        if whole:
-            self.painted.wake()
-
     def close(self) -> None:
         """End both workers and wait for them."""
         self.painted.close()

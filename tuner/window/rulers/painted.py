@@ -8,7 +8,7 @@ from tuner.session.document import Document
 from tuner.window.beside import Beside
 from tuner.window.rulers.painting import Painting, PaintRequest
 from tuner.window.rulers.panel import RulerPanel
-from tuner.window.shown import Failure
+from tuner.window.shown import Failure, Shown
 
 WAITING = "The rulers are grey until their footing is computed; the first time on a machine that takes a while."
 
@@ -53,6 +53,15 @@ class PaintedRulers(QObject):
         if not self._awake:
             self._awake = True
             self.ask()
+
+    def wake_after_answer(self, shown: Shown) -> None:
+        """Begin to ask once a whole answer is shown."""
+        if shown.whole:
+            self.wake()
+
+    def wake_after_failure(self, _failure: Failure) -> None:
+        """Begin to ask although the loop cannot be assessed as it is now."""
+        self.wake()
 
     def ask(self) -> None:
         """Ask for the footing of the sheet as it is now, unless it was asked for already."""
