@@ -21,7 +21,7 @@ NAMES = (
 )
 """The rows, in the order in which they are told."""
 
-LONG = ("changes_growth_mb",)
+LONG = ("changes_growth_mb", "growth_exponent")
 """Rows that take minutes; measured only when they are asked for by name."""
 
 _HEAD = ("name", "figure", "p99", "yardstick", "ratio", "goal")

@@ -101,7 +101,7 @@ def stretches(
         )
         for chains in chains_of(sheet, size)
     ]
-    return _stretches(track.name, groups)
+    return _stretches(track.name, groups, span)
 
 
 def _is_flat(controller: Controller, chains: Chains) -> bool:
@@ -113,36 +113,50 @@ def _with(sheet: Sheet, name: str, value: float) -> Sheet:
     return replace(sheet, controller=sheet.controller.with_value(name, value))
 
 
-def _stretches(name: str, groups: Sequence[_Counted]) -> Stretches | None:
+class _Changes(NamedTuple):
+    """How many plants are unstable below all places, and by how many more or fewer they are beyond each."""
+
+    at_first: int
+    places: Array
+    more: Counts
+
+
+def _stretches(name: str, groups: Sequence[_Counted], span: tuple[float, float]) -> Stretches | None:
     """Lay the crossings of all plants over each other."""
-    places = np.unique(np.concatenate([group.crossings.q for group in groups]))
-    between = _between(places)
-    lost = np.zeros(len(between), dtype=bool)
-    for group in groups:
-        found = _poles_beyond(group, between)
-        if (found < 0).any():
-            return None
-        lost |= (found > 0).any(axis=0)
+    found = [_changes(group, span) for group in groups]
+    known = [one for one in found if one is not None]
+    if len(known) < len(found):
+        return None
+    places, more = np.concatenate([one.places for one in known]), np.concatenate([one.more for one in known])
+    order = np.argsort(places, kind="stable")
+    places, unstable = places[order], sum(one.at_first for one in known) + np.cumsum(more[order])
+    within = (places > span[0]) & (places < span[1])
+    before = int(np.searchsorted(places, span[0], side="right"))
+    first = bool((unstable[before - 1] if before else sum(one.at_first for one in known)) > 0)
+    lost = np.append(first, unstable[within] > 0)
     changes = np.flatnonzero(lost[1:] != lost[:-1])
-    edges = value_of(name, places[changes])
-    kept = np.append(lost[:1], lost[1:][changes])
+    edges, kept = value_of(name, places[within][changes]), np.append(lost[:1], lost[1:][changes])
     if name in INVERSE:
         edges, kept = edges[::-1], kept[::-1]
     return Stretches(np.ascontiguousarray(edges), np.ascontiguousarray(kept))
 
 
-def _between(places: Array) -> Array:
-    """Return a gain before the first place, between places, and after the last."""
-    if not len(places):
-        return np.ones(1)
-    middle = np.sqrt(places[1:] * places[:-1])
-    return np.concatenate(([0.5 * places[0]], middle, [2.0 * places[-1]]))
-
-
-def _poles_beyond(group: _Counted, q: Array) -> NDArray[np.int64]:
-    """Return how many poles lie beyond the border at gains, shape (p, k)."""
+def _changes(group: _Counted, span: tuple[float, float]) -> _Changes | None:
+    """Return where plants become unstable and where they no longer are; None when a count comes out below zero."""
     row, at, change, _ = group.crossings
-    passed = (at[:, None] < q).astype(np.int64) - (at < group.at).astype(np.int64)[:, None]
-    found = np.repeat(group.base[:, None], len(q), axis=1)
-    np.add.at(found, row, change[:, None] * passed)
-    return found
+    order = np.lexsort((at, row))
+    row, at, change = row[order], at[order], change[order]
+    start = group.base.copy()
+    np.subtract.at(start, row, change * (at < group.at))
+    total = np.cumsum(change)
+    first = np.searchsorted(row, row)
+    beyond = start[row] + total - np.where(first > 0, total[first - 1], 0)
+    below = beyond - change
+    following = np.append(np.where(row[1:] == row[:-1], at[1:], np.inf), np.inf)[: len(at)]
+    alone = np.full(len(start), np.inf)
+    np.minimum.at(alone, row, at)
+    wrong = ((beyond < 0) & (at < span[1]) & (following > span[0])).any() or ((start < 0) & (alone > span[0])).any()
+    if wrong:
+        return None
+    more = (beyond > 0).astype(np.int64) - (below > 0)
+    return _Changes(int((start > 0).sum()), at[more != 0], more[more != 0])
