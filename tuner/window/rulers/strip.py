@@ -1,10 +1,13 @@
 """The painted track of a ruler: classes along it as colour and pattern."""
 
+from functools import lru_cache
+
 import numpy as np
 from numpy.typing import NDArray
 from PySide6.QtGui import QColor, QImage
 
 from tuner.footing.classes import FIRM, LOST, SOFT, UNKNOWN
+from tuner.window.palette import Shade, palette
 from tuner.window.theme import Theme
 
 _DOT, _HATCH, _HATCH_WIDTH = 4, 6, 2
@@ -27,38 +30,40 @@ def class_strip(classes: NDArray[np.integer], width: int, height: int, theme: Th
         Paint paler, since the loop has changed and nothing newer is known yet.
     """
     columns = _columns(np.asarray(classes), width)
-    marked = _marked(columns, height)
-    pixels = np.ascontiguousarray(_colours(theme, faded)[columns[np.newaxis, :], marked.astype(np.intp)])
+    dots, lines = _patterns(width, height)
+    marked = (dots & (columns == SOFT)) | (lines & (columns == LOST))
+    pixels = np.ascontiguousarray(_colours(theme.palette.shade, faded)[2 * columns + marked])
     # The copy owns its pixels; a picture over the array would outlive it.
     return QImage(pixels.data, width, height, 4 * width, QImage.Format.Format_RGB32).copy()
 
 
 def _columns(classes: NDArray[np.integer], width: int) -> NDArray[np.intp]:
     """Return the class of every column of pixels, shape (width,)."""
-    pieces = np.arange(width) * len(classes) // width
     known = np.where((classes >= FIRM) & (classes <= LOST), classes, UNKNOWN)
-    return known[pieces].astype(np.intp)
+    pieces = known if len(known) == width else known[np.arange(width) * len(known) // width]
+    return pieces.astype(np.intp)
 
 
-def _marked(columns: NDArray[np.intp], height: int) -> NDArray[np.bool_]:
-    """Return where the second colour of a pattern goes, shape (height, width): dots, or slanting lines."""
-    across, down = np.arange(len(columns))[np.newaxis, :], np.arange(height)[:, np.newaxis]
-    dots = (across % _DOT == 1) & (down % _DOT == 1)
-    lines = (across + down) % _HATCH < _HATCH_WIDTH
-    return np.where(columns == SOFT, dots, np.where(columns == LOST, lines, False))
+@lru_cache(maxsize=32)
+def _patterns(width: int, height: int) -> tuple[NDArray[np.bool_], NDArray[np.bool_]]:
+    """Return where the second colour of dots and of slanting lines goes, shape (height, width) each."""
+    across, down = np.arange(width)[np.newaxis, :], np.arange(height)[:, np.newaxis]
+    return (across % _DOT == 1) & (down % _DOT == 1), (across + down) % _HATCH < _HATCH_WIDTH
 
 
-def _colours(theme: Theme, faded: bool) -> NDArray[np.uint32]:
-    """Return plain and pattern colour of each class, shape (4, 2)."""
-    ink, page = QColor("#000000"), theme.colour("page")
+@lru_cache
+def _colours(shade: Shade, faded: bool) -> NDArray[np.uint32]:
+    """Return plain and pattern colour of each class, one after the other, shape (8,)."""
+    colours = {role: QColor(colour) for role, colour in palette(shade).colours.items()}
+    ink, page = QColor("#000000"), colours["page"]
     pairs = [
-        (theme.colour("firm"), theme.colour("firm")),
-        (theme.colour("soft"), _between(theme.colour("soft"), ink, 0.55)),
-        (theme.colour("lost"), _between(theme.colour("lost"), page, 0.7)),
-        (theme.colour("line"), theme.colour("line")),
+        (colours["firm"], colours["firm"]),
+        (colours["soft"], _between(colours["soft"], ink, 0.55)),
+        (colours["lost"], _between(colours["lost"], page, 0.7)),
+        (colours["line"], colours["line"]),
     ]
     share = _FADED if faded else 0.0
-    return np.array([[_between(one, page, share).rgb() for one in pair] for pair in pairs], dtype=np.uint32)
+    return np.array([_between(one, page, share).rgb() for pair in pairs for one in pair], dtype=np.uint32)
 
 
 def _between(one: QColor, other: QColor, share: float) -> QColor:
