@@ -6,7 +6,7 @@ import numpy as np
 import pytest
 
 from tuner.kernels import compiled as door
-from tuner.kernels.compiled import compiled
+from tuner.kernels.compiled import compiled, compiled_lanes
 
 
 @compiled
@@ -23,6 +23,17 @@ def test_a_compiled_function_keeps_its_plain_self() -> None:
 def test_division_by_zero_gives_infinity() -> None:
     """As arrays do, a compiled division by zero gives infinity and raises nothing."""
     assert _ratio(1.0, 0.0) == np.inf
+
+
+def test_exact_code_is_never_that_of_the_lanes() -> None:
+    """One function compiled with and without freedoms is kept in two places, so that neither is taken for the other."""
+
+    def product(one: float, other: float) -> float:
+        return one * other + 1.0
+
+    exact, free, again = compiled(product), compiled_lanes(product), compiled(product)
+    kept = [function._cache.cache_path for function in (exact, free, again)]  # type: ignore[attr-defined]  # numba's
+    assert kept[0] == kept[2] != kept[1]
 
 
 def test_the_cache_notices_a_changed_law(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:

@@ -20,7 +20,7 @@ def compiled(function: Function) -> Function:
     Arithmetic is that of IEEE 754 in the order written: no fast arithmetic, no contraction. The lock of the
     interpreter is let go while it runs. ``function.py_func`` is the plain function.
     """
-    return cast(Function, _decorator(EXACT)(function))
+    return _compiled(function, EXACT)
 
 
 def compiled_lanes(function: Function) -> Function:
@@ -29,7 +29,7 @@ def compiled_lanes(function: Function) -> Function:
     Products and sums may be contracted, and no number is taken to be infinite or none: what is computed agrees with
     `compiled` to rounding, and only there where every number is finite.
     """
-    return cast(Function, _decorator(ALONG_LANES)(function))
+    return _compiled(function, ALONG_LANES)
 
 
 EXACT: frozenset[str] = frozenset()
@@ -37,17 +37,21 @@ ALONG_LANES = frozenset({"contract", "nsz", "nnan", "ninf"})
 """Freedoms of the compiler's arithmetic; none of them lets sums be taken in another order."""
 
 
-@cache
-def _decorator(freedoms: frozenset[str]) -> Callable[[Callable[..., object]], object]:
+def _compiled(function: Function, freedoms: frozenset[str]) -> Function:
+    """Compile with some freedoms, and keep the result in their own folder: the key of numba is the same for all."""
     keep_compiled_kernels()
     import numba
     from numba.core import config
 
-    vars(config)["CACHE_DIR"] = str(Path(os.environ["NUMBA_CACHE_DIR"]) / _stamp())
-    return cast(
-        Callable[[Callable[..., object]], object],
-        numba.njit(cache=True, nogil=True, fastmath=set(freedoms) or False, error_model="numpy"),
-    )
+    folder = "-".join((_stamp_of_this_run(), *sorted(freedoms)))
+    vars(config)["CACHE_DIR"] = str(Path(os.environ["NUMBA_CACHE_DIR"]) / folder)
+    decorator = numba.njit(cache=True, nogil=True, fastmath=set(freedoms) or False, error_model="numpy")
+    return cast(Function, cast(Callable[[Callable[..., object]], object], decorator)(function))
+
+
+@cache
+def _stamp_of_this_run() -> str:
+    return _stamp()
 
 
 def _stamp() -> str:
