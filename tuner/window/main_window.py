@@ -9,7 +9,9 @@ from PySide6.QtWidgets import QMainWindow, QScrollArea, QSplitter, QVBoxLayout, 
 from tuner.session.document import Document
 from tuner.window.editors.panel import EditorPanel
 from tuner.window.elided import ElidedLabel
+from tuner.window.frequency.page import FrequencyPage
 from tuner.window.memory import Memory
+from tuner.window.pages import Pages
 from tuner.window.plot_grid import PlotGrid
 from tuner.window.ribbon import Ribbon
 from tuner.window.rulers.panel import RulerPanel
@@ -52,6 +54,8 @@ class MainWindow(QMainWindow):
         self.document, self.theme, self.assessor = document, theme, assessor
         self.editors, self.rulers = editors, rulers
         self.ribbon, self.plots, self.notes = Ribbon(theme), PlotGrid(theme), ElidedLabel()
+        self.frequency = FrequencyPage(theme)
+        self.pages = Pages(theme, (self.plots, self.frequency))
         self.shown: Shown | None = None
         self._asked = self._first = 0
         self._generation = document.generation
@@ -74,7 +78,7 @@ class MainWindow(QMainWindow):
     def _explain_wait(self) -> None:
         """Say why the first answer takes so long, if it does."""
         if self.shown is None and self._why == _ASSESSING:
-            self.plots.say_empty(_COMPILING)
+            self.pages.say_empty(_COMPILING)
 
     def closeEvent(self, event: QCloseEvent) -> None:
         """Let others object, else end the worker and wait for it."""
@@ -101,7 +105,7 @@ class MainWindow(QMainWindow):
 
     def ask(self) -> None:
         """Ask for an answer, unless what decides it has not changed since the last one was asked for."""
-        wanted = (self.document.sheet, self.document.kept)
+        wanted = (self.document.sheet, self.document.kept, self.pages.page.wants_frequency)
         anew = self.document.generation != self._generation
         if wanted == self._requested and not anew:
             return
@@ -117,7 +121,7 @@ class MainWindow(QMainWindow):
         if shown.number < self._first:
             return
         self.shown = shown
-        self.plots.show(shown)
+        self.pages.show(shown)
         if shown.whole:
             self.ribbon.show(shown)
             self.editors.show(shown.assessment)
@@ -127,7 +131,7 @@ class MainWindow(QMainWindow):
         """Forget the loop that was open before: its answers on the way are not shown any more."""
         self._generation, self._first = self.document.generation, self._asked
         self._fault = ""
-        self.plots.forget()
+        self.pages.forget()
 
     def _failed(self, failure: Failure) -> None:
         """Say why there is no answer; the last curves stay, greyed."""
@@ -135,8 +139,8 @@ class MainWindow(QMainWindow):
             return
         self._why = failure.sentence
         self.ribbon.fail(failure.sentence)
-        self.plots.show_stale()
-        self.plots.say_empty(failure.sentence)
+        self.pages.show_stale()
+        self.pages.say_empty(failure.sentence)
 
     def why_no_verdict(self) -> str:
         """Return why there is no verdict on the sheet as it is now."""
@@ -161,7 +165,7 @@ class MainWindow(QMainWindow):
     # Layout -----------------------------------------------------------------------------------------------------
 
     def _arrange(self) -> None:
-        self.across = _splitter(Qt.Orientation.Horizontal, self.editors, self.plots.widget)
+        self.across = _splitter(Qt.Orientation.Horizontal, self.editors, self.pages.widget)
         self.across.setStretchFactor(1, 1)
         self.across.setSizes([_EDITOR_WIDTH, 1000])
         self.upwards = _splitter(Qt.Orientation.Vertical, self.across, _with_line(self.rulers))
@@ -184,8 +188,9 @@ class MainWindow(QMainWindow):
         self._stop_listening = self.document.listen(self._document_changed)
         self.assessor.answered.connect(self._answered)
         self.assessor.failed.connect(self._failed)
-        self.rulers.dragging_started.connect(lambda: self.plots.hold(True))
-        self.rulers.dragging_finished.connect(lambda: self.plots.hold(False))
+        self.rulers.dragging_started.connect(lambda: self.pages.hold(True))
+        self.rulers.dragging_finished.connect(lambda: self.pages.hold(False))
+        self.pages.chosen.connect(lambda _name: self.ask())
 
     def layout_memory(self) -> Memory:
         """Return how the window stands and how its room is divided."""

@@ -31,6 +31,7 @@ class Menus:
         self._fill_help()
         self._document.listen(self.refresh)
         window.plots.menu_wanted.connect(self._plot_menu)
+        window.frequency.menu_wanted.connect(self._plot_menu)
         self.refresh()
 
     def refresh(self) -> None:
@@ -88,7 +89,10 @@ class Menus:
             action = self._add(menu, f"plot {name}", words, partial(window.plots.show_alone, name), f"Alt+{index}")
             _radio(action, group, checked=not name)
         menu.addSeparator()
-        self._add(menu, "whole", "&Whole range of the plots", window.plots.show_whole, "Ctrl+0")
+        for index, name in enumerate(window.pages.pages):
+            self._add(menu, f"page {name}", f"{name} page", partial(window.pages.choose, name), f"Ctrl+Alt+{index + 1}")
+        menu.addSeparator()
+        self._add(menu, "whole", "&Whole range of the plots", window.pages.show_whole, "Ctrl+0")
         menu.addSeparator()
         self._add(menu, "to editor", "Go to the &editor", lambda: _focus(window.editors), "Ctrl+1")
         self._add(menu, "to rulers", "Go to the &rulers", lambda: _focus(window.rulers), "Ctrl+2")
@@ -115,7 +119,8 @@ class Menus:
         self._list(menu, [(_plain(title), partial(self._files.open_sample, path)) for title, path in samples()])
 
     def _list_plots(self, menu: QMenu, act: Callable[[Panel], None]) -> None:
-        self._list(menu, [(name, partial(act, panel)) for name, panel in self._window.plots.panels.items()])
+        panels = self._window.plots.panels | self._window.frequency.panels
+        self._list(menu, [(name, partial(act, panel)) for name, panel in panels.items()])
 
     def _list_kept(self, menu: QMenu) -> None:
         kept = self._document.kept

@@ -13,8 +13,10 @@ REFERENCE, DISTURBANCE, EFFORT, POLES = "Reference step", "Disturbance", "Effort
 
 
 class PlotGrid(QObject):
-    """All plots; `show` hands them an answer."""
+    """All plots of the trial; `show` hands them an answer."""
 
+    name = "Trial"
+    wants_frequency = False
     menu_wanted = Signal(object, object)
     """A `Panel`, and where on the screen."""
 

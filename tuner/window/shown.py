@@ -7,15 +7,20 @@ from tuner.judge.assessment import Assessment, MemberResult
 from tuner.judge.overlay import Overlay
 from tuner.model.sheet import Sheet
 from tuner.session.tunings import KeptTuning
+from tuner.simulate.curves import FrequencyCurves
 
 
 @dataclass(frozen=True, slots=True)
 class Request:
-    """A sheet to assess, and the kept tunings to run beside it; the newest `number` wins."""
+    """A sheet to assess, and the kept tunings to run beside it; the newest `number` wins.
+
+    `frequency` asks for the response over frequency as well.
+    """
 
     number: int
     sheet: Sheet
     kept: tuple[KeptTuning, ...] = ()
+    frequency: bool = False
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -45,6 +50,8 @@ class Shown:
         Kept tunings that could be run.
     whole : bool
         False for the quick first answer, which says nothing about the family and so gives no verdict.
+    frequency : FrequencyCurves or None
+        The response over frequency, where it was asked for.
     """
 
     number: int
@@ -53,6 +60,7 @@ class Shown:
     overlay: Overlay
     kept: tuple[KeptResult, ...] = ()
     whole: bool = True
+    frequency: FrequencyCurves | None = None
 
 
 @dataclass(frozen=True, slots=True)

@@ -10,9 +10,11 @@ from PySide6.QtCore import QObject, QThread, Signal
 
 from tuner.errors import TrimwrightError
 from tuner.judge.assessment import MemberResult
-from tuner.model.family import FAMILY_SIZE
+from tuner.model.family import FAMILY_SIZE, family
 from tuner.model.sheet import Sheet
 from tuner.session.tunings import KeptTuning
+from tuner.simulate.curves import FrequencyCurves, frequency_curves
+from tuner.simulate.loop import loops_of
 from tuner.window.shown import Draw, Failure, Judge, KeptResult, Request, Shown
 from tuner.window.slot import Slot
 
@@ -78,7 +80,8 @@ class Assessing:
         assessment = self.judge(request.sheet, size)
         overlay = self.draw(request.sheet, assessment)
         kept = tuple(found for tuning in request.kept if (found := self._result(request.sheet, tuning)) is not None)
-        return Shown(request.number, request.sheet, assessment, overlay, kept, size > 1)
+        curves = _curves(request.sheet, size, assessment.nominal) if request.frequency else None
+        return Shown(request.number, request.sheet, assessment, overlay, kept, size > 1, curves)
 
     def _result(self, sheet: Sheet, tuning: KeptTuning) -> KeptResult | None:
         """Return what a kept tuning makes of the sheet's nominal plant; None when that cannot be computed."""
@@ -96,6 +99,12 @@ class Assessing:
             return self.judge(sheet, 1).nominal
         except TrimwrightError:
             return None
+
+
+def _curves(sheet: Sheet, size: int, nominal: MemberResult) -> FrequencyCurves:
+    """Return the response over frequency of a sheet's family."""
+    loops = loops_of(sheet, family(sheet.plant, size))
+    return frequency_curves(loops, nominal.poles, nominal.margins)
 
 
 class Assessor(QObject):

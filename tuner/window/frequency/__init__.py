@@ -1,0 +1,1 @@
+"""The frequency page: Bode, Nyquist and sensitivity plots of the whole family."""

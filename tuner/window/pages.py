@@ -1,0 +1,123 @@
+"""The pages of the plot area: their words in a row, one of them in sight; only that one draws."""
+
+from collections.abc import Sequence
+from typing import Protocol
+
+from PySide6.QtCore import QObject, Signal
+from PySide6.QtWidgets import QHBoxLayout, QStackedWidget, QVBoxLayout, QWidget
+
+from tuner.window.editors.segments import Segments
+from tuner.window.shown import Shown
+from tuner.window.theme import Theme
+
+
+class Page(Protocol):
+    """What fills the plot area while its word is chosen."""
+
+    name: str
+    wants_frequency: bool
+    """Whether the response over frequency has to be computed for it."""
+
+    @property
+    def widget(self) -> QWidget:
+        """What is put in the plot area."""
+        ...
+
+    def show(self, shown: Shown) -> None:
+        """Show an answer."""
+
+    def show_stale(self) -> None:
+        """Grey what is shown: it belongs to an earlier sheet."""
+
+    def show_whole(self) -> None:
+        """Forget what was looked at more closely."""
+
+    def forget(self) -> None:
+        """Forget what is shown: what comes next is another loop."""
+
+    def say_empty(self, sentence: str) -> None:
+        """Say why there is nothing to show."""
+
+    def hold(self, held: bool) -> None:
+        """Say whether a hand is on a ruler."""
+
+
+class Pages(QObject):
+    """All pages; `show` hands an answer to the one in sight, the others get the newest when they come in sight."""
+
+    chosen = Signal(str)
+    """The name of the page that came in sight."""
+
+    def __init__(self, theme: Theme, pages: Sequence[Page]) -> None:
+        super().__init__()
+        self.pages = {page.name: page for page in pages}
+        self._shown: Shown | None = None
+        self._stale = False
+        self.words = Segments(list(self.pages), theme, self.choose)
+        self.words.setAccessibleName("page")
+        self.stack = QStackedWidget()
+        for page in pages:
+            self.stack.addWidget(page.widget)
+        self.widget = self._arranged()
+        self._name = pages[0].name
+        self.words.show_choice(self._name)
+
+    @property
+    def page(self) -> Page:
+        """The page in sight."""
+        return self.pages[self._name]
+
+    def choose(self, name: str) -> None:
+        """Bring a page in sight."""
+        if name == self._name or name not in self.pages:
+            return
+        self._name = name
+        self.words.show_choice(name)
+        self.stack.setCurrentWidget(self.page.widget)
+        if self._shown is not None:
+            self.page.show(self._shown)
+            if self._stale:
+                self.page.show_stale()
+        self.chosen.emit(name)
+
+    def show(self, shown: Shown) -> None:
+        """Show an answer on the page in sight."""
+        self._shown, self._stale = shown, False
+        self.page.show(shown)
+
+    def show_stale(self) -> None:
+        """Grey what is shown."""
+        self._stale = True
+        self.page.show_stale()
+
+    def show_whole(self) -> None:
+        """Show the page in sight whole again."""
+        self.page.show_whole()
+
+    def forget(self) -> None:
+        """Forget the loop that is left, on every page."""
+        self._shown = None
+        for page in self.pages.values():
+            page.forget()
+
+    def say_empty(self, sentence: str) -> None:
+        """Say on every page why it is empty."""
+        for page in self.pages.values():
+            page.say_empty(sentence)
+
+    def hold(self, held: bool) -> None:
+        """Say whether a hand is on a ruler."""
+        for page in self.pages.values():
+            page.hold(held)
+
+    def _arranged(self) -> QWidget:
+        whole, row = QWidget(), QHBoxLayout()
+        row.setContentsMargins(8, 4, 8, 0)
+        row.addWidget(self.words)
+        row.addStretch(1)
+        column = QVBoxLayout(whole)
+        column.setContentsMargins(0, 0, 0, 0)
+        column.setSpacing(0)
+        column.addLayout(row)
+        column.addWidget(self.stack, 1)
+        return whole
