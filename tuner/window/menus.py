@@ -119,7 +119,7 @@ class Menus:
         self._list(menu, [(_plain(title), partial(self._files.open_sample, path)) for title, path in samples()])
 
     def _list_plots(self, menu: QMenu, act: Callable[[Panel], None]) -> None:
-        panels = self._window.plots.panels | self._window.frequency.panels
+        panels = self._window.pages.page.panels
         self._list(menu, [(name, partial(act, panel)) for name, panel in panels.items()])
 
     def _list_kept(self, menu: QMenu) -> None:

@@ -7,6 +7,7 @@ from PySide6.QtCore import QObject, Signal
 from PySide6.QtWidgets import QHBoxLayout, QStackedWidget, QVBoxLayout, QWidget
 
 from tuner.window.editors.segments import Segments
+from tuner.window.plots.panel import Panel
 from tuner.window.shown import Shown
 from tuner.window.theme import Theme
 
@@ -17,6 +18,8 @@ class Page(Protocol):
     name: str
     wants_frequency: bool
     """Whether the response over frequency has to be computed for it."""
+    panels: dict[str, Panel]
+    """Its plots by name, of which pictures can be had."""
 
     @property
     def widget(self) -> QWidget:
@@ -112,7 +115,7 @@ class Pages(QObject):
 
     def _arranged(self) -> QWidget:
         whole, row = QWidget(), QHBoxLayout()
-        row.setContentsMargins(8, 4, 8, 0)
+        row.setContentsMargins(8, 0, 8, 0)
         row.addWidget(self.words)
         row.addStretch(1)
         column = QVBoxLayout(whole)

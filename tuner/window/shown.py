@@ -2,12 +2,16 @@
 
 from collections.abc import Callable
 from dataclasses import dataclass
+from typing import TYPE_CHECKING
 
 from tuner.judge.assessment import Assessment, MemberResult
 from tuner.judge.overlay import Overlay
 from tuner.model.sheet import Sheet
 from tuner.session.tunings import KeptTuning
-from tuner.simulate.curves import FrequencyCurves
+
+if TYPE_CHECKING:
+    # It comes with compiled loops, which the first picture does not wait for.
+    from tuner.simulate.curves import FrequencyCurves
 
 
 @dataclass(frozen=True, slots=True)
@@ -60,7 +64,7 @@ class Shown:
     overlay: Overlay
     kept: tuple[KeptResult, ...] = ()
     whole: bool = True
-    frequency: FrequencyCurves | None = None
+    frequency: "FrequencyCurves | None" = None
 
 
 @dataclass(frozen=True, slots=True)

@@ -5,6 +5,7 @@ import time
 from collections import OrderedDict
 from collections.abc import Callable
 from dataclasses import dataclass, field, replace
+from typing import TYPE_CHECKING
 
 from PySide6.QtCore import QObject, QThread, Signal
 
@@ -13,8 +14,6 @@ from tuner.judge.assessment import MemberResult
 from tuner.model.family import FAMILY_SIZE, family
 from tuner.model.sheet import Sheet
 from tuner.session.tunings import KeptTuning
-from tuner.simulate.curves import FrequencyCurves, frequency_curves
-from tuner.simulate.loop import loops_of
 from tuner.window.shown import Draw, Failure, Judge, KeptResult, Request, Shown
 from tuner.window.slot import Slot
 
@@ -32,6 +31,9 @@ REST = 0.060
 
 LATE, LATE_TIMES = 0.150, 4.0
 """Seconds, or times its cost, after which the family is due although the hand still moves."""
+
+if TYPE_CHECKING:
+    from tuner.simulate.curves import FrequencyCurves
 
 _REMEMBERED = 32
 
@@ -101,8 +103,12 @@ class Assessing:
             return None
 
 
-def _curves(sheet: Sheet, size: int, nominal: MemberResult) -> FrequencyCurves:
+def _curves(sheet: Sheet, size: int, nominal: MemberResult) -> "FrequencyCurves":
     """Return the response over frequency of a sheet's family."""
+    # Not before it is asked for: the first picture does not wait for compiled loops.
+    from tuner.simulate.curves import frequency_curves
+    from tuner.simulate.loop import loops_of
+
     loops = loops_of(sheet, family(sheet.plant, size))
     return frequency_curves(loops, nominal.poles, nominal.margins)
 

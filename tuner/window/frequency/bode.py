@@ -1,18 +1,22 @@
 """The Bode plots of the loop gain, and the plot of both sensitivities."""
 
 from math import log10
+from typing import TYPE_CHECKING
 
 import numpy as np
 from numpy.typing import NDArray
 
 from tuner.judge.wording import quantity
-from tuner.simulate.curves import FrequencyCurves
-from tuner.simulate.margins import Margins
 from tuner.window.frequency.panel import Bundle, FrequencyPanel
 from tuner.window.plots.extent import Extent
 from tuner.window.plots.marks import Area, Marks, Stroke, Words, rectangle
 from tuner.window.shown import Shown
 from tuner.window.theme import Theme
+
+if TYPE_CHECKING:
+    # It comes with compiled loops, which the first picture does not wait for.
+    from tuner.simulate.curves import FrequencyCurves
+    from tuner.simulate.margins import Margins
 
 Array = NDArray[np.float64]
 
@@ -29,7 +33,7 @@ def phases(gain: NDArray[np.complex128]) -> Array:
     return np.asarray(np.degrees(np.unwrap(np.angle(gain), axis=-1)))
 
 
-def nyquist_marks(curves: FrequencyCurves, low: float) -> Marks:
+def nyquist_marks(curves: "FrequencyCurves", low: float) -> Marks:
     """Return where the response of a sampled loop ends."""
     if curves.nyquist > 1.1 * curves.w[-1]:
         return Marks()
@@ -43,12 +47,12 @@ class MagnitudePanel(FrequencyPanel):
 
     measures = ("gain_margin",)
 
-    def bundles(self, curves: FrequencyCurves) -> tuple[Bundle, ...]:
+    def bundles(self, curves: "FrequencyCurves") -> tuple[Bundle, ...]:
         """Return the size of L."""
         sizes = decibels(curves.gain)
         return (Bundle(sizes[0], sizes[1:], "loop gain |L|", "nominal", 0.25),)
 
-    def frequency_marks(self, shown: Shown, curves: FrequencyCurves) -> Marks:
+    def frequency_marks(self, shown: Shown, curves: "FrequencyCurves") -> Marks:
         """Return the line of one, and the gain margin."""
         ends = np.log10(curves.w[[0, -1]])
         strokes = [Stroke(float(ends[0]), 0.0, float(ends[1]), 0.0, "reference", dashed=True)]
@@ -76,12 +80,12 @@ class PhasePanel(FrequencyPanel):
 
     measures = ("phase_margin", "delay_margin")
 
-    def bundles(self, curves: FrequencyCurves) -> tuple[Bundle, ...]:
+    def bundles(self, curves: "FrequencyCurves") -> tuple[Bundle, ...]:
         """Return the phase of L."""
         found = phases(curves.gain)
         return (Bundle(found[0], found[1:], "phase of L", "nominal", 0.25),)
 
-    def frequency_marks(self, shown: Shown, curves: FrequencyCurves) -> Marks:
+    def frequency_marks(self, shown: Shown, curves: "FrequencyCurves") -> Marks:
         """Return the line of half a turn, and the phase margin."""
         ends = np.log10(curves.w[[0, -1]])
         strokes = [Stroke(float(ends[0]), -180.0, float(ends[1]), -180.0, "reference", dashed=True)]
@@ -95,7 +99,7 @@ class PhasePanel(FrequencyPanel):
         return Marks((), (*strokes, *end.strokes), tuple(words))
 
     @staticmethod
-    def _margin(margins: Margins, curves: FrequencyCurves, shown: Shown) -> tuple[Stroke, Words]:
+    def _margin(margins: "Margins", curves: "FrequencyCurves", shown: Shown) -> tuple[Stroke, Words]:
         at = margins.phase_margin_at or 1.0
         phase = float(np.interp(log10(at), np.log10(curves.w), phases(curves.gain[0])))
         line = -180.0 + 360.0 * round((phase + 180.0) / 360.0)
@@ -122,7 +126,7 @@ class SensitivityPanel(FrequencyPanel):
         self._top = 2.0
         super().__init__(name, theme, curves=2)
 
-    def bundles(self, curves: FrequencyCurves) -> tuple[Bundle, ...]:
+    def bundles(self, curves: "FrequencyCurves") -> tuple[Bundle, ...]:
         """Return the sizes of S and T."""
         s = curves.sensitivity()
         size, other = np.abs(s), np.abs(1.0 - s)
@@ -131,7 +135,7 @@ class SensitivityPanel(FrequencyPanel):
             Bundle(other[0], other[1:], "complementary |T|", "disturbance", 0.15),
         )
 
-    def frequency_marks(self, shown: Shown, curves: FrequencyCurves) -> Marks:
+    def frequency_marks(self, shown: Shown, curves: "FrequencyCurves") -> Marks:
         """Return the limits of both peaks and of the bandwidth, and the peak of S."""
         ends = np.log10(curves.w[[0, -1]])
         left, right = float(ends[0]), float(ends[1])

@@ -1,9 +1,10 @@
 """The Nyquist plot of the loop gain, both axes in one scale, with the circle that the sensitivity must stay out of."""
 
+from typing import TYPE_CHECKING
+
 import numpy as np
 from numpy.typing import NDArray
 
-from tuner.simulate.curves import FrequencyCurves
 from tuner.window.frequency.panel import loop_words, missed_of, worst_words
 from tuner.window.plots.extent import Extent
 from tuner.window.plots.items import Curve, Poles
@@ -12,6 +13,10 @@ from tuner.window.plots.panel import Panel
 from tuner.window.plots.thinning import Points
 from tuner.window.shown import Shown
 from tuner.window.theme import Theme
+
+if TYPE_CHECKING:
+    # It comes with compiled loops, which the first picture does not wait for.
+    from tuner.simulate.curves import FrequencyCurves
 
 Array = NDArray[np.float64]
 ComplexArray = NDArray[np.complex128]

@@ -2,6 +2,7 @@
 
 from dataclasses import dataclass
 from math import ceil, floor, log10
+from typing import TYPE_CHECKING
 
 import numpy as np
 from numpy.typing import NDArray
@@ -11,7 +12,6 @@ from tuner.judge.assessment import Assessment
 from tuner.judge.wording import quantity, unit_of
 from tuner.model.measures import BY_NAME
 from tuner.model.sheet import Sheet
-from tuner.simulate.curves import FrequencyCurves
 from tuner.window.plots import thinning
 from tuner.window.plots.extent import Extent, SteadyExtent
 from tuner.window.plots.items import Curve
@@ -20,6 +20,10 @@ from tuner.window.plots.panel import Panel
 from tuner.window.plots.ticks import Tick, ticks
 from tuner.window.shown import Shown
 from tuner.window.theme import Theme
+
+if TYPE_CHECKING:
+    # It comes with compiled loops, which the first picture does not wait for.
+    from tuner.simulate.curves import FrequencyCurves
 
 Array = NDArray[np.float64]
 
@@ -69,11 +73,11 @@ class FrequencyPanel(Panel):
 
     # What subclasses say ----------------------------------------------------------------------------------------
 
-    def bundles(self, curves: FrequencyCurves) -> tuple[Bundle, ...]:
+    def bundles(self, curves: "FrequencyCurves") -> tuple[Bundle, ...]:
         """Return the curves."""
         raise NotImplementedError
 
-    def frequency_marks(self, shown: Shown, curves: FrequencyCurves) -> Marks:
+    def frequency_marks(self, shown: Shown, curves: "FrequencyCurves") -> Marks:
         """Return limits and margins."""
         raise NotImplementedError
 
@@ -203,7 +207,7 @@ def decades(low: float, high: float, count: int) -> tuple[Tick, ...]:
     )
 
 
-def loop_words(curves: FrequencyCurves, index: int, sheet: Sheet) -> str:
+def loop_words(curves: "FrequencyCurves", index: int, sheet: Sheet) -> str:
     """Return the loop at one frequency in words."""
     value = complex(curves.gain[0, index])
     phase = float(np.degrees(np.unwrap(np.angle(curves.gain[0])))[index])

@@ -255,7 +255,7 @@ class Panel(QObject):
         widget.setAccessibleName(self.name)
         widget.setMinimumSize(240, 120)
         column = QVBoxLayout(widget)
-        column.setContentsMargins(8, 4, 8, 4)
+        column.setContentsMargins(8, 2, 8, 2)
         column.setSpacing(0)
         column.addLayout(self._header())
         self._missed = RoleLabel(self._theme)
