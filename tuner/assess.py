@@ -12,7 +12,7 @@ from tuner.measure.family import Measured, measure_trials
 from tuner.measure.final import family_final_values
 from tuner.measure.loop import add_damping, add_margins
 from tuner.model.controller import Controller
-from tuner.model.family import FAMILY_SIZE, Member, family
+from tuner.model.family import Member, family_of
 from tuner.model.sheet import Sheet
 from tuner.simulate.loop import Loop, loops_around, loops_of
 from tuner.simulate.margins import Margins, margins
@@ -28,15 +28,16 @@ DIRECT = "The plant answers its effort at once: a sample reads the measurement j
 NOT_LINEAR = "Limits or the resolution act in a run: its final value is the mean of its last tenth."
 
 
-def assess(sheet: Sheet, family_size: int = FAMILY_SIZE) -> Assessment:
+def assess(sheet: Sheet, family_size: int | None = None) -> Assessment:
     """Judge a tuning sheet over the family of plants that its spread makes.
 
     Parameters
     ----------
     sheet : Sheet
         The loop, its trial and its limits.
-    family_size : int
-        Plants to judge by, the nominal one included; a plant without spread is a family of one.
+    family_size : int or None
+        Plants to judge by, the nominal one included; as many as the sheet says unless told. A plant without spread
+        is a family of one.
 
     Raises
     ------
@@ -50,8 +51,8 @@ def assess(sheet: Sheet, family_size: int = FAMILY_SIZE) -> Assessment:
         raise LoopError(f"the loop cannot be computed with these numbers: {error}") from error
 
 
-def _assessed(sheet: Sheet, family_size: int) -> Assessment:
-    members = family(sheet.plant, family_size)
+def _assessed(sheet: Sheet, family_size: int | None) -> Assessment:
+    members = family_of(sheet, family_size)
     loops = loops_of(sheet, members)
     poles = family_poles(loops)
     results = _results(sheet, members, loops, poles)
@@ -142,7 +143,7 @@ def _stability(loop: Loop) -> Callable[[Controller], bool]:
 class _Road(ModuleType):
     """Lets `tuner.assess(sheet)` be written also where this module has taken the place of the function."""
 
-    def __call__(self, sheet: Sheet, family_size: int = FAMILY_SIZE) -> Assessment:
+    def __call__(self, sheet: Sheet, family_size: int | None = None) -> Assessment:
         return assess(sheet, family_size)
 
 

@@ -9,13 +9,12 @@ from tuner.cli.command import Arguments, Command, Parser, whole_number
 from tuner.cli.progress import watched
 from tuner.cli.sheets import Missing, Source, sources
 from tuner.errors import TrimwrightError
-from tuner.model.family import FAMILY_SIZE
 from tuner.model.sheet import Sheet
 
 if TYPE_CHECKING:
     from tuner.judge.assessment import Assessment
 
-LARGEST_FAMILY = 1000
+LARGEST_FAMILY = 2000
 
 
 def declare(parser: Parser) -> None:
@@ -31,9 +30,8 @@ def add_family(parser: Parser) -> None:
     parser.add_argument(
         "--family",
         type=whole_number(1, LARGEST_FAMILY),
-        default=FAMILY_SIZE,
         metavar="N",
-        help=f"plants to judge the spread by, the nominal one included (default {FAMILY_SIZE})",
+        help="plants to judge the spread by, the nominal one included (as many as the sheet says unless told)",
     )
 
 
@@ -43,7 +41,7 @@ def run(arguments: Arguments) -> int:
     return max(_judge_one(source, arguments) for source in watched(named, "judging"))
 
 
-def assessed(sheet: Sheet, family_size: int) -> "Assessment":
+def assessed(sheet: Sheet, family_size: int | None = None) -> "Assessment":
     """Return the assessment of a sheet; what computes it is loaded only now.
 
     Raises

@@ -13,7 +13,6 @@ from tuner.cli.judging import assessed
 from tuner.cli.sampling import built_in
 from tuner.cli.sheets import Source
 from tuner.errors import TrimwrightError
-from tuner.model.family import FAMILY_SIZE
 from tuner.model.sheet import Sheet
 
 if TYPE_CHECKING:
@@ -47,7 +46,7 @@ def without_display(named: str | None) -> int:
     source = Source(named or str(built_in()))
     try:
         sheet = source.read()
-        assessment = assessed(sheet, FAMILY_SIZE)
+        assessment = assessed(sheet)
     except TrimwrightError as error:
         return status.refuse(error, source.name)
     _show(sheet, assessment, source.name)

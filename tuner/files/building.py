@@ -3,6 +3,7 @@
 from dataclasses import replace
 from typing import Any
 
+from tuner.files.named_parameters import read_spread
 from tuner.files.schema import NONE
 from tuner.model.controller import Controller, DisturbanceFeedforward, Feedforward, Notch
 from tuner.model.loop import Loop, Manipulated, Signal
@@ -20,8 +21,8 @@ def build(table: Table, plant: Plant) -> Sheet:
         plant=plant,
         controller=_controller(table["controller"]),
         trial=Trial(**_values("trial", table["trial"])),
-        actuator=Actuator(**_values("actuator", table.get("actuator", {}))),
-        sensor=Sensor(**_values("sensor", table.get("sensor", {}))),
+        actuator=Actuator(**_with_spread(_values("actuator", table.get("actuator", {})))),
+        sensor=Sensor(**_with_spread(_values("sensor", table.get("sensor", {})))),
         limits=tuple((name, float(bound)) for name, bound in table.get("limits", {}).items()),
     )
 
@@ -35,9 +36,15 @@ def _values(section: str, table: Table) -> Table:
 
 
 def _value(kind: Kind, written: Any) -> Any:  # noqa: ANN401 - a value of a TOML file
-    if written is None or kind in (Kind.TEXT, Kind.CHOICE, Kind.FLAG):
+    if written is None or kind in (Kind.TEXT, Kind.CHOICE, Kind.FLAG, Kind.SPREAD):
         return written
     return float(written) if kind is Kind.NUMBER else int(written)
+
+
+def _with_spread(values: Table) -> Table:
+    """Return the values of a block with its spread as the model has it."""
+    written = values["spread"]
+    return values | {"spread": None if written is None else read_spread("", values["lag"], written, [])}
 
 
 def _loop(table: Table) -> Loop:

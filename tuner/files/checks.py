@@ -6,6 +6,7 @@ from typing import Any, Final
 
 from tuner.errors import Fault
 from tuner.files import words
+from tuner.files.named_parameters import read_spread
 from tuner.files.schema import NONE
 from tuner.model.parameters import GAIN_KEYS
 
@@ -38,6 +39,24 @@ def _ranges(sheet: Table) -> Iterator[Fault]:
             yield Fault(f"{key}.resting", f"a number of at least {key}.low, {words.number(low)}", _resting(signal))
         elif high is not None and resting > high:
             yield Fault(f"{key}.resting", f"a number of at most {key}.high, {words.number(high)}", _resting(signal))
+
+
+def _spreads_of_lags(sheet: Table) -> Iterator[Fault]:
+    """Tell of spreads of actuator and sensor that do not go with their lag."""
+    for block in ("actuator", "sensor"):
+        here = table(sheet, block)
+        if "spread" not in here:
+            continue
+        if not here.get("lag"):
+            yield Fault(f"{block}.spread", f"a lag above 0 in [{block}] beside it", "none")
+            continue
+        found: list[Fault] = []
+        spread = read_spread(f"{block}.spread", float(here["lag"]), here["spread"], found)
+        if not found and spread.low <= 0.0:
+            found.append(
+                Fault(f"{block}.spread", "a range of lags above 0", f"{words.number(spread.low)} at its lower end")
+            )
+        yield from found
 
 
 def _resting(signal: Table) -> str:
@@ -110,4 +129,11 @@ def _samples(sheet: Table) -> Iterator[Fault]:
             yield Fault("trial.duration", most, f"{duration / period:,.0f}")
 
 
-_CHECKS: Final[tuple[Callable[[Table], Iterator[Fault]], ...]] = (_ranges, _seconds, _feedforward, _notch, _samples)
+_CHECKS: Final[tuple[Callable[[Table], Iterator[Fault]], ...]] = (
+    _ranges,
+    _spreads_of_lags,
+    _seconds,
+    _feedforward,
+    _notch,
+    _samples,
+)

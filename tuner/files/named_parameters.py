@@ -63,11 +63,12 @@ def _parameter(name: str, entry: Any, faults: list[Fault]) -> PlantParameter:  #
     if not isinstance(entry, dict):
         return PlantParameter(name, float(entry))
     value = float(entry["value"])
-    spread = _spread(f"{_TABLE}.{name}.spread", value, entry["spread"], faults) if "spread" in entry else None
+    spread = read_spread(f"{_TABLE}.{name}.spread", value, entry["spread"], faults) if "spread" in entry else None
     return PlantParameter(name, value, entry.get("unit", ""), spread)
 
 
-def _spread(key: str, value: float, written: str | list[float], faults: list[Fault]) -> Spread:
+def read_spread(key: str, value: float, written: str | list[float], faults: list[Fault]) -> Spread:
+    """Return a spread as written, adding to the faults what is wrong with it."""
     if isinstance(written, str):
         return _spread_in_percent(key, value, float(written.replace("%", "")), faults)
     low, high = (float(end) for end in written)

@@ -4,15 +4,18 @@ from dataclasses import dataclass
 from decimal import Decimal
 from typing import Final
 
+from tuner.files.drifts import written_drifts
 from tuner.files.schema import NONE
 from tuner.model.controller import Controller
-from tuner.model.parameters import AS_FOUND_KEYS, GAIN_KEYS, in_section
+from tuner.model.drifts import Bare, parameters_of
+from tuner.model.parameters import AS_FOUND_KEYS, GAIN_KEYS, Parameter, in_section
 from tuner.model.plant import (
     CoefficientPlant,
     ExpressionPlant,
     PhysicsPlant,
     Plant,
     PlantParameter,
+    Spread,
     StateSpacePlant,
     ZeroPolePlant,
     spread_percent,
@@ -72,7 +75,16 @@ def tree(sheet: Sheet) -> Tree:
 
 
 def _section(section: str, block: object) -> Tree:
-    return {p.name: Leaf(getattr(block, p.name), p.default) for p in in_section(section)}
+    return {p.name: Leaf(_written(block, p), p.default) for p in in_section(section)}
+
+
+def _written(block: object, parameter: Parameter) -> Value:
+    """Return the value of a parameter as a sheet writes it."""
+    value: Value | Spread = getattr(block, parameter.name)
+    if not isinstance(value, Spread):
+        return value
+    lag: float = getattr(block, "lag", 0.0)
+    return _spread_of(lag, spread_percent(lag, value.percent) if value.percent is not None else value) if lag else None
 
 
 def _controller(controller: Controller) -> Tree:
@@ -134,12 +146,21 @@ def _plant(plant: Plant) -> Tree:
         case PhysicsPlant(physics, parameters):
             return {"physics": Leaf(physics), "parameters": _physical(physics, parameters)}
         case CoefficientPlant(numerator, denominator):
-            return {"numerator": Leaf([*numerator]), "denominator": Leaf([*denominator])} | dead_time
+            return {"numerator": Leaf([*numerator]), "denominator": Leaf([*denominator])} | dead_time | _drifts(plant)
         case ZeroPolePlant(zeros, poles, gain):
-            return {"zeros": Leaf(_roots(zeros), []), "poles": Leaf(_roots(poles)), "gain": Leaf(gain)} | dead_time
+            roots: Tree = {"zeros": Leaf(_roots(zeros), []), "poles": Leaf(_roots(poles)), "gain": Leaf(gain)}
+            return roots | dead_time | _drifts(plant)
         case StateSpacePlant(a, b, c, d):
             rows: list[Value] = [[*row] for row in a]
-            return {"a": Leaf(rows), "b": Leaf([*b]), "c": Leaf([*c]), "d": Leaf(d, 0.0)} | dead_time
+            arrays: Tree = {"a": Leaf(rows), "b": Leaf([*b]), "c": Leaf([*c]), "d": Leaf(d, 0.0)}
+            return arrays | dead_time | _drifts(plant)
+
+
+def _drifts(plant: Bare) -> Tree:
+    """Return the table of spreads of a plant given by bare numbers."""
+    spreads = {one.name: _spread(one) for one in parameters_of(plant)}
+    written = written_drifts(plant, spreads)
+    return {"spread": {key: Leaf(value) for key, value in written.items()}} if written else {}
 
 
 def _roots(roots: tuple[complex, ...]) -> list[Value]:
@@ -155,11 +176,12 @@ def _parameter(parameter: PlantParameter) -> Tree:
 
 
 def _spread(parameter: PlantParameter) -> Value:
-    spread = parameter.spread
-    if spread is None:
-        return None
+    return None if parameter.spread is None else _spread_of(parameter.value, parameter.spread)
+
+
+def _spread_of(value: float, spread: Spread) -> Value:
     percent = spread.percent
-    if percent is not None and spread == spread_percent(parameter.value, percent):
+    if percent is not None and spread == spread_percent(value, percent):
         return f"{Decimal(str(percent).removesuffix('.0')):f} %"
     return [spread.low, spread.high]
 

@@ -2,11 +2,12 @@
 
 from collections import Counter
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import Any, Final
 
 from tuner.errors import Fault, nearest
 from tuner.files import words
+from tuner.files.drifts import read_drifts
 from tuner.files.named_parameters import formula_names, physical_parameters, plant_parameters, told_names
 from tuner.model.plant import CoefficientPlant, ExpressionPlant, PhysicsPlant, Plant, StateSpacePlant, ZeroPolePlant
 
@@ -36,9 +37,9 @@ class PlantForm:
 
 
 EXPRESSION: Final = PlantForm(("expression",), ("expression",), ("parameters",))
-COEFFICIENTS: Final = PlantForm(("numerator", "denominator"), ("numerator", "denominator"), ("dead_time",))
-ZEROS_POLES: Final = PlantForm(("zeros", "poles", "gain"), ("poles", "gain"), ("zeros", "dead_time"))
-STATE_SPACE: Final = PlantForm(("a", "b", "c", "d"), ("a", "b", "c"), ("d", "dead_time"))
+COEFFICIENTS: Final = PlantForm(("numerator", "denominator"), ("numerator", "denominator"), ("dead_time", "spread"))
+ZEROS_POLES: Final = PlantForm(("zeros", "poles", "gain"), ("poles", "gain"), ("zeros", "dead_time", "spread"))
+STATE_SPACE: Final = PlantForm(("a", "b", "c", "d"), ("a", "b", "c"), ("d", "dead_time", "spread"))
 PHYSICS: Final = PlantForm(("physics",), ("physics",), ("parameters",))
 FORMS: Final = (EXPRESSION, COEFFICIENTS, ZEROS_POLES, STATE_SPACE, PHYSICS)
 
@@ -70,7 +71,7 @@ def check_form(written: Table) -> list[Fault]:
     extra = [
         _extra(key, form)
         for key in written
-        if key in ("dead_time", "parameters") and key not in known and written[key] != {}
+        if key in ("dead_time", "parameters", "spread") and key not in known and written[key] != {}
     ]
     return [fault for fault in missing if fault.key.removeprefix("plant.") not in written] + extra
 
@@ -121,7 +122,8 @@ def _coefficients(text: PlantText, faults: list[Fault]) -> Plant:
     if denominator and len(numerator) > len(denominator):
         most = f"at most {len(denominator)} coefficients, as many as the denominator has"
         faults.append(Fault("plant.numerator", most, f"{len(numerator)}: the plant would be improper"))
-    return CoefficientPlant(_numbers(table["numerator"]), _numbers(table["denominator"]), _dead_time(table))
+    plant = CoefficientPlant(_numbers(table["numerator"]), _numbers(table["denominator"]), _dead_time(table))
+    return replace(plant, parameters=read_drifts(plant, table.get("spread", {}), faults))
 
 
 def _leading_dropped(coefficients: list[float]) -> list[float]:
@@ -138,7 +140,8 @@ def _zeros_poles(text: PlantText, faults: list[Fault]) -> Plant:
         faults.append(Fault("plant.zeros", most, f"{len(zeros)}: the plant would be improper"))
     if table["gain"] == 0:
         faults.append(Fault("plant.gain", "a number other than 0", "0"))
-    return ZeroPolePlant(zeros, poles, float(table["gain"]), _dead_time(table))
+    plant = ZeroPolePlant(zeros, poles, float(table["gain"]), _dead_time(table))
+    return replace(plant, parameters=read_drifts(plant, table.get("spread", {}), faults))
 
 
 def _roots(written: list[Any], key: str, faults: list[Fault]) -> tuple[complex, ...]:
@@ -163,7 +166,8 @@ def _state_space(text: PlantText, faults: list[Fault]) -> Plant:
             numbers = f"{order} number{'s' if order > 1 else ''}, one for each row of a"
             faults.append(Fault(f"plant.{key}", numbers, f"{len(vector)}"))
     rows = tuple(_numbers(row) for row in a)
-    return StateSpacePlant(rows, _numbers(b), _numbers(c), float(table.get("d", 0.0)), _dead_time(table))
+    plant = StateSpacePlant(rows, _numbers(b), _numbers(c), float(table.get("d", 0.0)), _dead_time(table))
+    return replace(plant, parameters=read_drifts(plant, table.get("spread", {}), faults))
 
 
 def _numbers(values: list[float]) -> tuple[float, ...]:

@@ -64,6 +64,8 @@ def _rule(parameter: Parameter) -> Schema:
     types = {Kind.NUMBER: "number", Kind.INTEGER: "integer", Kind.TEXT: "string", Kind.FLAG: "boolean"}
     if parameter.kind is Kind.CHOICE:
         return {"enum": list(parameter.choices)}
+    if parameter.kind is Kind.SPREAD:
+        return {"anyOf": _SPREAD}
     low = "exclusiveMinimum" if parameter.above_minimum else "minimum"
     bounds = {low: parameter.minimum, "maximum": parameter.maximum}
     return {"type": types[parameter.kind]} | {key: bound for key, bound in bounds.items() if bound is not None}
@@ -125,8 +127,17 @@ def _plant() -> Schema:
         "d": number,
         "dead_time": {"title": "a number of at least 0", "type": "number", "minimum": 0},
         "parameters": _parameters(),
+        "spread": _plant_spread(),
     }
     return _table("a table [plant]", properties)
+
+
+def _plant_spread() -> Schema:
+    """Return the schema of how far the bare numbers of a plant may drift."""
+    one: Schema = {"title": str(Kind.SPREAD), "anyOf": _SPREAD}
+    lists = {key: _array("spreads", one) for key in ("numerator", "denominator", "zeros", "poles", "b", "c")}
+    scalars = dict.fromkeys(("gain", "dead_time", "d"), one)
+    return _table("a table [plant.spread]", scalars | lists | {"a": _array("rows of spreads", _array("spreads", one))})
 
 
 def _array(what: str, items: Schema, least: int = 1) -> Schema:
@@ -146,12 +157,15 @@ def _pair(title: str) -> Schema:
     }
 
 
+_SPREAD: Final = [{"type": "string", "pattern": PERCENT}, _pair("[low, high]")]
+
+
 def _complex() -> Schema:
     return {"title": "a number, or a complex one as [re, im]", "anyOf": [{"type": "number"}, _pair("[re, im]")]}
 
 
 def _parameters() -> Schema:
-    spread = {"title": '"20 %" or [low, high]', "anyOf": [{"type": "string", "pattern": PERCENT}, _pair("[low, high]")]}
+    spread = {"title": str(Kind.SPREAD), "anyOf": _SPREAD}
     properties = {
         "value": {"title": "a number", "type": "number"},
         "unit": {"title": "a text", "type": "string"},

@@ -10,7 +10,7 @@ from numpy.typing import NDArray
 
 from tuner.footing.affine import Contour, contour
 from tuner.model.controller import Controller
-from tuner.model.family import family
+from tuner.model.family import family_of
 from tuner.model.sheet import Sheet
 from tuner.simulate.factors import Stack, stack, to_x
 from tuner.simulate.frequency import grid
@@ -83,7 +83,7 @@ def _without_gains(sheet: Sheet) -> Sheet:
 
 @lru_cache(maxsize=8)
 def _chains(sheet: Sheet, size: int) -> tuple[Chains, ...]:
-    loops = loops_of(sheet, family(sheet.plant, size))
+    loops = loops_of(sheet, family_of(sheet, size))
     return tuple(_stacked(stack([loops[i].factors for i in places]), tuple(places)) for places in same_shape(loops))
 
 

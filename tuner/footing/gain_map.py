@@ -9,7 +9,6 @@ from tuner.footing.classes import LOST, Classes, Overtaken, Track, never
 from tuner.footing.grading import Grading
 from tuner.footing.ground import ground_of
 from tuner.footing.stability import Flags, stretches
-from tuner.model.family import FAMILY_SIZE
 from tuner.model.sheet import Sheet
 from tuner.simulate.traces import Array
 
@@ -41,7 +40,7 @@ def paint_map(  # noqa: PLR0913, PLR0917 - the question as it is asked
     x: Track,
     y: Track,
     measure: str = "",
-    family_size: int = FAMILY_SIZE,
+    family_size: int | None = None,
     stop: Callable[[], bool] = never,
 ) -> GainMap:
     """Return the class at every pair of values of two gains, as `assess` gives it.
@@ -52,8 +51,8 @@ def paint_map(  # noqa: PLR0913, PLR0917 - the question as it is asked
         What is held; its own values of the two gains do not matter.
     measure : str
         A measure to tell the worst value of, within the bounds that the points of a trial give; empty for none.
-    family_size : int
-        Plants to judge by.
+    family_size : int or None
+        Plants to judge by; as many as the sheet says unless told.
     stop : callable
         Asked now and then; the question is given up when it returns true.
 
@@ -64,8 +63,9 @@ def paint_map(  # noqa: PLR0913, PLR0917 - the question as it is asked
     Overtaken
         When `stop` said so.
     """
-    ground = ground_of(sheet, family_size)
-    lost, unsure = _lost(sheet, x, y, family_size, stop)
+    size = sheet.trial.family_size if family_size is None else family_size
+    ground = ground_of(sheet, size)
+    lost, unsure = _lost(sheet, x, y, size, stop)
     tunings = [
         sheet.controller.with_value(y.name, up).with_value(x.name, across)
         for up in y.values.tolist()

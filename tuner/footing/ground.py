@@ -11,7 +11,7 @@ from tuner.footing.chains import Chains, chains_of
 from tuner.kernels import grades, lanes
 from tuner.measure.runs import LAST_SHARE
 from tuner.model.controller import Controller
-from tuner.model.family import Member, family
+from tuner.model.family import Member, family_of
 from tuner.model.sheet import Sheet
 from tuner.simulate.batch import feedforward_of, nominal
 from tuner.simulate.grid import Grid, sampled_grid
@@ -75,7 +75,7 @@ def ground_of(sheet: Sheet, size: int) -> Ground:
 
 @lru_cache(maxsize=8)
 def _ground(sheet: Sheet, size: int) -> Ground:
-    members = family(sheet.plant, size)
+    members = family_of(sheet, size)
     grids = _grids(sheet)
     order = wire(sheet, members, grids[0].step).c.shape[2]
     kernel = lanes.size_for(order)

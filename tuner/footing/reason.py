@@ -7,7 +7,6 @@ from tuner.assess import assess
 from tuner.footing.classes import FIRM, LOST, SOFT
 from tuner.judge.assessment import Assessment, LimitResult
 from tuner.judge.wording import relation
-from tuner.model.family import FAMILY_SIZE
 from tuner.model.measures import BY_NAME
 from tuner.model.sheet import Sheet
 
@@ -20,7 +19,7 @@ class Reason:
     sentence: str
 
 
-def reason_at(sheet: Sheet, changes: Mapping[str, float], family_size: int = FAMILY_SIZE) -> Reason:
+def reason_at(sheet: Sheet, changes: Mapping[str, float], family_size: int | None = None) -> Reason:
     """Return what the loop would be with some numbers of the controller changed, and why.
 
     Parameters

@@ -12,7 +12,6 @@ from tuner.footing.exact import exactly
 from tuner.footing.grading import Grading
 from tuner.footing.ground import Ground, ground_of
 from tuner.footing.stability import Stretches, counts, stretches
-from tuner.model.family import FAMILY_SIZE
 from tuner.model.sheet import Sheet
 from tuner.simulate.traces import Array
 
@@ -59,7 +58,7 @@ class _Asked:
 def paint_rulers(
     sheet: Sheet,
     tracks: Sequence[Track],
-    family_size: int = FAMILY_SIZE,
+    family_size: int | None = None,
     stop: Callable[[], bool] = never,
     *,
     fine: bool = True,
@@ -74,8 +73,8 @@ def paint_rulers(
     sheet : Sheet
         What is held while one gain moves.
     tracks : sequence of Track
-    family_size : int
-        Plants to judge by.
+    family_size : int or None
+        Plants to judge by; as many as the sheet says unless told.
     stop : callable
         Asked now and then; the question is given up when it returns true.
     fine : bool
@@ -88,7 +87,8 @@ def paint_rulers(
     Overtaken
         When `stop` said so.
     """
-    painter = _Painter(sheet, ground_of(sheet, family_size), family_size, stop)
+    size = sheet.trial.family_size if family_size is None else family_size
+    painter = _Painter(sheet, ground_of(sheet, size), size, stop)
     return painter.paint(tracks, fine=fine)
 
 

@@ -15,6 +15,7 @@ class Kind(StrEnum):
     INTEGER = "a whole number"
     TEXT = "a text"
     FLAG = "true or false"
+    SPREAD = '"20 %" or [low, high]'
     CHOICE = "one of a few words"
 
 
@@ -70,6 +71,10 @@ class Parameter:
 
 def _number(section: str, name: str, symbol: str, sentence: str, **more: object) -> Parameter:
     return Parameter(section, name, symbol, Kind.NUMBER, sentence, **more)  # type: ignore[arg-type] # keys are checked by the dataclass
+
+
+def _spread(section: str) -> Parameter:
+    return Parameter(section, "spread", "", Kind.SPREAD, "How far the lag may drift; absent: not at all.", unit="{t}")
 
 
 def _signal(section: str, what: str, unit: str) -> tuple[Parameter, ...]:
@@ -129,7 +134,9 @@ PARAMETERS: tuple[Parameter, ...] = (
         above_minimum=True,
     ),
     _number("actuator", "lag", "Ta", "First-order lag of the actuator.", default=0.0, **_TIME),
+    _spread("actuator"),
     _number("sensor", "lag", "Ts", "First-order lag of the sensor.", default=0.0, **_TIME),
+    _spread("sensor"),
     _number(
         "sensor", "noise", "sigma", "Standard deviation of the measurement noise.", unit="{y}", default=0.0, minimum=0
     ),
@@ -241,6 +248,16 @@ PARAMETERS: tuple[Parameter, ...] = (
         minimum=0,
         maximum=100,
         above_minimum=True,
+    ),
+    Parameter(
+        "trial",
+        "family_size",
+        "",
+        Kind.INTEGER,
+        "Plants that the spread makes and the verdict holds for, the nominal one included.",
+        default=25,
+        minimum=1,
+        maximum=2000,
     ),
 )
 

@@ -1,6 +1,9 @@
 """The five ways to say what a plant is, and how far its parameters may drift."""
 
-from dataclasses import dataclass, field
+from dataclasses import dataclass
+
+FAMILY_SIZE = 25
+"""Plants in a family, unless asked otherwise; a plant without spread is a family of one."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -43,7 +46,7 @@ class CoefficientPlant:
     numerator: tuple[float, ...]
     denominator: tuple[float, ...]
     dead_time: float = 0.0
-    parameters: tuple[PlantParameter, ...] = field(default=(), init=False)
+    parameters: tuple[PlantParameter, ...] = ()
 
 
 @dataclass(frozen=True, slots=True)
@@ -54,7 +57,7 @@ class ZeroPolePlant:
     poles: tuple[complex, ...]
     gain: float
     dead_time: float = 0.0
-    parameters: tuple[PlantParameter, ...] = field(default=(), init=False)
+    parameters: tuple[PlantParameter, ...] = ()
 
 
 @dataclass(frozen=True, slots=True)
@@ -66,7 +69,7 @@ class StateSpacePlant:
     c: tuple[float, ...]
     d: float = 0.0
     dead_time: float = 0.0
-    parameters: tuple[PlantParameter, ...] = field(default=(), init=False)
+    parameters: tuple[PlantParameter, ...] = ()
 
 
 @dataclass(frozen=True, slots=True)

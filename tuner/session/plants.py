@@ -6,6 +6,7 @@ from dataclasses import replace
 import numpy as np
 
 from tuner.errors import LoopError
+from tuner.model.drifts import parameters_of
 from tuner.model.formula import names
 from tuner.model.plant import (
     CoefficientPlant,
@@ -34,7 +35,7 @@ def made(plant: Plant) -> Linear:
     """
     from tuner.simulate.realise import realise
 
-    return realise(plant, {parameter.name: parameter.value for parameter in plant.parameters})
+    return realise(plant, {parameter.name: parameter.value for parameter in parameters_of(plant)})
 
 
 def names_in(formula: str) -> tuple[str, ...]:
@@ -146,7 +147,8 @@ def with_physics(plant: Plant, name: str) -> PhysicsPlant:
     """Return the physical model of a name; quantities that the present plant has too keep their numbers."""
     from tuner.model.physics import PHYSICS
 
-    present = {parameter.name: parameter for parameter in plant.parameters}
+    named = plant.parameters if isinstance(plant, ExpressionPlant | PhysicsPlant) else ()
+    present = {parameter.name: parameter for parameter in named}
     quantities = PHYSICS[name].parameters
     fresh = {one.name: PlantParameter(one.name, one.default, one.unit) for one in quantities}
     return PhysicsPlant(name, tuple(present.get(one, fresh[one]) for one in fresh))

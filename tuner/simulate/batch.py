@@ -13,6 +13,7 @@ from tuner.kernels import loop as kernel
 from tuner.law.constants import NO_NOTCH, Constants, NotchCoefficients, bake, notch
 from tuner.law.feedforward import static
 from tuner.model.controller import Controller, Gains
+from tuner.model.drifts import parameters_of
 from tuner.model.family import Member
 from tuner.model.sheet import Sheet
 from tuner.simulate.algebra import series
@@ -143,7 +144,7 @@ def law_constants(sheet: Sheet, sample_time: float, measurement_filter: float) -
 
 def nominal_values(sheet: Sheet) -> dict[str, float]:
     """Return the nominal value of every plant parameter."""
-    return {parameter.name: parameter.value for parameter in sheet.plant.parameters}
+    return {parameter.name: parameter.value for parameter in parameters_of(sheet.plant)}
 
 
 def nominal(sheet: Sheet) -> Process:

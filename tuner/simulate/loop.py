@@ -8,7 +8,7 @@ from typing import NamedTuple
 import numpy as np
 
 from tuner.model.controller import Controller
-from tuner.model.family import Member
+from tuner.model.family import ACTUATOR_LAG, SENSOR_LAG, Member
 from tuner.model.plant import Plant
 from tuner.model.sheet import Sheet
 from tuner.simulate.discrete import Held, chain, held_batch, split
@@ -93,7 +93,13 @@ def loops_of(sheet: Sheet, members: Sequence[Member]) -> tuple[Loop, ...]:
 @lru_cache(maxsize=16)
 def _chains(plant: Plant, values: _Values, actuator_lag: float, sensor_lag: float) -> tuple[Linear, ...]:
     """Return the chains of some plants; the same for all gains, so they are kept."""
-    return tuple(chain(realise(plant, dict(items)), actuator_lag, sensor_lag) for items in values)
+    return tuple(_chain(plant, dict(items), actuator_lag, sensor_lag) for items in values)
+
+
+def _chain(plant: Plant, values: dict[str, float], actuator_lag: float, sensor_lag: float) -> Linear:
+    """Return the chain of one plant, with its own lags where they drift."""
+    lags = values.get(ACTUATOR_LAG, actuator_lag), values.get(SENSOR_LAG, sensor_lag)
+    return chain(realise(plant, values), *lags)
 
 
 def loops_around(controller: Controller, chains: Sequence[Linear]) -> tuple[Loop, ...]:

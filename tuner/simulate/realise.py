@@ -9,6 +9,7 @@ import numpy as np
 from tuner.errors import LoopError, nearest
 from tuner.files.formula import parse
 from tuner.model import formula
+from tuner.model.drifts import Bare, drifted
 from tuner.model.physics import PHYSICS
 from tuner.model.plant import CoefficientPlant, ExpressionPlant, PhysicsPlant, Plant, StateSpacePlant, ZeroPolePlant
 from tuner.simulate.factored import VARIABLE, Factored, quotient, total
@@ -78,6 +79,8 @@ def evaluate(node: formula.Node, values: Mapping[str, float]) -> Factored:  # no
 @lru_cache(maxsize=512)
 def _realised(plant: Plant, items: tuple[tuple[str, float], ...]) -> Linear:
     values = dict(items)
+    if isinstance(plant, Bare):
+        plant = drifted(plant, values)
     match plant:
         case ExpressionPlant():
             system = realise_expression(plant.expression, values)

@@ -7,7 +7,7 @@ from typing import NamedTuple
 import numpy as np
 from numpy.typing import NDArray
 
-from tuner.model.family import Member
+from tuner.model.family import ACTUATOR_LAG, SENSOR_LAG, Member
 from tuner.model.plant import Plant
 from tuner.model.sheet import Sheet
 from tuner.simulate.discrete import HeldBatch, held_batch, split
@@ -96,7 +96,10 @@ def _path(expression: str, values: Mapping[str, float]) -> Linear | None:
 
 @lru_cache(maxsize=64)
 def _wired(plant: Plant, expression: str, values: _Values, lags: tuple[float, float], step: float) -> Wired:
-    blocks = [_assembled(process, *lags) for process in _processes(plant, expression, values)]
+    found = zip(_processes(plant, expression, values), map(dict, values), strict=True)
+    blocks = [
+        _assembled(process, own.get(ACTUATOR_LAG, lags[0]), own.get(SENSOR_LAG, lags[1])) for process, own in found
+    ]
     order = max(len(block.a) for block in blocks)
     count = len(blocks)
     a, b = np.zeros((count, order, order)), np.zeros((count, order, 2))

@@ -11,7 +11,7 @@ from PySide6.QtCore import QObject, QThread, Signal
 
 from tuner.errors import TrimwrightError
 from tuner.judge.assessment import MemberResult
-from tuner.model.family import FAMILY_SIZE, family
+from tuner.model.family import family_of
 from tuner.model.sheet import Sheet
 from tuner.session.tunings import KeptTuning
 from tuner.window.shown import Draw, Failure, Judge, KeptResult, Request, Shown
@@ -64,12 +64,12 @@ class Assessing:
 
     def nominal(self, request: Request) -> Shown:
         """Answer for the nominal plant alone."""
-        return self._shown(request, 1)
+        return self._shown(request, 1, whole=False)
 
     def whole(self, request: Request) -> Shown:
         """Answer for the whole family."""
         began = time.perf_counter()
-        shown = self._shown(request, FAMILY_SIZE)
+        shown = self._shown(request, request.sheet.trial.family_size, whole=True)
         self.ended = time.perf_counter()
         self.cost = self.ended - began
         return shown
@@ -78,12 +78,12 @@ class Assessing:
         """Tell whether the last whole family is so old that the next one should wait no longer."""
         return time.perf_counter() - self.ended > max(LATE, LATE_TIMES * self.cost)
 
-    def _shown(self, request: Request, size: int) -> Shown:
+    def _shown(self, request: Request, size: int, *, whole: bool) -> Shown:
         assessment = self.judge(request.sheet, size)
         overlay = self.draw(request.sheet, assessment)
         kept = tuple(found for tuning in request.kept if (found := self._result(request.sheet, tuning)) is not None)
         curves = _curves(request.sheet, size, assessment.nominal) if request.frequency else None
-        return Shown(request.number, request.sheet, assessment, overlay, kept, size > 1, curves)
+        return Shown(request.number, request.sheet, assessment, overlay, kept, whole, curves)
 
     def _result(self, sheet: Sheet, tuning: KeptTuning) -> KeptResult | None:
         """Return what a kept tuning makes of the sheet's nominal plant; None when that cannot be computed."""
@@ -109,7 +109,7 @@ def _curves(sheet: Sheet, size: int, nominal: MemberResult) -> "FrequencyCurves"
     from tuner.simulate.curves import frequency_curves
     from tuner.simulate.loop import loops_of
 
-    loops = loops_of(sheet, family(sheet.plant, size))
+    loops = loops_of(sheet, family_of(sheet, size))
     return frequency_curves(loops, nominal.poles, nominal.margins)
 
 

@@ -6,6 +6,7 @@ from dataclasses import replace
 from PySide6.QtWidgets import QCheckBox
 
 from tuner.model.parameters import Kind, Parameter
+from tuner.model.plant import Spread
 from tuner.session import typed
 from tuner.session.document import Document
 from tuner.session.fields import unit_of, value_at, with_value_at
@@ -122,7 +123,38 @@ class FlagField(Field):
         self.refresh(anew=False)
 
 
-ParameterField = NumberField | TextField | ChoiceField | FlagField
+class SpreadField(LineField[Spread | None]):
+    """How far the lag of the same block may drift, typed; empty stands for not at all."""
+
+    def __init__(self, document: Document, parameter: Parameter, theme: Theme) -> None:
+        self._document, self._parameter = document, parameter
+        self.path = parameter.path
+        words = Words(self._read, typed.shown_spread)
+        super().__init__(theme, _caption(parameter), Source(self._held, words, self._take))
+        self.intake.left.connect(document.release)
+        self.line.setPlaceholderText("none")
+        self.unit.hide()
+
+    def _held(self) -> Spread | None:
+        spread: Spread | None = value_at(self._document.sheet, self._parameter.path)
+        return spread
+
+    def _read(self, text: str) -> Spread | None:
+        lag: float = value_at(self._document.sheet, f"{self._parameter.section}.lag")
+        found = typed.spread(text, lag)
+        if found is not None and lag <= 0.0:
+            raise typed.TypedError("expected a lag above 0 before its spread, found none")
+        if found is not None and found.low <= 0.0:
+            raise typed.TypedError(f"expected a range of lags above 0, found {typed.shown(found.low)} at its lower end")
+        return found
+
+    def _take(self, value: Spread | None) -> None:
+        path = self._parameter.path
+        changed = with_value_at(self._document.sheet, path, value)
+        self._document.edit(changed, label=f"Set {self._parameter.section} spread", merge_key=path)
+
+
+ParameterField = NumberField | TextField | ChoiceField | FlagField | SpreadField
 
 BY_KIND: dict[Kind, Callable[[Document, Parameter, Theme], ParameterField]] = {
     Kind.NUMBER: NumberField,
@@ -130,6 +162,7 @@ BY_KIND: dict[Kind, Callable[[Document, Parameter, Theme], ParameterField]] = {
     Kind.TEXT: TextField,
     Kind.CHOICE: ChoiceField,
     Kind.FLAG: FlagField,
+    Kind.SPREAD: SpreadField,
 }
 
 """The field of each kind of value."""
