@@ -1,6 +1,7 @@
 """Invented family results for the tests of judging."""
 
 from collections.abc import Mapping
+from typing import Any
 
 import numpy as np
 
@@ -22,9 +23,13 @@ LOOP = Loop(
 
 def sheet(limits: Mapping[str, float] | None = None, **trial: float) -> Sheet:
     """Return a sheet with limits; reference 10 degC, disturbance 5 %, 120 min unless said."""
-    numbers = {"duration": 120.0, "reference": 10.0, "disturbance": 5.0} | trial
+    numbers: dict[str, Any] = {"duration": 120.0, "reference": 10.0, "disturbance": 5.0} | trial
     return Sheet(
-        LOOP, ExpressionPlant("1/(s + 1)"), Controller(), Trial(**numbers), limits=tuple((limits or {}).items())
+        LOOP,
+        ExpressionPlant("1/(s + 1)"),
+        Controller(),
+        Trial(**numbers),
+        limits=tuple((limits or {}).items()),
     )
 
 

@@ -4,8 +4,8 @@ from itertools import pairwise, product
 
 import pytest
 
-from tuner.model.family import FAMILY_SIZE, family
-from tuner.model.plant import CoefficientPlant, ExpressionPlant, PlantParameter, Spread, spread_percent
+from tuner.model.family import family
+from tuner.model.plant import FAMILY_SIZE, CoefficientPlant, ExpressionPlant, PlantParameter, Spread, spread_percent
 
 
 def plant(count: int) -> ExpressionPlant:

@@ -34,7 +34,7 @@ def read_drifts(plant: Bare, table: Table, faults: list[Fault]) -> tuple[PlantPa
             spread = read_spread(place, known[name], one, faults)
             if spread.high > spread.low:
                 found[name] = PlantParameter(name, known[name], spread=spread)
-    return tuple(found.values())
+    return tuple(found[name] for name in known if name in found)
 
 
 def _keys() -> tuple[str, ...]:

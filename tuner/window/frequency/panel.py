@@ -226,8 +226,8 @@ def worst_words(shown: Shown, measures: tuple[str, ...]) -> str:
 
 
 def _worst(assessment: Assessment, name: str, sheet: Sheet) -> str:
-    worst = assessment.worst[name]
-    if worst.value is None:
+    worst = assessment.worst.get(name)
+    if worst is None or worst.value is None:
         return ""
     where = "the nominal plant" if worst.plant == "nominal" else worst.plant
     return f"{BY_NAME[name].label} at worst {quantity(worst.value, unit_of(name, sheet.loop), 3)} with {where}"
