@@ -105,6 +105,7 @@ def _result(  # noqa: PLR0913, PLR0917 - what is known of one plant
         final_disturbance=measured.final_disturbance,
         notes=tuple(_notes(loop, poles, traces, measured.values)),
         margins=found,
+        drift=member.drift,
     )
 
 

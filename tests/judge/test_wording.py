@@ -5,7 +5,8 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from tests.judge.invented import LOOP
-from tuner.judge.wording import number, quantity, relation, told_apart, unit_of
+from tuner.judge.assessment import LimitResult
+from tuner.judge.wording import number, quantity, relation, shortfall, told_apart, unit_of
 from tuner.model.loop import Loop
 
 
@@ -68,3 +69,21 @@ def test_different_numbers_read_differently(value: float, limit: float) -> None:
     digits = told_apart(value, limit)
 
     assert (value == limit) == (number(value, digits) == number(limit, digits))
+
+
+@pytest.mark.parametrize(
+    ("measure", "limit", "value", "met", "beyond"),
+    [
+        ("overshoot", 10.0, 12.0, False, 0.2),
+        ("overshoot", 10.0, 8.0, True, -0.2),
+        ("gain_margin", 2.0, 1.5, False, 0.25),
+        ("steady_state_error", 2.0, -3.0, False, 0.5),
+        ("settling_time", 90.0, None, False, float("inf")),
+        ("peak_time", 90.0, None, True, float("-inf")),
+    ],
+)
+def test_how_far_a_value_is_beyond_its_limit(
+    measure: str, limit: float, value: float | None, met: bool, beyond: float
+) -> None:
+    """In parts of the limit, above 0 when it is missed."""
+    assert shortfall(LimitResult(measure, limit, value, "nominal", met)) == pytest.approx(beyond)

@@ -47,3 +47,42 @@ def test_a_loop_that_is_left_is_forgotten_everywhere() -> None:
         window.pages.choose("Frequency")
         window.pages.forget()
         assert window.frequency.panels["Nyquist plot"].ask() is None
+
+
+def test_a_chip_shows_its_worst_plant_in_place_of_the_nominal_one() -> None:
+    """The plots have that plant's curves, the verdict stays, and the way back is there."""
+    with opened() as (window, _):
+        assert window.shown is not None
+        limit = window.shown.assessment.limits[0]
+        QTest.mouseClick(window.ribbon.chips[0], Qt.MouseButton.LeftButton)
+        assert window.shown.looked_at == limit.plant
+        shown = window.plots.panels["Effort"].shown
+        assert shown is not None
+        assert shown.assessment.nominal.name == limit.plant
+        assert window.shown.assessment.nominal.name == "nominal"
+        assert window.pages.back.isVisibleTo(window)
+        window.pages.back.click()
+        assert window.shown.looked_at == ""
+        assert not window.pages.back.isVisibleTo(window)
+
+
+def test_the_worst_plant_stays_in_sight_while_gains_move() -> None:
+    """The same plant, by its name, with the new gains."""
+    with opened() as (window, _):
+        window.look_at_worst()
+        assert window.shown is not None
+        plant = window.shown.looked_at
+        assert plant
+        sheet = window.document.sheet
+        moved = replace(sheet, controller=sheet.controller.with_value("kp", 1.5))
+        window.document.edit(moved, label="Set kp")
+        assert window.shown.looked_at == plant
+        assert window.shown.sheet.controller.value("kp") == 1.5
+
+
+def test_the_keyboard_chooses_a_plant_too() -> None:
+    """The space bar on a chip does what a press does."""
+    with opened() as (window, _):
+        QTest.keyClick(window.ribbon.chips[0], Qt.Key.Key_Space)
+        assert window.shown is not None
+        assert window.shown.looked_at == window.shown.assessment.limits[0].plant

@@ -4,10 +4,9 @@ from collections.abc import Mapping
 from dataclasses import dataclass, replace
 
 from tuner.assess import assess
-from tuner.footing.classes import FIRM, LOST, SOFT
+from tuner.footing.classes import FIRM, LOST, SOFT, tuned
 from tuner.judge.assessment import Assessment, LimitResult
-from tuner.judge.wording import relation
-from tuner.model.measures import BY_NAME
+from tuner.judge.wording import relation, shortfall
 from tuner.model.sheet import Sheet
 
 
@@ -25,7 +24,7 @@ def reason_at(sheet: Sheet, changes: Mapping[str, float], family_size: int | Non
     Parameters
     ----------
     changes : mapping of str to float
-        Values by the keys of the sheet, as `Controller.with_value` takes them.
+        Values by the keys of the sheet; 0 leaves out a number that is never 0.
 
     Raises
     ------
@@ -34,7 +33,7 @@ def reason_at(sheet: Sheet, changes: Mapping[str, float], family_size: int | Non
     """
     controller = sheet.controller
     for name, value in changes.items():
-        controller = controller.with_value(name, value)
+        controller = tuned(controller, name, value)
     changed = replace(sheet, controller=controller)
     return _reason(changed, assess(changed, family_size))
 
@@ -44,25 +43,15 @@ def _reason(sheet: Sheet, found: Assessment) -> Reason:
         return Reason(LOST, found.instability.sentence.rstrip("."))
     missed = [limit for limit in found.limits if not limit.met]
     if missed:
-        worst = max(missed, key=_shortfall)
+        worst = max(missed, key=shortfall)
         more = f", and {len(missed) - 1} more missed" if len(missed) > 1 else ""
-        return Reason(SOFT, f"{_told(sheet, worst)}{more}")
+        return Reason(SOFT, f"{_told(sheet, worst, found)}{more}")
     if not found.limits:
         return Reason(FIRM, "stable with every plant; the sheet gives no limits")
-    nearest = max(found.limits, key=_shortfall)
-    return Reason(FIRM, f"all limits met; nearest: {_told(sheet, nearest)}")
+    nearest = max(found.limits, key=shortfall)
+    return Reason(FIRM, f"all limits met; nearest: {_told(sheet, nearest, found)}")
 
 
-def _told(sheet: Sheet, limit: LimitResult) -> str:
-    where = "with the nominal plant" if limit.plant == "nominal" else f"at {limit.plant}"
+def _told(sheet: Sheet, limit: LimitResult, found: Assessment) -> str:
+    where = "with the nominal plant" if limit.plant == "nominal" else f"at {found.drift_of(limit.plant)}"
     return f"{relation(limit.measure, limit.value, limit.limit, sheet.loop)} {where}"
-
-
-def _shortfall(limit: LimitResult) -> float:
-    """Return how near a value is to its limit, or how far beyond: above 0 when missed, in parts of the limit."""
-    measure = BY_NAME[limit.measure]
-    if limit.value is None:
-        return float("inf") if not limit.met else -1.0
-    value = abs(limit.value) if measure.by_size else limit.value
-    beyond = limit.limit - value if measure.at_least else value - limit.limit
-    return beyond / abs(limit.limit) if limit.limit else beyond

@@ -1,7 +1,7 @@
 """The one result that the window, the commands, the report and Python callers all show."""
 
 from collections.abc import Mapping
-from dataclasses import dataclass, field
+from dataclasses import dataclass, field, replace
 from typing import TYPE_CHECKING, Literal
 
 from tuner.simulate.traces import ComplexArray, Traces
@@ -60,6 +60,8 @@ class MemberResult:
         What else the reader must know about this plant's loop; one sentence each.
     margins : Margins or None
         With the frequencies at which they are taken; None where the loop is unstable or not closed.
+    drift : str
+        How far the plant is from the nominal one, in words: "gain +15 %, delay +50 %"; empty for the nominal plant.
     """
 
     name: str
@@ -72,6 +74,7 @@ class MemberResult:
     final_disturbance: float | None = None
     notes: tuple[str, ...] = ()
     margins: "Margins | None" = None
+    drift: str = ""
 
 
 @dataclass(frozen=True, slots=True)
@@ -139,6 +142,16 @@ class Assessment:
     def nominal(self) -> MemberResult:
         """The nominal plant's result."""
         return self.members[0]
+
+    def drift_of(self, plant: str) -> str:
+        """Return how far a plant has drifted, by its name; the name itself where that is not known."""
+        return next((member.drift for member in self.members if member.name == plant and member.drift), plant)
+
+    def seen_from(self, plant: str) -> "Assessment":
+        """Return this assessment with a plant of the family in the place of the nominal one; unchanged without it."""
+        chosen = [member for member in self.members if member.name == plant]
+        rest = [member for member in self.members if member.name != plant]
+        return replace(self, members=(*chosen, *rest)) if chosen else self
 
     @property
     def family_size(self) -> int:

@@ -1,7 +1,8 @@
 """How judged numbers are said: four significant digits, always with their unit."""
 
-from math import isinf
+from math import inf, isinf
 
+from tuner.judge.assessment import LimitResult
 from tuner.model.loop import Loop
 from tuner.model.measures import BY_NAME
 from tuner.model.units import unit_in
@@ -50,3 +51,13 @@ def relation(measure: str, value: float | None, limit: float, loop: Loop) -> str
     digits = told_apart(size, limit)
     sign = ">" if size > limit else "<" if size < limit else "="
     return f"{facts.label} {quantity(size, unit, digits)} {sign} {quantity(limit, unit, digits)}"
+
+
+def shortfall(result: LimitResult) -> float:
+    """Return how far a value is beyond its limit, above 0 when it is missed, in parts of the limit."""
+    measure = BY_NAME[result.measure]
+    if result.value is None:
+        return -inf if result.met else inf
+    size = abs(result.value) if measure.by_size else result.value
+    beyond = result.limit - size if measure.at_least else size - result.limit
+    return beyond / abs(result.limit) if result.limit else beyond

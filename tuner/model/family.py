@@ -10,6 +10,9 @@ from tuner.model.drifts import parameters_of
 from tuner.model.plant import FAMILY_SIZE, Plant, PlantParameter, spread_percent
 from tuner.model.sheet import Actuator, Sensor, Sheet
 
+NOMINAL = "nominal"
+"""Name of the plant that has not drifted."""
+
 ACTUATOR_LAG, SENSOR_LAG = "actuator lag", "sensor lag"
 """Names of what drifts beside the plant; no parameter of a formula can have them."""
 
@@ -66,11 +69,11 @@ def family(plant: Plant, size: int = FAMILY_SIZE, more: tuple[PlantParameter, ..
     nominal = {parameter.name: parameter.value for parameter in parameters}
     drifting = [parameter for parameter in parameters if _drifts(parameter)]
     if not drifting or size < 2:
-        return (Member("nominal", nominal),)
+        return (Member(NOMINAL, nominal),)
     corners = _corners(len(drifting), size - 1)
     between = _latin_hypercube(len(drifting), size - 1 - len(corners))
     members = [_member(nominal, drifting, unit) for unit in (*corners, *between)]
-    return (Member("nominal", nominal), *members)
+    return (Member(NOMINAL, nominal), *members)
 
 
 def _drifts(parameter: PlantParameter) -> bool:

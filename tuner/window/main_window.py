@@ -1,17 +1,20 @@
 """The window: puts the views in their places, sends every change to the worker, and its answers to the views."""
 
+from collections.abc import Sequence
 from pathlib import Path
 
 from PySide6.QtCore import QByteArray, Qt, QTimer, Signal
 from PySide6.QtGui import QCloseEvent, QDragEnterEvent, QDropEvent
 from PySide6.QtWidgets import QMainWindow, QScrollArea, QSplitter, QVBoxLayout, QWidget
 
+from tuner.judge.wording import shortfall
+from tuner.model.family import NOMINAL
 from tuner.session.document import Document
 from tuner.window.editors.panel import EditorPanel
 from tuner.window.elided import ElidedLabel
 from tuner.window.frequency.page import FrequencyPage
 from tuner.window.memory import Memory
-from tuner.window.pages import Pages
+from tuner.window.pages import Page, Pages
 from tuner.window.plot_grid import PlotGrid
 from tuner.window.ribbon import Ribbon
 from tuner.window.rulers.panel import RulerPanel
@@ -40,6 +43,8 @@ class MainWindow(QMainWindow):
         Answers what the document asks; the window closes it when it closes.
     editors, rulers : QWidget
         The views that the hand works on.
+    more_pages : sequence of Page
+        Pages of the plot area that the hand works on too.
     """
 
     dropped = Signal(object)
@@ -47,16 +52,23 @@ class MainWindow(QMainWindow):
     closing = Signal(object)
     """The `QCloseEvent`, to be ignored by whoever has a reason."""
 
-    def __init__(
-        self, document: Document, theme: Theme, assessor: Assessor, editors: EditorPanel, rulers: RulerPanel
+    def __init__(  # noqa: PLR0913, PLR0917 - what a window is made of
+        self,
+        document: Document,
+        theme: Theme,
+        assessor: Assessor,
+        editors: EditorPanel,
+        rulers: RulerPanel,
+        more_pages: Sequence[Page] = (),
     ) -> None:
         super().__init__()
         self.document, self.theme, self.assessor = document, theme, assessor
         self.editors, self.rulers = editors, rulers
         self.ribbon, self.plots, self.notes = Ribbon(theme), PlotGrid(theme), ElidedLabel()
         self.frequency = FrequencyPage(theme)
-        self.pages = Pages(theme, (self.plots, self.frequency))
+        self.pages = Pages(theme, (self.plots, self.frequency, *more_pages))
         self.shown: Shown | None = None
+        self.looked_at = ""
         self._asked = self._first = 0
         self._generation = document.generation
         self._fault = ""
@@ -105,7 +117,7 @@ class MainWindow(QMainWindow):
 
     def ask(self) -> None:
         """Ask for an answer, unless what decides it has not changed since the last one was asked for."""
-        wanted = (self.document.sheet, self.document.kept, self.pages.page.wants_frequency)
+        wanted = (self.document.sheet, self.document.kept, self.pages.page.wants_frequency, self.looked_at)
         anew = self.document.generation != self._generation
         if wanted == self._requested and not anew:
             return
@@ -121,16 +133,27 @@ class MainWindow(QMainWindow):
         if shown.number < self._first:
             return
         self.shown = shown
-        self.pages.show(shown)
+        self.pages.show(shown.as_seen())
+        self.pages.say_looked_at(shown.assessment.drift_of(shown.looked_at) if shown.looked_at else "")
         if shown.whole:
             self.ribbon.show(shown)
             self.editors.show(shown.assessment)
             self._say_notes(shown.assessment.notes)
 
+    def look_at(self, plant: str) -> None:
+        """Show a plant of the family in the place of the nominal one, by its name; '' for the nominal one."""
+        self.looked_at = "" if plant == NOMINAL else plant
+        self.ask()
+
+    def look_at_worst(self) -> None:
+        """Show the plant that misses a limit by most, or comes nearest to missing one."""
+        if self.shown is not None and self.shown.assessment.limits:
+            self.look_at(max(self.shown.assessment.limits, key=shortfall).plant)
+
     def _leave_loop(self) -> None:
         """Forget the loop that was open before: its answers on the way are not shown any more."""
         self._generation, self._first = self.document.generation, self._asked
-        self._fault = ""
+        self._fault = self.looked_at = ""
         self.pages.forget()
 
     def _failed(self, failure: Failure) -> None:
@@ -191,6 +214,8 @@ class MainWindow(QMainWindow):
         self.rulers.dragging_started.connect(lambda: self.pages.hold(True))
         self.rulers.dragging_finished.connect(lambda: self.pages.hold(False))
         self.pages.chosen.connect(lambda _name: self.ask())
+        self.pages.nominal_wanted.connect(lambda: self.look_at(""))
+        self.ribbon.plant_wanted.connect(self.look_at)
 
     def layout_memory(self) -> Memory:
         """Return how the window stands and how its room is divided."""

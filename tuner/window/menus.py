@@ -92,6 +92,9 @@ class Menus:
         for index, name in enumerate(window.pages.pages):
             self._add(menu, f"page {name}", f"{name} page", partial(window.pages.choose, name), f"Ctrl+Alt+{index + 1}")
         menu.addSeparator()
+        self._add(menu, "look at worst", "Look at the worst &plant", window.look_at_worst, "Ctrl+L")
+        self._add(menu, "look at nominal", "Look at the &nominal plant", partial(window.look_at, ""), "Ctrl+Shift+L")
+        menu.addSeparator()
         self._add(menu, "whole", "&Whole range of the plots", window.pages.show_whole, "Ctrl+0")
         menu.addSeparator()
         self._add(menu, "to editor", "Go to the &editor", lambda: _focus(window.editors), "Ctrl+1")

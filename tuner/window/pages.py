@@ -4,7 +4,7 @@ from collections.abc import Sequence
 from typing import Protocol
 
 from PySide6.QtCore import QObject, Signal
-from PySide6.QtWidgets import QHBoxLayout, QStackedWidget, QVBoxLayout, QWidget
+from PySide6.QtWidgets import QHBoxLayout, QLabel, QPushButton, QStackedWidget, QVBoxLayout, QWidget
 
 from tuner.window.editors.segments import Segments
 from tuner.window.plots.panel import Panel
@@ -50,6 +50,8 @@ class Pages(QObject):
 
     chosen = Signal(str)
     """The name of the page that came in sight."""
+    nominal_wanted = Signal()
+    """The nominal plant is to be looked at again."""
 
     def __init__(self, theme: Theme, pages: Sequence[Page]) -> None:
         super().__init__()
@@ -61,7 +63,10 @@ class Pages(QObject):
         self.stack = QStackedWidget()
         for page in pages:
             self.stack.addWidget(page.widget)
+        self.looked_at, self.back = QLabel(), QPushButton("Back to the nominal plant")
+        self.back.clicked.connect(self.nominal_wanted)
         self.widget = self._arranged()
+        self.say_looked_at("")
         self._name = pages[0].name
         self.words.show_choice(self._name)
 
@@ -87,6 +92,12 @@ class Pages(QObject):
         """Show an answer on the page in sight."""
         self._shown, self._stale = shown, False
         self.page.show(shown)
+
+    def say_looked_at(self, plant: str) -> None:
+        """Say which plant the plots show in the place of the nominal one; '' for none."""
+        self.looked_at.setText(f"Looking at the plant with {plant}" if plant else "")
+        self.looked_at.setVisible(bool(plant))
+        self.back.setVisible(bool(plant))
 
     def show_stale(self) -> None:
         """Grey what is shown."""
@@ -118,6 +129,9 @@ class Pages(QObject):
         row.setContentsMargins(8, 0, 8, 0)
         row.addWidget(self.words)
         row.addStretch(1)
+        row.addWidget(self.looked_at)
+        row.addSpacing(12)
+        row.addWidget(self.back)
         column = QVBoxLayout(whole)
         column.setContentsMargins(0, 0, 0, 0)
         column.setSpacing(0)

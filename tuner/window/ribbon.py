@@ -1,11 +1,21 @@
 """The verdict over everything: the loop's title, the verdict in words, and one chip for each limit."""
 
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
+from functools import partial
 from typing import Literal
 
-from PySide6.QtCore import QRectF, QSize, Qt
-from PySide6.QtGui import QColor, QFontMetrics, QPainter, QPaintEvent, QPen, QResizeEvent
+from PySide6.QtCore import QObject, QRectF, QSize, Qt, Signal
+from PySide6.QtGui import (
+    QColor,
+    QFontMetrics,
+    QKeyEvent,
+    QMouseEvent,
+    QPainter,
+    QPaintEvent,
+    QPen,
+    QResizeEvent,
+)
 from PySide6.QtWidgets import QHBoxLayout, QScrollArea, QSizePolicy, QVBoxLayout, QWidget
 
 from tuner.judge.assessment import Assessment, LimitResult
@@ -74,7 +84,9 @@ def _figures(value: float, limit: float, unit: str) -> str:
 
 
 class Chip(QWidget):
-    """One limit: measure, value against limit, and the plant that is worst."""
+    """One limit: measure, value against limit, and the plant that is worst; pressed, it asks for that plant."""
+
+    chosen = Signal()
 
     def __init__(self, words: ChipWords, tip: str, theme: Theme) -> None:
         super().__init__()
@@ -92,6 +104,18 @@ class Chip(QWidget):
         self.setAccessibleName(words.sentence())
         self.setAccessibleDescription(tip)
         self.update()
+
+    def mousePressEvent(self, event: QMouseEvent) -> None:
+        """Ask for the plant."""
+        if event.button() == Qt.MouseButton.LeftButton:
+            self.chosen.emit()
+
+    def keyPressEvent(self, event: QKeyEvent) -> None:
+        """Ask for the plant by the space bar or the return key."""
+        if event.key() in (Qt.Key.Key_Space, Qt.Key.Key_Return, Qt.Key.Key_Enter):
+            self.chosen.emit()
+        else:
+            super().keyPressEvent(event)
 
     def sizeHint(self) -> QSize:
         """Return a width that holds the widest words so far, so that nothing jumps while a value changes."""
@@ -158,12 +182,17 @@ class VerdictSign(QWidget):
         draw_sign(QPainter(self), _SIGN[self.standing], frame, self._theme.colour(_ROLE[self.standing]))
 
 
-class Ribbon:
+class Ribbon(QObject):
     """The strip across the top; `show` takes an answer, `fail` a sentence on why there is none."""
 
+    plant_wanted = Signal(str)
+    """The name of a plant of the family that is to be looked at."""
+
     def __init__(self, theme: Theme) -> None:
+        super().__init__()
         self._theme = theme
         self.chips: list[Chip] = []
+        self._plants: list[str] = []
         self.title, self.verdict, self.detail = ElidedLabel(), RoleLabel(theme, stretch=False), RoleLabel(theme)
         self._sign = VerdictSign(theme)
         self._flow_host, self._scroll = QWidget(), QScrollArea()
@@ -209,17 +238,20 @@ class Ribbon:
 
     def _show_chips(self, shown: Shown) -> None:
         results = shown.assessment.limits
+        self._plants = [result.plant for result in results]
         stable = shown.assessment.verdict != "unstable"
         sizes = [chip.sizeHint() for chip in self.chips]
         while len(self.chips) > len(results):
             self._flow.drop(self.chips.pop())
         for index, result in enumerate(results):
-            words = chip_words(result, shown.sheet.loop, stable=stable)
+            drift = shown.assessment.drift_of(result.plant)
+            words = chip_words(replace(result, plant=drift), shown.sheet.loop, stable=stable)
             tip = _tip(result, shown)
             if index < len(self.chips):
                 self.chips[index].show_words(words, tip)
             else:
                 self.chips.append(Chip(words, tip, self._theme))
+                self.chips[-1].chosen.connect(partial(self._look, index))
                 self._flow.addWidget(self.chips[-1])
         if sizes != [chip.sizeHint() for chip in self.chips]:
             for chip in self.chips:
@@ -227,6 +259,10 @@ class Ribbon:
             self._flow.invalidate()
             self._flow.activate()
             self._fit()
+
+    def _look(self, index: int) -> None:
+        """Ask for the worst plant of a limit to be looked at."""
+        self.plant_wanted.emit(self._plants[index])
 
     def _arranged(self) -> QWidget:
         words = QVBoxLayout()
@@ -297,7 +333,7 @@ def verdict_words(assessment: Assessment) -> tuple[str, str]:
 def _tip(result: LimitResult, shown: Shown) -> str:
     """Return the definition of a measure, its worst plant, and why it does not exist if it does not."""
     facts = BY_NAME[result.measure]
-    lines = [f"{facts.label}: {facts.sentence}", f"Worst{at_plant(result.plant)}."]
+    lines = [f"{facts.label}: {facts.sentence}", f"Worst{at_plant(result.plant)}; press to look at this plant."]
     if result.value is None:
         lines += [f"Not there: {reason}." for reason in _reasons(result, shown)]
     nominal = shown.assessment.nominal.measures.get(result.measure)

@@ -1,7 +1,7 @@
 """What passes between the window and its worker: one immutable request, one answer."""
 
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING
 
 from tuner.judge.assessment import Assessment, MemberResult
@@ -18,13 +18,15 @@ if TYPE_CHECKING:
 class Request:
     """A sheet to assess, and the kept tunings to run beside it; the newest `number` wins.
 
-    `frequency` asks for the response over frequency as well.
+    `frequency` asks for the response over frequency as well; `looked_at` names the plant of the family that the plots
+    are to show in the place of the nominal one, '' for the nominal one itself.
     """
 
     number: int
     sheet: Sheet
     kept: tuple[KeptTuning, ...] = ()
     frequency: bool = False
+    looked_at: str = ""
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -56,6 +58,10 @@ class Shown:
         False for the quick first answer, which says nothing about the family and so gives no verdict.
     frequency : FrequencyCurves or None
         The response over frequency, where it was asked for.
+    looked_at : str
+        The plant that stands first in `seen`; '' for the nominal one.
+    seen : Assessment or None
+        The same assessment with that plant in the place of the nominal one; None where that is the nominal one.
     """
 
     number: int
@@ -65,6 +71,12 @@ class Shown:
     kept: tuple[KeptResult, ...] = ()
     whole: bool = True
     frequency: "FrequencyCurves | None" = None
+    looked_at: str = ""
+    seen: Assessment | None = None
+
+    def as_seen(self) -> "Shown":
+        """Return this answer as the plots show it: with the plant that is looked at in the nominal one's place."""
+        return self if self.seen is None else replace(self, assessment=self.seen)
 
 
 @dataclass(frozen=True, slots=True)

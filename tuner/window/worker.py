@@ -10,7 +10,7 @@ from typing import TYPE_CHECKING
 from PySide6.QtCore import QObject, QThread, Signal
 
 from tuner.errors import TrimwrightError
-from tuner.judge.assessment import MemberResult
+from tuner.judge.assessment import Assessment, MemberResult
 from tuner.model.family import family_of
 from tuner.model.sheet import Sheet
 from tuner.session.tunings import KeptTuning
@@ -80,10 +80,14 @@ class Assessing:
 
     def _shown(self, request: Request, size: int, *, whole: bool) -> Shown:
         assessment = self.judge(request.sheet, size)
-        overlay = self.draw(request.sheet, assessment)
+        seen = assessment.seen_from(request.looked_at) if request.looked_at else assessment
+        overlay = self.draw(request.sheet, seen)
         kept = tuple(found for tuning in request.kept if (found := self._result(request.sheet, tuning)) is not None)
-        curves = _curves(request.sheet, size, assessment.nominal) if request.frequency else None
-        return Shown(request.number, request.sheet, assessment, overlay, kept, whole, curves)
+        curves = _curves(request.sheet, seen) if request.frequency else None
+        plant = "" if seen is assessment else request.looked_at
+        return Shown(
+            request.number, request.sheet, assessment, overlay, kept, whole, curves, plant, seen if plant else None
+        )
 
     def _result(self, sheet: Sheet, tuning: KeptTuning) -> KeptResult | None:
         """Return what a kept tuning makes of the sheet's nominal plant; None when that cannot be computed."""
@@ -103,14 +107,15 @@ class Assessing:
             return None
 
 
-def _curves(sheet: Sheet, size: int, nominal: MemberResult) -> "FrequencyCurves":
-    """Return the response over frequency of a sheet's family."""
+def _curves(sheet: Sheet, seen: Assessment) -> "FrequencyCurves":
+    """Return the response over frequency of a sheet's family, the plant that is looked at first."""
     # Not before it is asked for: the first picture does not wait for compiled loops.
     from tuner.simulate.curves import frequency_curves
     from tuner.simulate.loop import loops_of
 
-    loops = loops_of(sheet, family_of(sheet, size))
-    return frequency_curves(loops, nominal.poles, nominal.margins)
+    first = seen.nominal.name
+    loops = loops_of(sheet, sorted(family_of(sheet, seen.family_size), key=lambda member: member.name != first))
+    return frequency_curves(loops, seen.nominal.poles, seen.nominal.margins)
 
 
 class Assessor(QObject):
@@ -157,7 +162,8 @@ class Assessor(QObject):
 
     def _answer(self, request: Request) -> None:
         cost = self._assessing.cost
-        if cost > QUICK:
+        # Another plant than the nominal one is not known before the whole family is.
+        if cost > QUICK and not request.looked_at:
             if not self._tell(request, self._assessing.nominal):
                 return
             overtaken = self._slot.newer(REST if cost > SLOW else FRAME)

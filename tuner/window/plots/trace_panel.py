@@ -7,8 +7,8 @@ from numpy.typing import NDArray
 from PySide6.QtGui import QColor
 
 from tuner.judge.assessment import MemberResult
-from tuner.judge.overlay import Plot
-from tuner.judge.wording import quantity
+from tuner.judge.overlay import PLOT_OF, Plot
+from tuner.judge.wording import quantity, shortfall
 from tuner.model.sheet import Sheet
 from tuner.simulate.traces import Trace
 from tuner.window.plots import thinning
@@ -79,6 +79,8 @@ class TracePanel(Panel):
     """A plot over time; subclasses say which curves."""
 
     plot: Plot
+    second_role = "disturbance"
+    """Role of the colour of the second curve."""
 
     def __init__(self, name: str, theme: Theme) -> None:
         self._lines: Lines | None = None
@@ -154,7 +156,7 @@ class TracePanel(Panel):
         self._draw_family(self._lines, seen, columns)
         self._draw_kept(self._lines, seen, columns)
         self._draw_line(self.nominal, self._lines.nominal, "nominal", seen, columns)
-        self._draw_line(self.second, self._lines.second, "disturbance", seen, columns)
+        self._draw_line(self.second, self._lines.second, self.second_role, seen, columns)
         self._draw_limited(self._lines.limited, seen)
         self.ground.areas = self._marks.areas
         sheet = self.shown.sheet
@@ -231,7 +233,7 @@ class TracePanel(Panel):
     def _names(self, lines: Lines, seen: Extent) -> list[Words]:
         """Return the names of the curves, each where it runs."""
         named = [(lines.nominal, "nominal_word", 0.55)]
-        named += [(lines.second, "disturbance_word", 0.3)] if lines.second is not None else []
+        named += [(lines.second, f"{self.second_role}_word", 0.3)] if lines.second is not None else []
         named += [(line, "kept_word", 0.12 + 0.06 * index) for index, line in enumerate(lines.kept)]
         names = [_name(line, role, share, seen) for line, role, share in named if line.name]
         if lines.limited is not None and lines.limited.connect.mean() >= _WORTH_WORDS:
@@ -253,7 +255,9 @@ def _name(line: Line, role: str, share: float, seen: Extent) -> Words:
 
 
 class OutputPanel(TracePanel):
-    """The output after a step."""
+    """The output after a step; its second curve is that of the worst plant."""
+
+    second_role = "limit"
 
     def lines(self, shown: Shown) -> Lines:
         """Return the output of the nominal plant, of the family and of kept tunings."""
@@ -264,7 +268,17 @@ class OutputPanel(TracePanel):
             Line(trace.t, trace.y, f"{kept.name}")
             for kept, trace in ((kept, self.trace(kept.member)) for kept in shown.kept)
         )
-        return Lines(Line(traces[0].t, traces[0].y, "output y"), t, family, kept)
+        return Lines(Line(traces[0].t, traces[0].y, "output y"), t, family, kept, self._worst(shown))
+
+    def _worst(self, shown: Shown) -> Line | None:
+        """Return the output of the plant that misses a limit of this plot by most, or comes nearest to missing one."""
+        limits = [limit for limit in shown.assessment.limits if PLOT_OF[limit.measure] == self.plot]
+        plant = max(limits, key=shortfall).plant if limits and shown.whole else ""
+        found = [member for member in shown.assessment.members[1:] if member.name == plant]
+        if not found:
+            return None
+        trace = self.trace(found[0])
+        return Line(trace.t, trace.y, f"worst: {found[0].drift or plant}")
 
     def trace(self, member: MemberResult) -> Trace:
         """Return the run that this plot shows."""
