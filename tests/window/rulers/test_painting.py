@@ -9,7 +9,7 @@ from tuner.errors import LoopError
 from tuner.footing.classes import SOFT, Overtaken, Track
 from tuner.model.sheet import Sheet
 from tuner.session.ruler_range import RulerRange, notches
-from tuner.window.rulers.painting import Painter, Painting, PaintRequest, ReasonRequest, reading_by
+from tuner.window.rulers.painting import Painter, Painting, PaintRequest, ReasonRequest, reading_by, without
 
 SPAN = RulerRange(0.1, 100.0, has_off=True)
 NAMES = ("kp", "ki", "kd")
@@ -102,3 +102,9 @@ def test_a_place_is_read() -> None:
     assert reading.sentence == "made up: soft with {'kp': 3.0}"
     read(ReasonRequest(5, made_up.sheet(), "windup_time", None), never)
     assert reasons.asked == [{"kp": 3.0}, {"windup_time": 0.0}]
+
+
+def test_a_sheet_without_a_time_that_is_never_0_has_none() -> None:
+    """A wind-up time left out is absent, so that the sheet can still be computed; a gain left out is 0."""
+    assert without(made_up.sheet(), "windup_time").controller.windup_time is None
+    assert without(made_up.sheet(), "kp").controller.gain_1 == 0.0

@@ -7,18 +7,22 @@ from typing import Protocol
 
 import numpy as np
 
-from tuner.footing.classes import PaintedTrack, Track
+from tuner.footing.classes import PaintedTrack, Track, tuned
 from tuner.model.sheet import Sheet
 from tuner.window.beside import Stop
 
 
 @dataclass(frozen=True, slots=True, eq=False)
 class PaintRequest:
-    """A sheet, and the tracks of its rulers; the newest `number` wins."""
+    """A sheet, and the tracks of its rulers; the newest `number` wins.
+
+    `fine` asks for edges between the notches too, which a hand on the move does not wait for.
+    """
 
     number: int
     sheet: Sheet
     tracks: tuple[Track, ...]
+    fine: bool = True
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -28,6 +32,7 @@ class Painting:
     number: int
     sheet: Sheet
     tracks: Mapping[str, PaintedTrack] = field(default_factory=lambda: MappingProxyType({}))
+    fine: bool = True
 
     def holds(self, name: str, sheet: Sheet) -> bool:
         """Tell whether the paint of one ruler is true of another sheet too: one that differs in that gain alone."""
@@ -35,15 +40,17 @@ class Painting:
 
 
 def without(sheet: Sheet, name: str) -> Sheet:
-    """Return a sheet in which one gain, and what the footing does not depend on, is left out."""
-    controller = replace(sheet.controller.with_value(name, 0.0), as_found=None)
+    """Return a sheet in which one gain, and what the footing does not depend on, is left out; it can be computed."""
+    controller = replace(tuned(sheet.controller, name, 0.0), as_found=None)
     return replace(sheet, controller=controller)
 
 
 class PaintRulers(Protocol):
     """Finds the classes along tracks."""
 
-    def __call__(self, sheet: Sheet, tracks: Sequence[Track], *, stop: Stop) -> tuple[PaintedTrack, ...]:
+    def __call__(
+        self, sheet: Sheet, tracks: Sequence[Track], *, stop: Stop, fine: bool = True
+    ) -> tuple[PaintedTrack, ...]:
         """Return one painted track for each that is asked; see `tuner.footing.rulers.paint_rulers`."""
         ...
 
@@ -73,17 +80,17 @@ class Painter:
         LoopError
             When the loop cannot be computed.
         """
-        known = [track for asked in request.tracks if (track := self._known(request.sheet, asked)) is not None]
+        known = [track for asked in request.tracks if (track := self._known(request, asked)) is not None]
         names = {track.name for track in known}
         new = [track for track in request.tracks if track.name not in names]
-        painted = self._paint(request.sheet, new, stop=stop) if new else ()
+        painted = self._paint(request.sheet, new, stop=stop, fine=request.fine) if new else ()
         found = {track.name: track for track in (*known, *painted)}
-        self._last = Painting(request.number, request.sheet, MappingProxyType(found))
+        self._last = Painting(request.number, request.sheet, MappingProxyType(found), request.fine)
         return self._last
 
-    def _known(self, sheet: Sheet, track: Track) -> PaintedTrack | None:
+    def _known(self, request: PaintRequest, track: Track) -> PaintedTrack | None:
         last = self._last
-        if last is None or not last.holds(track.name, sheet):
+        if last is None or not last.holds(track.name, request.sheet) or (request.fine and not last.fine):
             return None
         painted = last.tracks[track.name]
         return painted if np.array_equal(painted.values, track.values) else None
