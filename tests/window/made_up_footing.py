@@ -42,9 +42,13 @@ class Painting:
     hold: Callable[[Stop], None] = lambda _stop: None
     asked: list[tuple[float, tuple[str, ...]]] = field(default_factory=list)
     threads: set[int] = field(default_factory=set)
+    fine: list[bool] = field(default_factory=list)
 
-    def __call__(self, sheet: Sheet, tracks: Sequence[Track], *, stop: Stop) -> tuple[PaintedTrack, ...]:
+    def __call__(
+        self, sheet: Sheet, tracks: Sequence[Track], *, stop: Stop, fine: bool = True
+    ) -> tuple[PaintedTrack, ...]:
         """Return the painted tracks."""
+        self.fine.append(fine)
         self.threads.add(threading.get_ident())
         self.asked.append((sheet.controller.gain_1, tuple(track.name for track in tracks)))
         self.hold(stop)

@@ -164,6 +164,35 @@ def test_in_a_thread_the_last_sheet_is_the_last_painted(document: Document, pane
     kept.close()
 
 
+def test_a_hand_on_a_ruler_is_not_kept_waiting_for_edges(document: Document, panel: RulerPanel) -> None:
+    """While it is there notches alone are asked for; once it is off, the edges between them too."""
+    paint = made_up_footing.Painting()
+    kept = PaintedRulers(document, panel, Beside(Painter(paint).answer, synchronous=True))
+    kept.wake()
+    panel.dragging_started.emit()
+    document.change_value("ki", 0.051)
+    document.change_value("ki", 0.052)
+    assert paint.fine == [True, False, False]
+    assert kept.painting is not None
+    assert not kept.painting.fine
+    panel.dragging_finished.emit()
+    assert paint.fine == [True, False, False, True]
+    assert kept.painting.fine
+    assert kept.painting.sheet == document.sheet
+    kept.close()
+
+
+def test_a_hand_that_moved_nothing_asks_for_nothing(document: Document, panel: RulerPanel) -> None:
+    """The paint is as fine as it was."""
+    paint = made_up_footing.Painting()
+    kept = PaintedRulers(document, panel, Beside(Painter(paint).answer, synchronous=True))
+    kept.wake()
+    panel.dragging_started.emit()
+    panel.dragging_finished.emit()
+    assert paint.fine == [True]
+    kept.close()
+
+
 Refuse = Callable[..., tuple[PaintedTrack, ...]]
 
 

@@ -41,6 +41,9 @@ class PaintedRulers(QObject):
         self._late.timeout.connect(self._fade)
         worker.answered.connect(self._answered)
         worker.failed.connect(self._failed)
+        self._held = self._is_coarse = False
+        panel.dragging_started.connect(self._hold)
+        panel.dragging_finished.connect(self._let_go)
         self._stop_listening = document.listen(self.ask)
 
     @property
@@ -74,13 +77,25 @@ class PaintedRulers(QObject):
         self._asked += 1
         if not self._late.isActive():
             self._late.start()
-        self._worker.submit(PaintRequest(self._asked, self._document.sheet, tracks))
+        self._is_coarse = self._held
+        self._worker.submit(PaintRequest(self._asked, self._document.sheet, tracks, fine=not self._held))
 
     def close(self) -> None:
         """Ask no more, and end the worker."""
         self._stop_listening()
         self._late.stop()
         self._worker.close()
+
+    def _hold(self) -> None:
+        """Ask for less while a hand is on a ruler, so that what it sees keeps up with it."""
+        self._held = True
+
+    def _let_go(self) -> None:
+        """Ask for all that was left out."""
+        self._held = False
+        if self._is_coarse:
+            self._wanted = None
+            self.ask()
 
     def _is_wanted(self, tracks: tuple[Track, ...]) -> bool:
         if self._wanted is None:
