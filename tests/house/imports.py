@@ -17,6 +17,7 @@ DOORS = {
     "PySide6": "window",
     "shiboken6": "window",
     "pyqtgraph": "window",
+    "contourpy": "window",
     "jsonschema": "files",
     "tomlkit": "files",
     "lark": "files",

@@ -6,10 +6,13 @@ from pathlib import Path
 from typing import TypeVar, cast
 
 from tests.window import made_up, made_up_footing
+from tests.window.gain_map.made_up_map import Mapping
 from tuner.session.document import Document
 from tuner.window.app import Wiring, wire
 from tuner.window.asking import Asking, LeftBehind, Unsaved
 from tuner.window.editors import build_editors
+from tuner.window.gain_map import build_gain_map
+from tuner.window.gain_map.question import PaintMap
 from tuner.window.main_window import MainWindow
 from tuner.window.rulers import build_rulers, keep_painted
 from tuner.window.rulers.painting import PaintRulers, ReasonAt
@@ -84,16 +87,18 @@ def opened(  # noqa: PLR0913 - each is what some test is about
     theme: Theme | None = None,
     paint: PaintRulers | None = None,
     reason_at: ReasonAt | None = None,
+    paint_map: PaintMap | None = None,
 ) -> Iterator[tuple[MainWindow, Wiring]]:
     """Open a window on a made-up loop, and close it whatever happens."""
     held = document or Document(made_up.sheet())
     look = theme or Theme("light")
     assessor = Assessor(judge, made_up.draw, synchronous=synchronous)
     rulers = build_rulers(held, look)
-    window = MainWindow(held, look, assessor, build_editors(held, look), rulers)
     painting, reasons = paint or made_up_footing.Painting(), reason_at or made_up_footing.Reasons()
+    gain_map = build_gain_map(held, look, paint_map or Mapping(), reasons, synchronous=synchronous)
+    window = MainWindow(held, look, assessor, build_editors(held, look), rulers, (gain_map,))
     footing = keep_painted(held, rulers, painting, reasons, synchronous=synchronous)
-    wiring = wire(window, asking or Answers(unsaved="discard"), footing)
+    wiring = wire(window, asking or Answers(unsaved="discard"), footing, gain_map)
     window.resize(1280, 800)
     window.show()
     if synchronous:
@@ -103,6 +108,7 @@ def opened(  # noqa: PLR0913 - each is what some test is about
     finally:
         wiring.keeping.end()
         footing.close()
+        gain_map.close()
         assessor.close()
         window.hide()
         window.deleteLater()

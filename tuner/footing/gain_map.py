@@ -5,7 +5,7 @@ from dataclasses import dataclass, replace
 
 import numpy as np
 
-from tuner.footing.classes import LOST, Classes, Overtaken, Track, never
+from tuner.footing.classes import LOST, Classes, Overtaken, Track, never, tuned
 from tuner.footing.grading import Grading
 from tuner.footing.ground import ground_of
 from tuner.footing.stability import Flags, stretches
@@ -67,7 +67,7 @@ def paint_map(  # noqa: PLR0913, PLR0917 - the question as it is asked
     ground = ground_of(sheet, size)
     lost, unsure = _lost(sheet, x, y, size, stop)
     tunings = [
-        sheet.controller.with_value(y.name, up).with_value(x.name, across)
+        tuned(tuned(sheet.controller, y.name, up), x.name, across)
         for up in y.values.tolist()
         for across in x.values.tolist()
     ]
@@ -87,7 +87,7 @@ def _lost(sheet: Sheet, x: Track, y: Track, size: int, stop: Callable[[], bool])
     for row, value in enumerate(y.values.tolist()):
         if stop():
             raise Overtaken("a newer question has come")
-        held = replace(sheet, controller=sheet.controller.with_value(y.name, value))
+        held = replace(sheet, controller=tuned(sheet.controller, y.name, value))
         known = stretches(held, members, x, size, None)
         if known is not None:
             lost[row], unsure[row] = known.at(x.values), known.unsure(x.values) | (x.values <= 0.0)

@@ -1,6 +1,6 @@
 """The open document: one tuning sheet with its history, its file and the tunings kept to compare with."""
 
-from collections.abc import Callable
+from collections.abc import Callable, Mapping
 from dataclasses import replace
 from pathlib import Path
 
@@ -144,6 +144,14 @@ class Document:
         """Set one number of the controller, named as in the sheet."""
         controller = self.sheet.controller.with_value(name, value)
         self.change(replace(self.sheet, controller=controller), label=f"Set {name}", merge_key=merge_key)
+
+    def change_values(self, values: Mapping[str, float | None], *, merge_key: str | None = None) -> None:
+        """Set some numbers of the controller at once, as one step; they are named as in the sheet."""
+        controller = self.sheet.controller
+        for name, value in values.items():
+            controller = controller.with_value(name, value)
+        label = f"Set {' and '.join(values)}"
+        self.change(replace(self.sheet, controller=controller), label=label, merge_key=merge_key)
 
     def release(self) -> None:
         """End the merging: the drag is over, the field is left."""

@@ -21,6 +21,8 @@ from tuner.window import faults, memory
 from tuner.window.asking import Asking
 from tuner.window.commands import Commands
 from tuner.window.editors import build_editors
+from tuner.window.gain_map import build_gain_map
+from tuner.window.gain_map.page import GainMapPage
 from tuner.window.keeping import Keeping
 from tuner.window.main_window import MainWindow
 from tuner.window.menus import Menus
@@ -29,7 +31,8 @@ from tuner.window.sheet_files import SheetFiles
 from tuner.window.theme import CHOICES, Theme
 from tuner.window.worker import Assessor
 
-if TYPE_CHECKING:  # the reason's road is loaded when it is first taken
+if TYPE_CHECKING:  # these roads are loaded when they are first taken
+    from tuner.footing.gain_map import GainMap
     from tuner.footing.reason import Reason
 
 _FIRST_SIZE = (1440, 900)
@@ -44,6 +47,7 @@ class Wiring:
     files: SheetFiles
     keeping: Keeping
     footing: Footing | None = None
+    gain_map: GainMapPage | None = None
 
 
 def open_window(path: Path | None) -> int:
@@ -88,21 +92,24 @@ def built(application: QApplication, document: Document, asking: Asking | None =
     application.setWindowIcon(QIcon(str(resources() / "icons" / "trimwright.svg")))
     assessor, rulers = Assessor(_judge, _draw), build_rulers(document, theme)
     footing = keep_painted(document, rulers, _paint_rulers, _reason_at)
-    window = MainWindow(document, theme, assessor, build_editors(document, theme), rulers)
+    gain_map = build_gain_map(document, theme, _paint_map, _reason_at)
+    window = MainWindow(document, theme, assessor, build_editors(document, theme), rulers, (gain_map,))
     window.resize(*_FIRST_SIZE)
     window.restore_layout(remembered)
-    for worker in (assessor, footing.painted, footing.reader):
+    for worker in (assessor, footing.painted, footing.reader, gain_map):
         application.aboutToQuit.connect(worker.close)
-    return window, wire(window, asking or Asking(window), footing)
+    return window, wire(window, asking or Asking(window), footing, gain_map)
 
 
-def wire(window: MainWindow, asking: Asking, footing: Footing | None = None) -> Wiring:
-    """Give a window its menus, its files, its footing and its manners on closing."""
+def wire(
+    window: MainWindow, asking: Asking, footing: Footing | None = None, gain_map: GainMapPage | None = None
+) -> Wiring:
+    """Give a window its menus, its files, its footing, its gain map and its manners on closing."""
     files = SheetFiles(window.document, asking)
     keeping = Keeping(window.document, asking)
     menus = Menus(window, files, Commands(window, asking))
     window.dropped.connect(files.open_path)
-    wiring = Wiring(menus, files, keeping, footing)
+    wiring = Wiring(menus, files, keeping, footing, gain_map)
     window.closing.connect(lambda event: _close(window, wiring, event))
     if footing is not None:
         window.assessor.answered.connect(footing.painted.wake_after_answer)
@@ -122,6 +129,8 @@ def _close(window: MainWindow, wiring: Wiring, event: QCloseEvent) -> None:
         wiring.keeping.end()
         if wiring.footing is not None:
             wiring.footing.close()
+        if wiring.gain_map is not None:
+            wiring.gain_map.close()
         memory.remember(window.layout_memory())
     else:
         event.ignore()
@@ -133,10 +142,18 @@ def _judge(sheet: Sheet, size: int) -> Assessment:
     return assess(sheet, size)
 
 
-def _paint_rulers(sheet: Sheet, tracks: Sequence[Track], *, stop: Callable[[], bool]) -> tuple[PaintedTrack, ...]:
+def _paint_rulers(
+    sheet: Sheet, tracks: Sequence[Track], *, stop: Callable[[], bool], fine: bool = True
+) -> tuple[PaintedTrack, ...]:
     from tuner.footing.rulers import paint_rulers
 
-    return paint_rulers(sheet, tracks, stop=stop)
+    return paint_rulers(sheet, tracks, stop=stop, fine=fine)
+
+
+def _paint_map(sheet: Sheet, x: Track, y: Track, measure: str, *, stop: Callable[[], bool]) -> "GainMap":
+    from tuner.footing.gain_map import paint_map
+
+    return paint_map(sheet, x, y, measure, stop=stop)
 
 
 def _reason_at(sheet: Sheet, changes: Mapping[str, float], /) -> "Reason":

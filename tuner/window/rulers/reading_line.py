@@ -31,20 +31,20 @@ class Piece:
     gap: int = _GAP
 
 
-LEGEND = (
+CLASSES = (
     Piece("firm: the whole family meets every limit", FIRM, gap=_FAR),
     Piece("soft: stable, but a limit is missed", SOFT, gap=_FAR),
     Piece("lost: unstable for some plant", LOST, gap=_FAR),
-    Piece("Alt and an arrow key go to the next edge"),
 )
+LEGEND = (*CLASSES, Piece("Alt and an arrow key go to the next edge"))
 
 
 class ReadingLine(QWidget):
     """One line of words that never asks for more room than it has; what does not fit is said in its tip."""
 
-    def __init__(self, theme: Theme, parent: QWidget | None = None) -> None:
+    def __init__(self, theme: Theme, parent: QWidget | None = None, *, legend: Sequence[Piece] = LEGEND) -> None:
         super().__init__(parent)
-        self._theme = theme
+        self._theme, self._legend = theme, legend
         self._pieces: tuple[Piece, ...] = ()
         self.setSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Fixed)
         theme.changed.connect(self.update)
@@ -52,7 +52,7 @@ class ReadingLine(QWidget):
 
     def show_legend(self) -> None:
         """Say what the patterns mean."""
-        self._show(LEGEND)
+        self._show(self._legend)
 
     def show_note(self, sentence: str) -> None:
         """Say why the rulers are grey."""
