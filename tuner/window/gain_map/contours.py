@@ -12,6 +12,9 @@ _WISHED, _MOST = 7, 10
 _WIDE = 20.0
 """Ratio of the largest to the smallest value from which levels rise by factors instead of steps."""
 
+_EVEN = 33
+"""Evenly spaced places of each scale whose values decide the levels; where a grid is closer it has no more weight."""
+
 _NEAR = 0.03
 """A level this near to the limit, as a share of it, gives way to the limit's own line."""
 
@@ -52,8 +55,9 @@ def contours(worst: Array, x: Array, y: Array, limit: float | None) -> tuple[Con
     from contourpy import LineType, contour_generator
 
     known = np.ma.masked_invalid(worst)
+    evenly = worst[np.ix_(_evenly(y), _evenly(x))]
     generator = contour_generator(x, y, known, name="serial", corner_mask=True, line_type=LineType.Separate)
-    wanted = [(level, False) for level in levels(worst, limit)] + ([] if limit is None else [(limit, True)])
+    wanted = [(level, False) for level in levels(evenly, limit)] + ([] if limit is None else [(limit, True)])
     found = (Contour(level, is_limit, _lines(generator.lines(level))) for level, is_limit in wanted)
     return tuple(contour for contour in found if contour.lines)
 
@@ -70,6 +74,13 @@ def levels(worst: Array, limit: float | None = None) -> tuple[float, ...]:
     candidates = _by_factors(low, high) if wide else _by_steps(low, high)
     shown = [level for level in candidates if level > values.min()]  # no line around a plain of the least value
     return tuple(level for level in shown if limit is None or abs(level - limit) > _NEAR * abs(limit))
+
+
+def _evenly(places: Array) -> NDArray[np.intp]:
+    """Return the indices of the places that are nearest to evenly spaced ones, shape (`_EVEN`,)."""
+    wished = np.linspace(places[0], places[-1], _EVEN)
+    nearest: NDArray[np.intp] = np.abs(places[:, np.newaxis] - wished).argmin(axis=0)
+    return nearest
 
 
 def _lines(found: object) -> tuple[Array, ...]:

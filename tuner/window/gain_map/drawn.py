@@ -37,7 +37,6 @@ class DrawnMap(QObject):
         self._asked = self._shown = self._first = self._stage = 0
         self._pending = self._active = self._held = False
         self._near: Values = (None, None)
-        self._unit = ""
         self._late = QTimer(self, singleShot=True, interval=LATE)
         self._late.timeout.connect(self._fade)
         worker.answered.connect(self._answered)
@@ -48,17 +47,19 @@ class DrawnMap(QObject):
         """Whether the finest map of the present question has come."""
         return not self._pending and self._stage == len(STAGES)
 
-    def want(self, question: Question, unit: str) -> None:
-        """Take up a question, unless it is the one that is being answered; the unit is that of its contours."""
+    def want(self, question: Question) -> None:
+        """Take up a question, unless it is the one that is being answered."""
         if question == self._wanted:
             self._look_closely()
             return
         if not question.has_axes_of(self._wanted):
             self._forget_map()
-        self._wanted, self._unit = question, unit
+        self._wanted = question
         self._stage, self._pending = 0, False
-        if self._view.answer is not None and not self._late.isActive():
-            self._late.start()
+        if self._view.answer is not None:
+            self._show(self._view.answer, faded=self._view.faded)
+            if not self._late.isActive():
+                self._late.start()
         self._go_on()
 
     def activate(self, active: bool) -> None:
@@ -119,7 +120,7 @@ class DrawnMap(QObject):
         is_true = answer.question == self._wanted
         if is_true:
             self._late.stop()
-        self._view.show_map(answer, self._unit, faded=self._view.faded and not is_true)
+        self._show(answer, faded=self._view.faded and not is_true)
         self._go_on()
 
     def _failed(self, failure: Failure) -> None:
@@ -132,4 +133,11 @@ class DrawnMap(QObject):
     def _fade(self) -> None:
         """Show paler what is not true of the present sheet any more."""
         if self._view.answer is not None and self._view.answer.question != self._wanted:
-            self._view.show_map(self._view.answer, self._unit, faded=True)
+            self._show(self._view.answer, faded=True)
+
+    def _show(self, answer: MapAnswer, *, faded: bool) -> None:
+        """Show a map, its contours only if they are of the measure that is wanted now."""
+        measure = "" if self._wanted is None else self._wanted.measure
+        fitting = answer.for_measure(measure)
+        if fitting is not self._view.answer or faded != self._view.faded:
+            self._view.show_map(fitting, faded=faded)

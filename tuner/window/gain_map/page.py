@@ -7,7 +7,6 @@ from PySide6.QtGui import QHideEvent, QShowEvent
 from PySide6.QtWidgets import QVBoxLayout, QWidget
 
 from tuner.footing.classes import UNKNOWN, WORDS
-from tuner.judge.wording import unit_of
 from tuner.session.document import Document
 from tuner.window.beside import Beside
 from tuner.window.gain_map.axis import Axis, axis_of
@@ -107,8 +106,7 @@ class GainMapPage(QObject):
         self.choosers.show_sheet(self._document.sheet)
         x, y = (axis_of(self._document, parameter) for parameter in self.choosers.gains)
         self.view.show_values(x, y, self._values(x, y), tuple(self._spots(x, y)))
-        measure, sheet = self.choosers.chosen_measure, self._document.sheet
-        self.drawn.want(question_of(sheet, x, y, measure), unit_of(measure, sheet.loop) if measure else "")
+        self.drawn.want(question_of(self._document.sheet, x, y, self.choosers.chosen_measure))
         self.reader.look()
         self._describe()
 

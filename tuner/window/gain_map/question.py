@@ -1,12 +1,13 @@
 """What passes between the map and its workers: the classes over two gains, and the reason at one place."""
 
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING, Protocol
 
 import numpy as np
 
 from tuner.footing.classes import Track
+from tuner.judge.wording import unit_of
 from tuner.model.measures import BY_NAME
 from tuner.model.sheet import Sheet
 from tuner.window.beside import Stop
@@ -85,6 +86,16 @@ class MapAnswer:
     def question(self) -> Question:
         """What it answers."""
         return self.request.question
+
+    @property
+    def unit(self) -> str:
+        """That of the contours."""
+        asked = self.question
+        return unit_of(asked.measure, asked.sheet.loop) if asked.measure else ""
+
+    def for_measure(self, measure: str) -> "MapAnswer":
+        """Return what of it is true whichever measure was asked for: without contours if they are another's."""
+        return self if measure == self.question.measure else replace(self, contours=())
 
 
 class PaintMap(Protocol):

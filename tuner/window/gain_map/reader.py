@@ -2,6 +2,7 @@
 
 from PySide6.QtCore import QObject, QTimer
 
+from tuner.footing.classes import UNKNOWN
 from tuner.model.sheet import Sheet
 from tuner.session.document import Document
 from tuner.window.beside import Beside
@@ -9,6 +10,7 @@ from tuner.window.gain_map.axis import Axis
 from tuner.window.gain_map.question import PlaceReading, PlaceRequest, Values
 from tuner.window.gain_map.view import MapView
 from tuner.window.rulers.reading_line import ReadingLine
+from tuner.window.shown import Failure
 
 REST = 60
 """Milliseconds that mouse or keys rest at a place before its reason is computed."""
@@ -40,6 +42,7 @@ class MapReader(QObject):
         self._rest = QTimer(self, singleShot=True, interval=REST)
         self._rest.timeout.connect(self._ask)
         worker.answered.connect(self._answered)
+        worker.failed.connect(self._failed)
         view.place_changed.connect(self.look)
 
     def look(self) -> None:
@@ -79,4 +82,10 @@ class MapReader(QObject):
     def _answered(self, reading: PlaceReading) -> None:
         if reading.number == self._asked:
             self._reading = reading
+            self.say()
+
+    def _failed(self, failure: Failure) -> None:
+        """Say why nothing can be known of the place."""
+        if failure.number == self._asked:
+            self._reading = PlaceReading(failure.number, UNKNOWN, failure.sentence)
             self.say()

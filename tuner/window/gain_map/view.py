@@ -47,7 +47,7 @@ class MapView(QWidget):
         self._values: Values = (None, None)
         self._spots: tuple[tuple[str, Values], ...] = ()
         self._answer: MapAnswer | None = None
-        self._faded, self._unit, self._sentence = False, "", ""
+        self._faded, self._sentence = False, ""
         self._pixels: Classes | None = None
         self._areas: QImage | None = None
         self._rooms: tuple[Room, ...] = ()
@@ -68,9 +68,9 @@ class MapView(QWidget):
         self._axes, self._values, self._spots = (x, y), values, tuple(spots)
         self.update()
 
-    def show_map(self, answer: MapAnswer | None, unit: str = "", *, faded: bool = False) -> None:
-        """Show classes and contours, paler when they are out of date; the unit is that of the contours."""
-        self._answer, self._unit, self._faded = answer, unit, faded
+    def show_map(self, answer: MapAnswer | None, *, faded: bool = False) -> None:
+        """Show classes and contours, paler when they are out of date."""
+        self._answer, self._faded = answer, faded
         self._pixels = None
         self._redraw()
         self.map_changed.emit()
@@ -262,7 +262,7 @@ class MapView(QWidget):
             self._picture(),
             self._rooms,
             self._answer.contours if self._answer is not None else (),
-            self._unit,
+            self._answer.unit if self._answer is not None else "",
             tuple(self._spot(values, name) for name, values in self._spots),
             self._spot(self._values),
             None if self._pointer is None else self._spot(self._values_at(self._pointer)),
