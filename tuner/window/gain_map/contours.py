@@ -106,4 +106,4 @@ def _by_factors(low: float, high: float) -> list[float]:
 
 def _round_step(step: float) -> float:
     decade = 10.0 ** floor(log10(step))
-    return next(digit * decade for digit in (1.0, 2.0, 5.0, 10.0) if digit * decade >= 0.999 * step)
+    return next(digit * decade for digit in (1.0, 2.0, 5.0, 10.0) if digit * decade >= 0.7 * step)
