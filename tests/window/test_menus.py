@@ -122,6 +122,18 @@ def test_pictures_are_offered_for_every_plot(tmp_path: Path) -> None:
         assert asking.suggested.name == "ink_drier_effort.png"
 
 
+def test_a_picture_of_the_gain_map_is_offered_while_it_is_in_sight(tmp_path: Path) -> None:
+    """It is named after loop and page."""
+    asking = Answers(picture=tmp_path / "map.png", unsaved="discard")
+    with opened(asking=asking) as (window, _):
+        window.pages.choose("Gain map")
+        (entry,) = _entries(_submenu(window, "Save p&icture of"))
+        assert entry.text() == "Gain map"
+        entry.trigger()
+        assert (tmp_path / "map.png").stat().st_size > 1000
+        assert asking.suggested.name == "ink_drier_gain_map.png"
+
+
 def test_nothing_is_delivered_without_a_verdict() -> None:
     """A sheet that cannot be computed cannot be delivered, and it is said why."""
     asking = Answers(unsaved="discard")

@@ -10,8 +10,7 @@ from tuner.window.asking import Asking
 from tuner.window.cautions import AboutDialog
 from tuner.window.deliver_dialog import DeliverDialog, Deliverer, real_deliverer
 from tuner.window.main_window import MainWindow
-from tuner.window.pictures import copy_picture, save_picture
-from tuner.window.plots.panel import Panel
+from tuner.window.pictures import Pictured, copy_picture, save_picture
 from tuner.window.sheet_files import suggested_name
 
 
@@ -32,7 +31,7 @@ class Commands:
         deliverer = self._deliverer or real_deliverer()
         _open(DeliverDialog(shown, self._delivery_folder(), deliverer, self._window.theme, self._window))
 
-    def save_picture(self, panel: Panel) -> None:
+    def save_picture(self, panel: Pictured) -> None:
         """Ask for a file and write the picture of a plot to it."""
         title = self._window.document.sheet.loop.title
         path = self._asking.picture_to_save(self._folder() / suggested_name(f"{title} {panel.name}", ".png"))
@@ -43,7 +42,7 @@ class Commands:
         except TrimwrightError as refusal:
             self._asking.tell("No picture", "The picture was not saved.", [str(refusal)])
 
-    def copy_picture(self, panel: Panel) -> None:
+    def copy_picture(self, panel: Pictured) -> None:
         """Put the picture of a plot onto the clipboard."""
         copy_picture(panel.widget)
 

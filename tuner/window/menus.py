@@ -10,6 +10,7 @@ from PySide6.QtWidgets import QMenu
 from tuner.session.document import Document
 from tuner.window.commands import Commands
 from tuner.window.main_window import MainWindow
+from tuner.window.pictures import Pictured
 from tuner.window.plots.panel import Panel
 from tuner.window.sheet_files import SheetFiles, recent, samples
 from tuner.window.theme import CHOICES
@@ -121,7 +122,7 @@ class Menus:
     def _list_samples(self, menu: QMenu) -> None:
         self._list(menu, [(_plain(title), partial(self._files.open_sample, path)) for title, path in samples()])
 
-    def _list_plots(self, menu: QMenu, act: Callable[[Panel], None]) -> None:
+    def _list_plots(self, menu: QMenu, act: Callable[[Pictured], None]) -> None:
         panels = self._window.pages.page.panels
         self._list(menu, [(name, partial(act, panel)) for name, panel in panels.items()])
 

@@ -1,13 +1,13 @@
 """The pages of the plot area: their words in a row, one of them in sight; only that one draws."""
 
-from collections.abc import Sequence
+from collections.abc import Mapping, Sequence
 from typing import Protocol
 
 from PySide6.QtCore import QObject, Signal
 from PySide6.QtWidgets import QHBoxLayout, QLabel, QPushButton, QStackedWidget, QVBoxLayout, QWidget
 
 from tuner.window.editors.segments import Segments
-from tuner.window.plots.panel import Panel
+from tuner.window.pictures import Pictured
 from tuner.window.shown import Shown
 from tuner.window.theme import Theme
 
@@ -18,8 +18,11 @@ class Page(Protocol):
     name: str
     wants_frequency: bool
     """Whether the response over frequency has to be computed for it."""
-    panels: dict[str, Panel]
-    """Its plots by name, of which pictures can be had."""
+
+    @property
+    def panels(self) -> Mapping[str, Pictured]:
+        """What pictures can be had of, by name."""
+        ...
 
     @property
     def widget(self) -> QWidget:

@@ -1,6 +1,7 @@
 """Plots as pictures: into a file or onto the clipboard, at twice the size of the screen."""
 
 from pathlib import Path
+from typing import Protocol
 
 from PySide6.QtCore import QPoint
 from PySide6.QtGui import QGuiApplication, QImage, QPainter
@@ -9,6 +10,20 @@ from PySide6.QtWidgets import QWidget
 from tuner.errors import TrimwrightError
 
 SCALE = 2.0
+
+
+class Pictured(Protocol):
+    """What a picture can be had of."""
+
+    @property
+    def name(self) -> str:
+        """What it is called."""
+        ...
+
+    @property
+    def widget(self) -> QWidget:
+        """What is in the picture."""
+        ...
 
 
 def picture(widget: QWidget) -> QImage:

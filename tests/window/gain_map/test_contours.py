@@ -52,3 +52,12 @@ def test_a_plain_has_no_lines() -> None:
     """Where the measure is one value everywhere, or mostly its least, no line runs around it."""
     assert levels(np.zeros((5, 5))) == ()
     assert 0.0 not in levels(np.maximum(np.linspace(-50.0, 50.0, 100), 0.0))
+
+
+def test_places_closer_together_have_no_more_weight() -> None:
+    """With many more columns at one end the levels are those of the plain grid, so none comes or goes."""
+    closer = np.union1d(X, np.linspace(0.9, 1.0, 201))
+    plain, dense = (100.0 * x[np.newaxis, :] + Y[:, np.newaxis] for x in (X, closer))
+    expected = [contour.level for contour in contours(plain, X, Y, None)]
+    assert [contour.level for contour in contours(dense, closer, Y, None)] == expected
+    assert levels(dense) != levels(plain)

@@ -72,3 +72,19 @@ def test_the_newest_wins(qtbot: QtBot, document: Document, theme: Theme) -> None
     assert threading.get_ident() not in mapping.threads
     page.close()
     page.widget.hide()
+
+
+def test_contours_of_another_measure_are_not_shown(page: GainMapPage) -> None:
+    """Once another measure is chosen the lines of the one before are gone, although the classes stay."""
+    before = page.view.answer
+    page.drawn.activate(False)
+    page.choosers.measure.setCurrentIndex(page.choosers.measure.findData("settling_time"))
+    page.choosers.changed.emit()
+    assert before is not None
+    assert before.contours != ()
+    assert page.view.answer is not None
+    assert page.view.answer.map is before.map
+    assert page.view.answer.contours == ()
+    page.drawn.activate(True)
+    assert page.view.answer.contours != ()
+    assert page.view.scene().unit == "s"

@@ -1,11 +1,13 @@
 """A question is that of the sheet without its two gains, and the answer has contours where there is a scale."""
 
 import numpy as np
+import pytest
 
 from tests.window import made_up, made_up_footing
 from tests.window.gain_map.made_up_map import Mapping
 from tuner.footing.classes import LOST
-from tuner.model.parameters import find
+from tuner.footing.gain_map import paint_map
+from tuner.model.parameters import find, rulers
 from tuner.session.document import Document
 from tuner.window.gain_map.axis import Axis, axis_of
 from tuner.window.gain_map.question import MapRequest, PlaceRequest, drawing_by, question_of, reading_by
@@ -47,3 +49,24 @@ def test_a_place_is_read_with_both_gains() -> None:
     reading = read(PlaceRequest(1, made_up.sheet(), (("kp", 40.0), ("windup_time", None))), lambda: False)
     assert reasons.asked == [{"kp": 40.0, "windup_time": 0.0}]
     assert (reading.number, reading.grade) == (1, LOST)
+
+
+@pytest.mark.parametrize("name", [parameter.name for parameter in rulers("parallel")])
+def test_a_question_without_a_gain_can_be_computed(name: str) -> None:
+    """What is held has a loop whichever gain is left out; the classes do not depend on what it was."""
+    document = Document(made_up.sheet())
+    other = "kp" if name != "kp" else "ki"
+    x, y = (axis_of(document, find(f"controller.{key}")) for key in (name, other))
+    asked = question_of(document.sheet, x, y, "")
+    found = paint_map(asked.sheet, x.track(3), y.track(3))
+    assert found.classes.tolist() == paint_map(document.sheet, x.track(3), y.track(3)).classes.tolist()
+
+
+def test_an_answer_tells_the_unit_of_its_own_contours() -> None:
+    """It is that of the measure that was asked for, not of the one that is wanted by now."""
+    x, y = axes()
+    asked = question_of(made_up.sheet(), x, y, "settling_time")
+    answer = drawing_by(Mapping())(MapRequest(1, asked, 9), lambda: False)
+    assert answer.unit == "s"
+    assert answer.for_measure("settling_time") is answer
+    assert answer.for_measure("overshoot").contours == ()

@@ -1,6 +1,6 @@
 """The gain map page: two gains as axes, the footing as areas, a measure as contours, both gains under one hand."""
 
-from collections.abc import Iterator
+from collections.abc import Iterator, Mapping
 
 from PySide6.QtCore import QObject, Signal
 from PySide6.QtGui import QHideEvent, QShowEvent
@@ -15,7 +15,7 @@ from tuner.window.gain_map.drawn import DrawnMap
 from tuner.window.gain_map.question import MapRequest, PlaceRequest, Values, question_of
 from tuner.window.gain_map.reader import MapReader
 from tuner.window.gain_map.view import MapView
-from tuner.window.plots.panel import Panel
+from tuner.window.pictures import Pictured
 from tuner.window.rulers.reading_line import CLASSES, Piece, ReadingLine
 from tuner.window.shown import Shown
 from tuner.window.theme import Theme
@@ -46,7 +46,6 @@ class GainMapPage(QObject):
         self._document = document
         self._awake = False
         self._grasped = document.sheet
-        self.panels: dict[str, Panel] = {}
         self.choosers, self.view = Choosers(theme), MapView(theme)
         self.line = ReadingLine(theme, legend=LEGEND)
         self.widget = _Seen()
@@ -60,6 +59,11 @@ class GainMapPage(QObject):
         self.reader = MapReader(document, self.view, self.line, reader)
         self._connect()
         self.refresh()
+
+    @property
+    def panels(self) -> Mapping[str, Pictured]:
+        """The page itself, of which a picture can be had."""
+        return {self.name: self}
 
     # What a page does -------------------------------------------------------------------------------------------
 
