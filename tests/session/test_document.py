@@ -78,6 +78,19 @@ def test_a_drag_is_one_step(document: Document) -> None:
     assert document.redo_label == "Set kp"
 
 
+def test_two_numbers_at_once_are_one_step(document: Document) -> None:
+    """Both change together, a drag of both merges, and undo takes both back under one label."""
+    before = document.sheet
+    for kp, ki in ((4.0, 0.06), (5.0, 0.07)):
+        document.change_values({"kp": kp, "ki": ki}, merge_key="map")
+    document.release()
+    controller = document.sheet.controller
+    assert (controller.value("kp"), controller.value("ki")) == (5.0, 0.07)
+    assert document.undo_label == "Set kp and ki"
+    document.undo()
+    assert document.sheet == before
+
+
 def test_dirty_is_against_the_saved_state(document: Document) -> None:
     """A change makes it dirty; the same change taken back by hand makes it clean again."""
     document.change_value("kp", 4.0)
