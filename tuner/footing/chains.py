@@ -67,6 +67,15 @@ def chains_of(sheet: Sheet, size: int) -> tuple[Chains, ...]:
     return _chains(_without_gains(sheet), size)
 
 
+def looked_at_closely(chains: Chains, poles: Sequence[ComplexArray]) -> Chains:
+    """Return chains on a grid that is dense around some poles in s as well, given for every plant of the family."""
+    some = [poles[member] for member in chains.members]
+    closed = np.full((len(some), max(map(len, some))), complex(np.inf))
+    for row, own in zip(closed, some, strict=True):
+        row[: len(own)] = own
+    return _stacked(chains.rows, chains.members, closed)
+
+
 def _without_gains(sheet: Sheet) -> Sheet:
     """Return a sheet with an ideal proportional gain of one in place of the law, and nothing that no pole sees."""
     old = sheet.controller
@@ -84,11 +93,12 @@ def _without_gains(sheet: Sheet) -> Sheet:
 @lru_cache(maxsize=8)
 def _chains(sheet: Sheet, size: int) -> tuple[Chains, ...]:
     loops = loops_of(sheet, family_of(sheet, size))
-    return tuple(_stacked(stack([loops[i].factors for i in places]), tuple(places)) for places in same_shape(loops))
+    groups = [(stack([loops[i].factors for i in places]), places) for places in same_shape(loops)]
+    return tuple(_stacked(rows, places, np.zeros((rows.rows, 0), dtype=complex)) for rows, places in groups)
 
 
-def _stacked(rows: Stack, members: Sequence[int]) -> Chains:
-    w = _frequencies(rows)
+def _stacked(rows: Stack, members: Sequence[int], closed: ComplexArray) -> Chains:
+    w = _frequencies(rows, closed)
     gain = rows.response(w)
     with np.errstate(all="ignore"):
         inverse = 1.0 / gain
@@ -100,9 +110,9 @@ def _contour(w: Array, step: float) -> Contour:
     return contour(to_x(s, step), step)
 
 
-def _frequencies(rows: Stack) -> Array:
-    """Return frequencies that show every turn of a chain, its ends looked at closely."""
-    w = grid(rows, np.zeros((rows.rows, 0), dtype=complex))
+def _frequencies(rows: Stack, closed: ComplexArray) -> Array:
+    """Return frequencies that show every turn of a chain, its ends and the surroundings of poles looked at closely."""
+    w = grid(rows, closed)
     # Twice as many as for the margins of one tuning: here every tuning is looked at through the same points.
     w = np.concatenate((w, np.sqrt(w[:, 1:] * w[:, :-1]), _turning(rows, w[:, -1]), _beyond(rows, w[:, -1])), axis=1)
     low, high = w.min(axis=1), w.max(axis=1)

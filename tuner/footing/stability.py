@@ -8,7 +8,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from tuner.footing.affine import INVERSE, MOTIONLESS, coordinate, value_of
-from tuner.footing.chains import Chains, chains_of
+from tuner.footing.chains import Chains, chains_of, looked_at_closely
 from tuner.footing.classes import Track
 from tuner.footing.locus import Crossings, crossings
 from tuner.model.controller import Controller
@@ -99,9 +99,24 @@ def stretches(
             base[list(chains.members)],
             float(coordinate(track.name, np.array([present]))[0]),
         )
-        for chains in chains_of(sheet, size)
+        for chains in _chains(sheet, members, track.name, size)
     ]
     return _stretches(track.name, groups, span)
+
+
+def _chains(sheet: Sheet, members: Sequence[Member], name: str, size: int) -> tuple[Chains, ...]:
+    """Return the chains on grids that show every turn of the image of the border.
+
+    Along the filter time that image has poles where the loop without a derivative has its own: near the border they
+    turn it fast.
+    """
+    found = chains_of(sheet, size)
+    gains = sheet.controller.parallel()
+    if name != "filter_time" or not gains.kd:
+        return found
+    plain = replace(sheet.controller, form="parallel", gain_1=gains.kp, gain_2=gains.ki, gain_3=0.0)
+    poles = [one.values for one in family_poles(loops_of(replace(sheet, controller=plain), members))]
+    return tuple(looked_at_closely(chains, poles) for chains in found)
 
 
 def _is_flat(controller: Controller, chains: Chains) -> bool:
