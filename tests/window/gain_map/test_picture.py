@@ -1,5 +1,7 @@
 """What is painted over the areas: scales with units, the limit's line, the marks and the pointer."""
 
+from itertools import groupby
+
 import numpy as np
 from PySide6.QtCore import QRect
 from PySide6.QtGui import QColor, QImage, QPainter
@@ -7,7 +9,7 @@ from PySide6.QtGui import QColor, QImage, QPainter
 from tuner.session.ruler_range import RulerRange
 from tuner.window.gain_map.axis import Axis
 from tuner.window.gain_map.contours import Contour
-from tuner.window.gain_map.picture import Scene, Spot, frame_of, paint_scene
+from tuner.window.gain_map.picture import Scene, Spot, _told_apart, frame_of, paint_scene
 from tuner.window.theme import Theme
 
 SIZE = (500, 400)
@@ -76,3 +78,39 @@ def test_without_a_map_there_is_a_sentence(theme: Theme) -> None:
     frame = frame_of(*SIZE)
     row = range(frame.center().y() - 8, frame.center().y() + 8)
     assert any(empty.pixelColor(x, y) != said.pixelColor(x, y) for x in range(*SIZE[:1]) for y in row)
+
+
+def test_a_low_map_has_half_the_lines() -> None:
+    """Every other one, and always that of the limit."""
+    lines = [np.array([[0.0, at], [1.0, at]]) for at in (0.2, 0.35, 0.5, 0.65)]
+    contours = [Contour(float(at), at == 3, (line,)) for at, line in enumerate(lines)]
+    low = Scene(X, Y, QRect(0, 0, 400, 200), contours=contours)
+    high = Scene(X, Y, QRect(0, 0, 400, 500), contours=contours)
+    assert [contour.level for contour in _told_apart(low)] == [1.0, 3.0]
+    assert [contour.level for contour in _told_apart(high)] == [0.0, 1.0, 2.0, 3.0]
+
+
+def test_names_of_marks_at_one_place_stand_apart(theme: Theme) -> None:
+    """Two tunings at nearly one place: the second name does not cover the first."""
+    one, other = Spot(0.5, 0.5, "as opened"), Spot(0.505, 0.5, "A")
+    first = changed(theme, spots=(one,))
+    both = changed(theme, spots=(one, other))
+    assert both.width() > first.width()
+    assert painted(theme, spots=(one, other)).copy(first.adjusted(14, 0, 0, 0)) == painted(theme, spots=(one,)).copy(
+        first.adjusted(14, 0, 0, 0)
+    )
+
+
+def test_the_end_of_the_scale_has_its_number_on_a_low_map(theme: Theme) -> None:
+    """The number stands beside the end, and off below it: two lines of words that do not touch."""
+    frame = frame_of(500, 240)
+    image = QImage(500, 240, QImage.Format.Format_RGB32)
+    image.fill(theme.colour("page"))
+    painter = QPainter(image)
+    paint_scene(painter, Scene(Y, X, frame), theme)
+    painter.end()
+    page = theme.colour("page").rgb()
+    column = range(frame.left() - 30, frame.left() - 9)
+    rows = [any(image.pixel(x, y) != page for x in column) for y in range(frame.bottom() - 24, frame.bottom() + 14)]
+    words = [len(list(run)) for is_word, run in groupby(rows) if is_word]
+    assert len(words) == 2

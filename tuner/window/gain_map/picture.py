@@ -24,6 +24,9 @@ _DARK = "#14181b"
 """Lines over the classes, whose colours are of middle brightness in both shades."""
 
 _LEAST_LABELLED = 70.0
+_LOW = 300
+"""Under this height, pixels, there is room for half of the contours."""
+
 _LEAST_GAP = 18
 
 
@@ -102,8 +105,9 @@ def paint_scene(painter: QPainter, scene: Scene, theme: Theme) -> None:
     _paint_words(painter, scene, theme)
     _paint_pointer(painter, scene, theme)
     painter.restore()
+    named: list[QRectF] = []
     for spot in scene.spots:
-        _paint_spot(painter, scene, spot, theme)
+        _paint_spot(painter, scene, spot, named, theme)
     if scene.present is not None:
         _paint_present(painter, scene, scene.present, theme)
 
@@ -170,9 +174,11 @@ def _paint_scale_upwards(painter: QPainter, scene: Scene, theme: Theme) -> None:
     metrics = painter.fontMetrics()
     end = frame.left() - 8.0
     if scene.y.start:
+        first = scene.at(0.0, scene.y.start).y() + metrics.ascent() / 2.0 - 1.0
+        off = max(free, first + metrics.ascent() + 1.0)  # the end of the scale has its number first
         painter.setPen(theme.colour("quiet"))
-        painter.drawText(QPointF(end - metrics.horizontalAdvance("off"), free), "off")
-        free -= _LEAST_GAP - 4
+        painter.drawText(QPointF(end - metrics.horizontalAdvance("off"), off), "off")
+        free = first
     for tick in scene.y.ticks():
         at = scene.at(0.0, tick.position / POSITIONS).y()
         colour, length = theme.colour("quiet" if tick.main else "line"), 5 if tick.main else 3
@@ -189,18 +195,26 @@ def _paint_scale_upwards(painter: QPainter, scene: Scene, theme: Theme) -> None:
 
 def _paint_contours(painter: QPainter, scene: Scene, theme: Theme) -> None:
     """Paint the lines, that of the limit over the others, and then their numbers, its own first."""
-    for contour in scene.contours:
+    contours = _told_apart(scene)
+    for contour in contours:
         for line in _polygons(scene, contour):
             for width, colour in _strokes(contour, theme):
                 painter.setPen(QPen(colour, width))
                 painter.drawPolyline(line)
     taken = [_around(scene.at(spot.x, spot.y)) for spot in (*scene.spots, scene.present) if spot is not None]
-    for contour in sorted(scene.contours, key=lambda contour: not contour.is_limit):
+    for contour in sorted(contours, key=lambda contour: not contour.is_limit):
         said = quantity(contour.level, scene.unit, 3)
         text = f"limit {said}" if contour.is_limit else said
         _paint_label(
             painter, _polygons(scene, contour), text, "limit_word" if contour.is_limit else "ink", taken, theme
         )
+
+
+def _told_apart(scene: Scene) -> list[Contour]:
+    """Return the contours, on a low map every other one: its lines would lie too close together."""
+    plain = [contour for contour in scene.contours if not contour.is_limit]
+    limits = [contour for contour in scene.contours if contour.is_limit]
+    return (plain[1::2] if scene.frame.height() < _LOW and len(plain) > 2 else plain) + limits
 
 
 def _strokes(contour: Contour, theme: Theme) -> Sequence[tuple[float, QColor]]:
@@ -288,15 +302,23 @@ def _paint_present(painter: QPainter, scene: Scene, spot: Spot, theme: Theme) ->
             painter.drawLine(at + inner, at + outer)
 
 
-def _paint_spot(painter: QPainter, scene: Scene, spot: Spot, theme: Theme) -> None:
-    """Paint a tuning worth finding again: a small square with its name."""
+def _paint_spot(painter: QPainter, scene: Scene, spot: Spot, taken: list[QRectF], theme: Theme) -> None:
+    """Paint a tuning worth finding again: a small square with its name, beside it where no other name stands."""
     at = scene.at(spot.x, spot.y)
     square = QRectF(at.x() - 4.0, at.y() - 4.0, 8.0, 8.0)
     painter.setPen(QPen(theme.colour("ink"), 1.5))
     painter.setBrush(theme.colour("page"))
     painter.drawRect(square)
-    plate = _plate(painter, spot.name, QPointF())
-    plate.moveCenter(QPointF(at.x() + plate.width() / 2.0 + 10.0, at.y()))
-    if plate.right() > scene.frame.right():
-        plate.moveCenter(QPointF(at.x() - plate.width() / 2.0 - 10.0, at.y()))
+    plates = _beside(_plate(painter, spot.name, at))
+    room = QRectF(scene.frame)
+    free = (one for one in plates if room.contains(one) and not any(one.intersects(other) for other in taken))
+    plate = next(free, plates[0])
+    taken.append(plate)
     _paint_plate(painter, plate, spot.name, theme.colour("ink"), theme)
+
+
+def _beside(plate: QRectF) -> list[QRectF]:
+    """Return a plate moved off the mark in its middle: to the right, left, up and down, the nearest first."""
+    across, upwards = plate.width() / 2.0 + 10.0, plate.height() / 2.0 + 8.0
+    moves = ((across, 0.0), (-across, 0.0), (0.0, -upwards), (0.0, upwards), (across, -upwards), (across, upwards))
+    return [plate.translated(x, y) for x, y in moves]
