@@ -1,0 +1,89 @@
+"""Tunings side by side go where each goes alone, and one that runs away leaves the others alone."""
+
+from dataclasses import replace
+
+import numpy as np
+import pytest
+
+from tests.footing.random_loops import sheet
+from tuner.footing.grading import Grading
+from tuner.footing.ground import ground_of
+from tuner.kernels import lanes, readings
+from tuner.model.sheet import Sheet
+from tuner.simulate.batch import nominal, simulate
+from tuner.simulate.grid import sampled_grid
+
+FACTORS = np.geomspace(0.3, 1.5, lanes.LANES)
+
+
+def run(
+    found: Sheet, which: int, factors: np.ndarray = FACTORS
+) -> tuple[np.ndarray, np.ndarray, np.ndarray, list[Sheet]]:
+    """Return outputs, efforts and totals of a block of tunings of a sheet, and the tunings."""
+    name = "kp" if found.controller.form == "parallel" else "kc"
+    value = found.controller.value(name) or 1.0
+    tuned = [replace(found, controller=found.controller.with_value(name, value * float(f))) for f in factors]
+    ground = ground_of(found, 1)
+    grading = Grading(found, ground, [one.controller for one in tuned])
+    speed, size = ground.speeds[0], ground.size
+    constants = np.ascontiguousarray(grading._constants(np.arange(lanes.LANES), ground.steps[0]).T).ravel()
+    points, samples = speed.timing[0, 2:4]
+    y, u = np.zeros((points, lanes.LANES)), np.zeros((samples, lanes.LANES))
+    state = np.zeros(lanes.rows(size) * lanes.LANES)
+    filters = (0,) if found.controller.measurement_filter or found.controller.notch else ()
+    course = grading._course([0], grading._limits(readings.MEASURES))
+    lanes.run(
+        size, filters, constants, speed.rows[0], speed.push[0], speed.timing[0], course.wanted[which],
+        speed.feedforward[which], y.reshape(-1), u.reshape(-1), state,
+    )  # fmt: skip
+    return y, u, state[lanes.totals_from(size) :].reshape(-1, lanes.LANES), tuned
+
+
+@pytest.mark.parametrize("which", [0, 1])
+@pytest.mark.parametrize("seed", range(12))
+def test_every_lane_agrees_with_the_exact_kernel(seed: int, which: int) -> None:
+    """To 1e-9 of the step: limits, rates, wind-up, dead time, computing delay, filters, both runs."""
+    found = sheet(seed)
+    y, u, totals, tuned = run(found, which)
+    grid = sampled_grid(found.trial.duration, found.controller.sample_time, nominal(found).plant)
+    for lane in (0, 11, 22, 31):
+        if totals[lanes.AWAY, lane]:
+            continue
+        exact = simulate(tuned[lane], ground_of(found, 1).members, grid)
+        largest = max(1.0, float(np.abs(exact.y[0, which]).max()))
+        assert np.abs(y[:, lane] - exact.y[0, which]).max() <= 1e-9 * largest
+        assert np.abs(u[:, lane] - exact.u[0, which]).max() <= 1e-9 * max(1.0, float(np.abs(exact.u[0, which]).max()))
+        assert totals[lanes.LIMITED, lane] == exact.limited[0, which].sum()
+
+
+def test_a_resolution_acts_in_every_lane() -> None:
+    """The measurement is rounded as in the exact kernel."""
+    found = sheet(1)
+    found = replace(found, sensor=replace(found.sensor, resolution=0.05))
+    y, _, _, tuned = run(found, 0)
+    grid = sampled_grid(found.trial.duration, found.controller.sample_time, nominal(found).plant)
+    exact = simulate(tuned[3], ground_of(found, 1).members, grid)
+    assert np.abs(y[:, 3] - exact.y[0, 0]).max() <= 1e-9
+
+
+def test_one_that_runs_away_is_marked_and_the_others_are_right() -> None:
+    """A lane far beyond its edge does not spoil the lane beside it."""
+    found = sheet(6)
+    found = replace(found, loop=replace(found.loop, manipulated=type(found.loop.manipulated)()))
+    factors = FACTORS.copy()
+    factors[5] = 1e6
+    y, _, totals, tuned = run(found, 0, factors)
+    assert totals[lanes.AWAY, 5] == 1.0
+    assert totals[lanes.AWAY, 4] == 0.0
+    grid = sampled_grid(found.trial.duration, found.controller.sample_time, nominal(found).plant)
+    exact = simulate(tuned[4], ground_of(found, 1).members, grid)
+    assert np.abs(y[:, 4] - exact.y[0, 0]).max() <= 1e-9
+    assert np.isfinite(y).all()
+
+
+def test_sizes() -> None:
+    """The next larger one is taken; none is large enough for every plant."""
+    assert len(lanes.size_for(5)) == 5
+    assert len(lanes.size_for(7)) == 8
+    with pytest.raises(ValueError, match="order 1000"):
+        lanes.size_for(1000)
