@@ -28,8 +28,14 @@ GAIN, PHASE, DELAY, SENSITIVITY, COMPLEMENTARY, BANDWIDTH = range(6)
 LEVEL = 0.707
 """The sensitivity that ends the bandwidth; as `crossings.LEVEL`."""
 
-_SLACK = 0.002
-"""What a peak between points is allowed beyond what a parabola says, as a share."""
+_AROUND = 3
+"""Pieces to either side of the largest point in which the peak may lie."""
+
+_BULGE = 0.25
+"""Bulge of a piece over its length and how far its neighbours turn: twice that of an arc."""
+
+_SLACK = 0.001
+"""What is allowed beyond, as a share."""
 
 _SHARE = 0.35
 """What a crossing is allowed to be off the straight line, as a share of the step."""
@@ -90,6 +96,7 @@ def bound(  # noqa: C901, PLR0913, PLR0917 - one walk along the grid, which find
     kp, ki, kd = gains[0], gains[1], gains[2]
     earlier, before = 0j, 0j
     size_earlier, size_before, distance_before = 0.0, 0.0, 0.0
+    nearest, largest, place, other = math.inf, math.inf, 0, 0
     for i in range(w.shape[0]):
         law_real = kp + ki * integral[i].real + kd * derivative[i].real
         law_imag = ki * integral[i].imag + kd * derivative[i].imag
@@ -97,9 +104,11 @@ def bound(  # noqa: C901, PLR0913, PLR0917 - one walk along the grid, which find
         imag = law_real * chain[i].imag + law_imag * chain[i].real
         size = real * real + imag * imag
         distance = size + 2.0 * real + 1.0
-        work[0, i] = distance
-        if asked[COMPLEMENTARY]:
-            work[1, i] = distance / max(size, 1e-300)
+        work[0, i], work[1, i] = real, imag
+        if distance < nearest:
+            nearest, place = distance, i
+        if asked[COMPLEMENTARY] and distance < largest * size:
+            largest, other = distance / size, i
         if crossed:
             after = complex(real, imag)
             # Most points are far from any crossing, and a call for each would take longer than all else.
@@ -119,9 +128,9 @@ def bound(  # noqa: C901, PLR0913, PLR0917 - one walk along the grid, which find
         low[GAIN] = min(low[GAIN], 1.0 / abs(before) * (1.0 - 1e-3))
         high[GAIN] = min(high[GAIN], 1.0 / abs(before) * (1.0 + 1e-3))
     if asked[SENSITIVITY]:
-        low[SENSITIVITY], high[SENSITIVITY] = _peak(w, work[0])
+        low[SENSITIVITY], high[SENSITIVITY] = _peak(place, work[0], work[1], False)
     if asked[COMPLEMENTARY]:
-        low[COMPLEMENTARY], high[COMPLEMENTARY] = _peak(w, work[1])
+        low[COMPLEMENTARY], high[COMPLEMENTARY] = _peak(other, work[0], work[1], True)
 
 
 @compiled
@@ -201,26 +210,51 @@ def _phase_margin(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arr
 
 
 @compiled
-def _peak(w: Array, square: Array) -> tuple[float, float]:
-    """Return bounds of the largest of 1/sqrt(square).
+def _peak(at: int, real: Array, imag: Array, complementary: bool) -> tuple[float, float]:
+    """Return bounds of the peak of |S| or |T| next to the point of the grid at which it is largest.
 
-    Near a peak, however sharp, the square of the distance from the critical point is a parabola in frequency.
+    Between two points the curve is a straight line and a bulge, which is known from how the line turns on either side:
+    the distance from the critical point is at least that of the line, less the bulge.
     """
-    at = 0
-    for i in range(square.shape[0]):
-        if square[i] < square[at]:
-            at = i
-    least = square[at]
-    if 0 < at < square.shape[0] - 1:
-        left, right = w[at] - w[at - 1], w[at + 1] - w[at]
-        falls, rises = (square[at - 1] - least) / max(left, 1e-300), (square[at + 1] - least) / max(right, 1e-300)
-        bend = (falls + rises) / max(left + right, 1e-300)
-        slope = (rises * left - falls * right) / max(left + right, 1e-300)
-        if bend > 0.0:
-            least -= (1.0 + _SHARE) * 0.25 * slope * slope / bend
-        least -= _SLACK * (max(square[at - 1], square[at + 1]) - square[at])
-    low = (1.0 - _FINAL) / math.sqrt(max(square[at], 1e-300))
-    return low, math.inf if least <= 0.0 else (1.0 + _SLACK) / math.sqrt(least)
+    low = _size(real[at], imag[at], complementary)
+    high = low
+    for i in range(max(at - _AROUND, 0), min(at + _AROUND, real.shape[0] - 1)):
+        length = math.hypot(real[i + 1] - real[i], imag[i + 1] - imag[i])
+        turn = max(_turn(i, real, imag), _turn(i + 1, real, imag))
+        bulge = _BULGE * length * turn + _SLACK * length
+        nearest = _from_line(real[i], imag[i], real[i + 1], imag[i + 1]) - bulge
+        if nearest <= 0.0:
+            return low * (1.0 - _FINAL), math.inf
+        largest = max(math.hypot(real[i], imag[i]), math.hypot(real[i + 1], imag[i + 1])) + bulge
+        high = max(high, (largest if complementary else 1.0) / nearest)
+    return low * (1.0 - _FINAL), high * (1.0 + _SLACK)
+
+
+@compiled
+def _size(real: float, imag: float, complementary: bool) -> float:
+    """Return |S| or |T| for a loop gain."""
+    distance = max(math.hypot(1.0 + real, imag), 1e-150)
+    return (math.hypot(real, imag) if complementary else 1.0) / distance
+
+
+@compiled
+def _turn(i: int, real: Array, imag: Array) -> float:
+    """Return by how much the line through the points turns at one of them, rad."""
+    if i < 1 or i + 1 >= real.shape[0]:
+        return 0.0
+    before = complex(real[i] - real[i - 1], imag[i] - imag[i - 1])
+    after = complex(real[i + 1] - real[i], imag[i + 1] - imag[i])
+    turned = after * complex(before.real, -before.imag)
+    return abs(math.atan2(turned.imag, turned.real)) if turned != 0j else 0.0
+
+
+@compiled
+def _from_line(x0: float, y0: float, x1: float, y1: float) -> float:
+    """Return the distance of the critical point from a piece of a straight line."""
+    across, up = x1 - x0, y1 - y0
+    square = across * across + up * up
+    share = min(max(((-1.0 - x0) * across - y0 * up) / square, 0.0), 1.0) if square > 0.0 else 0.0
+    return math.hypot(x0 + share * across + 1.0, y0 + share * up)
 
 
 @compiled
