@@ -16,7 +16,18 @@ def test_sizes_and_phases() -> None:
     """20 log10 of the size; phases without jumps."""
     assert decibels(np.array([1.0 + 0j, 10.0 + 0j, 0.1j])) == pytest.approx([0.0, 20.0, -20.0])
     turning = np.exp(-1j * np.linspace(0.0, 10.0, 50))
-    assert phases(turning)[-1] == pytest.approx(-np.degrees(10.0))
+    found = phases(turning)
+    assert found[-1] - found[0] == pytest.approx(-np.degrees(10.0))
+
+
+def test_the_phase_is_on_the_turn_of_half_a_turn_at_crossover() -> None:
+    """A plant that begins at -270 degrees, and so at 90, is shown at -270."""
+    s = 1j * np.geomspace(0.01, 100.0, 400)
+    gain = -5.0 * (0.5 * s + 1.0) / (s * (1.0 - s))
+    found = phases(gain)
+    at = np.abs(np.log(np.abs(gain))).argmin()
+    assert -360.0 <= found[at] <= 0.0
+    assert np.exp(1j * np.radians(found)) == pytest.approx(gain / np.abs(gain))
 
 
 def test_the_gain_margin_is_marked_where_it_is(theme: Theme, qtbot: QtBot) -> None:

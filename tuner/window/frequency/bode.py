@@ -29,8 +29,15 @@ def decibels(values: NDArray[np.complex128]) -> Array:
 
 
 def phases(gain: NDArray[np.complex128]) -> Array:
-    """Return phases in degrees, without jumps along frequency, shape of `gain`."""
-    return np.asarray(np.degrees(np.unwrap(np.angle(gain), axis=-1)))
+    """Return phases in degrees, without jumps along frequency, shape of `gain`.
+
+    Each curve is on the turn on which its phase is nearest to half a turn where its size is nearest to one, whatever it
+    comes from at low frequency.
+    """
+    found = np.degrees(np.unwrap(np.angle(gain), axis=-1))
+    crossover = np.abs(np.log(np.maximum(np.abs(gain), _SMALLEST))).argmin(axis=-1)
+    there = np.take_along_axis(found, np.expand_dims(crossover, -1), axis=-1)
+    return np.asarray(found - 360.0 * np.round((there + 180.0) / 360.0))
 
 
 def nyquist_marks(curves: "FrequencyCurves", low: float) -> Marks:
@@ -101,7 +108,7 @@ class PhasePanel(FrequencyPanel):
     @staticmethod
     def _margin(margins: "Margins", curves: "FrequencyCurves", shown: Shown) -> tuple[Stroke, Words]:
         at = margins.phase_margin_at or 1.0
-        phase = float(np.interp(log10(at), np.log10(curves.w), phases(curves.gain[0])))
+        phase = float(np.interp(log10(at), np.log10(curves.w), phases(curves.gain[:1])[0]))
         line = -180.0 + 360.0 * round((phase + 180.0) / 360.0)
         delay = quantity(margins.delay_margin, shown.sheet.loop.time_unit, 3)
         said = f"phase margin {margins.phase_margin:.3g}°, delay margin {delay}"

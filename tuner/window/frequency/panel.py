@@ -210,7 +210,8 @@ def decades(low: float, high: float, count: int) -> tuple[Tick, ...]:
 def loop_words(curves: "FrequencyCurves", index: int, sheet: Sheet) -> str:
     """Return the loop at one frequency in words."""
     value = complex(curves.gain[0, index])
-    phase = float(np.degrees(np.unwrap(np.angle(curves.gain[0])))[index])
+    phase = float(np.degrees(np.angle(value)))
+    phase -= 360.0 * (phase > 0.0)
     s = abs(1.0 / (1.0 + value)) if value != -1.0 else np.inf
     w = quantity(float(curves.w[index]), f"rad/{sheet.loop.time_unit}", 3)
     said = (
