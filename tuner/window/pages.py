@@ -3,10 +3,11 @@
 from collections.abc import Mapping, Sequence
 from typing import Protocol
 
-from PySide6.QtCore import QObject, Signal
-from PySide6.QtWidgets import QHBoxLayout, QLabel, QPushButton, QStackedWidget, QVBoxLayout, QWidget
+from PySide6.QtCore import QObject, Qt, Signal
+from PySide6.QtWidgets import QHBoxLayout, QPushButton, QStackedWidget, QVBoxLayout, QWidget
 
 from tuner.window.editors.segments import Segments
+from tuner.window.elided import ElidedLabel
 from tuner.window.pictures import Pictured
 from tuner.window.shown import Shown
 from tuner.window.theme import Theme
@@ -66,7 +67,10 @@ class Pages(QObject):
         self.stack = QStackedWidget()
         for page in pages:
             self.stack.addWidget(page.widget)
-        self.looked_at, self.back = QLabel(), QPushButton("Back to the nominal plant")
+        self.looked_at, self.back = (
+            ElidedLabel("", Qt.AlignmentFlag.AlignRight),
+            QPushButton("Back to the nominal plant"),
+        )
         self.back.clicked.connect(self.nominal_wanted)
         self.widget = self._arranged()
         self.say_looked_at("")
@@ -131,8 +135,8 @@ class Pages(QObject):
         whole, row = QWidget(), QHBoxLayout()
         row.setContentsMargins(8, 0, 8, 0)
         row.addWidget(self.words)
-        row.addStretch(1)
-        row.addWidget(self.looked_at)
+        row.addSpacing(12)
+        row.addWidget(self.looked_at, 1)
         row.addSpacing(12)
         row.addWidget(self.back)
         column = QVBoxLayout(whole)
