@@ -125,7 +125,7 @@ class Grading:
         """Return the worst value of a measure over the family for every tuning that is stable, shape (t,).
 
         Not a number where the measure does not exist for some plant, where it is not told, and where a tuning is not
-        stable. Between the bounds of a value its middle is taken.
+        stable. Between the bounds of a value its middle is taken, of a peak the largest value at any point.
         """
         out = np.full(len(self.tunings), nan)
         left = np.flatnonzero(stable)
@@ -138,7 +138,7 @@ class Grading:
         else:
             low = high = self._exact_values(left, measure)
         with np.errstate(invalid="ignore"):
-            middle = 0.5 * (low + high)
+            middle = low if measure in responses.PEAKS else 0.5 * (low + high)
             worst = middle.min(axis=1) if BY_NAME[measure].at_least else middle.max(axis=1)
         out[left] = np.where(np.isfinite(worst), worst, nan)
         return out

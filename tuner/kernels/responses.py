@@ -23,6 +23,9 @@ Integers = NDArray[np.int64]
 MEASURES = ("gain_margin", "phase_margin", "delay_margin", "max_sensitivity", "max_complementary", "bandwidth")
 """In the order in which bounds stand."""
 
+PEAKS = ("max_sensitivity", "max_complementary")
+"""Margins whose lower bound, the largest value at any point, is nearer to them than the upper one."""
+
 GAIN, PHASE, DELAY, SENSITIVITY, COMPLEMENTARY, BANDWIDTH = range(6)
 
 LEVEL = 0.707
