@@ -21,6 +21,7 @@ from tuner.law.constants import NO_NOTCH, Constants, bake, notch
 from tuner.model.loop import Signal
 from tuner.model.measures import BY_NAME
 from tuner.model.parameters import GAIN_KEYS, PARAMETERS, Parameter
+from tuner.model.plant import Spread
 from tuner.model.sheet import Sheet
 from tuner.model.units import unit_in
 
@@ -96,7 +97,8 @@ def _value(sheet: Sheet, parameter: Parameter) -> object:
     holder: object = sheet
     for name in filter(None, parameter.section.split(".")):
         holder = getattr(holder, name, None)
-    return getattr(holder, parameter.name, None) if holder is not sheet else None
+    value = getattr(holder, parameter.name, None) if holder is not sheet else None
+    return [value.low, value.high] if isinstance(value, Spread) else value
 
 
 def _is_own(sheet: Sheet, parameter: Parameter) -> bool:
