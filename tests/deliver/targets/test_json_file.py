@@ -16,7 +16,8 @@ from tuner.deliver.targets import json_file
 from tuner.errors import DeliveryError
 from tuner.judge.assessment import LimitResult
 from tuner.law.pid import PARAMETERS
-from tuner.model.sheet import Sheet
+from tuner.model.plant import Spread
+from tuner.model.sheet import Actuator, Sheet
 
 
 def content(sheet: Sheet = FULL) -> dict[str, Any]:
@@ -33,6 +34,14 @@ def test_parameters_carry_unit_and_sentence() -> None:
     assert said["controller.measurement_filter.time"]["value"] == 0.8
     assert "controller.kc" not in said
     assert "controller.notch.frequency" not in content(BARE)["parameters"]
+
+
+def test_the_drift_of_a_lag_is_told_as_a_range() -> None:
+    """With its unit, and only where there is one."""
+    drifting = replace(FULL, actuator=Actuator(0.8, Spread(0.6, 1.0, 25.0)))
+    assert content(drifting)["parameters"]["actuator.spread"]["value"] == [0.6, 1.0]
+    assert content(drifting)["parameters"]["actuator.spread"]["unit"] == "s"
+    assert "sensor.spread" not in content(drifting)["parameters"]
 
 
 def test_gains_stand_as_given_and_in_the_parallel_form() -> None:
