@@ -4,7 +4,7 @@ from dataclasses import replace
 
 import numpy as np
 
-from tuner.model.controller import Controller
+from tuner.model.controller import Controller, DisturbanceFeedforward, Feedforward, Notch
 from tuner.model.loop import Loop, Manipulated, Signal
 from tuner.model.plant import ExpressionPlant, PlantParameter, Spread
 from tuner.model.sheet import Actuator, Sensor, Sheet, Trial
@@ -62,6 +62,32 @@ def sheet(seed: int, *, continuous: bool = False) -> Sheet:
     if random.random() < 0.4:
         made = replace(made, actuator=Actuator(0.1), sensor=Sensor(0.15))
     return made
+
+
+def rich_sheet(seed: int) -> Sheet:
+    """Return a random sampled loop with some of what few loops have, on top of `sheet`: blocks, weights, a direct term.
+
+    A plant with a direct term answers its effort at once; one that falls with its effort takes a direct acting law.
+    """
+    found, random = sheet(seed), np.random.default_rng(10_000 + seed)
+    plant, law = found.plant, found.controller
+    assert isinstance(plant, ExpressionPlant)
+    if random.random() < 0.2:
+        plant = replace(plant, expression="gain (0.3 s + 1) exp(-delay s)/(lag s + 1)")
+    if random.random() < 0.3:
+        plant, law = replace(plant, expression=f"-({plant.expression})"), replace(law, action="direct")
+    law = replace(law, c=float(random.choice((0.0, 0.4, 1.0))), delay_samples=int(random.integers(0, 4)))
+    if random.random() < 0.4:
+        law = replace(law, notch=Notch(random.uniform(2.0, 12.0), random.uniform(0.05, 0.6), random.uniform(0.3, 1.5)))
+    kind = int(random.integers(0, 5))
+    if kind == 0:
+        law = replace(law, feedforward=Feedforward("static", gain=random.uniform(-0.5, 1.0)))
+    if kind == 1:
+        law = replace(law, feedforward=Feedforward("inverse", filter_time=random.uniform(0.3, 1.0)))
+    if kind == 2:  # noqa: PLR2004 - one of the kinds
+        law = replace(law, disturbance_feedforward=DisturbanceFeedforward("0.4 exp(-0.6 s)/((s + 1)(0.5 s + 1)^2)"))
+    sensor = replace(found.sensor, resolution=0.02) if random.random() < 0.15 else found.sensor
+    return replace(found, plant=plant, controller=law, sensor=sensor)
 
 
 def controller(random: np.random.Generator, *, continuous: bool = False) -> Controller:
