@@ -12,7 +12,7 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 import tuner
-from tuner.assess import assess
+from tuner.assess import assess, glance
 from tuner.errors import LoopError
 from tuner.files.sheet import parse
 from tuner.judge.as_json import as_json
@@ -160,6 +160,28 @@ def test_an_unstable_sheet() -> None:
     a = exp(-0.1)
     assert found.instability.edge == pytest.approx((1.0 + a) / (worst * (1.0 - a)), rel=1e-4)
     assert found.instability.frequency == pytest.approx(np.pi / 0.5)
+
+
+@pytest.mark.parametrize("gains", ["kp = 2\nki = 0.5", "kp = 12"])
+def test_a_glance_sees_the_same_plants(gains: str) -> None:
+    """The nominal plant and the one that is looked at have the very numbers of the whole assessment, also unstable."""
+    sheet = bath(gains=gains, limits="overshoot = 10")
+    whole = assess(sheet)
+    looked_at = whole.members[2]
+
+    found = glance(sheet, looked_at.name)
+
+    assert [member.name for member in found.members] == ["nominal", looked_at.name]
+    for one, other in zip(found.members, (whole.nominal, looked_at), strict=True):
+        assert one.measures == pytest.approx(other.measures, nan_ok=True)
+        assert np.array_equal(one.traces.reference.y, other.traces.reference.y)
+    assert found.instability is None
+
+
+def test_a_glance_at_a_plant_that_is_not_there() -> None:
+    """It sees the nominal one."""
+    assert [member.name for member in glance(bath(), "gain 99").members] == ["nominal"]
+    assert [member.name for member in glance(bath()).members] == ["nominal"]
 
 
 def test_an_open_loop() -> None:

@@ -2,6 +2,7 @@
 
 import sys
 from collections.abc import Callable, Iterator, Mapping, Sequence
+from contextlib import contextmanager
 from types import ModuleType
 
 from tuner.errors import LoopError
@@ -12,7 +13,7 @@ from tuner.measure.family import Measured, measure_trials
 from tuner.measure.final import family_final_values
 from tuner.measure.loop import add_damping, add_margins
 from tuner.model.controller import Controller
-from tuner.model.family import Member, family_of
+from tuner.model.family import NOMINAL, Member, family_of
 from tuner.model.sheet import Sheet
 from tuner.simulate.loop import Loop, loops_around, loops_of
 from tuner.simulate.margins import Margins, margins
@@ -45,14 +46,41 @@ def assess(sheet: Sheet, family_size: int | None = None) -> Assessment:
         When the loop is well written but cannot be computed, with the reason; also when the arithmetic fails on
         numbers that nothing refused before.
     """
+    with _arithmetic_told():
+        return _assessed(sheet, family_of(sheet, family_size))
+
+
+def glance(sheet: Sheet, plant: str = "") -> Assessment:
+    """Judge by the nominal plant alone, and by one more plant of the family where it is named, as fast as can be.
+
+    What takes longer than all the rest is left out: how an unstable loop runs away.
+
+    Parameters
+    ----------
+    plant : str
+        Name of a plant of the family; one that is not there is left out.
+
+    Raises
+    ------
+    LoopError
+        As `assess` does.
+    """
+    with _arithmetic_told():
+        members = family_of(sheet) if plant else family_of(sheet, 1)
+        seen = [member for member in members if member.name in (NOMINAL, plant)]
+        return judge(sheet, results_of(sheet, seen))
+
+
+@contextmanager
+def _arithmetic_told() -> Iterator[None]:
+    """Tell of arithmetic that fails as of a loop that cannot be computed."""
     try:
-        return _assessed(sheet, family_size)
+        yield
     except (ArithmeticError, ValueError, MemoryError) as error:
         raise LoopError(f"the loop cannot be computed with these numbers: {error}") from error
 
 
-def _assessed(sheet: Sheet, family_size: int | None) -> Assessment:
-    members = family_of(sheet, family_size)
+def _assessed(sheet: Sheet, members: Sequence[Member]) -> Assessment:
     loops = loops_of(sheet, members)
     poles = family_poles(loops)
     results = _results(sheet, members, loops, poles)

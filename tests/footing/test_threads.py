@@ -1,5 +1,9 @@
 """All threads share a range without gap or overlap."""
 
+import os
+import sys
+import threading
+
 import pytest
 
 from tuner.footing.threads import spread_out
@@ -21,3 +25,13 @@ def test_what_goes_wrong_in_a_thread_comes_out() -> None:
 
     with pytest.raises(ArithmeticError, match="gone"):
         spread_out(fail, 3)
+
+
+@pytest.mark.skipif(sys.platform != "linux", reason="elsewhere a thread cannot stand behind the others alone")
+def test_threads_of_kernels_give_way() -> None:
+    """They stand behind the thread that gave them work, which stays where it was."""
+    before = os.getpriority(os.PRIO_PROCESS, threading.get_native_id())
+    found: list[int] = []
+    spread_out(lambda _begin, _end: found.append(os.getpriority(os.PRIO_PROCESS, threading.get_native_id())), 2)
+    assert min(found) >= max(before, 10)
+    assert os.getpriority(os.PRIO_PROCESS, threading.get_native_id()) == before

@@ -60,6 +60,12 @@ def judge(asked: Sheet, size: int = 25) -> Assessment:
     )
 
 
+def glance(asked: Sheet, plant: str = "") -> Assessment:
+    """Return the assessment of the nominal plant, and of the named one if the family has it."""
+    found = judge(asked)
+    return replace(found, members=tuple(one for one in found.members if one.name in ("nominal", plant)))
+
+
 def draw(asked: Sheet, assessment: Assessment) -> Overlay:
     """Return the overlay, made by the program's own geometry."""
     return overlay(asked, assessment)

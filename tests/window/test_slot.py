@@ -1,6 +1,7 @@
 """A slot hands over the newest thing only, and lets everybody go when it closes."""
 
 import threading
+import time
 
 from tuner.window.slot import Slot
 
@@ -41,3 +42,24 @@ def test_nothing_is_taken_after_closing() -> None:
     slot.put(2)
     assert slot.take() is None
     assert slot.newer(0.0)
+
+
+def test_a_nudge_ends_a_wait_for_newer_things() -> None:
+    """Who waits until nudged goes on at once, also when the nudge came first; others wait for their time."""
+    slot: Slot[int] = Slot()
+    slot.put(1)
+    slot.take()
+    slot.nudge()
+    assert not slot.newer(60.0, until_nudged=True)
+    assert not slot.newer(0.01)
+
+
+def test_a_nudge_is_about_the_last_thing_taken() -> None:
+    """The next one taken is waited for again."""
+    slot: Slot[int] = Slot()
+    slot.nudge()
+    slot.put(1)
+    slot.take()
+    began = time.perf_counter()
+    assert not slot.newer(0.05, until_nudged=True)
+    assert time.perf_counter() - began >= 0.04

@@ -25,7 +25,7 @@ def make(qtbot: QtBot) -> Iterator[Make]:
     made: list[Assessor] = []
 
     def new(judge: Callable[[Sheet, int], Assessment] = made_up.judge, *, synchronous: bool = False) -> Assessor:
-        made.append(Assessor(judge, made_up.draw, synchronous=synchronous))
+        made.append(Assessor(judge, lambda sheet, _plant: judge(sheet, 1), made_up.draw, synchronous=synchronous))
         return made[-1]
 
     yield new
@@ -166,7 +166,7 @@ def test_kept_tunings_run_once_for_the_same_plant() -> None:
         runs.append(sheet.controller.gain_1)
         return made_up.judge(sheet, size)
 
-    assessing = Assessing(judge, made_up.draw)
+    assessing = Assessing(judge, lambda sheet, _plant: judge(sheet, 1), made_up.draw)
     kept = (KeptTuning("A", "kp 3", made_up.sheet(3.0).controller),)
     for number in range(3):
         shown = assessing.whole(Request(number, made_up.sheet(1.0 + 0.1 * number), kept))
@@ -177,7 +177,7 @@ def test_kept_tunings_run_once_for_the_same_plant() -> None:
 def test_a_kept_tuning_that_cannot_run_is_left_out() -> None:
     """The present tuning is answered all the same."""
     kept = (KeptTuning("A", "kp 0", made_up.sheet(0.0).controller),)
-    shown = Assessing(made_up.judge, made_up.draw).whole(Request(1, made_up.sheet(1.0), kept))
+    shown = Assessing(made_up.judge, made_up.glance, made_up.draw).whole(Request(1, made_up.sheet(1.0), kept))
     assert shown.kept == ()
     with pytest.raises(LoopError):
         made_up.judge(made_up.sheet(0.0))

@@ -92,7 +92,7 @@ def opened(  # noqa: PLR0913 - each is what some test is about
     """Open a window on a made-up loop, and close it whatever happens."""
     held = document or Document(made_up.sheet())
     look = theme or Theme("light")
-    assessor = Assessor(judge, made_up.draw, synchronous=synchronous)
+    assessor = Assessor(judge, lambda sheet, _plant: judge(sheet, 1), made_up.draw, synchronous=synchronous)
     rulers = build_rulers(held, look)
     painting, reasons = paint or made_up_footing.Painting(), reason_at or made_up_footing.Reasons()
     gain_map = build_gain_map(held, look, paint_map or Mapping(), reasons, synchronous=synchronous)

@@ -1,16 +1,28 @@
 """The threads that kernels run in, a stretch of the work each; kernels let go of the interpreter's lock."""
 
+import os
+import sys
+import threading
 from collections.abc import Callable
 from concurrent.futures import ThreadPoolExecutor
 from functools import cache
 from itertools import pairwise
 from os import cpu_count
 
+_NICE = 10
+"""How much a thread that gives way is put behind others; Linux counts from 0 to 19."""
+
+
+def give_way() -> None:
+    """Let this thread run when others have nothing to do, where the system lets threads differ: curves come first."""
+    if sys.platform == "linux":  # elsewhere it would be the whole process
+        os.setpriority(os.PRIO_PROCESS, threading.get_native_id(), _NICE)
+
 
 @cache
 def pool() -> ThreadPoolExecutor:
     """Return the threads that kernels run in."""
-    return ThreadPoolExecutor(cpu_count() or 1, thread_name_prefix="footing")
+    return ThreadPoolExecutor(cpu_count() or 1, thread_name_prefix="footing", initializer=give_way)
 
 
 def spread_out(work: Callable[[int, int], object], count: int) -> None:

@@ -37,6 +37,8 @@ if TYPE_CHECKING:  # these roads are loaded when they are first taken
 
 _FIRST_SIZE = (1440, 900)
 _EXAMPLE = "heater.toml"
+_SWITCH = 0.001
+"""Seconds after which a thread that computes lets go of the interpreter; Python's own 5 ms can be seen."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -85,12 +87,13 @@ def opened(path: Path | None) -> Document:
 
 def built(application: QApplication, document: Document, asking: Asking | None = None) -> tuple[MainWindow, Wiring]:
     """Return the window of a document, wired and dressed, not shown yet, standing where it stood before."""
+    sys.setswitchinterval(_SWITCH)
     remembered = memory.recall()
     theme = Theme(next((choice for choice in CHOICES if choice == remembered.theme), "desktop"))
     theme.dress(application)
     application.setApplicationName("Trimwright")
     application.setWindowIcon(QIcon(str(resources() / "icons" / "trimwright.svg")))
-    assessor, rulers = Assessor(_judge, _draw), build_rulers(document, theme)
+    assessor, rulers = Assessor(_judge, _glance, _draw), build_rulers(document, theme)
     footing = keep_painted(document, rulers, _paint_rulers, _reason_at)
     gain_map = build_gain_map(document, theme, _paint_map, _reason_at)
     window = MainWindow(document, theme, assessor, build_editors(document, theme), rulers, (gain_map,))
@@ -140,6 +143,12 @@ def _judge(sheet: Sheet, size: int) -> Assessment:
     from tuner.assess import assess
 
     return assess(sheet, size)
+
+
+def _glance(sheet: Sheet, plant: str) -> Assessment:
+    from tuner.assess import glance
+
+    return glance(sheet, plant)
 
 
 def _paint_rulers(

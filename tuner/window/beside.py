@@ -10,6 +10,7 @@ from PySide6.QtCore import QObject, QThread, Signal
 
 from tuner.errors import TrimwrightError
 from tuner.footing.classes import Overtaken
+from tuner.footing.threads import give_way
 from tuner.window.shown import Failure
 from tuner.window.slot import Slot
 
@@ -142,5 +143,6 @@ class _Thread(QThread):
         self._work = work
 
     def run(self) -> None:
-        """Work until there is nothing more."""
+        """Work until there is nothing more, behind the curves."""
+        give_way()
         self._work()

@@ -24,6 +24,8 @@ from tuner.window.worker import Assessor
 
 SMALLEST = (960, 600)
 _EDITOR_WIDTH = 272
+_PAINTING = 1
+"""Milliseconds after an answer when it has been painted: Qt paints before it looks at its clock."""
 _PATIENCE = 2_000
 """Milliseconds after which a wait for the first answer is explained."""
 _COMPILING = "Compiling for this machine, once; the next start is quick."
@@ -139,6 +141,8 @@ class MainWindow(QMainWindow):
             self.ribbon.show(shown)
             self.editors.show(shown.assessment)
             self._say_notes(shown.assessment.notes)
+        else:
+            QTimer.singleShot(_PAINTING, self.assessor.go_on)
 
     def look_at(self, plant: str) -> None:
         """Show a plant of the family in the place of the nominal one, by its name; '' for the nominal one."""

@@ -90,5 +90,8 @@ class Failure:
 Judge = Callable[[Sheet, int], Assessment]
 """Assesses a sheet over a family of so many plants."""
 
+Glance = Callable[[Sheet, str], Assessment]
+"""Assesses a sheet with its nominal plant, and the plant of a name if there is one, as fast as can be."""
+
 Draw = Callable[[Sheet, Assessment], Overlay]
 """Says what to draw over the curves of an assessment."""

@@ -14,7 +14,7 @@ from tuner.judge.assessment import Assessment, MemberResult
 from tuner.model.family import family_of
 from tuner.model.sheet import Sheet
 from tuner.session.tunings import KeptTuning
-from tuner.window.shown import Draw, Failure, Judge, KeptResult, Request, Shown
+from tuner.window.shown import Draw, Failure, Glance, Judge, KeptResult, Request, Shown
 from tuner.window.slot import Slot
 
 QUICK = 0.005
@@ -23,8 +23,8 @@ QUICK = 0.005
 SLOW = 0.050
 """Seconds from which on a family waits for the hand to rest, so that it does not hold up the nominal curves."""
 
-FRAME = 0.016
-"""Seconds that the family waits after the nominal plant, so that the main thread can paint undisturbed."""
+FRAME = 0.030
+"""Seconds that the family waits after the nominal plant at most, while the main thread paints undisturbed."""
 
 REST = 0.060
 """Seconds that such a family waits for a newer request."""
@@ -48,8 +48,8 @@ class Assessing:
 
     Parameters
     ----------
-    judge, draw : callable
-        The road from sheet to assessment, and from there to the overlay.
+    judge, glance, draw : callable
+        The road from sheet to assessment, the quick one for a first picture, and from there to the overlay.
     cost : float
         Seconds that the last whole family took.
     ended : float
@@ -57,19 +57,20 @@ class Assessing:
     """
 
     judge: Judge
+    glance: Glance
     draw: Draw
     cost: float = float("inf")
     ended: float = float("-inf")
     _kept: OrderedDict[Sheet, MemberResult | None] = field(default_factory=OrderedDict)
 
     def nominal(self, request: Request) -> Shown:
-        """Answer for the nominal plant alone."""
-        return self._shown(request, 1, whole=False)
+        """Answer for the nominal plant alone, and for the plant that is looked at."""
+        return self._shown(request, self.glance(request.sheet, request.looked_at), whole=False)
 
     def whole(self, request: Request) -> Shown:
         """Answer for the whole family."""
         began = time.perf_counter()
-        shown = self._shown(request, request.sheet.trial.family_size, whole=True)
+        shown = self._shown(request, self.judge(request.sheet, request.sheet.trial.family_size), whole=True)
         self.ended = time.perf_counter()
         self.cost = self.ended - began
         return shown
@@ -78,8 +79,7 @@ class Assessing:
         """Tell whether the last whole family is so old that the next one should wait no longer."""
         return time.perf_counter() - self.ended > max(LATE, LATE_TIMES * self.cost)
 
-    def _shown(self, request: Request, size: int, *, whole: bool) -> Shown:
-        assessment = self.judge(request.sheet, size)
+    def _shown(self, request: Request, assessment: Assessment, *, whole: bool) -> Shown:
         seen = assessment.seen_from(request.looked_at) if request.looked_at else assessment
         overlay = self.draw(request.sheet, seen)
         kept = tuple(found for tuning in request.kept if (found := self._result(request.sheet, tuning)) is not None)
@@ -102,7 +102,7 @@ class Assessing:
 
     def _run(self, sheet: Sheet) -> MemberResult | None:
         try:
-            return self.judge(sheet, 1).nominal
+            return self.glance(sheet, "").nominal
         except TrimwrightError:
             return None
 
@@ -113,8 +113,9 @@ def _curves(sheet: Sheet, seen: Assessment) -> "FrequencyCurves":
     from tuner.simulate.curves import frequency_curves
     from tuner.simulate.loop import loops_of
 
-    first = seen.nominal.name
-    loops = loops_of(sheet, sorted(family_of(sheet, seen.family_size), key=lambda member: member.name != first))
+    places = {member.name: place for place, member in enumerate(seen.members)}
+    members = [member for member in family_of(sheet) if member.name in places]
+    loops = loops_of(sheet, sorted(members, key=lambda member: places[member.name]))
     return frequency_curves(loops, seen.nominal.poles, seen.nominal.margins)
 
 
@@ -123,7 +124,7 @@ class Assessor(QObject):
 
     Parameters
     ----------
-    judge, draw : callable
+    judge, glance, draw : callable
         See `Assessing`.
     synchronous : bool
         Answer at once, inside `submit`, for tests that want no thread.
@@ -134,9 +135,9 @@ class Assessor(QObject):
     failed = Signal(object)
     """A `Failure`."""
 
-    def __init__(self, judge: Judge, draw: Draw, *, synchronous: bool = False) -> None:
+    def __init__(self, judge: Judge, glance: Glance, draw: Draw, *, synchronous: bool = False) -> None:
         super().__init__()
-        self._assessing = Assessing(judge, draw)
+        self._assessing = Assessing(judge, glance, draw)
         self._slot: Slot[Request] = Slot()
         self._thread = None if synchronous else _Thread(self)
 
@@ -148,6 +149,10 @@ class Assessor(QObject):
         self._slot.put(request)
         if not self._thread.isRunning():
             self._thread.start()
+
+    def go_on(self) -> None:
+        """Say that the first picture is painted, so that the family need not wait for it."""
+        self._slot.nudge()
 
     def close(self) -> None:
         """End the thread and wait until it has ended; nothing is answered from then on."""
@@ -162,11 +167,10 @@ class Assessor(QObject):
 
     def _answer(self, request: Request) -> None:
         cost = self._assessing.cost
-        # Another plant than the nominal one is not known before the whole family is.
-        if cost > QUICK and not request.looked_at:
+        if cost > QUICK:
             if not self._tell(request, self._assessing.nominal):
                 return
-            overtaken = self._slot.newer(REST if cost > SLOW else FRAME)
+            overtaken = self._slot.newer(REST) if cost > SLOW else self._slot.newer(FRAME, until_nudged=True)
             if self._slot.closed or (overtaken and not self._assessing.due()):
                 return
         self._answer_whole(request)
