@@ -5,6 +5,7 @@ import os
 import subprocess
 import sys
 import time
+from contextlib import suppress
 from pathlib import Path
 
 import pytest
@@ -63,9 +64,7 @@ def test_the_program_starts_and_ends(tmp_path: Path) -> None:
     program = subprocess.Popen([sys.executable, "-m", "tuner", str(sheet)], cwd=ROOT, env=settings)
     try:
         found = _found(program)
-        xdotool("windowactivate", "--sync", found)
-        xdotool("key", "--clearmodifiers", "ctrl+q")
-        assert program.wait(120) == 0
+        assert _closed(program, found) == 0
     finally:
         program.kill()
         program.wait()
@@ -77,6 +76,16 @@ def _dialog(qtbot: QtBot) -> DeliverDialog:
     assert isinstance(dialog, DeliverDialog)
     qtbot.waitUntil(dialog.isActiveWindow)
     return dialog
+
+
+def _closed(program: "subprocess.Popen[bytes]", window: str) -> int:
+    """Return how a program ends that is told to by the keyboard, again if a window not ready yet lost the key."""
+    for _ in range(3):
+        xdotool("windowactivate", "--sync", window)
+        xdotool("key", "--clearmodifiers", "ctrl+q")
+        with suppress(subprocess.TimeoutExpired):
+            return program.wait(60)
+    return program.wait(1)
 
 
 def _found(program: "subprocess.Popen[bytes]") -> str:
