@@ -14,7 +14,7 @@ from pytestqt.qtbot import QtBot
 
 from tests.real_window.hand import click, press, xdotool
 from tests.window.windows import Answers
-from tuner.places import sample_plants
+from tuner.places import cache, sample_plants
 from tuner.session.document import Document
 from tuner.window.deliver_dialog import DeliverDialog
 from tuner.window.main_window import MainWindow
@@ -60,7 +60,10 @@ def test_the_program_starts_and_ends(tmp_path: Path) -> None:
     """`python -m tuner SHEET` shows a window named after the loop, and the keyboard closes it with status 0."""
     sheet = tmp_path / "mine.toml"
     sheet.write_text((sample_plants() / "heater.toml").read_text(encoding="utf-8"), encoding="utf-8")
-    settings = {**os.environ, "XDG_CONFIG_HOME": str(tmp_path / "config")}
+    # Its own folders, so that nothing is left behind from an earlier run; compiled code is shared all the same.
+    kernels = os.environ.get("NUMBA_CACHE_DIR", str(cache() / "kernels"))
+    own = {"XDG_CONFIG_HOME": str(tmp_path / "config"), "XDG_CACHE_HOME": str(tmp_path / "cache")}
+    settings = {**os.environ, **own, "NUMBA_CACHE_DIR": kernels}
     program = subprocess.Popen([sys.executable, "-m", "tuner", str(sheet)], cwd=ROOT, env=settings)
     try:
         found = _found(program)
