@@ -115,8 +115,7 @@ def wire(
     wiring = Wiring(menus, files, keeping, footing, gain_map)
     window.closing.connect(lambda event: _close(window, wiring, event))
     if footing is not None:
-        window.assessor.answered.connect(footing.painted.wake_after_answer)
-        window.assessor.failed.connect(footing.painted.wake_after_failure)
+        footing.painted.let_pass(window.assessor)
     return wiring
 
 

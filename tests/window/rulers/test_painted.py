@@ -4,10 +4,11 @@ from collections.abc import Callable, Iterator
 from dataclasses import replace
 
 import pytest
+from PySide6.QtWidgets import QApplication
 from pytestqt.qtbot import QtBot
 
 from tests.session.sheets import wash_bath
-from tests.window import made_up_footing
+from tests.window import made_up, made_up_footing
 from tuner.errors import LoopError
 from tuner.footing.classes import PaintedTrack
 from tuner.session.document import Document
@@ -16,7 +17,8 @@ from tuner.window.rulers import painted
 from tuner.window.rulers.painted import PaintedRulers
 from tuner.window.rulers.painting import Painter, Painting, PaintRequest
 from tuner.window.rulers.panel import RulerPanel
-from tuner.window.shown import Failure
+from tuner.window.shown import Failure, Shown
+from tuner.window.worker import Assessor
 
 
 class Asked(Beside[PaintRequest]):
@@ -161,6 +163,59 @@ def test_in_a_thread_the_last_sheet_is_the_last_painted(document: Document, pane
         document.change_value("ki", 0.05 + 0.001 * step)
     qtbot.waitUntil(lambda: kept.painting is not None and kept.painting.sheet == document.sheet)
     assert threading.get_ident() not in paint.threads
+    kept.close()
+
+
+@pytest.fixture
+def curves() -> Iterator[Assessor]:
+    """Return what draws the curves; the test answers in its place."""
+    assessor = Assessor(made_up.judge, lambda sheet, _plant: made_up.judge(sheet, 1), made_up.draw, synchronous=True)
+    yield assessor
+    assessor.close()
+
+
+def answer(curves: Assessor, *, whole: bool) -> None:
+    """Say that curves came, and let them be drawn."""
+    assessment = made_up.judge(made_up.sheet(), 3)
+    curves.answered.emit(Shown(1, made_up.sheet(), assessment, made_up.draw(made_up.sheet(), assessment), (), whole))
+    QApplication.processEvents()
+
+
+def test_the_curves_of_a_change_go_first(
+    document: Document, panel: RulerPanel, worker: Asked, curves: Assessor, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    """The first verdict wakes the rulers; then each change waits until its first curves, or none, came."""
+    monkeypatch.setattr(painted, "PATIENCE", 1_000_000)
+    kept = PaintedRulers(document, panel, worker)
+    kept.let_pass(curves)
+    answer(curves, whole=False)
+    assert worker.requests == []
+    answer(curves, whole=True)
+    assert len(worker.requests) == 1
+    document.change_value("kp", 4.0)
+    QApplication.processEvents()
+    assert len(worker.requests) == 1
+    answer(curves, whole=False)
+    answer(curves, whole=True)
+    assert [request.sheet.controller.gain_1 for request in worker.requests] == [3.0, 4.0]
+    document.change_value("kp", 5.0)
+    curves.failed.emit(Failure(2, "the loop has no gain"))
+    QApplication.processEvents()
+    assert len(worker.requests) == 3
+    kept.close()
+
+
+def test_slow_curves_are_not_waited_for(
+    document: Document, panel: RulerPanel, worker: Asked, curves: Assessor, qtbot: QtBot
+) -> None:
+    """Where curves take long, the rulers ask after a while nevertheless, for the newest sheet."""
+    kept = PaintedRulers(document, panel, worker)
+    kept.let_pass(curves)
+    answer(curves, whole=True)
+    for kp in (4.0, 5.0):
+        document.change_value("kp", kp)
+    qtbot.waitUntil(lambda: len(worker.requests) == 2)
+    assert worker.requests[-1].sheet.controller.gain_1 == 5.0
     kept.close()
 
 

@@ -9,11 +9,15 @@ from tuner.window.beside import Beside
 from tuner.window.rulers.painting import Painting, PaintRequest
 from tuner.window.rulers.panel import RulerPanel
 from tuner.window.shown import Failure, Shown
+from tuner.window.worker import Assessor
 
 WAITING = "The rulers are grey until their footing is computed; the first time on a machine that takes a while."
 
 LATE = 250
 """Milliseconds after which paint that a change made untrue is shown paler, if nothing newer has come."""
+
+PATIENCE = 150
+"""Milliseconds that the rulers let pass the curves of a change."""
 
 
 class PaintedRulers(QObject):
@@ -39,6 +43,8 @@ class PaintedRulers(QObject):
         self.painting: Painting | None = None
         self._late = QTimer(self, singleShot=True, interval=LATE)
         self._late.timeout.connect(self._fade)
+        self._turn = QTimer(self, singleShot=True, interval=0)
+        self._turn.timeout.connect(self._submit)
         worker.answered.connect(self._answered)
         worker.failed.connect(self._failed)
         self._held = self._is_coarse = False
@@ -52,24 +58,41 @@ class PaintedRulers(QObject):
         return self._asked
 
     def wake(self) -> None:
-        """Begin to ask; before, the first curves of the window have the machine to themselves."""
+        """Begin to ask."""
         if not self._awake:
             self._awake = True
             self.ask()
 
-    def wake_after_answer(self, shown: Shown) -> None:
-        """Begin to ask once a whole answer is shown."""
-        if shown.whole:
-            self.wake()
+    def let_pass(self, curves: Assessor) -> None:
+        """Ask only after the curves of a change are drawn, or it takes them long; sleep until the first verdict."""
+        self._turn.setInterval(PATIENCE)
+        curves.answered.connect(self._curves_came)
+        curves.failed.connect(self._no_curves_came)
 
-    def wake_after_failure(self, _failure: Failure) -> None:
-        """Begin to ask although the loop cannot be assessed as it is now."""
-        self.wake()
+    def _curves_came(self, shown: Shown) -> None:
+        self._awake = self._awake or shown.whole
+        self._take_turn()
+
+    def _no_curves_came(self, _failure: Failure) -> None:
+        self._awake = True
+        self._take_turn()
+
+    def _take_turn(self) -> None:
+        """Ask once what has come is drawn."""
+        QTimer.singleShot(0, self, self._submit)
 
     def ask(self) -> None:
-        """Ask for the footing of the sheet as it is now, unless it was asked for already."""
+        """Ask for the footing of the sheet as it is now when it is the rulers' turn."""
         if self._generation != self._document.generation:
             self._leave_loop()
+        if self._turn.interval() == 0:
+            self._submit()
+        elif not self._turn.isActive():
+            self._turn.start()
+
+    def _submit(self) -> None:
+        """Ask, unless it was asked for already."""
+        self._turn.stop()
         tracks = self._panel.tracks()
         if not self._awake or self._is_wanted(tracks):
             return
@@ -83,6 +106,7 @@ class PaintedRulers(QObject):
     def close(self) -> None:
         """Ask no more, and end the worker."""
         self._stop_listening()
+        self._turn.stop()
         self._late.stop()
         self._worker.close()
 
@@ -95,7 +119,7 @@ class PaintedRulers(QObject):
         self._held = False
         if self._is_coarse:
             self._wanted = None
-            self.ask()
+            self._submit()
 
     def _is_wanted(self, tracks: tuple[Track, ...]) -> bool:
         if self._wanted is None:
