@@ -69,12 +69,14 @@ def test_the_ultimate_cycle_example_of_ogata(
         (None, 9.0 + 3.0 * np.sqrt(11.0), 1.90018, 19.0554, 62.343),
         (1.0, 10.0, 1.05463, 11.2092, 12.754),
         (0.5, 9.505, 1.03497, 11.3138, 12.476),
+        (1e-6, 9.0, 1.0 + 0.1 * np.exp(-2.0 * np.pi / 27.0**0.5), 9.0 + 4.0 * np.pi / 27.0**0.5, 12.399),
     ],
 )
 def test_an_integrator_that_saturates(
     windup_time: float | None, leaves: float, peak: float, peak_time: float, settling_time: float
 ) -> None:
     """1/s under PI with the effort limited to 0.1: the closed form, with and without back-calculation."""
+    # With a wind-up time far below any step the integral is wherever the effort is just at its limit.
     # Method: Astrom and Hagglund, PID Controllers, 1995; numbers from the closed form.
     pi = Controller(gain_1=1.0, gain_2=1.0, windup_time=windup_time)
     trace = run(sheet("1/s", pi, Trial(120.0), Manipulated(low=-0.1, high=0.1)), NOMINAL)[0].reference

@@ -6,6 +6,7 @@ step (Richardson's extrapolation). Two such extrapolations, from three steps, te
 
 import math
 from collections.abc import Sequence
+from dataclasses import replace
 from typing import NamedTuple
 
 import numpy as np
@@ -147,7 +148,13 @@ def _run(sheet: Sheet, members: Sequence[Member], grid: Grid, gains: Sequence[fl
 
     Sampling reads the measurement before the effort of the same instant acts. A measurement filter of one direct gain
     times the step makes up for it: a loop of that gain then settles within one sample at the value it has at once.
+
+    A wind-up time below the step would lead the integral beyond where it belongs, and below half the step ever farther
+    away: it counts as one step, which takes the integral all the way in one sample.
     """
+    windup_time = sheet.controller.windup_time
+    if windup_time is not None and windup_time < grid.sample_time:
+        sheet = replace(sheet, controller=replace(sheet.controller, windup_time=grid.sample_time))
     if not any(gains):
         return simulate(sheet, members, grid)
     filter_time = sheet.controller.measurement_filter
