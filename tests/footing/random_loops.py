@@ -84,7 +84,7 @@ def rich_sheet(seed: int) -> Sheet:
         law = replace(law, feedforward=Feedforward("static", gain=random.uniform(-0.5, 1.0)))
     if kind == 1:
         law = replace(law, feedforward=Feedforward("inverse", filter_time=random.uniform(0.3, 1.0)))
-    if kind == 2:  # noqa: PLR2004 - one of the kinds
+    if kind == 2:
         law = replace(law, disturbance_feedforward=DisturbanceFeedforward("0.4 exp(-0.6 s)/((s + 1)(0.5 s + 1)^2)"))
     sensor = replace(found.sensor, resolution=0.02) if random.random() < 0.15 else found.sensor
     return replace(found, plant=plant, controller=law, sensor=sensor)

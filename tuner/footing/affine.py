@@ -10,6 +10,9 @@ from tuner.simulate.traces import Array, ComplexArray
 INVERSE = ("ti",)
 """Gains that enter by their reciprocal."""
 
+PROPORTIONAL, DERIVATIVE = ("kp", "kc"), ("kd", "td")
+"""Gains that act on the measurement as it is, and on how fast it moves."""
+
 MOTIONLESS = ("b", "c", "windup_time")
 """Numbers that no pole depends on."""
 

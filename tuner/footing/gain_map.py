@@ -73,7 +73,7 @@ def paint_map(  # noqa: PLR0913, PLR0917 - the question as it is asked
     ]
     grading = Grading(sheet, ground, tunings, stop)
     classes = grading.classes(lost.ravel(), unsure.ravel())
-    worst = grading.watch(measure, classes != LOST) if measure else np.full(len(tunings), np.nan)
+    worst = grading.watch(measure, classes < LOST) if measure else np.full(len(tunings), np.nan)
     return GainMap(x, y, classes.reshape(lost.shape), measure, worst.reshape(lost.shape))
 
 

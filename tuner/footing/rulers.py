@@ -7,7 +7,7 @@ from itertools import pairwise
 import numpy as np
 from numpy.typing import NDArray
 
-from tuner.footing.classes import LOST, SOFT, UNKNOWN, Classes, Edge, PaintedTrack, Track, never, painted, tuned
+from tuner.footing.classes import LOST, UNKNOWN, Classes, Edge, PaintedTrack, Track, never, painted, tuned
 from tuner.footing.exact import exactly
 from tuner.footing.grading import Grading
 from tuner.footing.ground import Ground, ground_of
@@ -167,10 +167,13 @@ def _beside(line: _Line) -> Array:
 
 
 def _changes(line: _Line) -> list[tuple[float, float]]:
-    """Return neighbouring values, unknown ones left out, between which the class changes though both are stable."""
+    """Return neighbouring values, unknown ones left out, between which the class changes.
+
+    Not those with an edge of stability between them: where that is, is known.
+    """
     sure = (line.classes != UNKNOWN) & (line.values > 0.0)
     values, classes = line.values[sure], line.classes[sure]
-    at = np.flatnonzero((classes[1:] != classes[:-1]) & (np.maximum(classes[1:], classes[:-1]) <= SOFT))
+    at = np.flatnonzero(classes[1:] != classes[:-1])
     pairs = [(float(values[i]), float(values[i + 1])) for i in at.tolist()]
     return [one for one in pairs if not _parted(line, *one)]
 
@@ -208,7 +211,8 @@ def _finished(line: _Line) -> PaintedTrack:
 
 
 def _other_edges(line: _Line) -> list[Edge]:
-    sure = line.classes != UNKNOWN
+    # A notch that is unknown still has no answer; any other value may just not have been asked for good.
+    sure = (line.classes != UNKNOWN) | np.isin(line.values, line.track.values)
     values, classes = line.values[sure], line.classes[sure]
     at = np.flatnonzero(classes[1:] != classes[:-1])
     return [

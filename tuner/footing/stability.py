@@ -7,7 +7,7 @@ from typing import NamedTuple
 import numpy as np
 from numpy.typing import NDArray
 
-from tuner.footing.affine import INVERSE, MOTIONLESS, coordinate, value_of
+from tuner.footing.affine import DERIVATIVE, INVERSE, MOTIONLESS, PROPORTIONAL, coordinate, value_of
 from tuner.footing.chains import Chains, chains_of, looked_at_closely
 from tuner.footing.classes import Track
 from tuner.footing.locus import Crossings, crossings
@@ -89,7 +89,9 @@ def stretches(
     if present <= 0.0 or base is None:
         present = present if present > 0.0 else float(usable[len(usable) // 2])
         base = counts(_with(sheet, track.name, present), members)
-    if not controller.sample_time and any(_is_flat(controller, chains) for chains in chains_of(sheet, size)):
+    if not controller.sample_time and any(
+        _is_flat(controller, track.name, chains) for chains in chains_of(sheet, size)
+    ):
         return None
     places = coordinate(track.name, np.array([present, usable[0], usable[-1]]))
     span = float(places.min()), float(places.max())
@@ -119,9 +121,13 @@ def _chains(sheet: Sheet, members: Sequence[Member], name: str, size: int) -> tu
     return tuple(looked_at_closely(chains, poles) for chains in found)
 
 
-def _is_flat(controller: Controller, chains: Chains) -> bool:
-    """Return whether the gain of a continuous loop may stay above nothing for ever: its poles are endless."""
-    return chains.rows.excess <= (1 if controller.parallel().kd and not controller.filter_time else 0)
+def _is_flat(controller: Controller, name: str, chains: Chains) -> bool:
+    """Return whether the gain of a continuous loop may stay above nothing for ever as a gain moves: endless poles."""
+    gains = controller.parallel()
+    derives = bool(gains.kd) or name in DERIVATIVE
+    if not derives and not gains.kp and name not in PROPORTIONAL:
+        return chains.rows.excess <= -1
+    return chains.rows.excess <= (1 if derives and not controller.filter_time else 0)
 
 
 def _with(sheet: Sheet, name: str, value: float) -> Sheet:

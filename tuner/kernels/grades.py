@@ -12,7 +12,15 @@ from numpy.typing import NDArray
 
 from tuner.kernels.compiled import compiled
 from tuner.kernels.lanes import LANES, Size, run
-from tuner.kernels.readings import MEASURES, REFERENCE_COUNT, ROUNDING, WORK_ROWS, disturbance_bounds, reference_bounds
+from tuner.kernels.readings import (
+    MEASURES,
+    NOTHING,
+    REFERENCE_COUNT,
+    ROUNDING,
+    WORK_ROWS,
+    disturbance_bounds,
+    reference_bounds,
+)
 
 Array = NDArray[np.float64]
 Integers = NDArray[np.int64]
@@ -163,6 +171,17 @@ def _extrapolate(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arra
 
 
 @compiled
+def _doubt_nothing(step: float, ends: Array, low: Array, high: Array) -> None:
+    """Leave open what is told in parts of a final value that may come out as nothing once it is extrapolated."""
+    for i in range(LANES):
+        a, b = ends[0, i], ends[1, i]
+        near = (NOTHING + EXTRAPOLATED) * abs(step) + BEYOND * abs(b - a)
+        if a != b and abs(2.0 * b - a) <= near:
+            for measure in range(REFERENCE_COUNT):
+                low[measure, i], high[measure, i] = -math.inf, math.inf
+
+
+@compiled
 def _both(  # noqa: PLR0913, PLR0917 - what a run takes
     size: Size,
     filters: Size,
@@ -173,6 +192,7 @@ def _both(  # noqa: PLR0913, PLR0917 - what a run takes
     m: int,
     asked: Flags,
     scratch: tuple[Array, Array, Array, Array],
+    ends: Array,
     coarse_low: Array,
     coarse_high: Array,
     low: Array,
@@ -192,7 +212,7 @@ def _both(  # noqa: PLR0913, PLR0917 - what a run takes
         if which == 0:
             reference_bounds(
                 y, points, samples, speed.tail, speed.spacing, totals, blocks.finals[0, m, g],
-                course.wanted[0, 0], course.band, asked, work, low, high,
+                course.wanted[0, 0], course.band, asked, ends[v], work, low, high,
             )  # fmt: skip
         else:
             disturbance_bounds(
@@ -214,6 +234,8 @@ def _both(  # noqa: PLR0913, PLR0917 - what a run takes
                     coarse_low[measure, i], coarse_high[measure, i] = low[measure, i], high[measure, i]
         if v > 0:
             _extrapolate(begin, end, coarse_low, coarse_high, low, high)
+            if which == 0:
+                _doubt_nothing(course.wanted[0, 0], ends, low, high)
 
 
 @compiled
@@ -234,6 +256,7 @@ def grade(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
     )  # fmt: skip
     low, high = np.zeros((len(MEASURES), LANES)), np.zeros((len(MEASURES), LANES))
     coarse_low, coarse_high = np.zeros((len(MEASURES), LANES)), np.zeros((len(MEASURES), LANES))
+    ends = np.zeros((len(course.speeds), LANES))
     asked = np.zeros(len(MEASURES), dtype=np.uint8)
     for measure in range(len(MEASURES)):
         asked[measure] = 1 if not math.isnan(course.limits[measure]) or measure == course.watched else 0
@@ -245,13 +268,13 @@ def grade(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
                 break
             left = True
             if first:
-                _both(size, filters, course, blocks, 0, g, m, asked, scratch, coarse_low, coarse_high, low, high)
+                _both(size, filters, course, blocks, 0, g, m, asked, scratch, ends, coarse_low, coarse_high, low, high)
                 left = _decide(
                     course.limits, 0, REFERENCE_COUNT, low, high, blocks.active[g], blocks.doubt[g, m],
                     blocks.misses, m,
                 )  # fmt: skip
             if second and (left or course.watched >= REFERENCE_COUNT):
-                _both(size, filters, course, blocks, 1, g, m, asked, scratch, coarse_low, coarse_high, low, high)
+                _both(size, filters, course, blocks, 1, g, m, asked, scratch, ends, coarse_low, coarse_high, low, high)
                 _decide(
                     course.limits, REFERENCE_COUNT, len(MEASURES), low, high, blocks.active[g], blocks.doubt[g, m],
                     blocks.misses, m,

@@ -173,6 +173,7 @@ def reference_bounds(  # noqa: C901, PLR0912, PLR0913, PLR0917 - every measure o
     step: float,
     band: float,
     asked: Flags,
+    final: Array,
     work: Array,
     low: Array,
     high: Array,
@@ -197,12 +198,14 @@ def reference_bounds(  # noqa: C901, PLR0912, PLR0913, PLR0917 - every measure o
         Settling band, 0 to 1.
     asked : ndarray of uint8, shape (13,)
         Measures to bound.
+    final : ndarray, shape (lanes,)
+        Where each lane ends, written to.
     work : ndarray, shape (12 lanes,)
         Scratch.
     low, high : ndarray, shape (13, lanes)
         Bounds, written to.
     """
-    final, scale, reach = np.empty(LANES), np.empty(LANES), np.empty(LANES)
+    scale, reach = np.empty(LANES), np.empty(LANES)
     _final_values(y, points, tail, totals, exact, final, work)
     for i in range(LANES):
         usable = abs(final[i]) > NOTHING * abs(step)
@@ -241,7 +244,9 @@ def reference_bounds(  # noqa: C901, PLR0912, PLR0913, PLR0917 - every measure o
         if scale[i] == 0.0:
             for measure in (0, 1, 2, 3, 5):
                 low[measure, i] = high[measure, i] = math.inf
-        if _doubtful(y, points, totals, step, i):
+        # What is told in parts of a final value may not exist where that comes out next to nothing.
+        nowhere = final[i] != exact[i] and abs(abs(final[i]) - NOTHING * abs(step)) <= ROUNDING * abs(step)
+        if nowhere or _doubtful(y, points, totals, step, i):
             for measure in range(REFERENCE_COUNT):
                 low[measure, i], high[measure, i] = -math.inf, math.inf
 
