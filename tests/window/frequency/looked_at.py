@@ -2,7 +2,7 @@
 
 from functools import cache
 
-from tuner.assess import assess
+from tuner.assess import assess, glance
 from tuner.files.sheet import read
 from tuner.judge.overlay import overlay
 from tuner.model.sheet import Sheet
@@ -19,6 +19,6 @@ def heater() -> Sheet:
 @cache
 def answer(*, whole: bool = True) -> Shown:
     """Return the answer on it, with its curves over frequency."""
-    assessing = Assessing(assess, overlay)
+    assessing = Assessing(assess, glance, overlay)
     request = Request(1, heater(), frequency=True)
     return assessing.whole(request) if whole else assessing.nominal(request)

@@ -11,7 +11,7 @@ from tuner.window.worker import Assessing
 
 def answer(kp: float = 2.0, *, whole: bool = True, kept: tuple[float, ...] = (), **changes: object) -> Shown:
     """Return the answer for a made-up loop, with kept tunings of these kp beside it."""
-    assessing = Assessing(made_up.judge, made_up.draw)
+    assessing = Assessing(made_up.judge, made_up.glance, made_up.draw)
     tunings = tuple(
         KeptTuning("ABC"[index], f"kp {other}", made_up.sheet(other).controller) for index, other in enumerate(kept)
     )
