@@ -2,8 +2,10 @@
 
 import os
 import subprocess
+from contextlib import suppress
 
 from PySide6.QtWidgets import QWidget
+from pytestqt import exceptions
 from pytestqt.qtbot import QtBot
 
 
@@ -19,8 +21,12 @@ def test_a_window_is_managed_and_can_be_closed(qtbot: QtBot) -> None:
     qtbot.waitUntil(lambda: window.frameGeometry() != window.geometry())
     found = _xdotool("search", "--onlyvisible", "--name", "^display of the tests$")
     assert len(found.split()) == 1
-    _xdotool("key", "--clearmodifiers", "alt+F4")
-    qtbot.waitUntil(lambda: not window.isVisible())
+    for _ in range(3):  # a window manager that is still busy may lose a key
+        _xdotool("key", "--clearmodifiers", "alt+F4")
+        with suppress(exceptions.TimeoutError):
+            qtbot.waitUntil(lambda: not window.isVisible())
+            break
+    assert not window.isVisible()
 
 
 def _xdotool(*command: str) -> str:

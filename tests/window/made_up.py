@@ -43,9 +43,16 @@ def sheet(kp: float = 2.0, **changes: object) -> Sheet:
 
 def judge(asked: Sheet, size: int = 25) -> Assessment:
     """Return the assessment of a made-up sheet over a family of so many plants."""
+    return _judged_over(asked, _family(asked, size))
+
+
+def _family(asked: Sheet, size: int) -> tuple[MemberResult, ...]:
     if asked.controller.gain_1 == 0.0:
         raise LoopError("the loop has no gain: kp is 0")
-    members = tuple(_member(asked, share) for share in (0.0, *np.linspace(-0.15, 0.15, size - 1)))
+    return tuple(_member(asked, share) for share in (0.0, *np.linspace(-0.15, 0.15, size - 1)))
+
+
+def _judged_over(asked: Sheet, members: tuple[MemberResult, ...]) -> Assessment:
     limits = tuple(_judged(members, name, limit) for name, limit in asked.limits)
     unstable = next((member for member in members if not member.stable), None)
     met = all(limit.met for limit in limits)
@@ -62,8 +69,7 @@ def judge(asked: Sheet, size: int = 25) -> Assessment:
 
 def glance(asked: Sheet, plant: str = "") -> Assessment:
     """Return the assessment of the nominal plant, and of the named one if the family has it."""
-    found = judge(asked)
-    return replace(found, members=tuple(one for one in found.members if one.name in ("nominal", plant)))
+    return _judged_over(asked, tuple(one for one in _family(asked, 25) if one.name in ("nominal", plant)))
 
 
 def draw(asked: Sheet, assessment: Assessment) -> Overlay:
