@@ -5,12 +5,18 @@ from dataclasses import replace
 import numpy as np
 import pytest
 
+from tests.footing.random_loops import rich_sheet
+from tests.footing.random_loops import sheet as plain
 from tests.session.sheets import wash_bath
 from tuner.assess import assess
-from tuner.footing.classes import FIRM, LOST, SOFT, Overtaken, Track, tuned
+from tuner.footing.classes import FIRM, LOST, SOFT, UNKNOWN, Overtaken, Track, tuned
 from tuner.footing.gain_map import GainMap, paint_map
 from tuner.judge.assessment import Assessment
-from tuner.model.sheet import Sheet
+from tuner.model.controller import Controller
+from tuner.model.loop import Loop
+from tuner.model.parameters import rulers
+from tuner.model.plant import ExpressionPlant
+from tuner.model.sheet import Sheet, Trial
 
 GRADES = {"met": FIRM, "missed": SOFT, "unstable": LOST}
 SIZE = 5
@@ -18,11 +24,11 @@ MEASURES = ("overshoot", "settling_time", "damping")
 NEAR_THE_EDGE = 4.0
 
 
-def judged(sheet: Sheet, found: GainMap, row: int, column: int) -> Assessment:
+def judged(sheet: Sheet, found: GainMap, row: int, column: int, size: int = SIZE) -> Assessment:
     """Return the assessment at a point of a map."""
     controller = tuned(sheet.controller, found.x.name, float(found.x.values[column]))
     controller = tuned(controller, found.y.name, float(found.y.values[row]))
-    return assess(replace(sheet, controller=controller), SIZE)
+    return assess(replace(sheet, controller=controller), size)
 
 
 @pytest.mark.parametrize(
@@ -41,6 +47,27 @@ def test_classes_are_those_of_the_assessment(x: Track, y: Track) -> None:
     assert found.classes.shape == (len(y.values), len(x.values))
     for row, column in np.ndindex(found.classes.shape):
         assert found.classes[row, column] == GRADES[judged(sheet, found, row, column).verdict]
+
+
+@pytest.mark.parametrize("seed", range(14))
+def test_random_loops_at_random_places(seed: int) -> None:
+    """Any two numbers of the controller, rich loops among them."""
+    random, sheet = np.random.default_rng(seed), (plain, rich_sheet)[seed % 2](500 + seed)
+    names = random.choice([one.name for one in rulers(sheet.controller.form)], 2, replace=False).tolist()
+    counts = zip(names, (4, 3), strict=True)
+    x, y = (Track(name, np.sort(np.exp(random.uniform(-3.0, 2.0, count)))) for name, count in counts)
+    found = paint_map(sheet, x, y, family_size=3)
+    for row, column in np.ndindex(found.classes.shape):
+        assert found.classes[row, column] == GRADES[judged(sheet, found, row, column, 3).verdict]
+
+
+def test_where_there_is_no_answer_nothing_is_known() -> None:
+    """Neither a class nor a value; the places beside it are painted all the same."""
+    plant = ExpressionPlant("(1 - s)/(s + 1)")
+    sheet = Sheet(Loop("refused beyond 1"), plant, Controller(gain_1=0.5), Trial(20.0))
+    found = paint_map(sheet, Track("kp", np.array([0.5, 2.0])), Track("b", np.array([1.0])), "damping", 1)
+    assert found.classes.tolist() == [[FIRM, UNKNOWN]]
+    assert np.isnan(found.worst).tolist() == [[False, True]]
 
 
 @pytest.mark.parametrize("measure", MEASURES)

@@ -2,10 +2,12 @@
 
 from dataclasses import replace
 
-from tuner.assess import assess
+import numpy as np
+
 from tuner.files.sheet import read
-from tuner.footing.classes import FIRM, LOST, SOFT
+from tuner.footing.classes import FIRM, LOST, SOFT, Track
 from tuner.footing.reason import Reason, reason_at
+from tuner.footing.rulers import paint_rulers
 from tuner.places import sample_plants
 
 HEATER = read(sample_plants() / "heater.toml")
@@ -25,13 +27,25 @@ def test_soft_says_what_is_missed() -> None:
     assert found.sentence == "no settling time (at most 90 s) at gain \u221215 %, delay +50 %, and 1 more missed"
 
 
+def test_a_single_limit_with_its_number() -> None:
+    """A limit that is missed alone; a plant that does not drift is called nominal."""
+    one = replace(HEATER, limits=(("overshoot", 8.0),))
+    assert reason_at(one, {"kp": 4.0}) == Reason(SOFT, "overshoot 20.75 % > 8 % at gain +15 %, delay +50 %")
+    least = replace(HEATER, limits=(("gain_margin", 2.0),))
+    expected = "all limits met; nearest: gain margin 4.442 > 2 with the nominal plant"
+    assert reason_at(least, {}, 1) == Reason(FIRM, expected)
+
+
 def test_lost_says_how_the_loop_runs_away() -> None:
-    """As the assessment says it."""
+    """How fast, with which plant, and where the edge is: the one that the ruler has."""
     found = reason_at(HEATER, {"kp": 20.0})
-    changed = replace(HEATER, controller=HEATER.controller.with_value("kp", 20.0))
-    instability = assess(changed).instability
-    assert instability is not None
-    assert found == Reason(LOST, instability.sentence.rstrip("."))
+    assert found.grade == LOST
+    assert found.sentence == (
+        "Unstable: grows e-fold every 14.42 s at 0.1776 rad/s (doubles every 9.995 s) with gain 1.035, delay 6; "
+        "kp 20 %/degC is beyond its edge at 5.758"
+    )
+    (painted,) = paint_rulers(HEATER, [Track("kp", np.geomspace(0.5, 50.0, 9))])
+    assert [f"{edge.value:.4g}" for edge in painted.edges if edge.above == LOST] == ["5.758"]
 
 
 def test_without_limits_it_is_said_that_there_are_none() -> None:
