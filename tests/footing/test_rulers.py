@@ -150,6 +150,18 @@ def test_no_cliff_hides_between_notches() -> None:
     assert cliff[0] == pytest.approx(cliff[1], rel=1e-9)
 
 
+def test_the_present_value_has_its_class_between_notches() -> None:
+    """A firm stretch narrower than a notch is found where the gain is now, with its edges."""
+    found = read(sample_plants() / "heater.toml")
+    (painted,) = paint_rulers(found, [Track("kp", np.geomspace(0.02, 200.0, 64))])
+    assert FIRM not in painted.classes
+    assert painted.class_at(np.array([found.controller.gain_1])).tolist() == [FIRM]
+    assert judged(found, "kp", found.controller.gain_1, 25) == FIRM
+    for edge in painted.edges[:2]:
+        assert judged(found, "kp", 0.995 * edge.value, 25) == edge.below
+        assert judged(found, "kp", 1.005 * edge.value, 25) == edge.above
+
+
 def test_class_at_follows_the_edges() -> None:
     """Between notches the class changes at the edge, beyond the ends it stays."""
     found = read(sample_plants() / "heater.toml")

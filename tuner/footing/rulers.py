@@ -102,11 +102,17 @@ class _Painter:
     def paint(self, tracks: Sequence[Track], *, fine: bool) -> tuple[PaintedTrack, ...]:
         """Paint all tracks together."""
         lines = self._lines(tracks)
-        values = [np.concatenate((line.track.values, _beside(line))) for line in lines]
+        values = [np.concatenate((line.track.values, _beside(line), self._present(line.track))) for line in lines]
         self._grade(lines, values, settle=True)
         if fine:
             self._narrow(lines)
         return tuple(_finished(line) for line in lines)
+
+    def _present(self, track: Track) -> Array:
+        """Return the value that the sheet has, where it lies between notches: what is there is never passed over."""
+        value = self.sheet.controller.value(track.name)
+        inside = value is not None and len(track.values) and track.values[0] < value < track.values[-1]
+        return np.array([value]) if inside and value not in track.values else np.zeros(0)
 
     def _lines(self, tracks: Sequence[Track]) -> list[_Line]:
         base = counts(self.sheet, self.ground.members)
