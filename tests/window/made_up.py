@@ -86,7 +86,14 @@ def _member(asked: Sheet, share: float) -> MemberResult:
     stable = damping > 0.0
     final = asked.trial.reference if stable else None
     return MemberResult(
-        name, stable, _measures(damping, natural), poles, _traces(asked, damping, natural), {}, final, 0.0
+        name,
+        stable,
+        _measures(damping, natural),
+        poles,
+        _traces(asked, damping, natural),
+        final_reference=final,
+        final_disturbance=0.0,
+        drift=f"gain {100.0 * share:+.3g} %".replace("-", "\u2212") if share else "",
     )
 
 

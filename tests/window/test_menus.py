@@ -14,6 +14,7 @@ from tests.window.test_sheet_files import GOOD
 from tests.window.windows import Answers, opened
 from tuner.window.main_window import MainWindow
 from tuner.window.plot_grid import EFFORT, REFERENCE
+from tuner.window.plots.trace_panel import ReferencePanel
 
 pytestmark = pytest.mark.usefixtures("qtbot")
 
@@ -163,3 +164,29 @@ def _submenu(window: MainWindow, words: str) -> QMenu:
 def _entries(menu: QMenu) -> list[QAction]:
     menu.aboutToShow.emit()
     return menu.actions()
+
+
+def test_the_family_on_the_plots_is_chosen_in_the_menu() -> None:
+    """Each entry shows it another way, at once."""
+    with opened() as (window, wiring):
+        panel = window.plots.panels["Reference step"]
+        assert isinstance(panel, ReferencePanel)
+        for view, band in (("curves", False), ("band", True), ("none", False), ("both", True)):
+            wiring.menus.actions[f"family {view}"].trigger()
+            assert window.shown is not None
+            assert window.shown.family_view == view
+            assert bool(panel.band.xData.size) is band
+
+
+def test_worst_plants_are_listed_by_their_limits() -> None:
+    """One entry a limit; choosing it looks at the plant."""
+    with opened() as (window, wiring):
+        assert window.shown is not None
+        limit = window.shown.assessment.limits[0]
+        menu = QMenu()
+        wiring.menus._list_worst(menu)
+        assert len(menu.actions()) == len(window.shown.assessment.limits)
+        first = menu.actions()[0]
+        assert first.text() == f"overshoot: {window.shown.assessment.drift_of(limit.plant)}"
+        first.trigger()
+        assert window.shown.looked_at == limit.plant

@@ -86,3 +86,61 @@ def test_the_keyboard_chooses_a_plant_too() -> None:
         QTest.keyClick(window.ribbon.chips[0], Qt.Key.Key_Space)
         assert window.shown is not None
         assert window.shown.looked_at == window.shown.assessment.limits[0].plant
+
+
+def test_pressing_the_chip_again_goes_back() -> None:
+    """The chip of the plant that is looked at leads to the nominal one, and says so."""
+    with opened() as (window, _):
+        chip = window.ribbon.chips[0]
+        QTest.mouseClick(chip, Qt.MouseButton.LeftButton)
+        assert chip.words.is_looked_at
+        assert "press to look at the nominal plant again" in chip.toolTip()
+        QTest.mouseClick(chip, Qt.MouseButton.LeftButton)
+        assert window.looked_at == ""
+        assert not chip.words.is_looked_at
+
+
+def test_escape_goes_back_to_the_nominal_plant() -> None:
+    """From a chip, and from a plot once its pointer is let go."""
+    with opened() as (window, _):
+        window.look_at_worst()
+        QTest.keyClick(window.ribbon.chips[0], Qt.Key.Key_Escape)
+        assert window.looked_at == ""
+        window.look_at_worst()
+        view = window.plots.panels["Effort"].view
+        QTest.keyClick(view, Qt.Key.Key_Right)
+        QTest.keyClick(view, Qt.Key.Key_Escape)
+        assert window.looked_at
+        QTest.keyClick(view, Qt.Key.Key_Escape)
+        assert window.looked_at == ""
+
+
+def test_a_plant_that_is_gone_is_forgotten() -> None:
+    """The plots show the nominal one, and nothing is left to go back from."""
+    with opened() as (window, _):
+        window.look_at("gain 7")
+        assert window.looked_at == ""
+        assert window.shown is not None
+        assert window.shown.looked_at == ""
+        assert not window.pages.back.isVisibleTo(window)
+
+
+def test_looking_changes_nothing_in_the_sheet() -> None:
+    """Neither the sheet nor what can be undone nor the verdict."""
+    with opened() as (window, _):
+        assert window.shown is not None
+        before, verdict = window.document.sheet, window.shown.assessment.verdict
+        window.look_at_worst()
+        assert window.document.sheet is before
+        assert window.document.undo_label is None
+        assert not window.document.dirty
+        assert window.shown.assessment.verdict == verdict
+
+
+def test_the_name_of_a_curve_leads_to_its_plant() -> None:
+    """What a plot asks for is looked at."""
+    with opened() as (window, _):
+        assert window.shown is not None
+        plant = window.shown.assessment.members[2].name
+        window.plots.panels["Effort"].plant_wanted.emit(plant)
+        assert window.shown.looked_at == plant

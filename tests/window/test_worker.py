@@ -181,3 +181,42 @@ def test_a_kept_tuning_that_cannot_run_is_left_out() -> None:
     assert shown.kept == ()
     with pytest.raises(LoopError):
         made_up.judge(made_up.sheet(0.0))
+
+
+def test_the_plant_that_is_looked_at_comes_first_too() -> None:
+    """The quick answer has the nominal plant and that one, which stands first for the plots; kept tunings run on it."""
+    assessing = Assessing(made_up.judge, made_up.glance, made_up.draw)
+    plant = made_up.judge(made_up.sheet()).members[3].name
+    kept = (KeptTuning("A", "kp 3", made_up.sheet(3.0).controller),)
+    shown = assessing.nominal(Request(1, made_up.sheet(), kept, looked_at=plant, family_view="band"))
+    assert [member.name for member in shown.assessment.members] == ["nominal", plant]
+    assert (shown.looked_at, shown.family_view) == (plant, "band")
+    assert shown.as_seen().assessment.nominal.name == plant
+    assert shown.kept[0].member.name == plant
+
+
+def test_a_plant_that_the_family_has_no_more_is_not_looked_at() -> None:
+    """The nominal one is shown in its place."""
+    assessing = Assessing(made_up.judge, made_up.glance, made_up.draw)
+    for answer in (assessing.nominal, assessing.whole):
+        shown = answer(Request(1, made_up.sheet(), looked_at="gain 7"))
+        assert shown.looked_at == ""
+        assert shown.as_seen().assessment.nominal.name == "nominal"
+
+
+def test_the_family_goes_on_once_the_first_picture_is_painted(
+    make: Make, qtbot: QtBot, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    """Without that word it waits for its time."""
+    monkeypatch.setattr(worker, "FRAME", 60.0)
+    monkeypatch.setattr(worker, "QUICK", 0.0)
+    monkeypatch.setattr(worker, "SLOW", 60.0)
+    assessor = make()
+    answers: list[Shown] = []
+    assessor.answered.connect(answers.append)
+    assessor._assessing.cost = 1.0
+    assessor.submit(Request(1, made_up.sheet()))
+    qtbot.waitUntil(lambda: len(answers) == 1)
+    assessor.go_on()
+    qtbot.waitUntil(lambda: len(answers) == 2)
+    assert answers[1].whole

@@ -4,7 +4,7 @@ All numbers are deviations from the resting point in engineering units, and time
 the traces; labels carry absolute values where a person knows them so (the ends of the actuator's range).
 """
 
-from collections.abc import Iterator, Mapping
+from collections.abc import Iterator
 from dataclasses import dataclass
 from math import acos, degrees, isnan, log
 from typing import Literal
@@ -157,24 +157,25 @@ def overlay(sheet: Sheet, assessment: Assessment) -> Overlay:
 
 def callouts(sheet: Sheet, assessment: Assessment) -> tuple[Callout, ...]:
     """Return one sentence for each missed limit, in the order of the sheet, with the plot that shows it."""
-    reasons = {member.name: member.reasons for member in assessment.members}
+    members = {member.name: member for member in assessment.members}
     return tuple(
-        Callout(PLOT_OF[result.measure], result.measure, missed(sheet, result, reasons[result.plant]))
+        Callout(PLOT_OF[result.measure], result.measure, missed(sheet, result, members[result.plant]))
         for result in assessment.limits
         if not result.met
     )
 
 
-def missed(sheet: Sheet, result: LimitResult, reasons: Mapping[str, str]) -> str:
-    """Say a limit's result in words: "settling time 96 s > 90 s at gain 1.04, delay 6".
+def missed(sheet: Sheet, result: LimitResult, member: MemberResult) -> str:
+    """Say a limit's result in words: "settling time 96 s > 90 s at gain +15 %, delay +50 %".
 
     Parameters
     ----------
-    reasons : mapping of str to str
-        Why measures of that plant do not exist.
+    member : MemberResult
+        The plant of the result; it knows how far it has drifted, and why measures of it do not exist.
     """
-    said = f"{relation(result.measure, result.value, result.limit, sheet.loop)}{at_plant(result.plant)}"
-    why = reasons.get(result.measure, "")
+    plant = at_plant(member.drift or member.name)
+    said = f"{relation(result.measure, result.value, result.limit, sheet.loop)}{plant}"
+    why = member.reasons.get(result.measure, "")
     return f"{said}: {why}" if result.value is None and why else said
 
 

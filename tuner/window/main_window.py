@@ -4,7 +4,7 @@ from collections.abc import Sequence
 from pathlib import Path
 
 from PySide6.QtCore import QByteArray, Qt, QTimer, Signal
-from PySide6.QtGui import QCloseEvent, QDragEnterEvent, QDropEvent
+from PySide6.QtGui import QCloseEvent, QDragEnterEvent, QDropEvent, QKeyEvent
 from PySide6.QtWidgets import QMainWindow, QScrollArea, QSplitter, QVBoxLayout, QWidget
 
 from tuner.judge.wording import shortfall
@@ -18,7 +18,7 @@ from tuner.window.pages import Page, Pages
 from tuner.window.plot_grid import PlotGrid
 from tuner.window.ribbon import Ribbon
 from tuner.window.rulers.panel import RulerPanel
-from tuner.window.shown import Failure, Request, Shown
+from tuner.window.shown import Failure, FamilyView, Request, Shown
 from tuner.window.theme import Theme
 from tuner.window.worker import Assessor
 
@@ -71,6 +71,7 @@ class MainWindow(QMainWindow):
         self.pages = Pages(theme, (self.plots, self.frequency, *more_pages))
         self.shown: Shown | None = None
         self.looked_at = ""
+        self.family_view: FamilyView = "both"
         self._asked = self._first = 0
         self._generation = document.generation
         self._fault = ""
@@ -119,7 +120,8 @@ class MainWindow(QMainWindow):
 
     def ask(self) -> None:
         """Ask for an answer, unless what decides it has not changed since the last one was asked for."""
-        wanted = (self.document.sheet, self.document.kept, self.pages.page.wants_frequency, self.looked_at)
+        document, wants_frequency = self.document, self.pages.page.wants_frequency
+        wanted = (document.sheet, document.kept, wants_frequency, self.looked_at, self.family_view)
         anew = self.document.generation != self._generation
         if wanted == self._requested and not anew:
             return
@@ -138,6 +140,7 @@ class MainWindow(QMainWindow):
         self.pages.show(shown.as_seen())
         self.pages.say_looked_at(shown.assessment.drift_of(shown.looked_at) if shown.looked_at else "")
         if shown.whole:
+            self._lose_sight(shown)
             self.ribbon.show(shown)
             self.editors.show(shown.assessment)
             self._say_notes(shown.assessment.notes)
@@ -148,6 +151,23 @@ class MainWindow(QMainWindow):
         """Show a plant of the family in the place of the nominal one, by its name; '' for the nominal one."""
         self.looked_at = "" if plant == NOMINAL else plant
         self.ask()
+
+    def _lose_sight(self, shown: Shown) -> None:
+        """Look at the nominal plant from now on when the family has the plant no longer that was looked at."""
+        if shown.number == self._asked and not shown.looked_at:
+            self.looked_at = ""
+
+    def show_family(self, view: FamilyView) -> None:
+        """Choose how the plots show the family."""
+        self.family_view = view
+        self.ask()
+
+    def keyPressEvent(self, event: QKeyEvent) -> None:
+        """Go back to the nominal plant by Escape, wherever nothing else takes it."""
+        if event.key() == Qt.Key.Key_Escape and self.looked_at:
+            self.look_at(NOMINAL)
+        else:
+            super().keyPressEvent(event)
 
     def look_at_worst(self) -> None:
         """Show the plant that misses a limit by most, or comes nearest to missing one."""
@@ -220,6 +240,7 @@ class MainWindow(QMainWindow):
         self.pages.chosen.connect(lambda _name: self.ask())
         self.pages.nominal_wanted.connect(lambda: self.look_at(""))
         self.ribbon.plant_wanted.connect(self.look_at)
+        self.plots.plant_wanted.connect(self.look_at)
 
     def layout_memory(self) -> Memory:
         """Return how the window stands and how its room is divided."""

@@ -7,14 +7,22 @@ from PySide6.QtCore import QPoint
 from PySide6.QtGui import QAction, QActionGroup, QKeySequence
 from PySide6.QtWidgets import QMenu
 
+from tuner.model.measures import BY_NAME
 from tuner.session.document import Document
 from tuner.window.commands import Commands
 from tuner.window.main_window import MainWindow
 from tuner.window.pictures import Pictured
 from tuner.window.plots.panel import Panel
 from tuner.window.sheet_files import SheetFiles, recent, samples
+from tuner.window.shown import FamilyView
 from tuner.window.theme import CHOICES
 
+_FAMILY_WORDS: dict[FamilyView, str] = {
+    "both": "&Band and curves",
+    "band": "B&and alone",
+    "curves": "&Curves alone",
+    "none": "&Not shown",
+}
 _THEME_WORDS = {"desktop": "&Follow the desktop", "light": "&Light", "dark": "&Dark"}
 
 
@@ -95,6 +103,8 @@ class Menus:
         menu.addSeparator()
         self._add(menu, "look at worst", "Look at the worst &plant", window.look_at_worst, "Ctrl+L")
         self._add(menu, "look at nominal", "Look at the &nominal plant", partial(window.look_at, ""), "Ctrl+Shift+L")
+        self._filled(menu.addMenu("Look at the plant &worst for"), self._list_worst)
+        self._fill_family(menu.addMenu("&Family on the plots"))
         menu.addSeparator()
         self._add(menu, "whole", "&Whole range of the plots", window.pages.show_whole, "Ctrl+0")
         menu.addSeparator()
@@ -103,6 +113,12 @@ class Menus:
         self._add(menu, "to limits", "Go to the &limits", window.ribbon.focus, "Ctrl+3")
         menu.addSeparator()
         self._fill_theme(menu.addMenu("&Theme"))
+
+    def _fill_family(self, menu: QMenu) -> None:
+        group, window = QActionGroup(self._window), self._window
+        for view, words in _FAMILY_WORDS.items():
+            action = self._add(menu, f"family {view}", words, partial(window.show_family, view))
+            _radio(action, group, checked=view == window.family_view)
 
     def _fill_theme(self, menu: QMenu) -> None:
         group, theme = QActionGroup(self._window), self._window.theme
@@ -125,6 +141,15 @@ class Menus:
     def _list_plots(self, menu: QMenu, act: Callable[[Pictured], None]) -> None:
         panels = self._window.pages.page.panels
         self._list(menu, [(name, partial(act, panel)) for name, panel in panels.items()])
+
+    def _list_worst(self, menu: QMenu) -> None:
+        """List the plants by the limits that they are worst for."""
+        entries: list[tuple[str, Callable[[], object]]] = []
+        if (shown := self._window.shown) is not None:
+            for limit in shown.assessment.limits:
+                words = f"{BY_NAME[limit.measure].label}: {shown.assessment.drift_of(limit.plant)}"
+                entries.append((_plain(words), partial(self._window.look_at, limit.plant)))
+        self._list(menu, entries)
 
     def _list_kept(self, menu: QMenu) -> None:
         kept = self._document.kept

@@ -72,6 +72,9 @@ class Pages(QObject):
             QPushButton("Back to the nominal plant"),
         )
         self.back.clicked.connect(self.nominal_wanted)
+        room = self.back.sizePolicy()
+        room.setRetainSizeWhenHidden(True)
+        self.back.setSizePolicy(room)
         self.widget = self._arranged()
         self.say_looked_at("")
         self._name = pages[0].name

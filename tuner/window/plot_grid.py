@@ -19,6 +19,8 @@ class PlotGrid(QObject):
     wants_frequency = False
     menu_wanted = Signal(object, object)
     """A `Panel`, and where on the screen."""
+    plant_wanted = Signal(str)
+    """The name of a plant of the family that is to be looked at."""
 
     def __init__(self, theme: Theme) -> None:
         super().__init__()
@@ -33,6 +35,7 @@ class PlotGrid(QObject):
         self._place()
         for panel in self.panels.values():
             panel.menu_wanted.connect(lambda at, panel=panel: self.menu_wanted.emit(panel, at))
+            panel.plant_wanted.connect(self.plant_wanted)
         theme.changed.connect(self._dress)
 
     def show(self, shown: Shown) -> None:

@@ -21,6 +21,7 @@ from PySide6.QtWidgets import QHBoxLayout, QScrollArea, QSizePolicy, QVBoxLayout
 from tuner.judge.assessment import Assessment, LimitResult
 from tuner.judge.overlay import at_plant
 from tuner.judge.wording import number, quantity, told_apart, unit_of
+from tuner.model.family import NOMINAL
 from tuner.model.loop import Loop
 from tuner.model.measures import BY_NAME
 from tuner.window.elided import ElidedLabel, RoleLabel
@@ -60,10 +61,12 @@ class ChipWords:
     limit: str
     plant: str
     standing: Standing
+    is_looked_at: bool = False
 
     def sentence(self) -> str:
         """Return all of it for a screen reader."""
-        return f"{self.measure} {self.value}, limit {self.limit}, {self.standing}, {self.plant}"
+        looked_at = ", looked at" if self.is_looked_at else ""
+        return f"{self.measure} {self.value}, limit {self.limit}, {self.standing}, {self.plant}{looked_at}"
 
 
 def chip_words(result: LimitResult, loop: Loop, *, stable: bool) -> ChipWords:
@@ -146,7 +149,7 @@ class Chip(QWidget):
         self._write(painter, x, middle, self.words.limit, "quiet")
         bottom = top + small.height() + strong.height() + small.ascent()
         plant = small.elidedText(self.words.plant, Qt.TextElideMode.ElideRight, self.width() - 2 * _GAP)
-        self._write(painter, left, bottom, plant, "quiet")
+        self._write(painter, left, bottom, plant, "nominal_word" if self.words.is_looked_at else "quiet")
 
     def _paint_edge(self, painter: QPainter, role: QColor) -> None:
         """Paint a bar at the left of what is not met, and a line around what has the focus."""
@@ -193,6 +196,7 @@ class Ribbon(QObject):
         self._theme = theme
         self.chips: list[Chip] = []
         self._plants: list[str] = []
+        self._looked_at = ""
         self.title, self.verdict, self.detail = ElidedLabel(), RoleLabel(theme, stretch=False), RoleLabel(theme)
         self._sign = VerdictSign(theme)
         self._flow_host, self._scroll = QWidget(), QScrollArea()
@@ -238,7 +242,7 @@ class Ribbon(QObject):
 
     def _show_chips(self, shown: Shown) -> None:
         results = shown.assessment.limits
-        self._plants = [result.plant for result in results]
+        self._plants, self._looked_at = [result.plant for result in results], shown.looked_at
         stable = shown.assessment.verdict != "unstable"
         sizes = [chip.sizeHint() for chip in self.chips]
         while len(self.chips) > len(results):
@@ -246,6 +250,7 @@ class Ribbon(QObject):
         for index, result in enumerate(results):
             drift = shown.assessment.drift_of(result.plant)
             words = chip_words(replace(result, plant=drift), shown.sheet.loop, stable=stable)
+            words = replace(words, is_looked_at=bool(shown.looked_at) and result.plant == shown.looked_at)
             tip = _tip(result, shown)
             if index < len(self.chips):
                 self.chips[index].show_words(words, tip)
@@ -262,7 +267,8 @@ class Ribbon(QObject):
 
     def _look(self, index: int) -> None:
         """Ask for the worst plant of a limit to be looked at."""
-        self.plant_wanted.emit(self._plants[index])
+        plant = self._plants[index]
+        self.plant_wanted.emit(NOMINAL if plant == self._looked_at else plant)
 
     def _arranged(self) -> QWidget:
         words = QVBoxLayout()
@@ -330,10 +336,17 @@ def verdict_words(assessment: Assessment) -> tuple[str, str]:
     return f"{missed} of {len(limits)} limits missed", f"over {family}"
 
 
+def _pressing(result: LimitResult, shown: Shown) -> str:
+    """Return what pressing a chip does."""
+    if result.plant == NOMINAL:
+        return "press to look at the nominal plant"
+    return "press to look at the nominal plant again" if result.plant == shown.looked_at else "press to look at it"
+
+
 def _tip(result: LimitResult, shown: Shown) -> str:
     """Return the definition of a measure, its worst plant, and why it does not exist if it does not."""
     facts = BY_NAME[result.measure]
-    lines = [f"{facts.label}: {facts.sentence}", f"Worst{at_plant(result.plant)}; press to look at this plant."]
+    lines = [f"{facts.label}: {facts.sentence}", f"Worst{at_plant(result.plant)}; {_pressing(result, shown)}."]
     if result.value is None:
         lines += [f"Not there: {reason}." for reason in _reasons(result, shown)]
     nominal = shown.assessment.nominal.measures.get(result.measure)

@@ -2,7 +2,7 @@
 
 from collections.abc import Callable
 from dataclasses import dataclass, replace
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Literal
 
 from tuner.judge.assessment import Assessment, MemberResult
 from tuner.judge.overlay import Overlay
@@ -14,12 +14,16 @@ if TYPE_CHECKING:
     from tuner.simulate.curves import FrequencyCurves
 
 
+FamilyView = Literal["both", "band", "curves", "none"]
+"""How the plots show the family: as the ground it covers, curve by curve, as both, or not at all."""
+
+
 @dataclass(frozen=True, slots=True)
 class Request:
     """A sheet to assess, and the kept tunings to run beside it; the newest `number` wins.
 
     `frequency` asks for the response over frequency as well; `looked_at` names the plant of the family that the plots
-    are to show in the place of the nominal one, '' for the nominal one itself.
+    are to show in the place of the nominal one, '' for the nominal one itself; `family_view` is how they show the rest.
     """
 
     number: int
@@ -27,11 +31,12 @@ class Request:
     kept: tuple[KeptTuning, ...] = ()
     frequency: bool = False
     looked_at: str = ""
+    family_view: FamilyView = "both"
 
 
 @dataclass(frozen=True, slots=True, eq=False)
 class KeptResult:
-    """What a kept tuning makes of the nominal plant of the present sheet."""
+    """What a kept tuning makes of the plant that is looked at, the nominal one as a rule."""
 
     name: str
     label: str
@@ -62,6 +67,8 @@ class Shown:
         The plant that stands first in `seen`; '' for the nominal one.
     seen : Assessment or None
         The same assessment with that plant in the place of the nominal one; None where that is the nominal one.
+    family_view : str
+        How the plots show the family.
     """
 
     number: int
@@ -73,6 +80,7 @@ class Shown:
     frequency: "FrequencyCurves | None" = None
     looked_at: str = ""
     seen: Assessment | None = None
+    family_view: FamilyView = "both"
 
     def as_seen(self) -> "Shown":
         """Return this answer as the plots show it: with the plant that is looked at in the nominal one's place."""

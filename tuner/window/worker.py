@@ -61,7 +61,7 @@ class Assessing:
     draw: Draw
     cost: float = float("inf")
     ended: float = float("-inf")
-    _kept: OrderedDict[Sheet, MemberResult | None] = field(default_factory=OrderedDict)
+    _kept: OrderedDict[tuple[Sheet, str], MemberResult | None] = field(default_factory=OrderedDict)
 
     def nominal(self, request: Request) -> Shown:
         """Answer for the nominal plant alone, and for the plant that is looked at."""
@@ -82,27 +82,37 @@ class Assessing:
     def _shown(self, request: Request, assessment: Assessment, *, whole: bool) -> Shown:
         seen = assessment.seen_from(request.looked_at) if request.looked_at else assessment
         overlay = self.draw(request.sheet, seen)
-        kept = tuple(found for tuning in request.kept if (found := self._result(request.sheet, tuning)) is not None)
+        results = (self._result(request.sheet, tuning, request.looked_at) for tuning in request.kept)
+        kept = tuple(found for found in results if found is not None)
         curves = _curves(request.sheet, seen) if request.frequency else None
         plant = "" if seen is assessment else request.looked_at
         return Shown(
-            request.number, request.sheet, assessment, overlay, kept, whole, curves, plant, seen if plant else None
+            number=request.number,
+            sheet=request.sheet,
+            assessment=assessment,
+            overlay=overlay,
+            kept=kept,
+            whole=whole,
+            frequency=curves,
+            looked_at=plant,
+            seen=seen if plant else None,
+            family_view=request.family_view,
         )
 
-    def _result(self, sheet: Sheet, tuning: KeptTuning) -> KeptResult | None:
-        """Return what a kept tuning makes of the sheet's nominal plant; None when that cannot be computed."""
-        asked = replace(sheet, controller=replace(tuning.controller, as_found=None), limits=())
+    def _result(self, sheet: Sheet, tuning: KeptTuning, plant: str) -> KeptResult | None:
+        """Return what a kept tuning makes of the plant that is looked at; None when that cannot be computed."""
+        asked = replace(sheet, controller=replace(tuning.controller, as_found=None), limits=()), plant
         if asked not in self._kept:
-            self._kept[asked] = self._run(asked)
+            self._kept[asked] = self._run(*asked)
         self._kept.move_to_end(asked)
         while len(self._kept) > _REMEMBERED:
             self._kept.popitem(last=False)
         member = self._kept[asked]
         return None if member is None else KeptResult(tuning.name, tuning.label, member)
 
-    def _run(self, sheet: Sheet) -> MemberResult | None:
+    def _run(self, sheet: Sheet, plant: str) -> MemberResult | None:
         try:
-            return self.glance(sheet, "").nominal
+            return self.glance(sheet, plant).seen_from(plant).nominal
         except TrimwrightError:
             return None
 

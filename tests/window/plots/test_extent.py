@@ -54,6 +54,18 @@ def test_small_changes_change_nothing() -> None:
     assert steady.offer(Extent(0.0, 9.0), held=False) == before
 
 
+def test_a_range_that_is_not_full_narrows_without_a_hand() -> None:
+    """Also when what is asked still fills most of it."""
+    steady = SteadyExtent()
+    steady.offer(Extent(0.0, 10.0), held=False)
+    assert steady.offer(Extent(0.0, 7.5), held=False) == rounded(Extent(0.0, 7.5))
+
+
+def test_the_nearest_place_in_a_range() -> None:
+    """A value outside goes to the nearer end."""
+    assert [Extent(-1.0, 2.0).nearest(value) for value in (-5.0, 0.5, 7.0)] == [-1.0, 0.5, 2.0]
+
+
 def test_forgotten_ranges_start_anew() -> None:
     """After `forget` the next range counts for itself."""
     steady = SteadyExtent()

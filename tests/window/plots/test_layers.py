@@ -11,6 +11,7 @@ from pytestqt.qtbot import QtBot
 
 from tuner.window.plots.layers import GroundLayer, Layer, MarkLayer
 from tuner.window.plots.marks import Area, Marks, Stroke, Words, rectangle
+from tuner.window.plots.still import StillPicture
 from tuner.window.theme import Theme
 
 FRAME = QRectF(0.0, 0.0, 200.0, 100.0)
@@ -50,7 +51,7 @@ def inked(image: QImage, theme: Theme) -> set[tuple[int, int]]:
 
 def test_an_area_is_filled_to_its_edges(box: object, theme: Theme) -> None:
     """Inside it has the colour of its role, outside the page's."""
-    ground = GroundLayer(box, theme)
+    ground = GroundLayer(box, theme, StillPicture(pg.GraphicsView()))
     ground.areas = (Area(rectangle(20.0, 60.0, 30.0, 70.0), "limit_zone"),)
     image = painted(ground, theme)
     for x, y in ((21.0, 31.0), (40.0, 50.0), (59.0, 69.0)):
@@ -61,7 +62,7 @@ def test_an_area_is_filled_to_its_edges(box: object, theme: Theme) -> None:
 
 def test_an_endless_area_reaches_the_frame(box: object, theme: Theme) -> None:
     """Corners at infinity lie at the edge of what is seen."""
-    ground = GroundLayer(box, theme)
+    ground = GroundLayer(box, theme, StillPicture(pg.GraphicsView()))
     ground.areas = (Area(rectangle(-inf, inf, 80.0, inf), "limit_zone"),)
     image = painted(ground, theme)
     assert {colour(image, x, 99.0).name() for x in (0.5, 50.0, 99.0)} == {theme.colour("limit_zone").name()}
@@ -70,7 +71,7 @@ def test_an_endless_area_reaches_the_frame(box: object, theme: Theme) -> None:
 
 def test_a_wedge_is_filled_as_far_as_it_is_seen(box: object, theme: Theme) -> None:
     """A shape whose corners are far outside is cut to the frame."""
-    ground = GroundLayer(box, theme)
+    ground = GroundLayer(box, theme, StillPicture(pg.GraphicsView()))
     ground.areas = (Area(((0.0, 0.0), (1e9, 0.0), (1e9, 1e9)), "limit_zone"),)
     image = painted(ground, theme)
     assert colour(image, 80.0, 40.0) == theme.colour("limit_zone")
@@ -79,7 +80,7 @@ def test_a_wedge_is_filled_as_far_as_it_is_seen(box: object, theme: Theme) -> No
 
 def test_a_hatched_area_is_told_by_its_pattern(box: object, theme: Theme) -> None:
     """Some of its pixels are the page's, some are not, and none outside."""
-    ground = GroundLayer(box, theme)
+    ground = GroundLayer(box, theme, StillPicture(pg.GraphicsView()))
     ground.areas = (Area(rectangle(0.0, 50.0, 0.0, 100.0), "lost", hatched=True),)
     marked = inked(painted(ground, theme), theme)
     share = len(marked) / (100 * 100)
@@ -89,7 +90,7 @@ def test_a_hatched_area_is_told_by_its_pattern(box: object, theme: Theme) -> Non
 
 def test_the_grid_is_sharp(box: object, theme: Theme) -> None:
     """A line of the grid is one column or one row of pixels, from edge to edge."""
-    ground = GroundLayer(box, theme)
+    ground = GroundLayer(box, theme, StillPicture(pg.GraphicsView()))
     ground.columns, ground.rows = (50.0,), (25.0,)
     image = painted(ground, theme)
     marked = inked(image, theme)
@@ -165,7 +166,7 @@ def test_the_width_of_words_is_measured_once(box: object, theme: Theme, monkeypa
 
 def test_a_layer_covers_what_is_seen(box: pg.ViewBox, theme: Theme) -> None:
     """Its bounds follow the ranges of the axes, and it never stretches them."""
-    layer = GroundLayer(box, theme)
+    layer = GroundLayer(box, theme, StillPicture(pg.GraphicsView()))
     layer.areas = (Area(rectangle(-1e6, 1e6, 0.0, 1.0), "limit_zone"),)
     for x, y in (((0.0, 10.0), (0.0, 1.0)), ((5.0, 6.0), (-3.0, 3.0))):
         box.setRange(xRange=x, yRange=y, padding=0.0)

@@ -34,3 +34,11 @@ def test_words_without_room_get_no_place() -> None:
     """After five lines around one place there is no more."""
     placed = place_words([Box(0.0, 50.0, 20.0, 60.0)] * 7, FRAME)
     assert placed[5:] == [None, None]
+
+
+def test_a_box_holds_the_points_inside() -> None:
+    """Its edges are part of it."""
+    box = Box(0.0, 10.0, 20.0, 30.0)
+    assert box.holds(0.0, 30.0)
+    assert not box.holds(21.0, 20.0)
+    assert not box.holds(10.0, 5.0)

@@ -9,6 +9,7 @@ from PySide6.QtTest import QTest
 from pytestqt.qtbot import QtBot
 
 from tests.window.plots.answers import answer, seen
+from tuner.judge.assessment import WorstCase
 from tuner.window.plots.pole_panel import PolePanel, pole_words
 from tuner.window.theme import Theme
 
@@ -67,6 +68,59 @@ def test_a_first_answer_moves_only_the_nominal_poles(panel: PolePanel) -> None:
     before = panel.family.getData()[0].copy()
     panel.show(answer(2.5, whole=False))
     assert np.array_equal(panel.family.getData()[0], before)
+
+
+def test_the_least_damped_pair_is_ringed_and_named(panel: PolePanel) -> None:
+    """The pair of the whole family, with its damping and its plant, which can be pressed."""
+    shown = answer(2.0)
+    panel.show(shown)
+    worst = shown.assessment.worst["damping"]
+    (member,) = (one for one in shown.assessment.members if one.name == worst.plant)
+    x, y = panel.least.getData()
+    assert set(x + 1j * y) == {pole for pole in member.poles if pole.imag}
+    (words,) = (words for words in panel.marks.words if words.plant)
+    assert (words.text, words.plant) == (f"least damping {worst.value:.3g}: gain +15 %", worst.plant)
+
+
+def test_the_least_damped_pair_of_the_plant_looked_at_has_no_name_to_press(panel: PolePanel) -> None:
+    """It is in sight already."""
+    shown = answer(2.0)
+    seen_from = shown.assessment.seen_from(shown.assessment.worst["damping"].plant)
+    panel.show(replace(shown, assessment=seen_from))
+    (words,) = (words for words in panel.marks.words if words.text.startswith("least damping"))
+    assert words.plant == ""
+    assert ":" not in words.text
+
+
+def test_nothing_is_ringed_where_nothing_rings(panel: PolePanel) -> None:
+    """Real poles alone have a damping of 1."""
+    panel.show(answer(0.2))
+    assert panel.least.getData()[0].size == 0
+
+
+def test_a_pair_out_of_sight_is_told_at_the_edge(panel: PolePanel) -> None:
+    """So that the damping is not looked for among the poles in sight."""
+    shown = answer(2.0)
+    nominal = shown.assessment.nominal
+    poles = np.append(nominal.poles, [-40.0 + 400.0j, -40.0 - 400.0j])
+    least = replace(nominal, poles=poles, measures={**nominal.measures, "damping": 0.0995})
+    found = replace(
+        shown.assessment,
+        members=(least, *shown.assessment.members[1:]),
+        worst={**shown.assessment.worst, "damping": WorstCase(0.0995, "nominal")},
+    )
+    panel.show(replace(shown, assessment=found))
+    (words,) = (words for words in panel.marks.words if words.text.startswith("least damping"))
+    assert words.text == "least damping 0.0995, out of sight"
+    across, upwards = panel.ranges()
+    assert (words.x, words.y) == (across.low, upwards.high)
+
+
+def test_a_family_that_is_not_wanted_is_not_drawn(panel: PolePanel) -> None:
+    """The poles of the plant that is looked at stay."""
+    panel.show(replace(answer(2.0), family_view="none"))
+    assert panel.family.getData()[0].size == 0
+    assert panel.nominal.getData()[0].size
 
 
 def test_the_pointer_reads_a_pole(panel: PolePanel) -> None:

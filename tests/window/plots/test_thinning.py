@@ -75,3 +75,14 @@ def test_a_staircase_holds_each_value_until_the_next() -> None:
     t, u = staircase(np.array([0.0, 1.0]), np.array([1.0, 2.0]), 3.0)
     assert list(t) == [0.0, 1.0, 1.0, 3.0]
     assert list(u) == [1.0, 1.0, 2.0, 2.0]
+
+
+def test_the_envelope_leaves_out_no_peak() -> None:
+    """A peak of one sample among many to a stroke reaches as high as it is."""
+    t = np.linspace(0.0, 1.0, 10_001)
+    curve = np.zeros(t.size)
+    curve[[4321, 8765]] = 1.5, -1.0
+    made = envelope(t, curve[None, :], SEEN, 100)
+    assert made.x.size == 200
+    assert (made.y.min(), made.y.max()) == (-1.0, 1.5)
+    assert (made.y[::2] <= made.y[1::2]).all()

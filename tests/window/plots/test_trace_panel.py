@@ -4,7 +4,7 @@ from dataclasses import replace
 
 import numpy as np
 import pytest
-from PySide6.QtCore import Qt
+from PySide6.QtCore import QPointF, Qt
 from PySide6.QtTest import QTest
 from pytestqt.qtbot import QtBot
 
@@ -13,6 +13,7 @@ from tuner.judge.assessment import Assessment, MemberResult
 from tuner.model.controller import Controller
 from tuner.model.sheet import Trial
 from tuner.simulate.traces import Trace, Traces
+from tuner.window.plots.marks import Words
 from tuner.window.plots.trace_panel import DisturbancePanel, EffortPanel, ReferencePanel, TracePanel
 from tuner.window.shown import Shown
 from tuner.window.theme import Theme
@@ -270,6 +271,68 @@ def test_it_is_empty_in_words_at_first(reference: ReferencePanel) -> None:
     reference.show(answer(1.0))
     assert reference.view.isVisible()
     assert not reference._empty.isVisible()
+
+
+def test_the_worst_plant_is_drawn_and_named_where_it_runs(reference: ReferencePanel, theme: Theme) -> None:
+    """In the colour of limits; a quick first answer leaves it where it was."""
+    reference.show(answer(3.0))
+    assert reference.worst.xData.size
+    assert reference.worst.opts["pen"].color() == theme.colour("limit")
+    (words,) = (words for words in reference.marks.words if words.plant)
+    assert words.text.startswith("worst overshoot: gain +15 %")
+    before = reference.worst.yData.copy()
+    reference.show(answer(3.05, whole=False))
+    assert np.array_equal(reference.worst.yData, before)
+
+
+def test_pressing_the_name_of_a_plant_asks_for_it(reference: ReferencePanel) -> None:
+    """A hand over the name, and a press there, mean its plant; elsewhere they mean none."""
+    reference.show(answer(3.0))
+    reference.view.grab()
+    (words,) = (words for words in reference.marks.words if words.plant)
+    wanted: list[str] = []
+    reference.plant_wanted.connect(wanted.append)
+    place = _place_of(reference, words)
+    for at in (QPointF(place), QPointF(2.0, 2.0)):
+        QTest.mouseMove(reference.view.viewport(), at.toPoint())
+        QTest.mouseClick(reference.view.viewport(), Qt.MouseButton.LeftButton, pos=at.toPoint())
+    assert wanted == [words.plant]
+
+
+def test_the_family_is_shown_as_chosen(reference: ReferencePanel) -> None:
+    """Band and curves, one of them, or neither; then the height is that of the plant alone."""
+    shown = answer(3.0)
+    found = []
+    for view in ("both", "band", "curves", "none"):
+        reference.show(replace(shown, family_view=view))
+        found.append((bool(reference.band.xData.size), bool(reference.family.xData.size)))
+    assert found == [(True, True), (True, False), (False, True), (False, False)]
+
+
+def test_the_effort_has_its_band_and_its_worst_plant(effort: EffortPanel) -> None:
+    """As the output has."""
+    effort.show(answer(3.0))
+    assert effort.band.xData.size
+    assert effort.worst.xData.size
+    assert effort.second.xData.size
+
+
+def test_ranges_wait_for_the_whole_answer(reference: ReferencePanel) -> None:
+    """After the hand is off, a quick answer beside an old family narrows nothing, the whole one all."""
+    reference.show(answer(3.4))
+    wide = reference.ranges()[1]
+    reference.show(answer(0.5, whole=False))
+    assert reference.ranges()[1] == wide
+    reference.show(answer(0.5))
+    assert reference.ranges()[1].span < wide.span
+
+
+def _place_of(panel: TracePanel, words: Words) -> QPointF:
+    """Return the middle of words that stand in a plot, in its pixels."""
+    place = panel.marks.deviceTransform(panel.view.viewportTransform())
+    placed = panel.marks._placed(place, place.mapRect(panel.marks.boundingRect()))
+    (box,) = (box for word, box in placed if word == words)
+    return QPointF(0.5 * (box.left + box.right), 0.5 * (box.top + box.bottom))
 
 
 def _with_reference(shown: Shown, trace: Trace) -> Shown:

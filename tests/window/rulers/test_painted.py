@@ -184,7 +184,7 @@ def answer(curves: Assessor, *, whole: bool) -> None:
 def test_the_curves_of_a_change_go_first(
     document: Document, panel: RulerPanel, worker: Asked, curves: Assessor, monkeypatch: pytest.MonkeyPatch
 ) -> None:
-    """The first verdict wakes the rulers; then each change waits until its first curves, or none, came."""
+    """The first verdict wakes the rulers; then each change waits until all its curves, or none, came."""
     monkeypatch.setattr(painted, "PATIENCE", 1_000_000)
     kept = PaintedRulers(document, panel, worker)
     kept.let_pass(curves)
@@ -196,6 +196,7 @@ def test_the_curves_of_a_change_go_first(
     QApplication.processEvents()
     assert len(worker.requests) == 1
     answer(curves, whole=False)
+    assert len(worker.requests) == 1
     answer(curves, whole=True)
     assert [request.sheet.controller.gain_1 for request in worker.requests] == [3.0, 4.0]
     document.change_value("kp", 5.0)

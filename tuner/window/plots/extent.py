@@ -12,8 +12,8 @@ from tuner.window.plots.ticks import nice_step
 Array = NDArray[np.float64]
 
 _PADDING = 0.06
-_TOO_WIDE = 0.62
-"""A range is narrowed when what is wanted fills less than this share of it."""
+_FULL = 0.85
+"""A range that is filled at least so far stays as it is."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -36,6 +36,10 @@ class Extent:
         """Return the part inside `bounds`."""
         clip = np.clip([self.low, self.high], bounds.low, bounds.high)
         return Extent(float(clip[0]), float(clip[1]))
+
+    def nearest(self, value: float) -> float:
+        """Return the place inside that is nearest to a value."""
+        return min(max(value, self.low), self.high)
 
     def grown(self, share: float) -> "Extent":
         """Return it with `share` of its length added at both ends."""
@@ -98,7 +102,7 @@ class SteadyExtent:
             self.shown = padded
         elif held:
             self.shown = now if now.holds(asked) else now.hull(padded)
-        elif not now.holds(asked) or padded.span < _TOO_WIDE * now.span:
+        elif not now.holds(asked) or padded.span < _FULL * now.span:
             self.shown = padded
         return self.shown if self.shown is not None else padded
 

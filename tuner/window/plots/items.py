@@ -11,6 +11,7 @@ from PySide6.QtCore import QRectF, Qt
 from PySide6.QtGui import QColor, QPainter, QTransform
 from PySide6.QtWidgets import QStyleOptionGraphicsItem, QWidget
 
+from tuner.window.plots.still import StillPicture
 from tuner.window.plots.thinning import Points
 
 _STRONG = ((-0.4, -0.4), (0.4, 0.4), (-0.4, 0.4), (0.4, -0.4))
@@ -29,6 +30,7 @@ class Curve(pg.PlotCurveItem):  # type: ignore[misc]  # pyqtgraph publishes no t
     """
 
     def __init__(self, *, strong: bool = False, smooth: bool = True, depth: float = 0.0) -> None:
+        self._still: StillPicture | None = None
         super().__init__(antialias=smooth, skipFiniteCheck=True)
         self._offsets = _STRONG if strong else _PLAIN
         self._bounds = QRectF()
@@ -41,6 +43,11 @@ class Curve(pg.PlotCurveItem):  # type: ignore[misc]  # pyqtgraph publishes no t
         if colour != self._colour:
             self._colour = colour
             self.setPen(pen(colour))
+
+    def join(self, still: StillPicture) -> None:
+        """Become part of a picture of what stays while others move."""
+        self._still = still
+        still.add(self)
 
     def show_points(self, points: Points) -> None:
         """Show the points of a curve, or of several joined by their connect array."""
@@ -62,7 +69,26 @@ class Curve(pg.PlotCurveItem):  # type: ignore[misc]  # pyqtgraph publishes no t
         """Return where the points lie, with room for the stroke; found once for each curve, not at every question."""
         return self._bounds
 
+    def update(self, *area: QRectF) -> None:
+        """Be painted anew, with the picture if it is part of one."""
+        if self._still is not None:
+            self._still.forget()
+        super().update(*area)
+
     def paint(self, painter: QPainter, option: QStyleOptionGraphicsItem, widget: QWidget | None) -> None:
+        """Paint the stroke, unless it is part of a picture."""
+        if self._still is None:
+            self._paint_strokes(painter, option, widget)
+
+    def paint_still(self, painter: QPainter) -> None:
+        """Paint the stroke into the picture."""
+        self._paint_strokes(painter, QStyleOptionGraphicsItem(), None)
+
+    def clip(self) -> QRectF | None:
+        """Return the frame of the plot."""
+        return QRectF(self.getViewBox().sceneBoundingRect())
+
+    def _paint_strokes(self, painter: QPainter, option: QStyleOptionGraphicsItem, widget: QWidget | None) -> None:
         """Paint the stroke, several times when it is a strong one."""
         if self.xData is None or not len(self.xData):
             return
@@ -73,16 +99,65 @@ class Curve(pg.PlotCurveItem):  # type: ignore[misc]  # pyqtgraph publishes no t
         painter.setWorldTransform(place)
 
 
-class Poles(pg.ScatterPlotItem):  # type: ignore[misc]  # pyqtgraph publishes no types
-    """Poles as crosses."""
+class Axis(pg.AxisItem):  # type: ignore[misc]  # pyqtgraph publishes no types
+    """An axis that is part of a picture."""
 
-    def __init__(self, *, size: int, depth: float) -> None:
-        super().__init__(symbol="x", size=size, pxMode=True, useCache=True)
+    def __init__(self, side: str, still: StillPicture) -> None:
+        self._still = still
+        super().__init__(side)
+
+    def update(self, *area: QRectF) -> None:
+        """Be painted anew, with the picture."""
+        self._still.forget()
+        super().update(*area)
+
+    def paint(self, _painter: QPainter, _option: QStyleOptionGraphicsItem, _widget: QWidget | None) -> None:
+        """Paint nothing: it is in the picture."""
+
+    def paint_still(self, painter: QPainter) -> None:
+        """Paint the axis into the picture."""
+        super().paint(painter, None, None)
+
+    def clip(self) -> QRectF | None:
+        """Return no frame: numbers stand out beyond the axis."""
+        return None
+
+
+class Poles(pg.ScatterPlotItem):  # type: ignore[misc]  # pyqtgraph publishes no types
+    """Poles as crosses, or marked by rings around them."""
+
+    def __init__(self, *, size: int, depth: float, rings: bool = False) -> None:
+        self._still: StillPicture | None = None
+        super().__init__(symbol="o" if rings else "x", size=size, pxMode=True, useCache=True)
         self.setZValue(depth)
 
     def show_poles(self, re: np.ndarray, im: np.ndarray, colour: QColor, width: float) -> None:
-        """Show crosses at real and imaginary parts."""
+        """Show them at real and imaginary parts."""
         self.setData(re, im, pen=pg.mkPen(colour, width=width), brush=None)
+
+    def join(self, still: StillPicture) -> None:
+        """Become part of a picture of what stays while others move."""
+        self._still = still
+        still.add(self)
+
+    def update(self, *area: QRectF) -> None:
+        """Be painted anew, with the picture if they are part of one."""
+        if self._still is not None:
+            self._still.forget()
+        super().update(*area)
+
+    def paint(self, painter: QPainter, option: QStyleOptionGraphicsItem, widget: QWidget | None) -> None:
+        """Paint them, unless they are part of a picture."""
+        if self._still is None:
+            super().paint(painter, option, widget)
+
+    def paint_still(self, painter: QPainter) -> None:
+        """Paint them into the picture."""
+        super().paint(painter, None, self.getViewWidget())
+
+    def clip(self) -> QRectF | None:
+        """Return the frame of the plot."""
+        return QRectF(self.getViewBox().sceneBoundingRect())
 
 
 def _bounds(points: Points) -> QRectF:

@@ -1,6 +1,6 @@
 """Layers below and above the curves: areas and grid lines, and strokes and words, painted in pixels."""
 
-from collections.abc import Iterable
+from collections.abc import Iterable, Iterator
 from math import isinf
 
 import pyqtgraph as pg
@@ -10,6 +10,7 @@ from PySide6.QtWidgets import QStyleOptionGraphicsItem, QWidget
 
 from tuner.window.plots.marks import Area, Marks, Stroke, Words
 from tuner.window.plots.placing import Box, place_words
+from tuner.window.plots.still import StillPicture
 from tuner.window.theme import Theme
 
 _GAP = 4.0
@@ -23,7 +24,6 @@ class Layer(pg.GraphicsObject):  # type: ignore[misc]  # pyqtgraph publishes no 
     def __init__(self, view: pg.ViewBox, theme: Theme, depth: float) -> None:
         super().__init__()
         self._theme = theme
-        self._rect = QRectF()
         self.setZValue(depth)
         view.addItem(self, ignoreBounds=True)
         view.sigRangeChanged.connect(self._view_changed)
@@ -35,6 +35,10 @@ class Layer(pg.GraphicsObject):  # type: ignore[misc]  # pyqtgraph publishes no 
         return QRectF(self._view.viewRect())
 
     def paint(self, painter: QPainter, _option: QStyleOptionGraphicsItem, _widget: QWidget | None) -> None:
+        """Paint in pixels."""
+        self.paint_pixels(painter)
+
+    def paint_pixels(self, painter: QPainter) -> None:
         """Turn to pixels and paint."""
         place = painter.worldTransform()
         frame = place.mapRect(self.boundingRect())
@@ -54,13 +58,41 @@ class Layer(pg.GraphicsObject):  # type: ignore[misc]  # pyqtgraph publishes no 
 
 
 class GroundLayer(Layer):
-    """Areas, then grid lines, below the curves."""
+    """Areas, then grid lines, below the curves; it is part of a picture."""
 
-    def __init__(self, view: pg.ViewBox, theme: Theme) -> None:
+    def __init__(self, view: pg.ViewBox, theme: Theme, still: StillPicture) -> None:
+        self._still = still
         super().__init__(view, theme, -100.0)
-        self.areas: tuple[Area, ...] = ()
+        self._areas: tuple[Area, ...] = ()
         self.columns: tuple[float, ...] = ()
         self.rows: tuple[float, ...] = ()
+
+    @property
+    def areas(self) -> tuple[Area, ...]:
+        """The areas."""
+        return self._areas
+
+    @areas.setter
+    def areas(self, areas: tuple[Area, ...]) -> None:
+        if areas != self._areas:
+            self._areas = areas
+            self.update()
+
+    def update(self, *area: QRectF) -> None:
+        """Be painted anew, with the picture."""
+        self._still.forget()
+        super().update(*area)
+
+    def paint(self, painter: QPainter, _option: QStyleOptionGraphicsItem, _widget: QWidget | None) -> None:
+        """Paint nothing: it is in the picture."""
+
+    def paint_still(self, painter: QPainter) -> None:
+        """Paint into the picture."""
+        self.paint_pixels(painter)
+
+    def clip(self) -> QRectF | None:
+        """Return no frame: the layer finds its own."""
+        return None
 
     def draw(self, painter: QPainter, place: QTransform, frame: QRectF) -> None:
         """Paint the areas and the grid."""
@@ -101,16 +133,32 @@ class MarkLayer(Layer):
             self._draw_pointer(painter, _pixel(*self.pointer, place, frame), frame)
 
     def _draw_words(self, painter: QPainter, place: QTransform, frame: QRectF) -> None:
-        painter.setFont(self._theme.font("small"))
-        boxes = [_box(word, self._size(word.text), _pixel(word.x, word.y, place, frame)) for word in self.words]
-        seen = Box(frame.left(), frame.top(), frame.right(), frame.bottom())
+        plain, pressed = self._theme.font("small"), self._theme.font("small")
+        pressed.setUnderline(True)
         ground = self._theme.colour("page")
         ground.setAlpha(200)
+        for word, box in self._placed(place, frame):
+            painter.setFont(pressed if word.plant else plain)
+            painter.fillRect(QRectF(box.left, box.top, box.width, box.height), ground)
+            painter.setPen(self._theme.colour(word.role))
+            painter.drawText(QPointF(box.left, box.top + self._metrics.ascent()), word.text)
+
+    def plant_at(self, at: QPointF) -> str:
+        """Return the plant that the words at a pixel of the plot name; '' where there are none to press."""
+        view = self.getViewWidget()
+        if view is None:
+            return ""
+        place = self.deviceTransform(view.viewportTransform())
+        placed = self._placed(place, place.mapRect(self.boundingRect()))
+        return next((word.plant for word, box in placed if word.plant and box.holds(at.x(), at.y())), "")
+
+    def _placed(self, place: QTransform, frame: QRectF) -> Iterator[tuple[Words, Box]]:
+        """Yield the words that have room, and where."""
+        boxes = [_box(word, self._size(word.text), _pixel(word.x, word.y, place, frame)) for word in self.words]
+        seen = Box(frame.left(), frame.top(), frame.right(), frame.bottom())
         for word, box in zip(self.words, place_words(boxes, seen), strict=True):
             if box is not None:
-                painter.fillRect(QRectF(box.left, box.top, box.width, box.height), ground)
-                painter.setPen(self._theme.colour(word.role))
-                painter.drawText(QPointF(box.left, box.top + self._metrics.ascent()), word.text)
+                yield word, box
 
     def _size(self, text: str) -> QSizeF:
         """Return the size of words; measured once, since the same ones come with every answer."""

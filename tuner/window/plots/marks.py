@@ -44,7 +44,7 @@ class Stroke:
 
 @dataclass(frozen=True, slots=True)
 class Words:
-    """Words at a place: to the left or right of it, above or below."""
+    """Words at a place: to the left or right of it, above or below; with a plant, pressing them looks at it."""
 
     x: float
     y: float
@@ -52,6 +52,7 @@ class Words:
     role: str
     anchor: Anchor = "right"
     side: Side = "above"
+    plant: str = ""
 
 
 @dataclass(frozen=True, slots=True)

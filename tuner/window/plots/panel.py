@@ -1,16 +1,18 @@
 """One plot with its words: a title, the axis in words, what is missed here, and what the pointer reads."""
 
 from collections.abc import Sequence
-from typing import ClassVar
+from typing import ClassVar, Protocol
 
 import pyqtgraph as pg
-from PySide6.QtCore import QEvent, QObject, QPointF, Qt, Signal
-from PySide6.QtGui import QContextMenuEvent, QFocusEvent, QKeyEvent, QResizeEvent
+from PySide6.QtCore import QEvent, QObject, QPointF, QRectF, Qt, Signal
+from PySide6.QtGui import QContextMenuEvent, QFocusEvent, QKeyEvent, QPainter, QResizeEvent
 from PySide6.QtWidgets import QHBoxLayout, QSizePolicy, QVBoxLayout, QWidget
 
 from tuner.window.elided import ElidedLabel, RoleLabel
 from tuner.window.plots.extent import Extent
+from tuner.window.plots.items import Axis
 from tuner.window.plots.layers import GroundLayer, MarkLayer
+from tuner.window.plots.still import StillPicture
 from tuner.window.plots.ticks import Tick, ticks
 from tuner.window.shown import Shown
 from tuner.window.theme import Theme
@@ -20,6 +22,18 @@ _BOTTOM_AXIS = 22
 _OVERHANG = 24
 """Pixels that the numbers at the ends of an axis may stand out beyond it."""
 _TICK_WIDTH, _TICK_HEIGHT = 80, 28
+
+
+class Click(Protocol):
+    """A press of the mouse, as the scene tells it."""
+
+    def button(self) -> Qt.MouseButton:
+        """Return which button."""
+        ...
+
+    def scenePos(self) -> QPointF:
+        """Return where in the scene."""
+        ...
 
 
 class PlotView(pg.PlotWidget):  # type: ignore[misc]  # pyqtgraph publishes no types
@@ -40,7 +54,9 @@ class PlotView(pg.PlotWidget):  # type: ignore[misc]  # pyqtgraph publishes no t
     }
 
     def __init__(self, name: str) -> None:
-        super().__init__(enableMenu=False)
+        self.still = StillPicture(self)
+        self.axes = Axis("left", self.still), Axis("bottom", self.still)
+        super().__init__(enableMenu=False, axisItems=dict(zip(("left", "bottom"), self.axes, strict=True)))
         item = self.getPlotItem()
         item.hideButtons()
         item.disableAutoRange()
@@ -52,17 +68,24 @@ class PlotView(pg.PlotWidget):  # type: ignore[misc]  # pyqtgraph publishes no t
         # Every answer changes the whole picture, so that finding out what changed is time lost.
         self.setViewportUpdateMode(self.ViewportUpdateMode.FullViewportUpdate)
         self.scene().setItemIndexMethod(self.scene().ItemIndexMethod.NoIndex)
+        # The picture of what stays is our own: Qt's would be too coarse for pictures of twice the size.
+        self.setCacheMode(self.CacheModeFlag.CacheNone)
         self.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
         # It covers its whole ground itself; without this Qt paints the ground of every parent first.
         self.viewport().setAttribute(Qt.WidgetAttribute.WA_OpaquePaintEvent)
         self.viewport().setFocusPolicy(Qt.FocusPolicy.NoFocus)
         self.setAccessibleName(name)
+        self.is_pointing = False
+
+    def drawBackground(self, painter: QPainter, _area: QRectF) -> None:
+        """Lay down what stays."""
+        self.still.draw(painter)
 
     def keyPressEvent(self, event: QKeyEvent) -> None:
-        """Move the pointer by the keys, and let it go with Escape."""
+        """Move the pointer by the keys, and let it go with Escape, which means something else where there is none."""
         if event.key() in self._STEPS:
             self.stepped.emit(self._STEPS[Qt.Key(event.key())])
-        elif event.key() == Qt.Key.Key_Escape:
+        elif event.key() == Qt.Key.Key_Escape and self.is_pointing:
             self.left.emit()
         else:
             event.ignore()
@@ -104,6 +127,8 @@ class Panel(QObject):
     """
 
     menu_wanted = Signal(object)
+    plant_wanted = Signal(str)
+    """A plant of the family is to be looked at: its name was pressed."""
 
     def __init__(self, name: str, theme: Theme) -> None:
         super().__init__()
@@ -116,7 +141,9 @@ class Panel(QObject):
         self._divided: tuple[object, ...] = ()
         self.view = PlotView(name)
         box = self.view.getPlotItem().getViewBox()
-        self.ground = GroundLayer(box, theme)
+        self.ground = GroundLayer(box, theme, self.view.still)
+        for item in (self.ground, *self.view.axes):
+            self.view.still.add(item)
         self.marks = MarkLayer(box, theme)
         self.widget = self._arranged()
         self._connect()
@@ -290,6 +317,7 @@ class Panel(QObject):
         self.view.menu_wanted.connect(self.menu_wanted)
         self.view.whole_wanted.connect(self.show_whole)
         self.view.scene().sigMouseMoved.connect(self._pointed)
+        self.view.scene().sigMouseClicked.connect(self._clicked)
         box = self.view.getPlotItem().getViewBox()
         box.sigRangeChangedManually.connect(self._looked_closer)
 
@@ -305,6 +333,17 @@ class Panel(QObject):
         box = self.view.getPlotItem().getViewBox()
         place = box.mapSceneToView(at)
         self._point(self.read(place.x(), place.y()) if box.sceneBoundingRect().contains(at) else None)
+        shape = Qt.CursorShape.PointingHandCursor if self._plant_at(at) else Qt.CursorShape.ArrowCursor
+        if self.view.viewport().cursor().shape() != shape:
+            self.view.viewport().setCursor(shape)
+
+    def _clicked(self, event: Click) -> None:
+        """Ask for the plant whose name was pressed."""
+        if event.button() == Qt.MouseButton.LeftButton and (plant := self._plant_at(event.scenePos())):
+            self.plant_wanted.emit(plant)
+
+    def _plant_at(self, at: QPointF) -> str:
+        return self.marks.plant_at(QPointF(self.view.mapFromScene(at)))
 
     def _step(self, steps: int) -> None:
         if (at := self.step(steps)) is not None:
@@ -314,6 +353,7 @@ class Panel(QObject):
         """Show what is read at a point of the plot, in the header and to a screen reader."""
         self.view.setAccessibleDescription(found[1] if found else "")
         self.marks.pointer = found[0] if found else None
+        self.view.is_pointing = found is not None
         self.marks.update()
         self._axis.setVisible(found is None)
         self._readout.setVisible(found is not None)

@@ -32,6 +32,10 @@ class Box:
         across = self.left < other.right and other.left < self.right
         return across and self.top < other.bottom and other.top < self.bottom
 
+    def holds(self, x: float, y: float) -> bool:
+        """Tell whether a point lies inside."""
+        return self.left <= x <= self.right and self.top <= y <= self.bottom
+
     def within(self, frame: "Box") -> "Box":
         """Return it moved as little as it takes to lie inside the frame; its left and top win when it is too large."""
         x = max(min(0.0, frame.right - self.right), frame.left - self.left)

@@ -1,15 +1,17 @@
 """The pole map: closed-loop poles of the whole family, with the regions that the limits leave them."""
 
+from dataclasses import dataclass
 from math import pi
 
 import numpy as np
 from numpy.typing import NDArray
 from PySide6.QtGui import QColor
 
-from tuner.judge.wording import quantity
+from tuner.judge.wording import number, quantity
 from tuner.simulate.traces import ComplexArray
 from tuner.window.plots.extent import Extent, SteadyExtent
 from tuner.window.plots.items import Poles
+from tuner.window.plots.lines import drift_words
 from tuner.window.plots.marks import Marks, Words, pole_marks
 from tuner.window.plots.panel import Panel
 from tuner.window.plots.words import missed_words
@@ -23,6 +25,31 @@ _REACH = 12.0
 """Pixels within which the pointer means a pole."""
 
 
+@dataclass(frozen=True, slots=True, eq=False)
+class Least:
+    """The pair of poles of the family that is damped least, in words, and its plant if another one is looked at."""
+
+    pair: ComplexArray
+    words: str
+    plant: str
+
+
+def least_damped(shown: Shown) -> Least | None:
+    """Return the pair of poles that has the worst damping of the family; None where none rings."""
+    worst = shown.assessment.worst.get("damping")
+    members = [member for member in shown.assessment.members if worst is not None and member.name == worst.plant]
+    if not members or worst is None or worst.value is None or worst.value >= 1.0:
+        return None
+    poles = members[0].poles[members[0].poles.imag > 0.0]
+    if not poles.size:
+        return None
+    pole = complex(poles[np.abs(-poles.real / np.abs(poles) - worst.value).argmin()])
+    is_seen = members[0] is shown.assessment.nominal
+    whose = "" if is_seen else f": {drift_words(members[0])}"
+    words = f"least damping {number(worst.value, 3)}{whose}".replace("-", "\u2212")
+    return Least(np.array([pole, pole.conjugate()]), words, "" if is_seen else members[0].name)
+
+
 class PolePanel(Panel):
     """The pole map; each axis has its own scale, so that slow poles are told apart in a wide plot."""
 
@@ -34,24 +61,30 @@ class PolePanel(Panel):
         self._drawn: tuple[ComplexArray, QColor] | None = None
         self.family = Poles(size=7, depth=-10.0)
         self.nominal = Poles(size=10, depth=120.0)
+        self.least = Poles(size=16, depth=121.0, rings=True)
+        self._least: Least | None = None
         super().__init__(name, theme)
         self.view.addItem(self.family, ignoreBounds=True)
         self.view.addItem(self.nominal, ignoreBounds=True)
+        self.view.addItem(self.least, ignoreBounds=True)
+        self.family.join(self.view.still)
 
     def draw(self, shown: Shown) -> None:
         """Take over the poles; until the whole family is known, its last poles stay."""
         members = shown.assessment.members
         self._nominal = members[0].poles
         if shown.whole:
-            others = [member.poles for member in members[1:]]
+            others = [member.poles for member in members[1:]] if shown.family_view != "none" else []
             self._family = np.concatenate(others) if others else np.empty(0, dtype=np.complex128)
+            self._least = least_damped(shown)
             missed, bad = missed_words(shown, ("poles", "frequency"))
             unit = shown.sheet.loop.time_unit
             self.set_words(f"real part, 1/{unit}; imaginary part, rad/{unit}", missed, bad=bad)
         self._marks = pole_marks(shown.sheet, shown.overlay)
         if (asked := self.ask()) is not None:
-            across = self._across.offer(asked[0], held=self.held)
-            self.set_ranges(across, self._upwards.offer(asked[1], held=self.held))
+            held = self.held or not shown.whole
+            across = self._across.offer(asked[0], held=held)
+            self.set_ranges(across, self._upwards.offer(asked[1], held=held))
         self.redraw()
 
     def ask(self) -> tuple[Extent, Extent] | None:
@@ -76,6 +109,8 @@ class PolePanel(Panel):
             self._drawn = (self._family, colour)
             _show(self.family, self._family, colour, 1.5)
         _show(self.nominal, self._nominal, self._theme.colour("kept" if self.stale else "nominal"), 2.0)
+        ringed = self._least.pair if self._least is not None else np.empty(0, dtype=np.complex128)
+        _show(self.least, ringed, self._theme.colour("kept" if self.stale else "limit"), 1.5)
         self.ground.areas = self._marks.areas
         self.divide(f"1/{self.shown.sheet.loop.time_unit}", time=False)
         self.marks.show_marks(self._seen_marks(), self._names())
@@ -105,6 +140,7 @@ class PolePanel(Panel):
         """Forget ranges and poles."""
         super().forget()
         self._family = np.empty(0, dtype=np.complex128)
+        self._least = None
         self._across.forget()
         self._upwards.forget()
 
@@ -128,6 +164,11 @@ class PolePanel(Panel):
         if beyond:
             count = "one faster pole" if beyond == 1 else f"{beyond} faster poles"
             words.append(Words(across.low, 0.0, f"← {count} further left", "nominal_word", "left", "above"))
+        if (least := self._least) is not None:
+            at = across.nearest(least.pair[0].real), upwards.nearest(least.pair[0].imag)
+            is_seen = at == (least.pair[0].real, least.pair[0].imag)
+            said = least.words if is_seen else f"{least.words}, out of sight"
+            words.append(Words(*at, said, "limit_word", "left", "above" if is_seen else "below", least.plant))
         return words
 
 

@@ -45,15 +45,20 @@ def thinned(t: Array, curves: Array, bins: int) -> tuple[Array, Array]:
     padded[:, :length], padded[:, length:] = curves, curves[:, -1:]
     padded = padded.reshape(count, pieces, size)
     lowest, highest = padded.argmin(axis=2), padded.argmax(axis=2)
-    within = np.sort(np.stack((lowest, highest), axis=2), axis=2)
-    index = np.minimum(within + size * np.arange(pieces)[None, :, None], length - 1).reshape(count, 2 * pieces)
+    within = np.empty((count, pieces, 2), dtype=np.intp)
+    np.minimum(lowest, highest, out=within[:, :, 0])
+    np.maximum(lowest, highest, out=within[:, :, 1])
+    within += size * np.arange(pieces)[:, None]
+    index = np.minimum(within.reshape(count, 2 * pieces), length - 1)
     index[:, 0], index[:, -1] = 0, length - 1
-    return t[index], np.take_along_axis(curves, index, axis=1)
+    return t.take(index), curves.take(index + length * np.arange(count)[:, None])
 
 
 def clipped(values: Array, seen: Extent) -> Array:
     """Return values that never leave the picture by more than its own height; what is not a number lies at its top."""
     bounds = seen.grown(1.0)
+    if values.size and bounds.low <= values.min() and values.max() <= bounds.high:
+        return values
     return np.fmax(np.fmin(values, bounds.high), bounds.low)
 
 
@@ -74,13 +79,21 @@ def bundle(t: Array, curves: Array, seen: Extent, bins: int) -> Points:
 
 
 def envelope(t: Array, curves: Array, seen: Extent, columns: int) -> Points:
-    """Return the ground that curves cover, as one vertical stroke for each column of pixels."""
+    """Return the ground that curves cover, as one vertical stroke for each column of pixels.
+
+    A stroke reaches as low and as high as any curve does up to the next one, so that no peak between two is left out.
+    """
     if not curves.size:
         return Points(np.empty(0), np.empty(0))
     at = np.linspace(t[0], t[-1], max(columns, 2))
-    low = np.interp(at, t, clipped(np.fmin.reduce(curves, axis=0), seen))
-    high = np.interp(at, t, clipped(np.fmax.reduce(curves, axis=0), seen))
-    return Points(np.repeat(at, 2), np.column_stack((low, high)).ravel())
+    low = clipped(np.fmin.reduce(curves, axis=0), seen)
+    high = clipped(np.fmax.reduce(curves, axis=0), seen)
+    lowest, highest = np.interp(at, t, low), np.interp(at, t, high)
+    if t.size > at.size:
+        start = np.searchsorted(t, at)
+        lowest = np.minimum(lowest, np.minimum.reduceat(low, start))
+        highest = np.maximum(highest, np.maximum.reduceat(high, start))
+    return Points(np.repeat(at, 2), np.column_stack((lowest, highest)).ravel())
 
 
 def staircase(t: Array, u: Array, end: float) -> tuple[Array, Array]:

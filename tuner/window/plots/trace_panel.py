@@ -1,23 +1,34 @@
 """The plots over time: the reference step, the disturbance, and the effort of both runs."""
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 from numpy.typing import NDArray
 from PySide6.QtGui import QColor
 
 from tuner.judge.assessment import MemberResult
-from tuner.judge.overlay import PLOT_OF, Plot
-from tuner.judge.wording import quantity, shortfall
+from tuner.judge.overlay import Plot
+from tuner.judge.wording import quantity
 from tuner.model.sheet import Sheet
 from tuner.simulate.traces import Trace
 from tuner.window.plots import thinning
 from tuner.window.plots.extent import Extent, SteadyExtent, wanted
 from tuner.window.plots.items import Curve
-from tuner.window.plots.marks import Marks, Words, trace_marks
+from tuner.window.plots.lines import (
+    Family,
+    Limited,
+    Line,
+    Lines,
+    effort_corners,
+    family_of_curves,
+    limited_pieces,
+    looked_at_words,
+    worst_line,
+)
+from tuner.window.plots.marks import Marks, Side, Words, trace_marks
 from tuner.window.plots.panel import Panel
 from tuner.window.plots.words import missed_words
-from tuner.window.shown import Shown
+from tuner.window.shown import FamilyView, Shown
 from tuner.window.theme import Theme
 
 Array = NDArray[np.float64]
@@ -30,40 +41,11 @@ _BEFORE = 0.02
 
 
 @dataclass(frozen=True, slots=True, eq=False)
-class Line:
-    """A curve to draw: its corners, and what it is called where it runs."""
-
-    t: Array
-    values: Array
-    name: str = ""
-
-
-@dataclass(frozen=True, slots=True, eq=False)
-class Limited:
-    """The pieces of the effort that a limit holds: all corners of its curve, and which join the next one."""
-
-    t: Array
-    values: Array
-    connect: NDArray[np.int32]
-
-
-@dataclass(frozen=True, slots=True, eq=False)
-class Lines:
-    """The curves of one plot: the nominal plant's, those of the family over shared times, and of kept tunings."""
-
-    nominal: Line
-    family_t: Array
-    family: Array
-    kept: tuple[Line, ...] = ()
-    second: Line | None = None
-    limited: Limited | None = None
-
-
-@dataclass(frozen=True, slots=True, eq=False)
 class _Drawn:
     """What a family was drawn from, and for which picture."""
 
-    family: Array
+    family: Family
+    view: FamilyView
     seen: Extent
     columns: int
     shade: str
@@ -72,15 +54,13 @@ class _Drawn:
         """Tell whether the picture would be the same."""
         if other is None or other.family is not self.family:
             return False
-        return (other.seen, other.columns, other.shade) == (self.seen, self.columns, self.shade)
+        return (other.view, other.seen, other.columns, other.shade) == (self.view, self.seen, self.columns, self.shade)
 
 
 class TracePanel(Panel):
     """A plot over time; subclasses say which curves."""
 
     plot: Plot
-    second_role = "disturbance"
-    """Role of the colour of the second curve."""
 
     def __init__(self, name: str, theme: Theme) -> None:
         self._lines: Lines | None = None
@@ -90,12 +70,15 @@ class TracePanel(Panel):
         self.band = Curve(smooth=False, depth=-50.0)
         self.family = Curve(smooth=False, depth=-40.0)
         self.kept: list[Curve] = []
+        self.worst = Curve(depth=-15.0)
         self.second = Curve(depth=-10.0)
         self.nominal = Curve(strong=True, depth=0.0)
         self.limited = Curve(strong=True, depth=10.0)
         super().__init__(name, theme)
-        for curve in (self.band, self.family, self.second, self.nominal, self.limited):
+        for curve in (self.band, self.family, self.worst, self.second, self.nominal, self.limited):
             self.view.addItem(curve, ignoreBounds=True)
+        for curve in (self.band, self.family):
+            curve.join(self.view.still)
 
     # What subclasses say ----------------------------------------------------------------------------------------
 
@@ -121,19 +104,12 @@ class TracePanel(Panel):
         """Take over the curves; until the whole family is known, its last curves stay."""
         previous, self._lines = self._lines, self.lines(shown)
         if not shown.whole and previous is not None:
-            self._lines = Lines(
-                self._lines.nominal,
-                previous.family_t,
-                previous.family,
-                self._lines.kept,
-                self._lines.second,
-                self._lines.limited,
-            )
+            self._lines = replace(self._lines, family=previous.family, worst=previous.worst)
         self._marks = trace_marks(self.plot, shown.sheet, shown.overlay)
         missed, bad = missed_words(shown, (self.plot,))
         self.set_words(self.axis_words(shown.sheet), missed, bad=bad) if shown.whole else None
         if (asked := self.ask()) is not None:
-            self.set_ranges(asked[0], self._steady.offer(asked[1], held=self.held))
+            self.set_ranges(asked[0], self._steady.offer(asked[1], held=self.held or not shown.whole))
         self.redraw()
 
     def ask(self) -> tuple[Extent, Extent] | None:
@@ -142,9 +118,9 @@ class TracePanel(Panel):
             return None
         duration = self.shown.sheet.trial.duration
         fixed = Extent(0.0, 0.0).hull(self._marks.levels())
-        others = [self._lines.family, *(line.values for line in self._lines.kept)]
-        if self._lines.second is not None:
-            others.append(self._lines.second.values)
+        family = self._lines.family.values if self.shown.family_view != "none" else np.empty(0)
+        lines = (*self._lines.kept, self._lines.second, self._lines.worst)
+        others = [family, *(line.values for line in lines if line is not None)]
         calm = self.shown.assessment.nominal.stable
         return Extent(-_BEFORE * duration, duration), wanted(self._lines.nominal.values, others, fixed, calm=calm)
 
@@ -153,10 +129,11 @@ class TracePanel(Panel):
         if self._lines is None or self.shown is None:
             return
         seen, columns = self.ranges()[1], self.columns()
-        self._draw_family(self._lines, seen, columns)
+        self._draw_family(self._lines.family, self.shown.family_view, seen, columns)
         self._draw_kept(self._lines, seen, columns)
         self._draw_line(self.nominal, self._lines.nominal, "nominal", seen, columns)
-        self._draw_line(self.second, self._lines.second, self.second_role, seen, columns)
+        self._draw_line(self.second, self._lines.second, "disturbance", seen, columns)
+        self._draw_line(self.worst, self._lines.worst, "limit", seen, columns)
         self._draw_limited(self._lines.limited, seen)
         self.ground.areas = self._marks.areas
         sheet = self.shown.sheet
@@ -198,16 +175,16 @@ class TracePanel(Panel):
     def _colour(self, role: str) -> QColor:
         return self._theme.colour("kept" if self.stale else role)
 
-    def _draw_family(self, lines: Lines, seen: Extent, columns: int) -> None:
+    def _draw_family(self, family: Family, view: FamilyView, seen: Extent, columns: int) -> None:
         """Draw the family, unless it is drawn already: a first answer leaves it as it was."""
-        drawn = _Drawn(lines.family, seen, columns, self._theme.palette.shade)
+        drawn = _Drawn(family, view, seen, columns, self._theme.palette.shade)
         if drawn.same_as(self._drawn):
             return
         self._drawn = drawn
         self.band.set_colour(self._theme.colour("band"))
         self.family.set_colour(self._theme.colour("family"))
-        self.band.show_pairs(thinning.envelope(lines.family_t, lines.family, seen, columns * 3 // 2))
-        self.family.show_points(thinning.bundle(lines.family_t, lines.family, seen, min(_FAMILY_BINS, columns // 2)))
+        self.band.show_pairs(thinning.envelope(family.t, family.ground(view), seen, columns * 3 // 2))
+        self.family.show_points(thinning.bundle(family.t, family.curves(view), seen, min(_FAMILY_BINS, columns // 2)))
 
     def _draw_kept(self, lines: Lines, seen: Extent, columns: int) -> None:
         while len(self.kept) < len(lines.kept):
@@ -233,7 +210,8 @@ class TracePanel(Panel):
     def _names(self, lines: Lines, seen: Extent) -> list[Words]:
         """Return the names of the curves, each where it runs."""
         named = [(lines.nominal, "nominal_word", 0.55)]
-        named += [(lines.second, f"{self.second_role}_word", 0.3)] if lines.second is not None else []
+        named += [(lines.second, "disturbance_word", 0.3)] if lines.second is not None else []
+        named += [(lines.worst, "limit_word", 0.3)] if lines.worst is not None else []
         named += [(line, "kept_word", 0.12 + 0.06 * index) for index, line in enumerate(lines.kept)]
         names = [_name(line, role, share, seen) for line, role, share in named if line.name]
         if lines.limited is not None and lines.limited.connect.mean() >= _WORTH_WORDS:
@@ -251,34 +229,26 @@ def _name(line: Line, role: str, share: float, seen: Extent) -> Words:
     index = int(share * (line.t.size - 1))
     value = float(np.clip(line.values[index], seen.low, seen.high))
     upper = value < seen.low + 0.75 * seen.span
-    return Words(float(line.t[index]), value, line.name, role, "left", "above" if upper else "below")
+    side: Side = "above" if upper else "below"
+    return Words(float(line.t[index]), value, line.name, role, "left", side, line.plant)
 
 
 class OutputPanel(TracePanel):
-    """The output after a step; its second curve is that of the worst plant."""
-
-    second_role = "limit"
+    """The output after a step."""
 
     def lines(self, shown: Shown) -> Lines:
-        """Return the output of the nominal plant, of the family and of kept tunings."""
-        members = shown.assessment.members
-        traces = [self.trace(member) for member in members]
-        t, family = _family([(trace.t, trace.y) for trace in traces[1:]])
-        kept = tuple(
-            Line(trace.t, trace.y, f"{kept.name}")
-            for kept, trace in ((kept, self.trace(kept.member)) for kept in shown.kept)
+        """Return the output of the plant looked at, of the family, of its worst plant, and of kept tunings."""
+        t, y = self._curve(shown.assessment.nominal)
+        return Lines(
+            Line(t, y, f"output y{looked_at_words(shown)}"),
+            family_of_curves(shown, self._curve),
+            tuple(Line(*self._curve(kept.member), kept.name) for kept in shown.kept),
+            worst=worst_line(shown, self.plot, self._curve),
         )
-        return Lines(Line(traces[0].t, traces[0].y, "output y"), t, family, kept, self._worst(shown))
 
-    def _worst(self, shown: Shown) -> Line | None:
-        """Return the output of the plant that misses a limit of this plot by most, or comes nearest to missing one."""
-        limits = [limit for limit in shown.assessment.limits if PLOT_OF[limit.measure] == self.plot]
-        plant = max(limits, key=shortfall).plant if limits and shown.whole else ""
-        found = [member for member in shown.assessment.members[1:] if member.name == plant]
-        if not found:
-            return None
-        trace = self.trace(found[0])
-        return Line(trace.t, trace.y, f"worst: {found[0].drift or plant}")
+    def _curve(self, member: MemberResult) -> tuple[Array, Array]:
+        trace = self.trace(member)
+        return trace.t, trace.y
 
     def trace(self, member: MemberResult) -> Trace:
         """Return the run that this plot shows."""
@@ -330,13 +300,20 @@ class EffortPanel(TracePanel):
 
     def lines(self, shown: Shown) -> Lines:
         """Return the effort of the reference run with its family, and that of the disturbance run beside it."""
-        sheet, members = shown.sheet, shown.assessment.members
-        nominal = members[0].traces
-        t, family = _family([_effort(sheet, member.traces.reference) for member in members[1:]])
-        kept = tuple(Line(*_effort(sheet, kept.member.traces.reference), kept.name) for kept in shown.kept)
-        second = Line(*_effort(sheet, nominal.disturbance), "disturbance run") if sheet.trial.disturbance else None
-        main = Line(*_effort(sheet, nominal.reference), "reference run")
-        return Lines(main, t, family, kept, second, _limited(sheet, nominal.reference))
+        sheet, traces = shown.sheet, shown.assessment.nominal.traces
+        t, u = effort_corners(sheet, traces.disturbance)
+
+        def curve(member: MemberResult) -> tuple[Array, Array]:
+            return effort_corners(sheet, member.traces.reference)
+
+        return Lines(
+            Line(*effort_corners(sheet, traces.reference), f"reference run{looked_at_words(shown)}"),
+            family_of_curves(shown, curve),
+            tuple(Line(*curve(kept.member), kept.name) for kept in shown.kept),
+            Line(t, u, "disturbance run") if sheet.trial.disturbance else None,
+            limited_pieces(sheet, traces.reference),
+            worst_line(shown, self.plot, curve),
+        )
 
     def axis_words(self, sheet: Sheet) -> str:
         """Return the name and the unit of the manipulated signal."""
@@ -350,34 +327,3 @@ class EffortPanel(TracePanel):
     def unit(self, sheet: Sheet) -> str:
         """Return the unit of the manipulated signal."""
         return sheet.loop.manipulated.unit
-
-
-def _effort(sheet: Sheet, trace: Trace) -> tuple[Array, Array]:
-    """Return the corners of the effort: it holds from sample to sample, unless the controller is continuous."""
-    if sheet.controller.sample_time <= 0.0:
-        return trace.t, trace.u
-    at = trace.sample_index
-    return thinning.staircase(trace.t[at], trace.u[at], float(trace.t[-1]))
-
-
-def _limited(sheet: Sheet, trace: Trace) -> Limited | None:
-    """Return where a limit holds the effort, along the corners of its curve; None where none does."""
-    held = np.append(trace.limited, np.zeros(trace.sample_index.size - trace.limited.size, dtype=bool))
-    if not held.any():
-        return None
-    t, u = _effort(sheet, trace)
-    following = np.append(held[1:], False)
-    if sheet.controller.sample_time > 0.0:
-        joined = np.column_stack((held, held & following)).ravel()
-    else:
-        joined = np.interp(t, trace.t[trace.sample_index], held.astype(float)) > 0.5
-    return Limited(t, u, joined.astype(np.int32))
-
-
-def _family(curves: list[tuple[Array, Array]]) -> tuple[Array, Array]:
-    """Return curves over shared times: those of the first, to which the others are brought if theirs differ."""
-    if not curves:
-        return np.empty(0), np.empty((0, 0))
-    t = curves[0][0]
-    same = all(other is t or np.array_equal(other, t) for other, _ in curves[1:])
-    return t, np.stack([y if same else np.interp(t, times, y) for times, y in curves])

@@ -64,14 +64,15 @@ class PaintedRulers(QObject):
             self.ask()
 
     def let_pass(self, curves: Assessor) -> None:
-        """Ask only after the curves of a change are drawn, or it takes them long; sleep until the first verdict."""
+        """Ask only after all curves of a change are drawn, or it takes them long; sleep until the first verdict."""
         self._turn.setInterval(PATIENCE)
         curves.answered.connect(self._curves_came)
         curves.failed.connect(self._no_curves_came)
 
     def _curves_came(self, shown: Shown) -> None:
         self._awake = self._awake or shown.whole
-        self._take_turn()
+        if shown.whole:
+            self._take_turn()
 
     def _no_curves_came(self, _failure: Failure) -> None:
         self._awake = True
