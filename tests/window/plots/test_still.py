@@ -76,8 +76,8 @@ def test_a_picture_of_twice_the_size_is_as_sharp(panel: ReferencePanel, theme: T
     assert (twice.width(), twice.height()) == (2 * before.width(), 2 * before.height())
     assert _has(twice, theme.colour("grid"))
     numbers = QRect(0, panel.view.y(), 64, panel.view.height())
-    larger = before.copy(numbers).scaled(2 * numbers.size())
-    doubled = QRect(2 * numbers.topLeft(), 2 * numbers.size())
+    larger = before.copy(numbers).scaled(numbers.size() * 2)
+    doubled = QRect(numbers.topLeft() * 2, numbers.size() * 2)
     assert _pixels(twice.copy(doubled)) != _pixels(larger)
     assert panel.view.grab().toImage() == plain
 
