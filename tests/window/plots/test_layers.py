@@ -173,3 +173,23 @@ def test_a_layer_covers_what_is_seen(box: pg.ViewBox, theme: Theme) -> None:
         bounds = layer.boundingRect()
         assert (bounds.left(), bounds.right()) == pytest.approx(x)
         assert (bounds.top(), bounds.bottom()) == pytest.approx(y)
+
+
+def test_areas_that_hardly_move_are_not_painted_anew(box: object, theme: Theme) -> None:
+    """Less than a quarter of a pixel is no other picture; more is, and so is another role or another shape."""
+    still = StillPicture(pg.GraphicsView())
+    ground = GroundLayer(box, theme, still)
+    near = Area(rectangle(0.2, 0.6, 0.3, inf), "limit_zone")
+    ground.areas = (near,)
+    width, height = ground._view.viewPixelSize()
+    for areas, is_new in (
+        ((Area(rectangle(0.2 + 0.1 * width, 0.6, 0.3 + 0.1 * height, inf), "limit_zone"),), False),
+        ((Area(rectangle(0.2 + 0.5 * width, 0.6, 0.3, inf), "limit_zone"),), True),
+        ((Area(rectangle(0.2, 0.6, 0.3 + 0.5 * height, inf), "limit_zone"),), True),
+        ((Area(near.corners, "lost"),), True),
+        ((Area(near.corners[:3], "limit_zone"),), True),
+        ((), True),
+    ):
+        ground.areas = (near,)
+        ground.areas = areas
+        assert (ground.areas == areas) is is_new

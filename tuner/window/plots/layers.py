@@ -1,6 +1,7 @@
 """Layers below and above the curves: areas and grid lines, and strokes and words, painted in pixels."""
 
 from collections.abc import Iterable, Iterator
+from dataclasses import replace
 from math import isinf
 
 import pyqtgraph as pg
@@ -74,9 +75,18 @@ class GroundLayer(Layer):
 
     @areas.setter
     def areas(self, areas: tuple[Area, ...]) -> None:
-        if areas != self._areas:
+        if areas != self._areas and not self._looks_like(areas):
             self._areas = areas
             self.update()
+
+    def _looks_like(self, areas: tuple[Area, ...]) -> bool:
+        """Tell whether areas would be the same picture: none of their corners moves by a quarter of a pixel."""
+        width, height = self._view.viewPixelSize()
+        pairs = zip(areas, self._areas, strict=False)
+        return len(areas) == len(self._areas) and all(
+            replace(one, corners=()) == replace(other, corners=()) and _is_near(one, other, 0.25 * width, 0.25 * height)
+            for one, other in pairs
+        )
 
     def update(self, *area: QRectF) -> None:
         """Be painted anew, with the picture."""
@@ -175,6 +185,14 @@ class MarkLayer(Layer):
         painter.setBrush(QBrush(self._theme.colour("page")))
         painter.setRenderHint(QPainter.RenderHint.Antialiasing)
         painter.drawEllipse(at, 3.0, 3.0)
+
+
+def _is_near(one: Area, other: Area, x: float, y: float) -> bool:
+    """Tell whether two areas have as many corners, each nearer to that of the other than x across and y upwards."""
+    pairs = zip(one.corners, other.corners, strict=False)
+    return len(one.corners) == len(other.corners) and all(
+        (a == c or abs(a - c) < x) and (b == d or abs(b - d) < y) for (a, b), (c, d) in pairs
+    )
 
 
 def _stroke_pen(stroke: Stroke, colour: QColor) -> QPen:

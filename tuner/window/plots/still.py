@@ -37,6 +37,7 @@ class StillPicture:
         self._view = view
         self._items: list[StillItem] = []
         self._picture = QPixmap()
+        self._is_true = False
         self.taken = 0
         """How many times it was painted anew."""
 
@@ -47,23 +48,26 @@ class StillPicture:
 
     def forget(self) -> None:
         """Paint it anew when it is needed next."""
-        self._picture = QPixmap()
+        self._is_true = False
 
     def draw(self, painter: QPainter) -> None:
         """Lay the picture over the whole view."""
         ratio = painter.paintEngine().paintDevice().devicePixelRatio()
         size = self._view.viewport().size()
         if self._picture.size() != size * ratio or self._picture.devicePixelRatio() != ratio:
-            self._take(ratio)
+            self._picture = QPixmap(size * ratio)
+            self._picture.setDevicePixelRatio(ratio)
+            self._is_true = False
+        if not self._is_true:
+            self._take()
         painter.save()
         painter.resetTransform()
         painter.drawPixmap(0, 0, self._picture)
         painter.restore()
 
-    def _take(self, ratio: float) -> None:
+    def _take(self) -> None:
         self.taken += 1
-        self._picture = QPixmap(self._view.viewport().size() * ratio)
-        self._picture.setDevicePixelRatio(ratio)
+        self._is_true = True
         painter = QPainter(self._picture)
         painter.fillRect(self._view.viewport().rect(), _opaque(self._view.backgroundBrush()))
         for item in self._items:
