@@ -190,6 +190,20 @@ def test_the_layout_comes_back() -> None:
         assert other.upwards.sizes()[1] == 260
 
 
+def test_the_page_in_sight_comes_back() -> None:
+    """The next window begins with it, and asks for what it needs in its first question."""
+    with opened() as (window, _):
+        window.pages.choose("Frequency")
+        remembered = window.layout_memory()
+    with opened() as (other, _):
+        other.restore_layout(remembered)
+        assert other.pages.page is other.frequency
+        assert other.pages.stack.currentWidget() is other.frequency.widget
+        other.ask()
+        assert other.shown is not None
+        assert other.shown.frequency is not None
+
+
 def test_one_plot_can_have_all_the_room() -> None:
     """Alone, it is the only one in sight; all four come back."""
     with opened() as (window, _):

@@ -102,6 +102,23 @@ def test_the_keyboard_reaches_editor_rulers_and_limits(qtbot: QtBot) -> None:
             assert place.isAncestorOf(focus)
 
 
+def test_the_page_in_sight_is_marked() -> None:
+    """However it was chosen: by the menu or by its word; a plot shown alone brings its page in sight."""
+    with opened() as (window, wiring):
+        actions = {name: wiring.menus.actions[f"page {name}"] for name in window.pages.pages}
+
+        def marked() -> list[str]:
+            return [name for name, action in actions.items() if action.isChecked()]
+
+        assert marked() == ["Trial"]
+        actions["Frequency"].trigger()
+        assert (window.pages.page.name, marked()) == ("Frequency", ["Frequency"])
+        window.pages.words.buttons["Gain map"].click()
+        assert marked() == ["Gain map"]
+        wiring.menus.actions[f"plot {EFFORT}"].trigger()
+        assert (window.pages.page.name, marked()) == ("Trial", ["Trial"])
+
+
 def test_a_plot_is_shown_alone_by_its_key(qtbot: QtBot) -> None:
     """Alt+3 gives the effort all the room, Alt+0 brings the four back."""
     with opened() as (window, _):

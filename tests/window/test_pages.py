@@ -41,6 +41,26 @@ def test_pages_are_chosen_by_the_keyboard() -> None:
         assert window.pages.stack.currentWidget() is window.frequency.widget
 
 
+def test_a_page_that_is_not_known_is_the_first_one() -> None:
+    """Whatever was remembered."""
+    with opened() as (window, _):
+        window.pages.begin_with("Weather")
+        assert window.pages.page is window.plots
+
+
+def test_the_name_of_a_curve_over_frequency_leads_to_its_plant() -> None:
+    """As in the plots of the trial."""
+    with opened() as (window, _):
+        window.pages.choose("Frequency")
+        panel = window.frequency.panels["Bode magnitude"]
+        assert panel.shown is not None
+        plant = panel.shown.assessment.members[1].name
+        panel.plant_wanted.emit(plant)
+        assert window.looked_at == plant
+        assert panel.shown.frequency is not None
+        assert panel.shown.frequency.plants[0] == plant
+
+
 def test_a_loop_that_is_left_is_forgotten_everywhere() -> None:
     """No page shows an answer on another loop."""
     with opened() as (window, _):

@@ -241,11 +241,12 @@ class MainWindow(QMainWindow):
         self.pages.nominal_wanted.connect(lambda: self.look_at(""))
         self.ribbon.plant_wanted.connect(self.look_at)
         self.plots.plant_wanted.connect(self.look_at)
+        self.frequency.plant_wanted.connect(self.look_at)
 
     def layout_memory(self) -> Memory:
         """Return how the window stands and how its room is divided."""
         states = {name: _text(splitter.saveState()) for name, splitter in self._splitters().items()}
-        return Memory(geometry=_text(self.saveGeometry()), theme=self.theme.choice, **states)
+        return Memory(geometry=_text(self.saveGeometry()), theme=self.theme.choice, page=self.pages.page.name, **states)
 
     def restore_layout(self, memory: Memory) -> None:
         """Stand and divide the room as remembered."""
@@ -254,6 +255,7 @@ class MainWindow(QMainWindow):
         for name, splitter in self._splitters().items():
             if state := getattr(memory, name):
                 splitter.restoreState(_bytes(state))
+        self.pages.begin_with(memory.page)
 
     def _splitters(self) -> dict[str, QSplitter]:
         plots = self.plots

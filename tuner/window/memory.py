@@ -1,4 +1,4 @@
-"""What the window remembers from one run to the next: its place, how its room was divided, and the theme chosen."""
+"""What the window remembers from one run to the next: its place, how its room was divided, its theme and its page."""
 
 import json
 from dataclasses import asdict, dataclass, fields
@@ -18,6 +18,8 @@ class Memory:
         Place of the window, and states of its splitters.
     theme : str
         The choice of theme.
+    page : str
+        The page of the plot area that was in sight.
     """
 
     geometry: str = ""
@@ -27,6 +29,7 @@ class Memory:
     left: str = ""
     right: str = ""
     theme: str = "desktop"
+    page: str = ""
 
 
 def recall() -> Memory:

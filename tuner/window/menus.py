@@ -95,11 +95,10 @@ class Menus:
         group = QActionGroup(window)
         for index, name in enumerate(("", *window.plots.panels)):
             words = f"{name} alone" if name else "All &four plots"
-            action = self._add(menu, f"plot {name}", words, partial(window.plots.show_alone, name), f"Alt+{index}")
+            action = self._add(menu, f"plot {name}", words, partial(self._show_plot, name), f"Alt+{index}")
             _radio(action, group, checked=not name)
         menu.addSeparator()
-        for index, name in enumerate(window.pages.pages):
-            self._add(menu, f"page {name}", f"{name} page", partial(window.pages.choose, name), f"Ctrl+Alt+{index + 1}")
+        self._fill_pages(menu)
         menu.addSeparator()
         self._add(menu, "look at worst", "Look at the worst &plant", window.look_at_worst, "Ctrl+L")
         self._add(menu, "look at nominal", "Look at the &nominal plant", partial(window.look_at, ""), "Ctrl+Shift+L")
@@ -113,6 +112,20 @@ class Menus:
         self._add(menu, "to limits", "Go to the &limits", window.ribbon.focus, "Ctrl+3")
         menu.addSeparator()
         self._fill_theme(menu.addMenu("&Theme"))
+
+    def _fill_pages(self, menu: QMenu) -> None:
+        """Offer the pages, and keep the mark at the one in sight, however it was chosen."""
+        group, pages = QActionGroup(self._window), self._window.pages
+        for index, name in enumerate(pages.pages):
+            choose = partial(pages.choose, name)
+            action = self._add(menu, f"page {name}", f"{name} page", choose, f"Ctrl+Alt+{index + 1}")
+            _radio(action, group, checked=name == pages.page.name)
+        pages.chosen.connect(lambda name: self.actions[f"page {name}"].setChecked(True))
+
+    def _show_plot(self, name: str) -> None:
+        """Show one plot of the trial alone, or all; the page of the trial comes in sight for it."""
+        self._window.pages.choose(self._window.plots.name)
+        self._window.plots.show_alone(name)
 
     def _fill_family(self, menu: QMenu) -> None:
         group, window = QActionGroup(self._window), self._window

@@ -85,13 +85,18 @@ class Pages(QObject):
         """The page in sight."""
         return self.pages[self._name]
 
+    def begin_with(self, name: str) -> None:
+        """Have a page in sight from the start; the first one where there is none of that name."""
+        if name in self.pages:
+            self._name = name
+            self.words.show_choice(name)
+            self.stack.setCurrentWidget(self.page.widget)
+
     def choose(self, name: str) -> None:
         """Bring a page in sight."""
         if name == self._name or name not in self.pages:
             return
-        self._name = name
-        self.words.show_choice(name)
-        self.stack.setCurrentWidget(self.page.widget)
+        self.begin_with(name)
         if self._shown is not None:
             self.page.show(self._shown)
             if self._stale:

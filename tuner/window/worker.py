@@ -11,7 +11,6 @@ from PySide6.QtCore import QObject, QThread, Signal
 
 from tuner.errors import TrimwrightError
 from tuner.judge.assessment import Assessment, MemberResult
-from tuner.model.family import family_of
 from tuner.model.sheet import Sheet
 from tuner.session.tunings import KeptTuning
 from tuner.window.shown import Draw, Failure, Glance, Judge, KeptResult, Request, Shown
@@ -118,15 +117,10 @@ class Assessing:
 
 
 def _curves(sheet: Sheet, seen: Assessment) -> "FrequencyCurves":
-    """Return the response over frequency of a sheet's family, the plant that is looked at first."""
     # Not before it is asked for: the first picture does not wait for compiled loops.
-    from tuner.simulate.curves import frequency_curves
-    from tuner.simulate.loop import loops_of
+    from tuner.window.frequency.question import curves_of
 
-    places = {member.name: place for place, member in enumerate(seen.members)}
-    members = [member for member in family_of(sheet) if member.name in places]
-    loops = loops_of(sheet, sorted(members, key=lambda member: places[member.name]))
-    return frequency_curves(loops, seen.nominal.poles, seen.nominal.margins)
+    return curves_of(sheet, seen)
 
 
 class Assessor(QObject):

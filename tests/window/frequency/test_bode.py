@@ -1,68 +1,75 @@
 """Bode plots and sensitivities show what the curves are, with margins and limits marked."""
 
-from math import log10
-
 import numpy as np
 import pytest
 from pytestqt.qtbot import QtBot
 
-from tests.window.frequency.looked_at import answer
+from tests.window.frequency.looked_at import answer, curves_in, limited, sample, with_feedback
 from tests.window.plots.answers import seen
-from tuner.window.frequency.bode import MagnitudePanel, PhasePanel, SensitivityPanel, decibels, phases
+from tuner.window.frequency.bode import MagnitudePanel, PhasePanel, SensitivityPanel
+from tuner.window.frequency.panel import FrequencyPanel
 from tuner.window.theme import Theme
 
-
-def test_sizes_and_phases() -> None:
-    """20 log10 of the size; phases without jumps."""
-    assert decibels(np.array([1.0 + 0j, 10.0 + 0j, 0.1j])) == pytest.approx([0.0, 20.0, -20.0])
-    turning = np.exp(-1j * np.linspace(0.0, 10.0, 50))
-    found = phases(turning)
-    assert found[-1] - found[0] == pytest.approx(-np.degrees(10.0))
+PANELS = (MagnitudePanel, PhasePanel, SensitivityPanel)
 
 
-def test_the_phase_is_on_the_turn_of_half_a_turn_at_crossover() -> None:
-    """A plant that begins at -270 degrees, and so at 90, is shown at -270."""
-    s = 1j * np.geomspace(0.01, 100.0, 400)
-    gain = -5.0 * (0.5 * s + 1.0) / (s * (1.0 - s))
-    found = phases(gain)
-    at = np.abs(np.log(np.abs(gain))).argmin()
-    assert -360.0 <= found[at] <= 0.0
-    assert np.exp(1j * np.radians(found)) == pytest.approx(gain / np.abs(gain))
+@pytest.mark.parametrize("kind", PANELS)
+def test_curves_are_those_of_the_answer(theme: Theme, qtbot: QtBot, kind: type[FrequencyPanel]) -> None:
+    """At every point that is drawn and seen."""
+    made = kind("plot", theme)
+    seen(made, qtbot)
+    made.show(answer())
+    curves = curves_in(answer())
+    expected = {
+        MagnitudePanel: (curves.decibels,),
+        PhasePanel: (curves.phase,),
+        SensitivityPanel: (curves.sensitivity, curves.complementary),
+    }[kind]
+    for item, values in zip(made.own, expected, strict=True):
+        x, y = item.getData()
+        inside = (y > made.ranges()[1].low) & (y < made.ranges()[1].high)
+        known = np.interp(x[inside], np.log10(curves.w), values[0])
+        assert inside.sum() > 20
+        assert y[inside] == pytest.approx(known, abs=1e-9)
 
 
-def test_the_gain_margin_is_marked_where_it_is(theme: Theme, qtbot: QtBot) -> None:
-    """A stroke from the curve up to one, and the value in words."""
-    panel = MagnitudePanel("Bode magnitude", theme)
-    seen(panel, qtbot)
-    panel.show(answer())
-    margins = answer().assessment.nominal.margins
-    assert margins is not None
-    stroke = next(one for one in panel._marks.strokes if one.role == "nominal")
-    assert stroke.x0 == pytest.approx(log10(margins.gain_margin_at or 1.0))
-    assert stroke.y0 == pytest.approx(-20.0 * log10(margins.gain_margin))
-    assert any(word.text.startswith(f"gain margin {margins.gain_margin:.3g}") for word in panel._marks.words)
+@pytest.mark.parametrize(
+    ("kind", "said"),
+    [
+        (MagnitudePanel, "gain margin "),
+        (PhasePanel, "phase margin "),
+        (PhasePanel, "delay margin "),
+        (SensitivityPanel, "peak "),
+        (SensitivityPanel, "|S| at most 1.8"),
+        (MagnitudePanel, "half the sampling frequency"),
+        (PhasePanel, "half the sampling frequency"),
+        (SensitivityPanel, "half the sampling frequency"),
+    ],
+)
+def test_margins_and_limits_are_told(theme: Theme, qtbot: QtBot, kind: type[FrequencyPanel], said: str) -> None:
+    """In words in the plot."""
+    made = kind("plot", theme)
+    seen(made, qtbot)
+    made.show(answer())
+    assert any(word.text.startswith(said) for word in made.marks.words)
 
 
-def test_the_phase_margin_is_marked_where_it_is(theme: Theme, qtbot: QtBot) -> None:
-    """A stroke as long as the margin, from half a turn."""
-    panel = PhasePanel("Bode phase", theme)
-    seen(panel, qtbot)
-    panel.show(answer())
-    margins = answer().assessment.nominal.margins
-    assert margins is not None
-    stroke = next(one for one in panel._marks.strokes if one.role == "nominal")
-    assert abs(stroke.y1 - stroke.y0) == pytest.approx(margins.phase_margin, abs=0.1)
+@pytest.mark.parametrize("kind", PANELS)
+def test_curves_without_margins_are_drawn(theme: Theme, qtbot: QtBot, kind: type[FrequencyPanel]) -> None:
+    """Of a loop that is open, with the words why."""
+    made = kind("plot", theme)
+    seen(made, qtbot)
+    made.show(answer(limited(with_feedback(sample(), on=False), {})))
+    assert made.own[0].xData.size > 20
+    assert made._missed.text() == "feedback off, so no margins: curves as if it were closed"
 
 
-def test_limits_of_both_sensitivities_are_drawn(theme: Theme, qtbot: QtBot) -> None:
-    """The level of the sheet's limit, and the peak in words."""
-    panel = SensitivityPanel("Sensitivity", theme)
-    seen(panel, qtbot)
-    panel.show(answer())
-    limits = dict(answer().sheet.limits)
-    assert any(one.y0 == limits["max_sensitivity"] and one.role == "limit" for one in panel._marks.strokes)
-    assert any(word.text.startswith("peak ") for word in panel._marks.words)
-    own = panel._own[0].getData()[1]
-    margins = answer().assessment.nominal.margins
-    assert margins is not None
-    assert own.max() == pytest.approx(margins.max_sensitivity, rel=1e-3)
+def test_the_worst_peak_of_t_is_drawn_on_its_own_curve(theme: Theme, qtbot: QtBot) -> None:
+    """Where the limit on T is the one missed by most."""
+    made = SensitivityPanel("Sensitivity", theme)
+    seen(made, qtbot)
+    shown = answer(limited(sample(), {"max_complementary": 0.5}))
+    made.show(shown)
+    curves = curves_in(shown)
+    row = curves.complementary[curves.plants.index(shown.assessment.worst["max_complementary"].plant)]
+    assert made.worst.yData.max() == pytest.approx(row.max(), rel=1e-6)

@@ -4,7 +4,7 @@ import numpy as np
 import pytest
 from pytestqt.qtbot import QtBot
 
-from tests.window.frequency.looked_at import answer
+from tests.window.frequency.looked_at import answer, curves_in, limited, sample, with_feedback
 from tests.window.plots.answers import seen
 from tuner.window.frequency.nyquist import NyquistPanel
 from tuner.window.theme import Theme
@@ -19,12 +19,29 @@ def panel(theme: Theme, qtbot: QtBot) -> NyquistPanel:
     return made
 
 
+def scales(panel: NyquistPanel) -> tuple[float, float]:
+    """Return how many pixels a unit takes across and upwards."""
+    (across, upwards), box = panel.ranges(), panel.view.getPlotItem().getViewBox()
+    return box.width() / across.span, box.height() / upwards.span
+
+
 @pytest.mark.parametrize("size", [(640, 400), (400, 700), (1400, 500)])
 def test_both_axes_have_one_scale(panel: NyquistPanel, size: tuple[int, int]) -> None:
-    """A unit takes as many pixels across as upwards, whatever the shape of the plot."""
+    """Whatever the shape of the plot, with the critical point and the circle of one in sight."""
     panel.widget.resize(*size)
-    (across, upwards), box = panel.ranges(), panel.view.getPlotItem().getViewBox()
-    assert box.width() / across.span == pytest.approx(box.height() / upwards.span, rel=0.01)
+    across, upwards = panel.ranges()
+    assert scales(panel)[0] == pytest.approx(scales(panel)[1], rel=0.01)
+    assert across.low <= -2.4
+    assert across.high >= 1.0
+    assert upwards.low <= -1.5
+
+
+def test_a_closer_look_keeps_one_scale(panel: NyquistPanel) -> None:
+    """Also when only one axis is drawn out."""
+    before = scales(panel)[0]
+    panel.view.getPlotItem().getViewBox().scaleBy(x=0.5)
+    assert scales(panel)[0] == pytest.approx(scales(panel)[1], rel=0.01)
+    assert scales(panel)[0] != pytest.approx(before, rel=0.1)
 
 
 def test_the_circle_of_the_limit_is_where_the_sensitivity_is_the_limit(panel: NyquistPanel) -> None:
@@ -34,12 +51,48 @@ def test_the_circle_of_the_limit_is_where_the_sensitivity_is_the_limit(panel: Ny
     assert np.hypot(x + 1.0, y) == pytest.approx(np.full(x.size, 1.0 / most))
 
 
-def test_the_nearest_point_is_told(panel: NyquistPanel) -> None:
-    """A stroke from the critical point, as long as the inverse of the peak of the sensitivity."""
+def test_the_circle_that_the_curve_touches(panel: NyquistPanel) -> None:
+    """No point of the loop gain lies within it, and one on it: its radius is the inverse of the peak."""
     margins = answer().assessment.nominal.margins
     assert margins is not None
-    stroke = next(one for one in panel._strokes() if one.role == "nominal")
-    assert np.hypot(stroke.x1 + 1.0, stroke.y1) == pytest.approx(1.0 / margins.max_sensitivity, rel=1e-3)
+    x, y = panel.touched.getData()
+    radius = 1.0 / margins.max_sensitivity
+    assert np.hypot(x + 1.0, y) == pytest.approx(np.full(x.size, radius), rel=1e-6)
+    assert np.abs(1.0 + curves_in(answer()).gain[0]).min() == pytest.approx(radius, rel=1e-6)
+    said = f"peak of |S| {margins.max_sensitivity:.3g} at {margins.max_sensitivity_at:.3g} rad/s"
+    assert any(word.text == said for word in panel.marks.words)
+
+
+def test_without_margins_no_circle_is_touched(panel: NyquistPanel) -> None:
+    """A loop that is open comes near nothing; its curve is drawn all the same."""
+    panel.show(answer(limited(with_feedback(sample(), on=False), {})))
+    assert panel.touched.xData.size == 0
+    assert panel.limit.xData.size == 0
+    assert panel.own.xData.size > 100
+
+
+def test_the_worst_plant_can_be_pressed(panel: NyquistPanel) -> None:
+    """It is drawn and named by its drift."""
+    plant = answer().assessment.worst["max_sensitivity"].plant
+    curves = curves_in(answer())
+    row = curves.gain[curves.plants.index(plant)]
+    x, y = panel.worst.getData()
+    assert np.hypot(x + 1.0, y).min() == pytest.approx(np.abs(1.0 + row).min(), rel=1e-9)
+    assert any(word.plant == plant for word in panel.marks.words)
+
+
+def test_curves_stay_near_the_picture(panel: NyquistPanel) -> None:
+    """An integrator goes to infinity; what is painted does not."""
+    for curve in (panel.own, panel.family, panel.worst):
+        x, y = curve.getData()
+        assert np.hypot(x, y).max() <= 20.0 * (1.0 + 1e-9)
+
+
+@pytest.mark.parametrize(("view", "drawn"), [("both", True), ("band", True), ("none", False)])
+def test_the_family_is_shown_as_wanted(panel: NyquistPanel, view: str, drawn: bool) -> None:
+    """Its ground is that of its curves here."""
+    panel.show(answer(family_view=view))
+    assert bool(panel.family.xData.size) is drawn
 
 
 def test_the_pointer_reads_the_curve_when_it_is_near(panel: NyquistPanel) -> None:
@@ -50,3 +103,15 @@ def test_the_pointer_reads_the_curve_when_it_is_near(panel: NyquistPanel) -> Non
     assert found is not None
     assert "rad/s" in found[1]
     assert panel.read(0.9, 1.4) is None
+
+
+def test_keys_walk_along_the_curve(panel: NyquistPanel) -> None:
+    """From the point that is nearest to the critical one, towards higher frequencies."""
+    panel.view.stepped.emit(1)
+    first = panel.marks.pointer
+    panel.view.stepped.emit(1)
+    gain = curves_in(answer()).gain[0]
+    assert first is not None
+    assert panel.marks.pointer is not None
+    places = [int(np.abs(gain - complex(*at)).argmin()) for at in (first, panel.marks.pointer)]
+    assert places[1] == places[0] + 3

@@ -1,12 +1,14 @@
-"""A plot over frequency: its axis, what it reads, and the worst of the family in words."""
+"""A plot over frequency: its family, its worst plant, what it reads, and what stays."""
 
+import numpy as np
 import pytest
 from pytestqt.qtbot import QtBot
 
-from tests.window.frequency.looked_at import answer
+from tests.window.frequency.looked_at import answer, curves_in, sample
 from tests.window.plots.answers import seen
 from tuner.window.frequency.bode import MagnitudePanel
-from tuner.window.frequency.panel import decades, missed_of, worst_words
+from tuner.window.frequency.panel import worst_places
+from tuner.window.plots.extent import Extent
 from tuner.window.theme import Theme
 
 
@@ -19,57 +21,96 @@ def panel(theme: Theme, qtbot: QtBot) -> MagnitudePanel:
     return made
 
 
-@pytest.mark.parametrize(
-    ("low", "high", "count", "said"),
-    [
-        (-2.0, 0.0, 12, ["0.01", "0.02", "0.05", "0.1", "0.2", "0.5", "1"]),
-        (-2.0, 0.0, 4, ["0.01", "0.1", "1"]),
-        (-4.0, 4.0, 4, ["0.0001", "0.01", "1", "100", "10000"]),
-    ],
-)
-def test_decades_are_divided_as_finely_as_there_is_room(low: float, high: float, count: int, said: list[str]) -> None:
-    """Twos and fives where they fit, else decades, else every other one."""
-    assert [tick.text for tick in decades(low, high, count)] == said
-
-
 def test_the_pointer_reads_the_loop(panel: MagnitudePanel) -> None:
     """Frequency, size, phase and both sensitivities, with units; nothing outside of what is known."""
     found = panel.read(-1.0, 0.0)
     assert found is not None
-    assert float(found[1].split()[1]) == pytest.approx(0.1, rel=0.02)
-    assert "rad/s: L " in found[1]
-    assert " dB, " in found[1]
-    assert "|S|" in found[1]
+    assert found[0][0] == pytest.approx(-1.0, abs=0.01)
+    assert float(found[1].split()[0]) == pytest.approx(0.1, rel=0.02)
     assert panel.read(9.0, 0.0) is None
 
 
-def test_the_worst_margin_is_told_with_its_plant() -> None:
-    """In words with the value."""
+def test_the_worst_plant_is_drawn_and_named(panel: MagnitudePanel) -> None:
+    """In the colour of limits; pressing its name looks at it."""
     shown = answer()
-    worst = shown.assessment.worst["gain_margin"]
-    assert worst_words(shown, ("gain_margin",)) == f"; gain margin at worst {worst.value:.3g} with {worst.plant}"
+    plant = shown.assessment.worst["gain_margin"].plant
+    curves = curves_in(shown)
+    row = curves.decibels[curves.plants.index(plant)]
+    x, y = panel.worst.getData()
+    assert y == pytest.approx(np.clip(np.interp(x, np.log10(curves.w), row), y.min(), y.max()), abs=0.2)
+    assert panel.worst.opts["pen"].color() == panel._theme.colour("limit")
+    assert any(word.plant == plant and word.text.startswith("worst: ") for word in panel.marks.words)
 
 
-def test_limits_here_are_counted() -> None:
-    """Those of the measures of this plot."""
-    assert missed_of(answer(), ("gain_margin",)) == ("the limit here is met", False)
-    assert missed_of(answer(), ("phase_margin",)) == ("nothing here is on the acceptance sheet", False)
+def test_the_worst_plant_is_not_drawn_twice(theme: Theme, qtbot: QtBot) -> None:
+    """When it is looked at it is the main curve."""
+    made = MagnitudePanel("Bode magnitude", theme)
+    seen(made, qtbot)
+    made.show(answer(looked_at=answer().assessment.worst["gain_margin"].plant))
+    assert made.worst.xData.size == 0
+
+
+def test_worst_plants_of_limits_are_known(panel: MagnitudePanel) -> None:
+    """Rows behind the first, so that those of a large family are drawn whatever is left out."""
+    del panel
+    shown = answer()
+    curves = curves_in(shown)
+    found = {curves.plants[1:][place] for place in worst_places(shown, curves)}
+    assert found == {limit.plant for limit in shown.assessment.limits} - {"nominal"}
+
+
+@pytest.mark.parametrize(
+    ("view", "ground", "curves"), [("both", True, True), ("curves", False, True), ("none", False, False)]
+)
+def test_the_family_is_shown_as_wanted(theme: Theme, qtbot: QtBot, view: str, ground: bool, curves: bool) -> None:
+    """As in the plots over time."""
+    made = MagnitudePanel("Bode magnitude", theme)
+    seen(made, qtbot)
+    made.show(answer(family_view=view))
+    (picture,) = made.pictures
+    assert (bool(picture.band.xData.size), bool(picture.curves.xData.size)) == (ground, curves)
 
 
 def test_the_family_stays_until_a_whole_answer_comes(panel: MagnitudePanel) -> None:
-    """A quick answer moves the plant's own curve alone."""
-    before = panel._families[0].getData()
+    """A quick answer moves the plant's own curve alone, and says nothing new of the family."""
+    before, worst, said = panel.pictures[0].curves.yData, panel.worst.yData.copy(), panel._axis.text()
     panel.show(answer(whole=False))
-    after = panel._families[0].getData()
-    assert (before[1] == after[1]).all()
-    assert before[0].size > 0
+    assert panel.pictures[0].curves.yData is before
+    assert np.array_equal(panel.worst.yData, worst)
+    assert panel._axis.text() == said
+
+
+def test_another_loop_is_another_picture(panel: MagnitudePanel) -> None:
+    """Nothing stays of a loop that was left."""
+    panel.forget()
+    panel.show(answer(sample("chiller")))
+    assert panel.ranges()[0].low < -4.0
+
+
+def test_the_unit_of_frequency_is_always_seen(theme: Theme, qtbot: QtBot) -> None:
+    """Also where a decade lies at the right end of the axis: its number would have no room for the unit."""
+    made = MagnitudePanel("Bode magnitude", theme)
+    seen(made, qtbot)
+    made.show(answer(sample("levitation")))
+    made.set_ranges(Extent(-1.0, 5.0), made.ranges()[1])
+    made.redraw()
+    (named,) = made.view.getPlotItem().getAxis("bottom")._tickLevels
+    assert named[-1] == (4.0, "10000 rad/s")
 
 
 def test_keys_walk_along_the_frequencies(panel: MagnitudePanel) -> None:
-    """A step is a hundredth of what is seen."""
-    panel.view.stepped.emit(10)
+    """A step is a hundredth of what is seen; the first one is at the lowest frequency."""
+    panel.view.stepped.emit(1)
     first = panel.marks.pointer
     panel.view.stepped.emit(10)
     assert first is not None
+    assert first[0] == pytest.approx(np.log10(curves_in(answer()).w[0]), abs=0.02)
     assert panel.marks.pointer is not None
-    assert panel.marks.pointer[0] > first[0]
+    assert panel.marks.pointer[0] - first[0] == pytest.approx(0.1 * panel.ranges()[0].span, rel=0.2)
+
+
+def test_a_stale_picture_is_grey(panel: MagnitudePanel, theme: Theme) -> None:
+    """The main curve and the worst one."""
+    panel.show_stale()
+    for curve in (panel.own[0], panel.worst):
+        assert curve.opts["pen"].color() == theme.colour("kept")

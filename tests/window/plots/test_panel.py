@@ -77,6 +77,18 @@ def test_before_the_first_answer_there_are_words(theme: Theme, qtbot: QtBot) -> 
     assert panel.view.isVisible()
 
 
+def test_an_answer_without_curves_is_words(panel: Plain) -> None:
+    """In their place, until there are curves again; nothing of the earlier answer is drawn any more."""
+    panel.show_empty("none")
+    assert not panel.view.isVisible()
+    assert (panel._empty.text(), panel._missed.text()) == ("none", "")
+    panel.hold(held=False)
+    assert panel.asked == []
+    panel.show(answer(1.0))
+    assert panel.view.isVisible()
+    assert not panel._empty.isVisible()
+
+
 def test_words_stand_above_the_plot(panel: Plain, theme: Theme) -> None:
     """The axis and what is missed, in the colour of what is lost only when something is; a screen reader hears both."""
     panel.set_words("temperature, degC", "overshoot 12 % > 8 %", bad=True)

@@ -5,20 +5,21 @@ from typing import TYPE_CHECKING
 import numpy as np
 from numpy.typing import NDArray
 
-from tuner.window.frequency.panel import loop_words, missed_of, worst_words
+from tuner.window.frequency.panel import worst_places
+from tuner.window.frequency.words import frequency_words, loop_words, missed_of, worst_name, worst_plant, worst_words
 from tuner.window.plots.extent import Extent
 from tuner.window.plots.items import Curve, Poles
+from tuner.window.plots.lines import Family
 from tuner.window.plots.marks import Marks, Stroke, Words
 from tuner.window.plots.panel import Panel
 from tuner.window.plots.thinning import Points
-from tuner.window.shown import Shown
+from tuner.window.shown import FamilyView, Shown
 from tuner.window.theme import Theme
 
 if TYPE_CHECKING:
     # It comes with compiled loops, which the first picture does not wait for.
     from tuner.simulate.curves import FrequencyCurves
 
-Array = NDArray[np.float64]
 ComplexArray = NDArray[np.complex128]
 
 _FAR = 20.0
@@ -30,7 +31,11 @@ _HALF = 1.5
 
 _POINTS = 400
 _TURN = np.exp(2j * np.pi * np.arange(181) / 180.0)
-_REACH = 0.15
+_REACH = 12.0
+"""Pixels within which the pointer means the curve."""
+
+_NONE: ComplexArray = np.empty((0, 0), dtype=np.complex128)
+_MEASURES = ("max_sensitivity",)
 
 
 class NyquistPanel(Panel):
@@ -38,23 +43,30 @@ class NyquistPanel(Panel):
 
     def __init__(self, name: str, theme: Theme) -> None:
         self._curves: FrequencyCurves | None = None
-        self._family: ComplexArray = np.empty((0, 0), dtype=np.complex128)
+        self._family = self._drawn = _NONE
+        self._worst: tuple[ComplexArray, str, str] | None = None
         self.family, self.own = Curve(smooth=False, depth=-40.0), Curve(strong=True)
-        self.one, self.limit = Curve(depth=-30.0), Curve(depth=-20.0)
+        self.one, self.limit, self.touched = Curve(depth=-30.0), Curve(depth=-20.0), Curve(depth=-25.0)
+        self.worst = Curve(depth=-15.0)
         self.critical = Poles(size=10, depth=120.0)
         super().__init__(name, theme)
-        for item in (self.family, self.one, self.limit, self.own, self.critical):
+        self.view.getPlotItem().getViewBox().setAspectLocked(lock=True, ratio=1.0)
+        for item in (self.family, self.one, self.limit, self.touched, self.worst, self.own, self.critical):
             self.view.addItem(item, ignoreBounds=True)
+        for still in (self.family, self.one, self.limit):
+            still.join(self.view.still)
 
     def draw(self, shown: Shown) -> None:
         """Take over the loop gains; until the whole family is known, its last curves stay."""
-        if shown.frequency is None or not shown.frequency.w.size:
+        curves = shown.frequency
+        if curves is None or not curves.w.size:
             return
-        self._curves = shown.frequency
+        self._curves = curves
         if shown.whole:
-            self._family = shown.frequency.gain[1:]
-            missed, bad = missed_of(shown, ("max_sensitivity",))
-            self.set_words(f"real and imaginary part{worst_words(shown, ('max_sensitivity',))}", missed, bad=bad)
+            self._family = _chosen(shown, curves)
+            self._worst = _worst(shown, curves)
+            missed, bad = missed_of(shown, _MEASURES)
+            self.set_words(f"real and imaginary part, 1{worst_words(shown, _MEASURES)}", missed, bad=bad)
         if (asked := self.ask()) is not None:
             self.set_ranges(*asked)
         self.redraw()
@@ -74,22 +86,31 @@ class NyquistPanel(Panel):
         if self._curves is None or self.shown is None:
             return
         self.family.set_colour(self._theme.colour("family"))
-        self.family.show_points(_bundle(self._family))
+        if self._drawn is not self._family:
+            self._drawn = self._family
+            self.family.show_points(_bundle(self._family))
         self.own.set_colour(self._theme.colour("kept" if self.stale else "nominal"))
         self.own.show_points(_points(_near(self._curves.gain[0])))
-        self.one.set_colour(self._theme.colour("quiet"))
-        self.one.show_points(_points(_TURN))
-        self._draw_limit(dict(self.shown.sheet.limits).get("max_sensitivity"))
+        self.worst.set_colour(self._theme.colour("kept" if self.stale else "limit"))
+        self.worst.show_points(_points(_near(self._worst[0]))) if self._worst else self.worst.clear_points()
+        self._draw_circles()
         self.critical.show_poles(np.array([-1.0]), np.array([0.0]), self._theme.colour("lost"), 2.0)
         self.divide("", time=False)
         self.marks.show_marks(Marks((), self._strokes(), self._words()), [])
 
-    def _draw_limit(self, most: float | None) -> None:
-        if most is None or most <= 0.0:
-            self.limit.clear_points()
-            return
-        self.limit.set_colour(self._theme.colour("limit"))
-        self.limit.show_points(_points(-1.0 + _TURN / most))
+    def _draw_circles(self) -> None:
+        """Draw the circle of gain one, that of the limit around the critical point, and the one that L touches."""
+        nearest, limit = self._nearest(), self._limit()
+        reach = abs(1.0 + nearest) if nearest is not None else 0.0
+        _circle(self.one, 0.0, 1.0)
+        _circle(self.limit, -1.0, 1.0 / limit if limit else 0.0)
+        _circle(self.touched, -1.0, reach)
+        roles = ((self.one, "quiet"), (self.limit, "limit"), (self.touched, "kept" if self.stale else "nominal"))
+        for curve, role in roles:
+            curve.set_colour(self._theme.colour(role))
+
+    def _limit(self) -> float | None:
+        return dict(self.shown.sheet.limits).get("max_sensitivity") if self.shown else None
 
     def _strokes(self) -> tuple[Stroke, ...]:
         """Return the distance from the critical point where the loop comes nearest to it."""
@@ -109,22 +130,27 @@ class NyquistPanel(Panel):
             Words(-1.0, 0.0, "\u22121", "lost_word", "right", "below"),
             Words(0.70, 0.71, "|L| = 1", "quiet", "left", "above"),
         ]
-        most = dict(self.shown.sheet.limits).get("max_sensitivity") if self.shown else None
-        if most:
-            words.append(Words(-1.0, 1.0 / most, f"max sensitivity {most:g}", "limit_word", "centre", "above"))
-        if (nearest := self._nearest()) is not None:
-            peak = 1.0 / max(abs(1.0 + nearest), 1e-12)
-            words.append(Words(nearest.real, nearest.imag, f"1/{peak:.3g}", "nominal_word", "left", "below"))
+        if most := self._limit():
+            words.append(Words(-1.0, 1.0 / most, f"|S| at most {most:g}", "limit_word", "right", "above"))
+        if (nearest := self._nearest()) is not None and self._curves is not None and self.shown is not None:
+            index = int(np.abs(self._curves.gain[0] - nearest).argmin())
+            at = frequency_words(float(self._curves.w[index]), self.shown.sheet)
+            said = f"peak of |S| {self._curves.sensitivity[0, index]:.3g} at {at}"
+            words.append(Words(nearest.real, nearest.imag, said, "nominal_word", "left", "below"))
+        if self._worst is not None:
+            gain, said, plant = self._worst
+            near = complex(gain[np.abs(1.0 + gain).argmin()])
+            words.append(Words(near.real, near.imag, said, "limit_word", "left", "below", plant))
         return tuple(words)
 
     def read(self, x: float, y: float) -> tuple[tuple[float, float], str] | None:
         """Return the loop at the point of its curve that is nearest to the pointer, when one is near."""
         if self._curves is None or self.shown is None:
             return None
-        gain = self._curves.gain[0]
+        gain, (across, _) = self._curves.gain[0], self.ranges()
         distance = np.abs(gain - complex(x, y))
         index = int(distance.argmin())
-        if distance[index] > _REACH:
+        if distance[index] > _REACH * across.span / self.columns():
             return None
         return (gain[index].real, gain[index].imag), loop_words(self._curves, index, self.shown.sheet)
 
@@ -140,8 +166,8 @@ class NyquistPanel(Panel):
     def forget(self) -> None:
         """Forget the curves."""
         super().forget()
-        self._curves = None
-        self._family = np.empty((0, 0), dtype=np.complex128)
+        self._curves = self._worst = None
+        self._family = _NONE
 
     def dress(self) -> None:
         """Take over the colours."""
@@ -149,10 +175,34 @@ class NyquistPanel(Panel):
         self.redraw()
 
 
+def _chosen(shown: Shown, curves: "FrequencyCurves") -> ComplexArray:
+    """Return the loop gains of the family to draw: here its ground is that of its curves."""
+    view: FamilyView = "curves" if shown.family_view == "band" else shown.family_view
+    places = worst_places(shown, curves)
+    parts = [Family(curves.w, part[1:], places).curves(view) for part in (curves.gain.real, curves.gain.imag)]
+    return np.asarray(parts[0] + 1j * parts[1])
+
+
+def _worst(shown: Shown, curves: "FrequencyCurves") -> tuple[ComplexArray, str, str] | None:
+    """Return the loop gain of the plant with the largest peak, its words and its name; None where it is looked at."""
+    found = worst_plant(shown, _MEASURES)
+    if found is None or found[1] not in curves.plants[1:]:
+        return None
+    return curves.gain[curves.plants.index(found[1])], worst_name(shown, _MEASURES, *found), found[1]
+
+
+def _circle(curve: Curve, centre: float, radius: float) -> None:
+    if radius > 0.0:
+        curve.show_points(_points(centre + radius * _TURN))
+    else:
+        curve.clear_points()
+
+
 def _near(gain: ComplexArray) -> ComplexArray:
     """Return loop gains drawn in to a circle far outside the picture."""
     size = np.maximum(np.abs(gain), 1e-300)
-    return np.asarray(np.where(size > _FAR, gain / size * _FAR, gain))
+    with np.errstate(invalid="ignore"):
+        return np.nan_to_num(np.where(size > _FAR, gain / size * _FAR, gain))
 
 
 def _points(curve: ComplexArray) -> Points:

@@ -1,20 +1,19 @@
-"""A plot over frequency: curves of the looked-at plant, the family behind it, and the marks of limits and margins."""
+"""A plot over frequency: the curve of the plant looked at, those of its family, limits and margins."""
 
 from dataclasses import dataclass
-from math import ceil, floor, log10
 from typing import TYPE_CHECKING
 
 import numpy as np
 from numpy.typing import NDArray
 from PySide6.QtGui import QColor
 
-from tuner.judge.assessment import Assessment
-from tuner.judge.wording import quantity, unit_of
-from tuner.model.measures import BY_NAME
-from tuner.model.sheet import Sheet
+from tuner.window.frequency.divisions import decades, multiples
+from tuner.window.frequency.words import loop_words, missed_of, worst_name, worst_plant, worst_words
 from tuner.window.plots import thinning
 from tuner.window.plots.extent import Extent, SteadyExtent
+from tuner.window.plots.family_picture import NO_FAMILY, FamilyPicture
 from tuner.window.plots.items import Curve
+from tuner.window.plots.lines import Family, Line
 from tuner.window.plots.marks import Marks, Words
 from tuner.window.plots.panel import Panel
 from tuner.window.plots.ticks import Tick, ticks
@@ -27,27 +26,30 @@ if TYPE_CHECKING:
 
 Array = NDArray[np.float64]
 
-_FAMILY_BINS = 150
-_TICK_WIDTH, _TICK_HEIGHT = 64, 28
-_DIVISIONS = (1, 2, 5)
+_TICK_WIDTH, _TICK_HEIGHT = 64, 24
+_UNIT = 24
+"""Pixels from the end of the axis within which no number is written."""
+_WORST_PLACE = 0.6
+"""Share of the curve of the worst plant at which it is named."""
 
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Bundle:
-    """Curves of one kind: the plant's own, those of the family, the name where it runs, and the role of its colour.
+    """Curves of one kind.
 
     Parameters
     ----------
-    own : ndarray, shape (n,)
-    family : ndarray, shape (m, n)
+    values : ndarray, shape (m, n)
+        A row for each plant, the one that is looked at first; may be infinite.
     name : str
+        What is written where its curve runs.
     role : str
+        Of its colour.
     place : float
         Share of the curve at which it is named.
     """
 
-    own: Array
-    family: Array
+    values: Array
     name: str
     role: str
     place: float = 0.5
@@ -57,18 +59,22 @@ class FrequencyPanel(Panel):
     """A plot over the logarithm of frequency; subclasses say which curves and marks."""
 
     measures: tuple[str, ...] = ()
-    """Measures that are read off here."""
+    """Measures that are read off here, the first of them the one whose worst plant is drawn."""
+    steps: tuple[float, ...] = ()
+    """Steps of the vertical axis; none for round numbers."""
 
-    def __init__(self, name: str, theme: Theme, curves: int = 1) -> None:
+    def __init__(self, name: str, theme: Theme, kinds: int = 1) -> None:
         self._steady, self._across = SteadyExtent(), SteadyExtent()
         self._curves: FrequencyCurves | None = None
         self._bundles: tuple[Bundle, ...] = ()
-        self._family_x = np.empty(0)
+        self._families: tuple[Family, ...] = (NO_FAMILY,) * kinds
+        self._worst: Line | None = None
         self._marks = Marks()
-        self._families = [Curve(smooth=False, depth=-40.0) for _ in range(curves)]
-        self._own = [Curve(strong=True, depth=float(-index)) for index in range(curves)]
         super().__init__(name, theme)
-        for item in (*self._families, *self._own):
+        self.pictures = [FamilyPicture(self.view, theme, second=index > 0) for index in range(kinds)]
+        self.worst = Curve(depth=-15.0)
+        self.own = [Curve(strong=True, depth=float(-index)) for index in range(kinds)]
+        for item in (self.worst, *self.own):
             self.view.addItem(item, ignoreBounds=True)
 
     # What subclasses say ----------------------------------------------------------------------------------------
@@ -89,33 +95,23 @@ class FrequencyPanel(Panel):
         """Return the range that is always in sight."""
         raise NotImplementedError
 
-    def said(self, value: float) -> str:
-        """Return a value of the vertical axis in words."""
-        raise NotImplementedError
-
     # Panel ------------------------------------------------------------------------------------------------------
 
     def draw(self, shown: Shown) -> None:
         """Take over the curves; until the whole family is known, its last curves stay."""
-        if shown.frequency is None or not shown.frequency.w.size:
+        curves = shown.frequency
+        if curves is None or not curves.w.size:
             return
-        self._curves = shown.frequency
-        bundles = self.bundles(shown.frequency)
-        if shown.whole or not self._bundles:
-            self._family_x = np.log10(shown.frequency.w)
-        else:
-            before = [one.family for one in self._bundles]
-            bundles = tuple(
-                Bundle(new.own, old, new.name, new.role, new.place) for new, old in zip(bundles, before, strict=True)
-            )
-        self._bundles = bundles
-        self._marks = self.frequency_marks(shown, shown.frequency)
+        self._curves, self._bundles = curves, self.bundles(curves)
+        self._marks = self.frequency_marks(shown, curves)
         if shown.whole:
+            self._take_family(shown, curves)
             missed, bad = missed_of(shown, self.measures)
             self.set_words(f"{self.axis_words()}{worst_words(shown, self.measures)}", missed, bad=bad)
         if (asked := self.ask()) is not None:
-            x = self._across.offer(asked[0], held=self.held)
-            self.set_ranges(x, self._steady.offer(asked[1], held=self.held))
+            held = self.held or not shown.whole
+            x = self._across.offer(asked[0], held=held)
+            self.set_ranges(x, self._steady.offer(asked[1], held=held))
         self.redraw()
 
     def ask(self) -> tuple[Extent, Extent] | None:
@@ -131,12 +127,12 @@ class FrequencyPanel(Panel):
             return
         (across, seen), columns = self.ranges(), self.columns()
         x = np.log10(self._curves.w)
-        for item, own, bundle in zip(self._families, self._own, self._bundles, strict=True):
-            item.set_colour(self._theme.colour("family" if bundle.role == "nominal" else "band"))
-            bins = min(_FAMILY_BINS, columns // 2)
-            item.show_points(thinning.bundle(self._family_x, _finite(bundle.family), seen, bins))
-            own.set_colour(self._colour(bundle.role))
-            own.show_points(thinning.single(x, _finite(bundle.own), seen, columns))
+        for picture, family in zip(self.pictures, self._families, strict=True):
+            picture.draw(family, self.shown.family_view, seen, columns)
+        for item, bundle in zip(self.own, self._bundles, strict=True):
+            item.set_colour(self._colour(bundle.role))
+            item.show_points(thinning.single(x, _finite(bundle.values[0]), seen, columns))
+        self._draw_worst(seen, columns)
         self.ground.areas = self._marks.areas
         self._divide(across, seen)
         self.marks.show_marks(self._marks, self._names(x, seen))
@@ -150,21 +146,22 @@ class FrequencyPanel(Panel):
         if not known[0] <= x <= known[-1]:
             return None
         index = int(np.abs(known - x).argmin())
-        value = float(self._bundles[0].own[index])
+        value = float(self._bundles[0].values[0, index])
         return (float(known[index]), value), loop_words(self._curves, index, self.shown.sheet)
 
     def step(self, steps: int) -> tuple[float, float] | None:
         """Return the next frequency, hundredths of what is seen away."""
         if self._curves is None:
             return None
-        x = self.ranges()[0]
-        now = self.marks.pointer[0] if self.marks.pointer else x.low
-        return float(np.clip(now + 0.01 * steps * x.span, x.low, x.high)), 0.0
+        x, known = self.ranges()[0], np.log10(self._curves.w[[0, -1]])
+        now = self.marks.pointer[0] if self.marks.pointer else max(x.low, float(known[0])) - 0.01 * steps * x.span
+        return float(np.clip(now + 0.01 * steps * x.span, *known)), 0.0
 
     def forget(self) -> None:
         """Forget ranges and curves."""
         super().forget()
-        self._curves, self._bundles = None, ()
+        self._curves, self._bundles, self._worst = None, (), None
+        self._families = (NO_FAMILY,) * len(self._families)
         self._steady.forget()
         self._across.forget()
 
@@ -175,6 +172,30 @@ class FrequencyPanel(Panel):
 
     # Inside -----------------------------------------------------------------------------------------------------
 
+    def _take_family(self, shown: Shown, curves: "FrequencyCurves") -> None:
+        """Take over the curves of the whole family, and of its worst plant unless that is the one looked at."""
+        x = np.log10(curves.w)
+        places = worst_places(shown, curves)
+        self._families = tuple(Family(x, _finite(bundle.values[1:]), places) for bundle in self._bundles)
+        self._worst = None
+        found = worst_plant(shown, self.measures)
+        if found is not None and found[1] in curves.plants[1:]:
+            measure, plant = found
+            row = self._bundles[self.worst_kind(measure)].values[curves.plants.index(plant)]
+            self._worst = Line(x, _finite(row), worst_name(shown, self.measures, measure, plant), plant)
+
+    def worst_kind(self, measure: str) -> int:
+        """Return which of the kinds of curves shows a measure."""
+        del measure
+        return 0
+
+    def _draw_worst(self, seen: Extent, columns: int) -> None:
+        if self._worst is None:
+            self.worst.clear_points()
+            return
+        self.worst.set_colour(self._colour("limit"))
+        self.worst.show_points(thinning.single(self._worst.t, self._worst.values, seen, columns))
+
     def _colour(self, role: str) -> QColor:
         return self._theme.colour("kept" if self.stale else role)
 
@@ -182,67 +203,34 @@ class FrequencyPanel(Panel):
         unit = f"rad/{self.shown.sheet.loop.time_unit}" if self.shown else ""
         room = max(int(self.columns() / _TICK_WIDTH), 2)
         rows = max(int(self.view.getPlotItem().getViewBox().height() / _TICK_HEIGHT), 2)
-        self.set_ticks(decades(across.low, across.high, room), ticks(upwards.low, upwards.high, rows), unit)
+        # The last number has the unit behind it, for which there is no room at the very end.
+        end = across.high - _UNIT * across.span / self.columns()
+        self.set_ticks(decades(across.low, end, room), self._rows(upwards, rows), unit)
+
+    def _rows(self, upwards: Extent, count: int) -> tuple[Tick, ...]:
+        if self.steps:
+            return multiples(upwards.low, upwards.high, count, self.steps)
+        return ticks(upwards.low, upwards.high, count)
 
     def _names(self, x: Array, seen: Extent) -> list[Words]:
+        """Return the names of the curves, each where it runs."""
+        named = [(x, one.values[0], one.place, one.name, f"{one.role}_word", "") for one in self._bundles]
+        if self._worst is not None:
+            line = self._worst
+            named.append((line.t, line.values, _WORST_PLACE, line.name, "limit_word", line.plant))
         names = []
-        for bundle in self._bundles:
-            inside = np.flatnonzero((bundle.own > seen.low) & (bundle.own < seen.high))
+        for at, values, place, name, role, plant in named:
+            inside = np.flatnonzero((values > seen.low) & (values < seen.high))
             if inside.size:
-                at = int(inside[int(bundle.place * (inside.size - 1))])
-                names.append(Words(float(x[at]), float(bundle.own[at]), bundle.name, f"{bundle.role}_word", "left"))
+                index = int(inside[int(place * (inside.size - 1))])
+                names.append(Words(float(at[index]), float(values[index]), name, role, "left", "above", plant))
         return names
 
 
-def decades(low: float, high: float, count: int) -> tuple[Tick, ...]:
-    """Return the divisions of a logarithmic axis, given as logarithms: decades, and 2 and 5 where there is room."""
-    steps = _DIVISIONS if (high - low) * len(_DIVISIONS) <= count else (1,)
-    every = max(1, ceil((high - low) / count))
-    return tuple(
-        Tick(place, f"{step * 10.0**decade:g}")
-        for decade in range(floor(low), ceil(high) + 1)
-        if decade % every == 0
-        for step in steps
-        if low <= (place := decade + log10(step)) <= high
-    )
-
-
-def loop_words(curves: "FrequencyCurves", index: int, sheet: Sheet) -> str:
-    """Return the loop at one frequency in words."""
-    value = complex(curves.gain[0, index])
-    phase = float(np.degrees(np.angle(value)))
-    phase -= 360.0 * (phase > 0.0)
-    s = abs(1.0 / (1.0 + value)) if value != -1.0 else np.inf
-    w = quantity(float(curves.w[index]), f"rad/{sheet.loop.time_unit}", 3)
-    said = (
-        f"at {w}: L {20.0 * log10(max(abs(value), 1e-300)):.1f} dB, {phase:.0f}°; |S| {s:.3g}, |T| {s * abs(value):.3g}"
-    )
-    return said.replace("-", "\u2212")
-
-
-def worst_words(shown: Shown, measures: tuple[str, ...]) -> str:
-    """Return the worst of some margins over the family, and the plants that have them."""
-    said = [found for name in measures if (found := _worst(shown.assessment, name, shown.sheet))]
-    return "; ".join(("", *said))
-
-
-def _worst(assessment: Assessment, name: str, sheet: Sheet) -> str:
-    worst = assessment.worst.get(name)
-    if worst is None or worst.value is None:
-        return ""
-    where = "the nominal plant" if worst.plant == "nominal" else worst.plant
-    return f"{BY_NAME[name].label} at worst {quantity(worst.value, unit_of(name, sheet.loop), 3)} with {where}"
-
-
-def missed_of(shown: Shown, measures: tuple[str, ...]) -> tuple[str, bool]:
-    """Return the words on the limits of some measures, and whether any is missed."""
-    limits = [limit for limit in shown.assessment.limits if limit.measure in measures]
-    missed = [one.sentence for one in shown.overlay.callouts if one.measure in measures]
-    if missed:
-        return "; ".join(missed), True
-    if not limits:
-        return "nothing here is on the acceptance sheet", False
-    return ("the limit here is met" if len(limits) == 1 else f"all {len(limits)} limits here are met"), False
+def worst_places(shown: Shown, curves: "FrequencyCurves") -> tuple[int, ...]:
+    """Return the rows of the plants behind the first that are the worst of some limit."""
+    plants = {limit.plant for limit in shown.assessment.limits}
+    return tuple(place for place, name in enumerate(curves.plants[1:]) if name in plants)
 
 
 def _finite(values: Array) -> Array:

@@ -205,6 +205,14 @@ class Panel(QObject):
         """Say why there is nothing to show yet."""
         self._empty.setText(sentence)
 
+    def show_empty(self, sentence: str) -> None:
+        """Show a sentence in place of curves: an answer has none."""
+        self.shown = None
+        self.view.setVisible(False)
+        self._empty.setText(sentence)
+        self._empty.setVisible(True)
+        self.set_words("", "", bad=False)
+
     def dress(self) -> None:
         """Take over the colours of the theme."""
         self.view.setBackground(self._theme.colour("page"))

@@ -1,6 +1,6 @@
 """The plots over time: the reference step, the disturbance, and the effort of both runs."""
 
-from dataclasses import dataclass, replace
+from dataclasses import replace
 
 import numpy as np
 from numpy.typing import NDArray
@@ -13,9 +13,9 @@ from tuner.model.sheet import Sheet
 from tuner.simulate.traces import Trace
 from tuner.window.plots import thinning
 from tuner.window.plots.extent import Extent, SteadyExtent, wanted
+from tuner.window.plots.family_picture import FamilyPicture
 from tuner.window.plots.items import Curve
 from tuner.window.plots.lines import (
-    Family,
     Limited,
     Line,
     Lines,
@@ -28,33 +28,15 @@ from tuner.window.plots.lines import (
 from tuner.window.plots.marks import Marks, Side, Words, trace_marks
 from tuner.window.plots.panel import Panel
 from tuner.window.plots.words import missed_words
-from tuner.window.shown import FamilyView, Shown
+from tuner.window.shown import Shown
 from tuner.window.theme import Theme
 
 Array = NDArray[np.float64]
 
-_FAMILY_BINS = 150
 _WORTH_WORDS = 0.05
 """Share of the run at a limit from which it is named; words on a shorter piece would hide it."""
 _BEFORE = 0.02
 """Share of the duration that is shown before the step."""
-
-
-@dataclass(frozen=True, slots=True, eq=False)
-class _Drawn:
-    """What a family was drawn from, and for which picture."""
-
-    family: Family
-    view: FamilyView
-    seen: Extent
-    columns: int
-    shade: str
-
-    def same_as(self, other: "_Drawn | None") -> bool:
-        """Tell whether the picture would be the same."""
-        if other is None or other.family is not self.family:
-            return False
-        return (other.view, other.seen, other.columns, other.shade) == (self.view, self.seen, self.columns, self.shade)
 
 
 class TracePanel(Panel):
@@ -66,19 +48,16 @@ class TracePanel(Panel):
         self._lines: Lines | None = None
         self._marks = Marks()
         self._steady = SteadyExtent()
-        self._drawn: _Drawn | None = None
-        self.band = Curve(smooth=False, depth=-50.0)
-        self.family = Curve(smooth=False, depth=-40.0)
         self.kept: list[Curve] = []
         self.worst = Curve(depth=-15.0)
         self.second = Curve(depth=-10.0)
         self.nominal = Curve(strong=True, depth=0.0)
         self.limited = Curve(strong=True, depth=10.0)
         super().__init__(name, theme)
-        for curve in (self.band, self.family, self.worst, self.second, self.nominal, self.limited):
+        self._family = FamilyPicture(self.view, theme)
+        self.band, self.family = self._family.band, self._family.curves
+        for curve in (self.worst, self.second, self.nominal, self.limited):
             self.view.addItem(curve, ignoreBounds=True)
-        for curve in (self.band, self.family):
-            curve.join(self.view.still)
 
     # What subclasses say ----------------------------------------------------------------------------------------
 
@@ -129,7 +108,7 @@ class TracePanel(Panel):
         if self._lines is None or self.shown is None:
             return
         seen, columns = self.ranges()[1], self.columns()
-        self._draw_family(self._lines.family, self.shown.family_view, seen, columns)
+        self._family.draw(self._lines.family, self.shown.family_view, seen, columns)
         self._draw_kept(self._lines, seen, columns)
         self._draw_line(self.nominal, self._lines.nominal, "nominal", seen, columns)
         self._draw_line(self.second, self._lines.second, "disturbance", seen, columns)
@@ -174,17 +153,6 @@ class TracePanel(Panel):
 
     def _colour(self, role: str) -> QColor:
         return self._theme.colour("kept" if self.stale else role)
-
-    def _draw_family(self, family: Family, view: FamilyView, seen: Extent, columns: int) -> None:
-        """Draw the family, unless it is drawn already: a first answer leaves it as it was."""
-        drawn = _Drawn(family, view, seen, columns, self._theme.palette.shade)
-        if drawn.same_as(self._drawn):
-            return
-        self._drawn = drawn
-        self.band.set_colour(self._theme.colour("band"))
-        self.family.set_colour(self._theme.colour("family"))
-        self.band.show_pairs(thinning.envelope(family.t, family.ground(view), seen, columns * 3 // 2))
-        self.family.show_points(thinning.bundle(family.t, family.curves(view), seen, min(_FAMILY_BINS, columns // 2)))
 
     def _draw_kept(self, lines: Lines, seen: Extent, columns: int) -> None:
         while len(self.kept) < len(lines.kept):
