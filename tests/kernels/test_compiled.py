@@ -1,6 +1,9 @@
 """The door to numba: what comes through it computes the same as plain Python, and the cache knows the law."""
 
+import os
+from collections.abc import Callable
 from pathlib import Path
+from typing import cast
 
 import numpy as np
 import pytest
@@ -34,6 +37,17 @@ def test_exact_code_is_never_that_of_the_lanes() -> None:
     exact, free, again = compiled(product), compiled_lanes(product), compiled(product)
     kept = [function._cache.cache_path for function in (exact, free, again)]  # type: ignore[attr-defined]  # numba's
     assert kept[0] == kept[2] != kept[1]
+
+
+def test_registers_are_as_wide_as_is_good() -> None:
+    """The whole width is used where a processor has it and does not pay for it; elsewhere its own preference stays."""
+    from numba.core import codegen, config
+
+    own = cast(Callable[[], str], codegen.get_host_cpu_features)().split(",")
+    set_to = vars(config)["CPU_FEATURES"]
+    assert (set_to is not None) == ("+avx512vbmi2" in own or "NUMBA_CPU_FEATURES" in os.environ)
+    if set_to is not None and "NUMBA_CPU_FEATURES" not in os.environ:
+        assert set_to.split(",") == [*own, "-prefer-256-bit"]
 
 
 def test_the_cache_notices_a_changed_law(tmp_path: Path, monkeypatch: pytest.MonkeyPatch) -> None:

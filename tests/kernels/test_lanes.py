@@ -29,16 +29,15 @@ def run(
     grading = Grading(found, ground, [one.controller for one in tuned])
     speed, size = ground.speeds[0], ground.size
     constants = np.ascontiguousarray(grading._constants(np.arange(lanes.LANES), ground.steps[0]).T).ravel()
-    points, samples = speed.timing[0, 2:4]
-    y, u = np.zeros((points, lanes.LANES)), np.zeros((samples, lanes.LANES))
-    state = np.zeros(lanes.rows(size) * lanes.LANES)
-    filters = (0,) if found.controller.measurement_filter or found.controller.notch else ()
+    delay, points, samples = speed.timing[0, 1:4]
+    y, u = np.zeros((points, lanes.LANES)), np.zeros((samples + delay + 1, lanes.LANES))
+    state, planned = np.zeros(lanes.rows(size) * lanes.LANES), np.zeros(lanes.plan(size))
     course = grading._course([0], grading._limits(readings.MEASURES))
     lanes.run(
-        size, filters, constants, speed.rows[0], speed.push[0], speed.timing[0], course.wanted[which],
-        speed.feedforward[which], y.reshape(-1), u.reshape(-1), state,
+        size, grading.rich(), constants, speed.rows[0], speed.push[0], speed.timing[0], course.wanted[which],
+        speed.feedforward[which], y.reshape(-1), u.reshape(-1), state, planned,
     )  # fmt: skip
-    return y, u, state[lanes.totals_from(size) :].reshape(-1, lanes.LANES), tuned
+    return y, u[:samples], state[lanes.totals_from(size) :].reshape(-1, lanes.LANES), tuned
 
 
 @pytest.mark.parametrize("which", [0, 1])

@@ -8,7 +8,7 @@ from tests.kernels.test_lanes import run
 from tuner.assess import results_of
 from tuner.footing.grading import Grading
 from tuner.footing.ground import ground_of
-from tuner.kernels import lanes, readings
+from tuner.kernels import lanes, passes, readings
 from tuner.measure.trial import NO_OVERSHOOT
 from tuner.model.family import family_of
 from tuner.model.sheet import Sheet
@@ -29,7 +29,7 @@ def test_bounds_hold_the_measures(found: Sheet) -> None:
     """Every measure of both runs, for every lane that is stable; none is infinite, minus where that is good."""
     ground = ground_of(found, 1)
     low, high = np.zeros((13, lanes.LANES)), np.zeros((13, lanes.LANES))
-    asked, work = np.ones(13, dtype=np.uint8), np.zeros(readings.WORK_ROWS * lanes.LANES)
+    asked, work = np.ones(13, dtype=np.uint8), np.zeros(passes.ROWS * lanes.LANES)
     speed, band = ground.speeds[0], found.trial.settling_band / 100.0
     points, samples = speed.timing[0, 2:4]
     for which in (0, 1):

@@ -83,6 +83,7 @@ class Grading:
     numbers: Numbers = field(init=False)
     doubts: dict[int, list[int]] = field(default_factory=dict)
     misses: NDArray[np.int64] = field(init=False)
+    baked: dict[float, Array] = field(default_factory=dict)
 
     def __post_init__(self) -> None:
         """Take the numbers of the tunings out, for what looks at all of them at once."""
@@ -231,22 +232,32 @@ class Grading:
             np.full((2, count, len(self.ground.members), lanes.LANES) if watched[0] >= 0 else (2, 0, 0, 0), nan),
         )
         course = self._course(members, limits)._replace(watched=watched[0])
-        filters = (0,) if self.sheet.controller.measurement_filter or self.sheet.controller.notch else ()
-        spread_out(lambda begin, end: grades.grade(self.ground.size, filters, course, blocks, begin, end), count)
+        rich = self.rich()
+        spread_out(lambda begin, end: grades.grade(self.ground.size, rich, course, blocks, begin, end), count)
         active[left] = blocks.active.reshape(-1)[: len(left)]
         doubt[left] |= blocks.doubt.swapaxes(1, 2).reshape(-1, len(self.ground.members))[: len(left)]
         if watched[0] >= 0:
             flat = blocks.values.swapaxes(2, 3).reshape(2, -1, len(self.ground.members))
             watched[1][:] = flat[:, : len(left)]
 
+    def rich(self) -> lanes.Size:
+        """Return whether the measurement has a filter, a notch or a resolution, as `lanes.run` takes it."""
+        controller = self.sheet.controller
+        return (0,) if controller.measurement_filter or controller.notch or self.sheet.sensor.resolution else ()
+
     def _constants(self, places: NDArray[np.intp], step: float) -> Array:
         """Return the constants of the law of some tunings at a step, shape (k, 19)."""
-        controller = self.sheet.controller
-        out = np.tile(np.array(law_constants(self.sheet, step, controller.measurement_filter)), (len(places), 1))
-        some = np.array(self.numbers).T[places]
+        if step not in self.baked:
+            self.baked[step] = self._bake(step)
+        found: Array = self.baked[step][places]
+        return found
+
+    def _bake(self, step: float) -> Array:
+        controller, some = self.sheet.controller, np.array(self.numbers).T
+        out = np.tile(np.array(law_constants(self.sheet, step, controller.measurement_filter)), (len(some), 1))
         if controller.feedback:
-            own = np.array([gain_constants(step, *gains) for gains in some[:, : -len(_WEIGHTS)].tolist()])
-            out[:, : own.shape[1]] = own
+            own = [gain_constants(step, *gains) for gains in some[:, : -len(_WEIGHTS)].tolist()]
+            out[:, : len(GainConstants._fields)] = own
         out[:, len(GainConstants._fields) : len(GainConstants._fields) + len(_WEIGHTS)] = some[:, -len(_WEIGHTS) :]
         return out
 

@@ -11,13 +11,12 @@ import numpy as np
 from numpy.typing import NDArray
 
 from tuner.kernels.compiled import compiled
-from tuner.kernels.lanes import LANES, Size, run
+from tuner.kernels.lanes import CONSTANTS, LANES, Size, plan, rows, run, totals_from
+from tuner.kernels.passes import NOTHING, ROWS
 from tuner.kernels.readings import (
     MEASURES,
-    NOTHING,
     REFERENCE_COUNT,
     ROUNDING,
-    WORK_ROWS,
     disturbance_bounds,
     reference_bounds,
 )
@@ -114,6 +113,32 @@ class Blocks(NamedTuple):
     values: Array
 
 
+class Scratch(NamedTuple):
+    """What a block needs while it runs, the same for one block after the other.
+
+    Parameters
+    ----------
+    y, efforts, state, constants, planned : ndarray
+        See `lanes.run`.
+    work : ndarray, shape (ROWS lanes,)
+    """
+
+    y: Array
+    efforts: Array
+    state: Array
+    constants: Array
+    planned: Array
+    work: Array
+
+
+@compiled
+def _aligned(count: int) -> Array:
+    """Return numbers that begin where a line of the cache does: a wide register that lies across two takes twice."""
+    whole = np.empty(count + 7)
+    first = -(whole.ctypes.data // 8) % 8
+    return whole[first : first + count]
+
+
 @compiled
 def _decide(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
     limits: Array, begin: int, end: int, low: Array, high: Array, active: Flags, doubt: Flags, misses: Integers, m: int
@@ -184,14 +209,14 @@ def _doubt_nothing(step: float, ends: Array, low: Array, high: Array) -> None:
 @compiled
 def _both(  # noqa: PLR0913, PLR0917 - what a run takes
     size: Size,
-    filters: Size,
+    rich: Size,
     course: Course,
     blocks: Blocks,
     which: int,
     g: int,
     m: int,
     asked: Flags,
-    scratch: tuple[Array, Array, Array, Array],
+    scratch: Scratch,
     ends: Array,
     coarse_low: Array,
     coarse_high: Array,
@@ -199,15 +224,16 @@ def _both(  # noqa: PLR0913, PLR0917 - what a run takes
     high: Array,
 ) -> None:
     """Run a block with a plant, the reference run or the disturbance run, and bound its measures."""
-    y, u, state, work = scratch
-    totals = state[(2 * len(size) + 2 + 8) * LANES :]
+    y, work = scratch.y, scratch.work
+    totals = scratch.state[totals_from(size) :]
     begin, end = (0, REFERENCE_COUNT) if which == 0 else (REFERENCE_COUNT, len(MEASURES))
     for v in range(len(course.speeds)):
         speed = course.speeds[v]
         points, samples = speed.timing[m, 2], speed.timing[m, 3]
+        scratch.constants[:] = blocks.constants[v, g]
         run(
-            size, filters, blocks.constants[v, g], speed.rows[m], speed.push[m], speed.timing[m],
-            course.wanted[which], speed.feedforward[which], y, u, state,
+            size, rich, scratch.constants, speed.rows[m], speed.push[m], speed.timing[m],
+            course.wanted[which], speed.feedforward[which], y, scratch.efforts, scratch.state, scratch.planned,
         )  # fmt: skip
         if which == 0:
             reference_bounds(
@@ -240,19 +266,22 @@ def _both(  # noqa: PLR0913, PLR0917 - what a run takes
 
 @compiled
 def grade(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
-    size: Size, filters: Size, course: Course, blocks: Blocks, begin: int, end: int
+    size: Size, rich: Size, course: Course, blocks: Blocks, begin: int, end: int
 ) -> None:
     """Run blocks `begin` to `end` with the plants of `course.order`.
 
     Parameters
     ----------
-    size, filters : tuple of int
+    size, rich : tuple of int
         See `lanes.run`.
     """
-    points, samples = course.speeds[-1].timing[0, 2], course.speeds[-1].timing[0, 3]
-    scratch = (
-        np.empty(points * LANES), np.empty(samples * LANES), np.empty((2 * len(size) + 2 + 12) * LANES),
-        np.empty(WORK_ROWS * LANES),
+    points = course.speeds[-1].timing[0, 2]
+    delay = 0
+    for v in range(len(course.speeds)):
+        delay = max(delay, course.speeds[v].timing[:, 1].max())
+    scratch = Scratch(
+        _aligned(points * LANES), _aligned((delay + 1) * LANES), _aligned(rows(size) * LANES),
+        _aligned(CONSTANTS * LANES), _aligned(plan(size)), _aligned(ROWS * LANES),
     )  # fmt: skip
     low, high = np.zeros((len(MEASURES), LANES)), np.zeros((len(MEASURES), LANES))
     coarse_low, coarse_high = np.zeros((len(MEASURES), LANES)), np.zeros((len(MEASURES), LANES))
@@ -268,13 +297,13 @@ def grade(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
                 break
             left = True
             if first:
-                _both(size, filters, course, blocks, 0, g, m, asked, scratch, ends, coarse_low, coarse_high, low, high)
+                _both(size, rich, course, blocks, 0, g, m, asked, scratch, ends, coarse_low, coarse_high, low, high)
                 left = _decide(
                     course.limits, 0, REFERENCE_COUNT, low, high, blocks.active[g], blocks.doubt[g, m],
                     blocks.misses, m,
                 )  # fmt: skip
             if second and (left or course.watched >= REFERENCE_COUNT):
-                _both(size, filters, course, blocks, 1, g, m, asked, scratch, ends, coarse_low, coarse_high, low, high)
+                _both(size, rich, course, blocks, 1, g, m, asked, scratch, ends, coarse_low, coarse_high, low, high)
                 _decide(
                     course.limits, REFERENCE_COUNT, len(MEASURES), low, high, blocks.active[g], blocks.doubt[g, m],
                     blocks.misses, m,

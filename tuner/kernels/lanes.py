@@ -1,8 +1,9 @@
 """The sampled loop, compiled for many tunings of one plant side by side: one tuning in each lane of a block.
 
 Loops over samples are plain for the reason given in `loop`. Inside, every loop runs along the lanes, whose number is a
-constant: one instruction then computes several of them, which it can only do because all that changes lies in one flat
-array and all that a lane brings in another, so that the compiler sees that they do not overlap.
+constant: one instruction then computes several of them, which it can only do because a loop touches few arrays, each
+flat, so that the compiler sees (or asks once before the loop) that they do not overlap. No loop only copies: numbers
+would go one by one, and the processor waits where it then reads them together.
 
 The states of a plant are taken from sample to sample in one go; what its output is in between is read off the state
 at the sample, see `Pace`. The control law is the same text as everywhere.
@@ -11,7 +12,7 @@ at the sample, see `Pace`. The control law is the same text as everywhere.
 import numpy as np
 from numpy.typing import NDArray
 
-from tuner.kernels.compiled import compiled_lanes
+from tuner.kernels.compiled import compiled, compiled_lanes
 from tuner.law.pid import law
 
 Array = NDArray[np.float64]
@@ -26,12 +27,25 @@ CONSTANTS = 19
 SIZES = (1, 2, 3, 4, 5, 6, 8, 10, 12, 16, 24, 32, 48, 64, 96, 128)
 """Numbers of states for which there is a kernel of its own; a plant of another order takes the next larger one."""
 
+FUSED = 6
+"""States up to which a lane takes all its next states in one go; with more of them rows go one by one."""
+
+PLACE = 2**40 - 1
+"""A mask that changes no place in an array, and tells the compiler that it is not counted from the end."""
+
 TOTALS = 4
 LIMITED, TRAVEL, PEAK, AWAY = range(TOTALS)
 """What a run counts along its samples: samples at a limit, movement and size of the effort, whether it ran away."""
 
 LOOKS = 8
 """Samples after which it is looked whether lanes have run away; one that has starts anew, so that it stays finite."""
+
+KEPT = 7
+"""States of the law that a run keeps."""
+
+_ASKED = 5
+_CONSTANT, _FEEDFORWARD, _COUNTS, _REFERENCE, _QUANTUM = range(_ASKED)
+"""What a sample brings; the row of the measurement follows."""
 
 Size = tuple[int, ...]
 """As many numbers as a plant has states: a compiler knows the length of a tuple, and can then lay out every loop."""
@@ -53,26 +67,43 @@ def size_for(order: int) -> Size:
     raise ValueError(f"a plant of order {order} has more states than {SIZES[-1]}")
 
 
+@compiled
 def rows(size: Size) -> int:
-    """Return how many rows of lanes a run needs for its states."""
-    return 2 * len(size) + 2 + 7 + 1 + TOTALS
+    """Return how many rows of lanes a run needs: states, next states, the effort that acts, the law, totals."""
+    return 2 * len(size) + 1 + KEPT + TOTALS
 
 
+@compiled
+def plan(size: Size) -> int:
+    """Return how many numbers a run needs for what a sample brings and for the rows of the plant."""
+    n = len(size)
+    return _ASKED + n + 1 + n * (n + 3)
+
+
+@compiled
 def totals_from(size: Size) -> int:
     """Return at which number of a run's states its totals begin."""
     return (rows(size) - TOTALS) * LANES
 
 
 @compiled_lanes
-def _decide(size: Size, filters: Size, state: Array, constants: Array, asked: Array) -> None:
-    """Let the law take its sample in every lane; `asked` holds reference, feedforward, and 1 where it counts."""
-    kept = (2 * len(size) + 2) * LANES
-    seen, totals = kept + 7 * LANES, kept + 8 * LANES
+def _decide(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
+    size: Size, rich: Size, state: Array, constants: Array, asked: Array, efforts: Array, now: int
+) -> None:
+    """Let every lane measure and its law take a sample; its effort is noted from place `now` on as well."""
+    n = len(size)
+    acts, kept, totals = 2 * n * LANES, (2 * n + 1) * LANES, (2 * n + 1 + KEPT) * LANES
     for i in range(LANES):
-        if len(filters) > 0:
+        seen = asked[_CONSTANT] + asked[_ASKED + n] * state[acts + i]
+        for c in range(n):
+            seen += asked[_ASKED + c] * state[c * LANES + i]
+        before = state[kept + i]
+        if len(rich) > 0:
+            quantum = asked[_QUANTUM] if asked[_QUANTUM] > 0.0 else 1.0
+            seen = quantum * np.floor(seen / quantum + 0.5) if asked[_QUANTUM] > 0.0 else seen
             effort, integral, derivative, weighted, smooth, one, two, _, touched, _ = _law(
-                asked[0], state[seen + i], asked[1], 0.0,
-                state[kept + i], state[kept + LANES + i], state[kept + 2 * LANES + i], state[kept + 3 * LANES + i],
+                asked[_REFERENCE], seen, asked[_FEEDFORWARD], 0.0,
+                before, state[kept + LANES + i], state[kept + 2 * LANES + i], state[kept + 3 * LANES + i],
                 state[kept + 4 * LANES + i], state[kept + 5 * LANES + i], state[kept + 6 * LANES + i], 0.0, 0.0, 0.0,
                 constants[i], constants[LANES + i], constants[2 * LANES + i], constants[3 * LANES + i],
                 constants[4 * LANES + i], constants[5 * LANES + i], constants[6 * LANES + i],
@@ -86,8 +117,8 @@ def _decide(size: Size, filters: Size, state: Array, constants: Array, asked: Ar
             state[kept + 6 * LANES + i] = two
         else:
             effort, integral, derivative, weighted, smooth, one, two, _, touched, _ = _law(
-                asked[0], state[seen + i], asked[1], 0.0,
-                state[kept + i], state[kept + LANES + i], state[kept + 2 * LANES + i], state[kept + 3 * LANES + i],
+                asked[_REFERENCE], seen, asked[_FEEDFORWARD], 0.0,
+                before, state[kept + LANES + i], state[kept + 2 * LANES + i], state[kept + 3 * LANES + i],
                 0.0, 0.0, 0.0, 0.0, 0.0, 0.0,
                 constants[i], constants[LANES + i], constants[2 * LANES + i], constants[3 * LANES + i],
                 constants[4 * LANES + i], constants[5 * LANES + i], constants[6 * LANES + i],
@@ -96,34 +127,103 @@ def _decide(size: Size, filters: Size, state: Array, constants: Array, asked: Ar
                 constants[17 * LANES], constants[18 * LANES],
             )  # fmt: skip
         state[totals + LIMITED * LANES + i] += touched
-        state[totals + TRAVEL * LANES + i] += abs(effort - state[kept + i]) * asked[2]
-        state[totals + PEAK * LANES + i] = max(state[totals + PEAK * LANES + i], abs(effort) * asked[2])
+        state[totals + TRAVEL * LANES + i] += abs(effort - before) * asked[_COUNTS]
+        state[totals + PEAK * LANES + i] = max(state[totals + PEAK * LANES + i], abs(effort) * asked[_COUNTS])
         state[kept + i] = effort
         state[kept + LANES + i] = integral
         state[kept + 2 * LANES + i] = derivative
         state[kept + 3 * LANES + i] = weighted
+        efforts[(now & PLACE) + i] = effort
 
 
 @compiled_lanes
-def _look(size: Size, state: Array, y: Array, at: int, ceiling: float) -> bool:
+def _show(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
+    size: Size, row: Array, constant: float, state: Array, efforts: Array, due: int, y: Array, at: int
+) -> None:
+    """Write the output of every lane at one point of a sample; the effort at place `due` begins to act in it."""
+    n = len(size)
+    acts = 2 * n * LANES
+    for i in range(LANES):
+        total = constant + row[n] * state[acts + i] + row[n + 1] * efforts[(due & PLACE) + i]
+        for c in range(n):
+            total += row[c] * state[c * LANES + i]
+        y[(at & PLACE) + i] = total
+
+
+@compiled_lanes
+def _advance(size: Size, pace: Array, state: Array, efforts: Array, due: int) -> None:
+    """Take the states of every lane to the next sample, all of a lane in one go.
+
+    Parameters
+    ----------
+    pace : ndarray, shape (n (n + 3),)
+        For each state, what it takes of the states, of the effort that acted and of that which begins to act, and what
+        the disturbance adds.
+    """
+    n = len(size)
+    ahead, acts = n * LANES, 2 * n * LANES
+    for i in range(LANES):
+        begins = efforts[(due & PLACE) + i]
+        for j in range(n):
+            row = j * (n + 3)
+            total = pace[row + n + 2] + pace[row + n] * state[acts + i] + pace[row + n + 1] * begins
+            for c in range(n):
+                total += pace[row + c] * state[c * LANES + i]
+            state[ahead + j * LANES + i] = total
+        for j in range(n):
+            state[j * LANES + i] = state[ahead + j * LANES + i]
+        state[acts + i] = begins
+
+
+@compiled_lanes
+def _advance_by_rows(size: Size, pace: Array, state: Array, efforts: Array, due: int) -> None:
+    """Do as `_advance`, one state of all lanes after the other: so many in one go do not fit into a loop."""
+    n = len(size)
+    ahead, acts = n * LANES, 2 * n * LANES
+    for j in range(n):
+        row = j * (n + 3)
+        for i in range(LANES):
+            total = pace[row + n + 2] + pace[row + n] * state[acts + i]
+            total += pace[row + n + 1] * efforts[(due & PLACE) + i]
+            for c in range(n):
+                total += pace[row + c] * state[c * LANES + i]
+            state[ahead + j * LANES + i] = total
+    for i in range(n * LANES):
+        state[i] = state[ahead + i]
+    for i in range(LANES):
+        state[acts + i] = efforts[(due & PLACE) + i]
+
+
+@compiled_lanes
+def _some_away(size: Size, state: Array, y: Array, at: int, ceiling: float) -> bool:
+    """Return whether any lane has run away."""
+    kept = (2 * len(size) + 1) * LANES
+    count = 0
+    for i in range(LANES):
+        count += 1 if max(abs(y[(at & PLACE) + i]), abs(state[kept + i])) > ceiling else 0
+    return count > 0
+
+
+@compiled_lanes
+def _mark(size: Size, state: Array, y: Array, at: int, ceiling: float) -> bool:
     """Mark lanes that have run away and let them start anew; return whether all have."""
-    kept = (2 * len(size) + 2) * LANES
-    away = kept + (8 + AWAY) * LANES
+    kept = (2 * len(size) + 1) * LANES
+    away = kept + (KEPT + AWAY) * LANES
     fewest = 1.0
     for i in range(LANES):
-        gone = max(abs(y[at + i]), abs(state[kept + i])) > ceiling
+        gone = max(abs(y[(at & PLACE) + i]), abs(state[kept + i])) > ceiling
         state[away + i] = 1.0 if gone else state[away + i]
         fewest = min(fewest, state[away + i])
-    for j in range(len(size) + 2):
+    for j in range(2 * len(size) + 1 + KEPT):
         for i in range(LANES):
             state[j * LANES + i] = 0.0 if state[away + i] > 0.0 else state[j * LANES + i]
     return fewest > 0.0
 
 
 @compiled_lanes
-def run(  # noqa: C901, PLR0912, PLR0913, PLR0917 - the whole loop in one place, so that it can be read against the law
+def run(  # noqa: PLR0913, PLR0917 - the whole loop in one place, so that it can be read against the law
     size: Size,
-    filters: Size,
+    rich: Size,
     constants: Array,
     pace: Array,
     push: Array,
@@ -131,19 +231,17 @@ def run(  # noqa: C901, PLR0912, PLR0913, PLR0917 - the whole loop in one place,
     wanted: Array,
     feedforward: Array,
     y: Array,
-    u: Array,
+    efforts: Array,
     state: Array,
+    planned: Array,
 ) -> None:
     """Run one block from rest.
 
-    Rows are multiplied out in three places rather than in a function of their own: with more than four states the
-    compiler would not lay such a function into the loops, and then not along the lanes either.
-
     Parameters
     ----------
-    size, filters : tuple of int
-        As long as the plant has states, see `size_for`; and as long as the law has filters on its measurement, 0 or 1:
-        without any its text is shorter.
+    size, rich : tuple of int
+        As long as the plant has states, see `size_for`; and as long as the measurement has a filter, a notch or a
+        resolution, 0 or 1: without any the text is shorter.
     constants : ndarray, shape (19 lanes,)
         Constants of the law, those of one kind for all lanes together.
     pace, push : ndarray, shapes (1 + m + n, n + 2) and (3, 1 + m + n)
@@ -155,57 +253,47 @@ def run(  # noqa: C901, PLR0912, PLR0913, PLR0917 - the whole loop in one place,
         Reference and disturbance as deviations, resting measurement, resolution of the measurement (0 for none), and
         the ceiling of the absolute output and effort: a lane that passes it has run away. When all have, the run ends.
     feedforward : ndarray, shape (s,)
-    y, u : ndarray, shapes (g lanes,) and (s lanes,)
-        Output at the points and effort at the samples, written to.
+    y : ndarray, shape (g lanes,)
+        Output at the points, written to.
+    efforts : ndarray, shape (e lanes,)
+        The last e efforts, written to in turns; e is greater than the whole samples from an effort to its effect.
     state : ndarray, shape (rows(size) lanes,)
         Written to; its last rows hold the totals.
+    planned : ndarray, shape (plan(size),)
+        Scratch.
     """
     n = len(size)
-    late, now, ahead, kept = n * LANES, (n + 1) * LANES, (n + 2) * LANES, (2 * n + 2) * LANES
-    seen = kept + 7 * LANES
     arrival, delay, points, samples, steps, shown = timing
     reference, disturbance, resting, quantum, ceiling = wanted
-    asked = np.zeros(3)
-    asked[0] = reference + resting
+    asked, ahead = planned[: _ASKED + n + 1], planned[_ASKED + n + 1 :]
+    asked[_REFERENCE], asked[_QUANTUM] = reference + resting, quantum
+    for c in range(n + 1):
+        asked[_ASKED + c] = pace[0, c]
+    for j in range(n):
+        for c in range(n + 2):
+            ahead[j * (n + 3) + c] = pace[1 + steps + j, c]
     state[:] = 0.0
-    at = 0
+    efforts[:] = 0.0
+    held = efforts.shape[0] // LANES
+    now, due, at, before = 0, (held - delay) % held, 0, -1
     for k in range(samples):
         when = 0 if k < arrival else (1 if k == arrival else 2)
-        constant = push[when, 0] * disturbance + resting
-        for i in range(LANES):
-            total = constant
-            for c in range(n + 1):
-                total += pace[0, c] * state[c * LANES + i]
-            state[seen + i] = total
-        if quantum > 0.0:
-            for i in range(LANES):
-                state[seen + i] = quantum * np.floor(state[seen + i] / quantum + 0.5)
-        asked[1] = feedforward[k]
-        asked[2] = 1.0 if k < shown else 0.0
-        _decide(size, filters, state, constants, asked)
-        for i in range(LANES):
-            u[k * LANES + i] = state[kept + i]
-        if k >= delay:
-            for i in range(LANES):
-                state[now + i] = u[(k - delay) * LANES + i]
+        if when != before:
+            for j in range(n):
+                ahead[j * (n + 3) + n + 2] = push[when, 1 + steps + j] * disturbance
+            before = when
+        asked[_CONSTANT] = push[when, 0] * disturbance + resting
+        asked[_FEEDFORWARD], asked[_COUNTS] = feedforward[k], 1.0 if k < shown else 0.0
+        _decide(size, rich, state, constants, asked, efforts, now * LANES)
         for j in range(min(steps, points - k * steps)):
-            constant = push[when, 1 + j] * disturbance
-            for i in range(LANES):
-                total = constant
-                for c in range(n + 2):
-                    total += pace[1 + j, c] * state[c * LANES + i]
-                y[at + i] = total
+            _show(size, pace[1 + j], push[when, 1 + j] * disturbance, state, efforts, due * LANES, y, at)
             at += LANES
-        for j in range(n):
-            constant = push[when, 1 + steps + j] * disturbance
-            for i in range(LANES):
-                total = constant
-                for c in range(n + 2):
-                    total += pace[1 + steps + j, c] * state[c * LANES + i]
-                state[ahead + j * LANES + i] = total
-        for i in range(n * LANES):
-            state[i] = state[ahead + i]
-        for i in range(LANES):
-            state[late + i] = state[now + i]
-        if k % LOOKS == LOOKS - 1 and _look(size, state, y, at - LANES, ceiling):
+        if n <= FUSED:
+            _advance(size, ahead, state, efforts, due * LANES)
+        else:
+            _advance_by_rows(size, ahead, state, efforts, due * LANES)
+        looks = k % LOOKS == LOOKS - 1 and _some_away(size, state, y, at - LANES, ceiling)
+        if looks and _mark(size, state, y, at - LANES, ceiling):
             break
+        now = now + 1 if now + 1 < held else 0
+        due = due + 1 if due + 1 < held else 0
