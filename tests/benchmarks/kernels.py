@@ -21,6 +21,7 @@ from tests.published.sampled_by_control import closed_loop
 from tuner.files.sheet import read
 from tuner.footing.grading import Grading
 from tuner.footing.ground import ground_of
+from tuner.footing.tunings import Tunings
 from tuner.model.family import family
 from tuner.model.plant import ZeroPolePlant
 from tuner.model.sheet import Sheet
@@ -98,11 +99,12 @@ def _work() -> Work:
     step = sheet.controller.sample_time
     trial = replace(sheet.trial, duration=(SAMPLES - 1) * step)
     sheet = replace(sheet, trial=trial, limits=(("overshoot", _FAR), ("iae_reference", _FAR)))
-    tunings = [
-        sheet.controller.with_value(name, (sheet.controller.value(name) or 0.0) * float(factor))
+    changes = [
+        ((name, (sheet.controller.value(name) or 0.0) * factor),)
         for name in RULERS
-        for factor in np.geomspace(0.1, 10.0, NOTCHES)
+        for factor in np.geomspace(0.1, 10.0, NOTCHES).tolist()
     ]
+    tunings = Tunings(sheet.controller, changes)
     constants = [law_constants(replace(sheet, controller=one), step, 0.0) for one in tunings]
     wired = wire(sheet, family(sheet.plant, PLANTS), step)
     return Work(sheet, Grading(sheet, ground_of(sheet, PLANTS), tunings), np.array(constants), wired)

@@ -9,27 +9,17 @@ from tests.footing.random_loops import sheet
 from tuner.assess import assess
 from tuner.files.sheet import read
 from tuner.footing.classes import FIRM, LOST, SOFT, UNKNOWN
-from tuner.footing.grading import Grading, numbers_of
+from tuner.footing.grading import Grading
 from tuner.footing.ground import ground_of
-from tuner.model.controller import Controller
+from tuner.footing.tunings import Tunings
 from tuner.places import sample_plants
 
 HEATER = read(sample_plants() / "heater.toml")
 
 
-def test_numbers_of_tunings() -> None:
-    """Parallel gains whatever the form; an absent wind-up time is infinite."""
-    tunings = [Controller(form="standard", gain_1=2.0, gain_2=4.0, gain_3=0.5), Controller(gain_1=1.0, windup_time=3.0)]
-    found = numbers_of(tunings)
-    assert found.kp.tolist() == [2.0, 1.0]
-    assert found.ki.tolist() == [0.5, 0.0]
-    assert found.kd.tolist() == [1.0, 0.0]
-    assert found.windup_time.tolist() == [np.inf, 3.0]
-
-
 def test_lost_and_unsure_are_taken_over() -> None:
     """What is known to be lost is not looked at; what is unsure is asked, or left unknown."""
-    tunings = [HEATER.controller] * 3
+    tunings = Tunings(HEATER.controller, [()] * 3)
     lost, unsure = np.array([True, False, False]), np.array([False, True, False])
     open_ended = Grading(HEATER, ground_of(HEATER, 3), tunings)
     assert open_ended.classes(lost, unsure, settle=False).tolist() == [LOST, UNKNOWN, FIRM]
@@ -44,7 +34,7 @@ def test_a_limit_at_the_very_value_is_in_doubt() -> None:
     assert value is not None
     for limit, expected in ((value, FIRM), (value * (1.0 - 1e-6), SOFT)):
         found = replace(HEATER, limits=(("settling_time", limit),))
-        grading = Grading(found, ground_of(found, 3), [found.controller])
+        grading = Grading(found, ground_of(found, 3), Tunings(found.controller, [()]))
         none = np.zeros(1, dtype=bool)
         assert grading.classes(none, none).tolist() == [expected]
         assert grading.doubts
@@ -53,7 +43,7 @@ def test_a_limit_at_the_very_value_is_in_doubt() -> None:
 @pytest.mark.parametrize("measure", ["overshoot", "settling_time", "iae_disturbance", "max_sensitivity", "gain_margin"])
 def test_what_is_watched_is_near_the_worst_value(measure: str) -> None:
     """Within the bounds that points give."""
-    grading = Grading(HEATER, ground_of(HEATER, 5), [HEATER.controller])
+    grading = Grading(HEATER, ground_of(HEATER, 5), Tunings(HEATER.controller, [()]))
     worst = assess(HEATER, 5).worst[measure].value
     assert grading.watch(measure, np.array([True]))[0] == pytest.approx(worst, rel=0.05)
     assert np.isnan(grading.watch(measure, np.array([False]))[0])
@@ -64,8 +54,8 @@ def test_the_order_of_plants_changes_nothing() -> None:
     found = sheet(3)
     ground = ground_of(found, 5)
     ground.misses[:] = 0
-    assert Grading(found, ground, []).order()[-1] == 0
-    tunings = [found.controller.with_value("filter_time", value) for value in (0.01, 0.1, 1.0)]
+    assert Grading(found, ground, Tunings(found.controller, [])).order()[-1] == 0
+    tunings = Tunings(found.controller, [(("filter_time", value),) for value in (0.01, 0.1, 1.0)])
     none = np.zeros(3, dtype=bool)
     first = Grading(found, ground, tunings).classes(none, none).tolist()
     ground.misses[2] = 1000

@@ -7,6 +7,7 @@ import numpy as np
 from tuner.files.sheet import read
 from tuner.footing.grading import Grading
 from tuner.footing.ground import ground_of
+from tuner.footing.tunings import Tunings
 from tuner.model.sheet import Sheet
 from tuner.places import sample_plants
 
@@ -16,7 +17,7 @@ HEATER = read(sample_plants() / "heater.toml")
 def graded(found: Sheet, count: int) -> Grading:
     """Return the grading of so many tunings around a sheet's, after it was done, doubts left open."""
     ground = ground_of(found, 5)
-    tunings = [found.controller.with_value("kp", value) for value in np.geomspace(1.0, 3.0, count).tolist()]
+    tunings = Tunings(found.controller, [(("kp", value),) for value in np.geomspace(1.0, 3.0, count).tolist()])
     grading = Grading(found, ground, tunings)
     none = np.zeros(count, dtype=bool)
     grading.classes(none, none, settle=False)

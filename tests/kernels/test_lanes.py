@@ -8,6 +8,7 @@ import pytest
 from tests.footing.random_loops import rich_sheet, sheet
 from tuner.footing.grading import Grading
 from tuner.footing.ground import ground_of
+from tuner.footing.tunings import Tunings
 from tuner.kernels import lanes, readings
 from tuner.model.plant import ExpressionPlant
 from tuner.model.sheet import Sheet
@@ -18,15 +19,20 @@ LOOPS = [*map(sheet, range(12)), *map(rich_sheet, range(14))]
 FACTORS = np.geomspace(0.3, 1.5, lanes.LANES)
 
 
+def tunings(found: Sheet, factors: np.ndarray = FACTORS) -> Tunings:
+    """Return a block of tunings: the proportional gain of a sheet times some factors."""
+    name = "kp" if found.controller.form == "parallel" else "kc"
+    value = found.controller.value(name) or 1.0
+    return Tunings(found.controller, [((name, value * factor),) for factor in factors.tolist()])
+
+
 def run(
     found: Sheet, which: int, factors: np.ndarray = FACTORS
 ) -> tuple[np.ndarray, np.ndarray, np.ndarray, list[Sheet]]:
     """Return outputs, efforts and totals of a block of tunings of a sheet, and the tunings."""
-    name = "kp" if found.controller.form == "parallel" else "kc"
-    value = found.controller.value(name) or 1.0
-    tuned = [replace(found, controller=found.controller.with_value(name, value * float(f))) for f in factors]
-    ground = ground_of(found, 1)
-    grading = Grading(found, ground, [one.controller for one in tuned])
+    some, ground = tunings(found, factors), ground_of(found, 1)
+    tuned = [replace(found, controller=one) for one in some]
+    grading = Grading(found, ground, some)
     speed, size = ground.speeds[0], ground.size
     constants = np.ascontiguousarray(grading._constants(np.arange(lanes.LANES), ground.steps[0]).T).ravel()
     delay, points, samples = speed.timing[0, 1:4]

@@ -4,7 +4,7 @@ import numpy as np
 import pytest
 
 from tests.footing.random_loops import rich_sheet, sheet
-from tests.kernels.test_lanes import run
+from tests.kernels.test_lanes import run, tunings
 from tuner.assess import results_of
 from tuner.footing.grading import Grading
 from tuner.footing.ground import ground_of
@@ -34,7 +34,7 @@ def test_bounds_hold_the_measures(found: Sheet) -> None:
     points, samples = speed.timing[0, 2:4]
     for which in (0, 1):
         y, _, totals, tuned = run(found, which)
-        grading = Grading(found, ground, [one.controller for one in tuned])
+        grading = Grading(found, ground, tunings(found))
         exact = grading._finals(np.arange(lanes.LANES))[which, 0].copy()
         if which == 0:
             readings.reference_bounds(

@@ -9,6 +9,7 @@ from tuner.footing.classes import LOST, Classes, Overtaken, Track, never, tuned
 from tuner.footing.grading import Grading
 from tuner.footing.ground import ground_of
 from tuner.footing.stability import Flags, stretches
+from tuner.footing.tunings import Tunings
 from tuner.model.sheet import Sheet
 from tuner.simulate.traces import Array
 
@@ -66,14 +67,10 @@ def paint_map(  # noqa: PLR0913, PLR0917 - the question as it is asked
     size = sheet.trial.family_size if family_size is None else family_size
     ground = ground_of(sheet, size)
     lost, unsure = _lost(sheet, x, y, size, stop)
-    tunings = [
-        tuned(tuned(sheet.controller, y.name, up), x.name, across)
-        for up in y.values.tolist()
-        for across in x.values.tolist()
-    ]
-    grading = Grading(sheet, ground, tunings, stop)
+    pairs = [((y.name, up), (x.name, across)) for up in y.values.tolist() for across in x.values.tolist()]
+    grading = Grading(sheet, ground, Tunings(sheet.controller, pairs), stop)
     classes = grading.classes(lost.ravel(), unsure.ravel())
-    worst = grading.watch(measure, classes < LOST) if measure else np.full(len(tunings), np.nan)
+    worst = grading.watch(measure, classes < LOST) if measure else np.full(len(pairs), np.nan)
     return GainMap(x, y, classes.reshape(lost.shape), measure, worst.reshape(lost.shape))
 
 

@@ -1,10 +1,9 @@
 """The class of many tunings of one sheet at once: bounds decide most, the road of the assessment itself the rest."""
 
 from collections.abc import Callable, Sequence
-from dataclasses import astuple, dataclass, field, replace
+from dataclasses import dataclass, field, replace
 from functools import partial
 from math import ceil, inf, nan
-from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
@@ -15,11 +14,11 @@ from tuner.footing.classes import FIRM, LOST, SOFT, UNKNOWN, Classes, Overtaken,
 from tuner.footing.exact import exactly
 from tuner.footing.ground import Ground
 from tuner.footing.threads import spread_out
+from tuner.footing.tunings import Numbers, Tunings
 from tuner.kernels import grades, lanes, readings, responses
 from tuner.law.constants import GainConstants, gain_constants
 from tuner.measure.final import family_final_values
 from tuner.measure.loop import damping
-from tuner.model.controller import Controller
 from tuner.model.measures import BY_NAME
 from tuner.model.sheet import Sheet
 from tuner.simulate.batch import RUNAWAY, law_constants
@@ -41,27 +40,6 @@ _NOTHING = (-1, np.zeros((2, 0, 0)))
 """No measure is watched."""
 
 
-class Numbers(NamedTuple):
-    """What tunings differ in, shape (t,) each: parallel gains, times and weights."""
-
-    kp: Array
-    ki: Array
-    kd: Array
-    filter_time: Array
-    windup_time: Array
-    b: Array
-    c: Array
-
-
-def numbers_of(tunings: Sequence[Controller]) -> Numbers:
-    """Return the numbers of tunings; an absent wind-up time is infinite."""
-    rows = [
-        (*astuple(one.parallel()), one.filter_time, inf if one.windup_time is None else one.windup_time, one.b, one.c)
-        for one in tunings
-    ]
-    return Numbers(*np.array(rows).reshape(-1, 7).T)
-
-
 @dataclass(slots=True, eq=False)
 class Grading:
     """Tunings being graded.
@@ -71,14 +49,14 @@ class Grading:
     sheet : Sheet
         Whose controller each of the tunings takes the place of.
     ground : Ground
-    tunings : sequence of Controller
+    tunings : Tunings
     stop : callable
         Whether a newer question has come.
     """
 
     sheet: Sheet
     ground: Ground
-    tunings: Sequence[Controller]
+    tunings: Tunings
     stop: Callable[[], bool] = never
     numbers: Numbers = field(init=False)
     doubts: dict[int, list[int]] = field(default_factory=dict)
@@ -87,7 +65,7 @@ class Grading:
 
     def __post_init__(self) -> None:
         """Take the numbers of the tunings out, for what looks at all of them at once."""
-        self.numbers = numbers_of(self.tunings)
+        self.numbers = self.tunings.numbers()
         self.misses = np.zeros(len(self.ground.members), dtype=np.int64)
 
     def order(self) -> list[int]:

@@ -12,6 +12,7 @@ from tuner.footing.exact import exactly
 from tuner.footing.grading import Grading
 from tuner.footing.ground import Ground, ground_of
 from tuner.footing.stability import Stretches, counts, stretches
+from tuner.footing.tunings import Tunings
 from tuner.model.sheet import Sheet
 from tuner.simulate.traces import Array
 
@@ -127,15 +128,12 @@ class _Painter:
             known = line.stretches
             lost.append(np.zeros(len(some), dtype=bool) if known is None else known.at(some))
             unsure.append(np.ones(len(some), dtype=bool) if known is None else known.unsure(some) | (some <= 0.0))
-        controller = self.sheet.controller
-        tunings = [
-            tuned(controller, line.track.name, value)
-            for line, some in zip(lines, values, strict=True)
-            for value in some.tolist()
+        changes = [
+            ((line.track.name, value),) for line, some in zip(lines, values, strict=True) for value in some.tolist()
         ]
-        if not tunings:
+        if not changes:
             return
-        grading = Grading(self.sheet, self.ground, tunings, self.stop)
+        grading = Grading(self.sheet, self.ground, Tunings(self.sheet.controller, changes), self.stop)
         classes = grading.classes(np.concatenate(lost), np.concatenate(unsure), settle=settle)
         ends = np.cumsum([0, *(len(some) for some in values)]).tolist()
         for line, some, (begin, end) in zip(lines, values, pairwise(ends), strict=True):

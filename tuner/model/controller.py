@@ -23,6 +23,21 @@ class Gains:
     kd: float
 
 
+def parallel_gains(form: Form, first: float, second: float, third: float) -> Gains:
+    """Return the gains of a form in the parallel one.
+
+    Standard: kp = kc, ki = kc/ti, kd = kc td. Series: kc (1 + 1/(ti s)) (1 + td s), multiplied out.
+    `ti` = 0 means no integral action (Astrom and Hagglund, PID Controllers, 1995).
+    """
+    if form == "parallel":
+        return Gains(first, second, third)
+    integral = first / second if second else 0.0
+    if form == "standard":
+        return Gains(first, integral, first * third)
+    interaction = third / second if second else 0.0
+    return Gains(first * (1.0 + interaction), integral, first * third)
+
+
 @dataclass(frozen=True, slots=True)
 class Feedforward:
     """How the reference acts on the effort directly: `gain` for static, `filter_time` for inverse."""
@@ -101,18 +116,8 @@ class Controller:
         return replace(self, **{field: value})  # type: ignore[arg-type] # the table of parameters names only numbers
 
     def parallel(self) -> Gains:
-        """Return the gains in the parallel form.
-
-        Standard: kp = kc, ki = kc/ti, kd = kc td. Series: kc (1 + 1/(ti s)) (1 + td s), multiplied out.
-        `ti` = 0 means no integral action (Astrom and Hagglund, PID Controllers, 1995).
-        """
-        if self.form == "parallel":
-            return Gains(self.gain_1, self.gain_2, self.gain_3)
-        integral = self.gain_1 / self.gain_2 if self.gain_2 else 0.0
-        if self.form == "standard":
-            return Gains(self.gain_1, integral, self.gain_1 * self.gain_3)
-        interaction = self.gain_3 / self.gain_2 if self.gain_2 else 0.0
-        return Gains(self.gain_1 * (1.0 + interaction), integral, self.gain_1 * self.gain_3)
+        """Return the gains in the parallel form."""
+        return parallel_gains(self.form, self.gain_1, self.gain_2, self.gain_3)
 
     def in_form(self, form: Form) -> "Controller":
         """Return the same controller with its gains in another form; the loop is unchanged.
