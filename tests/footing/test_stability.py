@@ -7,7 +7,7 @@ import pytest
 
 from tests.footing.random_loops import sheet
 from tuner.footing.classes import Track
-from tuner.footing.stability import Stretches, counts, stretches
+from tuner.footing.stability import Stretches, counts, lost_when_off, stretches
 from tuner.model.family import family_of
 from tuner.model.sheet import Sheet
 
@@ -53,3 +53,28 @@ def test_weights_and_wind_up_move_no_pole() -> None:
     assert known is not None
     assert known.edges.size == 0
     assert known.lost.tolist() == [bool(counts(found, members).any())]
+
+
+def test_numbers_that_are_off() -> None:
+    """What the poles say of each alone, on both sides; an integrating plant without a proportional gain is lost."""
+    seen = set()
+    for seed in range(40):
+        found = sheet(seed)
+        members = family_of(found, 3)
+        names = [track.name for track in tracks(found)]
+        for name, lost in lost_when_off(found, members, names).items():
+            off = replace(found, controller=found.controller.with_value(name, 0.0))
+            assert lost == bool(counts(off, members).any()), (seed, name)
+            seen.add((name, lost))
+    assert {name for name, _ in seen} >= {"kp", "ki", "kd", "ti", "td", "filter_time"}
+    assert {lost for _, lost in seen} == {False, True}
+
+
+def test_where_off_is_not_told() -> None:
+    """Of a continuous controller, of an open loop, and where nothing is left."""
+    found = sheet(0)
+    members = family_of(found, 2)
+    law = replace(found.controller, form="parallel", gain_1=1.0, gain_2=0.0, gain_3=0.0)
+    assert set(lost_when_off(replace(found, controller=law), members, ["kp", "ki"])) == {"ki"}
+    for silent in (replace(law, sample_time=0.0), replace(law, feedback=False)):
+        assert lost_when_off(replace(found, controller=silent), members, ["ki"]) == {}

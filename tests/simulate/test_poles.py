@@ -45,6 +45,21 @@ def test_continuous_loops_against_python_control(seed: int) -> None:
     assert found.stable == bool(np.all(expected.real < 0.0))
 
 
+@pytest.mark.parametrize("sampled", [False, True])
+def test_loops_of_several_controllers_together(sampled: bool) -> None:
+    """Have the poles that each has alone, also where their gains have equally many factors."""
+    chain = from_zeros_poles((), (-1.0, -2.0, -5.0), 10.0)
+    base = Controller(sample_time=0.1 if sampled else 0.0, gain_1=1.5, gain_2=0.8, gain_3=0.4, filter_time=0.2)
+    laws = [base, replace(base, gain_1=0.0), replace(base, filter_time=0.01), replace(base, gain_2=60.0, gain_3=0.0)]
+    laws += [replace(base, gain_2=0.0), replace(base, gain_1=90.0, filter_time=0.01)]
+    loops = [loop for law in laws for loop in loops_around(law, [chain, replace(chain, b=2.0 * chain.b)])]
+    together, alone = family_poles(loops), [closed_loop_poles(loop) for loop in loops]
+    for one, other in zip(together, alone, strict=True):
+        assert one.stable == other.stable
+        assert matched(one.values, other.values) < 1e-9
+    assert {one.stable for one in alone} == {False, True}
+
+
 @pytest.mark.parametrize("seed", range(60))
 def test_sampled_loops_against_python_control(seed: int) -> None:
     """Under proportional control the poles are those of `sample_system` and `feedback`, to 1e-6."""

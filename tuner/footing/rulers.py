@@ -7,11 +7,12 @@ from itertools import pairwise
 import numpy as np
 from numpy.typing import NDArray
 
+from tuner.footing.affine import MOTIONLESS
 from tuner.footing.classes import LOST, UNKNOWN, Classes, Edge, PaintedTrack, Track, never, painted, tuned
 from tuner.footing.exact import exactly
 from tuner.footing.grading import Grading
 from tuner.footing.ground import Ground, ground_of
-from tuner.footing.stability import Stretches, counts, stretches
+from tuner.footing.stability import Counts, Stretches, counts, lost_when_off, stretches
 from tuner.footing.tunings import Tunings
 from tuner.model.sheet import Sheet
 from tuner.simulate.traces import Array
@@ -32,13 +33,25 @@ Flags = NDArray[np.bool_]
 
 @dataclass(slots=True, eq=False)
 class _Line:
-    """A track while it is being painted: values looked at so far, rising, and their classes."""
+    """A track while it is being painted: values looked at so far, rising, and their classes.
+
+    `off` says whether it is lost where the number is zero, None where that is not known.
+    """
 
     track: Track
     stretches: Stretches | None
+    off: bool | None
     values: Array
     classes: Classes
     doubts: dict[float, list[int]]
+
+    def known(self, values: Array) -> tuple[Flags, Flags]:
+        """Return where values are lost, and where that is not sure."""
+        if self.stretches is None:
+            return np.zeros(len(values), dtype=bool), np.ones(len(values), dtype=bool)
+        lost, unsure = self.stretches.at(values), self.stretches.unsure(values)
+        lost[values <= 0.0], unsure[values <= 0.0] = bool(self.off), self.off is None
+        return lost, unsure
 
     def add(self, values: Array, classes: Classes, doubts: Mapping[float, list[int]]) -> None:
         """Take in further values, and with which plants those that are unknown are in doubt."""
@@ -118,23 +131,27 @@ class _Painter:
     def _lines(self, tracks: Sequence[Track]) -> list[_Line]:
         base = counts(self.sheet, self.ground.members)
         found = [stretches(self.sheet, self.ground.members, track, self.size, base) for track in tracks]
+        off = self._off(tracks, base)
         none = np.zeros(0), np.zeros(0, dtype=np.int8)
-        return [_Line(track, known, *none, {}) for track, known in zip(tracks, found, strict=True)]
+        return [_Line(track, known, off.get(track.name), *none, {}) for track, known in zip(tracks, found, strict=True)]
+
+    def _off(self, tracks: Sequence[Track], base: Counts) -> dict[str, bool]:
+        """Return whether some plant is unstable where a number is zero; for what no pole depends on, as it is now."""
+        names = [track.name for track in tracks if (track.values <= 0.0).any()]
+        moving = lost_when_off(self.sheet, self.ground.members, [name for name in names if name not in MOTIONLESS])
+        return dict.fromkeys(MOTIONLESS, bool(base.any())) | moving
 
     def _grade(self, lines: Sequence[_Line], values: Sequence[Array], *, settle: bool) -> None:
         """Find the classes at some values of some lines, all in one go."""
-        lost, unsure = [], []
-        for line, some in zip(lines, values, strict=True):
-            known = line.stretches
-            lost.append(np.zeros(len(some), dtype=bool) if known is None else known.at(some))
-            unsure.append(np.ones(len(some), dtype=bool) if known is None else known.unsure(some) | (some <= 0.0))
+        known = [line.known(some) for line, some in zip(lines, values, strict=True)]
         changes = [
             ((line.track.name, value),) for line, some in zip(lines, values, strict=True) for value in some.tolist()
         ]
         if not changes:
             return
         grading = Grading(self.sheet, self.ground, Tunings(self.sheet.controller, changes), self.stop)
-        classes = grading.classes(np.concatenate(lost), np.concatenate(unsure), settle=settle)
+        lost, unsure = (np.concatenate(part) for part in zip(*known, strict=True))
+        classes = grading.classes(lost, unsure, settle=settle)
         ends = np.cumsum([0, *(len(some) for some in values)]).tolist()
         for line, some, (begin, end) in zip(lines, values, pairwise(ends), strict=True):
             doubts = {float(some[at - begin]): who for at, who in grading.doubts.items() if begin <= at < end}

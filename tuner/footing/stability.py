@@ -1,7 +1,7 @@
 """For which values of a gain some plant of the family is unstable: whole stretches of a track, not single notches."""
 
 from collections.abc import Sequence
-from dataclasses import dataclass, replace
+from dataclasses import astuple, dataclass, replace
 from typing import NamedTuple
 
 import numpy as np
@@ -9,7 +9,7 @@ from numpy.typing import NDArray
 
 from tuner.footing.affine import DERIVATIVE, INVERSE, MOTIONLESS, PROPORTIONAL, coordinate, value_of
 from tuner.footing.chains import Chains, chains_of, looked_at_closely
-from tuner.footing.classes import Track
+from tuner.footing.classes import Track, tuned
 from tuner.footing.locus import Crossings, crossings
 from tuner.model.controller import Controller
 from tuner.model.family import Member
@@ -51,6 +51,20 @@ class Stretches:
             return np.zeros(len(values), dtype=bool)
         nearest = np.abs(values[:, None] - self.edges).min(axis=1)
         return np.asarray(nearest <= _CLOSE * np.abs(values))
+
+
+def lost_when_off(sheet: Sheet, members: Sequence[Member], names: Sequence[str]) -> dict[str, bool]:
+    """Return whether some plant is unstable with a number at zero, for those of some numbers of which that is told.
+
+    It is not of a continuous controller, nor where nothing is left of the law.
+    """
+    if not sheet.controller.sample_time or not sheet.controller.feedback:
+        return {}
+    off = {name: tuned(sheet.controller, name, 0.0) for name in names}
+    left = {name: one for name, one in off.items() if any(astuple(one.parallel()))}
+    loops = [loop for one in left.values() for loop in loops_of(replace(sheet, controller=one), members)]
+    stable = [found.stable for found in family_poles(loops)]
+    return {name: not all(stable[k * len(members) : (k + 1) * len(members)]) for k, name in enumerate(left)}
 
 
 class _Counted(NamedTuple):

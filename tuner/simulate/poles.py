@@ -63,9 +63,18 @@ def closed_loop_poles(loop: Loop) -> Poles:
 def family_poles(loops: Sequence[Loop]) -> tuple[Poles, ...]:
     """Return the poles of several loops; together they take less time than one by one. See `closed_loop_poles`."""
     found: dict[int, Poles] = {}
-    for places in same_shape(loops):
-        found |= dict(zip(places, _of_shape([loops[i] for i in places]), strict=True))
+    for alike in same_shape(loops):
+        for places in _of_one_law(loops, alike):
+            found |= dict(zip(places, _of_shape([loops[i] for i in places]), strict=True))
     return tuple(found[i] for i in range(len(loops)))
+
+
+def _of_one_law(loops: Sequence[Loop], places: Sequence[int]) -> list[list[int]]:
+    """Return the places of loops that one controller closes: the rows of its law are laid out once for all of them."""
+    groups: dict[int, list[int]] = {}
+    for i in places:
+        groups.setdefault(id(loops[i].controller), []).append(i)
+    return list(groups.values())
 
 
 def _of_shape(loops: Sequence[Loop]) -> list[Poles]:
