@@ -12,7 +12,7 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 import tuner
-from tuner.assess import assess, glance
+from tuner.assess import assess, glance, sketched
 from tuner.errors import LoopError
 from tuner.files.sheet import parse
 from tuner.judge.as_json import as_json
@@ -182,6 +182,27 @@ def test_a_glance_at_a_plant_that_is_not_there() -> None:
     """It sees the nominal one."""
     assert [member.name for member in glance(bath(), "gain 99").members] == ["nominal"]
     assert [member.name for member in glance(bath()).members] == ["nominal"]
+
+
+@pytest.mark.parametrize("gains", ["kp = 2\nki = 0.5", "kp = 12"])
+def test_a_sketch_has_every_curve_before_anything_is_judged(gains: str) -> None:
+    """Those of the assessment, to which it leads; measures of the nominal plant and the one that is looked at alone."""
+    sheet = bath(gains=gains, limits="overshoot = 10")
+    sketch, whole = sketched(sheet), assess(sheet)
+    looked_at = whole.members[2].name
+    outline = sketch.outlined(looked_at)
+
+    assert [member.name for member in outline.members] == [member.name for member in whole.members]
+    for one, other in zip(outline.members, whole.members, strict=True):
+        assert np.array_equal(one.traces.disturbance.y, other.traces.disturbance.y)
+        assert np.array_equal(one.poles, other.poles)
+        assert (one.stable, one.drift) == (other.stable, other.drift)
+        known = other.measures if one.name in ("nominal", looked_at) else {}
+        assert one.measures == pytest.approx(known, nan_ok=True)
+    assert outline.limits == glance(sheet, looked_at).limits
+    judged = sketch.judged()
+    assert (judged.verdict, judged.limits, judged.notes) == (whole.verdict, whole.limits, whole.notes)
+    assert judged.members[0].traces is outline.members[0].traces
 
 
 def test_an_open_loop() -> None:

@@ -3,6 +3,7 @@
 import sys
 from collections.abc import Callable, Iterator, Mapping, Sequence
 from contextlib import contextmanager
+from dataclasses import dataclass, replace
 from types import ModuleType
 
 from tuner.errors import LoopError
@@ -46,8 +47,69 @@ def assess(sheet: Sheet, family_size: int | None = None) -> Assessment:
         When the loop is well written but cannot be computed, with the reason; also when the arithmetic fails on
         numbers that nothing refused before.
     """
+    return sketched(sheet, family_size).judged()
+
+
+@dataclass(frozen=True, slots=True, eq=False)
+class Sketch:
+    """A sheet that was run with its family, before anything is measured; see `sketched`.
+
+    Parameters
+    ----------
+    members : sequence of Member
+        The nominal plant first.
+    loops, poles, traces : sequence
+        Of each of them.
+    """
+
+    sheet: Sheet
+    members: Sequence[Member]
+    loops: Sequence[Loop]
+    poles: Sequence[Poles]
+    traces: Sequence[Traces]
+
+    def judged(self) -> Assessment:
+        """Measure and judge all of it.
+
+        Raises
+        ------
+        LoopError
+            As `assess` does.
+        """
+        with _arithmetic_told():
+            results = self._results(range(len(self.members)))
+            return judge(self.sheet, results, _instability(self.sheet, self.members, self.loops, self.poles))
+
+    def outlined(self, plant: str = "") -> Assessment:
+        """Judge by the nominal plant, and by one more where it is named; the others have curves, and no measures.
+
+        Raises
+        ------
+        LoopError
+            As `assess` does.
+        """
+        with _arithmetic_told():
+            seen = [i for i, member in enumerate(self.members) if member.name in (NOMINAL, plant)]
+            judged = judge(self.sheet, self._results(seen))
+            known = dict(zip(seen, judged.members, strict=True))
+            return replace(judged, members=tuple(known.get(i) or self._bare(i) for i in range(len(self.members))))
+
+    def _results(self, places: Sequence[int]) -> tuple[MemberResult, ...]:
+        chosen = [(self.members[i], self.loops[i], self.poles[i], self.traces[i]) for i in places]
+        members, loops, poles, traces = zip(*chosen, strict=True)
+        return _results(self.sheet, members, loops, poles, traces)
+
+    def _bare(self, place: int) -> MemberResult:
+        member, poles = self.members[place], self.poles[place]
+        return MemberResult(member.name, poles.stable, {}, poles.values, self.traces[place], drift=member.drift)
+
+
+def sketched(sheet: Sheet, family_size: int | None = None) -> Sketch:
+    """Run a sheet with its family and find the poles, half the way to an assessment; see `assess`."""
     with _arithmetic_told():
-        return _assessed(sheet, family_of(sheet, family_size))
+        members = family_of(sheet, family_size)
+        loops = loops_of(sheet, members)
+        return Sketch(sheet, members, loops, family_poles(loops), run(sheet, members))
 
 
 def glance(sheet: Sheet, plant: str = "") -> Assessment:
@@ -80,13 +142,6 @@ def _arithmetic_told() -> Iterator[None]:
         raise LoopError(f"the loop cannot be computed with these numbers: {error}") from error
 
 
-def _assessed(sheet: Sheet, members: Sequence[Member]) -> Assessment:
-    loops = loops_of(sheet, members)
-    poles = family_poles(loops)
-    results = _results(sheet, members, loops, poles)
-    return judge(sheet, results, _instability(sheet, members, loops, poles))
-
-
 def results_of(sheet: Sheet, members: Sequence[Member]) -> tuple[MemberResult, ...]:
     """Return what each of some plants makes of the loop, as an assessment has it.
 
@@ -96,13 +151,16 @@ def results_of(sheet: Sheet, members: Sequence[Member]) -> tuple[MemberResult, .
         When a loop cannot be computed.
     """
     loops = loops_of(sheet, members)
-    return _results(sheet, members, loops, family_poles(loops))
+    return _results(sheet, members, loops, family_poles(loops), run(sheet, members))
 
 
 def _results(
-    sheet: Sheet, members: Sequence[Member], loops: Sequence[Loop], poles: Sequence[Poles]
+    sheet: Sheet,
+    members: Sequence[Member],
+    loops: Sequence[Loop],
+    poles: Sequence[Poles],
+    traces: Sequence[Traces],
 ) -> tuple[MemberResult, ...]:
-    traces = run(sheet, members)
     measured = measure_trials(sheet, traces, [found.stable for found in poles], family_final_values(sheet, members))
     return tuple(map(_result, members, loops, poles, traces, measured, _margins(loops, poles)))
 

@@ -3,7 +3,8 @@
 They stand in for the simulation where a test is about the window alone.
 """
 
-from dataclasses import replace
+from collections.abc import Callable
+from dataclasses import dataclass, replace
 from math import exp, log, pi, sqrt
 
 import numpy as np
@@ -16,6 +17,9 @@ from tuner.model.loop import Loop, Manipulated, Signal
 from tuner.model.plant import ExpressionPlant, PlantParameter, spread_percent
 from tuner.model.sheet import Sheet, Trial
 from tuner.simulate.traces import Array, Trace, Traces
+
+Judge = Callable[[Sheet, int], Assessment]
+"""Assesses a sheet over a family of so many plants."""
 
 EDGE = 4.0
 """The kp from which the made-up loop runs away."""
@@ -65,6 +69,36 @@ def _judged_over(asked: Sheet, members: tuple[MemberResult, ...]) -> Assessment:
         notes=("delay_margin: not looked at in this made-up loop.",),
         instability=_instability(unstable) if unstable else None,
     )
+
+
+@dataclass(frozen=True)
+class Sketched:
+    """A made-up sheet that is judged when it is asked to be."""
+
+    judge: Judge
+    asked: Sheet
+    size: int
+
+    def outlined(self, plant: str = "") -> Assessment:
+        """Judge by the nominal plant and the named one; the others have their curves."""
+        whole = self.judge(self.asked, self.size)
+        seen = tuple(one for one in whole.members if one.name in ("nominal", plant))
+        bare = tuple(one if one in seen else replace(one, measures={}) for one in whole.members)
+        return replace(_judged_over(self.asked, seen), members=bare)
+
+    def judged(self) -> Assessment:
+        """Judge the whole family."""
+        return self.judge(self.asked, self.size)
+
+
+def sketching(judge: Judge) -> Callable[[Sheet, int], Sketched]:
+    """Return the first half of a road to an assessment, for which a whole one is given."""
+    return lambda asked, size: Sketched(judge, asked, size)
+
+
+def sketch(asked: Sheet, size: int = 25) -> Sketched:
+    """Return half of the assessment of a made-up sheet."""
+    return Sketched(judge, asked, size)
 
 
 def glance(asked: Sheet, plant: str = "") -> Assessment:

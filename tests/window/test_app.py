@@ -23,8 +23,8 @@ ROOT = Path(__file__).parents[2]
 
 
 @pytest.fixture(autouse=True)
-def _made_up_judge(monkeypatch: pytest.MonkeyPatch) -> None:
-    monkeypatch.setattr(app, "_judge", made_up.judge)
+def _made_up_sketch(monkeypatch: pytest.MonkeyPatch) -> None:
+    monkeypatch.setattr(app, "_sketch", made_up.sketch)
     monkeypatch.setattr(app, "_paint_rulers", made_up_footing.Painting())
     monkeypatch.setattr(app, "_reason_at", made_up_footing.Reasons())
     monkeypatch.setattr(sys, "excepthook", sys.excepthook)

@@ -17,7 +17,7 @@ LOOP = Loop("x", "min")
 
 def shown(kp: float, **changes: object) -> Shown:
     """Return the answer for a made-up loop."""
-    return Assessing(made_up.judge, made_up.glance, made_up.draw).whole(Request(1, made_up.sheet(kp, **changes)))
+    return Assessing(made_up.sketch, made_up.glance, made_up.draw).whole(Request(1, made_up.sheet(kp, **changes)))
 
 
 @pytest.fixture

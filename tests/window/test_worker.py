@@ -25,7 +25,11 @@ def make(qtbot: QtBot) -> Iterator[Make]:
     made: list[Assessor] = []
 
     def new(judge: Callable[[Sheet, int], Assessment] = made_up.judge, *, synchronous: bool = False) -> Assessor:
-        made.append(Assessor(judge, lambda sheet, _plant: judge(sheet, 1), made_up.draw, synchronous=synchronous))
+        made.append(
+            Assessor(
+                made_up.sketching(judge), lambda sheet, _plant: judge(sheet, 1), made_up.draw, synchronous=synchronous
+            )
+        )
         return made[-1]
 
     yield new
@@ -84,6 +88,7 @@ def test_the_family_is_not_put_off_for_ever(
     monkeypatch.setattr(worker, "LATE", late)
     monkeypatch.setattr(worker, "LATE_TIMES", 0.0)
     monkeypatch.setattr(worker, "QUICK", 0.0)
+    monkeypatch.setattr(worker, "OUTLINED", 0.0)
 
     def judge(sheet: Sheet, size: int) -> Assessment:
         number = round(sheet.controller.gain_1)
@@ -166,7 +171,7 @@ def test_kept_tunings_run_once_for_the_same_plant() -> None:
         runs.append(sheet.controller.gain_1)
         return made_up.judge(sheet, size)
 
-    assessing = Assessing(judge, lambda sheet, _plant: judge(sheet, 1), made_up.draw)
+    assessing = Assessing(made_up.sketching(judge), lambda sheet, _plant: judge(sheet, 1), made_up.draw)
     kept = (KeptTuning("A", "kp 3", made_up.sheet(3.0).controller),)
     for number in range(3):
         shown = assessing.whole(Request(number, made_up.sheet(1.0 + 0.1 * number), kept))
@@ -177,7 +182,7 @@ def test_kept_tunings_run_once_for_the_same_plant() -> None:
 def test_a_kept_tuning_that_cannot_run_is_left_out() -> None:
     """The present tuning is answered all the same."""
     kept = (KeptTuning("A", "kp 0", made_up.sheet(0.0).controller),)
-    shown = Assessing(made_up.judge, made_up.glance, made_up.draw).whole(Request(1, made_up.sheet(1.0), kept))
+    shown = Assessing(made_up.sketch, made_up.glance, made_up.draw).whole(Request(1, made_up.sheet(1.0), kept))
     assert shown.kept == ()
     with pytest.raises(LoopError):
         made_up.judge(made_up.sheet(0.0))
@@ -185,7 +190,7 @@ def test_a_kept_tuning_that_cannot_run_is_left_out() -> None:
 
 def test_the_plant_that_is_looked_at_comes_first_too() -> None:
     """The quick answer has the nominal plant and that one, which stands first for the plots; kept tunings run on it."""
-    assessing = Assessing(made_up.judge, made_up.glance, made_up.draw)
+    assessing = Assessing(made_up.sketch, made_up.glance, made_up.draw)
     plant = made_up.judge(made_up.sheet()).members[3].name
     kept = (KeptTuning("A", "kp 3", made_up.sheet(3.0).controller),)
     shown = assessing.nominal(Request(1, made_up.sheet(), kept, looked_at=plant, family_view="band"))
@@ -197,7 +202,7 @@ def test_the_plant_that_is_looked_at_comes_first_too() -> None:
 
 def test_a_plant_that_the_family_has_no_more_is_not_looked_at() -> None:
     """The nominal one is shown in its place."""
-    assessing = Assessing(made_up.judge, made_up.glance, made_up.draw)
+    assessing = Assessing(made_up.sketch, made_up.glance, made_up.draw)
     for answer in (assessing.nominal, assessing.whole):
         shown = answer(Request(1, made_up.sheet(), looked_at="gain 7"))
         assert shown.looked_at == ""
@@ -220,3 +225,50 @@ def test_the_family_goes_on_once_the_first_picture_is_painted(
     assessor.go_on()
     qtbot.waitUntil(lambda: len(answers) == 2)
     assert answers[1].whole
+
+
+def test_all_curves_come_first_where_they_are_quick(make: Make, qtbot: QtBot, monkeypatch: pytest.MonkeyPatch) -> None:
+    """Once it is known what they take; their verdict follows, and nothing is run twice for it."""
+    monkeypatch.setattr(worker, "QUICK", 0.0)
+    monkeypatch.setattr(worker, "FRAME", 0.0)
+    assessor = make()
+    answers: list[Shown] = []
+    assessor.answered.connect(answers.append)
+    for number in (1, 2):
+        assessor.submit(Request(number, made_up.sheet(float(number))))
+        qtbot.waitUntil(lambda: bool(answers) and answers[-1].whole)
+        first, second = answers
+        answers.clear()
+        assert not first.whole
+        assert second.assessment.family_size == 25
+        assert first.has_family == first.outlined == (number == 2)
+    assert first.assessment.family_size == 25
+    assert first.assessment.limits == made_up.glance(made_up.sheet(2.0)).limits
+
+
+def test_curves_over_frequency_wait_for_the_margins() -> None:
+    """They are part of the same picture."""
+    assessing = Assessing(made_up.sketch, made_up.glance, made_up.draw, half=0.0)
+    assert assessing.first(Request(1, made_up.sheet())).outlined
+    assert assessing.first(Request(2, made_up.sheet(), looked_at="gain 7")).outlined
+    # The made-up loop has no response over frequency; that it is asked for decides.
+    assert assessing._answers_in_outline(Request(3, made_up.sheet()))
+    assert not assessing._answers_in_outline(Request(3, made_up.sheet(), frequency=True))
+
+
+def test_half_an_answer_is_of_use_to_its_own_request_alone() -> None:
+    """What was begun for an older sheet is begun anew for a newer one."""
+    begun: list[float] = []
+
+    def sketch(sheet: Sheet, size: int) -> made_up.Sketched:
+        begun.append(sheet.controller.gain_1)
+        return made_up.sketch(sheet, size)
+
+    assessing = Assessing(sketch, made_up.glance, made_up.draw)
+    one, other = Request(1, made_up.sheet(1.0)), Request(2, made_up.sheet(2.0))
+    assessing.outlined(one)
+    assert assessing.whole(one).whole
+    assert begun == [1.0]
+    assessing.outlined(one)
+    assert assessing.whole(other).assessment.nominal.measures == made_up.judge(other.sheet, 1).nominal.measures
+    assert begun == [1.0, 1.0, 2.0]

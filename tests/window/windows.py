@@ -16,7 +16,6 @@ from tuner.window.gain_map.question import PaintMap
 from tuner.window.main_window import MainWindow
 from tuner.window.rulers import build_rulers, keep_painted
 from tuner.window.rulers.painting import PaintRulers, ReasonAt
-from tuner.window.shown import Judge
 from tuner.window.theme import Theme
 from tuner.window.worker import Assessor
 
@@ -82,7 +81,7 @@ def opened(  # noqa: PLR0913 - each is what some test is about
     document: Document | None = None,
     asking: Asking | None = None,
     *,
-    judge: Judge = made_up.judge,
+    judge: made_up.Judge = made_up.judge,
     synchronous: bool = True,
     theme: Theme | None = None,
     paint: PaintRulers | None = None,
@@ -92,7 +91,9 @@ def opened(  # noqa: PLR0913 - each is what some test is about
     """Open a window on a made-up loop, and close it whatever happens."""
     held = document or Document(made_up.sheet())
     look = theme or Theme("light")
-    assessor = Assessor(judge, lambda sheet, _plant: judge(sheet, 1), made_up.draw, synchronous=synchronous)
+    assessor = Assessor(
+        made_up.sketching(judge), lambda sheet, _plant: judge(sheet, 1), made_up.draw, synchronous=synchronous
+    )
     rulers = build_rulers(held, look)
     painting, reasons = paint or made_up_footing.Painting(), reason_at or made_up_footing.Reasons()
     gain_map = build_gain_map(held, look, paint_map or Mapping(), reasons, synchronous=synchronous)

@@ -28,6 +28,7 @@ from tuner.window.main_window import MainWindow
 from tuner.window.menus import Menus
 from tuner.window.rulers import Footing, build_rulers, keep_painted
 from tuner.window.sheet_files import SheetFiles
+from tuner.window.shown import Sketched
 from tuner.window.theme import CHOICES, Theme
 from tuner.window.worker import Assessor
 
@@ -93,7 +94,7 @@ def built(application: QApplication, document: Document, asking: Asking | None =
     theme.dress(application)
     application.setApplicationName("Trimwright")
     application.setWindowIcon(QIcon(str(resources() / "icons" / "trimwright.svg")))
-    assessor, rulers = Assessor(_judge, _glance, _draw), build_rulers(document, theme)
+    assessor, rulers = Assessor(_sketch, _glance, _draw), build_rulers(document, theme)
     footing = keep_painted(document, rulers, _paint_rulers, _reason_at)
     gain_map = build_gain_map(document, theme, _paint_map, _reason_at)
     window = MainWindow(document, theme, assessor, build_editors(document, theme), rulers, (gain_map,))
@@ -138,10 +139,10 @@ def _close(window: MainWindow, wiring: Wiring, event: QCloseEvent) -> None:
         event.ignore()
 
 
-def _judge(sheet: Sheet, size: int) -> Assessment:
-    from tuner.assess import assess
+def _sketch(sheet: Sheet, size: int) -> Sketched:
+    from tuner.assess import sketched
 
-    return assess(sheet, size)
+    return sketched(sheet, size)
 
 
 def _glance(sheet: Sheet, plant: str) -> Assessment:

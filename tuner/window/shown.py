@@ -2,7 +2,7 @@
 
 from collections.abc import Callable
 from dataclasses import dataclass, replace
-from typing import TYPE_CHECKING, Literal
+from typing import TYPE_CHECKING, Literal, Protocol
 
 from tuner.judge.assessment import Assessment, MemberResult
 from tuner.judge.overlay import Overlay
@@ -54,13 +54,16 @@ class Shown:
     sheet : Sheet
         The sheet that was assessed.
     assessment : Assessment
-        Of the whole family, or of the nominal plant alone while `whole` is false.
+        Of the whole family, or of the nominal plant alone while `whole` is false; `outlined` then says whether the
+        others are there too, with their curves and poles, and without measures.
     overlay : Overlay
         What is drawn over the curves.
     kept : tuple of KeptResult
         Kept tunings that could be run.
     whole : bool
-        False for the quick first answer, which says nothing about the family and so gives no verdict.
+        False for the quick first answer, which does not judge the family and so gives no verdict.
+    outlined : bool
+        Whether a quick answer has the curves of the family all the same.
     frequency : FrequencyCurves or None
         The response over frequency, where it was asked for.
     looked_at : str
@@ -77,10 +80,16 @@ class Shown:
     overlay: Overlay
     kept: tuple[KeptResult, ...] = ()
     whole: bool = True
+    outlined: bool = False
     frequency: "FrequencyCurves | None" = None
     looked_at: str = ""
     seen: Assessment | None = None
     family_view: FamilyView = "both"
+
+    @property
+    def has_family(self) -> bool:
+        """Whether it has the curves and the poles of the family."""
+        return self.whole or self.outlined
 
     def as_seen(self) -> "Shown":
         """Return this answer as the plots show it: with the plant that is looked at in the nominal one's place."""
@@ -95,11 +104,24 @@ class Failure:
     sentence: str
 
 
-Judge = Callable[[Sheet, int], Assessment]
-"""Assesses a sheet over a family of so many plants."""
-
 Glance = Callable[[Sheet, str], Assessment]
 """Assesses a sheet with its nominal plant, and the plant of a name if there is one, as fast as can be."""
+
+
+class Sketched(Protocol):
+    """A sheet that was run with its family, before anything is measured."""
+
+    def outlined(self, plant: str, /) -> Assessment:
+        """Judge by the nominal plant, and the plant of a name if there is one; the others have their curves."""
+        ...
+
+    def judged(self) -> Assessment:
+        """Measure and judge all of it."""
+        ...
+
+
+Sketch = Callable[[Sheet, int], Sketched]
+"""Runs a sheet with a family of so many plants, half the way to its assessment."""
 
 Draw = Callable[[Sheet, Assessment], Overlay]
 """Says what to draw over the curves of an assessment."""

@@ -1,4 +1,4 @@
-"""Assesses requests beside the main thread: the newest wins, the nominal curves come first where the family is slow."""
+"""Assesses requests beside the main thread: the newest wins, and curves come before a verdict that takes time."""
 
 import logging
 import time
@@ -13,17 +13,20 @@ from tuner.errors import TrimwrightError
 from tuner.judge.assessment import Assessment, MemberResult
 from tuner.model.sheet import Sheet
 from tuner.session.tunings import KeptTuning
-from tuner.window.shown import Draw, Failure, Glance, Judge, KeptResult, Request, Shown
+from tuner.window.shown import Draw, Failure, Glance, KeptResult, Request, Shown, Sketch, Sketched
 from tuner.window.slot import Slot
 
 QUICK = 0.005
-"""Seconds that a whole family may take before the nominal plant is shown ahead of it."""
+"""Seconds that a whole family may take before anything is shown ahead of its verdict."""
+
+OUTLINED = 0.012
+"""Seconds that its curves may take to be shown ahead of its verdict; beyond, those of the nominal plant come first."""
 
 SLOW = 0.050
 """Seconds from which on a family waits for the hand to rest, so that it does not hold up the nominal curves."""
 
 FRAME = 0.030
-"""Seconds that the family waits after the nominal plant at most, while the main thread paints undisturbed."""
+"""Seconds that the rest waits after the first curves at most, while the main thread paints undisturbed."""
 
 REST = 0.060
 """Seconds that such a family waits for a newer request."""
@@ -47,38 +50,64 @@ class Assessing:
 
     Parameters
     ----------
-    judge, glance, draw : callable
-        The road from sheet to assessment, the quick one for a first picture, and from there to the overlay.
+    sketch, glance, draw : callable
+        The first half of the road from sheet to assessment, a short cut for a first picture, and the overlay.
     cost : float
         Seconds that the last whole family took.
+    half : float
+        Seconds that the first half of that took.
     ended : float
         When it was done, on the clock of `time.perf_counter`.
     """
 
-    judge: Judge
+    sketch: Sketch
     glance: Glance
     draw: Draw
     cost: float = float("inf")
+    half: float = float("inf")
     ended: float = float("-inf")
+    _begun: "_Begun | None" = None
     _kept: OrderedDict[tuple[Sheet, str], MemberResult | None] = field(default_factory=OrderedDict)
+
+    def first(self, request: Request) -> Shown:
+        """Answer as fast as can be: with all curves, where those of the family do not take long."""
+        return self.outlined(request) if self._answers_in_outline(request) else self.nominal(request)
+
+    def _answers_in_outline(self, request: Request) -> bool:
+        # Margins are part of the curves over frequency.
+        return self.half <= OUTLINED and not request.frequency
 
     def nominal(self, request: Request) -> Shown:
         """Answer for the nominal plant alone, and for the plant that is looked at."""
-        return self._shown(request, self.glance(request.sheet, request.looked_at), whole=False)
+        return self._shown(request, self.glance(request.sheet, request.looked_at))
+
+    def outlined(self, request: Request) -> Shown:
+        """Answer with the curves of the whole family, and the measures of the nominal plant."""
+        self._begun = self._begin(request)
+        return self._shown(request, self._begun.sketched.outlined(request.looked_at), outlined=True)
 
     def whole(self, request: Request) -> Shown:
         """Answer for the whole family."""
+        begun, self._begun = self._begun, None
+        if begun is None or begun.sheet is not request.sheet:
+            begun = self._begin(request)
         began = time.perf_counter()
-        shown = self._shown(request, self.judge(request.sheet, request.sheet.trial.family_size), whole=True)
+        shown = self._shown(request, begun.sketched.judged(), whole=True)
         self.ended = time.perf_counter()
-        self.cost = self.ended - began
+        self.cost = self.half + self.ended - began
         return shown
+
+    def _begin(self, request: Request) -> "_Begun":
+        began = time.perf_counter()
+        sketched = self.sketch(request.sheet, request.sheet.trial.family_size)
+        self.half = time.perf_counter() - began
+        return _Begun(request.sheet, sketched)
 
     def due(self) -> bool:
         """Tell whether the last whole family is so old that the next one should wait no longer."""
         return time.perf_counter() - self.ended > max(LATE, LATE_TIMES * self.cost)
 
-    def _shown(self, request: Request, assessment: Assessment, *, whole: bool) -> Shown:
+    def _shown(self, request: Request, assessment: Assessment, *, whole: bool = False, outlined: bool = False) -> Shown:
         seen = assessment.seen_from(request.looked_at) if request.looked_at else assessment
         overlay = self.draw(request.sheet, seen)
         results = (self._result(request.sheet, tuning, request.looked_at) for tuning in request.kept)
@@ -92,6 +121,7 @@ class Assessing:
             overlay=overlay,
             kept=kept,
             whole=whole,
+            outlined=outlined,
             frequency=curves,
             looked_at=plant,
             seen=seen if plant else None,
@@ -116,6 +146,14 @@ class Assessing:
             return None
 
 
+@dataclass(frozen=True, slots=True, eq=False)
+class _Begun:
+    """Half of an answer."""
+
+    sheet: Sheet
+    sketched: Sketched
+
+
 def _curves(sheet: Sheet, seen: Assessment) -> "FrequencyCurves":
     # Not before it is asked for: the first picture does not wait for compiled loops.
     from tuner.window.frequency.question import curves_of
@@ -128,7 +166,7 @@ class Assessor(QObject):
 
     Parameters
     ----------
-    judge, glance, draw : callable
+    sketch, glance, draw : callable
         See `Assessing`.
     synchronous : bool
         Answer at once, inside `submit`, for tests that want no thread.
@@ -139,9 +177,9 @@ class Assessor(QObject):
     failed = Signal(object)
     """A `Failure`."""
 
-    def __init__(self, judge: Judge, glance: Glance, draw: Draw, *, synchronous: bool = False) -> None:
+    def __init__(self, sketch: Sketch, glance: Glance, draw: Draw, *, synchronous: bool = False) -> None:
         super().__init__()
-        self._assessing = Assessing(judge, glance, draw)
+        self._assessing = Assessing(sketch, glance, draw)
         self._slot: Slot[Request] = Slot()
         self._thread = None if synchronous else _Thread(self)
 
@@ -172,7 +210,7 @@ class Assessor(QObject):
     def _answer(self, request: Request) -> None:
         cost = self._assessing.cost
         if cost > QUICK:
-            if not self._tell(request, self._assessing.nominal):
+            if not self._tell(request, self._assessing.first):
                 return
             overtaken = self._slot.newer(REST) if cost > SLOW else self._slot.newer(FRAME, until_nudged=True)
             if self._slot.closed or (overtaken and not self._assessing.due()):

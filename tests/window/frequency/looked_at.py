@@ -4,7 +4,7 @@ from collections.abc import Mapping
 from dataclasses import replace
 from functools import cache
 
-from tuner.assess import assess, glance
+from tuner.assess import glance, sketched
 from tuner.files.sheet import read
 from tuner.judge.overlay import overlay
 from tuner.model.sheet import Sheet
@@ -32,7 +32,7 @@ def with_feedback(sheet: Sheet, *, on: bool) -> Sheet:
 @cache
 def answer(sheet: Sheet | None = None, *, whole: bool = True, looked_at: str = "", family_view: str = "both") -> Shown:
     """Return the answer on a sheet, the heater's as a rule, with its curves over frequency, as the plots show it."""
-    assessing = Assessing(assess, glance, overlay)
+    assessing = Assessing(sketched, glance, overlay)
     request = Request(1, sheet or sample(), frequency=True, looked_at=looked_at, family_view=family_view)  # type: ignore[arg-type] # a view
     return (assessing.whole(request) if whole else assessing.nominal(request)).as_seen()
 

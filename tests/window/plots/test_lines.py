@@ -6,7 +6,7 @@ import numpy as np
 import pytest
 
 from tests.window import made_up
-from tests.window.plots.answers import answer
+from tests.window.plots.answers import answer, outline
 from tuner.judge.assessment import MemberResult
 from tuner.window.plots.lines import LARGE, Array, Family, drift_words, family_of_curves, looked_at_words, worst_line
 from tuner.window.shown import FamilyView, Request, Shown
@@ -92,6 +92,19 @@ def test_nothing_is_worst_before_the_family_is_known() -> None:
     assert worst_line(answer(3.0, limits=()), "reference", curve) is None
 
 
+def test_until_the_verdict_the_last_worst_plant_stays_on_its_new_curve() -> None:
+    """By its old name; where only the nominal plant is known its old curve stays."""
+    last = worst_line(answer(3.0), "reference", curve)
+    assert last is not None
+    first, _ = outline(2.5)
+    found = worst_line(first, "reference", curve, last)
+    assert found is not None
+    (member,) = (one for one in first.assessment.members if one.name == last.plant)
+    assert np.array_equal(found.values, member.traces.reference.y)
+    assert (found.name, found.plant) == (last.name, last.plant)
+    assert worst_line(answer(2.5, whole=False), "reference", curve, last) is last
+
+
 def test_plants_in_words() -> None:
     """By their drift; the nominal one by its name; by values where the drift is not known."""
     nominal, other = answer(2.0).assessment.members[:2]
@@ -102,5 +115,5 @@ def test_plants_in_words() -> None:
 
 
 def _looking_at(plant: str) -> Shown:
-    assessing = Assessing(made_up.judge, made_up.glance, made_up.draw)
+    assessing = Assessing(made_up.sketch, made_up.glance, made_up.draw)
     return assessing.whole(Request(1, made_up.sheet(3.0), looked_at=plant)).as_seen()

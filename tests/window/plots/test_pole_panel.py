@@ -8,7 +8,7 @@ from PySide6.QtCore import QPointF, Qt
 from PySide6.QtTest import QTest
 from pytestqt.qtbot import QtBot
 
-from tests.window.plots.answers import answer, seen
+from tests.window.plots.answers import answer, outline, seen
 from tuner.judge.assessment import WorstCase
 from tuner.window.plots.pole_panel import PolePanel, pole_words
 from tuner.window.theme import Theme
@@ -68,6 +68,19 @@ def test_a_first_answer_moves_only_the_nominal_poles(panel: PolePanel) -> None:
     before = panel.family.getData()[0].copy()
     panel.show(answer(2.5, whole=False))
     assert np.array_equal(panel.family.getData()[0], before)
+
+
+def test_a_first_answer_may_have_the_poles_of_the_family(panel: PolePanel) -> None:
+    """It moves them all; the ring waits for the verdict."""
+    panel.show(answer(1.0))
+    ringed = panel.least.getData()[0].copy()
+    first, whole = outline(3.0, number=2)
+    panel.show(first)
+    family = np.concatenate([member.poles for member in first.assessment.members[1:]])
+    assert np.array_equal(panel.family.getData()[0], family.real)
+    assert np.array_equal(panel.least.getData()[0], ringed)
+    panel.show(whole)
+    assert not np.array_equal(panel.least.getData()[0], ringed)
 
 
 def test_the_least_damped_pair_is_ringed_and_named(panel: PolePanel) -> None:

@@ -8,7 +8,7 @@ from PySide6.QtCore import QPointF, Qt
 from PySide6.QtTest import QTest
 from pytestqt.qtbot import QtBot
 
-from tests.window.plots.answers import answer, seen
+from tests.window.plots.answers import answer, outline, seen
 from tuner.judge.assessment import Assessment, MemberResult
 from tuner.model.controller import Controller
 from tuner.model.sheet import Trial
@@ -354,3 +354,27 @@ def _wild(shown: Shown) -> Shown:
 
     wild: Assessment = replace(shown.assessment, members=tuple(worse(member) for member in shown.assessment.members))
     return replace(shown, assessment=wild)
+
+
+def test_a_first_answer_brings_the_curves_of_the_family(reference: ReferencePanel) -> None:
+    """Where it has them; what then follows draws them no second time."""
+    reference.show(answer(1.0))
+    old = reference.family.getData()[1].copy()
+    first, whole = outline(3.0, number=2)
+    reference.show(first)
+    drawn = reference.family.getData()[1]
+    assert not np.array_equal(drawn, old)
+    reference.show(whole)
+    assert reference.family.getData()[1] is drawn
+
+
+def test_what_follows_is_drawn_where_it_says_something_new(reference: ReferencePanel) -> None:
+    """Another worst plant, or a name that was not there; not the same picture twice while a ruler is held."""
+    reference.held = True
+    redrawn: list[int] = []
+    reference.redraw = lambda: redrawn.append(1)  # type: ignore[method-assign]
+    for number in (2, 3):
+        first, whole = outline(3.0, number=number)
+        reference.show(first)
+        reference.show(whole)
+    assert len(redrawn) == 3  # the first time its worst plant got its name

@@ -169,7 +169,7 @@ def test_in_a_thread_the_last_sheet_is_the_last_painted(document: Document, pane
 @pytest.fixture
 def curves() -> Iterator[Assessor]:
     """Return what draws the curves; the test answers in its place."""
-    assessor = Assessor(made_up.judge, lambda sheet, _plant: made_up.judge(sheet, 1), made_up.draw, synchronous=True)
+    assessor = Assessor(made_up.sketch, lambda sheet, _plant: made_up.judge(sheet, 1), made_up.draw, synchronous=True)
     yield assessor
     assessor.close()
 

@@ -84,6 +84,14 @@ class Lines:
     limited: Limited | None = None
     worst: Line | None = None
 
+    def says_the_same(self, other: "Lines") -> bool:
+        """Tell whether the same plants have the same names, in two pictures of the same curves."""
+        return _said(self.nominal) == _said(other.nominal) and _said(self.worst) == _said(other.worst)
+
+
+def _said(line: Line | None) -> tuple[str, str] | None:
+    return None if line is None else (line.name, line.plant)
+
 
 def family_of_curves(shown: Shown, curve: Callable[[MemberResult], tuple[Array, Array]]) -> Family:
     """Return a curve of every plant but the first, over the times of the first such, to which others are brought."""
@@ -98,19 +106,27 @@ def family_of_curves(shown: Shown, curve: Callable[[MemberResult], tuple[Array, 
     return Family(t, values, tuple(place for place, member in enumerate(members) if member.name in plants))
 
 
-def worst_line(shown: Shown, plot: Plot, curve: Callable[[MemberResult], tuple[Array, Array]]) -> Line | None:
+def worst_line(
+    shown: Shown, plot: Plot, curve: Callable[[MemberResult], tuple[Array, Array]], before: Line | None = None
+) -> Line | None:
     """Return the curve of the plant that misses a limit by most, or comes nearest to missing one, with its name.
 
-    None where that plant is the one that is looked at, or where nothing is judged.
+    None where that plant is the one that is looked at, or where nothing is judged. Until an answer has a verdict it is
+    the plant of `before`, the line drawn last; the same curve until it has that plant at all.
     """
-    limit = _worst_limit(shown.assessment.limits, plot) if shown.whole else None
-    if limit is None:
+    if not shown.whole:
+        member = _member(shown, before.plant) if before is not None else None
+        return Line(*curve(member), before.name, before.plant) if before is not None and member is not None else before
+    limit = _worst_limit(shown.assessment.limits, plot)
+    member = None if limit is None else _member(shown, limit.plant)
+    if limit is None or member is None:
         return None
-    found = [member for member in shown.assessment.members[1:] if member.name == limit.plant]
-    if not found:
-        return None
-    t, values = curve(found[0])
-    return Line(t, values, f"worst {BY_NAME[limit.measure].label}: {drift_words(found[0])}", limit.plant)
+    return Line(*curve(member), f"worst {BY_NAME[limit.measure].label}: {drift_words(member)}", limit.plant)
+
+
+def _member(shown: Shown, plant: str) -> MemberResult | None:
+    """Return what a plant other than the first makes of the loop, by its name."""
+    return next((member for member in shown.assessment.members[1:] if member.name == plant), None)
 
 
 def drift_words(member: MemberResult) -> str:

@@ -63,6 +63,7 @@ class PolePanel(Panel):
         self.nominal = Poles(size=10, depth=120.0)
         self.least = Poles(size=16, depth=121.0, rings=True)
         self._least: Least | None = None
+        self._outlined: int | None = None
         super().__init__(name, theme)
         self.view.addItem(self.family, ignoreBounds=True)
         self.view.addItem(self.nominal, ignoreBounds=True)
@@ -70,12 +71,15 @@ class PolePanel(Panel):
         self.family.join(self.view.still)
 
     def draw(self, shown: Shown) -> None:
-        """Take over the poles; until the whole family is known, its last poles stay."""
+        """Take over the poles; until those of the whole family are known, its last ones stay."""
         members = shown.assessment.members
+        follows = shown.whole and shown.number == self._outlined
+        self._outlined = shown.number if shown.outlined else None
         self._nominal = members[0].poles
-        if shown.whole:
+        if shown.has_family and not follows:
             others = [member.poles for member in members[1:]] if shown.family_view != "none" else []
             self._family = np.concatenate(others) if others else np.empty(0, dtype=np.complex128)
+        if shown.whole:
             self._least = least_damped(shown)
             missed, bad = missed_words(shown, ("poles", "frequency"))
             unit = shown.sheet.loop.time_unit
@@ -140,7 +144,7 @@ class PolePanel(Panel):
         """Forget ranges and poles."""
         super().forget()
         self._family = np.empty(0, dtype=np.complex128)
-        self._least = None
+        self._least = self._outlined = None
         self._across.forget()
         self._upwards.forget()
 

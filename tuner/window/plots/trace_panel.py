@@ -47,6 +47,7 @@ class TracePanel(Panel):
     def __init__(self, name: str, theme: Theme) -> None:
         self._lines: Lines | None = None
         self._marks = Marks()
+        self._outlined: int | None = None
         self._steady = SteadyExtent()
         self.kept: list[Curve] = []
         self.worst = Curve(depth=-15.0)
@@ -61,8 +62,8 @@ class TracePanel(Panel):
 
     # What subclasses say ----------------------------------------------------------------------------------------
 
-    def lines(self, shown: Shown) -> Lines:
-        """Return the curves of an answer."""
+    def lines(self, shown: Shown, worst: Line | None = None) -> Lines:
+        """Return the curves of an answer; `worst` is the one of the worst plant drawn last."""
         raise NotImplementedError
 
     def axis_words(self, sheet: Sheet) -> str:
@@ -80,16 +81,21 @@ class TracePanel(Panel):
     # Panel ------------------------------------------------------------------------------------------------------
 
     def draw(self, shown: Shown) -> None:
-        """Take over the curves; until the whole family is known, its last curves stay."""
-        previous, self._lines = self._lines, self.lines(shown)
-        if not shown.whole and previous is not None:
-            self._lines = replace(self._lines, family=previous.family, worst=previous.worst)
-        self._marks = trace_marks(self.plot, shown.sheet, shown.overlay)
+        """Take over the curves; until those of the whole family are known, its last ones stay."""
+        before, marks, self._marks = self._lines, self._marks, trace_marks(self.plot, shown.sheet, shown.overlay)
+        self._lines = self.lines(shown, before.worst if before is not None else None)
+        follows = shown.whole and shown.number == self._outlined
+        if before is not None and (follows or not shown.has_family):
+            self._lines = replace(self._lines, family=before.family)
+        self._outlined = shown.number if shown.outlined else None
         missed, bad = missed_words(shown, (self.plot,))
         self.set_words(self.axis_words(shown.sheet), missed, bad=bad) if shown.whole else None
+        ranges = self.ranges()
         if (asked := self.ask()) is not None:
             self.set_ranges(asked[0], self._steady.offer(asked[1], held=self.held or not shown.whole))
-        self.redraw()
+        is_there = follows and before is not None and before.says_the_same(self._lines) and marks == self._marks
+        if not is_there or self.ranges() != ranges:
+            self.redraw()
 
     def ask(self) -> tuple[Extent, Extent] | None:
         """Return the whole duration, and the height that the curves ask for within reason."""
@@ -141,7 +147,7 @@ class TracePanel(Panel):
     def forget(self) -> None:
         """Forget ranges and curves."""
         super().forget()
-        self._lines = None
+        self._lines = self._outlined = None
         self._steady.forget()
 
     def dress(self) -> None:
@@ -204,14 +210,14 @@ def _name(line: Line, role: str, share: float, seen: Extent) -> Words:
 class OutputPanel(TracePanel):
     """The output after a step."""
 
-    def lines(self, shown: Shown) -> Lines:
+    def lines(self, shown: Shown, worst: Line | None = None) -> Lines:
         """Return the output of the plant looked at, of the family, of its worst plant, and of kept tunings."""
         t, y = self._curve(shown.assessment.nominal)
         return Lines(
             Line(t, y, f"output y{looked_at_words(shown)}"),
             family_of_curves(shown, self._curve),
             tuple(Line(*self._curve(kept.member), kept.name) for kept in shown.kept),
-            worst=worst_line(shown, self.plot, self._curve),
+            worst=worst_line(shown, self.plot, self._curve, worst),
         )
 
     def _curve(self, member: MemberResult) -> tuple[Array, Array]:
@@ -266,7 +272,7 @@ class EffortPanel(TracePanel):
 
     plot = "effort"
 
-    def lines(self, shown: Shown) -> Lines:
+    def lines(self, shown: Shown, worst: Line | None = None) -> Lines:
         """Return the effort of the reference run with its family, and that of the disturbance run beside it."""
         sheet, traces = shown.sheet, shown.assessment.nominal.traces
         t, u = effort_corners(sheet, traces.disturbance)
@@ -280,7 +286,7 @@ class EffortPanel(TracePanel):
             tuple(Line(*curve(kept.member), kept.name) for kept in shown.kept),
             Line(t, u, "disturbance run") if sheet.trial.disturbance else None,
             limited_pieces(sheet, traces.reference),
-            worst_line(shown, self.plot, curve),
+            worst_line(shown, self.plot, curve, worst),
         )
 
     def axis_words(self, sheet: Sheet) -> str:
