@@ -13,6 +13,7 @@ from tests.window import made_up, made_up_footing
 from tests.window.test_sheet_files import BAD, GOOD
 from tests.window.windows import Answers
 from tuner.errors import SheetError
+from tuner.footing.apart import Apart
 from tuner.places import sample_plants
 from tuner.session.document import Document
 from tuner.window import app, memory
@@ -22,10 +23,21 @@ from tuner.window.main_window import MainWindow
 ROOT = Path(__file__).parents[2]
 
 
+class MadeUpApart(Apart):
+    """Answers at once, in closed form, and starts no process."""
+
+    def __init__(self) -> None:
+        super().__init__()
+        self.paint_rulers = made_up_footing.Painting()  # type: ignore[method-assign]
+
+    def start(self) -> None:
+        """Do nothing."""
+
+
 @pytest.fixture(autouse=True)
 def _made_up_sketch(monkeypatch: pytest.MonkeyPatch) -> None:
     monkeypatch.setattr(app, "_sketch", made_up.sketch)
-    monkeypatch.setattr(app, "_paint_rulers", made_up_footing.Painting())
+    monkeypatch.setattr(app, "Apart", MadeUpApart)
     monkeypatch.setattr(app, "_reason_at", made_up_footing.Reasons())
     monkeypatch.setattr(sys, "excepthook", sys.excepthook)
 

@@ -1,17 +1,17 @@
 """Opens the window; the one entry of this room."""
 
 import sys
-from collections.abc import Callable, Mapping, Sequence
+from collections.abc import Mapping
 from dataclasses import dataclass
 from pathlib import Path
 from typing import TYPE_CHECKING
 
-from PySide6.QtCore import QTimer
+from PySide6.QtCore import Qt, QTimer
 from PySide6.QtGui import QCloseEvent, QIcon
 from PySide6.QtWidgets import QApplication
 
 from tuner.errors import TrimwrightError
-from tuner.footing.classes import PaintedTrack, Track
+from tuner.footing.apart import Apart
 from tuner.judge.assessment import Assessment
 from tuner.judge.overlay import Overlay
 from tuner.model.sheet import Sheet
@@ -32,8 +32,7 @@ from tuner.window.shown import Sketched
 from tuner.window.theme import CHOICES, Theme
 from tuner.window.worker import Assessor
 
-if TYPE_CHECKING:  # these roads are loaded when they are first taken
-    from tuner.footing.gain_map import GainMap
+if TYPE_CHECKING:  # this road is loaded when it is first taken
     from tuner.footing.reason import Reason
 
 _FIRST_SIZE = (1440, 900)
@@ -51,6 +50,7 @@ class Wiring:
     keeping: Keeping
     footing: Footing | None = None
     gain_map: GainMapPage | None = None
+    apart: tuple[Apart, ...] = ()
 
 
 def open_window(path: Path | None) -> int:
@@ -95,28 +95,34 @@ def built(application: QApplication, document: Document, asking: Asking | None =
     application.setApplicationName("Trimwright")
     application.setWindowIcon(QIcon(str(resources() / "icons" / "trimwright.svg")))
     assessor, rulers = Assessor(_sketch, _glance, _draw), build_rulers(document, theme)
-    footing = keep_painted(document, rulers, _paint_rulers, _reason_at)
-    gain_map = build_gain_map(document, theme, _paint_map, _reason_at)
+    apart = Apart(), Apart()
+    footing = keep_painted(document, rulers, apart[0].paint_rulers, _reason_at)
+    gain_map = build_gain_map(document, theme, apart[1].paint_map, _reason_at)
     window = MainWindow(document, theme, assessor, build_editors(document, theme), rulers, (gain_map,))
     window.resize(*_FIRST_SIZE)
     window.restore_layout(remembered)
-    for worker in (assessor, footing.painted, footing.reader, gain_map):
+    for worker in (*apart, assessor, footing.painted, footing.reader, gain_map):
         application.aboutToQuit.connect(worker.close)
-    return window, wire(window, asking or Asking(window), footing, gain_map)
+    assessor.answered.connect(apart[0].start, Qt.ConnectionType.SingleShotConnection)
+    return window, wire(window, asking or Asking(window), footing, gain_map, apart)
 
 
 def wire(
-    window: MainWindow, asking: Asking, footing: Footing | None = None, gain_map: GainMapPage | None = None
+    window: MainWindow,
+    asking: Asking,
+    footing: Footing | None = None,
+    gain_map: GainMapPage | None = None,
+    apart: tuple[Apart, ...] = (),
 ) -> Wiring:
     """Give a window its menus, its files, its footing, its gain map and its manners on closing."""
     files = SheetFiles(window.document, asking)
     keeping = Keeping(window.document, asking)
     menus = Menus(window, files, Commands(window, asking))
     window.dropped.connect(files.open_path)
-    wiring = Wiring(menus, files, keeping, footing, gain_map)
+    wiring = Wiring(menus, files, keeping, footing, gain_map, apart)
     window.closing.connect(lambda event: _close(window, wiring, event))
     if footing is not None:
-        footing.painted.let_pass(window.assessor)
+        footing.painted.wake_after(window.assessor)
     return wiring
 
 
@@ -130,6 +136,8 @@ def _close(window: MainWindow, wiring: Wiring, event: QCloseEvent) -> None:
     """Let the window close once nothing would be lost, and remember how it stood."""
     if wiring.files.may_leave():
         wiring.keeping.end()
+        for process in wiring.apart:
+            process.close()
         if wiring.footing is not None:
             wiring.footing.close()
         if wiring.gain_map is not None:
@@ -149,20 +157,6 @@ def _glance(sheet: Sheet, plant: str) -> Assessment:
     from tuner.assess import glance
 
     return glance(sheet, plant)
-
-
-def _paint_rulers(
-    sheet: Sheet, tracks: Sequence[Track], *, stop: Callable[[], bool], fine: bool = True
-) -> tuple[PaintedTrack, ...]:
-    from tuner.footing.rulers import paint_rulers
-
-    return paint_rulers(sheet, tracks, stop=stop, fine=fine)
-
-
-def _paint_map(sheet: Sheet, x: Track, y: Track, measure: str, *, stop: Callable[[], bool]) -> "GainMap":
-    from tuner.footing.gain_map import paint_map
-
-    return paint_map(sheet, x, y, measure, stop=stop)
 
 
 def _reason_at(sheet: Sheet, changes: Mapping[str, float], /) -> "Reason":

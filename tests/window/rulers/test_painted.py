@@ -181,42 +181,29 @@ def answer(curves: Assessor, *, whole: bool) -> None:
     QApplication.processEvents()
 
 
-def test_the_curves_of_a_change_go_first(
-    document: Document, panel: RulerPanel, worker: Asked, curves: Assessor, monkeypatch: pytest.MonkeyPatch
+def test_the_first_verdict_wakes_the_rulers(
+    document: Document, panel: RulerPanel, worker: Asked, curves: Assessor
 ) -> None:
-    """The first verdict wakes the rulers; then each change waits until all its curves, or none, came."""
-    monkeypatch.setattr(painted, "PATIENCE", 1_000_000)
+    """It is drawn first; from then on each change asks at once."""
     kept = PaintedRulers(document, panel, worker)
-    kept.let_pass(curves)
+    kept.wake_after(curves)
     answer(curves, whole=False)
+    document.change_value("kp", 3.5)
     assert worker.requests == []
     answer(curves, whole=True)
-    assert len(worker.requests) == 1
     document.change_value("kp", 4.0)
-    QApplication.processEvents()
-    assert len(worker.requests) == 1
-    answer(curves, whole=False)
-    assert len(worker.requests) == 1
     answer(curves, whole=True)
-    assert [request.sheet.controller.gain_1 for request in worker.requests] == [3.0, 4.0]
-    document.change_value("kp", 5.0)
-    curves.failed.emit(Failure(2, "the loop has no gain"))
-    QApplication.processEvents()
-    assert len(worker.requests) == 3
+    assert [request.sheet.controller.gain_1 for request in worker.requests] == [3.5, 4.0]
     kept.close()
 
 
-def test_slow_curves_are_not_waited_for(
-    document: Document, panel: RulerPanel, worker: Asked, curves: Assessor, qtbot: QtBot
-) -> None:
-    """Where curves take long, the rulers ask after a while nevertheless, for the newest sheet."""
-    kept = PaintedRulers(document, panel, worker)
-    kept.let_pass(curves)
-    answer(curves, whole=True)
-    for kp in (4.0, 5.0):
-        document.change_value("kp", kp)
-    qtbot.waitUntil(lambda: len(worker.requests) == 2)
-    assert worker.requests[-1].sheet.controller.gain_1 == 5.0
+def test_rulers_wake_where_there_is_no_verdict(panel: RulerPanel, worker: Asked, curves: Assessor) -> None:
+    """So that they say why they are grey."""
+    kept = PaintedRulers(Document(wash_bath()), panel, worker)
+    kept.wake_after(curves)
+    curves.failed.emit(Failure(2, "the loop has no gain"))
+    QApplication.processEvents()
+    assert len(worker.requests) == 1
     kept.close()
 
 

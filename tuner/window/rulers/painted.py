@@ -16,9 +16,6 @@ WAITING = "The rulers are grey until their footing is computed; the first time o
 LATE = 250
 """Milliseconds after which paint that a change made untrue is shown paler, if nothing newer has come."""
 
-PATIENCE = 150
-"""Milliseconds that the rulers let pass the curves of a change."""
-
 
 class PaintedRulers(QObject):
     """Asks a worker for the footing of all rulers, newest sheet first, and never shows an older one than before.
@@ -43,8 +40,6 @@ class PaintedRulers(QObject):
         self.painting: Painting | None = None
         self._late = QTimer(self, singleShot=True, interval=LATE)
         self._late.timeout.connect(self._fade)
-        self._turn = QTimer(self, singleShot=True, interval=0)
-        self._turn.timeout.connect(self._submit)
         worker.answered.connect(self._answered)
         worker.failed.connect(self._failed)
         self._held = self._is_coarse = False
@@ -63,37 +58,22 @@ class PaintedRulers(QObject):
             self._awake = True
             self.ask()
 
-    def let_pass(self, curves: Assessor) -> None:
-        """Ask only after all curves of a change are drawn, or it takes them long; sleep until the first verdict."""
-        self._turn.setInterval(PATIENCE)
+    def wake_after(self, curves: Assessor) -> None:
+        """Begin to ask once the first verdict is drawn, or there is none."""
         curves.answered.connect(self._curves_came)
         curves.failed.connect(self._no_curves_came)
 
     def _curves_came(self, shown: Shown) -> None:
-        self._awake = self._awake or shown.whole
-        if shown.whole:
-            self._take_turn()
+        if shown.whole and not self._awake:
+            QTimer.singleShot(0, self, self.wake)
 
     def _no_curves_came(self, _failure: Failure) -> None:
-        self._awake = True
-        self._take_turn()
-
-    def _take_turn(self) -> None:
-        """Ask once what has come is drawn."""
-        QTimer.singleShot(0, self, self._submit)
+        QTimer.singleShot(0, self, self.wake)
 
     def ask(self) -> None:
-        """Ask for the footing of the sheet as it is now when it is the rulers' turn."""
+        """Ask for the footing of the sheet as it is now, unless it was asked for already."""
         if self._generation != self._document.generation:
             self._leave_loop()
-        if self._turn.interval() == 0:
-            self._submit()
-        elif not self._turn.isActive():
-            self._turn.start()
-
-    def _submit(self) -> None:
-        """Ask, unless it was asked for already."""
-        self._turn.stop()
         tracks = self._panel.tracks()
         if not self._awake or self._is_wanted(tracks):
             return
@@ -107,7 +87,6 @@ class PaintedRulers(QObject):
     def close(self) -> None:
         """Ask no more, and end the worker."""
         self._stop_listening()
-        self._turn.stop()
         self._late.stop()
         self._worker.close()
 
@@ -120,7 +99,7 @@ class PaintedRulers(QObject):
         self._held = False
         if self._is_coarse:
             self._wanted = None
-            self._submit()
+            self.ask()
 
     def _is_wanted(self, tracks: tuple[Track, ...]) -> bool:
         if self._wanted is None:
