@@ -11,7 +11,7 @@ from tuner.judge.assessment import Assessment, Instability, MemberResult
 from tuner.judge.cliff import Runaway, instability
 from tuner.judge.verdict import judge
 from tuner.measure.family import Measured, measure_trials
-from tuner.measure.final import family_final_values
+from tuner.measure.final import family_ends
 from tuner.measure.loop import add_damping, add_margins
 from tuner.model.controller import Controller
 from tuner.model.family import NOMINAL, Member, family_of
@@ -161,7 +161,7 @@ def _results(
     poles: Sequence[Poles],
     traces: Sequence[Traces],
 ) -> tuple[MemberResult, ...]:
-    measured = measure_trials(sheet, traces, [found.stable for found in poles], family_final_values(sheet, members))
+    measured = measure_trials(sheet, traces, [found.stable for found in poles], family_ends(sheet, members))
     return tuple(map(_result, members, loops, poles, traces, measured, _margins(loops, poles)))
 
 

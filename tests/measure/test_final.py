@@ -4,9 +4,12 @@ from math import inf, isnan
 
 import pytest
 
-from tuner.measure.final import StaticGains, final_values
+from tuner.measure.final import StaticGains, family_ends, final_values
 from tuner.model.controller import Controller
-from tuner.model.sheet import Trial
+from tuner.model.family import NOMINAL, Member
+from tuner.model.loop import Loop, Manipulated
+from tuner.model.plant import ExpressionPlant
+from tuner.model.sheet import Sheet, Trial
 
 TRIAL = Trial(duration=1.0, reference=3.0, disturbance=2.0)
 
@@ -42,3 +45,21 @@ def test_an_open_integrator_ends_nowhere() -> None:
 def test_a_pole_at_the_origin_ends_nowhere() -> None:
     """A loop gain of -1 at rest divides nothing by zero."""
     assert isnan(final_values(Controller(gain_1=1.0), TRIAL, StaticGains(-1.0)).reference)
+
+
+@pytest.mark.parametrize(
+    ("plant", "low", "bounded"),
+    [
+        ("1/(s + 1)^2", -1.0, True),
+        ("1/(s + 1)^2", None, False),
+        ("1/(s(s + 1))", -1.0, False),
+        ("2/(s - 1)", -1.0, False),
+    ],
+    ids=["between limits", "one limit", "integrating", "unstable"],
+)
+def test_a_stable_plant_between_limits_has_a_bounded_output(plant: str, low: float | None, bounded: bool) -> None:
+    """Only limits on either side of the effort, and a plant that is stable by itself, bound the output."""
+    loop = Loop("bounded", manipulated=Manipulated(low=low, high=1.0))
+    sheet = Sheet(loop, ExpressionPlant(plant), Controller(gain_1=3.0), TRIAL)
+    (found,) = family_ends(sheet, [Member(NOMINAL, {})])
+    assert found.bounded is bounded

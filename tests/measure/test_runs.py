@@ -39,7 +39,9 @@ def stack(
     size: float = 1.0,
 ) -> list[Runs]:
     """Return the runs stacked; all are stable and none has an exact final value unless said."""
-    return list(stacked(traces, exact or [NONE] * len(traces), stable or [True] * len(traces), size))
+    return list(
+        stacked(traces, exact or [NONE] * len(traces), stable or [True] * len(traces), size, [False] * len(traces))
+    )
 
 
 def only(trace: Trace, exact: float = NONE, size: float = 1.0) -> Runs:
@@ -130,6 +132,15 @@ def test_a_run_that_leaves_its_reference_ever_faster_has_run_away(output: object
     t = np.linspace(0.0, 10.0, 101)
     assert callable(output)
     assert only(run(output(t), linear=False)).astray.tolist() == [astray]
+
+
+def test_an_output_that_limits_bound_does_not_run_away() -> None:
+    """The slow start of a lag looks like leaving; of an output that no limited effort can carry off it is none."""
+    slow = run(-(np.linspace(0.0, 2.0, 101) ** 3), linear=False)
+    assert only(slow).astray.tolist() == [True]
+    (found,) = stacked([slow], [NONE], [True], 1.0, [True])
+    assert found.astray.tolist() == [False]
+    assert found.y[0, -1] == -8.0
 
 
 @given(st.floats(0.1, 3.0), st.floats(-1e3, 1e3).filter(lambda step: abs(step) > 1e-3))

@@ -18,7 +18,7 @@ from tuner.assess import assess
 from tuner.errors import LoopError
 from tuner.judge.assessment import MemberResult
 from tuner.model.controller import Controller
-from tuner.model.loop import Loop
+from tuner.model.loop import Loop, Manipulated
 from tuner.model.plant import ExpressionPlant, ZeroPolePlant
 from tuner.model.sheet import Sheet, Trial
 
@@ -120,3 +120,20 @@ def test_what_has_no_answer_is_refused(plant: str, controller: Controller, reaso
     """A loop without a meaning, or too long to run, is refused with the reason."""
     with pytest.raises(LoopError, match=reason):
         judged(plant, controller)
+
+
+@pytest.mark.parametrize("sample_time", [0.0, 0.05])
+def test_a_stable_plant_between_limits_never_runs_away(sample_time: float) -> None:
+    """A bounded effort keeps the output of a stable plant bounded (textbook theorem), however short the trial is.
+
+    The effort stays within 0.05 of rest, so between 2.95 and 3 act on 1/(s + 1)^3 throughout, whose step response is
+    1 - exp(-t)(1 + t + t^2/2) and positive.
+    """
+    loop = Loop("short trial", manipulated=Manipulated(low=-0.05, high=0.05))
+    controller = Controller(sample_time=sample_time, gain_1=1.0, gain_2=0.1, windup_time=10.0)
+    found = assess(Sheet(loop, ExpressionPlant("1/(s + 1)^3"), controller, Trial(1.5, 0.1, 3.0))).nominal
+    response = 1.0 - exp(-1.5) * (1.0 + 1.5 + 1.125)
+    peak = found.measures["disturbance_peak"]
+    assert found.stable
+    assert peak is not None
+    assert 2.95 * response <= peak <= 3.0 * response

@@ -102,7 +102,11 @@ def _reference(
     continuous = controller.sample_time == 0.0
     infinite = continuous and controller.filter_time == 0.0 and controller.c * controller.parallel().kd > 0.0
     for runs in stacked(
-        [pair.reference for pair in traces], [exact.reference for exact in final], stable, abs(trial.reference)
+        [pair.reference for pair in traces],
+        [exact.reference for exact in final],
+        stable,
+        abs(trial.reference),
+        [exact.bounded for exact in final],
     ):
         readings = reference_readings(runs, trial.reference, trial.settling_band)
         readings |= effort_readings(runs, smooth=continuous, infinite=infinite and controller.feedback)
@@ -139,6 +143,7 @@ def _disturbance(
         [exact.disturbance for exact in final],
         stable,
         abs(trial.reference) or 1.0,
+        [exact.bounded for exact in final],
     ):
         _hand_out(runs, disturbance_readings(runs, trial.settling_band), found)
         for row, member in enumerate(runs.members.tolist()):

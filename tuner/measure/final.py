@@ -1,7 +1,7 @@
 """Where the output of a linear, stable loop ends, from the static gains around it."""
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from math import isinf, nan
 
 from tuner.model.controller import Controller
@@ -36,10 +36,14 @@ class StaticGains:
 
 @dataclass(frozen=True, slots=True)
 class FinalValues:
-    """Where the output ends in each run, deviation; NaN when it is not known exactly."""
+    """Where the output ends in each run, deviation; NaN when it is not known exactly.
+
+    `bounded` says that the output cannot run away, whatever the effort does between its limits.
+    """
 
     reference: float
     disturbance: float
+    bounded: bool = False
 
 
 def family_final_values(sheet: Sheet, members: Sequence[Member]) -> tuple[FinalValues, ...]:
@@ -53,6 +57,21 @@ def family_final_values(sheet: Sheet, members: Sequence[Member]) -> tuple[FinalV
         for plant, path in processes(sheet, members)
     )
     return tuple(final_values(controller, trial, static) for static in gains)
+
+
+def family_ends(sheet: Sheet, members: Sequence[Member]) -> tuple[FinalValues, ...]:
+    """Return the exact final values of each plant's loop, and whether its output is bounded.
+
+    So it is where the effort has a limit on either side and the plant, and any path of the disturbance, is stable
+    by itself.
+    """
+    final, effort = family_final_values(sheet, members), sheet.loop.manipulated
+    if effort.low is None or effort.high is None:
+        return final
+    return tuple(
+        replace(values, bounded=all(pole.real < 0.0 for part in process if part for pole in part.poles))
+        for values, process in zip(final, processes(sheet, members), strict=True)
+    )
 
 
 def has_integral(controller: Controller) -> bool:

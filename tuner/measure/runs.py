@@ -47,7 +47,9 @@ class Runs:
     astray: NDArray[np.bool_]
 
 
-def stacked(traces: Sequence[Trace], exact: Sequence[float], stable: Sequence[bool], size: float) -> Iterator[Runs]:
+def stacked(
+    traces: Sequence[Trace], exact: Sequence[float], stable: Sequence[bool], size: float, bounded: Sequence[bool]
+) -> Iterator[Runs]:
     """Return the runs of the stable plants, those with the same grid together.
 
     Parameters
@@ -56,20 +58,23 @@ def stacked(traces: Sequence[Trace], exact: Sequence[float], stable: Sequence[bo
         Exact final values, NaN where there is none.
     size : float
         What an output is like in size, to tell a large one from one that has run away.
+    bounded : sequence of bool
+        Whether limits of the effort bound each plant's output: it may still rise at the end, but cannot run away.
     """
     groups: dict[tuple[int, float], list[int]] = {}
     for index, trace in enumerate(traces):
         if stable[index]:
             groups.setdefault((len(trace.t), float(trace.t[-1])), []).append(index)
     for members in groups.values():
-        yield _stack(np.array(members), [traces[k] for k in members], np.array([exact[k] for k in members]), size)
+        free = np.array([not bounded[k] for k in members])
+        yield _stack(np.array(members), [traces[k] for k in members], np.array([exact[k] for k in members]), size, free)
 
 
-def _stack(members: Indices, traces: Sequence[Trace], exact: Array, size: float) -> Runs:
+def _stack(members: Indices, traces: Sequence[Trace], exact: Array, size: float, free: NDArray[np.bool_]) -> Runs:
     t, at = traces[0].t, traces[0].sample_index
     y = np.stack([trace.y for trace in traces])
     linear = np.array([trace.linear for trace in traces])
-    astray = np.logical_not(linear) & _runs_away(y, np.array([trace.r[-1] for trace in traces]), size)
+    astray = free & np.logical_not(linear) & _runs_away(y, np.array([trace.r[-1] for trace in traces]), size)
     if astray.any():
         y[astray] = 0.0
     tail = y[:, int(np.searchsorted(t, t[-1] - LAST_SHARE * (t[-1] - t[0]))) :]
