@@ -124,11 +124,8 @@ def test_what_has_no_answer_is_refused(plant: str, controller: Controller, reaso
 
 @pytest.mark.parametrize("sample_time", [0.0, 0.05])
 def test_a_stable_plant_between_limits_never_runs_away(sample_time: float) -> None:
-    """A bounded effort keeps the output of a stable plant bounded (textbook theorem), however short the trial is.
-
-    The effort stays within 0.05 of rest, so between 2.95 and 3 act on 1/(s + 1)^3 throughout, whose step response is
-    1 - exp(-t)(1 + t + t^2/2) and positive.
-    """
+    """A bounded effort keeps the output of a stable plant bounded (textbook theorem), however short the trial is."""
+    # Between 2.95 and 3 act on 1/(s + 1)^3 throughout, whose step response is 1 - exp(-t)(1 + t + t^2/2), rising.
     loop = Loop("short trial", manipulated=Manipulated(low=-0.05, high=0.05))
     controller = Controller(sample_time=sample_time, gain_1=1.0, gain_2=0.1, windup_time=10.0)
     found = assess(Sheet(loop, ExpressionPlant("1/(s + 1)^3"), controller, Trial(1.5, 0.1, 3.0))).nominal
