@@ -41,9 +41,9 @@ class Watch:
 
 @pytest.mark.parametrize("kp", KP.values(), ids=KP)
 def test_every_ruler_end_to_end(window: MainWindow, qtbot: QtBot, monkeypatch: pytest.MonkeyPatch, kp: float) -> None:
-    """Answers and paint keep coming, in order, from other threads than the window's; the last ones are right."""
+    """Answers and paint keep coming, in order, and not from the window's thread; the last ones are right."""
     watch = Watch()
-    for room, name in ((sys.modules["tuner.assess"], "assess"), (rulers, "paint_rulers"), (reason, "reason_at")):
+    for room, name in ((sys.modules["tuner.assess"], "sketched"), (rulers, "paint_rulers"), (reason, "reason_at")):
         watch.over(monkeypatch, room, name)
     (painted,) = window.rulers.findChildren(PaintedRulers)
     numbers, paintings = list[int](), list[int]()
@@ -58,7 +58,8 @@ def test_every_ruler_end_to_end(window: MainWindow, qtbot: QtBot, monkeypatch: p
         window.document.revert()
     assert numbers == sorted(numbers)
     assert paintings == sorted(paintings)
-    assert set(watch.threads) == {"assess", "paint_rulers", "reason_at"}
+    # Rulers are painted by another process.
+    assert set(watch.threads) == {"sketched", "reason_at"}
     assert threading.get_ident() not in set().union(*watch.threads.values())
     _settle(window, painted, qtbot)
     _is_right(window, painted)
