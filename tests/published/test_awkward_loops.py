@@ -9,6 +9,7 @@ from math import exp, inf, log, pi
 import numpy as np
 import pytest
 from numpy.typing import NDArray
+from scipy.linalg import expm
 
 from tests.published.continuous_by_control import loop_gain
 from tests.published.drawn import continuous_sheet
@@ -134,3 +135,19 @@ def test_a_stable_plant_between_limits_never_runs_away(sample_time: float) -> No
     assert found.stable
     assert peak is not None
     assert 2.95 * response <= peak <= 3.0 * response
+
+
+def test_what_a_loop_does_between_samples() -> None:
+    """A plant two time constants long in a sample, over two thousand samples: peak and area are those of fine steps."""
+    # Zero-order hold by the exponential of a matrix (Astrom and Wittenmark, Computer-Controlled Systems), 400 steps.
+    step, kp, count = 1.0, 0.9, 2000
+    fine = expm(np.array([[-2.0, 1.0, 0.0], [0.0, -2.0, 4.0], [0.0, 0.0, 0.0]]) * step / 400.0)
+    state, peak, area = np.zeros(3), 0.0, 0.0
+    for _ in range(count):
+        state[2] = 1.0 - kp * state[0]
+        for _ in range(400):
+            state = fine @ state
+            peak, area = max(peak, abs(state[0])), area + abs(state[0]) * step / 400.0
+    found = judged("4/((s + 2)(s + 2))", Controller(sample_time=step, gain_1=kp), count * step)
+    assert found.measures["disturbance_peak"] == pytest.approx(peak, rel=2e-3)
+    assert found.measures["iae_disturbance"] == pytest.approx(area, rel=2e-3)

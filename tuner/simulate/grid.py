@@ -19,6 +19,13 @@ MOST_SAMPLES = 200_000
 """Samples that a run may take."""
 
 _POINTS_A_CYCLE = 20
+
+_STEADY = 0.25
+"""Part of its fastest time constant in which a plant moves evenly enough for what is read between points."""
+
+_SETTLED = 4.0
+"""Time constants after which a mode has settled; faster ones within a sample need no more steps."""
+
 _OSCILLATING = 0.7
 _ROUNDING = 1e-9
 
@@ -47,7 +54,7 @@ class Grid(NamedTuple):
 
 
 def sampled_grid(duration: float, sample_time: float, plant: Linear) -> Grid:
-    """Choose the steps between samples, so that a run has points enough and the oscillations of the plant show.
+    """Choose the steps between samples, so that a run has points enough and all moves of the plant show.
 
     Raises
     ------
@@ -60,7 +67,9 @@ def sampled_grid(duration: float, sample_time: float, plant: Linear) -> Grid:
             f"the trial would take {ratio:.0f} samples, more than {MOST_SAMPLES}: "
             "shorten trial.duration or lengthen controller.sample_time"
         )
-    wanted = max(LEAST_POINTS / ratio, sample_time * _POINTS_A_CYCLE * fastest_oscillation(plant) / (2.0 * math.pi))
+    turns = sample_time * _POINTS_A_CYCLE * fastest_oscillation(plant) / (2.0 * math.pi)
+    moves = min(sample_time * float(np.abs(plant.poles).max(initial=0.0)), _SETTLED) / _STEADY
+    wanted = max(LEAST_POINTS / ratio, turns, moves)
     allowed = max(MOST_POINTS / ratio, 1.0)
     steps = max(1, math.ceil(min(wanted, allowed) - _ROUNDING))
     return Grid(sample_time, steps, math.floor(ratio * steps + _ROUNDING) + 1)
