@@ -87,6 +87,18 @@ def test_short_wind_up_times_of_a_continuous_loop() -> None:
         assert painted.classes[5:7].tolist() == expected
 
 
+def test_a_kick_that_no_step_shows() -> None:
+    """A limit on the effort is laid on the kick itself: u(0) = r (kp b + kd c / Tf)."""
+    law = Controller(gain_1=1.0, gain_3=0.4, filter_time=0.01, b=1.0, c=0.5)
+    found = Sheet(
+        Loop("kicked"), ExpressionPlant("1/((s + 1)(s + 2))"), law, Trial(20.0), limits=(("peak_effort", 21.0),)
+    )
+    track = Track("c", np.array([0.0, 0.4, 0.495, 0.505, 1.0]))
+    assert disagreements(found, [track], 1) == []
+    (painted,) = paint_rulers(found, [track], 1)
+    assert painted.classes.tolist() == [FIRM, FIRM, FIRM, SOFT, SOFT]
+
+
 def test_a_final_value_of_nothing() -> None:
     """Measures told in parts of it do not exist, though at any step of the law it is not quite 0."""
     # An impulse of the derivative, cut off by a limit, leads the integral to where the output ends at 0.

@@ -195,6 +195,16 @@ def test_feedforward_of_a_continuous_controller() -> None:
     assert trace.y == pytest.approx(1.0 - np.exp(-trace.t / 0.5), abs=CLOSE)
 
 
+@pytest.mark.parametrize(("high", "largest"), [(None, 2.0 * (0.5 * 1.5 + 0.8 * 0.6 / 0.004)), (60.0, 60.0)])
+def test_the_kick_of_a_filtered_derivative_is_whole(high: float | None, largest: float) -> None:
+    """By the law at time 0, u = r (kp b + kd c / Tf), however short the filter; and at most what the limit allows."""
+    kicking = Controller(gain_1=1.5, gain_3=0.8, filter_time=0.004, b=0.5, c=0.6)
+    made = sheet("1/((s + 1)(s + 2)(s + 3))", kicking, Trial(10.0, 2.0))
+    made = replace(made, loop=replace(made.loop, manipulated=Manipulated(high=high)))
+    trace = run(made, NOMINAL)[0].reference
+    assert trace.u[0] == pytest.approx(largest, rel=1e-9)
+
+
 def test_an_unstable_loop_ends() -> None:
     """A continuous loop that runs away stays finite and is not refined for ever."""
     traces = run(sheet("1/(s (s + 1)(s + 2))", Controller(gain_1=60.0), Trial(100.0, 1.0, 1.0)), NOMINAL)[0]

@@ -165,8 +165,7 @@ class Grading:
             doubt[active != 0] = 1
             return
         if not self.sheet.controller.sample_time:
-            # So fast a return from a limit the steps of the law do not show.
-            doubt[(active != 0) & (self.numbers.windup_time < _STEPS_OF_WINDUP * self.ground.steps[0])] = 1
+            doubt[(active != 0) & self._too_fast_for_steps()] = 1
         order = self.order()
         first, rest = order[:_FIRST], order[_FIRST:]
         for members in (first, rest):
@@ -174,6 +173,14 @@ class Grading:
             left = np.flatnonzero((active != 0) & ~doubt.all(axis=1))
             if len(left) and members:
                 self._run(left, members, limits, active, doubt)
+
+    def _too_fast_for_steps(self) -> Flags:
+        """Return what of a continuous controller its steps do not show: so fast a return from a limit, or a kick."""
+        some = self.numbers
+        too_fast = some.windup_time < _STEPS_OF_WINDUP * self.ground.steps[0]
+        if self._has_limit(("peak_effort", "effort_travel")):
+            too_fast = too_fast | (some.kd * some.c != 0.0)
+        return np.asarray(too_fast)
 
     def _runs(self) -> tuple[tuple[float, tuple[str, ...]], ...]:
         count = readings.REFERENCE_COUNT

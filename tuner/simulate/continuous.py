@@ -67,6 +67,8 @@ def simulate_continuous(sheet: Sheet, members: Sequence[Member]) -> Extrapolated
         reached = _agree(sheet, rough.y, better.y[..., ::2])
         reached = reached and (not steps_show or _agree(sheet, middle.y, fine.y[..., ::2]))
         if reached or 2 * fine_grid.points > _most(sheet, members):
+            if not any(gains):
+                better.u[:, 0, 0] = _kicked(sheet, better.u[:, 0, 0], fine_grid.sample_time)
             return Extrapolated(better, middle_grid, reached)
         middle, rough, middle_grid = fine, better, fine_grid
 
@@ -204,6 +206,20 @@ def _effort(coarse: Array, fine: Array, limited: NDArray[np.bool_]) -> Array:
     u = np.where(free, 2.0 * fine - coarse, fine)
     u[..., 0] = fine[..., 0]
     return np.asarray(u)
+
+
+def _kicked(sheet: Sheet, first: Array, step: float) -> Array:
+    """Return the effort just after a reference step with all of the kick that a filtered derivative gives.
+
+    That is kd c r / Tf, of which a backward difference over a step h shows kd c r / (Tf + h) alone.
+    """
+    controller, limits, time = sheet.controller, sheet.loop.manipulated, sheet.controller.filter_time
+    if not controller.feedback or not time or limits.rate is not None:
+        return first
+    whole = controller.sign * controller.parallel().kd * controller.c * sheet.trial.reference / time
+    low = -np.inf if limits.low is None else limits.low - limits.resting
+    high = np.inf if limits.high is None else limits.high - limits.resting
+    return np.clip(first + whole * step / (time + step), low, high)
 
 
 def _start(coarse: Array, fine: Array, limited: NDArray[np.bool_]) -> Array:
