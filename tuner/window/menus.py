@@ -86,9 +86,9 @@ class Menus:
         self._filled(self._restore, self._list_kept)
         self._add(menu, "drop all", "&Drop kept tunings", self._commands.drop_kept, "Ctrl+Shift+K")
         menu.addSeparator()
-        self._add(menu, "restore initial", "Gains as &opened", document.restore_initial, "Ctrl+Shift+O")
-        self._add(menu, "restore as found", "Gains as &found on site", document.restore_as_found, "Ctrl+Shift+F")
-        self._add(menu, "note as found", "&Note the present gains as found", document.note_as_found)
+        self._add(menu, "restore initial", "Controller as &opened", document.restore_initial, "Ctrl+Shift+O")
+        self._add(menu, "restore as found", "Controller as &found on site", document.restore_as_found, "Ctrl+Shift+F")
+        self._add(menu, "note as found", "&Note the present controller as found", document.note_as_found)
 
     def _fill_view(self) -> None:
         menu, window = self._menu("&View"), self._window

@@ -1,12 +1,14 @@
 """The face of a slider: the places of the edges beside marks and handle."""
 
+from itertools import pairwise
+
 import pytest
 from PySide6.QtGui import QImage, QPainter
 
 from tuner.footing.classes import FIRM, SOFT, Edge
 from tuner.session.ruler_range import RulerRange
 from tuner.session.tunings import Mark
-from tuner.window.rulers.face import TRACK_TOP, Face, paint_face
+from tuner.window.rulers.face import TRACK_TOP, Face, paint_face, written_edges
 from tuner.window.theme import Theme
 
 SPAN = RulerRange(0.1, 100.0, has_off=True)
@@ -59,6 +61,22 @@ def test_a_number_is_written_past_the_handle(theme: Theme) -> None:
     shown = face(9.9)
     x = shown.x_of(9.9)
     assert above(shown, theme, x + 6, x + 40) > 20
+
+
+def test_numbers_of_edges_never_overlap() -> None:
+    """However near edges lie to one another and to the handle; the nearest to the handle are written first."""
+    for share in (1.0, 1.02, 1.05, 1.1, 1.3, 2.0):
+        for value in (10.0 / share, 10.0, 10.0 * share**2):
+            edges = tuple(Edge(10.0 * share**step, FIRM, SOFT) for step in range(4))
+            shown = face(value, edges=edges)
+            written = written_edges(shown, lambda text: 7.0 * len(text))
+            taken = [(one.left, one.left + one.width) for one in written]
+            taken.append((shown.x_of(value) - 5.0, shown.x_of(value) + 5.0))
+            taken.sort()
+            assert all(end <= start for (_, end), (start, _) in pairwise(taken))
+            nearest = min(edges, key=lambda edge: abs(shown.x_of(edge.value) - shown.x_of(value)))
+            assert written[0].x == shown.x_of(nearest.value)
+    assert len(written) == 4
 
 
 def test_an_edge_outside_the_scale_is_not_written(theme: Theme) -> None:

@@ -1,6 +1,8 @@
 """The face of a ruler's slider: the painted track, its edges, the scale, marks and handle."""
 
+from collections.abc import Callable, Sequence
 from dataclasses import dataclass
+from typing import NamedTuple
 
 from PySide6.QtCore import QPointF, QRect, QRectF, Qt
 from PySide6.QtGui import QColor, QImage, QPainter, QPen, QPolygonF
@@ -66,12 +68,24 @@ class Face:
         return MARGIN + place(self.span, value) / POSITIONS * self.length
 
 
+class WrittenEdge(NamedTuple):
+    """The number of an edge above the track: place of the edge, left end and width of the text, pixels.
+
+    `has_line` tells whether a line leads down to the edge; where something else stands there is none.
+    """
+
+    x: float
+    left: float
+    width: float
+    text: str
+    has_line: bool
+
+
 def paint_face(painter: QPainter, face: Face, theme: Theme) -> None:
     """Paint a slider."""
     _paint_track(painter, face, theme)
     _paint_scale(painter, face, theme)
-    for edge in face.edges:
-        _paint_edge(painter, face, edge, theme)
+    _paint_edges(painter, face, theme)
     painter.setRenderHint(QPainter.RenderHint.Antialiasing)
     for mark in reversed(face.marks):
         if mark.kind == "kept":
@@ -122,41 +136,61 @@ def _paint_number(painter: QPainter, face: Face, x: float, text: str, colour: QC
     return left + width * 1.5 + 8.0
 
 
-def _paint_edge(painter: QPainter, face: Face, edge: Edge, theme: Theme) -> None:
-    """Write the place of an edge above it: past what stands there, away from the handle if there is room."""
-    if edge.value < face.span.low or edge.value > face.span.high:
-        return
-    x, text = face.x_of(edge.value), edge_number(edge)
-    width = painter.fontMetrics().horizontalAdvance(text)
-    away = edge.value > (face.value or 0.0)
-    sides = (_free_place(face, x, width, to_the_right=side) for side in (away, not away))
-    left = next((place for place in sides if place is not None), None)
-    if left is None:
-        return
+def _paint_edges(painter: QPainter, face: Face, theme: Theme) -> None:
     ink = theme.colour("ink")
-    if not _taken(face, x, x + 1.0):
-        painter.fillRect(round(x), 2, 1, TRACK_TOP - 2, ink)
     painter.setPen(ink)
-    painter.drawText(QPointF(left, TRACK_TOP - 3.0), text)
+    for one in written_edges(face, lambda text: float(painter.fontMetrics().horizontalAdvance(text))):
+        if one.has_line:
+            painter.fillRect(round(one.x), 2, 1, TRACK_TOP - 2, ink)
+        painter.drawText(QPointF(one.left, TRACK_TOP - 3.0), one.text)
 
 
-def _free_place(face: Face, x: float, width: float, *, to_the_right: bool) -> float | None:
+def written_edges(face: Face, width_of: Callable[[str], float]) -> list[WrittenEdge]:
+    """Return the edges that find room above the track, the nearest to the handle first: numbers never overlap.
+
+    Parameters
+    ----------
+    width_of : callable
+        Pixels that a text takes.
+    """
+    at = face.x_of(face.value)
+    inside = [edge for edge in face.edges if face.span.low <= edge.value <= face.span.high]
+    taken, written = _taken(face), list[WrittenEdge]()
+    for edge in sorted(inside, key=lambda one: abs(face.x_of(one.value) - at)):
+        x, text = face.x_of(edge.value), edge_number(edge)
+        width, away = width_of(text), edge.value > (face.value or 0.0)
+        sides = (_free_place(face, x, width, taken, to_the_right=side) for side in (away, not away))
+        left = next((place for place in sides if place is not None), None)
+        if left is not None:
+            written.append(WrittenEdge(x, left, width, text, has_line=not _within(taken, x, x + 1.0)))
+            taken.append((left, left + width))
+    return written
+
+
+def _free_place(
+    face: Face, x: float, width: float, stretches: Sequence[tuple[float, float]], *, to_the_right: bool
+) -> float | None:
     """Return where a number of some width begins beside a place, past what stands there; None when that is far."""
     left = x + 4.0 if to_the_right else x - 4.0 - width
-    while taken := _taken(face, left, left + width):
+    while taken := _within(stretches, left, left + width):
         left = max(end for _, end in taken) + 3.0 if to_the_right else min(start for start, _ in taken) - 3.0 - width
     gap = left - x if to_the_right else x - left - width
     return left if gap <= _FARTHEST and left >= 0.0 and left + width <= face.width else None
 
 
-def _taken(face: Face, left: float, right: float) -> list[tuple[float, float]]:
-    """Return the stretches above the track that marks and handle take, of those that reach into one."""
+def _taken(face: Face) -> list[tuple[float, float]]:
+    """Return the stretches above the track that marks and handle take."""
     at = face.x_of(face.value)
     taken = [(at - _HANDLE, at + _HANDLE)]
     for mark in face.marks:
         x = face.x_of(mark.value)
         taken.append((x - 1.0, x + _LETTER + 6.0) if mark.kind == "kept" else (x - _MARK_HEIGHT, x + _MARK_HEIGHT))
-    return [(start, end) for start, end in taken if start < right and end > left]
+    return taken
+
+
+def _within(stretches: Sequence[tuple[float, float]], left: float, right: float) -> list[tuple[float, float]]:
+    """Return those of some stretches that reach into one."""
+    return [(start, end) for start, end in stretches if start < right and end > left]
 
 
 def _paint_kept(painter: QPainter, face: Face, mark: Mark, theme: Theme) -> None:
