@@ -21,6 +21,7 @@ from tuner.window import faults, memory
 from tuner.window.asking import Asking
 from tuner.window.commands import Commands
 from tuner.window.editors import build_editors
+from tuner.window.ending import leave
 from tuner.window.gain_map import build_gain_map
 from tuner.window.gain_map.page import GainMapPage
 from tuner.window.keeping import Keeping
@@ -73,7 +74,9 @@ def open_window(path: Path | None) -> int:
     window.show()
     window.start()
     QTimer.singleShot(0, wiring.keeping.offer_left_behind)
-    return application.exec()
+    status = application.exec()
+    leave(status)
+    return status
 
 
 def opened(path: Path | None) -> Document:
@@ -134,17 +137,18 @@ def watch_for_faults(window: MainWindow) -> None:
 
 def _close(window: MainWindow, wiring: Wiring, event: QCloseEvent) -> None:
     """Let the window close once nothing would be lost, and remember how it stood."""
-    if wiring.files.may_leave():
-        wiring.keeping.end()
-        for process in wiring.apart:
-            process.close()
-        if wiring.footing is not None:
-            wiring.footing.close()
-        if wiring.gain_map is not None:
-            wiring.gain_map.close()
-        memory.remember(window.layout_memory())
-    else:
+    if not wiring.files.may_leave():
         event.ignore()
+        return
+    memory.remember(window.layout_memory())
+    window.hide()  # what still works may take a moment to end
+    wiring.keeping.end()
+    for process in wiring.apart:
+        process.close()
+    if wiring.footing is not None:
+        wiring.footing.close()
+    if wiring.gain_map is not None:
+        wiring.gain_map.close()
 
 
 def _sketch(sheet: Sheet, size: int) -> Sketched:

@@ -11,6 +11,7 @@ from PySide6.QtCore import QObject, QThread, Signal
 from tuner.errors import TrimwrightError
 from tuner.footing.classes import Overtaken
 from tuner.footing.threads import give_way
+from tuner.window.ending import end
 from tuner.window.shown import Failure
 from tuner.window.slot import Slot
 
@@ -99,10 +100,10 @@ class Beside(QObject, Generic[Asked]):
             self._thread.start()
 
     def close(self) -> None:
-        """End the thread and wait until it has ended; nothing is answered from then on."""
+        """End the thread, and wait for it unless that takes long; nothing is answered from then on."""
         self._slot.close()
         if self._thread is not None:
-            self._thread.wait()
+            end(self._thread)
 
     def work(self) -> None:
         """Answer requests until `close`; runs in the thread."""

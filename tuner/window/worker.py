@@ -13,6 +13,7 @@ from tuner.errors import TrimwrightError
 from tuner.judge.assessment import Assessment, MemberResult
 from tuner.model.sheet import Sheet
 from tuner.session.tunings import KeptTuning
+from tuner.window.ending import end
 from tuner.window.shown import Draw, Failure, Glance, KeptResult, Request, Shown, Sketch, Sketched
 from tuner.window.slot import Slot
 
@@ -197,10 +198,10 @@ class Assessor(QObject):
         self._slot.nudge()
 
     def close(self) -> None:
-        """End the thread and wait until it has ended; nothing is answered from then on."""
+        """End the thread, and wait for it unless that takes long; nothing is answered from then on."""
         self._slot.close()
         if self._thread is not None:
-            self._thread.wait()
+            end(self._thread)
 
     def work(self) -> None:
         """Answer requests until `close`; runs in the thread."""
