@@ -197,8 +197,9 @@ def test_a_sketch_has_every_curve_before_anything_is_judged(gains: str) -> None:
         assert np.array_equal(one.traces.disturbance.y, other.traces.disturbance.y)
         assert np.array_equal(one.poles, other.poles)
         assert (one.stable, one.drift) == (other.stable, other.drift)
-        known = other.measures if one.name in ("nominal", looked_at) else {}
+        known = other.measures if one.name in ("nominal", looked_at) else {"damping": other.measures["damping"]}
         assert one.measures == pytest.approx(known, nan_ok=True)
+    assert outline.worst["damping"] == whole.worst["damping"]
     assert outline.limits == glance(sheet, looked_at).limits
     judged = sketch.judged()
     assert (judged.verdict, judged.limits, judged.notes) == (whole.verdict, whole.limits, whole.notes)

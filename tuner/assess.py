@@ -9,12 +9,13 @@ from types import ModuleType
 from tuner.errors import LoopError
 from tuner.judge.assessment import Assessment, Instability, MemberResult
 from tuner.judge.cliff import Runaway, instability
-from tuner.judge.verdict import judge
+from tuner.judge.verdict import judge, worst_case
 from tuner.measure.family import Measured, measure_trials
 from tuner.measure.final import family_ends
-from tuner.measure.loop import add_damping, add_margins
+from tuner.measure.loop import add_damping, add_margins, damping_of
 from tuner.model.controller import Controller
 from tuner.model.family import NOMINAL, Member, family_of
+from tuner.model.measures import BY_NAME
 from tuner.model.sheet import Sheet
 from tuner.simulate.loop import Loop, loops_around, loops_of
 from tuner.simulate.margins import Margins, margins
@@ -81,7 +82,9 @@ class Sketch:
             return judge(self.sheet, results, _instability(self.sheet, self.members, self.loops, self.poles))
 
     def outlined(self, plant: str = "") -> Assessment:
-        """Judge by the nominal plant, and by one more where it is named; the others have curves, and no measures.
+        """Judge by the nominal plant, and by one more where it is named; the others have curves and poles.
+
+        Of the family as a whole only the damping is known, which is read off the poles.
 
         Raises
         ------
@@ -92,7 +95,9 @@ class Sketch:
             seen = [i for i, member in enumerate(self.members) if member.name in (NOMINAL, plant)]
             judged = judge(self.sheet, self._results(seen))
             known = dict(zip(seen, judged.members, strict=True))
-            return replace(judged, members=tuple(known.get(i) or self._bare(i) for i in range(len(self.members))))
+            members = tuple(known.get(i) or self._bare(i) for i in range(len(self.members)))
+            damping = worst_case(BY_NAME["damping"], members)
+            return replace(judged, members=members, worst={**judged.worst, "damping": damping})
 
     def _results(self, places: Sequence[int]) -> tuple[MemberResult, ...]:
         chosen = [(self.members[i], self.loops[i], self.poles[i], self.traces[i]) for i in places]
@@ -101,7 +106,8 @@ class Sketch:
 
     def _bare(self, place: int) -> MemberResult:
         member, poles = self.members[place], self.poles[place]
-        return MemberResult(member.name, poles.stable, {}, poles.values, self.traces[place], drift=member.drift)
+        known = {"damping": damping_of(poles)}
+        return MemberResult(member.name, poles.stable, known, poles.values, self.traces[place], drift=member.drift)
 
 
 def sketched(sheet: Sheet, family_size: int | None = None) -> Sketch:

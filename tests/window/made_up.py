@@ -83,8 +83,11 @@ class Sketched:
         """Judge by the nominal plant and the named one; the others have their curves."""
         whole = self.judge(self.asked, self.size)
         seen = tuple(one for one in whole.members if one.name in ("nominal", plant))
-        bare = tuple(one if one in seen else replace(one, measures={}) for one in whole.members)
-        return replace(_judged_over(self.asked, seen), members=bare)
+        bare = tuple(
+            one if one in seen else replace(one, measures={"damping": one.measures["damping"]}) for one in whole.members
+        )
+        judged = _judged_over(self.asked, seen)
+        return replace(judged, members=bare, worst={**judged.worst, "damping": whole.worst["damping"]})
 
     def judged(self) -> Assessment:
         """Judge the whole family."""

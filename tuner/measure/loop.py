@@ -56,9 +56,14 @@ def damping(poles: ComplexArray, known_from: float = -inf) -> float | None:
     return float(ratios.min()) + 0.0
 
 
+def damping_of(poles: Poles) -> float | None:
+    """Return the smallest damping ratio of what was found of a loop's poles; see `damping`."""
+    return damping(poles.values, -inf if poles.complete else poles.known_from)
+
+
 def add_damping(measured: Measured, poles: Poles) -> None:
     """Add the damping to the measures of the trial."""
-    measured.put("damping", damping(poles.values, -inf if poles.complete else poles.known_from), ENDLESS)
+    measured.put("damping", damping_of(poles), ENDLESS)
 
 
 def add_margins(measured: Measured, margins: Margins | None, *, stable: bool) -> None:

@@ -55,7 +55,7 @@ class Shown:
         The sheet that was assessed.
     assessment : Assessment
         Of the whole family, or of the nominal plant alone while `whole` is false; `outlined` then says whether the
-        others are there too, with their curves and poles, and without measures.
+        others are there too, with their curves, their poles and the damping of those.
     overlay : Overlay
         What is drawn over the curves.
     kept : tuple of KeptResult

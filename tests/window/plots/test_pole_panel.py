@@ -71,16 +71,17 @@ def test_a_first_answer_moves_only_the_nominal_poles(panel: PolePanel) -> None:
 
 
 def test_a_first_answer_may_have_the_poles_of_the_family(panel: PolePanel) -> None:
-    """It moves them all; the ring waits for the verdict."""
+    """It moves them all and the ring of the least damped pair, so that no pole keeps another's number."""
     panel.show(answer(1.0))
-    ringed = panel.least.getData()[0].copy()
     first, whole = outline(3.0, number=2)
     panel.show(first)
     family = np.concatenate([member.poles for member in first.assessment.members[1:]])
     assert np.array_equal(panel.family.getData()[0], family.real)
-    assert np.array_equal(panel.least.getData()[0], ringed)
+    ringed, named = panel.least.getData()[0].copy(), [words.text for words in panel.marks.words]
+    assert set(ringed) < set(family.real)
     panel.show(whole)
-    assert not np.array_equal(panel.least.getData()[0], ringed)
+    assert np.array_equal(panel.least.getData()[0], ringed)
+    assert [words.text for words in panel.marks.words] == named
 
 
 def test_the_least_damped_pair_is_ringed_and_named(panel: PolePanel) -> None:

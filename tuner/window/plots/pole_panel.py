@@ -79,8 +79,8 @@ class PolePanel(Panel):
         if shown.has_family and not follows:
             others = [member.poles for member in members[1:]] if shown.family_view != "none" else []
             self._family = np.concatenate(others) if others else np.empty(0, dtype=np.complex128)
-        if shown.whole:
             self._least = least_damped(shown)
+        if shown.whole:
             missed, bad = missed_words(shown, ("poles", "frequency"))
             unit = shown.sheet.loop.time_unit
             self.set_words(f"real part, 1/{unit}; imaginary part, rad/{unit}", missed, bad=bad)
