@@ -8,7 +8,7 @@ from hypothesis import given
 from hypothesis import strategies as st
 
 from tuner.model.parameters import find
-from tuner.model.plant import Spread
+from tuner.model.plant import Spread, spread_percent
 from tuner.session import typed
 from tuner.session.typed import NOT_NEGATIVE, Bounds, TypedError
 
@@ -179,3 +179,45 @@ def test_no_zero_is_negative() -> None:
     """A zero that came out of a conversion with a sign is shown without one."""
     assert typed.shown(-0.0) == "0"
     assert typed.shown_complex(complex(-0.0, 2.0)) == "0 + 2j"
+
+
+KNOWN = {"gain": 2.0, "dead time": 4.0, "pole 1": 1.0, "pole 11": 1.0, "d": 0.5}
+
+
+def test_what_drifts_is_typed_a_line_each() -> None:
+    """By name and spread, in any order; a longer name is not taken for a shorter one; shown again as it was typed."""
+    text = "gain 15 %\n dead time: 3 to 6 ;pole 11 = 10 %\n\n"
+    found = typed.drifts(text, KNOWN)
+    assert [(one.name, one.value) for one in found] == [("gain", 2.0), ("dead time", 4.0), ("pole 11", 1.0)]
+    assert found[0].spread == spread_percent(2.0, 15.0)
+    assert found[1].spread == Spread(3.0, 6.0)
+    assert typed.shown_drifts(found) == "gain 15 %\ndead time 3 to 6\npole 11 10 %"
+    assert typed.drifts(typed.shown_drifts(found), KNOWN) == found
+    assert typed.drifts(" \n", KNOWN) == ()
+
+
+@pytest.mark.parametrize(
+    ("text", "sentence"),
+    [
+        (
+            "gian 10 %",
+            'expected a number of the plant and its spread, such as "gain 15 %", found "gian 10 %"; the nearest valid '
+            "name is gain",
+        ),
+        (
+            "pole 2 10 %",
+            'expected a number of the plant and its spread, such as "gain 15 %", found "pole 2 10 %"; the nearest '
+            "valid name is pole 1",
+        ),
+        ("7", 'expected a number of the plant and its spread, such as "gain 15 %", found "7"'),
+        ("gain 5 %\ngain 6 %", "expected each spread once, found two of gain"),
+        ("gain", 'expected a spread behind gain, such as "gain 10 %"'),
+        ("dead time 5 to 6", 'expected a spread that holds the value 4, found "5 to 6"'),
+        ("d much", 'expected a spread such as "20 %" or "3 to 6", found "much"'),
+    ],
+)
+def test_what_cannot_drift_is_said(text: str, sentence: str) -> None:
+    """In one sentence, with the nearest name where one is near."""
+    with pytest.raises(typed.TypedError) as caught:
+        typed.drifts(text, KNOWN)
+    assert str(caught.value) == sentence

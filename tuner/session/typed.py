@@ -1,12 +1,13 @@
 """What a person types, turned into values; what cannot be used is answered with a sentence."""
 
 import re
+from collections.abc import Mapping, Sequence
 from dataclasses import dataclass
 from math import isfinite
 
-from tuner.errors import TrimwrightError
+from tuner.errors import TrimwrightError, nearest
 from tuner.model.parameters import Kind, Parameter
-from tuner.model.plant import Spread, spread_percent
+from tuner.model.plant import PlantParameter, Spread, spread_percent
 
 _NUMBER = r"[+-]?(?:\d+(?:[.,]\d*)?|[.,]\d+)(?:[eE][+-]?\d+)?"
 _WHOLE = re.compile(rf"\s*({_NUMBER})\s*(.*?)\s*")
@@ -96,6 +97,43 @@ def spread(text: str, value: float) -> Spread | None:
     return Spread(low, high)
 
 
+def drifts(text: str, known: Mapping[str, float]) -> tuple[PlantParameter, ...]:
+    """Return a typed list of what drifts in a plant, one a line: "gain 15 %", "pole 1 0.9 to 1.2".
+
+    Parameters
+    ----------
+    known : mapping of str to float
+        What may drift, and its nominal value; see `model.drifts.nominal_numbers`.
+
+    Raises
+    ------
+    TypedError
+        When a line names nothing that may drift, or something twice, or its spread cannot be used.
+    """
+    found: dict[str, PlantParameter] = {}
+    for line in filter(None, map(str.strip, text.replace(";", "\n").splitlines())):
+        name = _drifting(line, known)
+        if name in found:
+            raise TypedError(f"expected each spread once, found two of {name}")
+        spread_of_it = spread(line[len(name) :].lstrip(" :="), known[name])
+        if spread_of_it is None:
+            raise TypedError(f'expected a spread behind {name}, such as "{name} 10 %"')
+        found[name] = PlantParameter(name, known[name], spread=spread_of_it)
+    return tuple(found.values())
+
+
+def _drifting(line: str, known: Mapping[str, float]) -> str:
+    """Return the longest name that a line begins with."""
+    plain = " ".join(line.split()).casefold()
+    names = [name for name in known if plain == name or (plain.startswith(name) and not plain[len(name)].isalnum())]
+    if names and line.casefold().startswith(longest := max(names, key=len)):
+        return longest
+    words = re.match(r"[^\d%]*(?:\d+(?!\s*%|[.,\d]))?", plain)
+    near = nearest(words[0].strip() if words else plain, known)
+    hint = f"; the nearest valid name is {near}" if near else ""
+    raise TypedError(f'expected a number of the plant and its spread, such as "gain 15 %", found {_quoted(line)}{hint}')
+
+
 def numbers(text: str) -> tuple[float, ...]:
     """Return a typed list of numbers, parted by spaces or semicolons, or by a comma and a space.
 
@@ -156,6 +194,11 @@ def shown_spread(spread: Spread | None) -> str:
     return (
         f"{shown(spread.percent)} %" if spread.percent is not None else f"{shown(spread.low)} to {shown(spread.high)}"
     )
+
+
+def shown_drifts(parameters: Sequence[PlantParameter]) -> str:
+    """Return what drifts as it is shown for editing, one a line."""
+    return "\n".join(f"{one.name} {shown_spread(one.spread)}" for one in parameters if one.spread is not None)
 
 
 def shown_numbers(values: tuple[float, ...]) -> str:

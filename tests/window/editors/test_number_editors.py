@@ -5,6 +5,8 @@ from PySide6.QtTest import QTest
 
 from tests.window.editors.finding import number_editor
 from tests.window.editors.typing import enter
+from tuner.model.drifts import parameters_of
+from tuner.model.family import family_of
 from tuner.model.plant import CoefficientPlant, StateSpacePlant, ZeroPolePlant
 from tuner.session.document import Document
 from tuner.window.editors.plant_page import PlantPage
@@ -13,7 +15,7 @@ from tuner.window.editors.plant_page import PlantPage
 def test_coefficients_are_typed(plant_page: PlantPage, document: Document) -> None:
     """Converted from the formula first, then changed; the dead time has its unit."""
     editor = number_editor(plant_page, "Coefficients")
-    assert [field.line.typed() for field in editor.fields.values()] == ["0.016", "1  0.02", "4"]
+    assert [field.line.typed() for field in editor.fields.values()] == ["0.016", "1  0.02", "4", ""]
     assert editor.fields["dead_time"].unit.text() == "s"
     enter(editor.fields["denominator"].line, "1, 3, 2")
     enter(editor.fields["dead_time"].line, "")
@@ -60,3 +62,22 @@ def test_matrices_are_typed_in_any_order(plant_page: PlantPage, document: Docume
     enter(editor.fields["c"].line, "1 0")
     assert document.sheet.plant == StateSpacePlant(((0.0, 1.0), (-2.0, -0.5)), (0.0, 1.0), (1.0, 0.0), 0.0, 4.0)
     assert all(field.fault.isHidden() for field in editor.fields.values())
+
+
+def test_the_spread_of_bare_numbers_is_typed(plant_page: PlantPage, document: Document) -> None:
+    """A line each; the family drifts by it, other numbers keep it, a fault is a sentence, and undo takes it back."""
+    editor = number_editor(plant_page, "Coefficients")
+    spread = editor.fields["spread"]
+    assert spread.line.accessibleName()
+    enter(spread.line, "gain 15 %; dead time 3 to 6")
+    assert [one.name for one in parameters_of(document.sheet.plant)] == ["gain", "dead time"]
+    assert len(family_of(document.sheet, 9)) == 9
+    enter(editor.fields["denominator"].line, "1, 3, 2")
+    assert [one.name for one in parameters_of(document.sheet.plant)] == ["gain", "dead time"]
+    enter(spread.line, "gain 15 %; denominator 7 10 %")
+    assert "the nearest valid name is denominator" in spread.fault.text()
+    assert [one.name for one in parameters_of(document.sheet.plant)] == ["gain", "dead time"]
+    enter(spread.line, "")
+    assert parameters_of(document.sheet.plant) == ()
+    document.undo()
+    assert [one.name for one in parameters_of(document.sheet.plant)] == ["gain", "dead time"]

@@ -5,7 +5,8 @@ from dataclasses import dataclass, replace
 from typing import Any, cast
 
 from tuner.errors import TrimwrightError
-from tuner.model.plant import CoefficientPlant, StateSpacePlant, ZeroPolePlant
+from tuner.model.drifts import nominal_numbers, parameters_of
+from tuner.model.plant import CoefficientPlant, PlantParameter, StateSpacePlant, ZeroPolePlant
 from tuner.session import typed
 from tuner.session.document import Document
 from tuner.session.plant_forms import PlantForm, start
@@ -29,9 +30,17 @@ class Entry:
     lines: int = 1
     long: bool = True
 
+    @property
+    def attribute(self) -> str:
+        """What it is called in the plant."""
+        return "parameters" if self.name == _SPREAD else self.name
+
+
+_SPREAD = "spread"
+
 
 class NumberEditor(Page):
-    """Typed numbers that only together make a plant.
+    """Typed numbers that only together make a plant, and how far each of them may drift.
 
     A text that makes none yet waits, and is taken together with the one that completes it: a longer numerator with
     its denominator, a larger matrix with its columns.
@@ -42,7 +51,8 @@ class NumberEditor(Page):
         self._document = document
         self._first = cast(NumberPlant, start(form))
         self.fields: dict[str, LineField[Any]] = {}
-        for entry in entries:
+        spread: Words[Any] = Words(self._read_spread, typed.shown_drifts)
+        for entry in (*entries, Entry(_SPREAD, _SENTENCE, spread, lines=3)):
             field = self._field(theme, entry)
             self.fields[entry.name] = field
             self.add(field, field)
@@ -54,7 +64,7 @@ class NumberEditor(Page):
             self.fields["dead_time"].unit.setText(self._document.sheet.loop.time_unit)
 
     def _field(self, theme: Theme, entry: Entry) -> LineField[Any]:
-        source = Source(self._holder(entry.name), entry.words, self._taker(entry.name))
+        source = Source(self._holder(entry), entry.words, self._taker(entry.name))
         caption = Caption(entry.name.replace("_", " "), entry.sentence, f"plant.{entry.name}", entry.long)
         field = LineField(theme, caption, source, lines=entry.lines)
         field.intake.left.connect(self._document.release)
@@ -67,8 +77,13 @@ class NumberEditor(Page):
         plant = self._document.sheet.plant
         return plant if isinstance(plant, type(self._first)) else self._first
 
-    def _holder(self, name: str) -> Callable[[], Any]:
-        return lambda: getattr(self._plant(), name)
+    def _holder(self, entry: Entry) -> Callable[[], Any]:
+        if entry.name == _SPREAD:
+            return lambda: parameters_of(self._plant())
+        return lambda: getattr(self._plant(), entry.attribute)
+
+    def _read_spread(self, text: str) -> tuple[PlantParameter, ...]:
+        return typed.drifts(text, nominal_numbers(self._plant()))
 
     def _taker(self, name: str) -> Callable[[Any], None]:
         return lambda value: self._take(name, value)
@@ -90,8 +105,15 @@ class NumberEditor(Page):
             self._change(waiting | {name: value}, name)
 
     def _change(self, values: dict[str, Any], name: str) -> None:
+        if _SPREAD in values:
+            values = {name: value for name, value in values.items() if name != _SPREAD} | {
+                "parameters": values[_SPREAD]
+            }
         plant = replace(self._plant(), **values)
         self._document.change_plant(plant, label=f"Set the {name.replace('_', ' ')}", merge_key=f"plant {name}")
+
+
+_SENTENCE = 'How far numbers may drift, one a line: "gain 15 %", "dead time 3 to 6", "pole 1 10 %".'
 
 
 def _number(text: str) -> float:
