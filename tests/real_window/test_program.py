@@ -58,7 +58,7 @@ def test_a_sheet_is_saved_and_opened_again(window: MainWindow, qtbot: QtBot, ask
 
 @pytest.mark.parametrize("is_new", [False, True], ids=["compiled before", "compiling"])
 def test_the_program_starts_and_ends(tmp_path: Path, *, is_new: bool) -> None:
-    """`python -m tuner SHEET` shows a window named after the loop; a key ends it, also while the first start compiles."""
+    """`python -m tuner SHEET` shows a window named after the loop; a key ends it, also while kernels are compiled."""
     sheet = tmp_path / "mine.toml"
     sheet.write_text((sample_plants() / "heater.toml").read_text(encoding="utf-8"), encoding="utf-8")
     # Its own folders, so that nothing is left behind from an earlier run; compiled code is shared all the same.

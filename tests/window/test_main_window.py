@@ -16,6 +16,7 @@ from tests.window.windows import Answers, opened
 from tuner.judge.assessment import Assessment
 from tuner.model.sheet import Sheet
 from tuner.session.document import Document
+from tuner.window import main_window
 from tuner.window.plot_grid import POLES, REFERENCE
 
 pytestmark = pytest.mark.usefixtures("qtbot")
@@ -260,3 +261,26 @@ def _place(part: QWidget) -> str:
 
 def _name(part: QWidget) -> str:
     return part.accessibleName() or getattr(part, "text", lambda: "")()
+
+
+def test_a_verdict_that_takes_long_makes_the_last_one_paler(qtbot: QtBot, monkeypatch: pytest.MonkeyPatch) -> None:
+    """Until it is there; nothing pales while answers keep up."""
+    monkeypatch.setattr(main_window, "LATE", 20)
+    go = threading.Event()
+
+    def judge(sheet: Sheet, size: int) -> Assessment:
+        assert size == 1 or go.wait(20.0)
+        return made_up.judge(sheet, size)
+
+    go.set()
+    with opened(judge=judge, synchronous=False) as (window, _):
+        window.start()
+        qtbot.waitUntil(lambda: window.ribbon.verdict.text() == "1 of 4 limits missed")
+        go.clear()
+        window.document.change_value("kp", 1.0)
+        qtbot.waitUntil(lambda: window.ribbon.verdict.text() == "assessing…")
+        assert window.ribbon.chips[0].is_late
+        go.set()
+        qtbot.waitUntil(lambda: window.ribbon.verdict.text() not in ("assessing…", "1 of 4 limits missed"))
+        assert not window.ribbon.chips[0].is_late
+        assert not window._late.isActive()

@@ -1,6 +1,7 @@
 """The ribbon says the verdict and every limit: in words, by sign and by colour."""
 
 import pytest
+from PySide6.QtGui import QImage
 from PySide6.QtWidgets import QApplication
 from pytestqt.qtbot import QtBot
 
@@ -158,3 +159,24 @@ def test_the_shade_is_taken_over(ribbon: Ribbon, theme: Theme) -> None:
     theme.choose("dark")
     assert ribbon.verdict.styleSheet() == f"color: {theme.palette.colours['lost_word']}"
     assert ribbon.chips[0].grab().toImage() != light
+
+
+def test_numbers_of_an_earlier_tuning_are_paler(ribbon: Ribbon, theme: Theme) -> None:
+    """While the verdict is awaited, which is said; the next one brings them back."""
+    ribbon.show(shown(1.0))
+    (chip, *_) = ribbon.chips
+    now = chip.grab().toImage()
+    ribbon.wait()
+    assert ribbon.verdict.text() == "assessing…"
+    assert ribbon.detail.text() == "the numbers are those of an earlier tuning"
+    pale = chip.grab().toImage()
+    page = theme.colour("page").lightness()
+
+    def farthest(image: QImage) -> int:
+        places = [(x, y) for x in range(image.width()) for y in range(image.height())]
+        return max(abs(image.pixelColor(x, y).lightness() - page) for x, y in places)
+
+    assert farthest(pale) < 0.7 * farthest(now)
+    ribbon.show(shown(1.0))
+    assert ribbon.chips[0].grab().toImage() == now
+    assert ribbon.detail.text() != "the numbers are those of an earlier tuning"

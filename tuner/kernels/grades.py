@@ -278,7 +278,7 @@ def grade(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
     points = course.speeds[-1].timing[0, 2]
     delay = 0
     for v in range(len(course.speeds)):
-        delay = max(delay, course.speeds[v].timing[:, 1].max())
+        delay = max(delay, int(course.speeds[v].timing[:, 1].max()))
     scratch = Scratch(
         _aligned(points * LANES), _aligned((delay + 1) * LANES), _aligned(rows(size) * LANES),
         _aligned(CONSTANTS * LANES), _aligned(plan(size)), _aligned(ROWS * LANES),

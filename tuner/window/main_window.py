@@ -26,6 +26,8 @@ SMALLEST = (960, 600)
 _EDITOR_WIDTH = 272
 _PAINTING = 1
 """Milliseconds after an answer when it has been painted: Qt paints before it looks at its clock."""
+LATE = 150
+"""Milliseconds without a verdict on the present tuning after which the last one is shown paler."""
 _PATIENCE = 2_000
 """Milliseconds after which a wait for the first answer is explained."""
 _COMPILING = "Compiling for this machine, once; the next start is quick."
@@ -77,6 +79,8 @@ class MainWindow(QMainWindow):
         self._fault = ""
         self._requested: object = None
         self._why = _ASSESSING
+        self._late = QTimer(self, singleShot=True, interval=LATE)
+        self._late.timeout.connect(self.ribbon.wait)
         self.setMinimumSize(*SMALLEST)
         self.setAcceptDrops(True)
         self._arrange()
@@ -100,6 +104,7 @@ class MainWindow(QMainWindow):
         event.accept()
         self.closing.emit(event)
         if event.isAccepted():
+            self._late.stop()
             self._stop_listening()
             self.hide()  # the worker may need a while to end its last piece of work
             self.assessor.close()
@@ -127,6 +132,8 @@ class MainWindow(QMainWindow):
             return
         self._requested = wanted
         self._asked += 1
+        if not self._late.isActive():
+            self._late.start()
         if anew:
             self._leave_loop()
         self._why = _ASSESSING
@@ -141,11 +148,18 @@ class MainWindow(QMainWindow):
         self.pages.say_looked_at(shown.assessment.drift_of(shown.looked_at) if shown.looked_at else "")
         if shown.whole:
             self._lose_sight(shown)
+            self._verdict_came(shown.number)
             self.ribbon.show(shown)
             self.editors.show(shown.assessment)
             self._say_notes(shown.assessment.notes)
         else:
             QTimer.singleShot(_PAINTING, self.assessor.go_on)
+
+    def _verdict_came(self, number: int) -> None:
+        """Wait no more for a verdict, or for a newer one from now on."""
+        self._late.stop()
+        if number < self._asked:
+            self._late.start()
 
     def look_at(self, plant: str) -> None:
         """Show a plant of the family in the place of the nominal one, by its name; '' for the nominal one."""
@@ -185,6 +199,7 @@ class MainWindow(QMainWindow):
         if failure.number < self._asked:
             return
         self._why = failure.sentence
+        self._late.stop()
         self.ribbon.fail(failure.sentence)
         self.pages.show_stale()
         self.pages.say_empty(failure.sentence)

@@ -48,6 +48,8 @@ _SIGN: dict[Standing, Sign] = {
 }
 _GAP, _SIGN_SIZE = 4, 12
 _WIDEST_PLANT = 184
+_PALE = 0.45
+"""How much of a chip shows that is not true of the present tuning any more."""
 _ROWS = 2
 """Rows of chips that are shown before the ribbon scrolls."""
 
@@ -94,6 +96,7 @@ class Chip(QWidget):
     def __init__(self, words: ChipWords, tip: str, theme: Theme) -> None:
         super().__init__()
         self._theme, self._width, self.words = theme, 0, words
+        self.is_late = False
         self.setFocusPolicy(Qt.FocusPolicy.TabFocus)
         self.setSizePolicy(QSizePolicy.Policy.Fixed, QSizePolicy.Policy.Fixed)
         self.show_words(words, tip)
@@ -134,6 +137,7 @@ class Chip(QWidget):
     def paintEvent(self, _event: QPaintEvent) -> None:
         """Paint the sign and three lines."""
         painter = QPainter(self)
+        painter.setOpacity(_PALE if self.is_late else 1.0)
         small, strong = self._metrics()
         left, top = _GAP, _GAP
         role = self._theme.colour(_ROLE[self.words.standing])
@@ -210,7 +214,18 @@ class Ribbon(QObject):
         """Show the verdict and the limits of an assessment of the whole family."""
         assessment = shown.assessment
         self._say(assessment.verdict, *verdict_words(assessment))
+        self._set_late(late=False)
         self._show_chips(shown)
+
+    def wait(self) -> None:
+        """Say that the verdict is awaited; the chips, paler until then, are those of an earlier tuning."""
+        self._say("waiting", "assessing…", "the numbers are those of an earlier tuning" if self.chips else "")
+        self._set_late(late=True)
+
+    def _set_late(self, *, late: bool) -> None:
+        for chip in self.chips:
+            chip.is_late = late
+            chip.update()
 
     def fail(self, sentence: str) -> None:
         """Say why the present sheet cannot be computed; the chips are those of the last one that could."""

@@ -30,7 +30,7 @@ _HALF = 1.5
 """Height above and below the real axis that is always in sight."""
 
 _POINTS = 400
-_TURN = np.exp(2j * np.pi * np.arange(181) / 180.0)
+_TURN: ComplexArray = np.asarray(np.exp(2j * np.pi * np.arange(181) / 180.0), dtype=np.complex128)
 _REACH = 12.0
 """Pixels within which the pointer means the curve."""
 
@@ -193,7 +193,7 @@ def _worst(shown: Shown, curves: "FrequencyCurves") -> tuple[ComplexArray, str, 
 
 def _circle(curve: Curve, centre: float, radius: float) -> None:
     if radius > 0.0:
-        curve.show_points(_points(centre + radius * _TURN))
+        curve.show_points(_points(np.asarray(centre + radius * _TURN, dtype=np.complex128)))
     else:
         curve.clear_points()
 
