@@ -6,7 +6,7 @@ from hypothesis import strategies as st
 
 from tests.judge.invented import LOOP
 from tuner.judge.assessment import LimitResult
-from tuner.judge.wording import number, quantity, relation, shortfall, told_apart, unit_of
+from tuner.judge.wording import minus, number, quantity, relation, shortfall, told_apart, unit_of
 from tuner.model.loop import Loop
 
 
@@ -87,3 +87,8 @@ def test_how_far_a_value_is_beyond_its_limit(
 ) -> None:
     """In parts of the limit, above 0 when it is missed."""
     assert shortfall(LimitResult(measure, limit, value, "nominal", met)) == pytest.approx(beyond)
+
+
+def test_a_true_minus() -> None:
+    """Every hyphen becomes one."""
+    assert minus("at -3 dB: -120°") == "at \u22123 dB: \u2212120°"

@@ -19,6 +19,7 @@ from typing import IO, TYPE_CHECKING, Literal, NamedTuple, cast
 
 from tuner.errors import LoopError, TrimwrightError
 from tuner.footing.classes import Overtaken, PaintedTrack, Track
+from tuner.footing.threads import NICE
 from tuner.model.sheet import Sheet
 
 if TYPE_CHECKING:
@@ -30,9 +31,6 @@ _TRIES = 2
 
 _LOOK = 0.01
 """Seconds after which it is looked whether an answer is still wanted."""
-
-_NICE = 10
-"""How much the process is put behind others, where the system knows this."""
 
 Stop = Callable[[], bool]
 Road = Literal["rulers", "map"]
@@ -237,7 +235,7 @@ def _answer(question: _Question, stop: Stop) -> _Answer:
 def main() -> None:
     """Serve over the standard streams; what anything prints goes to the standard error."""
     if sys.platform != "win32":
-        os.nice(_NICE)
+        os.nice(NICE)
     target = os.fdopen(os.dup(1), "wb")
     os.dup2(2, 1)
     try:

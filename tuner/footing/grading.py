@@ -3,7 +3,7 @@
 from collections.abc import Callable, Sequence
 from dataclasses import dataclass, field, replace
 from functools import partial
-from math import ceil, inf, nan
+from math import ceil, nan
 
 import numpy as np
 from numpy.typing import NDArray
@@ -18,7 +18,7 @@ from tuner.footing.tunings import Numbers, Tunings
 from tuner.kernels import grades, lanes, readings, responses
 from tuner.law.constants import GainConstants, gain_constants
 from tuner.measure.final import family_final_values
-from tuner.measure.loop import damping
+from tuner.measure.loop import damping_of
 from tuner.model.measures import BY_NAME
 from tuner.model.sheet import Sheet
 from tuner.simulate.batch import RUNAWAY, law_constants
@@ -295,7 +295,7 @@ class Grading:
         for at in np.flatnonzero(active).tolist():
             self._check()
             loops = loops_of(replace(self.sheet, controller=self.tunings[at]), self.ground.members)
-            found = [damping(one.values, -inf if one.complete else one.known_from) for one in family_poles(loops)]
+            found = [damping_of(one) for one in family_poles(loops)]
             active[at] = all(one is not None and one >= least for one in found)
 
     def _note_doubts(self, found: Classes, active: NDArray[np.uint8], doubt: NDArray[np.uint8]) -> None:

@@ -9,14 +9,14 @@ from functools import cache
 from itertools import pairwise
 from os import cpu_count
 
-_NICE = 10
-"""How much a thread that gives way is put behind others; Linux counts from 0 to 19."""
+NICE = 10
+"""How much a thread or a process that gives way is put behind others; Unix counts from 0 to 19."""
 
 
 def give_way() -> None:
     """Let this thread run when others have nothing to do, where the system lets threads differ: curves come first."""
     if sys.platform == "linux":  # elsewhere it would be the whole process
-        os.setpriority(os.PRIO_PROCESS, threading.get_native_id(), _NICE)
+        os.setpriority(os.PRIO_PROCESS, threading.get_native_id(), NICE)
 
 
 @cache

@@ -19,6 +19,11 @@ def number(value: float, digits: int = _DIGITS) -> str:
     return f"{rounded:.{max(digits, 10)}g}"
 
 
+def minus(words: str) -> str:
+    """Return words with true minus signs, as they stand on the screen."""
+    return words.replace("-", "\u2212")
+
+
 def unit_of(measure: str, loop: Loop) -> str:
     """Return the unit of a measure on one loop; '' for a plain ratio or a signal without unit."""
     return unit_in(BY_NAME[measure].unit, loop)

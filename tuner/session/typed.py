@@ -111,7 +111,7 @@ def drifts(text: str, known: Mapping[str, float]) -> tuple[PlantParameter, ...]:
         When a line names nothing that may drift, or something twice, or its spread cannot be used.
     """
     found: dict[str, PlantParameter] = {}
-    for line in filter(None, map(str.strip, text.replace(";", "\n").splitlines())):
+    for line in filter(None, (" ".join(one.split()) for one in text.replace(";", "\n").splitlines())):
         name = _drifting(line, known)
         if name in found:
             raise TypedError(f"expected each spread once, found two of {name}")
@@ -124,10 +124,10 @@ def drifts(text: str, known: Mapping[str, float]) -> tuple[PlantParameter, ...]:
 
 def _drifting(line: str, known: Mapping[str, float]) -> str:
     """Return the longest name that a line begins with."""
-    plain = " ".join(line.split()).casefold()
-    names = [name for name in known if plain == name or (plain.startswith(name) and not plain[len(name)].isalnum())]
-    if names and line.casefold().startswith(longest := max(names, key=len)):
-        return longest
+    plain = line.casefold()
+    names = [name for name in known if plain.startswith(name) and not plain[len(name) : len(name) + 1].isalnum()]
+    if names:
+        return max(names, key=len)
     words = re.match(r"[^\d%]*(?:\d+(?!\s*%|[.,\d]))?", plain)
     near = nearest(words[0].strip() if words else plain, known)
     hint = f"; the nearest valid name is {near}" if near else ""

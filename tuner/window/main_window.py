@@ -106,7 +106,6 @@ class MainWindow(QMainWindow):
         if event.isAccepted():
             self._late.stop()
             self._stop_listening()
-            self.hide()  # the worker may need a while to end its last piece of work
             self.assessor.close()
 
     def dragEnterEvent(self, event: QDragEnterEvent) -> None:

@@ -20,7 +20,7 @@ from PySide6.QtWidgets import QHBoxLayout, QScrollArea, QSizePolicy, QVBoxLayout
 
 from tuner.judge.assessment import Assessment, LimitResult
 from tuner.judge.overlay import at_plant
-from tuner.judge.wording import number, quantity, told_apart, unit_of
+from tuner.judge.wording import minus, number, quantity, told_apart, unit_of
 from tuner.model.family import NOMINAL
 from tuner.model.loop import Loop
 from tuner.model.measures import BY_NAME
@@ -85,7 +85,7 @@ def chip_words(result: LimitResult, loop: Loop, *, stable: bool) -> ChipWords:
 def _figures(value: float, limit: float, unit: str) -> str:
     """Return a value with three figures, more where they are needed to tell it from its limit."""
     digits = 3 if number(value, 3) != number(limit, 3) else min(told_apart(value, limit), 6)
-    return quantity(value, unit, digits).replace("-", "\u2212").replace("inf", "∞")
+    return minus(quantity(value, unit, digits)).replace("inf", "∞")
 
 
 class Chip(QWidget):

@@ -30,13 +30,9 @@ class Entry:
     lines: int = 1
     long: bool = True
 
-    @property
-    def attribute(self) -> str:
-        """What it is called in the plant."""
-        return "parameters" if self.name == _SPREAD else self.name
 
-
-_SPREAD = "spread"
+_SPREAD, _DRIFTING = "spread", "parameters"
+"""What the spread is called here, and in the plant."""
 
 
 class NumberEditor(Page):
@@ -80,7 +76,7 @@ class NumberEditor(Page):
     def _holder(self, entry: Entry) -> Callable[[], Any]:
         if entry.name == _SPREAD:
             return lambda: parameters_of(self._plant())
-        return lambda: getattr(self._plant(), entry.attribute)
+        return lambda: getattr(self._plant(), entry.name)
 
     def _read_spread(self, text: str) -> tuple[PlantParameter, ...]:
         return typed.drifts(text, nominal_numbers(self._plant()))
@@ -105,11 +101,7 @@ class NumberEditor(Page):
             self._change(waiting | {name: value}, name)
 
     def _change(self, values: dict[str, Any], name: str) -> None:
-        if _SPREAD in values:
-            values = {name: value for name, value in values.items() if name != _SPREAD} | {
-                "parameters": values[_SPREAD]
-            }
-        plant = replace(self._plant(), **values)
+        plant = replace(self._plant(), **{_DRIFTING if one == _SPREAD else one: value for one, value in values.items()})
         self._document.change_plant(plant, label=f"Set the {name.replace('_', ' ')}", merge_key=f"plant {name}")
 
 

@@ -5,8 +5,8 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
-from tuner.judge.wording import quantity
-from tuner.window.frequency.words import frequency_words, minus
+from tuner.judge.wording import minus, quantity
+from tuner.window.frequency.words import frequency_words
 from tuner.window.plots.marks import Area, Marks, Stroke, Words, rectangle
 from tuner.window.shown import Shown
 

@@ -5,10 +5,11 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
-from tuner.judge.wording import quantity, shortfall, unit_of
+from tuner.judge.wording import minus, quantity, shortfall, unit_of
 from tuner.model.family import NOMINAL
 from tuner.model.measures import BY_NAME
 from tuner.model.sheet import Sheet
+from tuner.window.plots.words import met_words
 from tuner.window.shown import Shown
 
 if TYPE_CHECKING:
@@ -31,11 +32,6 @@ def loop_words(curves: "FrequencyCurves", index: int, sheet: Sheet) -> str:
 def frequency_words(w: float, sheet: Sheet) -> str:
     """Return a frequency in words."""
     return quantity(w, f"rad/{sheet.loop.time_unit}", 3)
-
-
-def minus(words: str) -> str:
-    """Return words with true minus signs."""
-    return words.replace("-", "\u2212")
 
 
 def worst_plant(shown: Shown, measures: tuple[str, ...]) -> tuple[str, str] | None:
@@ -88,8 +84,4 @@ def missed_of(shown: Shown, measures: tuple[str, ...]) -> tuple[str, bool]:
     unstable = sum(not member.stable for member in members)
     if unstable:
         return f"no margins where the loop is unstable: {unstable} of {len(members)} plants", True
-    count = sum(limit.measure in measures for limit in shown.assessment.limits)
-    if not count:
-        return "nothing here is on the acceptance sheet", False
-    met = {1: "the limit here is met", 2: "both limits here are met"}
-    return met.get(count, f"all {count} limits here are met"), False
+    return met_words(sum(limit.measure in measures for limit in shown.assessment.limits)), False

@@ -18,7 +18,28 @@ _STRONG = ((-0.4, -0.4), (0.4, 0.4), (-0.4, 0.4), (0.4, -0.4))
 _PLAIN = ((0.0, 0.0),)
 
 
-class Curve(pg.PlotCurveItem):  # type: ignore[misc]  # pyqtgraph publishes no types
+class _Joining(pg.GraphicsObject):  # type: ignore[misc]  # pyqtgraph publishes no types
+    """What curves and poles have in common: they may become part of a picture of what stays; see `still`."""
+
+    _still: StillPicture | None = None
+
+    def join(self, still: StillPicture) -> None:
+        """Become part of a picture of what stays while others move."""
+        self._still = still
+        still.add(self)
+
+    def update(self, *area: QRectF) -> None:
+        """Be painted anew, with the picture if it is part of one."""
+        if self._still is not None:
+            self._still.forget()
+        super().update(*area)
+
+    def clip(self) -> QRectF | None:
+        """Return the frame of the plot."""
+        return QRectF(self.getViewBox().sceneBoundingRect())
+
+
+class Curve(_Joining, pg.PlotCurveItem):  # type: ignore[misc]  # pyqtgraph publishes no types
     """One curve or several, in one colour.
 
     Parameters
@@ -30,7 +51,6 @@ class Curve(pg.PlotCurveItem):  # type: ignore[misc]  # pyqtgraph publishes no t
     """
 
     def __init__(self, *, strong: bool = False, smooth: bool = True, depth: float = 0.0) -> None:
-        self._still: StillPicture | None = None
         super().__init__(antialias=smooth, skipFiniteCheck=True)
         self._offsets = _STRONG if strong else _PLAIN
         self._bounds = QRectF()
@@ -43,11 +63,6 @@ class Curve(pg.PlotCurveItem):  # type: ignore[misc]  # pyqtgraph publishes no t
         if colour != self._colour:
             self._colour = colour
             self.setPen(pen(colour))
-
-    def join(self, still: StillPicture) -> None:
-        """Become part of a picture of what stays while others move."""
-        self._still = still
-        still.add(self)
 
     def show_points(self, points: Points) -> None:
         """Show the points of a curve, or of several joined by their connect array."""
@@ -69,12 +84,6 @@ class Curve(pg.PlotCurveItem):  # type: ignore[misc]  # pyqtgraph publishes no t
         """Return where the points lie, with room for the stroke; found once for each curve, not at every question."""
         return self._bounds
 
-    def update(self, *area: QRectF) -> None:
-        """Be painted anew, with the picture if it is part of one."""
-        if self._still is not None:
-            self._still.forget()
-        super().update(*area)
-
     def paint(self, painter: QPainter, option: QStyleOptionGraphicsItem, widget: QWidget | None) -> None:
         """Paint the stroke, unless it is part of a picture."""
         if self._still is None:
@@ -83,10 +92,6 @@ class Curve(pg.PlotCurveItem):  # type: ignore[misc]  # pyqtgraph publishes no t
     def paint_still(self, painter: QPainter) -> None:
         """Paint the stroke into the picture."""
         self._paint_strokes(painter, QStyleOptionGraphicsItem(), None)
-
-    def clip(self) -> QRectF | None:
-        """Return the frame of the plot."""
-        return QRectF(self.getViewBox().sceneBoundingRect())
 
     def _paint_strokes(self, painter: QPainter, option: QStyleOptionGraphicsItem, widget: QWidget | None) -> None:
         """Paint the stroke, several times when it is a strong one."""
@@ -123,28 +128,16 @@ class Axis(pg.AxisItem):  # type: ignore[misc]  # pyqtgraph publishes no types
         return None
 
 
-class Poles(pg.ScatterPlotItem):  # type: ignore[misc]  # pyqtgraph publishes no types
+class Poles(_Joining, pg.ScatterPlotItem):  # type: ignore[misc]  # pyqtgraph publishes no types
     """Poles as crosses, or marked by rings around them."""
 
     def __init__(self, *, size: int, depth: float, rings: bool = False) -> None:
-        self._still: StillPicture | None = None
         super().__init__(symbol="o" if rings else "x", size=size, pxMode=True, useCache=True)
         self.setZValue(depth)
 
     def show_poles(self, re: np.ndarray, im: np.ndarray, colour: QColor, width: float) -> None:
         """Show them at real and imaginary parts."""
         self.setData(re, im, pen=pg.mkPen(colour, width=width), brush=None)
-
-    def join(self, still: StillPicture) -> None:
-        """Become part of a picture of what stays while others move."""
-        self._still = still
-        still.add(self)
-
-    def update(self, *area: QRectF) -> None:
-        """Be painted anew, with the picture if they are part of one."""
-        if self._still is not None:
-            self._still.forget()
-        super().update(*area)
 
     def paint(self, painter: QPainter, option: QStyleOptionGraphicsItem, widget: QWidget | None) -> None:
         """Paint them, unless they are part of a picture."""
@@ -154,10 +147,6 @@ class Poles(pg.ScatterPlotItem):  # type: ignore[misc]  # pyqtgraph publishes no
     def paint_still(self, painter: QPainter) -> None:
         """Paint them into the picture."""
         super().paint(painter, None, self.getViewWidget())
-
-    def clip(self) -> QRectF | None:
-        """Return the frame of the plot."""
-        return QRectF(self.getViewBox().sceneBoundingRect())
 
 
 def _bounds(points: Points) -> QRectF:

@@ -7,7 +7,7 @@ import numpy as np
 from numpy.typing import NDArray
 from PySide6.QtGui import QColor
 
-from tuner.judge.wording import number, quantity
+from tuner.judge.wording import minus, number, quantity
 from tuner.simulate.traces import ComplexArray
 from tuner.window.plots.extent import Extent, SteadyExtent
 from tuner.window.plots.items import Poles
@@ -46,7 +46,7 @@ def least_damped(shown: Shown) -> Least | None:
     pole = complex(poles[np.abs(-poles.real / np.abs(poles) - worst.value).argmin()])
     is_seen = members[0] is shown.assessment.nominal
     whose = "" if is_seen else f": {drift_words(members[0])}"
-    words = f"least damping {number(worst.value, 3)}{whose}".replace("-", "\u2212")
+    words = minus(f"least damping {number(worst.value, 3)}{whose}")
     return Least(np.array([pole, pole.conjugate()]), words, "" if is_seen else members[0].name)
 
 
@@ -197,4 +197,4 @@ def pole_words(pole: complex, unit: str) -> str:
     if pole.imag:
         said += f" ± {abs(pole.imag):.3g}j"
     period = f", period {quantity(2.0 * pi / abs(pole.imag), unit, 3)}" if pole.imag else ""
-    return f"{said} rad/{unit}{period}, damping {damping:.2g}".replace("-", "\u2212")
+    return minus(f"{said} rad/{unit}{period}, damping {damping:.2g}")

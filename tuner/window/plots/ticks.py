@@ -3,6 +3,8 @@
 from dataclasses import dataclass
 from math import ceil, floor, isfinite, log10
 
+from tuner.judge.wording import minus
+
 _STEPS = (1.0, 2.0, 2.5, 5.0, 10.0)
 _TIME_STEPS = (10.0, 20.0, 30.0, 60.0, 120.0, 300.0, 600.0, 1200.0, 1800.0, 3600.0)
 """Steps that suit clocks; finer and coarser ones are as on any axis."""
@@ -51,7 +53,7 @@ def written(value: float, step: float) -> str:
     """Return a number with the decimals that tell it from its neighbours, and a true minus sign."""
     far = not 1e-3 <= max(abs(value), step) < 1e6
     text = "0" if value == 0.0 else f"{value:.3g}" if far else f"{value:.{decimals(step)}f}"
-    return text.replace("-", "\u2212")
+    return minus(text)
 
 
 def decimals(step: float) -> int:

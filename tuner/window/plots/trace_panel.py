@@ -8,7 +8,7 @@ from PySide6.QtGui import QColor
 
 from tuner.judge.assessment import MemberResult
 from tuner.judge.overlay import Plot
-from tuner.judge.wording import quantity
+from tuner.judge.wording import minus, quantity
 from tuner.model.sheet import Sheet
 from tuner.simulate.traces import Trace
 from tuner.window.plots import thinning
@@ -134,7 +134,7 @@ class TracePanel(Panel):
         value = float(np.interp(x, line.t, line.values))
         time = quantity(x, sheet.loop.time_unit, 3)
         said = quantity(value + self.resting(sheet), self.unit(sheet))
-        return (x, value), f"at {time}: {said}".replace("-", "\u2212")
+        return (x, value), minus(f"at {time}: {said}")
 
     def step(self, steps: int) -> tuple[float, float] | None:
         """Return the next place in time, hundredths of what is seen away, from the step on."""

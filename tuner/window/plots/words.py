@@ -11,8 +11,10 @@ def missed_words(shown: Shown, plots: Collection[Plot]) -> tuple[str, bool]:
     missed = [callout.sentence for callout in shown.overlay.callouts if callout.plot in plots]
     if missed:
         return "; ".join(missed), True
-    count = sum(PLOT_OF[limit.measure] in plots for limit in shown.assessment.limits)
-    if not count:
-        return "nothing here is on the acceptance sheet", False
-    met = {1: "the limit here is met", 2: "both limits here are met"}
-    return met.get(count, f"all {count} limits here are met"), False
+    return met_words(sum(PLOT_OF[limit.measure] in plots for limit in shown.assessment.limits)), False
+
+
+def met_words(count: int) -> str:
+    """Return the words on so many limits that are all met."""
+    few = ("nothing here is on the acceptance sheet", "the limit here is met", "both limits here are met")
+    return few[count] if count < len(few) else f"all {count} limits here are met"
