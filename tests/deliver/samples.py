@@ -17,7 +17,7 @@ from tuner.deliver.specification import Specification, specify
 from tuner.deliver.target import template
 from tuner.deliver.targets import targets
 from tuner.judge.assessment import Assessment, Instability, LimitResult, MemberResult, Verdict
-from tuner.model.controller import Controller, DisturbanceFeedforward, Feedforward, Notch
+from tuner.model.controller import Controller, DisturbanceFeedforward, Feedforward, LeadLag, Notch, ReferenceFilter
 from tuner.model.loop import Loop, Manipulated, Signal
 from tuner.model.plant import ExpressionPlant, PlantParameter
 from tuner.model.sheet import Actuator, Sensor, Sheet, Trial
@@ -50,6 +50,7 @@ FULL = Sheet(
         windup_time=12.0,
         feedforward=Feedforward("static", gain=0.4),
         measurement_filter=0.8,
+        lead_lag=LeadLag(0.6, 0.2),
         notch=Notch(2.0, 0.2, 0.9),
     ),
     trial=Trial(duration=60.0, reference=5.0, disturbance=10.0),
@@ -61,7 +62,17 @@ BARE = Sheet(
 )
 OPEN = replace(FULL, controller=replace(FULL.controller, feedback=False))
 INVERSE = Feedforward("inverse", filter_time=1.0)
-MEASURED = DisturbanceFeedforward("1/(s + 1)")
+MEASURED = DisturbanceFeedforward("0.4 exp(-5.2 s)/(7 s + 1)", filter_time=0.7, name="Feed", unit="kg/s", resting=4.0)
+DYNAMIC = replace(
+    FULL,
+    controller=replace(
+        FULL.controller,
+        feedforward=INVERSE,
+        disturbance_feedforward=MEASURED,
+        reference_filter=ReferenceFilter(1.5, 3),
+    ),
+)
+"""Filters of every kind: of the reference, of a measured disturbance that comes late, between reference and law."""
 
 
 def assessment(

@@ -4,11 +4,14 @@ from dataclasses import replace
 
 import pytest
 
-from tests.deliver.samples import BARE, FULL, INVERSE, OPEN, assessment
+from tests.deliver.samples import BARE, DYNAMIC, FULL, OPEN, assessment
 from tuner import __version__
-from tuner.deliver.specification import constants, digest, specify, static_gain
+from tuner.deliver.reference import NO_FEEDS
+from tuner.deliver.specification import constants, digest, specify
 from tuner.errors import LoopError
-from tuner.model.controller import Feedforward, Notch
+from tuner.model.controller import Notch
+from tuner.simulate.batch import nominal
+from tuner.simulate.feeding import feeds_of
 
 
 def test_constants_follow_the_sheet() -> None:
@@ -26,13 +29,14 @@ def test_a_notch_beyond_half_the_sampling_frequency_is_refused() -> None:
         specify(fast, assessment(), "")
 
 
-@pytest.mark.parametrize(
-    ("feedforward", "gain"),
-    [(None, None), (INVERSE, None), (Feedforward("static", gain=0.4), 0.4), (Feedforward("static"), 0.0)],
-)
-def test_only_a_static_feedforward_has_a_gain(feedforward: Feedforward | None, gain: float | None) -> None:
-    """None means that the feedforward is left out, 0 that it is there and does nothing."""
-    assert static_gain(replace(BARE.controller, feedforward=feedforward)) == gain
+def test_filters_follow_the_sheet() -> None:
+    """They are those of the simulation; a controller without feedforward has none, and its disturbance rests at 0."""
+    made, bare = specify(DYNAMIC, assessment(), ""), specify(BARE, assessment(), "")
+    assert made.feeds == feeds_of(DYNAMIC, nominal(DYNAMIC), 0.5)
+    assert all(made.feeds)
+    assert made.resting_disturbance == 4.0
+    assert bare.feeds == NO_FEEDS
+    assert bare.resting_disturbance == 0.0
 
 
 def test_digest_is_of_what_the_sheet_says() -> None:

@@ -4,7 +4,7 @@ from dataclasses import replace
 
 from hypothesis import strategies as st
 
-from tuner.model.controller import Controller, DisturbanceFeedforward, Feedforward, Notch
+from tuner.model.controller import Controller, DisturbanceFeedforward, Feedforward, LeadLag, Notch, ReferenceFilter
 from tuner.model.loop import Loop, Manipulated, Signal
 from tuner.model.measures import MEASURES
 from tuner.model.physics import PHYSICS
@@ -115,8 +115,19 @@ bare_controllers = st.builds(
     feedback=st.booleans(),
     delay_samples=st.integers(0, 1000),
     feedforward=st.none() | feedforwards,
-    disturbance_feedforward=st.none() | st.just(DisturbanceFeedforward("2/(s + 1)")),
+    disturbance_feedforward=st.none()
+    | st.builds(
+        DisturbanceFeedforward,
+        st.just("2/(s + 1)"),
+        kind=st.sampled_from(["static", "dynamic"]),
+        filter_time=st.none() | positives,
+        name=st.sampled_from(["", "Inflow"]),
+        unit=st.sampled_from(["", "kg/s"]),
+        resting=numbers,
+    ),
+    reference_filter=st.none() | st.builds(ReferenceFilter, positives, st.integers(1, 8)),
     measurement_filter=naturals,
+    lead_lag=st.none() | st.builds(LeadLag, naturals, positives),
     notch=st.none() | st.builds(Notch, st.floats(1e-3, 3.0), st.floats(0.0, 1.0), positives),
 )
 

@@ -9,7 +9,8 @@ from hypothesis import strategies as st
 from tests.files.told import HEATER
 from tuner.files.plain import Inherited, Leaf, Tree, Value, tree
 from tuner.files.sheet import parse
-from tuner.model.controller import Controller, DisturbanceFeedforward, Feedforward, Notch
+from tuner.model.controller import Controller, DisturbanceFeedforward, Feedforward, LeadLag, Notch, ReferenceFilter
+from tuner.model.parameters import BLOCKS
 from tuner.model.plant import (
     CoefficientPlant,
     ExpressionPlant,
@@ -67,7 +68,9 @@ def test_every_number_of_the_controller_is_written() -> None:
     """No field of the controller is forgotten: each has its key, its table, or its three gains."""
     blocks = Controller(
         feedforward=Feedforward("static", 1.0),
+        reference_filter=ReferenceFilter(1.0),
         disturbance_feedforward=DisturbanceFeedforward("1/s"),
+        lead_lag=LeadLag(1.0, 1.0),
         notch=Notch(1.0),
         measurement_filter=1.0,
         as_found=Controller(),
@@ -85,8 +88,7 @@ def test_gains_have_the_names_of_their_form() -> None:
 
 def test_blocks_that_are_absent_have_no_table() -> None:
     """A controller without blocks has none of their tables."""
-    blocks = {"feedforward", "disturbance_feedforward", "notch", "measurement_filter", "as_found"}
-    assert controller(Controller()).keys().isdisjoint(blocks)
+    assert controller(Controller()).keys().isdisjoint({*BLOCKS, "as_found"})
 
 
 def test_as_found_implies_what_the_controller_has() -> None:

@@ -4,7 +4,7 @@ from dataclasses import replace
 
 import numpy as np
 
-from tuner.model.controller import Controller, DisturbanceFeedforward, Feedforward, Notch
+from tuner.model.controller import Controller, DisturbanceFeedforward, Feedforward, LeadLag, Notch, ReferenceFilter
 from tuner.model.loop import Loop, Manipulated, Signal
 from tuner.model.plant import ExpressionPlant, PlantParameter, Spread
 from tuner.model.sheet import Actuator, Sensor, Sheet, Trial
@@ -79,6 +79,10 @@ def rich_sheet(seed: int) -> Sheet:
     law = replace(law, c=float(random.choice((0.0, 0.4, 1.0))), delay_samples=int(random.integers(0, 4)))
     if random.random() < 0.4:
         law = replace(law, notch=Notch(random.uniform(2.0, 12.0), random.uniform(0.05, 0.6), random.uniform(0.3, 1.5)))
+    if random.random() < 0.25:
+        law = replace(law, lead_lag=LeadLag(random.uniform(0.0, 0.6), random.uniform(0.05, 0.5)))
+    if random.random() < 0.25:
+        law = replace(law, reference_filter=ReferenceFilter(random.uniform(0.2, 1.0), int(random.integers(1, 4))))
     kind = int(random.integers(0, 5))
     if kind == 0:
         law = replace(law, feedforward=Feedforward("static", gain=random.uniform(-0.5, 1.0)))

@@ -41,7 +41,7 @@ def run(
     course = grading._course([0], grading._limits(readings.MEASURES))
     lanes.run(
         size, grading.rich(), constants, speed.rows[0], speed.push[0], speed.timing[0], course.wanted[which],
-        speed.feedforward[which], y.reshape(-1), u.reshape(-1), state, planned,
+        speed.given[which], y.reshape(-1), u.reshape(-1), state, planned,
     )  # fmt: skip
     return y, u[:samples], state[lanes.totals_from(size) :].reshape(-1, lanes.LANES), tuned
 
@@ -73,6 +73,8 @@ def test_what_was_compared_has_every_feature() -> None:
     assert any(one.windup_time for one in laws)
     assert any(one.windup_time is None for one in laws)
     assert any(one.notch for one in laws)
+    assert any(one.lead_lag for one in laws)
+    assert any(one.reference_filter for one in laws)
     assert any(one.measurement_filter for one in laws)
     assert {one.action for one in laws} == {"reverse", "direct"}
     assert {one.feedforward.kind for one in laws if one.feedforward} == {"static", "inverse"}

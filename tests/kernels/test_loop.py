@@ -9,9 +9,9 @@ import pytest
 from numpy.typing import NDArray
 
 from tuner.kernels.exponential import hold
-from tuner.kernels.loop import run, step_response
-from tuner.law.constants import bake, notch
-from tuner.law.pid import law
+from tuner.kernels.loop import run
+from tuner.law.constants import bake, lead_lag, notch
+from tuner.law.pid import PARAMETERS, STATE, law
 
 Array = NDArray[np.float64]
 
@@ -62,7 +62,8 @@ def _random_case(seed: int) -> Case:
             sample_time=0.1 * steps, kp=random.random() * 2, ki=random.random(), kd=random.random() * 0.3,
             filter_time=random.random() * 0.2, windup_time=1.0 + random.random(), c=random.random(),
             action=float(random.choice([-1.0, 1.0])), low=40.0 - bound, high=40.0 + bound, rate=20.0 * random.random(),
-            measurement_filter_time=0.1 * random.random(), notch_section=notch(0.1 * steps, 3.0, 0.1, 1.0),
+            measurement_filter_time=0.1 * random.random(), lead_section=lead_lag(0.1 * steps, random.random(), 0.3),
+            notch_section=notch(0.1 * steps, 3.0, 0.1, 1.0),
             resting_measurement=72.0, resting_effort=40.0,
         )
         for bound in bounds
@@ -77,7 +78,7 @@ def _random_case(seed: int) -> Case:
         direct=random.normal(size=(plants, 2, 2)) * random.integers(0, 2),
         delay=random.integers(0, 12, (plants, 2)),
         steps=steps,
-        reference=random.normal(size=loops),
+        reference=random.normal(size=(loops, samples)),
         disturbance=random.normal(size=loops),
         feedforward=random.normal(size=(loops, samples)),
         noise=random.normal(size=(loops, samples)) * 0.01 if seed % 2 else np.zeros((0, 0)),
@@ -98,14 +99,14 @@ class _PlainLoop:
     def run(self) -> tuple[Array, Array, Array]:
         """Run it whole."""
         case, constants = self.case, tuple(map(float, self.case.constants[self.loop]))
-        state = (0.0,) * 10
+        state, rest = (0.0,) * len(STATE), constants[PARAMETERS.index("resting_measurement")]
         for k in range(len(self.u)):
-            measured = self.measured(k) + constants[17]
+            measured = self.measured(k) + rest
             if case.quantum:
                 measured = case.quantum * math.floor(measured / case.quantum + 0.5)
-            asked, forward = float(case.reference[self.loop]) + constants[17], float(case.feedforward[self.loop, k])
+            asked, forward = float(case.reference[self.loop, k]) + rest, float(case.feedforward[self.loop, k])
             state = law(asked, measured, forward, 0.0, *state, *constants)
-            self.u[k], self.limited[k] = state[0], state[8]
+            self.u[k], self.limited[k] = state[0], state[STATE.index("limited")]
             for index in range(k * case.steps, min((k + 1) * case.steps, case.points)):
                 self.y[index] = self.output(0, index)
                 self.advance(index)
@@ -179,12 +180,3 @@ def test_a_run_that_runs_away_is_held(ceiling: tuple[float, float]) -> None:
     assert np.abs(u).max() <= ceiling[1]
     assert (y[:, -1] == y[:, -2]).all()
     assert (u[:, -1] == u[:, -2]).all()
-
-
-def test_a_step_response_reads_just_after_the_jump() -> None:
-    """(s + 2)/(s + 1) = 1 + 1/(s + 1): the first value is the direct term, and each is the closed form's."""
-    decay = math.exp(-0.1)
-    out = np.empty(30)
-    growth, old, new, c = np.array([[decay - 1.0]]), np.zeros(1), np.array([1.0 - decay]), np.ones(1)
-    step_response(growth, old, new, c, np.array([0.0, 1.0]), 0, out)
-    assert out == pytest.approx(2.0 - np.exp(-0.1 * np.arange(30)), rel=1e-13)

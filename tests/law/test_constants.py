@@ -6,7 +6,7 @@ from hypothesis import given
 from hypothesis import strategies as st
 from scipy import signal
 
-from tuner.law.constants import NO_NOTCH, UNLIMITED, Constants, bake, notch
+from tuner.law.constants import NO_LEAD, NO_NOTCH, UNLIMITED, Constants, bake, lead_lag, notch
 from tuner.law.pid import PARAMETERS
 
 
@@ -37,7 +37,8 @@ def test_absent_limits_and_times_change_nothing() -> None:
     assert (made.low, made.high, made.rate_step) == (-UNLIMITED, UNLIMITED, UNLIMITED)
     assert made.windup_gain == 0.0
     assert made.filter_gain == 1.0
-    assert made[12:17] == NO_NOTCH
+    assert made[12:15] == NO_LEAD
+    assert made[15:20] == NO_NOTCH
 
 
 def test_limits_become_deviations_and_the_rate_a_step() -> None:
@@ -50,6 +51,16 @@ def test_windup_and_filter_follow_their_times() -> None:
     """Ts/Tt, and the backward difference of a first-order lag, Ts/(Tm + Ts)."""
     made = bake(sample_time=0.5, kp=1.0, ki=0.0, kd=0.0, windup_time=2.0, measurement_filter_time=1.5)
     assert (made.windup_gain, made.filter_gain) == (0.25, 0.25)
+
+
+@given(sample_time=st.floats(1e-3, 10.0), lead=st.floats(0.0, 100.0), lag=st.floats(1e-3, 100.0))
+def test_lead_lag_is_a_backward_difference(sample_time: float, lead: float, lag: float) -> None:
+    """S becomes (1 - 1/z)/Ts in (lead s + 1)/(lag s + 1); at rest it is one, at the first sample lead over lag."""
+    gain, rest, share = lead_lag(sample_time, lead, lag)
+    z = np.exp(1j * np.array([0.01, 0.3, 2.0]))
+    s = (1.0 - 1.0 / z) / sample_time
+    assert gain + rest * share / (z - 1.0 + share) == pytest.approx((lead * s + 1.0) / (lag * s + 1.0), rel=1e-9)
+    assert gain + rest == pytest.approx(1.0, rel=1e-12 * max(1.0, lead / lag))
 
 
 @given(

@@ -11,7 +11,7 @@ from numpy.typing import NDArray
 from scipy import signal
 
 from tuner.law import pid
-from tuner.law.constants import NO_NOTCH, Constants, bake, notch
+from tuner.law.constants import NO_LEAD, NO_NOTCH, Constants, bake, lead_lag, notch
 
 Array = NDArray[np.float64]
 
@@ -55,6 +55,8 @@ def from_the_formulas(settings: dict[str, Any], r: Array, ym: Array, extra: Arra
     r, x = r - s["resting_measurement"], ym - s["resting_measurement"]
     share = ts / (s["measurement_filter_time"] + ts)
     x = signal.lfilter([share], [1.0, share - 1.0], x)
+    gain, rest, part = s["lead_section"]
+    x = signal.lfilter([gain, rest * part - gain * (1.0 - part)], [1.0, part - 1.0], x)
     x = signal.lfilter(s["notch_section"][:3], (1.0, *s["notch_section"][3:]), x)
     p = s["kp"] * (s["b"] * r - x)
     d = signal.lfilter(np.array([1.0, -1.0]) * s["kd"] / (tf + ts), [1.0, -tf / (tf + ts)], s["c"] * r - x)
@@ -83,9 +85,12 @@ def from_the_formulas(settings: dict[str, Any], r: Array, ym: Array, extra: Arra
     reach=st.floats(1.0, 100.0),
     filtered=st.floats(0.0, 5.0),
     cut=st.booleans(),
+    led=st.booleans(),
     sample_time=st.floats(0.1, 1.0),
 )
-def test_law_is_the_published_formulas(seed: int, cut: bool, reach: float, filtered: float, **given: float) -> None:
+def test_law_is_the_published_formulas(
+    seed: int, cut: bool, led: bool, reach: float, filtered: float, **given: float
+) -> None:
     """Over random gains, limits, filters and signals, the law and the formulas agree to 1e-12 of the signals' size."""
     random = np.random.default_rng(seed)
     settings: dict[str, Any] = {
@@ -94,6 +99,7 @@ def test_law_is_the_published_formulas(seed: int, cut: bool, reach: float, filte
         "high": 40.0 + 0.7 * reach,
         "measurement_filter_time": filtered,
         "notch_section": notch(given["sample_time"], 2.0, 0.1, 0.8) if cut else NO_NOTCH,
+        "lead_section": lead_lag(given["sample_time"], 1.5, 0.4) if led else NO_LEAD,
         "resting_measurement": 72.0,
         "resting_effort": 40.0,
     }

@@ -35,7 +35,7 @@ def test_every_state_is_assigned_and_the_rest_are_locals() -> None:
     """What is assigned is a state or a local; inputs and parameters never are."""
     law = routine()
     assert set(assigned(law.body)) == set(pid.STATE) | set(law.locals)
-    assert law.locals == ("asked", "found", "proportional", "weighted", "wanted", "allowed")
+    assert law.locals == ("asked", "led", "found", "proportional", "weighted", "wanted", "allowed")
 
 
 def test_a_small_function_becomes_its_tree() -> None:

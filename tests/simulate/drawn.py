@@ -2,7 +2,7 @@
 
 import numpy as np
 
-from tuner.model.controller import Controller, Notch
+from tuner.model.controller import Controller, LeadLag, Notch
 from tuner.simulate.linear import Linear, from_zeros_poles
 from tuner.simulate.loop import Loop, loops_around
 
@@ -42,8 +42,14 @@ def controller(random: np.random.Generator, sample_time: float) -> Controller:
         filter_time=float(random.uniform(0.5, 3.0) * span),
         measurement_filter=float(random.uniform(0.2, 2.0) * span) if part[2] < 0.3 else 0.0,
         notch=Notch(float(random.uniform(0.3, 0.8) * 3.0 / span), 0.1, 0.8) if part[3] < 0.3 else None,
+        lead_lag=LeadLag(float(4.0 * part[0] * span), float((0.3 + 3.0 * part[1]) * span)) if _some(part[4]) else None,
         delay_samples=int(random.integers(0, 4)) if sample_time and part[4] < 0.5 else 0,
     )
+
+
+def _some(share: float) -> bool:
+    """Return whether a further part is there, by digits of a random number that decides another one as well."""
+    return 7.0 * share % 1.0 < 0.3
 
 
 def loop(seed: int, *, sampled: bool, dead_time: bool = False, least_excess: int = 1) -> Loop:

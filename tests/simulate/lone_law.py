@@ -1,12 +1,12 @@
 """The control law on its own, sample by sample and without limits, for a measurement that is a deviation from rest."""
 
 from tuner.law import pid
-from tuner.law.constants import NO_NOTCH, Constants, bake, notch
+from tuner.law.constants import NO_LEAD, NO_NOTCH, Constants, bake, lead_lag, notch
 from tuner.model.controller import Controller
 
-State = tuple[float, float, float, float, float, float, float, float, float, float]
+State = tuple[float, float, float, float, float, float, float, float, float, float, float]
 
-AT_REST: State = (0.0,) * 10
+AT_REST: State = (0.0,) * 11
 
 
 def constants_of(controller: Controller) -> Constants:
@@ -14,6 +14,7 @@ def constants_of(controller: Controller) -> Constants:
     gains, step, section = controller.parallel(), controller.sample_time, NO_NOTCH
     if controller.notch is not None:
         section = notch(step, controller.notch.frequency, controller.notch.depth, controller.notch.width)
+    led = controller.lead_lag
     return bake(
         sample_time=step,
         kp=gains.kp,
@@ -22,6 +23,7 @@ def constants_of(controller: Controller) -> Constants:
         filter_time=controller.filter_time,
         action=controller.sign,
         measurement_filter_time=controller.measurement_filter,
+        lead_section=lead_lag(step, led.lead, led.lag) if led else NO_LEAD,
         notch_section=section,
     )
 

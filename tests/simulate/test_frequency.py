@@ -35,6 +35,8 @@ def test_continuous_loops_against_python_control(seed: int) -> None:
     s = control.tf("s")
     law = gains.kp + gains.kd * s / (settings.filter_time * s + 1) + (gains.ki / s if gains.ki else 0)
     law = law / (settings.measurement_filter * s + 1)
+    if settings.lead_lag is not None:
+        law = law * (settings.lead_lag.lead * s + 1) / (settings.lead_lag.lag * s + 1)
     if settings.notch is not None:
         w0, depth, width = settings.notch.frequency, settings.notch.depth, settings.notch.width
         law = law * (s**2 + depth * width * w0 * s + w0**2) / (s**2 + width * w0 * s + w0**2)

@@ -7,7 +7,7 @@ import pytest
 
 from tests.simulate import drawn
 from tests.simulate.lone_law import AT_REST, constants_of, sample
-from tuner.model.controller import Controller, Notch
+from tuner.model.controller import Controller, LeadLag, Notch
 from tuner.simulate.factors import stack
 from tuner.simulate.linear import from_zeros_poles
 from tuner.simulate.traces import Array
@@ -28,7 +28,7 @@ def impulse_response(controller: Controller) -> Array:
 
 @pytest.mark.parametrize("seed", range(40))
 def test_the_sampled_controller_is_the_law(seed: int) -> None:
-    """The z-transform of what the law does to an impulse is the transfer function, with filter and notch."""
+    """The z-transform of what the law does to an impulse is the transfer function, with filter, lead-lag and notch."""
     random = np.random.default_rng(seed)
     controller = drawn.controller(random, float(random.uniform(0.05, 0.5)))
     controller = replace(controller, delay_samples=0)
@@ -47,16 +47,16 @@ def test_the_sampled_controller_is_the_law(seed: int) -> None:
 @pytest.mark.parametrize("filter_time", [0.0, 0.2])
 @pytest.mark.parametrize("action", ["reverse", "direct"])
 def test_the_continuous_controller(gains: tuple[float, float, float], filter_time: float, action: str) -> None:
-    """It is kp + ki/s + kd s/(Tf s + 1) behind filter and notch, the sign of the action in front."""
+    """It is kp + ki/s + kd s/(Tf s + 1) behind filter, lead-lag and notch, the sign of the action in front."""
     kp, ki, kd = gains
     controller = Controller(
         gain_1=kp, gain_2=ki, gain_3=kd, filter_time=filter_time, action=action,  # type: ignore[arg-type]  # both names are valid
-        measurement_filter=0.4, notch=Notch(3.0, 0.2, 0.5),
+        measurement_filter=0.4, lead_lag=LeadLag(0.7, 0.2), notch=Notch(3.0, 0.2, 0.5),
     )  # fmt: skip
     w = np.array([0.1, 1.0, 2.9, 30.0])
     s = 1j * w
     law = kp + ki / s + kd * s / (filter_time * s + 1.0)
-    blocks = (s * s + 0.3 * s + 9.0) / (s * s + 1.5 * s + 9.0) / (0.4 * s + 1.0)
+    blocks = (s * s + 0.3 * s + 9.0) / (s * s + 1.5 * s + 9.0) / (0.4 * s + 1.0) * (0.7 * s + 1.0) / (0.2 * s + 1.0)
     found = stack([controller_factors(controller)]).response(w)[0]
     assert found == pytest.approx(controller.sign * law * blocks, rel=1e-12)
 

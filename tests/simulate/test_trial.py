@@ -13,7 +13,7 @@ from scipy.integrate import solve_ivp
 from tests.simulate.invented import NOMINAL, heater, sheet
 from tuner.errors import LoopError
 from tuner.law.pid import law
-from tuner.model.controller import Controller, DisturbanceFeedforward, Feedforward, Notch
+from tuner.model.controller import Controller, DisturbanceFeedforward, Feedforward, LeadLag, Notch
 from tuner.model.family import family
 from tuner.model.loop import Manipulated
 from tuner.model.plant import ExpressionPlant
@@ -84,7 +84,7 @@ def _slow(whole: Sheet, reference: float, disturbance: float, substeps: int) -> 
         k = math.floor(late / step + 1e-9) - controller.delay_samples
         return efforts[k] if k >= 0 else 0.0, disturbance if late >= -1e-9 else 0.0
 
-    x, state, ys = np.zeros(plant.order + 2), (0.0,) * 10, []
+    x, state, ys = np.zeros(plant.order + 2), (0.0,) * 11, []
     for k in range(count):
         measured = whole.loop.controlled.resting + x[-1]
         quantum = whole.sensor.resolution
@@ -105,7 +105,7 @@ def _slow(whole: Sheet, reference: float, disturbance: float, substeps: int) -> 
     [
         {},
         {"delay_samples": 3, "windup_time": None, "measurement_filter": 0.0},
-        {"notch": Notch(2.0), "c": 1.0, "b": 0.5},
+        {"notch": Notch(2.0), "lead_lag": LeadLag(1.0, 0.3), "c": 1.0, "b": 0.5},
     ],
 )
 def test_a_saturating_loop_is_that_of_a_slow_simulation(change: dict[str, object]) -> None:

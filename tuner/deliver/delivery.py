@@ -10,7 +10,7 @@ from tuner.deliver.excitation import Recording, excite
 from tuner.deliver.folder import filling, refuse_folder
 from tuner.deliver.plant import nominal_plant
 from tuner.deliver.proof import Proof
-from tuner.deliver.refusals import refuse_controller, refuse_languages, refuse_verdict
+from tuner.deliver.refusals import refuse_controller, refuse_feeds, refuse_languages, refuse_verdict
 from tuner.deliver.specification import Specification, specify
 from tuner.deliver.target import Target
 from tuner.deliver.targets import targets
@@ -76,6 +76,7 @@ def deliver(  # noqa: PLR0913 - each is a decision of the person who delivers
     refuse_folder(folder, [*names, _PROOF], others, overwrite=overwrite)
 
     specification = specify(sheet, assessment, date)
+    refuse_feeds(specification.feeds)
     with filling(folder) as new:
         for target in chosen:
             _write(new, target, specification)

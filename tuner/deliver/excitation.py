@@ -29,7 +29,7 @@ class Recording:
         return Recording(self.samples + other.samples, self.outcomes + other.outcomes)
 
     def inputs(self) -> bytes:
-        """Return the samples as four doubles each, in the byte order of this machine."""
+        """Return the samples as five doubles each, in the byte order of this machine."""
         return array("d", (float(number) for sample in self.samples for number in sample)).tobytes()
 
 
@@ -45,7 +45,8 @@ def excite(specification: Specification, plant: Callable[[], PlantStep], steps: 
     measurement, start_over = 0.0, True
     for position in range(steps):
         before, value = (Before.RESET, 0.0) if start_over else kicks.switch(position)
-        sample = Sample(before, value, kicks.reference(position), kicks.reading(position, measurement))
+        given = kicks.reference(position), kicks.reading(position, measurement), kicks.measured(position)
+        sample = Sample(before, value, *given)
         outcomes.append(reference.take(sample))
         samples.append(sample)
         measurement = push(reference.deviation + kicks.disturbance(position))
@@ -66,6 +67,8 @@ class _Kicks:
         self._low = constants.low if constants.low > -UNLIMITED else -self._scale.effort
         self._high = constants.high if constants.high < UNLIMITED else self._scale.effort
         self._reference, self._disturbance = self._rest, 0.0
+        self._apart, self._measured = specification.resting_disturbance, specification.resting_disturbance
+        self._against = specification.feeds.disturbance is not None
         self.far = 1e3 * self._scale.large
 
     def reference(self, position: int) -> float:
@@ -78,6 +81,14 @@ class _Kicks:
         if position % 700 == 0:
             self._disturbance = 0.2 * self._scale.effort * self._random.uniform(-1.0, 1.0)
         return self._disturbance
+
+    def measured(self, position: int) -> float:
+        """Return the measured disturbance, which now and then cannot be used."""
+        if not self._against:
+            return 0.0
+        if position % 600 == 0:
+            self._measured = self._apart + 0.2 * self._scale.effort * self._random.uniform(-1.0, 1.0)
+        return nan if position % 7000 == 6999 else self._measured
 
     def reading(self, position: int, measurement: float) -> float:
         noisy = self._rest + measurement + 0.05 * self._scale.small * self._random.gauss(0.0, 1.0)

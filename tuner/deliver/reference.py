@@ -1,12 +1,17 @@
 """The controller that a delivery must equal: the law as it is simulated, with the switches of the delivered files."""
 
+from collections import deque
 from collections.abc import Iterable
 from enum import IntEnum, IntFlag
 from typing import NamedTuple
 
 from tuner.law import pid
 from tuner.law.constants import Constants
-from tuner.law.feedforward import static
+from tuner.law.feedforward import scaled, section
+from tuner.simulate.feeding import Digital, Feeds
+
+NO_FEEDS = Feeds()
+"""No filter at all."""
 
 
 class Before(IntEnum):
@@ -27,12 +32,16 @@ class Flags(IntFlag):
 
 
 class Sample(NamedTuple):
-    """What a controller is given: `before`, with `value` as the effort by hand, then one sample; engineering units."""
+    """What a controller is given: `before`, with `value` as the effort by hand, then one sample; engineering units.
+
+    `disturbance` is the measured one, which only a controller with feedforward from it looks at.
+    """
 
     before: Before
     value: float
     reference: float
     measurement: float
+    disturbance: float = 0.0
 
 
 class Outcome(NamedTuple):
@@ -42,6 +51,37 @@ class Outcome(NamedTuple):
     flags: int
 
 
+class Filter:
+    """A filter that runs the sections of the law's room themselves.
+
+    Parameters
+    ----------
+    digital : Digital
+    resting : float
+        Value of what comes in at the resting point, engineering units.
+    """
+
+    __slots__ = ("_digital", "_late", "_memories", "_resting")
+
+    def __init__(self, digital: Digital, resting: float) -> None:
+        self._digital, self._resting = digital, resting
+        self.reset()
+
+    def reset(self) -> None:
+        """Go to rest."""
+        self._late = deque([self._resting] * self._digital.delay)
+        self._memories = [(0.0, 0.0)] * len(self._digital.sections)
+
+    def take(self, value: float) -> float:
+        """Take one value in engineering units and return what comes out, as a deviation."""
+        self._late.append(value)
+        passed = scaled(self._late.popleft(), self._resting, self._digital.gain)
+        for place, constants in enumerate(self._digital.sections):
+            passed, *memories = section(passed, *self._memories[place], *constants)
+            self._memories[place] = (memories[0], memories[1])
+        return passed
+
+
 class Reference:
     """A controller that runs `pid.law` itself.
 
@@ -49,17 +89,27 @@ class Reference:
     ----------
     constants : Constants
         As `constants.bake` makes them.
-    feedforward_gain : float or None
-        Effort for each unit of reference; None for no feedforward.
+    feeds : Feeds
+        Its filters beside the law.
+    resting_disturbance : float
+        Value of the measured disturbance at the resting point.
     feedback : bool
         False for feedforward alone.
     """
 
-    __slots__ = ("_constants", "_feedback", "_gain", "_manual_effort", "_state")
+    __slots__ = ("_constants", "_feedback", "_filters", "_manual_effort", "_state")
 
-    def __init__(self, constants: Constants, feedforward_gain: float | None = None, *, feedback: bool = True) -> None:
+    def __init__(
+        self,
+        constants: Constants,
+        feeds: Feeds = NO_FEEDS,
+        *,
+        resting_disturbance: float = 0.0,
+        feedback: bool = True,
+    ) -> None:
         self._constants = constants
-        self._gain = feedforward_gain
+        rest = constants.resting_measurement, resting_disturbance, constants.resting_measurement
+        self._filters = [Filter(one, resting) if one else None for one, resting in zip(feeds, rest, strict=True)]
         self._feedback = feedback
         self.reset()
 
@@ -72,6 +122,9 @@ class Reference:
         """Go to the resting point, in automatic."""
         self._state: tuple[float, ...] = (0.0,) * len(pid.STATE)
         self._manual_effort = self._constants.resting_effort
+        for one in self._filters:
+            if one is not None:
+                one.reset()
 
     def set_manual(self, effort: float) -> None:
         """Take the effort by hand from the next sample on."""
@@ -96,18 +149,24 @@ class Reference:
             self.set_auto()
         elif sample.before == Before.RESET:
             self.reset()
-        return self._step(sample.reference, sample.measurement)
+        return self._step(sample)
 
     def run(self, samples: Iterable[Sample]) -> tuple[Outcome, ...]:
         """Take samples one after the other."""
         return tuple(self.take(sample) for sample in samples)
 
-    def _step(self, reference: float, measurement: float) -> Outcome:
+    def _step(self, sample: Sample) -> Outcome:
         constants = self._constants
-        feedforward = 0.0 if self._gain is None else static(reference, constants.resting_measurement, self._gain)
-        given = (reference, measurement, feedforward, self._manual_effort, *self._state, *constants)
+        forward, against, asked = self._filters
+        feedforward = 0.0 if forward is None else forward.take(sample.reference)
+        if against is not None:
+            feedforward = feedforward + against.take(sample.disturbance)
+        reference = sample.reference
+        if asked is not None:
+            reference = asked.take(reference) + constants.resting_measurement
+        given = (reference, sample.measurement, feedforward, self._manual_effort, *self._state, *constants)
         self._state = state = pid.law(*given)
-        _, _, _, _, _, _, _, mode, limited, fault = state
+        *_, mode, limited, fault = state
         flags = limited + 2.0 * fault + (4.0 if mode == pid.MANUAL else 0.0)  # Flags, without their slow arithmetic
         return Outcome(state[0] + constants.resting_effort, int(flags))
 

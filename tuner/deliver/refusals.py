@@ -7,6 +7,10 @@ from tuner.errors import DeliveryError, nearest
 from tuner.judge.assessment import Assessment
 from tuner.model.controller import Controller
 from tuner.model.sheet import Sheet
+from tuner.simulate.feeding import Feeds
+
+LONGEST_DELAY = 10_000
+"""Samples of a measured disturbance that a delivered controller remembers at most."""
 
 
 def refuse_languages(languages: Sequence[str], known: Iterable[str]) -> None:
@@ -37,15 +41,20 @@ def refuse_controller(controller: Controller) -> None:
     """
     if controller.sample_time == 0.0:
         raise DeliveryError("controller.sample_time: a continuous controller has no samples: give a sample_time")
-    if controller.feedforward is not None and controller.feedforward.kind == "inverse":
+
+
+def refuse_feeds(feeds: Feeds) -> None:
+    """Refuse a feedforward that would have to remember more than a target has room for.
+
+    Raises
+    ------
+    DeliveryError
+        With the reason.
+    """
+    if feeds.disturbance is not None and feeds.disturbance.delay > LONGEST_DELAY:
         raise DeliveryError(
-            "controller.feedforward: an inverse feedforward cannot be delivered yet: "
-            "it is a filter made from the plant, which the delivered law does not hold; only a static one can"
-        )
-    if controller.disturbance_feedforward is not None:
-        raise DeliveryError(
-            "controller.disturbance_feedforward: it cannot be delivered yet: "
-            "the delivered law has no input for the measured disturbance"
+            f"controller.disturbance_feedforward: its dead time is {feeds.disturbance.delay:,} samples long, which the "
+            f"controller would have to remember: expected at most {LONGEST_DELAY:,}; give a longer sample_time"
         )
 
 

@@ -9,9 +9,9 @@ from tuner.deliver.reference import Reference
 from tuner.deliver.vectors import Row, rows
 from tuner.judge.assessment import Assessment
 from tuner.law.constants import Constants
-from tuner.model.controller import Controller
 from tuner.model.sheet import Sheet
-from tuner.simulate.batch import law_constants
+from tuner.simulate.batch import law_constants, nominal
+from tuner.simulate.feeding import Feeds, feeds_of
 
 CAUTIONS = (
     "This is no safety function: interlocks and trips stay in force.",
@@ -30,6 +30,8 @@ class Specification:
         The tuning sheet and what was judged of it.
     constants : Constants
         What the law multiplies with.
+    feeds : Feeds
+        Its filters beside the law.
     rows : tuple of Row
         Samples with the answers that every file must give.
     digest : str
@@ -41,30 +43,32 @@ class Specification:
     sheet: Sheet
     assessment: Assessment
     constants: Constants
+    feeds: Feeds
     rows: tuple[Row, ...]
     digest: str
     version: str
     date: str
 
     @property
-    def feedforward_gain(self) -> float | None:
-        """Effort for each unit of reference; None without static feedforward."""
-        return static_gain(self.sheet.controller)
+    def resting_disturbance(self) -> float:
+        """Value of the measured disturbance at the resting point."""
+        return resting_disturbance(self.sheet)
 
     def reference(self) -> Reference:
         """Return a fresh controller that the files must equal."""
-        return Reference(self.constants, self.feedforward_gain, feedback=self.sheet.controller.feedback)
+        return _reference(self.sheet, self.constants, self.feeds)
 
 
 def specify(sheet: Sheet, assessment: Assessment, date: str) -> Specification:
     """Gather what a delivery of this sheet says."""
     made = constants(sheet)
-    reference = Reference(made, static_gain(sheet.controller), feedback=sheet.controller.feedback)
+    feeds = feeds_of(sheet, nominal(sheet), sheet.controller.sample_time)
     return Specification(
         sheet=sheet,
         assessment=assessment,
         constants=made,
-        rows=rows(sheet, made, reference),
+        feeds=feeds,
+        rows=rows(sheet, made, _reference(sheet, made, feeds)),
         digest=digest(sheet),
         version=__version__,
         date=date,
@@ -84,11 +88,15 @@ def constants(sheet: Sheet) -> Constants:
     return Constants(*(float(value) for value in made))
 
 
-def static_gain(controller: Controller) -> float | None:
-    """Return the gain of the static feedforward, None when there is none."""
-    feedforward = controller.feedforward
-    static = feedforward is not None and feedforward.kind == "static"
-    return float(feedforward.gain or 0.0) if feedforward is not None and static else None
+def resting_disturbance(sheet: Sheet) -> float:
+    """Return the value of the measured disturbance at the resting point, 0 where there is none."""
+    measured = sheet.controller.disturbance_feedforward
+    return float(measured.resting) if measured else 0.0
+
+
+def _reference(sheet: Sheet, made: Constants, feeds: Feeds) -> Reference:
+    feedback = sheet.controller.feedback
+    return Reference(made, feeds, resting_disturbance=resting_disturbance(sheet), feedback=feedback)
 
 
 def digest(sheet: Sheet) -> str:

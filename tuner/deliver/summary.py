@@ -143,13 +143,35 @@ def _blocks(specification: Specification) -> list[str]:
     lines = []
     if controller.measurement_filter:
         lines.append(f"Measurement filter: {controller.measurement_filter!r} {time}")
+    if controller.lead_lag is not None:
+        lines.append(f"Lead-lag: lead {controller.lead_lag.lead!r} {time}, lag {controller.lead_lag.lag!r} {time}")
     if controller.notch is not None:
         cut = controller.notch
         lines.append(f"Notch: {cut.frequency!r} rad/{time}, depth {cut.depth!r}, width {cut.width!r}")
-    if specification.feedforward_gain is not None:
-        lines.append(f"Static feedforward: {specification.feedforward_gain!r} times the reference's distance from rest")
+    if controller.reference_filter is not None:
+        smooth = controller.reference_filter
+        lines.append(f"Reference filter: {smooth.order} lag{'s' * (smooth.order > 1)} of {smooth.time!r} {time}")
+    lines += _feedforwards(specification)
     if not controller.feedback:
         lines.append("Feedback is off: the effort is the feedforward alone; going to automatic is not bumpless")
     if controller.delay_samples:
         lines.append(f"Reckoned with {controller.delay_samples} samples of computing delay, which are the target's own")
+    return lines
+
+
+def _feedforwards(specification: Specification) -> list[str]:
+    controller, time = specification.sheet.controller, specification.sheet.loop.time_unit
+    forward, against = controller.feedforward, controller.disturbance_feedforward
+    lines = []
+    if forward is not None and forward.kind == "static":
+        lines.append(f"Static feedforward: {forward.gain or 0.0!r} times the reference's distance from rest")
+    elif forward is not None:
+        lines.append(f"Inverse feedforward of the nominal plant, filter time {forward.filter_time!r} {time}")
+    if against is not None:
+        name = against.name or "the measured disturbance"
+        symbol = f" {against.unit}" if against.unit else ""
+        lines.append(
+            f"{against.kind.capitalize()} feedforward of {name}, at rest {against.resting!r}{symbol}; "
+            f"its path to the output: {against.expression}"
+        )
     return lines

@@ -32,10 +32,11 @@ def trial(specification: Specification) -> Recording:
     at = np.arange(min(grid.samples, MOST_SAMPLES)) * grid.steps
     samples: list[Sample] = []
     outcomes: list[Outcome] = []
-    for which, step in enumerate((sheet.trial.reference, 0.0)):
+    for which, (step, push) in enumerate(((sheet.trial.reference, 0.0), (0.0, sheet.trial.disturbance))):
         sensed = runs.y[0, which][at]
         end = len(at) if specification.assessment.nominal.stable else _end(sensed)
-        samples += list(_samples(sheet, step, sensed[:end]))
+        measured = specification.resting_disturbance + push if specification.feeds.disturbance else 0.0
+        samples += list(_samples(sheet, step, measured, sensed[:end]))
         outcomes += [
             Outcome(float(effort) + specification.constants.resting_effort, int(limited))
             for effort, limited in zip(runs.u[0, which][:end], runs.limited[0, which][:end], strict=True)
@@ -43,7 +44,7 @@ def trial(specification: Specification) -> Recording:
     return Recording(tuple(samples), tuple(outcomes))
 
 
-def _samples(sheet: Sheet, step: float, sensed: Array) -> Iterator[Sample]:
+def _samples(sheet: Sheet, step: float, measured: float, sensed: Array) -> Iterator[Sample]:
     """Yield what the controller was given, the resolution of the sensor included, in engineering units."""
     rest, quantum = float(sheet.loop.controlled.resting), float(sheet.sensor.resolution)
     before = Before.RESET
@@ -51,7 +52,7 @@ def _samples(sheet: Sheet, step: float, sensed: Array) -> Iterator[Sample]:
         reading = value + rest
         if quantum > 0.0:
             reading = quantum * floor(reading / quantum + 0.5)
-        yield Sample(before, 0.0, step + rest, reading)
+        yield Sample(before, 0.0, step + rest, reading, measured)
         before = Before.NOTHING
 
 

@@ -22,6 +22,7 @@ class Spoiled(IntEnum):
     REFERENCE_INFINITE = 2
     MEASUREMENT_MINUS_INFINITE = 3
     VALUE_NAN = 4
+    DISTURBANCE_NAN = 5
 
 
 class Row(NamedTuple):
@@ -47,6 +48,8 @@ def spoil(sample: Sample, spoiled: Spoiled) -> Sample:
             return sample._replace(measurement=-inf)
         case Spoiled.VALUE_NAN:
             return sample._replace(value=nan)
+        case Spoiled.DISTURBANCE_NAN:
+            return sample._replace(disturbance=nan)
         case _:
             return sample
 
@@ -82,7 +85,9 @@ def span(signal: Signal, step: float) -> float:
 def rows(sheet: Sheet, constants: Constants, reference: Reference) -> tuple[Row, ...]:
     """Return two hundred rows, with the answers of the reference."""
     found: list[Row] = []
-    for sample, spoiled in _Scenario(scales(sheet, constants), constants).samples():
+    measured = sheet.controller.disturbance_feedforward
+    resting = None if measured is None else measured.resting
+    for sample, spoiled in _Scenario(scales(sheet, constants), constants, resting).samples():
         found.append(Row(sample, spoiled, reference.take(spoil(sample, spoiled))))
     return tuple(found)
 
@@ -90,7 +95,8 @@ def rows(sheet: Sheet, constants: Constants, reference: Reference) -> tuple[Row,
 class _Scenario:
     """Writes the samples; the measurement wanders, the reference steps, and switches are thrown in between."""
 
-    def __init__(self, scale: Scales, constants: Constants) -> None:
+    def __init__(self, scale: Scales, constants: Constants, resting_disturbance: float | None) -> None:
+        self._apart, self._count = resting_disturbance, 0
         self._random = Random(_SEED)  # noqa: S311 - repeatable on purpose
         self._scale = scale
         self._rest = constants.resting_measurement
@@ -104,7 +110,8 @@ class _Scenario:
         """Yield samples and what spoils them."""
         yield from self._automatic(24, self._scale.small)
         yield from self._automatic(32, self._scale.large)
-        for spoiled in (Spoiled.MEASUREMENT_NAN, Spoiled.REFERENCE_INFINITE, Spoiled.MEASUREMENT_MINUS_INFINITE):
+        spoiling = [Spoiled.MEASUREMENT_NAN, Spoiled.REFERENCE_INFINITE, Spoiled.MEASUREMENT_MINUS_INFINITE]
+        for spoiled in spoiling + [Spoiled.DISTURBANCE_NAN] * (self._apart is not None):
             yield self._row(spoiled=spoiled)
             yield from self._automatic(4, self._scale.small)
         yield from self._by_hand()
@@ -152,7 +159,14 @@ class _Scenario:
     ) -> tuple[Sample, Spoiled]:
         measurement = self._rest + self._random.uniform(-1.0, 1.0) * (wander or self._scale.small)
         by_hand = _short(self._rest_effort + value) if before == Before.MANUAL else 0.0
-        return Sample(before, by_hand, _short(self._rest + reference), _short(measurement)), spoiled
+        return Sample(before, by_hand, _short(self._rest + reference), _short(measurement), self._measured()), spoiled
+
+    def _measured(self) -> float:
+        """Return a measured disturbance that steps every ten rows; 0 where nobody looks at it."""
+        if self._apart is None:
+            return 0.0
+        self._count += 1
+        return _short(self._apart + 0.1 * self._scale.effort * ((self._count // 10) % 3 - 1))
 
 
 def _short(value: float) -> float:

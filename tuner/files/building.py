@@ -5,13 +5,22 @@ from typing import Any
 
 from tuner.files.named_parameters import read_spread
 from tuner.files.schema import NONE
-from tuner.model.controller import Controller, DisturbanceFeedforward, Feedforward, Notch
+from tuner.model.controller import Controller, DisturbanceFeedforward, Feedforward, LeadLag, Notch, ReferenceFilter
 from tuner.model.loop import Loop, Manipulated, Signal
 from tuner.model.parameters import BLOCKS, GAIN_KEYS, Kind, in_section
 from tuner.model.plant import Plant
 from tuner.model.sheet import Actuator, Sensor, Sheet, Trial
 
 Table = dict[str, Any]
+
+_KINDS = {
+    "feedforward": Feedforward,
+    "reference_filter": ReferenceFilter,
+    "disturbance_feedforward": DisturbanceFeedforward,
+    "lead_lag": LeadLag,
+    "notch": Notch,
+}
+"""Blocks around the law by the key of their table; the measurement filter is a mere time."""
 
 
 def build(table: Table, plant: Plant) -> Sheet:
@@ -72,9 +81,8 @@ def _gains(values: Table, form: str) -> Table:
 
 def _blocks(table: Table) -> Table:
     """Return the blocks around the law, those that are there."""
-    kinds = {"feedforward": Feedforward, "disturbance_feedforward": DisturbanceFeedforward, "notch": Notch}
     blocks: Table = {
-        key: kind(**_values(f"controller.{key}", table[key])) for key, kind in kinds.items() if key in table
+        key: kind(**_values(f"controller.{key}", table[key])) for key, kind in _KINDS.items() if key in table
     }
     if "measurement_filter" in table:
         blocks["measurement_filter"] = float(table["measurement_filter"]["time"])

@@ -8,7 +8,7 @@ from tuner.files.drifts import written_drifts
 from tuner.files.schema import NONE
 from tuner.model.controller import Controller
 from tuner.model.drifts import Bare, parameters_of
-from tuner.model.parameters import AS_FOUND_KEYS, GAIN_KEYS, Parameter, in_section
+from tuner.model.parameters import AS_FOUND_KEYS, BLOCKS, GAIN_KEYS, Parameter, in_section
 from tuner.model.plant import (
     CoefficientPlant,
     ExpressionPlant,
@@ -101,15 +101,13 @@ def _is_foreign(name: str, controller: Controller) -> bool:
 
 
 def _blocks(controller: Controller) -> dict[str, Tree]:
-    names = ("feedforward", "disturbance_feedforward", "notch")
-    blocks = {
-        name: _section(f"controller.{name}", block)
-        for name in names
-        if (block := getattr(controller, name)) is not None
-    }
-    if controller.measurement_filter:
-        blocks["measurement_filter"] = {"time": Leaf(controller.measurement_filter)}
-    return blocks
+    return {name: _block(name, block) for name in BLOCKS if (block := getattr(controller, name))}
+
+
+def _block(name: str, block: object) -> Tree:
+    if name == "measurement_filter" and isinstance(block, float):
+        return {"time": Leaf(block)}
+    return _section(f"controller.{name}", block)
 
 
 def _as_found(controller: Controller) -> Tree:

@@ -85,6 +85,7 @@ def _without_gains(sheet: Sheet) -> Sheet:
         action=old.action,
         delay_samples=old.delay_samples,
         measurement_filter=old.measurement_filter,
+        lead_lag=old.lead_lag,
         notch=old.notch,
     )
     return replace(sheet, controller=probe, limits=())

@@ -226,12 +226,13 @@ class Grading:
             watched[1][:] = flat[:, : len(left)]
 
     def rich(self) -> lanes.Size:
-        """Return whether the measurement has a filter, a notch or a resolution, as `lanes.run` takes it."""
+        """Return whether the measurement has a filter, a lead-lag, a notch or a resolution, as `lanes.run` takes it."""
         controller = self.sheet.controller
-        return (0,) if controller.measurement_filter or controller.notch or self.sheet.sensor.resolution else ()
+        blocks = controller.measurement_filter, controller.lead_lag, controller.notch
+        return (0,) if any(blocks) or self.sheet.sensor.resolution else ()
 
     def _constants(self, places: NDArray[np.intp], step: float) -> Array:
-        """Return the constants of the law of some tunings at a step, shape (k, 19)."""
+        """Return the constants of the law of some tunings at a step, shape (k, 22)."""
         if step not in self.baked:
             self.baked[step] = self._bake(step)
         found: Array = self.baked[step][places]

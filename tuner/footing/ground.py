@@ -13,9 +13,10 @@ from tuner.measure.runs import LAST_SHARE
 from tuner.model.controller import Controller
 from tuner.model.family import Member, family_of
 from tuner.model.sheet import Sheet
-from tuner.simulate.batch import feedforward_of, nominal
+from tuner.simulate.batch import fed_in, nominal
 from tuner.simulate.grid import Grid, sampled_grid
 from tuner.simulate.pace import paced
+from tuner.simulate.traces import Array
 from tuner.simulate.wiring import processes, wire
 
 _CONTINUOUS = 1000
@@ -65,8 +66,10 @@ def ground_of(sheet: Sheet, size: int) -> Ground:
         delay_samples=controller.delay_samples,
         action=controller.action,
         measurement_filter=controller.measurement_filter,
+        lead_lag=controller.lead_lag,
         notch=controller.notch,
         feedforward=controller.feedforward,
+        reference_filter=controller.reference_filter,
         disturbance_feedforward=controller.disturbance_feedforward,
         gain_1=1.0,
     )
@@ -99,4 +102,11 @@ def _speed(sheet: Sheet, members: Sequence[Member], grid: Grid, size: int) -> gr
     times = grid.times()
     tail = int(np.searchsorted(times, times[-1] - LAST_SHARE * (times[-1] - times[0])))
     pace = paced(wire(sheet, members, grid.step), grid, delay, size)
-    return grades.Speed(*pace, feedforward_of(sheet, grid), grid.step, tail)
+    return grades.Speed(*pace, _given(sheet, grid), grid.step, tail)
+
+
+def _given(sheet: Sheet, grid: Grid) -> Array:
+    """Return what the law is given in either run, see `lanes.run`; shape (2, 2, s)."""
+    found = fed_in(sheet, grid)
+    shares = found.asked / (sheet.trial.reference or 1.0)
+    return np.ascontiguousarray(np.stack((found.effort, shares), axis=1))

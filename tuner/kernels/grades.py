@@ -42,7 +42,7 @@ class Speed(NamedTuple):
     ----------
     rows, push, timing : ndarray
         See `simulate.pace.Pace`.
-    feedforward : ndarray, shape (2, s)
+    given : ndarray, shape (2, 2, s)
         For the reference and the disturbance run.
     spacing : float
         Time between points.
@@ -53,7 +53,7 @@ class Speed(NamedTuple):
     rows: Array
     push: Array
     timing: Integers
-    feedforward: Array
+    given: Array
     spacing: float
     tail: int
 
@@ -233,7 +233,7 @@ def _both(  # noqa: PLR0913, PLR0917 - what a run takes
         scratch.constants[:] = blocks.constants[v, g]
         run(
             size, rich, scratch.constants, speed.rows[m], speed.push[m], speed.timing[m],
-            course.wanted[which], speed.feedforward[which], y, scratch.efforts, scratch.state, scratch.planned,
+            course.wanted[which], speed.given[which], y, scratch.efforts, scratch.state, scratch.planned,
         )  # fmt: skip
         if which == 0:
             reference_bounds(

@@ -21,7 +21,7 @@ Integers = NDArray[np.int64]
 LANES = 32
 """Tunings in a block."""
 
-CONSTANTS = 19
+CONSTANTS = 22
 """Constants of the law, for each lane."""
 
 SIZES = (1, 2, 3, 4, 5, 6, 8, 10, 12, 16, 24, 32, 48, 64, 96, 128)
@@ -40,7 +40,7 @@ LIMITED, TRAVEL, PEAK, AWAY = range(TOTALS)
 LOOKS = 8
 """Samples after which it is looked whether lanes have run away; one that has starts anew, so that it stays finite."""
 
-KEPT = 7
+KEPT = 8
 """States of the law that a run keeps."""
 
 _ASKED = 5
@@ -101,30 +101,33 @@ def _decide(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
         if len(rich) > 0:
             quantum = asked[_QUANTUM] if asked[_QUANTUM] > 0.0 else 1.0
             seen = quantum * np.floor(seen / quantum + 0.5) if asked[_QUANTUM] > 0.0 else seen
-            effort, integral, derivative, weighted, smooth, one, two, _, touched, _ = _law(
+            effort, integral, derivative, weighted, smooth, led, one, two, _, touched, _ = _law(
                 asked[_REFERENCE], seen, asked[_FEEDFORWARD], 0.0,
                 before, state[kept + LANES + i], state[kept + 2 * LANES + i], state[kept + 3 * LANES + i],
-                state[kept + 4 * LANES + i], state[kept + 5 * LANES + i], state[kept + 6 * LANES + i], 0.0, 0.0, 0.0,
+                state[kept + 4 * LANES + i], state[kept + 5 * LANES + i], state[kept + 6 * LANES + i],
+                state[kept + 7 * LANES + i], 0.0, 0.0, 0.0,
                 constants[i], constants[LANES + i], constants[2 * LANES + i], constants[3 * LANES + i],
                 constants[4 * LANES + i], constants[5 * LANES + i], constants[6 * LANES + i],
                 constants[7 * LANES + i], constants[8 * LANES + i], constants[9 * LANES + i],
                 constants[10 * LANES + i], constants[11 * LANES + i], constants[12 * LANES + i],
                 constants[13 * LANES + i], constants[14 * LANES + i], constants[15 * LANES + i],
                 constants[16 * LANES + i], constants[17 * LANES + i], constants[18 * LANES + i],
+                constants[19 * LANES + i], constants[20 * LANES + i], constants[21 * LANES + i],
             )  # fmt: skip
             state[kept + 4 * LANES + i] = smooth
-            state[kept + 5 * LANES + i] = one
-            state[kept + 6 * LANES + i] = two
+            state[kept + 5 * LANES + i] = led
+            state[kept + 6 * LANES + i] = one
+            state[kept + 7 * LANES + i] = two
         else:
-            effort, integral, derivative, weighted, smooth, one, two, _, touched, _ = _law(
+            effort, integral, derivative, weighted, smooth, led, one, two, _, touched, _ = _law(
                 asked[_REFERENCE], seen, asked[_FEEDFORWARD], 0.0,
                 before, state[kept + LANES + i], state[kept + 2 * LANES + i], state[kept + 3 * LANES + i],
-                0.0, 0.0, 0.0, 0.0, 0.0, 0.0,
+                0.0, 0.0, 0.0, 0.0, 0.0, 0.0, 0.0,
                 constants[i], constants[LANES + i], constants[2 * LANES + i], constants[3 * LANES + i],
                 constants[4 * LANES + i], constants[5 * LANES + i], constants[6 * LANES + i],
                 constants[7 * LANES + i], constants[8 * LANES + i], constants[9 * LANES + i],
-                constants[10 * LANES + i], 1.0, 1.0, 0.0, 0.0, 0.0, 0.0,
-                constants[17 * LANES], constants[18 * LANES],
+                constants[10 * LANES + i], 1.0, 1.0, 0.0, 0.0, 1.0, 0.0, 0.0, 0.0, 0.0,
+                constants[20 * LANES], constants[21 * LANES],
             )  # fmt: skip
         state[totals + LIMITED * LANES + i] += touched
         state[totals + TRAVEL * LANES + i] += abs(effort - before) * asked[_COUNTS]
@@ -229,7 +232,7 @@ def run(  # noqa: PLR0913, PLR0917 - the whole loop in one place, so that it can
     push: Array,
     timing: Integers,
     wanted: Array,
-    feedforward: Array,
+    given: Array,
     y: Array,
     efforts: Array,
     state: Array,
@@ -240,9 +243,9 @@ def run(  # noqa: PLR0913, PLR0917 - the whole loop in one place, so that it can
     Parameters
     ----------
     size, rich : tuple of int
-        As long as the plant has states, see `size_for`; and as long as the measurement has a filter, a notch or a
-        resolution, 0 or 1: without any the text is shorter.
-    constants : ndarray, shape (19 lanes,)
+        As long as the plant has states, see `size_for`; and as long as the measurement has a filter, a lead-lag, a
+        notch or a resolution, 0 or 1: without any the text is shorter.
+    constants : ndarray, shape (22 lanes,)
         Constants of the law, those of one kind for all lanes together.
     pace, push : ndarray, shapes (1 + m + n, n + 2) and (3, 1 + m + n)
         See `Pace`: rows of the measurement, of the output at the m points of a sample, of the next state.
@@ -252,7 +255,9 @@ def run(  # noqa: PLR0913, PLR0917 - the whole loop in one place, so that it can
     wanted : ndarray, shape (5,)
         Reference and disturbance as deviations, resting measurement, resolution of the measurement (0 for none), and
         the ceiling of the absolute output and effort: a lane that passes it has run away. When all have, the run ends.
-    feedforward : ndarray, shape (s,)
+    given : ndarray, shape (2, s)
+        What the law is given at each sample: the effort of the feedforward, and the share of the reference that it is
+        asked for by then.
     y : ndarray, shape (g lanes,)
         Output at the points, written to.
     efforts : ndarray, shape (e lanes,)
@@ -266,7 +271,7 @@ def run(  # noqa: PLR0913, PLR0917 - the whole loop in one place, so that it can
     arrival, delay, points, samples, steps, shown = timing
     reference, disturbance, resting, quantum, ceiling = wanted
     asked, ahead = planned[: _ASKED + n + 1], planned[_ASKED + n + 1 :]
-    asked[_REFERENCE], asked[_QUANTUM] = reference + resting, quantum
+    asked[_QUANTUM] = quantum
     for c in range(n + 1):
         asked[_ASKED + c] = pace[0, c]
     for j in range(n):
@@ -283,7 +288,8 @@ def run(  # noqa: PLR0913, PLR0917 - the whole loop in one place, so that it can
                 ahead[j * (n + 3) + n + 2] = push[when, 1 + steps + j] * disturbance
             before = when
         asked[_CONSTANT] = push[when, 0] * disturbance + resting
-        asked[_FEEDFORWARD], asked[_COUNTS] = feedforward[k], 1.0 if k < shown else 0.0
+        asked[_FEEDFORWARD], asked[_COUNTS] = given[0, k], 1.0 if k < shown else 0.0
+        asked[_REFERENCE] = given[1, k] * reference + resting
         _decide(size, rich, state, constants, asked, efforts, now * LANES)
         for j in range(min(steps, points - k * steps)):
             _show(size, pace[1 + j], push[when, 1 + j] * disturbance, state, efforts, due * LANES, y, at)

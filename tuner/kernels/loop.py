@@ -82,14 +82,14 @@ def run(  # noqa: C901, PLR0913, PLR0917 - the whole loop in one place, so that 
     u: Array,
     limited: Array,
 ) -> None:
-    """Run a batch of loops from rest; reference and disturbance step at sample 0.
+    """Run a batch of loops from rest; the disturbance steps at sample 0.
 
     A sample reads the measurement just before its own effort takes hold. A run whose output or effort passes its
     ceiling has run away: from there on it is held, so that no infinite number leaves this function.
 
     Parameters
     ----------
-    constants : ndarray, shape (l, 19)
+    constants : ndarray, shape (l, 22)
         For each of l loops, the constants of the law in the order of its parameters.
     system : ndarray of int, shape (l,)
         Which of the p systems each loop has.
@@ -101,10 +101,12 @@ def run(  # noqa: C901, PLR0913, PLR0917 - the whole loop in one place, so that 
         Whole steps of dead time of the effort, computing included, and of the disturbance.
     steps : int
         Steps between samples.
-    reference, disturbance : ndarray, shape (l,)
+    reference : ndarray, shape (l, s)
+        What the law is asked for at each of s samples, as a deviation.
+    disturbance : ndarray, shape (l,)
         Step sizes.
     feedforward : ndarray, shape (l, s)
-        Effort added at each of s samples.
+        Effort added at each sample.
     noise : ndarray, shape (l, s), or (0, 0) for none
         Added to the sensor.
     quantum : float
@@ -126,7 +128,7 @@ def run(  # noqa: C901, PLR0913, PLR0917 - the whole loop in one place, so that 
         seen, shown, seen_direct, shown_direct = c[which, 1], c[which, 0], direct[which, 1], direct[which, 0]
         late_u, late_d = delay[which, 0], delay[which, 1]
         x[:] = 0.0
-        effort = integral = derivative = weighted_error = filtered = 0.0
+        effort = integral = derivative = weighted_error = filtered = lead_memory = 0.0
         notch_1 = notch_2 = mode = touched = fault = 0.0
         old_u = old_d = 0.0
         # The effort that reaches the system is that of sample `source`; `phase` counts the steps since its jump.
@@ -137,16 +139,18 @@ def run(  # noqa: C901, PLR0913, PLR0917 - the whole loop in one place, so that 
             measured = _output(seen, x, seen_direct, old_u, old_d)
             if noise.shape[0] > 0:
                 measured += noise[loop, k]
-            measured += p[17]
+            measured += p[20]
             if quantum > 0.0:
                 measured = quantum * math.floor(measured / quantum + 0.5)
-            effort, integral, derivative, weighted_error, filtered, notch_1, notch_2, mode, touched, fault = (
-                compiled_law(
-                    reference[loop] + p[17], measured, feedforward[loop, k], 0.0,
-                    effort, integral, derivative, weighted_error, filtered, notch_1, notch_2, mode, touched, fault,
-                    p[0], p[1], p[2], p[3], p[4], p[5], p[6], p[7], p[8], p[9],
-                    p[10], p[11], p[12], p[13], p[14], p[15], p[16], p[17], p[18],
-                )
+            (
+                effort, integral, derivative, weighted_error, filtered, lead_memory,
+                notch_1, notch_2, mode, touched, fault,
+            ) = compiled_law(
+                reference[loop, k] + p[20], measured, feedforward[loop, k], 0.0,
+                effort, integral, derivative, weighted_error, filtered, lead_memory,
+                notch_1, notch_2, mode, touched, fault,
+                p[0], p[1], p[2], p[3], p[4], p[5], p[6], p[7], p[8], p[9], p[10],
+                p[11], p[12], p[13], p[14], p[15], p[16], p[17], p[18], p[19], p[20], p[21],
             )  # fmt: skip
             u[loop, k] = effort
             limited[loop, k] = touched
@@ -171,37 +175,3 @@ def run(  # noqa: C901, PLR0913, PLR0917 - the whole loop in one place, so that 
             if ran_away:
                 _hold_still(y[loop], u[loop], limited[loop], index, k, ceiling[loop, 0])
                 break
-
-
-@compiled
-def step_response(  # noqa: PLR0913, PLR0917 - kernels take bare numbers and arrays
-    growth: Array, old: Array, new: Array, c: Array, direct: Array, delay: int, out: Array
-) -> None:
-    """Write the response of one system to a unit step at each sample, as it is just after the jump of the input.
-
-    Parameters
-    ----------
-    growth, old, new, c : ndarray, shapes (n, n), (n,), (n,), (n,)
-        Equivalent over one sample, see `exponential.hold`.
-    direct : ndarray, shape (2,)
-        Direct terms of the input before and after the jump that falls on a sample.
-    delay : int
-        Whole samples of dead time.
-    out : ndarray, shape (s,)
-        The response.
-    """
-    x = np.zeros(growth.shape[0])
-    rise = np.zeros(growth.shape[0])
-    for k in range(out.shape[0]):
-        before = 1.0 if k - delay - 1 >= 0 else 0.0
-        after = 1.0 if k - delay >= 0 else 0.0
-        total = direct[0] * before + direct[1] * after
-        for i in range(x.shape[0]):
-            total += c[i] * x[i]
-        out[k] = total
-        for i in range(x.shape[0]):
-            rise[i] = old[i] * before + new[i] * after
-            for j in range(x.shape[0]):
-                rise[i] += growth[i, j] * x[j]
-        for i in range(x.shape[0]):
-            x[i] += rise[i]

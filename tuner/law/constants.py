@@ -23,6 +23,9 @@ class Constants(NamedTuple):
     high: float
     rate_step: float
     filter_gain: float
+    lead_gain: float
+    lead_rest: float
+    lead_share: float
     notch_b0: float
     notch_b1: float
     notch_b2: float
@@ -48,6 +51,31 @@ def gain_constants(  # noqa: PLR0913, PLR0917 - one argument for each number tha
     """Make gains and times into constants; see `bake`. An infinite wind-up time is none."""
     span = filter_time + sample_time
     return GainConstants(kp, ki * sample_time, kd / span, filter_time / span, sample_time / windup_time)
+
+
+class LeadCoefficients(NamedTuple):
+    """A first-order section: what passes at once, what is added in the end, and its share in one sample."""
+
+    gain: float
+    rest: float
+    share: float
+
+
+NO_LEAD = LeadCoefficients(1.0, 0.0, 0.0)
+
+
+def lead_lag(sample_time: float, lead: float, lag: float) -> LeadCoefficients:
+    """Discretise (lead s + 1)/(lag s + 1) by a backward difference, as the derivative and the filter are.
+
+    With z - 1 = x it is gain + rest share / (x + share), so that the static gain is one to the last digit.
+
+    Parameters
+    ----------
+    sample_time, lead, lag : float
+        Time unit of the sheet; `sample_time` or `lag` above zero.
+    """
+    span = lag + sample_time
+    return LeadCoefficients((lead + sample_time) / span, (lag - lead) / span, sample_time / span)
 
 
 class NotchCoefficients(NamedTuple):
@@ -108,6 +136,7 @@ def bake(  # noqa: PLR0913 - one argument for each number that an engineer gives
     high: float | None = None,
     rate: float | None = None,
     measurement_filter_time: float = 0.0,
+    lead_section: LeadCoefficients = NO_LEAD,
     notch_section: NotchCoefficients = NO_NOTCH,
     resting_measurement: float = 0.0,
     resting_effort: float = 0.0,
@@ -141,6 +170,9 @@ def bake(  # noqa: PLR0913 - one argument for each number that an engineer gives
         high=UNLIMITED if high is None else high - resting_effort,
         rate_step=UNLIMITED if rate is None else rate * sample_time,
         filter_gain=sample_time / (measurement_filter_time + sample_time),
+        lead_gain=lead_section.gain,
+        lead_rest=lead_section.rest,
+        lead_share=lead_section.share,
         notch_b0=notch_section.b0,
         notch_b1=notch_section.b1,
         notch_b2=notch_section.b2,

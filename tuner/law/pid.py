@@ -16,6 +16,7 @@ STATE = (
     "derivative",
     "weighted_error",
     "filtered",
+    "lead_memory",
     "notch_1",
     "notch_2",
     "mode",
@@ -37,6 +38,9 @@ PARAMETERS = (
     "high",
     "rate_step",
     "filter_gain",
+    "lead_gain",
+    "lead_rest",
+    "lead_share",
     "notch_b0",
     "notch_b1",
     "notch_b2",
@@ -61,6 +65,7 @@ def law(  # noqa: C901, PLR0913, PLR0917 - one text of scalars, which compilers 
     derivative: float,
     weighted_error: float,
     filtered: float,
+    lead_memory: float,
     notch_1: float,
     notch_2: float,
     mode: float,
@@ -78,6 +83,9 @@ def law(  # noqa: C901, PLR0913, PLR0917 - one text of scalars, which compilers 
     high: float,
     rate_step: float,
     filter_gain: float,
+    lead_gain: float,
+    lead_rest: float,
+    lead_share: float,
     notch_b0: float,
     notch_b1: float,
     notch_b2: float,
@@ -85,7 +93,7 @@ def law(  # noqa: C901, PLR0913, PLR0917 - one text of scalars, which compilers 
     notch_a2: float,
     resting_measurement: float,
     resting_effort: float,
-) -> tuple[float, float, float, float, float, float, float, float, float, float]:
+) -> tuple[float, float, float, float, float, float, float, float, float, float, float]:
     """Compute one sample of the two-degree-of-freedom PID law and return the new state, in the order of STATE.
 
     The integral is a forward difference and the derivative a backward difference (Astrom and Wittenmark,
@@ -119,12 +127,14 @@ def law(  # noqa: C901, PLR0913, PLR0917 - one text of scalars, which compilers 
     ):
         fault = 0.0
 
-        # Measurement filter and notch.
+        # Measurement filter, lead-lag and notch.
         asked = reference - resting_measurement
         filtered = filtered + (filter_gain * ((measurement - resting_measurement) - filtered))
-        found = (notch_b0 * filtered) + notch_1
-        notch_1 = ((notch_b1 * filtered) - (notch_a1 * found)) + notch_2
-        notch_2 = (notch_b2 * filtered) - (notch_a2 * found)
+        led = (lead_gain * filtered) + lead_memory
+        lead_memory = lead_memory + (lead_share * ((lead_rest * filtered) - lead_memory))
+        found = (notch_b0 * led) + notch_1
+        notch_1 = ((notch_b1 * led) - (notch_a1 * found)) + notch_2
+        notch_2 = (notch_b2 * led) - (notch_a2 * found)
 
         # Proportional and derivative parts.
         proportional = proportional_gain * ((b * asked) - found)
@@ -165,4 +175,4 @@ def law(  # noqa: C901, PLR0913, PLR0917 - one text of scalars, which compilers 
         effort = allowed
     else:
         fault = 1.0
-    return (effort, integral, derivative, weighted_error, filtered, notch_1, notch_2, mode, limited, fault)
+    return (effort, integral, derivative, weighted_error, filtered, lead_memory, notch_1, notch_2, mode, limited, fault)

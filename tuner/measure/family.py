@@ -17,6 +17,7 @@ from tuner.measure.trial import (
 )
 from tuner.model.sheet import Sheet
 from tuner.simulate.traces import Traces
+from tuner.simulate.trial import kicks
 
 REFERENCE = (
     "overshoot",
@@ -100,7 +101,7 @@ def _reference(
         _nowhere(found, stable, REFERENCE, NO_REFERENCE)
         return
     continuous = controller.sample_time == 0.0
-    infinite = continuous and controller.filter_time == 0.0 and controller.c * controller.parallel().kd > 0.0
+    infinite = kicks(controller)
     for runs in stacked(
         [pair.reference for pair in traces],
         [exact.reference for exact in final],
@@ -109,7 +110,7 @@ def _reference(
         [exact.bounded for exact in final],
     ):
         readings = reference_readings(runs, trial.reference, trial.settling_band)
-        readings |= effort_readings(runs, smooth=continuous, infinite=infinite and controller.feedback)
+        readings |= effort_readings(runs, smooth=continuous, infinite=infinite)
         _hand_out(runs, readings, found)
         for row, member in enumerate(runs.members.tolist()):
             _settle_reasons(found[member], runs, row)

@@ -9,7 +9,7 @@ from tuner.model.family import Member
 from tuner.model.sheet import Sheet, Trial
 from tuner.simulate.algebra import series
 from tuner.simulate.batch import nominal
-from tuner.simulate.feedforward import disturbance_filter, reference_filter
+from tuner.simulate.feedforward import disturbance_feedforward, reference_feedforward
 from tuner.simulate.linear import lag
 from tuner.simulate.wiring import processes
 
@@ -86,8 +86,8 @@ def _feedforward(sheet: Sheet) -> tuple[float, float]:
         return 0.0, 0.0
     plant, path = nominal(sheet)
     process = series(lag(sheet.actuator.lag), plant)
-    forward = reference_filter(controller, process)
-    compensation = disturbance_filter(path, process) if path is not None else None
+    forward, against = reference_feedforward(controller, process), controller.disturbance_feedforward
+    compensation = disturbance_feedforward(against, path, process) if against and path is not None else None
     return (forward.static_gain() if forward else 0.0, compensation.static_gain() if compensation else 0.0)
 
 

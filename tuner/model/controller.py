@@ -2,13 +2,16 @@
 
 from dataclasses import dataclass, replace
 from math import sqrt
-from typing import Literal
+from typing import Any, Literal
 
 from tuner.errors import LoopError
 from tuner.model.parameters import GAIN_KEYS
 
 Form = Literal["parallel", "standard", "series"]
 Action = Literal["reverse", "direct"]
+
+_HELD_AS = {"measurement_filter.time": "measurement_filter"}
+"""Keys that are held under another name."""
 
 _ROUNDING = 1e-12
 """Two equal times of the series form may come out this far beyond the bound that they lie on."""
@@ -48,10 +51,37 @@ class Feedforward:
 
 
 @dataclass(frozen=True, slots=True)
+class ReferenceFilter:
+    """Equal lags, `order` of them, between the reference and the law: 1/(time s + 1)^order."""
+
+    time: float
+    order: int = 1
+
+
+@dataclass(frozen=True, slots=True)
 class DisturbanceFeedforward:
-    """Compensation of a measured disturbance; `expression` is its own path to the output, as a formula."""
+    """Compensation of a measured disturbance.
+
+    Parameters
+    ----------
+    expression : str
+        The disturbance's own path to the output, as a formula.
+    kind : str
+        'static' for the ratio of the static gains, 'dynamic' for that of the whole paths.
+    filter_time : float or None
+        Time of the lags that make an improper ratio proper; None where it is proper by itself.
+    name, unit : str
+        Of the measured disturbance.
+    resting : float
+        Its value at the resting point.
+    """
 
     expression: str
+    kind: Literal["static", "dynamic"] = "dynamic"
+    filter_time: float | None = None
+    name: str = ""
+    unit: str = ""
+    resting: float = 0.0
 
 
 @dataclass(frozen=True, slots=True)
@@ -61,6 +91,14 @@ class Notch:
     frequency: float
     depth: float = 0.1
     width: float = 1.0
+
+
+@dataclass(frozen=True, slots=True)
+class LeadLag:
+    """A lead (`lead` above `lag`) or a lag on the measurement: (lead s + 1)/(lag s + 1), times in time units."""
+
+    lead: float
+    lag: float
 
 
 @dataclass(frozen=True, slots=True)
@@ -74,7 +112,7 @@ class Controller:
     gain_1, gain_2, gain_3 : float
         kp, ki, kd in the parallel form; kc, ti, td in the standard and series forms.
     measurement_filter : float
-        Time of the measurement filter; 0 for none.
+        Time of the measurement filter; 0 for none. Lead-lag and notch follow it, in this order.
     as_found : Controller or None
         The controller met on site, whole.
     """
@@ -92,8 +130,10 @@ class Controller:
     feedback: bool = True
     delay_samples: int = 0
     feedforward: Feedforward | None = None
+    reference_filter: ReferenceFilter | None = None
     disturbance_feedforward: DisturbanceFeedforward | None = None
     measurement_filter: float = 0.0
+    lead_lag: LeadLag | None = None
     notch: Notch | None = None
     as_found: "Controller | None" = None
 
@@ -103,17 +143,25 @@ class Controller:
         return 1.0 if self.action == "reverse" else -1.0
 
     def value(self, name: str) -> float | None:
-        """Return the number under a key of the sheet: a gain of the present form, a time or a weight."""
-        gains = GAIN_KEYS[self.form]
-        field = f"gain_{gains.index(name) + 1}" if name in gains else name
-        value: float | None = getattr(self, field)
+        """Return the number under a key of the sheet: a gain of the present form, a time or a weight.
+
+        The number of a block has the block's name before it, as in "notch.depth"; None where there is no such block.
+        """
+        block, dot, below = self._field(name).partition(".")
+        held = getattr(self, block)
+        value: float | None = getattr(held, below) if dot and held is not None else held
         return value
 
     def with_value(self, name: str, value: float | None) -> "Controller":
-        """Return this controller with one number changed, named as in the sheet."""
+        """Return this controller with one number changed, named as `value` takes it; its block must be there."""
+        block, dot, below = self._field(name).partition(".")
+        changed: Any = replace(getattr(self, block), **{below: value}) if dot else value
+        return replace(self, **{block: changed})
+
+    def _field(self, name: str) -> str:
+        """Return where a key of the sheet is held, dotted in a block."""
         gains = GAIN_KEYS[self.form]
-        field = f"gain_{gains.index(name) + 1}" if name in gains else name
-        return replace(self, **{field: value})  # type: ignore[arg-type] # the table of parameters names only numbers
+        return f"gain_{gains.index(name) + 1}" if name in gains else _HELD_AS.get(name, name)
 
     def parallel(self) -> Gains:
         """Return the gains in the parallel form."""

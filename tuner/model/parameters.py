@@ -68,6 +68,11 @@ class Parameter:
         """The dotted path of the key in the sheet."""
         return f"{self.section}.{self.name}" if self.section else self.name
 
+    @property
+    def key(self) -> str:
+        """The path below the controller, as `Controller.value` takes it: "kp", "notch.depth"."""
+        return self.path.removeprefix("controller.")
+
 
 def _number(section: str, name: str, symbol: str, sentence: str, **more: object) -> Parameter:
     return Parameter(section, name, symbol, Kind.NUMBER, sentence, **more)  # type: ignore[arg-type] # keys are checked by the dataclass
@@ -98,10 +103,20 @@ def _notch(section: str) -> tuple[Parameter, ...]:
             required=True,
             minimum=0,
             above_minimum=True,
+            ruler=True,
         ),
-        _number(section, "depth", "", "Gain at the centre of the notch.", default=0.1, minimum=0, maximum=1),
         _number(
-            section, "width", "", "Bandwidth of the notch over its centre.", default=1.0, minimum=0, above_minimum=True
+            section, "depth", "g", "Gain at the centre of the notch.", default=0.1, minimum=0, maximum=1, ruler=True
+        ),
+        _number(
+            section,
+            "width",
+            "q",
+            "Bandwidth of the notch over its centre.",
+            default=1.0,
+            minimum=0,
+            above_minimum=True,
+            ruler=True,
         ),
     )
 
@@ -208,14 +223,37 @@ PARAMETERS: tuple[Parameter, ...] = (
         required=True,
         choices=("static", "inverse"),
     ),
-    _number(f"{_C}.feedforward", "gain", "Kf", "Effort for each unit of reference (static).", unit="{u}/{y}"),
+    _number(
+        f"{_C}.feedforward", "gain", "Kf", "Effort for each unit of reference (static).", unit="{u}/{y}", ruler=True
+    ),
     _number(
         f"{_C}.feedforward",
         "filter_time",
-        "",
+        "Tv",
         "Time of the filter that makes the inverse proper.",
         above_minimum=True,
+        ruler=True,
         **_TIME,
+    ),
+    _number(
+        f"{_C}.reference_filter",
+        "time",
+        "Tr",
+        "Time of each lag between the reference and the control law.",
+        required=True,
+        above_minimum=True,
+        ruler=True,
+        **_TIME,
+    ),
+    Parameter(
+        f"{_C}.reference_filter",
+        "order",
+        "",
+        Kind.INTEGER,
+        "Number of equal lags of the reference filter.",
+        default=1,
+        minimum=1,
+        maximum=8,
     ),
     Parameter(
         f"{_C}.disturbance_feedforward",
@@ -225,6 +263,33 @@ PARAMETERS: tuple[Parameter, ...] = (
         "Path of the measured disturbance to the output, as a formula.",
         required=True,
     ),
+    Parameter(
+        f"{_C}.disturbance_feedforward",
+        "kind",
+        "",
+        Kind.CHOICE,
+        "Static: the ratio of the static gains. Dynamic: that of the whole paths, as far as it is causal.",
+        default="dynamic",
+        choices=("static", "dynamic"),
+    ),
+    _number(
+        f"{_C}.disturbance_feedforward",
+        "filter_time",
+        "Tz",
+        "Time of the lags that make an improper ratio proper; absent: none.",
+        above_minimum=True,
+        ruler=True,
+        **_TIME,
+    ),
+    Parameter(f"{_C}.disturbance_feedforward", "name", "", Kind.TEXT, "Name of the measured disturbance.", default=""),
+    Parameter(f"{_C}.disturbance_feedforward", "unit", "", Kind.TEXT, "Unit of the measured disturbance.", default=""),
+    _number(
+        f"{_C}.disturbance_feedforward",
+        "resting",
+        "",
+        "Value of the measured disturbance at the resting point.",
+        default=0.0,
+    ),
     _number(
         f"{_C}.measurement_filter",
         "time",
@@ -232,6 +297,18 @@ PARAMETERS: tuple[Parameter, ...] = (
         "Time of the first-order measurement filter.",
         required=True,
         above_minimum=True,
+        ruler=True,
+        **_TIME,
+    ),
+    _number(f"{_C}.lead_lag", "lead", "Tl", "Time of the lead on the measurement.", required=True, ruler=True, **_TIME),
+    _number(
+        f"{_C}.lead_lag",
+        "lag",
+        "Tg",
+        "Time of the lag on the measurement.",
+        required=True,
+        above_minimum=True,
+        ruler=True,
         **_TIME,
     ),
     *_notch(f"{_C}.notch"),
@@ -264,7 +341,7 @@ PARAMETERS: tuple[Parameter, ...] = (
 AS_FOUND_KEYS = tuple(parameter.name for parameter in PARAMETERS if parameter.section == _C)
 """Keys of the controller that the as-found table may repeat; those it leaves out are the controller's."""
 
-BLOCKS = ("feedforward", "disturbance_feedforward", "measurement_filter", "notch")
+BLOCKS = ("feedforward", "reference_filter", "disturbance_feedforward", "measurement_filter", "lead_lag", "notch")
 """Tables of the controller, of blocks around the law, that the as-found table may repeat as well."""
 
 GAIN_KEYS: dict[str, tuple[str, str, str]] = {
@@ -292,9 +369,14 @@ def find(path: str) -> Parameter:
 
 
 def rulers(form: str) -> tuple[Parameter, ...]:
-    """Return the parameters that get a slider when the gains are in `form`."""
+    """Return the parameters of the law itself that get a slider when the gains are in `form`."""
     foreign = {key for keys in GAIN_KEYS.values() for key in keys} - set(GAIN_KEYS[form])
-    return tuple(parameter for parameter in PARAMETERS if parameter.ruler and parameter.name not in foreign)
+    return tuple(one for one in in_section(_C) if one.ruler and one.name not in foreign)
+
+
+def block_rulers(block: str) -> tuple[Parameter, ...]:
+    """Return the parameters of a block of the controller that get a slider, by the key of its table."""
+    return tuple(parameter for parameter in in_section(f"{_C}.{block}") if parameter.ruler)
 
 
 def _by_path(parameters: Iterable[Parameter]) -> dict[str, Parameter]:

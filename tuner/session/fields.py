@@ -4,7 +4,7 @@ from dataclasses import replace
 from math import pi
 from typing import Any
 
-from tuner.model.controller import DisturbanceFeedforward, Feedforward, Notch
+from tuner.model.controller import DisturbanceFeedforward, Feedforward, LeadLag, Notch, ReferenceFilter
 from tuner.model.measures import Measure
 from tuner.model.parameters import Parameter
 from tuner.model.sheet import Sheet
@@ -41,17 +41,54 @@ def first_notch(sheet: Sheet) -> Notch:
     return Notch(float(f"{min(start, limit):.2g}"))
 
 
+def with_lead_lag(sheet: Sheet, lead_lag: LeadLag | None) -> Sheet:
+    """Return a sheet with a lead-lag, or without one."""
+    return replace(sheet, controller=replace(sheet.controller, lead_lag=lead_lag))
+
+
+def first_lead_lag(sheet: Sheet) -> LeadLag:
+    """Return a lead to begin with: a fiftieth of the trial, ahead of a lag of a tenth of that."""
+    lead = _first_time(sheet)
+    return LeadLag(lead, float(f"{lead / 10.0:.2g}"))
+
+
+def with_reference_filter(sheet: Sheet, reference_filter: ReferenceFilter | None) -> Sheet:
+    """Return a sheet with a filter between reference and law, or without one."""
+    return replace(sheet, controller=replace(sheet.controller, reference_filter=reference_filter))
+
+
+def first_reference_filter(sheet: Sheet) -> ReferenceFilter:
+    """Return a reference filter to begin with: one lag of a fiftieth of the trial."""
+    return ReferenceFilter(_first_time(sheet))
+
+
+def with_measurement_filter(sheet: Sheet, time: float) -> Sheet:
+    """Return a sheet with a measurement filter of a time; 0 for none."""
+    return replace(sheet, controller=replace(sheet.controller, measurement_filter=time))
+
+
+def first_measurement_filter(sheet: Sheet) -> float:
+    """Return the time of a measurement filter to begin with: a two-hundredth of the trial."""
+    return float(f"{sheet.trial.duration / 200.0:.2g}")
+
+
+def _first_time(sheet: Sheet) -> float:
+    return float(f"{sheet.trial.duration / 50.0:.2g}")
+
+
 def with_feedforward(sheet: Sheet, kind: str) -> Sheet:
     """Return a sheet with feedforward of a kind, its number to begin with, or none for any other word."""
-    time = float(f"{sheet.trial.duration / 50.0:.2g}")
+    time = _first_time(sheet)
     kinds = {"static": Feedforward("static", gain=0.0), "inverse": Feedforward("inverse", filter_time=time)}
     return replace(sheet, controller=replace(sheet.controller, feedforward=kinds.get(kind)))
 
 
 def with_disturbance_feedforward(sheet: Sheet, formula: str) -> Sheet:
     """Return a sheet with a measured disturbance's path to the output, none for an empty formula."""
-    path = DisturbanceFeedforward(formula) if formula.strip() else None
-    return replace(sheet, controller=replace(sheet.controller, disturbance_feedforward=path))
+    present = sheet.controller.disturbance_feedforward
+    path = replace(present, expression=formula) if present else DisturbanceFeedforward(formula)
+    wanted = path if formula.strip() else None
+    return replace(sheet, controller=replace(sheet.controller, disturbance_feedforward=wanted))
 
 
 def with_limit(sheet: Sheet, measure: str, limit: float) -> Sheet:

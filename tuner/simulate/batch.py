@@ -2,7 +2,7 @@
 
 import math
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import lru_cache
 
 import numpy as np
@@ -10,16 +10,13 @@ from numpy.typing import NDArray
 
 from tuner.errors import LoopError
 from tuner.kernels import loop as kernel
-from tuner.law.constants import NO_NOTCH, Constants, NotchCoefficients, bake, notch
-from tuner.law.feedforward import static
+from tuner.law.constants import NO_LEAD, NO_NOTCH, Constants, NotchCoefficients, bake, lead_lag, notch
 from tuner.model.controller import Controller, Gains
 from tuner.model.drifts import parameters_of
 from tuner.model.family import Member
 from tuner.model.sheet import Sheet
-from tuner.simulate.algebra import series
-from tuner.simulate.feedforward import disturbance_filter, reference_filter, step_sequence
+from tuner.simulate.feeding import Fed, fed, feeds_of
 from tuner.simulate.grid import Grid
-from tuner.simulate.linear import lag
 from tuner.simulate.traces import Array
 from tuner.simulate.wiring import Process, processes, wire
 
@@ -79,8 +76,8 @@ def simulate(
     count = len(members)
     times = softening or [sheet.controller.measurement_filter] * count
     constants = np.repeat(np.array([law_constants(sheet, grid.sample_time, time) for time in times]), 2, axis=0)
-    sizes = np.tile([[sheet.trial.reference, 0.0], [0.0, sheet.trial.disturbance]], (count, 1))
-    feedforward = np.tile(feedforward_of(sheet, grid), (count, 1))
+    given = fed_in(sheet, grid)
+    feedforward = np.tile(given.effort, (count, 1))
     delay = wired.delay.copy()
     if sheet.controller.sample_time:
         delay[:, 0] += sheet.controller.delay_samples * grid.steps
@@ -94,8 +91,8 @@ def simulate(
         _rows(wired.direct, sensed=sensed),
         delay,
         grid.steps,
-        np.ascontiguousarray(sizes[:, 0]),
-        np.ascontiguousarray(sizes[:, 1]),
+        np.tile(given.asked, (count, 1)),
+        np.tile([0.0, float(sheet.trial.disturbance)], count),
         feedforward,
         _NO_NOISE,
         float(sheet.sensor.resolution),
@@ -136,6 +133,9 @@ def law_constants(sheet: Sheet, sample_time: float, measurement_filter: float) -
         high=effort.high,
         rate=effort.rate,
         measurement_filter_time=measurement_filter,
+        lead_section=lead_lag(sample_time, controller.lead_lag.lead, controller.lead_lag.lag)
+        if controller.lead_lag
+        else NO_LEAD,
         notch_section=_notch(controller, sample_time),
         resting_measurement=sheet.loop.controlled.resting,
         resting_effort=effort.resting,
@@ -164,27 +164,23 @@ def _notch(controller: Controller, sample_time: float) -> NotchCoefficients:
     return notch(sample_time, asked.frequency, asked.depth, asked.width)
 
 
-def feedforward_of(sheet: Sheet, grid: Grid) -> Array:
-    """Return the feedforward of the reference run and of the disturbance run, shape (2, samples).
+def fed_in(sheet: Sheet, grid: Grid) -> Fed:
+    """Return what the law is given in both runs; the same for all gains of the law, so it is kept.
 
-    It is designed for the nominal plant, whatever member it then meets.
+    Feedforward is designed for the nominal plant, whatever member it then meets.
     """
-    out = np.zeros((2, grid.samples))
     controller = sheet.controller
-    if controller.feedforward is None and controller.disturbance_feedforward is None:
-        return out
-    plant, path = nominal(sheet)
-    process = series(lag(sheet.actuator.lag), plant)
-    forward = reference_filter(controller, process)
-    if controller.feedforward is not None and controller.feedforward.kind == "static":
-        rest = sheet.loop.controlled.resting
-        out[0] = static(sheet.trial.reference + rest, rest, controller.feedforward.gain or 0.0)
-    elif forward is not None:
-        out[0] = sheet.trial.reference * step_sequence(forward, grid.sample_time, grid.samples)
-    if path is not None:
-        cancelling = disturbance_filter(path, process)
-        out[1] = sheet.trial.disturbance * step_sequence(cancelling, grid.sample_time, grid.samples)
-    return out
+    bare = Controller(
+        feedforward=controller.feedforward,
+        reference_filter=controller.reference_filter,
+        disturbance_feedforward=controller.disturbance_feedforward,
+    )
+    return _fed(replace(sheet, controller=bare, limits=()), grid.sample_time, grid.samples)
+
+
+@lru_cache(maxsize=16)
+def _fed(sheet: Sheet, sample_time: float, samples: int) -> Fed:
+    return fed(sheet, feeds_of(sheet, nominal(sheet), sample_time), samples)
 
 
 def _ceilings(sheet: Sheet, found: Sequence[Process], constants: Array, feedforward: Array) -> Array:

@@ -113,7 +113,8 @@ def direct_gain(sheet: Sheet, process: Process) -> float:
         return 0.0
     way = chain(process.plant, sheet.actuator.lag, sheet.sensor.lag)
     filtered = 1 if sheet.controller.measurement_filter else 0
-    lags = way.order - len(way.zeros) + filtered
+    led = sheet.controller.lead_lag
+    lags = way.order - len(way.zeros) + filtered + (1 if led and not led.lead else 0)
     gains, time = sheet.controller.parallel(), sheet.controller.filter_time
     slope = gains.kd if time == 0.0 else 0.0
     if slope and lags == 0:
@@ -124,7 +125,9 @@ def direct_gain(sheet: Sheet, process: Process) -> float:
     if lags > (1 if slope else 0):
         return 0.0
     proportional = gains.kp + (gains.kd / time if time else 0.0)
-    gain = sheet.controller.sign * way.gain * (slope or proportional)
+    gain = (
+        sheet.controller.sign * way.gain * (slope or proportional) * (led.lead / led.lag if led and led.lead else 1.0)
+    )
     return _checked_gain(gain / sheet.controller.measurement_filter if filtered else gain, filtered > 0)
 
 
@@ -214,7 +217,7 @@ def _kicked(sheet: Sheet, first: Array, step: float) -> Array:
     That is kd c r / Tf, of which a backward difference over a step h shows kd c r / (Tf + h) alone.
     """
     controller, limits, time = sheet.controller, sheet.loop.manipulated, sheet.controller.filter_time
-    if not controller.feedback or not time or limits.rate is not None:
+    if not controller.feedback or not time or limits.rate is not None or controller.reference_filter:
         return first
     whole = controller.sign * controller.parallel().kd * controller.c * sheet.trial.reference / time
     low = -np.inf if limits.low is None else limits.low - limits.resting

@@ -1,21 +1,23 @@
-"""Feedforward: the filters that turn a reference or a measured disturbance into an effort, and what they give."""
+"""Feedforward: the filters that turn a reference or a measured disturbance into an effort, and what they leave out."""
 
-from collections.abc import Iterable
+from collections.abc import Iterable, Iterator, Sequence
 
 import numpy as np
 
 from tuner.errors import LoopError
-from tuner.kernels.loop import step_response
-from tuner.model.controller import Controller
-from tuner.simulate.discrete import hold, split
+from tuner.model.controller import Controller, DisturbanceFeedforward, ReferenceFilter
 from tuner.simulate.linear import Linear, constant, from_zeros_poles, product
-from tuner.simulate.traces import Array
 
 _SAME = 1e-9
 
 
-def reference_filter(controller: Controller, process: Linear) -> Linear | None:
-    """Return the filter from reference to effort; None when the controller has none.
+def lags_of_reference(asked: ReferenceFilter) -> Linear:
+    """Return the filter between the reference and the law: equal lags, 1/(time s + 1)^order."""
+    return from_zeros_poles((), [-1.0 / asked.time] * asked.order, product([1.0 / asked.time] * asked.order))
+
+
+def reference_feedforward(controller: Controller, process: Linear) -> Linear | None:
+    """Return the way from reference to effort beside the law; None when the controller has none.
 
     Parameters
     ----------
@@ -55,41 +57,89 @@ def inverse(process: Linear, filter_time: float) -> Linear:
             f"the inverse of the plant needs {_lags(missing)} to be proper: expected filter_time above 0 in "
             f"controller.feedforward, found {filter_time:g}"
         )
-    lags = (-1.0 / filter_time,) * missing if missing else ()
-    return from_zeros_poles(process.poles, (*kept, *lags), product((1.0 / gain, *[1.0 / filter_time] * missing)))
+    return _with_lags(process.poles, kept, 1.0 / gain, missing, filter_time)
 
 
-def disturbance_filter(path: Linear, process: Linear) -> Linear:
-    """Return the filter from a measured disturbance to the effort that cancels it at the output: -path / process.
+def disturbance_feedforward(asked: DisturbanceFeedforward, path: Linear, process: Linear) -> Linear:
+    """Return the way from a measured disturbance to the effort that cancels it at the output: -path / process.
 
     Factors that both have cancel. The dead time is what the path has beyond that of the process; where the process
-    is the slower one, the effort comes too late by the difference, and nothing can be done about that.
+    is the slower one, the effort comes too late by the difference, and nothing can be done about that. Static is the
+    ratio of the static gains alone.
 
     Raises
     ------
     LoopError
-        When the filter would be improper or unstable, with the reason.
+        When the filter would be unstable, improper without lags to make it proper, or without end, with the reason.
     """
     kept, gain = _invertible(process)
     zeros, poles = _without_shared([*path.zeros, *process.poles], [*path.poles, *kept])
-    if len(zeros) > len(poles):
-        raise LoopError(
-            f"the disturbance feedforward would be improper: its numerator has degree {len(zeros)}, above the "
-            f"denominator's {len(poles)}; the disturbance reaches the output with fewer lags than the effort does"
-        )
     if any(pole.real > 0.0 for pole in poles):
         raise LoopError("the disturbance feedforward would be unstable: the path of the disturbance is unstable")
-    return from_zeros_poles(zeros, poles, -path.gain / gain, max(path.dead_time - process.dead_time, 0.0))
+    missing = max(len(zeros) - len(poles), 0)
+    if asked.kind == "static":
+        return _static(_with_lags(zeros, poles, -path.gain / gain, missing, 1.0))
+    if missing and not asked.filter_time:
+        raise LoopError(
+            f"the disturbance feedforward would be improper: its numerator has degree {len(zeros)}, above the "
+            f"denominator's {len(poles)}; the disturbance reaches the output with fewer lags than the effort does: "
+            f"expected filter_time in controller.disturbance_feedforward for {_lags(missing)}, found none"
+        )
+    late = max(path.dead_time - process.dead_time, 0.0)
+    return _with_lags(zeros, poles, -path.gain / gain, missing, asked.filter_time or 0.0, late)
 
 
-def step_sequence(system: Linear, step: float, count: int) -> Array:
-    """Return the unit step response at `count` samples, each just after what happens at it; shape (count,)."""
-    held = hold(system, step)
-    on_a_sample = split(system.dead_time, step).offset == 0.0
-    direct = np.array([0.0, system.d] if on_a_sample else [system.d, 0.0])
-    out = np.empty(count)
-    step_response(held.growth, held.old, held.new, held.c, direct, held.steps, out)
-    return out
+def left_out(controller: Controller, process: Linear, path: Linear | None) -> tuple[str, ...]:
+    """Say in sentences what the feedforwards of a controller cannot undo and leave out.
+
+    Parameters
+    ----------
+    process : Linear
+        Actuator and plant, nominal.
+    path : Linear or None
+        Of the measured disturbance.
+    """
+    asked, cancelled = controller.feedforward, controller.disturbance_feedforward
+    found: list[str] = []
+    if asked is not None and asked.kind == "inverse":
+        found += _said("The inverse of the plant leaves out", _not_inverted(process, process.dead_time))
+    if cancelled is not None and path is not None and cancelled.kind == "dynamic":
+        missing = process.dead_time - path.dead_time
+        found += _said("The feedforward of the disturbance leaves out", _not_inverted(process, max(missing, 0.0)))
+    return tuple(found)
+
+
+def _said(beginning: str, parts: Sequence[str]) -> Iterator[str]:
+    if parts:
+        yield f"{beginning} {' and '.join(parts)}: what they do to the output stays."
+
+
+def _not_inverted(process: Linear, dead_time: float) -> list[str]:
+    rest = [zero for zero in process.zeros if zero.real >= 0.0]
+    parts = [f"a dead time of {dead_time:.4g}"] if dead_time > 0.0 else []
+    if len(rest) == 1:
+        return [*parts, f"the zero at {rest[0].real:+.4g} in the right half plane"]
+    return [*parts, f"{len(rest)} zeros that are not in the left half plane"] if rest else parts
+
+
+def _static(system: Linear) -> Linear:
+    gain = system.static_gain()
+    if not np.isfinite(gain):
+        raise LoopError(
+            "a static disturbance feedforward needs a finite ratio of static gains: the path of the disturbance "
+            "integrates and the plant does not"
+        )
+    return constant(gain)
+
+
+def _with_lags(  # noqa: PLR0913, PLR0917 - the parts of a filter
+    zeros: Iterable[complex], poles: Iterable[complex], gain: float, missing: int, time: float, dead_time: float = 0.0
+) -> Linear:
+    """Return a filter with as many equal lags as it needs to be proper."""
+    lags = [-1.0 / time] * missing if missing else []
+    return from_zeros_poles(
+        zeros, (*poles, *lags), product((gain, *[1.0 / time] * missing)) if missing else gain, dead_time
+    )
 
 
 def _invertible(process: Linear) -> tuple[list[complex], float]:

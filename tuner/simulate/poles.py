@@ -6,7 +6,7 @@ from math import inf, pi
 
 import numpy as np
 
-from tuner.law.constants import notch
+from tuner.law.constants import lead_lag, notch
 from tuner.model.controller import Controller
 from tuner.simulate.delayed import delayed_poles
 from tuner.simulate.factors import Stack, folded, stack, to_s, to_x
@@ -234,8 +234,8 @@ def _continuous_matrix(loop: ContinuousLoop) -> Array:
 def _sampled_matrices(loops: Sequence[Loop]) -> Array:
     """Return what one sample adds to the state of each closed loop, shape (k, n, n): its matrix less the identity.
 
-    States: the chain, past efforts with the latest first, integral, derivative, measurement filter, notch; of the law
-    only those that have an effect. Loops with a shorter delay have efforts that nobody reads, at z = 0.
+    States: the chain, past efforts with the latest first, integral, derivative, measurement filter, lead-lag, notch;
+    of the law only those that have an effect. Loops with a shorter delay have efforts that nobody reads, at z = 0.
     """
     sampled = [loop for loop in loops if isinstance(loop, SampledLoop)]
     controller, order = sampled[0].controller, sampled[0].chain.order
@@ -267,7 +267,7 @@ def _sampled_matrices(loops: Sequence[Loop]) -> Array:
 
 def _law_states(controller: Controller) -> int:
     gains = controller.parallel()
-    single = (gains.ki, gains.kd, controller.measurement_filter)
+    single = (gains.ki, gains.kd, controller.measurement_filter, controller.lead_lag)
     return sum(1 for value in single if value) + (0 if controller.notch is None else 2)
 
 
@@ -302,6 +302,11 @@ class _LawRows:
             place, last = self._state()
             found = last + gain * (found - last)
             self.updates.append((place, found))
+        if controller.lead_lag is not None:
+            lead = lead_lag(step, controller.lead_lag.lead, controller.lead_lag.lag)
+            place, memory = self._state()
+            filtered, found = found, lead.gain * found + memory
+            self.updates.append((place, memory + lead.share * (lead.rest * filtered - memory)))
         if controller.notch is not None:
             section = notch(step, controller.notch.frequency, controller.notch.depth, controller.notch.width)
             (first, one), (second, two) = self._state(), self._state()

@@ -19,7 +19,7 @@ class StateSpace(NamedTuple):
 
 
 @dataclass(slots=True)
-class _Section:
+class Section:
     """One or two poles, with as many zeros at most."""
 
     poles: list[complex]
@@ -27,6 +27,7 @@ class _Section:
 
     @property
     def room(self) -> int:
+        """How many zeros it can still take."""
         return len(self.poles) - len(self.zeros)
 
 
@@ -45,7 +46,7 @@ def cascade(zeros: ComplexArray, poles: ComplexArray, gain: float) -> StateSpace
     a, b = np.zeros((order, order)), np.zeros(order)
     through, row = 1.0, np.zeros(order)  # the signal after the sections so far: row x + through u
     scale, place = gain, 0
-    for section in _paired(zeros, poles):
+    for section in paired(zeros, poles):
         part, section_gain = _realised(section, reference)
         here = slice(place, place + len(part.b))
         a[here] += np.outer(part.b, row)
@@ -65,10 +66,10 @@ def reference_frequency(zeros: ComplexArray, poles: ComplexArray) -> float:
     return math.exp(float(np.mean(np.log(sizes)))) if len(sizes) else 1.0
 
 
-def _paired(zeros: ComplexArray, poles: ComplexArray) -> list[_Section]:
+def paired(zeros: ComplexArray, poles: ComplexArray) -> list[Section]:
     """Gather the poles in sections, fast first, and give every zero to the nearest section that has room."""
-    sections = [_Section([pole], []) for pole in poles if pole.imag == 0.0]
-    sections += [_Section([pole, pole.conjugate()], []) for pole in poles if pole.imag > 0.0]
+    sections = [Section([pole], []) for pole in poles if pole.imag == 0.0]
+    sections += [Section([pole, pole.conjugate()], []) for pole in poles if pole.imag > 0.0]
     for zero in (z for z in zeros if z.imag > 0.0):
         roomy = [section for section in sections if section.room == 2]
         chosen = _nearest(zero, roomy) if roomy else _merged(zero, sections)
@@ -78,11 +79,11 @@ def _paired(zeros: ComplexArray, poles: ComplexArray) -> list[_Section]:
     return sorted(sections, key=lambda section: -abs(section.poles[0]))
 
 
-def _nearest(zero: complex, sections: list[_Section]) -> _Section:
+def _nearest(zero: complex, sections: list[Section]) -> Section:
     return min(sections, key=lambda section: abs(section.poles[0] - zero))
 
 
-def _merged(zero: complex, sections: list[_Section]) -> _Section:
+def _merged(zero: complex, sections: list[Section]) -> Section:
     """Make one section of the two real poles without zeros that are nearest to a pair of zeros."""
     free = [section for section in sections if len(section.poles) == 1 and section.room]
     first, second = sorted(free, key=lambda section: abs(section.poles[0] - zero))[:2]
@@ -91,7 +92,7 @@ def _merged(zero: complex, sections: list[_Section]) -> _Section:
     return first
 
 
-def _realised(section: _Section, reference: float) -> tuple[StateSpace, float]:
+def _realised(section: Section, reference: float) -> tuple[StateSpace, float]:
     """Return a state space of g * prod(s - z) / prod(s - p), and its g: states and output stay about as the input."""
     speeds = [abs(pole) or reference for pole in section.poles]
     gain = math.prod(speeds)

@@ -4,7 +4,7 @@ from math import sqrt, tan
 
 import numpy as np
 
-from tuner.model.controller import Controller, Notch
+from tuner.model.controller import Controller, LeadLag, Notch
 from tuner.simulate.factors import Factors
 from tuner.simulate.linear import Linear
 from tuner.simulate.traces import ComplexArray
@@ -78,6 +78,8 @@ def _measurement_blocks(controller: Controller) -> list[Factors]:
     blocks = []
     if controller.measurement_filter:
         blocks.append(_filter(controller.measurement_filter, controller.sample_time))
+    if controller.lead_lag is not None:
+        blocks.append(_lead_lag(controller.lead_lag, controller.sample_time))
     if controller.notch is not None:
         blocks.append(_notch(controller.notch, controller.sample_time))
     return blocks
@@ -89,6 +91,15 @@ def _filter(time: float, step: float) -> Factors:
         return Factors(NONE, np.array([-1.0 / time + 0j]), 1.0 / time, 0.0, 0.0)
     gain = step / (time + step)
     return Factors(np.array([-1.0 + 0j]), np.array([-gain + 0j]), gain, 0.0, step)
+
+
+def _lead_lag(block: LeadLag, step: float) -> Factors:
+    """Return (lead s + 1)/(lag s + 1), or its backward difference; see `law.constants.lead_lag`."""
+    if not step:
+        zeros = np.array([-1.0 / block.lead + 0j]) if block.lead else NONE
+        return Factors(zeros, np.array([-1.0 / block.lag + 0j]), (block.lead or 1.0) / block.lag, 0.0, 0.0)
+    over, under = block.lead + step, block.lag + step
+    return Factors(np.array([-step / over + 0j]), np.array([-step / under + 0j]), over / under, 0.0, step)
 
 
 def _notch(notch: Notch, step: float) -> Factors:

@@ -4,11 +4,15 @@ from collections.abc import Sequence
 
 import numpy as np
 
+from tuner.model.controller import Controller
 from tuner.model.family import Member
 from tuner.model.sheet import Sheet
+from tuner.simulate.algebra import series
 from tuner.simulate.batch import Runs, nominal, simulate
 from tuner.simulate.continuous import AGREEMENT, simulate_continuous
+from tuner.simulate.feedforward import left_out
 from tuner.simulate.grid import Grid, sampled_grid
+from tuner.simulate.linear import lag
 from tuner.simulate.traces import Array, Trace, Traces
 
 
@@ -24,11 +28,21 @@ def run(sheet: Sheet, members: Sequence[Member]) -> tuple[Traces, ...]:
     LoopError
         When a member cannot be computed, with the reason.
     """
+    notes = _left_out(sheet)
     if sheet.controller.sample_time:
         grid = sampled_grid(sheet.trial.duration, sheet.controller.sample_time, nominal(sheet).plant)
-        return _traces(sheet, simulate(sheet, members, grid), grid, ())
+        return _traces(sheet, simulate(sheet, members, grid), grid, notes)
     found = simulate_continuous(sheet, members)
-    return _traces(sheet, found.runs, found.grid, _notes(sheet, found.reached))
+    return _traces(sheet, found.runs, found.grid, (*notes, *_notes(sheet, found.reached)))
+
+
+def _left_out(sheet: Sheet) -> tuple[str, ...]:
+    """Say what the feedforwards cannot undo."""
+    controller = sheet.controller
+    if controller.feedforward is None and controller.disturbance_feedforward is None:
+        return ()
+    plant, path = nominal(sheet)
+    return left_out(controller, series(lag(sheet.actuator.lag), plant), path)
 
 
 def _traces(sheet: Sheet, runs: Runs, grid: Grid, notes: tuple[str, ...]) -> tuple[Traces, ...]:
@@ -54,11 +68,17 @@ def _held(u: Array, grid: Grid, delay: int) -> Array:
     return u if grid.steps == 1 else np.repeat(u, grid.steps, axis=-1)[..., : grid.points]
 
 
+def kicks(controller: Controller) -> bool:
+    """Return whether a reference step makes an impulse of the effort: an unfiltered derivative takes it as it is."""
+    derives = controller.feedback and bool(controller.parallel().kd * controller.c)
+    return derives and not (controller.sample_time or controller.filter_time or controller.reference_filter)
+
+
 def _notes(sheet: Sheet, reached: bool) -> tuple[str, ...]:
     """Say what the trial of a continuous controller cannot vouch for."""
     notes = []
     controller = sheet.controller
-    if controller.feedback and controller.parallel().kd and controller.c and not controller.filter_time:
+    if kicks(controller):
         notes.append(
             "The unfiltered derivative of the reference step is an impulse: the first effort shown stands for it "
             "and has no size of its own."

@@ -17,13 +17,14 @@ from tuner.deliver.target import Target
 from tuner.deliver.vectors import Row
 from tuner.errors import DeliveryError
 from tuner.judge.assessment import LimitResult
-from tuner.law.constants import NO_NOTCH, Constants, bake, notch
+from tuner.law.constants import NO_LEAD, NO_NOTCH, Constants, bake, lead_lag, notch
 from tuner.model.loop import Signal
 from tuner.model.measures import BY_NAME
 from tuner.model.parameters import GAIN_KEYS, PARAMETERS, Parameter
 from tuner.model.plant import Spread
 from tuner.model.sheet import Sheet
 from tuner.model.units import unit_in
+from tuner.simulate.feeding import Digital, Feeds
 
 _FILE = "controller.json"
 
@@ -40,8 +41,11 @@ def prove(folder: Path, work: Path, specification: Specification, recording: Rec
     made = _baked(content)
     if made != specification.constants or made != Constants(**_values(content["constants"])):
         raise DeliveryError(f"{_FILE}: its constants are not those of its gains")
-    gain = _values(content["parameters"]).get("controller.feedforward.gain")
-    reference = Reference(made, gain, feedback=content["feedback"])
+    feeds = Feeds(**{key: entry and _digital(entry) for key, entry in content["filters"].items()})
+    if feeds != specification.feeds:
+        raise DeliveryError(f"{_FILE}: its filters are not those of its sheet")
+    resting = content["resting_disturbance"]
+    reference = Reference(made, feeds, resting_disturbance=resting, feedback=content["feedback"])
     how = f"read back, its constants made anew from its gains, and the law run with them {ON_WHAT}"
     return (compared(_FILE, how, recording, reference.run(recording.samples)),)
 
@@ -65,6 +69,10 @@ def _content(specification: Specification) -> dict[str, object]:
         "parallel_gains": asdict(sheet.controller.parallel()),
         "parameters": dict(_parameters(sheet)),
         "constants": dict(_constants(specification)),
+        "filters": {key: one and asdict(one) for key, one in specification.feeds._asdict().items()},
+        "filters_in": "x = z - 1: gain times the distance from rest, late by the delay in samples, then in turn "
+        "(b0 x^2 + b1 x + b2)/(x^2 + a1 x + a2) for each section [b0, b1, b2, a1, a2]",
+        "resting_disturbance": specification.resting_disturbance,
         "verdict": assessment.verdict,
         "family_size": assessment.family_size,
         "limits": [_limit(specification, limit) for limit in assessment.limits],
@@ -128,6 +136,7 @@ def _row(row: Row) -> dict[str, object]:
         "manual_effort": row.sample.value,
         "reference": row.sample.reference,
         "measurement": row.sample.measurement,
+        "disturbance": row.sample.disturbance,
         "effort": row.outcome.effort,
     }
     return told | {flag.name.lower(): bool(row.outcome.flags & flag) for flag in Flags if flag.name}
@@ -135,6 +144,10 @@ def _row(row: Row) -> dict[str, object]:
 
 def _values(table: dict[str, dict[str, Any]]) -> dict[str, Any]:
     return {name: entry["value"] for name, entry in table.items()}
+
+
+def _digital(entry: dict[str, Any]) -> Digital:
+    return Digital(entry["gain"], tuple(map(tuple, entry["sections"])), entry["delay"])
 
 
 def _baked(content: dict[str, Any]) -> Constants:
@@ -146,6 +159,7 @@ def _baked(content: dict[str, Any]) -> Constants:
         for key in ("frequency", "depth", "width")
         if "controller.notch.frequency" in values
     ]
+    led = [values[f"controller.lead_lag.{key}"] for key in ("lead", "lag") if "controller.lead_lag.lag" in values]
     sample_time = content["sample_time"]
     return bake(
         sample_time=sample_time,
@@ -159,6 +173,7 @@ def _baked(content: dict[str, Any]) -> Constants:
         high=effort["high"],
         rate=effort["rate"],
         measurement_filter_time=values.get("controller.measurement_filter.time", 0.0),
+        lead_section=lead_lag(sample_time, *led) if led else NO_LEAD,
         notch_section=notch(sample_time, *cut) if cut else NO_NOTCH,
         resting_measurement=content["controlled"]["resting"],
         resting_effort=effort["resting"],
