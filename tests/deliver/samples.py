@@ -14,7 +14,7 @@ from tuner.deliver.plant import nominal_plant
 from tuner.deliver.proof import call, run
 from tuner.deliver.reference import Outcome
 from tuner.deliver.specification import Specification, specify
-from tuner.deliver.target import template
+from tuner.deliver.target import fill
 from tuner.deliver.targets import targets
 from tuner.judge.assessment import Assessment, Instability, LimitResult, MemberResult, Verdict
 from tuner.model.controller import Controller, DisturbanceFeedforward, Feedforward, LeadLag, Notch, ReferenceFilter
@@ -107,7 +107,8 @@ def written(language: str, folder: Path, made: Specification) -> Path:
 def run_c(folder: Path, compiler: str, flags: Sequence[str], record: Recording) -> tuple[Outcome, ...]:
     """Compile controller.c with a program around it, and return its answers."""
     harness, program = folder / "harness.c", folder / "harness"
-    harness.write_text(template("harness.c"), encoding="utf-8")
+    more = ", given[4]" if "double disturbance" in (folder / "controller.h").read_text(encoding="utf-8") else ""
+    harness.write_text(fill("harness.c", more=more), encoding="utf-8")
     made = call([compiler, *flags, folder / "controller.c", harness, "-o", program])
     assert made.returncode == 0, made.stderr
     return run([program], record, folder)
@@ -153,8 +154,24 @@ def controllers() -> st.SearchStrategy[Sheet]:
             windup_time=st.none() | st.floats(0.5, 50.0),
             action=st.sampled_from(["reverse", "direct"]),
             feedback=st.booleans(),
-            feedforward=st.none() | st.builds(Feedforward, st.just("static"), gain=st.floats(-3.0, 3.0)),
+            feedforward=st.none()
+            | st.builds(Feedforward, st.just("static"), gain=st.floats(-3.0, 3.0))
+            | st.builds(Feedforward, st.just("inverse"), filter_time=st.floats(0.1, 5.0)),
+            reference_filter=st.none() | st.builds(ReferenceFilter, st.floats(0.1, 5.0), st.integers(1, 4)),
+            disturbance_feedforward=st.none() | _disturbance_feedforwards(),
+            lead_lag=st.none() | st.builds(LeadLag, st.floats(0.0, 3.0), st.floats(0.05, 3.0)),
             measurement_filter=st.just(0.0) | st.floats(0.1, 3.0),
             notch=st.none() | st.builds(Notch, st.floats(0.1, 3.0), st.floats(0.0, 1.0), st.floats(0.1, 3.0)),
         ),
+    )
+
+
+def _disturbance_feedforwards() -> st.SearchStrategy[DisturbanceFeedforward]:
+    """Draw paths of a measured disturbance: slow, fast and late ones."""
+    return st.builds(
+        DisturbanceFeedforward,
+        st.sampled_from(["1.5/(3 s + 1)", "0.4 exp(-4.2 s)/(7 s + 1)^3", "2 exp(-1.3 s)"]),
+        kind=st.sampled_from(["static", "dynamic"]),
+        filter_time=st.floats(0.2, 3.0),
+        resting=st.floats(-10.0, 10.0),
     )

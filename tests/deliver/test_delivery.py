@@ -9,7 +9,7 @@ from pathlib import Path
 
 import pytest
 
-from tests.deliver.samples import BARE, FULL, INVERSE, MEASURED, assessment
+from tests.deliver.samples import BARE, DYNAMIC, FULL, assessment
 from tuner.deliver import delivery
 from tuner.deliver.delivery import deliver
 from tuner.deliver.proof import call
@@ -105,18 +105,11 @@ def test_continuous_controller_is_refused(tmp_path: Path) -> None:
     assert names(tmp_path) == []
 
 
-def test_feedforward_with_a_filter_of_its_own_is_refused(tmp_path: Path) -> None:
-    """What the delivered law does not hold is not delivered as if it did."""
-    inverse = replace(BARE, controller=replace(BARE.controller, feedforward=INVERSE))
-    measured = replace(BARE, controller=replace(BARE.controller, disturbance_feedforward=MEASURED))
-    assert refusal(inverse, tmp_path / "to") == (
-        "controller.feedforward: an inverse feedforward cannot be delivered yet: it is a filter made from the plant, "
-        "which the delivered law does not hold; only a static one can"
-    )
-    assert refusal(measured, tmp_path / "to") == (
-        "controller.disturbance_feedforward: it cannot be delivered yet: "
-        "the delivered law has no input for the measured disturbance"
-    )
+def test_every_filter_is_delivered_and_proved(tmp_path: Path) -> None:
+    """Inverse, measured disturbance and filtered reference: every file gives every bit of the simulation."""
+    done = deliver(DYNAMIC, assessment(), tmp_path / "to")
+    assert {proof.worst_difference for proof in done.proof if proof.proved} == {0.0}
+    assert {proof.file for proof in done.proof if proof.proved} >= {"controller.json", "controller.py"}
 
 
 def test_verdict_that_is_not_met_is_refused(tmp_path: Path) -> None:

@@ -4,33 +4,37 @@ from dataclasses import replace
 
 import pytest
 
-from tests.deliver.samples import BARE, FULL, INVERSE, MEASURED, OPEN, assessment
-from tuner.deliver.refusals import refuse_controller, refuse_languages, refuse_verdict
+from tests.deliver.samples import BARE, DYNAMIC, FULL, OPEN, assessment
+from tuner.deliver.refusals import refuse_controller, refuse_feeds, refuse_languages, refuse_verdict
 from tuner.errors import DeliveryError
 from tuner.judge.assessment import LimitResult
 from tuner.model.controller import Controller
+from tuner.simulate.feeding import Digital, Feeds
 
 MISSED = LimitResult("overshoot", 8.0, 9.0, "nominal", met=False)
 
 
-@pytest.mark.parametrize("controller", [FULL.controller, BARE.controller, OPEN.controller])
+@pytest.mark.parametrize("controller", [FULL.controller, BARE.controller, OPEN.controller, DYNAMIC.controller])
 def test_what_the_law_holds_is_accepted(controller: Controller) -> None:
-    """Static feedforward, filters, notch, and a loop without feedback."""
+    """Feedforward of every kind, filters, notch, and a loop without feedback."""
     refuse_controller(controller)
 
 
-@pytest.mark.parametrize(
-    "controller",
-    [
-        replace(BARE.controller, sample_time=0.0),
-        replace(BARE.controller, feedforward=INVERSE),
-        replace(BARE.controller, disturbance_feedforward=MEASURED),
-    ],
-)
-def test_what_the_law_does_not_hold_is_refused(controller: Controller) -> None:
-    """No samples, or a filter of the plant beside the law."""
-    with pytest.raises(DeliveryError):
-        refuse_controller(controller)
+def test_a_continuous_controller_is_refused() -> None:
+    """It has no samples."""
+    with pytest.raises(DeliveryError, match="a continuous controller has no samples: give a sample_time"):
+        refuse_controller(replace(BARE.controller, sample_time=0.0))
+
+
+def test_a_disturbance_that_comes_too_late_is_refused() -> None:
+    """A target has room for so many past values and no more."""
+    refuse_feeds(Feeds(disturbance=Digital(1.0, delay=10_000)))
+    with pytest.raises(DeliveryError) as caught:
+        refuse_feeds(Feeds(disturbance=Digital(1.0, delay=12_345)))
+    assert str(caught.value) == (
+        "controller.disturbance_feedforward: its dead time is 12,345 samples long, which the controller would have to "
+        "remember: expected at most 10,000; give a longer sample_time"
+    )
 
 
 def test_verdict_counts_unless_it_is_accepted() -> None:

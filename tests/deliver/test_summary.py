@@ -6,7 +6,7 @@ import pytest
 from hypothesis import given
 from hypothesis import strategies as st
 
-from tests.deliver.samples import BARE, FULL, OPEN, assessment, specification
+from tests.deliver.samples import BARE, DYNAMIC, FULL, OPEN, assessment, specification
 from tuner.deliver.specification import CAUTIONS, digest, specify
 from tuner.deliver.summary import banner, head, plain, printable, unmet
 from tuner.judge.assessment import Instability, LimitResult
@@ -27,6 +27,7 @@ def test_head_says_what_the_controller_is() -> None:
         "Gains, parallel form: kp 3.0 %/degC, ki 0.3 %/(degC s), kd 2.0 % s/degC",
         "Further: filter_time 0.6 s, b 0.7, c 0.2, windup_time 12.0 s, action reverse",
         "Measurement filter: 0.8 s",
+        "Lead-lag: lead 0.6 s, lag 0.2 s",
         "Notch: 2.0 rad/s, depth 0.2, width 0.9",
         "Static feedforward: 0.4 times the reference's distance from rest",
         "",
@@ -64,6 +65,15 @@ def test_absent_ends_and_times_are_said_to_be_absent() -> None:
     lines = head(specification(BARE))
     assert "Effort: unnamed, any value, at rest 0.0" in lines
     assert "Further: filter_time 0.0 s, b 1.0, c 0.0, windup_time none, action reverse" in lines
+
+
+def test_filters_and_feedforwards_are_told() -> None:
+    """What is inverted, what is measured and where it rests, and how the reference is smoothed."""
+    lines = head(specification(DYNAMIC))
+    assert "Reference filter: 3 lags of 1.5 s" in lines
+    assert "Inverse feedforward of the nominal plant, filter time 1.0 s" in lines
+    told = "Dynamic feedforward of Feed, at rest 4.0 kg/s; its path to the output: 0.4 exp(-5.2 s)/(7 s + 1)"
+    assert told in lines
 
 
 def test_feedback_that_is_off_is_told() -> None:

@@ -6,7 +6,7 @@ import numpy as np
 import pytest
 from hypothesis import given, settings
 
-from tests.deliver.samples import BARE, FULL, OPEN, assessment, controllers, specification
+from tests.deliver.samples import BARE, DYNAMIC, FULL, OPEN, assessment, controllers, specification
 from tuner.deliver.reference import Flags
 from tuner.deliver.specification import specify
 from tuner.deliver.trial import trial
@@ -22,7 +22,9 @@ RUNAWAY = replace(
 )
 
 
-@pytest.mark.parametrize("sheet", [FULL, BARE, OPEN, COARSE], ids=["full", "bare", "open", "coarse"])
+@pytest.mark.parametrize(
+    "sheet", [FULL, BARE, OPEN, COARSE, DYNAMIC], ids=["full", "bare", "open", "coarse", "dynamic"]
+)
 def test_recorded_efforts_are_those_of_the_trial(sheet: Sheet) -> None:
     """The efforts and limits are, bit for bit, those of the traces that everybody is shown."""
     traces = run(sheet, (Member("nominal", nominal_values(sheet)),))[0]
@@ -36,7 +38,9 @@ def test_recorded_efforts_are_those_of_the_trial(sheet: Sheet) -> None:
         assert [bool(outcome.flags & Flags.LIMITED) for outcome in outcomes] == list(trace.limited)
 
 
-@pytest.mark.parametrize("sheet", [FULL, BARE, OPEN, COARSE], ids=["full", "bare", "open", "coarse"])
+@pytest.mark.parametrize(
+    "sheet", [FULL, BARE, OPEN, COARSE, DYNAMIC], ids=["full", "bare", "open", "coarse", "dynamic"]
+)
 def test_the_law_repeats_the_trial_bit_for_bit(sheet: Sheet) -> None:
     """Plain Python on what the controller read gives what the compiled simulation gave."""
     recorded = trial(specification(sheet))

@@ -7,7 +7,7 @@ import pytest
 from hypothesis import given, settings
 
 from tests.deliver.branches import evaluate, every_way
-from tests.deliver.samples import BARE, FULL, OPEN, controllers, specification
+from tests.deliver.samples import BARE, DYNAMIC, FULL, OPEN, controllers, specification
 from tuner.deliver.reference import Before, Flags, Sample
 from tuner.deliver.vectors import Spoiled, spoil
 from tuner.law import pid
@@ -61,12 +61,13 @@ def test_rows_stay_finite_for_absurd_gains(gain: float) -> None:
     assert all(isfinite(number) for row in rows for number in (*row.sample, row.outcome.effort))
 
 
-@pytest.mark.parametrize("sheet", [FULL, BARE, OPEN])
+@pytest.mark.parametrize("sheet", [FULL, BARE, OPEN, DYNAMIC])
 def test_rows_hold_every_switch_and_every_fault(sheet: Sheet) -> None:
     """Manual, automatic, reset, and each kind of unusable number, with the flag raised right then."""
     rows = specification(sheet).rows
     assert {row.sample.before for row in rows} == set(Before)
-    assert {row.spoiled for row in rows} == set(Spoiled)
+    unused = set() if sheet is DYNAMIC else {Spoiled.DISTURBANCE_NAN}
+    assert {row.spoiled for row in rows} == set(Spoiled) - unused
     assert all(bool(row.outcome.flags & Flags.FAULT) == (row.spoiled != Spoiled.NOTHING) for row in rows)
     assert any(row.outcome.flags & Flags.MANUAL for row in rows)
 
@@ -78,4 +79,5 @@ def test_what_is_spoilt_is_not_finite() -> None:
     assert isinf(spoil(sample, Spoiled.REFERENCE_INFINITE).reference)
     assert spoil(sample, Spoiled.MEASUREMENT_MINUS_INFINITE).measurement == -float("inf")
     assert isnan(spoil(sample, Spoiled.VALUE_NAN).value)
+    assert isnan(spoil(sample, Spoiled.DISTURBANCE_NAN).disturbance)
     assert spoil(sample, Spoiled.NOTHING) == sample

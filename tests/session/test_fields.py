@@ -4,16 +4,23 @@ from dataclasses import replace
 
 from tests.session.sheets import wash_bath
 from tuner.files.sheet import parse, render
-from tuner.model.controller import Feedforward
+from tuner.model.controller import DisturbanceFeedforward, Feedforward
 from tuner.model.measures import BY_NAME
 from tuner.model.parameters import GAIN_KEYS, PARAMETERS, find
 from tuner.session.fields import (
+    first_lead_lag,
+    first_measurement_filter,
     first_notch,
+    first_reference_filter,
     unit_of,
     value_at,
+    with_disturbance_feedforward,
     with_feedforward,
+    with_lead_lag,
     with_limit,
+    with_measurement_filter,
     with_notch,
+    with_reference_filter,
     with_value_at,
     without_limit,
 )
@@ -24,9 +31,9 @@ HELD = [p.path for p in PARAMETERS if p.section and p.name not in {key for keys 
 def test_every_key_of_the_table_is_held() -> None:
     """Each key of the table, but the gains, is found in the dataclasses and can be put back."""
     sheet = with_feedforward(with_notch(wash_bath(), first_notch(wash_bath())), "static")
+    sheet = with_reference_filter(with_lead_lag(sheet, first_lead_lag(sheet)), first_reference_filter(sheet))
+    sheet = with_disturbance_feedforward(sheet, "1/(s + 1)")
     for path in HELD:
-        if path.startswith("controller.disturbance_feedforward"):
-            continue
         assert with_value_at(sheet, path, value_at(sheet, path)) == sheet
 
 
@@ -42,11 +49,14 @@ def test_the_measurement_filter_is_held_as_a_number() -> None:
 
 
 def test_what_blocks_begin_with_is_accepted() -> None:
-    """A new notch and new feedforward of both kinds make a sheet whose file is read."""
+    """New blocks of every kind make a sheet whose file is read."""
     sheet = wash_bath()
     for changed in (
         with_notch(sheet, first_notch(sheet)),
         *(with_feedforward(sheet, k) for k in ("static", "inverse")),
+        with_lead_lag(sheet, first_lead_lag(sheet)),
+        with_reference_filter(sheet, first_reference_filter(sheet)),
+        with_measurement_filter(sheet, first_measurement_filter(sheet)),
     ):
         assert parse(render(changed)) == changed
     assert with_feedforward(with_feedforward(sheet, "static"), "none") == sheet
@@ -67,3 +77,12 @@ def test_units_are_the_loops() -> None:
     assert unit_of(BY_NAME["iae_reference"], sheet) == "degC s"
     bare = replace(sheet, loop=replace(sheet.loop, controlled=replace(sheet.loop.controlled, unit="")))
     assert unit_of(find("controller.kp"), bare) == "%"
+
+
+def test_another_formula_keeps_what_else_is_known_of_the_disturbance() -> None:
+    """Name, unit and kind stay; an empty formula takes the block out."""
+    first = with_disturbance_feedforward(wash_bath(), "1/(s + 1)")
+    named = with_value_at(first, "controller.disturbance_feedforward.name", "Inflow")
+    path = with_disturbance_feedforward(named, "2/(s + 1)").controller.disturbance_feedforward
+    assert path == DisturbanceFeedforward("2/(s + 1)", name="Inflow")
+    assert with_disturbance_feedforward(named, " ").controller.disturbance_feedforward is None

@@ -3,6 +3,7 @@
 from collections import deque
 from collections.abc import Iterable
 from enum import IntEnum, IntFlag
+from math import isfinite
 from typing import NamedTuple
 
 from tuner.law import pid
@@ -73,9 +74,17 @@ class Filter:
         self._memories = [(0.0, 0.0)] * len(self._digital.sections)
 
     def take(self, value: float) -> float:
-        """Take one value in engineering units and return what comes out, as a deviation."""
-        self._late.append(value)
-        passed = scaled(self._late.popleft(), self._resting, self._digital.gain)
+        """Take one value in engineering units and return what comes out, as a deviation.
+
+        A value that is not finite spoils what comes out right then; where it would come late, the last good one does.
+        """
+        if not self._digital.delay:
+            return self._through(value)
+        self._late.append(value if isfinite(value) else self._late[-1])
+        return self._through(self._late.popleft()) + (value - value)
+
+    def _through(self, value: float) -> float:
+        passed = scaled(value, self._resting, self._digital.gain)
         for place, constants in enumerate(self._digital.sections):
             passed, *memories = section(passed, *self._memories[place], *constants)
             self._memories[place] = (memories[0], memories[1])

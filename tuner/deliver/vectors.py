@@ -83,7 +83,7 @@ def span(signal: Signal, step: float) -> float:
 
 
 def rows(sheet: Sheet, constants: Constants, reference: Reference) -> tuple[Row, ...]:
-    """Return two hundred rows, with the answers of the reference."""
+    """Return two hundred rows, a few more where a disturbance is measured, with the answers of the reference."""
     found: list[Row] = []
     measured = sheet.controller.disturbance_feedforward
     resting = None if measured is None else measured.resting

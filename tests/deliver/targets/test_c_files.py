@@ -8,13 +8,30 @@ from pathlib import Path
 import pytest
 from hypothesis import HealthCheck, given, settings
 
-from tests.deliver.samples import BARE, FULL, OPEN, STRICT, clang, controllers, recording, run_c, specification, written
+from tests.deliver.samples import (
+    BARE,
+    DYNAMIC,
+    FULL,
+    OPEN,
+    STRICT,
+    clang,
+    controllers,
+    recording,
+    run_c,
+    specification,
+    written,
+)
 from tuner.deliver.proof import call, compared
 from tuner.deliver.targets import c_files
 from tuner.model.sheet import Sheet
 
 SELFTEST = "-DCONTROLLER_SELFTEST_MAIN"
-SHEETS = [pytest.param(FULL, id="full"), pytest.param(BARE, id="bare"), pytest.param(OPEN, id="open")]
+SHEETS = [
+    pytest.param(FULL, id="full"),
+    pytest.param(BARE, id="bare"),
+    pytest.param(OPEN, id="open"),
+    pytest.param(DYNAMIC, id="dynamic"),
+]
 
 needs_gcc = pytest.mark.skipif(shutil.which("gcc") is None, reason="there is no gcc on this machine")
 needs_clang = pytest.mark.skipif(clang() is None, reason="there is no clang on this machine")

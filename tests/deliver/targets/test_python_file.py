@@ -11,13 +11,18 @@ from typing import Any
 import pytest
 from hypothesis import HealthCheck, given, settings
 
-from tests.deliver.samples import BARE, FULL, OPEN, controllers, recording, specification, written
+from tests.deliver.samples import BARE, DYNAMIC, FULL, OPEN, controllers, recording, specification, written
 from tuner.deliver.proof import call
 from tuner.deliver.reference import Before
 from tuner.deliver.targets import python_file
 from tuner.model.sheet import Sheet
 
-SHEETS = [pytest.param(FULL, id="full"), pytest.param(BARE, id="bare"), pytest.param(OPEN, id="open")]
+SHEETS = [
+    pytest.param(FULL, id="full"),
+    pytest.param(BARE, id="bare"),
+    pytest.param(OPEN, id="open"),
+    pytest.param(DYNAMIC, id="dynamic"),
+]
 
 
 def text_of(sheet: Sheet = FULL) -> str:
@@ -43,10 +48,11 @@ def test_file_imports_nothing_and_is_old_python(sheet: Sheet) -> None:
 
 @pytest.mark.parametrize("sheet", SHEETS)
 def test_self_test_runs_by_itself(tmp_path: Path, sheet: Sheet) -> None:
-    """A bare interpreter runs the two hundred rows and says so."""
+    """A bare interpreter runs all rows and says so."""
     written("python", tmp_path, specification(sheet))
     done = call([sys.executable, "-I", "-S", tmp_path / "controller.py"])
-    assert (done.returncode, done.stdout, done.stderr) == (0, "selftest n=200 bad=0\n", "")
+    count = len(specification(sheet).rows)
+    assert (done.returncode, done.stdout, done.stderr) == (0, f"selftest n={count} bad=0\n", "")
 
 
 @pytest.mark.parametrize(
@@ -87,7 +93,8 @@ def test_every_combination_is_the_same_bits(sheet: Sheet) -> None:
             controller.set_manual(sample.value)
         elif sample.before != Before.NOTHING:
             (controller.set_auto if sample.before == Before.AUTO else controller.reset)()
-        effort = controller.step(sample.reference, sample.measurement)
+        measured = (sample.disturbance,) if sheet.controller.disturbance_feedforward else ()
+        effort = controller.step(sample.reference, sample.measurement, *measured)
         found.append((effort, controller.limited + 2 * controller.fault + 4 * controller.manual))
     assert found == [tuple(outcome) for outcome in record.outcomes]
 

@@ -168,6 +168,7 @@ class _Dialect:
 
 
 _MORE = ", double disturbance"
+_SPOILT = "value + (given - given)"
 _SPOIL = """        if (row->spoilt == 5)
         {
             disturbance = spoilt_number(row->spoilt);
@@ -199,7 +200,7 @@ def _stage(stage: Stage, specification: Specification) -> str:
             else []
         ),
         *body(stage, _Dialect()),
-        "    return value;",
+        f"    return {_SPOILT if stage.digital.delay else 'value'};",
         "}",
         "",
         "",
@@ -213,8 +214,10 @@ def _taken_late(delay: int) -> list[str]:
         "static double taken_late(controller_state *state, double given)",
         "{",
         "    const double oldest = state->late[state->place];",
+        f"    const int last = (state->place > 0) ? state->place - 1 : {delay - 1};",
         "",
-        "    state->late[state->place] = given;",
+        "    /* What is not finite spoils this sample; late comes the last good value in its place. */",
+        "    state->late[state->place] = (given - given == 0.0) ? given : state->late[last];",
         f"    state->place = (state->place + 1 < {delay}) ? state->place + 1 : 0;",
         "    return oldest;",
         "}",

@@ -137,7 +137,9 @@ def _stage(stage: Stage) -> str:
     lines = ["", f"    def _{stage.name}(self, given):", f'{_INDENT}"""{stage.sentence}."""']
     if stage.digital.delay:
         lines += [
-            f"{_INDENT}self._late.append(given)",
+            f"{_INDENT}# What is not finite spoils this sample; late comes the last good value in its place.",
+            f"{_INDENT}spoilt = given - given",
+            f"{_INDENT}self._late.append(given if spoilt == 0.0 else self._late[-1])",
             f"{_INDENT}given = self._late.pop(0)",
         ]
     resting = "resting_measurement" if stage.given == "reference" else "resting_disturbance"
@@ -145,7 +147,7 @@ def _stage(stage: Stage) -> str:
         f"{_INDENT}{resting} = self._{resting}",
         f"{_INDENT}value = {start(stage, _Dialect(), 'given')}",
         *body(stage, _Dialect()),
-        f"{_INDENT}return value",
+        f"{_INDENT}return value{' + spoilt' if stage.digital.delay else ''}",
         "",
     ]
     return "\n".join(lines)
