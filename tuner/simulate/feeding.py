@@ -7,7 +7,7 @@ The simulation and every delivered file run the same sections.
 from collections.abc import Sequence
 from dataclasses import dataclass
 from functools import lru_cache
-from math import isfinite
+from math import isclose, isfinite
 from typing import NamedTuple
 
 import numpy as np
@@ -45,10 +45,43 @@ class Digital:
 
     def run(self, value: Array, resting: float) -> Array:
         """Return what becomes of a signal in engineering units, as a deviation; shape of `value`."""
+        return Running(self, resting).take(value)
+
+
+class Running:
+    """A filter that goes on from where it is.
+
+    Parameters
+    ----------
+    digital : Digital
+    resting : float
+        Value of what comes in at the resting point, engineering units.
+    settled : float or None
+        Value at which it has settled when it begins; the resting one unless given.
+    """
+
+    def __init__(self, digital: Digital, resting: float, settled: float | None = None) -> None:
+        begin = resting if settled is None else settled
+        self._gain, self._resting = digital.gain, resting
+        self._sections = np.array(digital.sections, dtype=float).reshape(-1, 5)
+        self._late, self._place = np.full(digital.delay, float(begin)), np.zeros(1, dtype=np.int64)
+        self._memories = np.array([_settled(one, digital.gain * (begin - resting)) for one in digital.sections])
+        self._memories = self._memories.reshape(-1, 2)
+
+    def take(self, value: Array) -> Array:
+        """Return what becomes of further values in engineering units, as deviations; shape of `value`."""
         out = np.empty(len(value))
-        rows = np.array(self.sections, dtype=float).reshape(-1, 5)
-        filtered(np.ascontiguousarray(value, dtype=float), resting, self.gain, rows, self.delay, out)
+        given = np.ascontiguousarray(value, dtype=float)
+        filtered(given, self._resting, self._gain, self._sections, self._memories, self._late, self._place, out)
         return out
+
+
+def _settled(section: tuple[float, ...], value: float) -> tuple[float, float]:
+    """Return the memories of a section that has settled at a value; of one that never settles, none."""
+    b0, b1, b2, a1, a2 = section
+    if not isclose(b2, a2, rel_tol=1e-9) or not (a2 or isclose(b1, a1, rel_tol=1e-9)):
+        return 0.0, 0.0
+    return (1.0 - b0) * value, (a1 - b1) * value if a2 else 0.0
 
 
 class Feeds(NamedTuple):
