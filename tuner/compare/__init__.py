@@ -1,0 +1,1 @@
+"""Structures of control beside each other, and tunings beside each other, over the whole family."""
