@@ -7,7 +7,7 @@ from dataclasses import dataclass
 
 ROOMS = (
     "errors", "places", "model", "law", "kernels", "files", "simulate", "measure", "judge", "assess", "footing",
-    "identify", "suggest", "deliver", "rehearse", "session", "cli", "window",
+    "compare", "identify", "suggest", "deliver", "rehearse", "session", "cli", "window",
 )  # fmt: skip
 """From the top down; a room imports only from rooms above it."""
 

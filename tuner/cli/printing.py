@@ -28,7 +28,7 @@ def show(sheet: Sheet, assessment: Assessment, file: str, out: Console) -> None:
     """Print an assessment."""
     out.print(Text(f"{assessment.title}  ({file})" if file else assessment.title, style="bold"))
     out.print(Text(verdict_sentence(assessment), style=STYLES[assessment.verdict]))
-    _print_plain(_table(sheet, assessment), out)
+    print_plain(_table(sheet, assessment), out)
     for note in assessment.notes:
         out.print(Text(f"- {note}"))
     out.print()
@@ -83,7 +83,7 @@ def _measure_rows(sheet: Sheet, assessment: Assessment) -> Iterator[tuple[str | 
             yield measure.label, quantity(worst.value, unit_of(measure.name, sheet.loop)), worst.plant
 
 
-def _print_plain(table: Table, out: Console) -> None:
+def print_plain(table: Table, out: Console) -> None:
     """Print a table without the blanks that would fill its last column."""
     for line in out.render_lines(table, pad=False):
         text = Text.assemble(*((segment.text, segment.style or "") for segment in line))

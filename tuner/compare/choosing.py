@@ -32,8 +32,9 @@ def choose_feedforward(sheet: Sheet) -> Chosen:
     if own is not None:
         return Chosen(own, f"Feedforward as in the sheet: {in_words(own, sheet)}.")
     process = _process(sheet)
+    chosen, why = None, ""
     try:
-        chosen, why = _inverse(sheet, process), ""
+        chosen = _inverse(sheet, process)
     except LoopError as refusal:
         chosen, why = _static(process), str(refusal)
     if chosen is None:

@@ -111,7 +111,7 @@ def _value(quantity: Quantity, member: MemberResult) -> float | None:
 
 def _reason(quantity: Quantity, member: MemberResult) -> str:
     if not member.stable:
-        return "the loop is unstable"
+        return "it is unstable"
     if quantity.name == FINAL_DEVIATION:
         return member.reasons.get("disturbance_peak", "there is no disturbance step")
     return member.reasons.get(quantity.name, "it does not exist")

@@ -31,7 +31,7 @@ RUNS_AWAY = (
     "alone is pointless."
 )
 NO_FEEDBACK = "There is no feedback to compare with: all gains of the controller are 0."
-NOTHING_MEASURED = "The sheet has no measured disturbance: without feedback a disturbance is left as it is."
+NOTHING_MEASURED = "Nothing acts against a measured disturbance: without feedback a disturbance is left as it is."
 
 _CAUTIONS: dict[Alone, str] = {"stable": "", "integrating": INTEGRATES, "unstable": RUNS_AWAY}
 _SMALL = 1e-9
@@ -71,7 +71,7 @@ def structures(sheet: Sheet) -> tuple[Structure, ...]:
     """Return the same loop with feedforward alone, with feedback alone, and with both.
 
     A sheet without feedforward of the reference is given one, see `choose_feedforward`. Feedback alone has no
-    feedforward of either kind.
+    feedforward of either kind, and meets a measured disturbance on the same path.
 
     Raises
     ------
@@ -97,7 +97,7 @@ def plant_alone(sheet: Sheet) -> Alone:
 
 
 def _feedforward_alone(sheet: Sheet, chosen: Chosen, alone: Alone) -> Structure:
-    measured = sheet.controller.disturbance_feedforward is not None
+    measured = _measures(sheet)
     needs = (MODEL, MEASURED_DISTURBANCE) if measured else (MODEL,)
     caution = [_CAUTIONS[alone]] if alone != "stable" else []
     remarks = (chosen.sentence, *caution, *([] if measured else [NOTHING_MEASURED]))
@@ -111,12 +111,14 @@ def _feedforward_alone(sheet: Sheet, chosen: Chosen, alone: Alone) -> Structure:
 def _feedback_alone(sheet: Sheet, alone: Alone) -> Structure:
     if not _has_gains(sheet):
         return _refused("feedback", (SENSOR,), alone, NO_FEEDBACK)
-    controller = replace(sheet.controller, feedback=True, feedforward=None, disturbance_feedforward=None)
+    measured = sheet.controller.disturbance_feedforward
+    unopposed = replace(measured, kind="none") if measured else None
+    controller = replace(sheet.controller, feedback=True, feedforward=None, disturbance_feedforward=unopposed)
     return Structure("feedback", NAMES["feedback"], replace(sheet, controller=controller), (SENSOR,), alone)
 
 
 def _both(sheet: Sheet, chosen: Chosen, alone: Alone) -> Structure:
-    measured = sheet.controller.disturbance_feedforward is not None
+    measured = _measures(sheet)
     needs = (SENSOR, MODEL, MEASURED_DISTURBANCE) if measured else (SENSOR, MODEL)
     if chosen.feedforward is None:
         return _refused("both", needs, alone, chosen.sentence)
@@ -129,6 +131,11 @@ def _both(sheet: Sheet, chosen: Chosen, alone: Alone) -> Structure:
 
 def _refused(kind: Kind, needs: tuple[str, ...], alone: Alone, why: str) -> Structure:
     return Structure(kind, NAMES[kind], None, needs, alone, refusal=why)
+
+
+def _measures(sheet: Sheet) -> bool:
+    measured = sheet.controller.disturbance_feedforward
+    return measured is not None and measured.acts
 
 
 def _has_gains(sheet: Sheet) -> bool:

@@ -167,7 +167,7 @@ def _feedforwards(specification: Specification) -> list[str]:
         lines.append(f"Static feedforward: {forward.gain or 0.0!r} times the reference's distance from rest")
     elif forward is not None:
         lines.append(f"Inverse feedforward of the nominal plant, filter time {forward.filter_time!r} {time}")
-    if against is not None:
+    if against is not None and against.acts:
         name = against.name or "the measured disturbance"
         symbol = f" {against.unit}" if against.unit else ""
         lines.append(

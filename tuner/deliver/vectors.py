@@ -86,7 +86,7 @@ def rows(sheet: Sheet, constants: Constants, reference: Reference) -> tuple[Row,
     """Return two hundred rows, a few more where a disturbance is measured, with the answers of the reference."""
     found: list[Row] = []
     measured = sheet.controller.disturbance_feedforward
-    resting = None if measured is None else measured.resting
+    resting = measured.resting if measured and measured.acts else None
     for sample, spoiled in _Scenario(scales(sheet, constants), constants, resting).samples():
         found.append(Row(sample, spoiled, reference.take(spoil(sample, spoiled))))
     return tuple(found)

@@ -24,12 +24,12 @@ def as_json(assessment: Assessment, *, traces: bool = False) -> Json:
         "verdict": assessment.verdict,
         "family_size": assessment.family_size,
         "nominal": {"stable": nominal.stable, **_numbers(nominal.measures)},
-        "worst": {name: {"value": _number(w.value), "plant": w.plant} for name, w in assessment.worst.items()},
+        "worst": {name: {"value": number(w.value), "plant": w.plant} for name, w in assessment.worst.items()},
         "limits": [
             {
                 "measure": limit.measure,
-                "limit": _number(limit.limit),
-                "value": _number(limit.value),
+                "limit": number(limit.limit),
+                "value": number(limit.value),
                 "plant": limit.plant,
                 "met": limit.met,
             }
@@ -52,16 +52,17 @@ def _instability(assessment: Assessment) -> Json:
         return {}
     return {
         "plant": runaway.plant,
-        "growth": _number(runaway.growth),
-        "doubling_time": _number(runaway.doubling_time),
-        "frequency": _number(runaway.frequency),
+        "growth": number(runaway.growth),
+        "doubling_time": number(runaway.doubling_time),
+        "frequency": number(runaway.frequency),
         "gain": runaway.gain,
-        "edge": _number(runaway.edge),
+        "edge": number(runaway.edge),
         "sentence": runaway.sentence,
     }
 
 
-def _number(value: float | None) -> float | str | None:
+def number(value: float | None) -> float | str | None:
+    """Return a number as JSON can say it: infinity as "inf" or "-inf", what is none as null."""
     if value is None or isnan(value):
         return None
     if isfinite(value):
@@ -70,7 +71,7 @@ def _number(value: float | None) -> float | str | None:
 
 
 def _numbers(values: Mapping[str, float | None]) -> Json:
-    return {name: _number(value) for name, value in values.items()}
+    return {name: number(value) for name, value in values.items()}
 
 
 def _pairs(poles: ComplexArray) -> list[list[float]]:
@@ -85,4 +86,4 @@ def _trace(trace: Trace) -> Json:
 
 def _list(values: Array) -> list[float | str | None]:
     plain: list[float | str | None] = values.tolist()
-    return plain if all(isfinite(value) for value in values.tolist()) else [_number(value) for value in values.tolist()]
+    return plain if all(isfinite(value) for value in values.tolist()) else [number(value) for value in values.tolist()]

@@ -67,7 +67,8 @@ class DisturbanceFeedforward:
     expression : str
         The disturbance's own path to the output, as a formula.
     kind : str
-        'static' for the ratio of the static gains, 'dynamic' for that of the whole paths.
+        'static' for the ratio of the static gains, 'dynamic' for that of the whole paths; 'none' where the disturbance
+        takes its path and no effort acts against it.
     filter_time : float or None
         Time of the lags that make an improper ratio proper; None where it is proper by itself.
     name, unit : str
@@ -77,11 +78,16 @@ class DisturbanceFeedforward:
     """
 
     expression: str
-    kind: Literal["static", "dynamic"] = "dynamic"
+    kind: Literal["static", "dynamic", "none"] = "dynamic"
     filter_time: float | None = None
     name: str = ""
     unit: str = ""
     resting: float = 0.0
+
+    @property
+    def acts(self) -> bool:
+        """Whether any effort acts against the disturbance."""
+        return self.kind != "none"
 
 
 @dataclass(frozen=True, slots=True)

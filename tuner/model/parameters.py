@@ -268,9 +268,10 @@ PARAMETERS: tuple[Parameter, ...] = (
         "kind",
         "",
         Kind.CHOICE,
-        "Static: the ratio of the static gains. Dynamic: that of the whole paths, as far as it is causal.",
+        "Static: the ratio of the static gains. Dynamic: that of the whole paths, as far as it is causal. "
+        "None: no effort acts against the disturbance.",
         default="dynamic",
-        choices=("static", "dynamic"),
+        choices=("static", "dynamic", "none"),
     ),
     _number(
         f"{_C}.disturbance_feedforward",

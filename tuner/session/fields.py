@@ -4,6 +4,7 @@ from dataclasses import replace
 from math import pi
 from typing import Any
 
+from tuner.model.beginnings import first_time
 from tuner.model.controller import DisturbanceFeedforward, Feedforward, LeadLag, Notch, ReferenceFilter
 from tuner.model.measures import Measure
 from tuner.model.parameters import Parameter
@@ -48,7 +49,7 @@ def with_lead_lag(sheet: Sheet, lead_lag: LeadLag | None) -> Sheet:
 
 def first_lead_lag(sheet: Sheet) -> LeadLag:
     """Return a lead to begin with: a fiftieth of the trial, ahead of a lag of a tenth of that."""
-    lead = _first_time(sheet)
+    lead = first_time(sheet)
     return LeadLag(lead, float(f"{lead / 10.0:.2g}"))
 
 
@@ -59,7 +60,7 @@ def with_reference_filter(sheet: Sheet, reference_filter: ReferenceFilter | None
 
 def first_reference_filter(sheet: Sheet) -> ReferenceFilter:
     """Return a reference filter to begin with: one lag of a fiftieth of the trial."""
-    return ReferenceFilter(_first_time(sheet))
+    return ReferenceFilter(first_time(sheet))
 
 
 def with_measurement_filter(sheet: Sheet, time: float) -> Sheet:
@@ -72,13 +73,9 @@ def first_measurement_filter(sheet: Sheet) -> float:
     return float(f"{sheet.trial.duration / 200.0:.2g}")
 
 
-def _first_time(sheet: Sheet) -> float:
-    return float(f"{sheet.trial.duration / 50.0:.2g}")
-
-
 def with_feedforward(sheet: Sheet, kind: str) -> Sheet:
     """Return a sheet with feedforward of a kind, its number to begin with, or none for any other word."""
-    time = _first_time(sheet)
+    time = first_time(sheet)
     kinds = {"static": Feedforward("static", gain=0.0), "inverse": Feedforward("inverse", filter_time=time)}
     return replace(sheet, controller=replace(sheet.controller, feedforward=kinds.get(kind)))
 

@@ -65,13 +65,15 @@ def disturbance_feedforward(asked: DisturbanceFeedforward, path: Linear, process
 
     Factors that both have cancel. The dead time is what the path has beyond that of the process; where the process
     is the slower one, the effort comes too late by the difference, and nothing can be done about that. Static is the
-    ratio of the static gains alone.
+    ratio of the static gains alone, none is nothing at all.
 
     Raises
     ------
     LoopError
         When the filter would be unstable, improper without lags to make it proper, or without end, with the reason.
     """
+    if not asked.acts:
+        return constant(0.0)
     kept, gain = _invertible(process)
     zeros, poles = _without_shared([*path.zeros, *process.poles], [*path.poles, *kept])
     if any(pole.real > 0.0 for pole in poles):

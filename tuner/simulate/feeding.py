@@ -114,7 +114,7 @@ def feeds_of(sheet: Sheet, process: Process, sample_time: float) -> Feeds:
     controller, path = sheet.controller, process.disturbance_path
     driven = series(lag(sheet.actuator.lag), process.plant)
     forward, against = reference_feedforward(controller, driven), controller.disturbance_feedforward
-    cancelling = disturbance_feedforward(against, path, driven) if against and path else None
+    cancelling = disturbance_feedforward(against, path, driven) if against and against.acts and path else None
     asked = controller.reference_filter
     return Feeds(
         digital(forward, sample_time) if forward else None,
