@@ -76,6 +76,17 @@ def test_filters_and_feedforwards_are_told() -> None:
     assert told in lines
 
 
+def test_a_disturbance_that_nothing_acts_against_is_not_told() -> None:
+    """A path given only to judge by is no part of the controller: no filter, no word, no fault of its input."""
+    against = DYNAMIC.controller.disturbance_feedforward
+    assert against is not None
+    unopposed = replace(DYNAMIC.controller, disturbance_feedforward=replace(against, kind="none"))
+    made = specification(replace(DYNAMIC, controller=unopposed))
+    assert made.feeds.disturbance is None
+    assert not any("feedforward of Feed" in line for line in head(made))
+    assert {row.sample.disturbance for row in made.rows} == {0.0}
+
+
 def test_feedback_that_is_off_is_told() -> None:
     """The reader learns that nothing carries the effort over."""
     told = "Feedback is off: the effort is the feedforward alone; going to automatic is not bumpless"

@@ -181,3 +181,11 @@ def test_sentences(call: object, sentence: str) -> None:
     with pytest.raises(LoopError) as caught:
         call()  # type: ignore[operator]  # a call without arguments
     assert str(caught.value) == sentence
+
+
+def test_a_disturbance_that_nothing_acts_against() -> None:
+    """Its feedforward is nothing, whatever the plant: not even one without an inverse is refused."""
+    path, process = realise_expression("3/(5 s + 1)", {}), realise_expression("s/(s + 1)^2", {})
+    unopposed = DisturbanceFeedforward("s", kind="none")
+    assert not unopposed.acts
+    assert disturbance_feedforward(unopposed, path, process).static_gain() == 0.0
