@@ -3,7 +3,7 @@
 import numpy as np
 from numpy.typing import NDArray
 
-from tuner.kernels import rehearsal as kernel
+from tuner.kernels.rehearsal import advance
 from tuner.law import pid
 from tuner.model.family import Member
 from tuner.model.sheet import Sheet
@@ -127,13 +127,13 @@ class Bench:
         given = np.stack((asked, effort, np.full(len(reference), by_hand), noise, disturbance))
         seen = np.empty((5, len(reference)))
         wired, held = self._wired, self._wired.held
-        ran = kernel.advance(
+        ran = advance(
             self.count, self._constants, held.growth[0], held.old[0], held.new[0], wired.c[0], wired.direct[0],
             self._delay(), float(self.sheet.sensor.resolution), self._ceiling(), given, self._law, self._x,
             self._efforts, self._disturbances, seen,
         )  # fmt: skip
         self.count += ran
-        self.ran_away = ran < len(reference)
+        self.ran_away = self.ran_away or ran < len(reference)
         return seen[:, :ran]
 
     def _fed(self, reference: Array, disturbance: Array) -> tuple[Array, Array]:

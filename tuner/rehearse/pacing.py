@@ -12,6 +12,10 @@ _WINDOW = 2.0
 """Seconds over which the speed that is reached is told."""
 
 _FORGETS = 0.7
+_FIRST = 200.0
+"""Samples that are run at once at most before it is known how long they take."""
+
+_ROUNDING = 1e-9
 
 
 class Pacer:
@@ -57,8 +61,8 @@ class Pacer:
             return 0
         passed, self._last = now - self._last, now
         self._owed += passed * self._speed / self._sample
-        most = SHARE * passed / self._cost if self._cost else self._owed
-        samples = floor(min(self._owed, max(most, 1.0)))
+        most = SHARE * passed / self._cost if self._cost else _FIRST
+        samples = floor(min(self._owed, max(most, 1.0)) + _ROUNDING)
         # What is left beyond one sample is what this computer could not run.
         self._owed = min(self._owed - samples, 1.0)
         return samples
