@@ -83,6 +83,11 @@ def tuned(controller: Controller, name: str, value: float) -> Controller:
     return controller.with_value(name, None if left_out else value)
 
 
+def is_of_block(name: str) -> bool:
+    """Tell whether a number of the controller is one of a block beside the law, such as "notch.depth"."""
+    return "." in name
+
+
 def painted(track: Track, classes: Classes, edges: Sequence[Edge]) -> PaintedTrack:
     """Return a track with its classes and edges, these in rising order."""
     return PaintedTrack(track.name, track.values, classes, tuple(sorted(edges, key=lambda edge: edge.value)))

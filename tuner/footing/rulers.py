@@ -8,7 +8,19 @@ import numpy as np
 from numpy.typing import NDArray
 
 from tuner.footing.affine import MOTIONLESS
-from tuner.footing.classes import LOST, UNKNOWN, Classes, Edge, PaintedTrack, Track, never, painted, tuned
+from tuner.footing.blocks import paint_block
+from tuner.footing.classes import (
+    LOST,
+    UNKNOWN,
+    Classes,
+    Edge,
+    PaintedTrack,
+    Track,
+    is_of_block,
+    never,
+    painted,
+    tuned,
+)
 from tuner.footing.exact import exactly
 from tuner.footing.grading import Grading
 from tuner.footing.ground import Ground, ground_of
@@ -102,8 +114,13 @@ def paint_rulers(
         When `stop` said so.
     """
     size = sheet.trial.family_size if family_size is None else family_size
-    painter = _Painter(sheet, ground_of(sheet, size), size, stop)
-    return painter.paint(tracks, fine=fine)
+    ground = ground_of(sheet, size)
+    gains = [track for track in tracks if not is_of_block(track.name)]
+    found = {track.name: track for track in _Painter(sheet, ground, size, stop).paint(gains, fine=fine)}
+    found |= {
+        track.name: paint_block(sheet, ground, track, stop, fine=fine) for track in tracks if is_of_block(track.name)
+    }
+    return tuple(found[track.name] for track in tracks)
 
 
 @dataclass(frozen=True, slots=True, eq=False)

@@ -25,7 +25,16 @@ from tuner.session.state import (
     with_sheet,
     with_typed_plant,
 )
-from tuner.session.tunings import KeptTuning, Mark, free_name, in_form_or_none, in_words, marks, with_as_found
+from tuner.session.tunings import (
+    KeptTuning,
+    Mark,
+    free_name,
+    has_number,
+    in_form_or_none,
+    in_words,
+    marks,
+    with_as_found,
+)
 
 Listener = Callable[[], None]
 
@@ -221,7 +230,7 @@ class Document:
     def reset(self, name: str) -> None:
         """Set one number back to its value in the file as opened; nothing happens when it has none in this form."""
         initial = in_form_or_none(self._file.opened.controller, self.sheet.controller.form)
-        if initial is not None:
+        if initial is not None and has_number(initial, name):
             self.change_value(name, initial.value(name))
 
     def set_form(self, form: Form) -> bool:
@@ -241,7 +250,7 @@ class Document:
 
     def range_of(self, parameter: Parameter) -> RulerRange:
         """Return what the ruler of a parameter spans; it only ever widens while the sheet is open."""
-        name = parameter.name
+        name = parameter.key
         value = self.sheet.controller.value(name)
         span = self._ranges.get(name)
         span = range_for(parameter, value, typical_value(self.sheet, name)) if span is None else widened(span, value)

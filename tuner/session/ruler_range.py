@@ -25,6 +25,7 @@ Step = Literal["fine", "coarse"]
 _FACTOR: dict[Step, float] = {"fine": 1.01, "coarse": 1.10}
 _INCREMENT: dict[Step, float] = {"fine": 0.01, "coarse": 0.1}
 _WEIGHTS = ("b", "c")
+_MAY_BE_ABSENT = ("windup_time", "disturbance_feedforward.filter_time")
 _WEIGHT_END = 1.5
 _SMALLEST, _LARGEST = -300, 300
 _DECADES_BELOW, _DECADES_ABOVE = 1, 2
@@ -70,13 +71,19 @@ class Tick:
 def range_for(parameter: Parameter, value: float | None, typical: float) -> RulerRange:
     """Return the range of a ruler: whole decades around the value, or around a typical one while it is off.
 
-    `typical` must be above 0. The weights b and c get a linear range.
+    `typical` must not be 0, and above 0 for a number that is never negative. The weights b and c get a linear range,
+    and so do a number that has two ends and one that may be negative.
     """
-    if parameter.name in _WEIGHTS:
+    if parameter.key in _WEIGHTS:
         return widened(RulerRange(0.0, _WEIGHT_END, logarithmic=False), value)
-    decade = floor(log10(value or typical))
+    if parameter.maximum is not None:
+        return RulerRange(parameter.minimum or 0.0, parameter.maximum, logarithmic=False)
+    if parameter.minimum is None:
+        return widened(RulerRange(min(2.0 * typical, 0.0), max(2.0 * typical, 0.0), logarithmic=False), value)
+    decade = floor(log10(value or abs(typical)))
+    has_off = not parameter.above_minimum or parameter.key in _MAY_BE_ABSENT
     off = None if parameter.above_minimum else 0.0
-    return RulerRange(_decade(decade - _DECADES_BELOW), _decade(decade + _DECADES_ABOVE), has_off=True, off=off)
+    return RulerRange(_decade(decade - _DECADES_BELOW), _decade(decade + _DECADES_ABOVE), has_off=has_off, off=off)
 
 
 def widened(span: RulerRange, value: float | None) -> RulerRange:
@@ -84,7 +91,7 @@ def widened(span: RulerRange, value: float | None) -> RulerRange:
     if value is None or (value == span.off and span.has_off) or span.low <= value <= span.high:
         return span
     if not span.logarithmic:
-        return replace(span, low=min(span.low, value), high=max(span.high, ceil(2.0 * value) / 2.0))
+        return replace(span, low=min(span.low, floor(2.0 * value) / 2.0), high=max(span.high, ceil(2.0 * value) / 2.0))
     if value < span.low:
         return replace(span, low=_decade(floor(log10(value))))
     return replace(span, high=_decade(ceil(log10(value))))
@@ -98,7 +105,10 @@ def typical_value(sheet: Sheet, name: str) -> float:
     time = sheet.trial.duration / 20.0
     gain = sheet.controller.parallel().kp or 1.0
     guess = {"kp": gain, "kc": gain, "ki": gain / time, "kd": gain * time / 4.0, "td": time / 4.0}
-    typical = guess.get(name, time / 10.0 if name == "filter_time" else time)
+    guess |= {"feedforward.gain": _static_effort(sheet), "notch.frequency": 1.0 / time}
+    typical = guess.get(name, time / 10.0 if name.endswith("filter_time") or "." in name else time)
+    if name == "feedforward.gain":
+        return typical
     return typical if isfinite(typical) and typical > 0.0 else 1.0
 
 
@@ -223,3 +233,12 @@ def _rounded(value: float, digits: int) -> float:
 
 def _decade(exponent: int) -> float:
     return float(f"1e{min(max(exponent, _SMALLEST), _LARGEST)}")
+
+
+def _static_effort(sheet: Sheet) -> float:
+    """Return about how much effort a unit of reference takes: that of the ranges of both, 1 where one is not known."""
+    effort, output = sheet.loop.manipulated, sheet.loop.controlled
+    if None in (effort.low, effort.high, output.low, output.high):
+        return sheet.controller.sign
+    spans = ((effort.high or 0.0) - (effort.low or 0.0), (output.high or 0.0) - (output.low or 0.0))
+    return sheet.controller.sign * spans[0] / spans[1]

@@ -66,4 +66,12 @@ def marks(name: str, present: Controller, opened: Controller, kept: Iterable[Kep
         *(("kept", tuning.name, tuning.controller) for tuning in kept),
     ]
     there = [(kind, label, in_form_or_none(source, present.form)) for kind, label, source in sources]
-    return tuple(Mark(kind, label, source.value(name)) for kind, label, source in there if source is not None)
+    return tuple(
+        Mark(kind, label, source.value(name)) for kind, label, source in there if source and has_number(source, name)
+    )
+
+
+def has_number(controller: Controller, name: str) -> bool:
+    """Return whether a controller has the block that a number belongs to."""
+    block, dot, _ = name.partition(".")
+    return not dot or bool(getattr(controller, block))

@@ -7,7 +7,7 @@ from typing import Protocol
 
 import numpy as np
 
-from tuner.footing.classes import PaintedTrack, Track, tuned
+from tuner.footing.classes import PaintedTrack, Track, is_of_block, tuned
 from tuner.model.sheet import Sheet
 from tuner.window.beside import Stop
 
@@ -33,10 +33,12 @@ class Painting:
     sheet: Sheet
     tracks: Mapping[str, PaintedTrack] = field(default_factory=lambda: MappingProxyType({}))
     fine: bool = True
+    stale: frozenset[str] = frozenset()
+    """Tracks of blocks that were left as they were: a hand on the move does not wait for them."""
 
     def holds(self, name: str, sheet: Sheet) -> bool:
         """Tell whether the paint of one ruler is true of another sheet too: one that differs in that gain alone."""
-        return name in self.tracks and without(self.sheet, name) == without(sheet, name)
+        return name in self.tracks and name not in self.stale and without(self.sheet, name) == without(sheet, name)
 
 
 def without(sheet: Sheet, name: str) -> Sheet:
@@ -80,13 +82,20 @@ class Painter:
         LoopError
             When the loop cannot be computed.
         """
-        known = [track for asked in request.tracks if (track := self._known(request, asked)) is not None]
-        names = {track.name for track in known}
-        new = [track for track in request.tracks if track.name not in names]
+        known = {asked.name: track for asked in request.tracks if (track := self._known(request, asked)) is not None}
+        stale = {} if request.fine else {track.name: track for track in self._left(request) if track.name not in known}
+        new = [track for track in request.tracks if track.name not in known | stale]
         painted = self._paint(request.sheet, new, stop=stop, fine=request.fine) if new else ()
-        found = {track.name: track for track in (*known, *painted)}
-        self._last = Painting(request.number, request.sheet, MappingProxyType(found), request.fine)
+        found = known | stale | {track.name: track for track in painted}
+        self._last = Painting(
+            request.number, request.sheet, MappingProxyType(found), request.fine, stale=frozenset(stale)
+        )
         return self._last
+
+    def _left(self, request: PaintRequest) -> list[PaintedTrack]:
+        """Return the tracks of blocks as they were painted last."""
+        last = {} if self._last is None else self._last.tracks
+        return [last[asked.name] for asked in request.tracks if is_of_block(asked.name) and asked.name in last]
 
     def _known(self, request: PaintRequest, track: Track) -> PaintedTrack | None:
         last = self._last

@@ -8,9 +8,10 @@ from PySide6.QtGui import QResizeEvent
 from PySide6.QtWidgets import QGridLayout, QLabel, QSizePolicy, QWidget
 
 from tuner.footing.classes import Track
-from tuner.model.parameters import GAIN_KEYS, Parameter, rulers
+from tuner.model.parameters import GAIN_KEYS, Parameter
 from tuner.model.sheet import Sheet
 from tuner.session.document import Document
+from tuner.session.rulers import rulers_of
 from tuner.window.rulers.form_switch import FormSwitch
 from tuner.window.rulers.painting import Painting, Reading
 from tuner.window.rulers.reading_line import ReadingLine
@@ -47,7 +48,8 @@ class RulerPanel(QWidget):
     def __init__(self, document: Document, theme: Theme, parent: QWidget | None = None) -> None:
         super().__init__(parent)
         self._document, self._theme = document, theme
-        self._generation, self._form = document.generation, ""
+        self._generation = document.generation
+        self._parameters: tuple[Parameter, ...] = ()
         self._columns = 0
         self.rulers: dict[str, Ruler] = {}
         self._pointed: Place | None = None
@@ -69,7 +71,7 @@ class RulerPanel(QWidget):
 
     def refresh(self) -> None:
         """Show what the document holds; another form of the gains brings other rulers."""
-        if self._form != self._document.sheet.controller.form:
+        if self._parameters != rulers_of(self._document.sheet.controller):
             self._change_rulers()
         anew = self._generation != self._document.generation
         self._generation = self._document.generation
@@ -86,7 +88,7 @@ class RulerPanel(QWidget):
     def paint(self, painting: Painting, late_for: Sheet | None = None) -> None:
         """Paint every ruler by what was found out about it, paler where that is untrue of a sheet it is late for."""
         for name, ruler in self.rulers.items():
-            faded = late_for is not None and not painting.holds(name, late_for)
+            faded = name in painting.stale or (late_for is not None and not painting.holds(name, late_for))
             ruler.show_footing(painting.tracks.get(name), faded=faded)
         self.explain_grey("")
 
@@ -127,12 +129,12 @@ class RulerPanel(QWidget):
     # Inside -----------------------------------------------------------------------------------------------------
 
     def _change_rulers(self) -> None:
-        """Make the rulers of the present form; those that both forms have stay."""
-        self._form = self._document.sheet.controller.form
+        """Make the rulers of the present form and blocks; those that were there before stay."""
+        self._parameters = rulers_of(self._document.sheet.controller)
         before, self.rulers = self.rulers, {}
-        for parameter in rulers(self._form):
-            known = parameter.name in before
-            self.rulers[parameter.name] = before.pop(parameter.name) if known else self._new(parameter)
+        for parameter in self._parameters:
+            known = before.pop(parameter.key, None)
+            self.rulers[parameter.key] = known or self._new(parameter)
         for ruler in before.values():
             ruler.deleteLater()
             ruler.hide()
@@ -145,7 +147,7 @@ class RulerPanel(QWidget):
         ruler.grasped.connect(self.dragging_started)
         ruler.let_go.connect(self.dragging_finished)
         ruler.faulted.connect(self._say)
-        ruler.slider.pointed.connect(partial(self._point, parameter.name))
+        ruler.slider.pointed.connect(partial(self._point, parameter.key))
         for signal in (ruler.slider.left, ruler.slider.focused, ruler.grasped):
             signal.connect(self._point_nowhere)
         ruler.setVisible(True)

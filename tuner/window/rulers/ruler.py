@@ -47,9 +47,7 @@ class Ruler(QWidget):
     def refresh(self) -> None:
         """Show what the document holds."""
         value = self._value()
-        self.slider.show_value(
-            self._document.range_of(self.parameter), self._document.marks(self.parameter.name), value
-        )
+        self.slider.show_value(self._document.range_of(self.parameter), self._document.marks(self.parameter.key), value)
         self.box.intake.show_value(value)
         self.unit.setText(self._unit_now())
         self._describe()
@@ -60,7 +58,7 @@ class Ruler(QWidget):
 
     def track(self) -> Track:
         """Return what there is to find out along this ruler."""
-        return Track(self.parameter.name, notches(self._document.range_of(self.parameter)))
+        return Track(self.parameter.key, notches(self._document.range_of(self.parameter)))
 
     def show_footing(self, track: PaintedTrack | None, *, faded: bool = False) -> None:
         """Paint the track, paler where it is out of date; grey when nobody computed any classes."""
@@ -75,7 +73,7 @@ class Ruler(QWidget):
     def in_words(self, value: float | None) -> str:
         """Return the name, a value and its unit: "kp 4.2 %/degC"."""
         unit = "" if value is None else self._unit_now()
-        return " ".join(filter(None, (self.parameter.name, _written(value), unit)))
+        return " ".join(filter(None, (self.parameter.key, _written(value), unit)))
 
     def menu(self) -> QMenu:
         """Return the menu of a right click."""
@@ -115,9 +113,9 @@ class Ruler(QWidget):
         row.setSpacing(4)
         for part, stretch in ((symbol, 0), (self.slider, 1), (self.box, 0), (self.unit, 0)):
             row.addWidget(part, stretch)
-        self.setToolTip(f"{self.parameter.name}: {self.parameter.sentence}")
-        self.slider.setAccessibleName(f"{self.parameter.name} ruler")
-        self.box.setAccessibleName(f"{self.parameter.name} value")
+        self.setToolTip(f"{self.parameter.key}: {self.parameter.sentence}")
+        self.slider.setAccessibleName(f"{self.parameter.key} ruler")
+        self.box.setAccessibleName(f"{self.parameter.key} value")
 
     def _connect(self) -> None:
         self.slider.grasped.connect(self._on_grasped)
@@ -137,18 +135,17 @@ class Ruler(QWidget):
 
     def _value(self) -> float | None:
         controller = self._document.sheet.controller
-        return controller.value(self.parameter.name)
+        return controller.value(self.parameter.key)
 
     def _unit_now(self) -> str:
         loop = self._document.sheet.loop
         return unit_in(self.parameter.unit, loop)
 
     def _read(self, text: str) -> float | None:
-        name = self.parameter.name
-        if self.parameter.above_minimum and text.strip().lower() in ("", OFF):
-            return None
-        if text.strip().lower() == OFF:
-            return 0.0
+        name = self.parameter.key
+        span = self._document.range_of(self.parameter)
+        if span.has_off and text.strip().lower() in (OFF, *([""] if span.off is None else [])):
+            return span.off
         if text.strip()[:1] in ("-", "\u2212") and self.parameter.minimum == 0.0:
             raise TypedError(
                 f'{name} is never negative; for a plant whose output falls with the effort, choose the action "direct"'
@@ -156,7 +153,7 @@ class Ruler(QWidget):
         return typed.number(text, Bounds.of(self.parameter), self._unit_now())
 
     def _change(self, value: float | None) -> None:
-        self._document.change_value(self.parameter.name, value)
+        self._document.change_value(self.parameter.key, value)
 
     def _begin_typing(self) -> None:
         self.box.setFocus(Qt.FocusReason.OtherFocusReason)
@@ -168,10 +165,10 @@ class Ruler(QWidget):
 
     def _on_wanted(self, value: float | None) -> None:
         self._jumped = True
-        self._document.change_value(self.parameter.name, value, merge_key=f"hand on {self.parameter.name}")
+        self._document.change_value(self.parameter.key, value, merge_key=f"hand on {self.parameter.key}")
 
     def _on_faulted(self, sentence: str) -> None:
-        self.faulted.emit(self.parameter.name, sentence)
+        self.faulted.emit(self.parameter.key, sentence)
 
     def _on_let_go(self) -> None:
         self._document.release()
@@ -181,7 +178,7 @@ class Ruler(QWidget):
         """Reset; the jump of the first click of a double click is taken back, so that the reset is one step."""
         if self._jumped and self.slider.pressed_twice:
             self._document.undo()
-        self._document.reset(self.parameter.name)
+        self._document.reset(self.parameter.key)
 
 
 def _written(value: float | None) -> str:
