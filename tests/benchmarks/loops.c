@@ -8,7 +8,7 @@
 #include <string.h>
 
 #define LANES 16
-#define LAW 19
+#define LAW 22
 #define RING 64
 
 static double larger(double a, double b) { return a > b ? a : b; }
@@ -20,7 +20,7 @@ static void block(int64_t samples, const double *constants, const double *growth
 {
     double p[LAW][LANES], x[ORDER][LANES] = {{0}}, rise[ORDER][LANES], ring[RING][LANES] = {{0}};
     double effort[LANES] = {0}, integral[LANES] = {0}, derivative[LANES] = {0}, last_error[LANES] = {0};
-    double filtered[LANES] = {0}, notch_1[LANES] = {0}, notch_2[LANES] = {0}, old_u[LANES] = {0};
+    double filtered[LANES] = {0}, led[LANES] = {0}, notch_1[LANES] = {0}, notch_2[LANES] = {0}, old_u[LANES] = {0};
     double highest[LANES] = {0}, sum[LANES] = {0}, old_d = 0.0;
     for (int i = 0; i < LAW; i++)
         for (int l = 0; l < LANES; l++) p[i][l] = constants[l * LAW + i];
@@ -38,9 +38,11 @@ static void block(int64_t samples, const double *constants, const double *growth
             highest[l] = larger(highest[l], y < 0.0 ? -y : y);
             sum[l] += y < reference ? reference - y : y - reference;
             filtered[l] += p[11][l] * (seen - filtered[l]);
-            double found = p[12][l] * filtered[l] + notch_1[l];
-            notch_1[l] = p[13][l] * filtered[l] - p[15][l] * found + notch_2[l];
-            notch_2[l] = p[14][l] * filtered[l] - p[16][l] * found;
+            double ahead = p[12][l] * filtered[l] + led[l];
+            led[l] += p[14][l] * (p[13][l] * filtered[l] - led[l]);
+            double found = p[15][l] * ahead + notch_1[l];
+            notch_1[l] = p[16][l] * ahead - p[18][l] * found + notch_2[l];
+            notch_2[l] = p[17][l] * ahead - p[19][l] * found;
             double proportional = p[0][l] * (p[5][l] * reference - found);
             double weighted = p[6][l] * reference - found;
             derivative[l] = p[3][l] * derivative[l] + p[2][l] * (weighted - last_error[l]);

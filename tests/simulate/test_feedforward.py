@@ -111,15 +111,15 @@ def test_the_reference_filter_is_equal_lags() -> None:
         (
             Controller(feedforward=Feedforward("inverse", filter_time=1.0)),
             (
-                "The inverse of the plant leaves out a dead time of 5 and the zero at +0.5 in the right half plane: "
-                "what they do to the output stays.",
+                "The inverse of the plant leaves out a dead time of 5 and the zero at +0.5 in the right half plane, "
+                "whose effect on the output stays.",
             ),
         ),
         (
             Controller(disturbance_feedforward=DYNAMIC),
             (
                 "The feedforward of the disturbance leaves out a dead time of 3 and the zero at +0.5 in the right "
-                "half plane: what they do to the output stays.",
+                "half plane, whose effect on the output stays.",
             ),
         ),
     ],
@@ -135,8 +135,8 @@ def test_a_pair_of_zeros_left_out_is_counted() -> None:
     process = realise_expression("(s^2 + 4)/(s + 1)^3", {})
     (sentence,) = left_out(Controller(feedforward=Feedforward("inverse", filter_time=1.0)), process, None)
     assert sentence == (
-        "The inverse of the plant leaves out 2 zeros that are not in the left half plane: "
-        "what they do to the output stays."
+        "The inverse of the plant leaves out 2 zeros that are not in the left half plane, "
+        "whose effect on the output stays."
     )
 
 

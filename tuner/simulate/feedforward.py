@@ -113,7 +113,7 @@ def left_out(controller: Controller, process: Linear, path: Linear | None) -> tu
 
 def _said(beginning: str, parts: Sequence[str]) -> Iterator[str]:
     if parts:
-        yield f"{beginning} {' and '.join(parts)}: what they do to the output stays."
+        yield f"{beginning} {' and '.join(parts)}, whose effect on the output stays."
 
 
 def _not_inverted(process: Linear, dead_time: float) -> list[str]:

@@ -263,8 +263,12 @@ class DisturbancePanel(OutputPanel):
 
     def axis_words(self, sheet: Sheet) -> str:
         """Say also how large the disturbance is."""
-        size = quantity(sheet.trial.disturbance, sheet.loop.manipulated.unit)
-        return f"{super().axis_words(sheet)}, after {size} at the plant input"
+        measured = sheet.controller.disturbance_feedforward
+        if measured is None:
+            where, unit = "at the plant input", sheet.loop.manipulated.unit
+        else:
+            where, unit = f"of {measured.name or 'the measured disturbance'}", measured.unit
+        return f"{super().axis_words(sheet)}, after {quantity(sheet.trial.disturbance, unit)} {where}"
 
 
 class EffortPanel(TracePanel):

@@ -1,4 +1,4 @@
-"""The panel of all rulers of the controller, in one column or two."""
+"""The panel of all rulers of the controller, in one column, two or three."""
 
 from dataclasses import dataclass
 from functools import partial
@@ -7,7 +7,7 @@ from PySide6.QtCore import Signal
 from PySide6.QtGui import QResizeEvent
 from PySide6.QtWidgets import QGridLayout, QLabel, QSizePolicy, QWidget
 
-from tuner.footing.classes import Track
+from tuner.footing.classes import Track, is_of_block
 from tuner.model.parameters import GAIN_KEYS, Parameter
 from tuner.model.sheet import Sheet
 from tuner.session.document import Document
@@ -21,6 +21,9 @@ from tuner.window.theme import Theme
 
 TWO_COLUMNS = 960
 """Width, pixels, from which the gains and the other rulers stand side by side."""
+
+THREE_COLUMNS = 1400
+"""Width, pixels, from which the rulers of blocks beside the law stand in a column of their own."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -118,7 +121,7 @@ class RulerPanel(QWidget):
         self._say_reading()
 
     def resizeEvent(self, event: QResizeEvent) -> None:
-        """Lay the rulers in one column or two, as the width has it."""
+        """Lay the rulers in columns, as the width has it."""
         super().resizeEvent(event)
         self._lay_out()
 
@@ -175,27 +178,32 @@ class RulerPanel(QWidget):
         self.line.show_place(ruler.in_words(place.value), grade, sentence)
 
     def _lay_out(self) -> None:
-        columns = 2 if self.width() >= TWO_COLUMNS else 1
-        if columns == self._columns:
+        columns = self._columns_now()
+        if len(columns) == self._columns:
             return
-        self._columns = columns
+        self._columns = len(columns)
         for part in (self.form, *self.rulers.values()):
             self._grid.removeWidget(part)
-        for part, row, column in self._places(columns):
-            self._grid.addWidget(part, row, column)
-        self._grid.setColumnStretch(0, 1)
-        self._grid.setColumnStretch(1, 1 if columns == 2 else 0)
+        for place, column in enumerate(columns):
+            for row, part in enumerate(column):
+                self._grid.addWidget(part, row, place)
+        for place in range(3):
+            self._grid.setColumnStretch(place, 1 if place < len(columns) else 0)
         first, *_ = stops(self._grid)
         order_tabs(first, self._grid)
 
-    def _places(self, columns: int) -> list[tuple[QWidget, int, int]]:
-        gains = [self.rulers[name] for name in GAIN_KEYS[self._document.sheet.controller.form]]
-        others = [ruler for ruler in self.rulers.values() if ruler not in gains]
-        first: list[QWidget] = [self.form, *gains]
-        if columns == 1:
-            return [(part, row, 0) for row, part in enumerate([*first, *others])]
-        left = [(part, row, 0) for row, part in enumerate(first)]
-        return left + [(part, row, 1) for row, part in enumerate(others)]
+    def _columns_now(self) -> list[list[QWidget]]:
+        """Return what stands in each column: gains, what else the law has, and the blocks, as the width has it."""
+        keys = GAIN_KEYS[self._document.sheet.controller.form]
+        gains: list[QWidget] = [self.form, *(self.rulers[key] for key in keys)]
+        others: list[QWidget] = [one for key, one in self.rulers.items() if key not in keys and not is_of_block(key)]
+        blocks: list[QWidget] = [ruler for key, ruler in self.rulers.items() if is_of_block(key)]
+        if self.width() < TWO_COLUMNS:
+            return [[*gains, *others, *blocks]]
+        if not blocks or self.width() < THREE_COLUMNS:
+            half = len(blocks) // 2
+            return [[*gains, *blocks[:half]], [*others, *blocks[half:]]]
+        return [gains, others, blocks]
 
     def _say(self, name: str, sentence: str) -> None:
         """Say under the box what is wrong with what was typed, over whatever is there, so that nothing moves."""

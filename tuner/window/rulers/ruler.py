@@ -6,7 +6,7 @@ from PySide6.QtCore import QPoint, Qt, Signal
 from PySide6.QtGui import QContextMenuEvent
 from PySide6.QtWidgets import QHBoxLayout, QLabel, QMenu, QWidget
 
-from tuner.footing.classes import UNKNOWN, PaintedTrack, Track
+from tuner.footing.classes import UNKNOWN, PaintedTrack, Track, is_of_block
 from tuner.model.parameters import Parameter
 from tuner.model.units import unit_in
 from tuner.session import typed
@@ -19,7 +19,7 @@ from tuner.window.rulers.edges import class_of, in_words
 from tuner.window.rulers.slider import RulerSlider
 from tuner.window.theme import Theme
 
-SYMBOL_WIDTH, BOX_WIDTH, UNIT_WIDTH = 32, 84, 84
+SYMBOL_WIDTH, BLOCK_WIDTH, BOX_WIDTH, UNIT_WIDTH = 32, 96, 84, 84
 OFF = "off"
 """What the box shows for a value that is absent."""
 
@@ -101,8 +101,8 @@ class Ruler(QWidget):
     # Inside -----------------------------------------------------------------------------------------------------
 
     def _lay_out(self) -> None:
-        symbol = QLabel(_as_symbol(self.parameter.symbol))
-        symbol.setFixedWidth(SYMBOL_WIDTH)
+        symbol = QLabel(_as_symbol(self.parameter))
+        symbol.setFixedWidth(BLOCK_WIDTH if is_of_block(self.parameter.key) else SYMBOL_WIDTH)
         symbol.setAlignment(Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter)
         self.box.setFixedWidth(BOX_WIDTH)
         self.box.setAlignment(Qt.AlignmentFlag.AlignRight)
@@ -185,6 +185,18 @@ def _written(value: float | None) -> str:
     return OFF if value is None else typed.shown(value)
 
 
-def _as_symbol(symbol: str) -> str:
-    """Write a symbol with its letters after the first as an index."""
-    return f"<i>{symbol[:1]}</i><sub>{symbol[1:]}</sub>" if len(symbol) > 1 else f"<i>{symbol}</i>"
+def _as_symbol(parameter: Parameter) -> str:
+    """Write a symbol with its letters after the first as an index, after the block that it belongs to."""
+    symbol = parameter.symbol
+    written = f"<i>{symbol[:1]}</i><sub>{symbol[1:]}</sub>" if len(symbol) > 1 else f"<i>{symbol}</i>"
+    block, dot, _ = parameter.key.partition(".")
+    return f"{_SHORT.get(block, block)} {written}" if dot else written
+
+
+_SHORT = {
+    "reference_filter": "ref. filter",
+    "disturbance_feedforward": "disturbance",
+    "measurement_filter": "meas. filter",
+    "lead_lag": "lead-lag",
+}
+"""Blocks as the narrow place before a ruler names them."""
