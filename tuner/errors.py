@@ -40,7 +40,7 @@ class Fault:
 
 
 class SheetError(TrimwrightError):
-    """A tuning sheet that cannot be used; holds every fault found in it, not just the first."""
+    """A sheet, a demonstration or a record that cannot be used; holds every fault found in it, not just the first."""
 
     def __init__(self, faults: Sequence[Fault], file: str = "") -> None:
         self.faults = tuple(faults)

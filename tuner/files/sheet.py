@@ -35,7 +35,7 @@ def parse(text: str, file: str = "") -> Sheet:
     SheetError
         With every fault found.
     """
-    written = _tables(text, file)
+    written = tables(text, file)
     version = written.get("sheet")
     if isinstance(version, int) and version > VERSION:
         expected = f"{VERSION}, the newest format that this version of Trimwright reads"
@@ -51,15 +51,22 @@ def parse(text: str, file: str = "") -> Sheet:
     return checked.sheet
 
 
-def _tables(text: str, file: str) -> dict[str, Any]:
+def tables(text: str, file: str, what: str = "a tuning sheet") -> dict[str, Any]:
+    """Return the tables of TOML; `what` it should hold, and `file`, are for faults.
+
+    Raises
+    ------
+    SheetError
+        When it is empty or no TOML.
+    """
     if not text.strip():
-        raise SheetError([Fault("", "a tuning sheet", "an empty file")], file)
+        raise SheetError([Fault("", what, "an empty file")], file)
     try:
-        tables = tomllib.loads(text)
-        repr(tables)  # fails for an integer like 0xfff..., of more digits than Python spells out
+        found = tomllib.loads(text)
+        repr(found)  # fails for an integer like 0xfff..., of more digits than Python spells out
     except (ValueError, RecursionError) as error:
         raise SheetError([_syntax_fault(text, error)], file) from None
-    return tables
+    return found
 
 
 _SYNTAX: Final = {
@@ -116,8 +123,10 @@ def read(path: Path) -> Sheet:
     return parse(read_text(path), str(path))
 
 
-def read_text(path: Path) -> str:
+def read_text(path: Path, what: str = "a tuning sheet") -> str:
     """Return the text of a sheet's file, which `render` and `write` take to keep what a person wrote.
+
+    `what` the file should hold is for faults.
 
     Raises
     ------
@@ -126,11 +135,11 @@ def read_text(path: Path) -> str:
     """
     try:
         if path.is_dir():
-            raise SheetError([Fault("", "a tuning sheet", "a folder")], str(path))
+            raise SheetError([Fault("", what, "a folder")], str(path))
         with path.open("rb") as file:
             return read_stream(file, str(path))
     except OSError as error:
-        raise SheetError([Fault("", "a file that can be read", _reason(error))], str(path)) from None
+        raise SheetError([Fault("", "a file that can be read", reason(error))], str(path)) from None
 
 
 def read_stream(stream: BinaryIO, file: str) -> str:
@@ -150,7 +159,8 @@ def read_stream(stream: BinaryIO, file: str) -> str:
         raise SheetError([Fault("", "text in UTF-8", f"byte {error.start + 1}, which is none")], file) from None
 
 
-def _reason(error: OSError) -> str:
+def reason(error: OSError) -> str:
+    """Say in words why a file cannot be opened, read or written."""
     if isinstance(error, FileNotFoundError):
         return "no such file"
     return "no permission" if isinstance(error, PermissionError) else (error.strerror or "an error").lower()
@@ -213,7 +223,7 @@ def write(path: Path, sheet: Sheet, original_text: str = "") -> None:
         _write_whole(beside, data, path.stat().st_mode if path.exists() else None)
         beside.replace(path)
     except OSError as error:
-        raise SheetError([Fault("", "a file that can be written", _reason(error))], str(path)) from None
+        raise SheetError([Fault("", "a file that can be written", reason(error))], str(path)) from None
     finally:
         with suppress(OSError):  # there is none when it could not be made, whatever stood in the way
             beside.unlink()

@@ -1,9 +1,9 @@
 """Hold a sheet against its schema and say in sentences where it differs; loads jsonschema."""
 
-from collections.abc import Iterator
+from collections.abc import Callable, Iterator
 from copy import deepcopy
 from dataclasses import dataclass
-from functools import cache
+from functools import cache, lru_cache
 from math import isfinite
 from typing import Any, cast
 
@@ -26,23 +26,41 @@ class Validated:
     sound: Table
 
 
-def validate(written: Table) -> Validated:
-    """Hold a sheet against the schema."""
+@dataclass(frozen=True, slots=True, eq=False)
+class Rules:
+    """What tables are held against: a schema, and what the table at its top is called."""
+
+    schema: Schema
+    whole: str
+
+
+def validate(written: Table, rules: Rules | None = None) -> Validated:
+    """Hold tables against a schema: that of a sheet unless there is another one."""
+    rules = rules or _sheet()
     sound = deepcopy(written)
     faults: dict[Fault, None] = {}
-    for error in _validator().iter_errors(written):
-        for fault, path in _told(error):
+    for error in _validator(rules).iter_errors(written):
+        for fault, path in _told(error, rules):
             faults.setdefault(fault)
             _drop(sound, path)
     return Validated(list(faults), sound)
 
 
 @cache
-def _validator() -> Validator:
-    checker = Draft202012Validator.TYPE_CHECKER.redefine_many({"number": _is_number, "integer": _is_integer})
-    kind = validators.extend(Draft202012Validator, type_checker=checker)  # type: ignore[no-untyped-call] # so declared
-    validator: Validator = kind(schema())
+def _sheet() -> Rules:
+    return Rules(schema(), "the sheet")
+
+
+def _validator(rules: Rules) -> Validator:
+    validator: Validator = _kind()(rules.schema)
     return validator
+
+
+@cache
+def _kind() -> Callable[[Schema], Validator]:
+    checker = Draft202012Validator.TYPE_CHECKER.redefine_many({"number": _is_number, "integer": _is_integer})
+    kind: Callable[[Schema], Validator] = validators.extend(Draft202012Validator, type_checker=checker)  # type: ignore[no-untyped-call] # so declared
+    return kind
 
 
 def _is_number(_: TypeChecker, value: object) -> bool:
@@ -62,18 +80,18 @@ def _is_integer(checker: TypeChecker, value: object) -> bool:
 Told = tuple[Fault, tuple[str, ...]]
 
 
-def _told(error: ValidationError, above: tuple[str | int, ...] = ()) -> Iterator[Told]:
+def _told(error: ValidationError, rules: Rules, above: tuple[str | int, ...] = ()) -> Iterator[Told]:
     """Yield the faults of one error, each with the path of the faulty value."""
     path = above + tuple(error.relative_path)
     names = tuple(part for part in path if isinstance(part, str))
     if error.validator == "additionalProperties":
-        yield from _unknown(names, error)
+        yield from _unknown(names, error, rules)
     elif error.validator == "required":
         yield from _missing(names, error)
     elif (branch := _branch_of_table(error)) is not None:
         for inner in error.context or ():
             if inner.schema_path[0] == branch:
-                yield from _told(inner, path)
+                yield from _told(inner, rules, path)
     else:
         yield _wrong(names, path, error), names
 
@@ -112,29 +130,29 @@ def _missing(names: tuple[str, ...], error: ValidationError) -> Iterator[Told]:
             yield Fault(dotted(path), str(properties[name]["title"]), "nothing"), path
 
 
-def _unknown(names: tuple[str, ...], error: ValidationError) -> Iterator[Told]:
+def _unknown(names: tuple[str, ...], error: ValidationError, rules: Rules) -> Iterator[Told]:
     known: Schema = _schema(error)["properties"]
     for name in cast("Table", error.instance):
         if name not in known:
-            yield _misplaced(names, name, known), (*names, name)
+            yield _misplaced(names, name, known, rules), (*names, name)
 
 
-def _misplaced(names: tuple[str, ...], name: str, known: Schema) -> Fault:
+def _misplaced(names: tuple[str, ...], name: str, known: Schema, rules: Rules) -> Fault:
     """Tell of an unknown key: where it belongs if another table has it, else which name is nearest."""
-    table = f"[{dotted(names)}]" if names else "the sheet"
-    homes = _homes().get(name, ())
+    table = f"[{dotted(names)}]" if names else rules.whole
+    homes = _homes(rules).get(name, ())
     if not homes:
         what = "a measure" if names == ("limits",) else f"a key of {table}"
         return Fault(dotted((*names, name)), what, "an unknown one", nearest(name, known))
-    place = " or ".join(f"[{home}]" if home else "the top of the sheet" for home in homes)
+    place = " or ".join(f"[{home}]" if home else f"the top of {rules.whole}" for home in homes)
     return Fault(dotted((*names, name)), f"this key in {place}", f"it in {table}", f"{homes[0]}.{name}".lstrip("."))
 
 
-@cache
-def _homes() -> dict[str, tuple[str, ...]]:
+@lru_cache(maxsize=8)
+def _homes(rules: Rules) -> dict[str, tuple[str, ...]]:
     """Return for each key of the schema the tables that have it."""
     homes: dict[str, tuple[str, ...]] = {}
-    for table, name in _keys("", schema()):
+    for table, name in _keys("", rules.schema):
         homes[name] = (*homes.get(name, ()), table)
     return homes
 
