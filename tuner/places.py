@@ -17,6 +17,11 @@ def sample_plants() -> Path:
     return _shipped("sample_plants")
 
 
+def demonstrations() -> Path:
+    """Return the folder of the demonstrations that come with the program, each on one of its tuning sheets."""
+    return sample_plants() / "demonstrations"
+
+
 def cache() -> Path:
     """Return the user's folder for what can be made again; nothing is created."""
     from platformdirs import user_cache_path

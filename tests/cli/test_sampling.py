@@ -6,7 +6,7 @@ import pytest
 
 from tuner.cli.main import main
 from tuner.cli.sampling import built_in
-from tuner.places import sample_plants
+from tuner.places import demonstrations, sample_plants
 
 Captured = pytest.CaptureFixture[str]
 
@@ -18,6 +18,7 @@ def test_the_list_names_every_sheet(capsys: Captured) -> None:
     said = capsys.readouterr().out
     assert all(f"{path}\n" in said for path in sample_plants().glob("*.toml"))
     assert "    Product heater outlet. Steam warms" in said
+    assert f"{demonstrations() / 'web_drifted.toml'}\n    Demonstration. Winder web: more integral action" in said
 
 
 def test_copies_are_the_same_files(tmp_path: Path, capsys: Captured) -> None:
@@ -26,6 +27,8 @@ def test_copies_are_the_same_files(tmp_path: Path, capsys: Captured) -> None:
 
     copied = tmp_path / "new" / "deep" / "heater.toml"
     assert copied.read_bytes() == built_in().read_bytes()
+    show = Path("demonstrations", "web_drifted.toml")
+    assert (tmp_path / "new" / "deep" / show).read_bytes() == (sample_plants() / show).read_bytes()
     assert f"{copied}\n" in capsys.readouterr().out
 
 

@@ -1,4 +1,4 @@
-"""`samples`: the tuning sheets that come with the program, listed or copied."""
+"""`samples`: the tuning sheets and demonstrations that come with the program, listed or copied."""
 
 import shutil
 import sys
@@ -7,7 +7,7 @@ from pathlib import Path
 from tuner.cli import status
 from tuner.cli.command import Arguments, Command, Parser
 from tuner.errors import TrimwrightError
-from tuner.places import sample_plants
+from tuner.places import demonstrations, sample_plants
 
 BUILT_IN = "heater.toml"
 """The sheet that the program opens when none is named."""
@@ -25,7 +25,7 @@ def declare(parser: Parser) -> None:
 
 
 def run(arguments: Arguments) -> int:
-    """List the sheets, or copy them."""
+    """List the samples, or copy them."""
     if arguments.to is None:
         return _list()
     try:
@@ -46,20 +46,28 @@ def copy(folder: Path, *, overwrite: bool = False) -> list[Path]:
     TrimwrightError
         When a file would be replaced that must not be; nothing is copied then.
     """
-    originals = [path for path in sorted(sample_plants().iterdir()) if path.is_file()]
-    present = [path.name for path in originals if (folder / path.name).exists()]
+    originals = [path.relative_to(sample_plants()) for path in sorted(sample_plants().rglob("*")) if path.is_file()]
+    present = [path for path in originals if (folder / path).exists()]
     if present and not overwrite:
         raise TrimwrightError(f"expected no file named {present[0]}, found one; --overwrite replaces it")
-    folder.mkdir(parents=True, exist_ok=True)
-    return [Path(shutil.copyfile(path, folder / path.name)) for path in originals]
+    return [_copied(path, folder) for path in originals]
+
+
+def _copied(path: Path, folder: Path) -> Path:
+    """Copy one sample, by its path in the folder of samples, to the same place in another folder."""
+    (folder / path).parent.mkdir(parents=True, exist_ok=True)
+    return Path(shutil.copyfile(sample_plants() / path, folder / path))
 
 
 def _list() -> int:
+    from tuner.files.demonstrations import read as read_demonstration
     from tuner.files.sheet import read
 
     for path in sorted(sample_plants().glob("*.toml")):
         loop = read(path).loop
         sys.stdout.write(f"{path}\n    {loop.title}. {loop.story}".rstrip() + "\n")
+    for path in sorted(demonstrations().glob("*.toml")):
+        sys.stdout.write(f"{path}\n    Demonstration. {read_demonstration(path).demonstration.title}\n")
     return status.MET
 
 

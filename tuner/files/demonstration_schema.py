@@ -75,7 +75,9 @@ def _over() -> Schema:
 
 def _controller(controller: Controller) -> Schema:
     """Return the schema of the numbers that a controller has."""
-    root = _table("a table of numbers of the controller", {key.name: value_schema(key) for key in rulers(controller.form)})
+    root = _table(
+        "a table of numbers of the controller", {key.name: value_schema(key) for key in rulers(controller.form)}
+    )
     for block in BLOCKS:
         there = {key.name: value_schema(key) for key in block_rulers(block) if _has(controller, key)}
         if there:

@@ -89,7 +89,9 @@ def _sheet(path: Path, faults: list[Fault]) -> Sheet | None:
     try:
         return sheets.read(path)
     except SheetError as error:
-        faults += [Fault("sheet", "a tuning sheet that can be used", f"in {path.name}: {fault}") for fault in error.faults]
+        faults += [
+            Fault("sheet", "a tuning sheet that can be used", f"in {path.name}: {fault}") for fault in error.faults
+        ]
         return None
 
 

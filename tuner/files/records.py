@@ -101,7 +101,9 @@ class RecordWriter:
         """Begin."""
         return self
 
-    def __exit__(self, kind: type[BaseException] | None, error: BaseException | None, trace: TracebackType | None) -> None:
+    def __exit__(
+        self, kind: type[BaseException] | None, error: BaseException | None, trace: TracebackType | None
+    ) -> None:
         """End the file."""
         self.close()
 
@@ -275,7 +277,9 @@ class _Table:
         arrays = {name: np.array(values, dtype=np.float64) for name, values in self.columns.items()}
         return Record(
             self._header.units,
-            *(arrays[name] for name in _NEEDED),
+            arrays[TIME],
+            arrays[MEASUREMENT],
+            arrays[EFFORT],
             arrays.get(REFERENCE),
             arrays.get(DISTURBANCE),
             np.array(self._manual, dtype=np.bool_),
