@@ -1,13 +1,14 @@
 """Tunings side by side: the same trial, family and limits for all of them."""
 
 from dataclasses import replace
-from math import inf
 
 import pytest
 
 from tests.compare.loops import mash
 from tuner.assess import assess
-from tuner.compare.tunings import Cell, Row, Tuning, TuningTable, change, compare_tunings, tunings_of
+from tuner.compare.tuning_table import Cell, Row, Tuning, TuningTable
+from tuner.compare.tunings import compare_tunings, tunings_of
+from tuner.footing.classes import Overtaken
 from tuner.model.measures import BY_NAME, MEASURES
 
 AS_FOUND = "[controller.as_found]\nkp = 1\nki = 0.1\n"
@@ -88,21 +89,5 @@ def test_a_tuning_that_cannot_be_computed_says_why() -> None:
 def test_what_is_not_wanted_any_more_ends_early() -> None:
     """Asked before each tuning."""
     answers = iter([False, True])
-    assert [one.name for one in compare_tunings(mash(more=AS_FOUND), stop=lambda: next(answers)).columns] == [
-        "as found"
-    ]
-
-
-@pytest.mark.parametrize(
-    ("measure", "value", "base", "share"),
-    [
-        ("overshoot", 6.0, 8.0, 0.25),
-        ("gain_margin", 6.0, 8.0, -0.25),
-        ("gain_margin", inf, 8.0, None),
-        ("overshoot", None, 8.0, None),
-        ("overshoot", 6.0, 0.0, None),
-    ],
-)
-def test_by_how_much_it_is_better(measure: str, value: float | None, base: float, share: float | None) -> None:
-    """In parts of the other value, above 0 for better."""
-    assert change(BY_NAME[measure], Cell(value), Cell(base)) == share
+    with pytest.raises(Overtaken):
+        compare_tunings(mash(more=AS_FOUND), stop=lambda: next(answers))

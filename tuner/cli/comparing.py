@@ -9,7 +9,7 @@ from rich.text import Text
 from tuner.cli.printing import STYLES, print_plain
 from tuner.compare.comparison import Comparison
 from tuner.compare.figures import QUANTITIES, Figure, best_of
-from tuner.compare.tunings import Cell, Row, TuningTable
+from tuner.compare.tuning_table import Cell, Row, TuningTable
 from tuner.judge.wording import quantity, unit_of
 from tuner.model.sheet import Sheet
 from tuner.model.units import unit_in

@@ -3,7 +3,7 @@
 from typing import Any
 
 from tuner.compare.comparison import Comparison
-from tuner.compare.tunings import Cell, Column, Row, TuningTable
+from tuner.compare.tuning_table import Cell, Column, Row, TuningTable
 from tuner.judge.as_json import as_json, number
 from tuner.model.sheet import Sheet
 

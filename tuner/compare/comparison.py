@@ -8,6 +8,7 @@ from tuner.assess import assess
 from tuner.compare.figures import Figure, figures_of
 from tuner.compare.structures import Structure, structures
 from tuner.errors import LoopError
+from tuner.footing.classes import Overtaken, never
 from tuner.judge.assessment import Assessment, WorstCase
 from tuner.judge.overlay import at_plant
 from tuner.judge.wording import number
@@ -15,9 +16,6 @@ from tuner.model.sheet import Sheet
 
 NOTHING_COMES_BACK = "No: nothing that it does depends on the output."
 NO_GAIN_DOES = "Yes, as any feedback; here no loop gain does, however large."
-
-Stop = Callable[[], bool]
-"""Tells whether a comparison is not wanted any more."""
 
 
 @dataclass(frozen=True, slots=True, eq=False)
@@ -58,7 +56,7 @@ class Comparison:
 
 
 def compare_structures(
-    sheet: Sheet, family_size: int | None = None, *, stop: Stop = lambda: False
+    sheet: Sheet, family_size: int | None = None, *, stop: Callable[[], bool] = never
 ) -> tuple[Comparison, ...]:
     """Assess the loop of a sheet with feedforward alone, with feedback alone, and with both.
 
@@ -67,17 +65,19 @@ def compare_structures(
     family_size : int or None
         As `assess` takes it.
     stop : callable
-        Asked before each structure; what is not wanted any more ends there, with those that are done.
+        Asked before each structure whether an answer is not wanted any more.
 
     Raises
     ------
+    Overtaken
+        When it is not.
     LoopError
         When the plant itself cannot be computed, with the reason.
     """
     found: list[Comparison] = []
     for structure in structures(sheet):
         if stop():
-            break
+            raise Overtaken
         found.append(_compared(structure, family_size))
     return tuple(found)
 

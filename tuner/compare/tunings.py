@@ -1,89 +1,17 @@
 """Tunings of one loop beside each other: as found, as left and those that were kept, on the same trial and family."""
 
 from collections.abc import Callable, Iterable, Sequence
-from dataclasses import dataclass, replace
-from math import inf, isfinite
+from dataclasses import replace
+from math import inf
 
 from tuner.assess import assess
+from tuner.compare.tuning_table import AS_FOUND, AS_LEFT, Cell, Column, Row, Tuning, TuningTable
 from tuner.errors import LoopError
+from tuner.footing.classes import Overtaken, never
 from tuner.judge.assessment import Assessment, MemberResult, WorstCase
 from tuner.judge.verdict import meets
-from tuner.model.controller import Controller
 from tuner.model.measures import MEASURES, Measure
 from tuner.model.sheet import Sheet
-
-AS_FOUND, AS_LEFT = "as found", "as left"
-
-Stop = Callable[[], bool]
-"""Tells whether a table is not wanted any more."""
-
-
-@dataclass(frozen=True, slots=True)
-class Tuning:
-    """A tuning to compare: what it is called, what it is in words, and its controller."""
-
-    name: str
-    label: str
-    controller: Controller
-
-
-@dataclass(frozen=True, slots=True, eq=False)
-class Column:
-    """One tuning, judged; `refusal` says in a sentence why there is no assessment."""
-
-    tuning: Tuning
-    assessment: Assessment | None
-    refusal: str = ""
-
-    @property
-    def name(self) -> str:
-        """What the tuning is called."""
-        return self.tuning.name
-
-
-@dataclass(frozen=True, slots=True)
-class Cell:
-    """A measure of one tuning at its worst over the family.
-
-    Parameters
-    ----------
-    value : float or None
-        The size of measures that are bounded by size; None where it does not exist.
-    plant : str
-        The plant that gave it, how far it has drifted; '' without an assessment.
-    none : bool
-        Whether None means "none", which is good.
-    met : bool or None
-        Whether the limit of the measure is met; None without one.
-    best : bool
-        Whether no other tuning is better, and some are not as good.
-    reason : str
-        Where there is no value, why, as the end of a sentence.
-    """
-
-    value: float | None
-    plant: str = ""
-    none: bool = False
-    met: bool | None = None
-    best: bool = False
-    reason: str = ""
-
-
-@dataclass(frozen=True, slots=True)
-class Row:
-    """A measure of all tunings, in the order of the columns; `limit` is that of the sheet, None for none."""
-
-    measure: Measure
-    limit: float | None
-    cells: tuple[Cell, ...]
-
-
-@dataclass(frozen=True, slots=True, eq=False)
-class TuningTable:
-    """Measures of tunings: those with limits first, in the order of the sheet."""
-
-    columns: tuple[Column, ...]
-    rows: tuple[Row, ...]
 
 
 def tunings_of(sheet: Sheet, kept: Iterable[Tuning] = ()) -> tuple[Tuning, ...]:
@@ -94,7 +22,7 @@ def tunings_of(sheet: Sheet, kept: Iterable[Tuning] = ()) -> tuple[Tuning, ...]:
 
 
 def compare_tunings(
-    sheet: Sheet, kept: Iterable[Tuning] = (), family_size: int | None = None, *, stop: Stop = lambda: False
+    sheet: Sheet, kept: Iterable[Tuning] = (), family_size: int | None = None, *, stop: Callable[[], bool] = never
 ) -> TuningTable:
     """Assess tunings of a sheet with the same trial, the same family and the same limits.
 
@@ -105,12 +33,17 @@ def compare_tunings(
     family_size : int or None
         As `assess` takes it.
     stop : callable
-        Asked before each tuning; what is not wanted any more ends there, with those that are done.
+        Asked before each tuning whether an answer is not wanted any more.
+
+    Raises
+    ------
+    Overtaken
+        When it is not.
     """
     columns: list[Column] = []
     for tuning in tunings_of(sheet, kept):
         if stop():
-            break
+            raise Overtaken
         columns.append(judged(sheet, tuning, family_size))
     return table(sheet, columns)
 
@@ -169,16 +102,3 @@ def _badness(measure: Measure, cell: Cell) -> float:
     if cell.value is None:
         return -inf if cell.none else inf
     return -cell.value if measure.at_least else cell.value
-
-
-def change(measure: Measure, cell: Cell, base: Cell) -> float | None:
-    """Return by how many parts a cell is better than another: 0.25 is a quarter of the other's value.
-
-    Above 0 is better, below 0 worse; None where either has no finite value, or the other's is 0.
-    """
-    if cell.value is None or base.value is None or not base.value:
-        return None
-    if not (isfinite(cell.value) and isfinite(base.value)):
-        return None
-    share = (cell.value - base.value) / abs(base.value)
-    return share if measure.at_least else -share

@@ -10,6 +10,7 @@ from PySide6.QtCore import Qt, QTimer
 from PySide6.QtGui import QCloseEvent, QIcon
 from PySide6.QtWidgets import QApplication
 
+from tuner.compare.tuning_table import Tuning, TuningTable
 from tuner.errors import TrimwrightError
 from tuner.footing.apart import Apart
 from tuner.judge.assessment import Assessment
@@ -19,6 +20,7 @@ from tuner.places import keep_compiled_kernels, resources, sample_plants
 from tuner.session.document import Document
 from tuner.window import faults, memory
 from tuner.window.asking import Asking
+from tuner.window.beside import Stop
 from tuner.window.commands import Commands
 from tuner.window.editors import build_editors
 from tuner.window.ending import leave
@@ -30,10 +32,15 @@ from tuner.window.menus import Menus
 from tuner.window.rulers import Footing, build_rulers, keep_painted
 from tuner.window.sheet_files import SheetFiles
 from tuner.window.shown import Sketched
+from tuner.window.structures import build_structures
+from tuner.window.structures.page import StructuresPage
 from tuner.window.theme import CHOICES, Theme
+from tuner.window.tunings import build_tunings
+from tuner.window.tunings.page import TuningsPage
 from tuner.window.worker import Assessor
 
-if TYPE_CHECKING:  # this road is loaded when it is first taken
+if TYPE_CHECKING:  # these roads are loaded when they are first taken
+    from tuner.compare.comparison import Comparison
     from tuner.footing.reason import Reason
 
 _FIRST_SIZE = (1440, 900)
@@ -52,6 +59,7 @@ class Wiring:
     footing: Footing | None = None
     gain_map: GainMapPage | None = None
     apart: tuple[Apart, ...] = ()
+    compared: tuple[StructuresPage | TuningsPage, ...] = ()
 
 
 def open_window(path: Path | None) -> int:
@@ -101,28 +109,31 @@ def built(application: QApplication, document: Document, asking: Asking | None =
     apart = Apart(), Apart()
     footing = keep_painted(document, rulers, apart[0].paint_rulers, _reason_at)
     gain_map = build_gain_map(document, theme, apart[1].paint_map, _reason_at)
-    window = MainWindow(document, theme, assessor, build_editors(document, theme), rulers, (gain_map,))
+    compared = build_structures(document, theme, _structures, _draw), build_tunings(document, theme, _tunings)
+    more = (gain_map, *compared)
+    window = MainWindow(document, theme, assessor, build_editors(document, theme), rulers, more)
     window.resize(*_FIRST_SIZE)
     window.restore_layout(remembered)
-    for worker in (*apart, assessor, footing.painted, footing.reader, gain_map):
+    for worker in (*apart, assessor, footing.painted, footing.reader, *more):
         application.aboutToQuit.connect(worker.close)
     assessor.answered.connect(apart[0].start, Qt.ConnectionType.SingleShotConnection)
-    return window, wire(window, asking or Asking(window), footing, gain_map, apart)
+    return window, wire(window, asking or Asking(window), footing, gain_map, apart, compared)
 
 
-def wire(
+def wire(  # noqa: PLR0913, PLR0917 - what a window is made of
     window: MainWindow,
     asking: Asking,
     footing: Footing | None = None,
     gain_map: GainMapPage | None = None,
     apart: tuple[Apart, ...] = (),
+    compared: tuple[StructuresPage | TuningsPage, ...] = (),
 ) -> Wiring:
     """Give a window its menus, its files, its footing, its gain map and its manners on closing."""
     files = SheetFiles(window.document, asking)
     keeping = Keeping(window.document, asking)
     menus = Menus(window, files, Commands(window, asking))
     window.dropped.connect(files.open_path)
-    wiring = Wiring(menus, files, keeping, footing, gain_map, apart)
+    wiring = Wiring(menus, files, keeping, footing, gain_map, apart, compared)
     window.closing.connect(lambda event: _close(window, wiring, event))
     if footing is not None:
         footing.painted.wake_after(window.assessor)
@@ -149,6 +160,8 @@ def _close(window: MainWindow, wiring: Wiring, event: QCloseEvent) -> None:
         wiring.footing.close()
     if wiring.gain_map is not None:
         wiring.gain_map.close()
+    for page in wiring.compared:
+        page.close()
 
 
 def _sketch(sheet: Sheet, size: int) -> Sketched:
@@ -167,6 +180,18 @@ def _reason_at(sheet: Sheet, changes: Mapping[str, float], /) -> "Reason":
     from tuner.footing.reason import reason_at
 
     return reason_at(sheet, changes)
+
+
+def _structures(sheet: Sheet, *, stop: Stop) -> "tuple[Comparison, ...]":
+    from tuner.compare.comparison import compare_structures
+
+    return compare_structures(sheet, stop=stop)
+
+
+def _tunings(sheet: Sheet, kept: tuple[Tuning, ...], *, stop: Stop) -> TuningTable:
+    from tuner.compare.tunings import compare_tunings
+
+    return compare_tunings(sheet, kept, stop=stop)
 
 
 def _draw(sheet: Sheet, assessment: Assessment) -> Overlay:

@@ -2,6 +2,7 @@
 
 from collections.abc import Callable, Iterable
 from functools import partial
+from typing import Any
 
 from PySide6.QtCore import QPoint
 from PySide6.QtGui import QAction, QActionGroup, QKeySequence
@@ -15,6 +16,7 @@ from tuner.window.pictures import Pictured
 from tuner.window.plots.panel import Panel
 from tuner.window.sheet_files import SheetFiles, recent, samples
 from tuner.window.shown import FamilyView
+from tuner.window.structures.page import StructuresPage
 from tuner.window.theme import CHOICES
 
 _FAMILY_WORDS: dict[FamilyView, str] = {
@@ -39,8 +41,11 @@ class Menus:
         self._fill_view()
         self._fill_help()
         self._document.listen(self.refresh)
-        window.plots.menu_wanted.connect(self._plot_menu)
-        window.frequency.menu_wanted.connect(self._plot_menu)
+        window.plots.menu_wanted.connect(self.plot_menu)
+        window.frequency.menu_wanted.connect(self.plot_menu)
+        for page in window.pages.pages.values():
+            if isinstance(page, StructuresPage):
+                page.menu_wanted.connect(self.plot_menu)
         self.refresh()
 
     def refresh(self) -> None:
@@ -175,7 +180,7 @@ class Menus:
         if menu.isEmpty():
             menu.addAction("none yet").setEnabled(False)
 
-    def _plot_menu(self, panel: Panel, at: QPoint) -> None:
+    def plot_menu(self, panel: Panel[Any], at: QPoint) -> None:
         """Open the menu of one plot where it was asked for."""
         menu, commands = QMenu(self._window), self._commands
         self._list(

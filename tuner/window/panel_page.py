@@ -29,10 +29,10 @@ class PanelPage(QObject):
     plant_wanted = Signal(str)
     """The name of a plant of the family that is to be looked at."""
 
-    def __init__(self, theme: Theme, left: tuple[Panel, ...], right: tuple[Panel, ...]) -> None:
+    def __init__(self, theme: Theme, left: tuple[Panel[Shown], ...], right: tuple[Panel[Shown], ...]) -> None:
         super().__init__()
         rows = zip(left, right, strict=True)
-        self.panels: dict[str, Panel] = {panel.name: panel for row in rows for panel in row}
+        self.panels: dict[str, Panel[Shown]] = {panel.name: panel for row in rows for panel in row}
         self.widget = _split(Qt.Orientation.Horizontal)
         self.left, self.right = (_split(Qt.Orientation.Vertical) for _ in range(2))
         self._columns = ((self.left, left), (self.right, right))

@@ -38,7 +38,7 @@ _NONE: ComplexArray = np.empty((0, 0), dtype=np.complex128)
 _MEASURES = ("max_sensitivity",)
 
 
-class NyquistPanel(Panel):
+class NyquistPanel(Panel[Shown]):
     """The loop gain in the complex plane, for frequencies above zero."""
 
     def __init__(self, name: str, theme: Theme) -> None:

@@ -55,7 +55,7 @@ class Bundle:
     place: float = 0.5
 
 
-class FrequencyPanel(Panel):
+class FrequencyPanel(Panel[Shown]):
     """A plot over the logarithm of frequency; subclasses say which curves and marks."""
 
     measures: tuple[str, ...] = ()

@@ -2,9 +2,8 @@
 
 from collections.abc import Iterator, Mapping
 
-from PySide6.QtCore import QObject, Signal
-from PySide6.QtGui import QHideEvent, QShowEvent
-from PySide6.QtWidgets import QVBoxLayout, QWidget
+from PySide6.QtCore import QObject
+from PySide6.QtWidgets import QVBoxLayout
 
 from tuner.footing.classes import UNKNOWN, WORDS
 from tuner.session.document import Document
@@ -17,6 +16,7 @@ from tuner.window.gain_map.reader import MapReader
 from tuner.window.gain_map.view import MapView
 from tuner.window.pictures import Pictured
 from tuner.window.rulers.reading_line import CLASSES, Piece, ReadingLine
+from tuner.window.seen import Seen
 from tuner.window.shown import Shown
 from tuner.window.theme import Theme
 
@@ -48,7 +48,7 @@ class GainMapPage(QObject):
         self._grasped = document.sheet
         self.choosers, self.view = Choosers(theme), MapView(theme)
         self.line = ReadingLine(theme, legend=LEGEND)
-        self.widget = _Seen()
+        self.widget = Seen()
         column = QVBoxLayout(self.widget)
         column.setContentsMargins(0, 0, 0, 0)
         column.setSpacing(0)
@@ -165,19 +165,3 @@ class GainMapPage(QObject):
         """Go back to where the hand began; a drag that came back there by itself is no step to undo."""
         if self._document.sheet != self._grasped:
             self._document.undo()
-
-
-class _Seen(QWidget):
-    """A widget that tells when it comes in sight and when it goes."""
-
-    seen = Signal(bool)
-
-    def showEvent(self, event: QShowEvent) -> None:
-        """Tell that it is in sight."""
-        super().showEvent(event)
-        self.seen.emit(True)
-
-    def hideEvent(self, event: QHideEvent) -> None:
-        """Tell that it is not."""
-        super().hideEvent(event)
-        self.seen.emit(False)

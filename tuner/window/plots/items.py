@@ -7,8 +7,8 @@ connect array, and the ground they cover is one item of vertical strokes.
 
 import numpy as np
 import pyqtgraph as pg
-from PySide6.QtCore import QRectF, Qt
-from PySide6.QtGui import QColor, QPainter, QTransform
+from PySide6.QtCore import QPointF, QRectF, Qt
+from PySide6.QtGui import QColor, QPainter, QPolygonF, QTransform
 from PySide6.QtWidgets import QStyleOptionGraphicsItem, QWidget
 
 from tuner.window.plots.still import StillPicture
@@ -102,6 +102,39 @@ class Curve(_Joining, pg.PlotCurveItem):  # type: ignore[misc]  # pyqtgraph publ
             painter.setWorldTransform(place * QTransform.fromTranslate(x, y))
             super().paint(painter, option, widget)
         painter.setWorldTransform(place)
+
+
+class Ground(_Joining):
+    """The ground between a lower and an upper curve, translucent, so that several may lie over one another."""
+
+    def __init__(self, *, depth: float = 0.0) -> None:
+        super().__init__()
+        self._polygon, self._bounds, self._colour = QPolygonF(), QRectF(), QColor()
+        self.setZValue(depth)
+
+    def show_pairs(self, points: Points, colour: QColor) -> None:
+        """Show every two points as lower and upper edge, filled with a colour."""
+        self.prepareGeometryChange()
+        self._bounds, self._colour = _bounds(points), colour
+        upper = zip(points.x[-1::-2], points.y[-1::-2], strict=True)
+        corners = (*zip(points.x[::2], points.y[::2], strict=True), *upper)
+        self._polygon = QPolygonF([QPointF(float(x), float(y)) for x, y in corners])
+        self.update()
+
+    def boundingRect(self) -> QRectF:
+        """Return where the corners lie."""
+        return self._bounds
+
+    def paint(self, painter: QPainter, _option: QStyleOptionGraphicsItem, _widget: QWidget | None) -> None:
+        """Paint it, unless it is part of a picture."""
+        if self._still is None:
+            self.paint_still(painter)
+
+    def paint_still(self, painter: QPainter) -> None:
+        """Paint it into the picture."""
+        painter.setPen(Qt.PenStyle.NoPen)
+        painter.setBrush(self._colour)
+        painter.drawPolygon(self._polygon)
 
 
 class Axis(pg.AxisItem):  # type: ignore[misc]  # pyqtgraph publishes no types

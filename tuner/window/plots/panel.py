@@ -1,7 +1,7 @@
 """One plot with its words: a title, the axis in words, what is missed here, and what the pointer reads."""
 
 from collections.abc import Sequence
-from typing import ClassVar, Protocol
+from typing import ClassVar, Generic, Protocol, TypeVar
 
 import pyqtgraph as pg
 from PySide6.QtCore import QEvent, QObject, QPointF, QRectF, Qt, Signal
@@ -14,8 +14,10 @@ from tuner.window.plots.items import Axis
 from tuner.window.plots.layers import GroundLayer, MarkLayer
 from tuner.window.plots.still import StillPicture
 from tuner.window.plots.ticks import Tick, ticks
-from tuner.window.shown import Shown
 from tuner.window.theme import Theme
+
+Answer = TypeVar("Answer")
+"""What a plot shows."""
 
 _LEFT_AXIS = 52
 _BOTTOM_AXIS = 22
@@ -115,7 +117,7 @@ class PlotView(pg.PlotWidget):  # type: ignore[misc]  # pyqtgraph publishes no t
         self.whole_wanted.emit()
 
 
-class Panel(QObject):
+class Panel(QObject, Generic[Answer]):
     """A plot with its words; what it shows, others say.
 
     Parameters
@@ -135,7 +137,7 @@ class Panel(QObject):
         self.name = name
         self.held = False
         self.stale = False
-        self.shown: Shown | None = None
+        self.shown: Answer | None = None
         self._theme = theme
         self._by_hand = False
         self._divided: tuple[object, ...] = ()
@@ -151,7 +153,7 @@ class Panel(QObject):
 
     # What subclasses say ----------------------------------------------------------------------------------------
 
-    def draw(self, shown: Shown) -> None:
+    def draw(self, shown: Answer) -> None:
         """Take over the numbers of an answer and draw them in the ranges that they ask for."""
         raise NotImplementedError
 
@@ -173,7 +175,7 @@ class Panel(QObject):
 
     # What the window says ---------------------------------------------------------------------------------------
 
-    def show(self, shown: Shown) -> None:
+    def show(self, shown: Answer) -> None:
         """Show an answer."""
         self.shown, self.stale = shown, False
         self.view.setVisible(True)

@@ -50,7 +50,7 @@ def least_damped(shown: Shown) -> Least | None:
     return Least(np.array([pole, pole.conjugate()]), words, "" if is_seen else members[0].name)
 
 
-class PolePanel(Panel):
+class PolePanel(Panel[Shown]):
     """The pole map; each axis has its own scale, so that slow poles are told apart in a wide plot."""
 
     def __init__(self, name: str, theme: Theme) -> None:

@@ -39,7 +39,7 @@ _BEFORE = 0.02
 """Share of the duration that is shown before the step."""
 
 
-class TracePanel(Panel):
+class TracePanel(Panel[Shown]):
     """A plot over time; subclasses say which curves."""
 
     plot: Plot
@@ -187,18 +187,18 @@ class TracePanel(Panel):
         named += [(lines.second, "disturbance_word", 0.3)] if lines.second is not None else []
         named += [(lines.worst, "limit_word", 0.3)] if lines.worst is not None else []
         named += [(line, "kept_word", 0.12 + 0.06 * index) for index, line in enumerate(lines.kept)]
-        names = [_name(line, role, share, seen) for line, role, share in named if line.name]
+        names = [name_of(line, role, share, seen) for line, role, share in named if line.name]
         if lines.limited is not None and lines.limited.connect.mean() >= _WORTH_WORDS:
             first = int(lines.limited.connect.argmax())
             names.append(
-                _name(
+                name_of(
                     Line(lines.limited.t[first:], lines.limited.values[first:], "at a limit"), "limit_word", 0.0, seen
                 )
             )
         return names
 
 
-def _name(line: Line, role: str, share: float, seen: Extent) -> Words:
+def name_of(line: Line, role: str, share: float, seen: Extent) -> Words:
     """Return the name of a curve beside it, at a share of its length, above where it falls and below where it rises."""
     index = int(share * (line.t.size - 1))
     value = float(np.clip(line.values[index], seen.low, seen.high))
