@@ -1,13 +1,16 @@
 """A table of tunings as plain data: what is compared, what each comes to, and by how much one is better."""
 
 from dataclasses import dataclass
-from math import isfinite
+from math import inf, isfinite
 
 from tuner.judge.assessment import Assessment
 from tuner.model.controller import Controller
 from tuner.model.measures import Measure
 
 AS_FOUND, AS_LEFT = "as found", "as left"
+
+ALIKE = 0.005
+"""Share of a value below which a difference is none."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -89,3 +92,18 @@ def change(measure: Measure, cell: Cell, base: Cell) -> float | None:
         return None
     share = (cell.value - base.value) / abs(base.value)
     return share if measure.at_least else -share
+
+
+def badness(measure: Measure, cell: Cell) -> float:
+    """Return a number by which cells of one measure are ordered, the best first."""
+    if cell.value is None:
+        return -inf if cell.none else inf
+    return -cell.value if measure.at_least else cell.value
+
+
+def standing(measure: Measure, cell: Cell, base: Cell) -> int:
+    """Return 1 where a cell is better than another, -1 where it is worse, 0 where they are alike but for `ALIKE`."""
+    one, other = badness(measure, cell), badness(measure, base)
+    if one == other or (isfinite(other) and abs(one - other) <= ALIKE * abs(other)):
+        return 0
+    return 1 if one < other else -1

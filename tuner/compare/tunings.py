@@ -5,7 +5,7 @@ from dataclasses import replace
 from math import inf
 
 from tuner.assess import assess
-from tuner.compare.tuning_table import AS_FOUND, AS_LEFT, Cell, Column, Row, Tuning, TuningTable
+from tuner.compare.tuning_table import AS_FOUND, AS_LEFT, Cell, Column, Row, Tuning, TuningTable, badness
 from tuner.errors import LoopError
 from tuner.footing.classes import Overtaken, never
 from tuner.judge.assessment import Assessment, MemberResult, WorstCase
@@ -91,14 +91,8 @@ def _reason(measure: Measure, worst: WorstCase, members: Sequence[MemberResult])
 
 def _best(measure: Measure, cells: Sequence[Cell]) -> list[bool]:
     """Tell which cells are the best; none where all are alike."""
-    badness = [_badness(measure, cell) for cell in cells]
-    least = min(badness, default=inf)
-    if len(set(badness)) < 2:
+    found = [badness(measure, cell) for cell in cells]
+    least = min(found, default=inf)
+    if len(set(found)) < 2:
         return [False] * len(cells)
-    return [bad == least for bad in badness]
-
-
-def _badness(measure: Measure, cell: Cell) -> float:
-    if cell.value is None:
-        return -inf if cell.none else inf
-    return -cell.value if measure.at_least else cell.value
+    return [bad == least for bad in found]

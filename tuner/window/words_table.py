@@ -6,7 +6,7 @@ from PySide6.QtCore import QAbstractTableModel, QModelIndex, QPersistentModelInd
 from PySide6.QtGui import QColor, QResizeEvent
 from PySide6.QtWidgets import QAbstractItemView, QHeaderView, QTableView
 
-from tuner.window.theme import Theme
+from tuner.window.theme import Size, Theme
 
 _LOOK = """
 QTableView {{ background: {page}; border: 0; selection-background-color: {hover}; selection-color: {ink}; }}
@@ -14,12 +14,16 @@ QTableView::item {{ padding: 2px 8px; border: 0; }}
 QTableView::item:focus {{ border: 1px solid {nominal}; }}
 QHeaderView, QHeaderView::section {{ background: {page}; border: 0; }}
 QHeaderView::section {{ padding: 2px 8px; color: {quiet}; }}
+QTableCornerButton::section {{ background: {page}; border: 0; }}
 """
 
 _PALE = 0.45
 """How much shows of what is not true any more."""
-_HEADS = 168
+_HEADS = 176
 """Pixels for the heads of the rows."""
+_NARROW = 208
+"""Pixels below which a column is written small, and its heads with it."""
+_SMALL_HEADS = 152
 
 _Index = QModelIndex | QPersistentModelIndex
 
@@ -51,6 +55,7 @@ class WordsModel(QAbstractTableModel):
         self._theme = theme
         self.words = TableWords()
         self.pale = False
+        self.size: Size = "body"
 
     def show_words(self, words: TableWords) -> None:
         """Take other words; a table of the same shape keeps its place."""
@@ -95,7 +100,7 @@ class WordsModel(QAbstractTableModel):
         if role == Qt.ItemDataRole.ForegroundRole:
             return self._colour(cell.role)
         if role == Qt.ItemDataRole.FontRole:
-            return self._theme.font("body", strong=cell.strong)
+            return self._theme.font(self.size, strong=cell.strong)
         if role == Qt.ItemDataRole.ToolTipRole:
             return cell.tip or None
         if role == Qt.ItemDataRole.TextAlignmentRole:
@@ -125,6 +130,7 @@ class WordsTable(QTableView):
         self.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
         self.setVerticalScrollMode(QAbstractItemView.ScrollMode.ScrollPerPixel)
         self.setTabKeyNavigation(False)
+        self.setCornerButtonEnabled(False)
         across, upwards = self.horizontalHeader(), self.verticalHeader()
         across.setSectionResizeMode(QHeaderView.ResizeMode.Stretch)
         across.setHighlightSections(False)
@@ -138,7 +144,7 @@ class WordsTable(QTableView):
         """Show other words, all of them true."""
         self.words.pale = False
         self.words.show_words(words)
-        self.resizeRowsToContents()
+        self._fit()
 
     def show_pale(self) -> None:
         """Show the words paler: they are not true any more."""
@@ -149,6 +155,17 @@ class WordsTable(QTableView):
     def resizeEvent(self, event: QResizeEvent) -> None:
         """Give every row the lines that it needs in the new width."""
         super().resizeEvent(event)
+        self._fit()
+
+    def _fit(self) -> None:
+        """Write small where columns are narrow, and give every row the lines that it needs."""
+        count = max(len(self.words.words.columns), 1)
+        is_narrow = (self.width() - _HEADS) / count < _NARROW
+        size: Size = "small" if is_narrow else "body"
+        if size != self.words.size:
+            self.words.size = size
+            self.verticalHeader().setFixedWidth(_SMALL_HEADS if is_narrow else _HEADS)
+            self.words.tell()
         self.resizeRowsToContents()
 
     def _dress(self) -> None:

@@ -69,6 +69,7 @@ class OverlaidPanel(Panel[Compared]):
         self.curves: dict[str, Curve] = {}
         super().__init__(name, theme)
         self.widget.setMinimumSize(152, 96)
+        self._missed.setVisible(False)  # limits belong to one tuning, not to a comparison
         for kind in ROLES:
             self.grounds[kind], self.curves[kind] = Ground(depth=-50.0), Curve(strong=True)
             for item in (self.grounds[kind], self.curves[kind]):

@@ -7,13 +7,14 @@ from PySide6.QtWidgets import QSplitter, QVBoxLayout
 
 from tuner.session.document import Document
 from tuner.window.beside import Beside
+from tuner.window.elided import RoleLabel
 from tuner.window.in_sight import InSight, Question, Request, without_as_found
 from tuner.window.pictures import Pictured
 from tuner.window.seen import Seen
 from tuner.window.shown import Shown
 from tuner.window.structures.compared import Compared
 from tuner.window.structures.overlaid import OverlaidPanel, overlaid_panels
-from tuner.window.structures.words import table_words
+from tuner.window.structures.words import summary, table_words
 from tuner.window.theme import Theme
 from tuner.window.words_table import TableWords, WordsTable
 
@@ -43,13 +44,15 @@ class StructuresPage(QObject):
         self._document, self._theme = document, theme
         self._awake = False
         self.plots = overlaid_panels(theme)
-        self.table = WordsTable("Structures compared", theme)
+        self.line, self.table = RoleLabel(theme), WordsTable("Structures compared", theme)
         self.answers = InSight(worker)
         self.compared: Compared | None = None
         self.widget = Seen()
         self._arrange()
         self._connect()
+        self.line.dress()
         self.say_empty(COMPARING)
+        self.refresh()
 
     @property
     def panels(self) -> Mapping[str, Pictured]:
@@ -85,6 +88,7 @@ class StructuresPage(QObject):
     def say_empty(self, sentence: str) -> None:
         """Say why there is nothing to show."""
         if self.compared is None:
+            self.line.setText("")
             for plot in self.plots:
                 plot.say_empty(sentence)
 
@@ -115,6 +119,7 @@ class StructuresPage(QObject):
                 plot.show(found)
             else:
                 plot.show_empty("None of the structures can be computed; the table says why.")
+        self.line.setText(summary(found))
         self.table.show_words(table_words(found))
 
     def _fade(self) -> None:
@@ -127,6 +132,7 @@ class StructuresPage(QObject):
     def _failed(self, sentence: str) -> None:
         self._fade()
         self.say_empty(sentence)
+        self.line.setText(sentence)
 
     def _wake(self) -> None:
         if not self._awake:
@@ -143,10 +149,14 @@ class StructuresPage(QObject):
             splitter.setChildrenCollapsible(False)
             splitter.setHandleWidth(4)
         self.table.setMinimumHeight(64)
+        self.across.setSizes([400, 400, 400])
         self.upwards.setSizes([500, 400])
+        self.line.setContentsMargins(8, 4, 8, 4)
         column = QVBoxLayout(self.widget)
         column.setContentsMargins(0, 0, 0, 0)
-        column.addWidget(self.upwards)
+        column.setSpacing(0)
+        column.addWidget(self.line)
+        column.addWidget(self.upwards, 1)
 
     def _connect(self) -> None:
         self._stop_listening = self._document.listen(self.refresh)
@@ -162,5 +172,6 @@ class StructuresPage(QObject):
         plot.menu_wanted.connect(lambda at: self.menu_wanted.emit(plot, at))
 
     def _dress(self) -> None:
+        self.line.dress()
         for plot in self.plots:
             plot.dress()

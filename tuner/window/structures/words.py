@@ -27,6 +27,12 @@ def table_words(shown: Compared) -> TableWords:
     return TableWords(tuple(_column(one) for one in shown.comparisons), heads, rows)
 
 
+def summary(shown: Compared) -> str:
+    """Return what must be known before anything is compared: where the feedforward comes from."""
+    forward = next((one for one in shown.comparisons if one.structure.kind == "feedforward"), None)
+    return " ".join(forward.remarks) if forward else ""
+
+
 def _column(one: "Comparison") -> CellWords:
     return CellWords(f"{one.name[0].upper()}{one.name[1:]}", f"{ROLES[one.structure.kind]}_word", strong=True)
 

@@ -53,7 +53,9 @@ class TuningsPage(QObject):
         column.addWidget(self.table, 1)
         theme.changed.connect(self.line.dress)
         self._connect()
+        self.line.dress()
         self.say_empty(COMPARING)
+        self.refresh()
 
     @property
     def panels(self) -> Mapping[str, Pictured]:

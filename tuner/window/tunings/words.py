@@ -2,7 +2,7 @@
 
 from collections.abc import Iterator
 
-from tuner.compare.tuning_table import Cell, Column, Row, TuningTable, change
+from tuner.compare.tuning_table import ALIKE, Cell, Column, Row, TuningTable, change, standing
 from tuner.judge.overlay import at_plant, missed
 from tuner.judge.wording import minus, quantity, unit_of
 from tuner.model.sheet import Sheet
@@ -11,8 +11,6 @@ from tuner.window.words_table import CellWords, TableWords
 
 _DIGITS = 3
 _ROLES = {"met": "firm_word", "missed": "lost_word", "unstable": "lost_word"}
-_ALIKE = 0.005
-"""Share below which a difference is not told."""
 
 ALONE = (
     "There is one tuning only: keep it with Ctrl+K before changing it, or note it as found in the Tuning menu, "
@@ -29,12 +27,12 @@ def table_words(shown: ComparedTunings) -> TableWords:
 
 
 def summary(table: TuningTable) -> str:
-    """Say how the last tuning before the kept ones stands to the first, over all measures."""
+    """Say how the second tuning stands to the first, over all measures."""
     if len(table.columns) < 2:
         return ALONE
     first, second = table.columns[0].name, table.columns[1].name
-    changes = [change(row.measure, row.cells[1], row.cells[0]) or 0.0 for row in table.rows]
-    better, worse = (sum(sign * share > _ALIKE for share in changes) for sign in (1.0, -1.0))
+    stands = [standing(row.measure, row.cells[1], row.cells[0]) for row in table.rows]
+    better, worse = stands.count(1), stands.count(-1)
     begun = f"{second[0].upper()}{second[1:]}"
     return f"{begun} is better than {first} in {better} measures and worse in {worse}. Worst plant of the family each."
 
@@ -91,7 +89,7 @@ def _cell(row: Row, place: int, unit: str) -> CellWords:
 def _difference(row: Row, place: int) -> str:
     """Say by how much a tuning is better than the first, in % of that."""
     share = change(row.measure, row.cells[place], row.cells[0]) if place else None
-    if share is None or abs(share) < _ALIKE:
+    if share is None or abs(share) <= ALIKE:
         return ""
     return f"{quantity(100.0 * abs(share), '%', 2)} {'better' if share > 0.0 else 'worse'}"
 
