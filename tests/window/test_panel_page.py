@@ -10,6 +10,7 @@ from tests.window.plots.answers import answer
 from tuner.window.panel_page import PanelPage
 from tuner.window.plots.panel import Panel
 from tuner.window.plots.pole_panel import PolePanel
+from tuner.window.shown import Shown
 from tuner.window.theme import Theme
 
 NAMES = ["upper left", "upper right", "lower left", "lower right"]
@@ -47,7 +48,7 @@ def test_an_answer_reaches_every_plot(page: PanelPage) -> None:
     ],
 )
 def test_what_is_told_reaches_every_plot(
-    page: PanelPage, tell: Callable[[PanelPage], None], told: Callable[[Panel], bool]
+    page: PanelPage, tell: Callable[[PanelPage], None], told: Callable[[Panel[Shown]], bool]
 ) -> None:
     """Each of them."""
     tell(page)

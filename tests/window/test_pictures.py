@@ -12,11 +12,12 @@ from tuner.errors import TrimwrightError
 from tuner.window.pictures import copy_picture, save_picture
 from tuner.window.plots.panel import Panel
 from tuner.window.plots.trace_panel import ReferencePanel
+from tuner.window.shown import Shown
 from tuner.window.theme import Theme
 
 
 @pytest.fixture
-def panel(theme: Theme, qtbot: QtBot, qapp: QApplication) -> Panel:
+def panel(theme: Theme, qtbot: QtBot, qapp: QApplication) -> Panel[Shown]:
     """Return a plot with curves."""
     theme.dress(qapp)
     made = seen(ReferencePanel("Reference step", theme), qtbot, 400, 300)
@@ -24,7 +25,7 @@ def panel(theme: Theme, qtbot: QtBot, qapp: QApplication) -> Panel:
     return made
 
 
-def test_a_saved_picture_shows_the_curve(panel: Panel, theme: Theme, tmp_path: Path) -> None:
+def test_a_saved_picture_shows_the_curve(panel: Panel[Shown], theme: Theme, tmp_path: Path) -> None:
     """Twice 400 by 300, the page's colour in the corner, the nominal blue, if smoothed a little, along a curve."""
     path = tmp_path / "plot.png"
     save_picture(panel.widget, path)
@@ -37,13 +38,13 @@ def test_a_saved_picture_shows_the_curve(panel: Panel, theme: Theme, tmp_path: P
     assert found > 100
 
 
-def test_a_picture_goes_to_the_clipboard(panel: Panel) -> None:
+def test_a_picture_goes_to_the_clipboard(panel: Panel[Shown]) -> None:
     """What is copied can be pasted."""
     copy_picture(panel.widget)
     assert QGuiApplication.clipboard().image().width() == 800
 
 
-def test_a_place_that_cannot_be_written_is_said(panel: Panel, tmp_path: Path) -> None:
+def test_a_place_that_cannot_be_written_is_said(panel: Panel[Shown], tmp_path: Path) -> None:
     """One sentence with the path."""
     path = tmp_path / "no" / "plot.png"
     with pytest.raises(TrimwrightError, match="the picture cannot be written there"):

@@ -8,6 +8,7 @@ from typing import TypeVar, cast
 from tests.window import made_up, made_up_footing
 from tests.window.gain_map.made_up_map import Mapping
 from tuner.session.document import Document
+from tuner.window import app
 from tuner.window.app import Wiring, wire
 from tuner.window.asking import Asking, LeftBehind, Unsaved
 from tuner.window.editors import build_editors
@@ -16,7 +17,9 @@ from tuner.window.gain_map.question import PaintMap
 from tuner.window.main_window import MainWindow
 from tuner.window.rulers import build_rulers, keep_painted
 from tuner.window.rulers.painting import PaintRulers, ReasonAt
+from tuner.window.structures import build_structures
 from tuner.window.theme import Theme
+from tuner.window.tunings import build_tunings
 from tuner.window.worker import Assessor
 
 Answer = TypeVar("Answer")
@@ -97,9 +100,13 @@ def opened(  # noqa: PLR0913 - each is what some test is about
     rulers = build_rulers(held, look)
     painting, reasons = paint or made_up_footing.Painting(), reason_at or made_up_footing.Reasons()
     gain_map = build_gain_map(held, look, paint_map or Mapping(), reasons, synchronous=synchronous)
-    window = MainWindow(held, look, assessor, build_editors(held, look), rulers, (gain_map,))
+    compared = (
+        build_structures(held, look, app._structures, made_up.draw, synchronous=synchronous),
+        build_tunings(held, look, app._tunings, synchronous=synchronous),
+    )
+    window = MainWindow(held, look, assessor, build_editors(held, look), rulers, (gain_map, *compared))
     footing = keep_painted(held, rulers, painting, reasons, synchronous=synchronous)
-    wiring = wire(window, asking or Answers(unsaved="discard"), footing, gain_map)
+    wiring = wire(window, asking or Answers(unsaved="discard"), footing, gain_map, compared=compared)
     window.resize(1280, 800)
     window.show()
     if synchronous:
@@ -110,6 +117,8 @@ def opened(  # noqa: PLR0913 - each is what some test is about
         wiring.keeping.end()
         footing.close()
         gain_map.close()
+        for page in compared:
+            page.close()
         assessor.close()
         window.hide()
         window.deleteLater()

@@ -37,6 +37,9 @@ def _of_measure(name: str, label: str = "", sentence: str = "") -> Quantity:
 
 FINAL_DEVIATION = "final_deviation"
 
+_ROUNDING = 1e-12
+"""Share of the step, or of the largest deviation, that the arithmetic may leave of nothing."""
+
 QUANTITIES: tuple[Quantity, ...] = (
     _of_measure(
         "steady_state_error",
@@ -105,8 +108,12 @@ def _figure(quantity: Quantity, members: Sequence[MemberResult]) -> Figure:
 
 
 def _value(quantity: Quantity, member: MemberResult) -> float | None:
+    """Return a size; what is left of an error or a deviation by rounding alone is nothing."""
     found = member.final_disturbance if quantity.name == FINAL_DEVIATION else member.measures.get(quantity.name)
-    return None if found is None else abs(found)
+    if found is None:
+        return None
+    whole = {"steady_state_error": 100.0, FINAL_DEVIATION: member.measures.get("disturbance_peak") or 0.0}
+    return 0.0 if abs(found) <= _ROUNDING * whole.get(quantity.name, 0.0) else abs(found)
 
 
 def _reason(quantity: Quantity, member: MemberResult) -> str:

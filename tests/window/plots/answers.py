@@ -26,7 +26,7 @@ def outline(kp: float = 2.0, *, number: int = 1, **changes: object) -> tuple[Sho
     return assessing.outlined(request), assessing.whole(request)
 
 
-def seen(panel: Panel, qtbot: QtBot, width: int = 640, height: int = 400) -> Panel:
+def seen(panel: Panel[Shown], qtbot: QtBot, width: int = 640, height: int = 400) -> Panel[Shown]:
     """Show the widget of a panel at a size."""
     qtbot.addWidget(panel.widget)
     panel.widget.resize(width, height)

@@ -5,7 +5,7 @@ import pytest
 from PySide6.QtGui import QImage, QPainter
 from pytestqt.qtbot import QtBot
 
-from tuner.window.plots.items import Curve, pen
+from tuner.window.plots.items import Curve, Ground, pen
 from tuner.window.plots.thinning import Points
 from tuner.window.theme import Theme
 
@@ -49,3 +49,21 @@ def test_the_pen_is_one_that_qt_draws_fast(theme: Theme, qtbot: QtBot) -> None:
     made = pen(theme.colour("nominal"))
     assert made.isCosmetic()  # type: ignore[attr-defined]  # a QPen
     assert made.color().alpha() == 255  # type: ignore[attr-defined]  # a QPen
+
+
+def test_grounds_show_through_each_other(theme: Theme, qtbot: QtBot) -> None:
+    """Two translucent ones over one another are darker than one, and outside of them nothing is painted."""
+    del qtbot
+    image = QImage(30, 30, QImage.Format.Format_RGB32)
+    image.fill(theme.colour("page"))
+    painter = QPainter(image)
+    colour = theme.colour("ink")
+    colour.setAlphaF(0.3)
+    for low, high in ((5.0, 20.0), (10.0, 25.0)):
+        ground = Ground()
+        ground.show_pairs(Points(np.array([0.0, 0.0, 30.0, 30.0]), np.array([low, high, low, high])), colour)
+        ground.paint(painter, None, None)  # type: ignore[arg-type]  # the item needs neither
+    painter.end()
+    rows = [image.pixelColor(15, y).lightness() for y in (2, 7, 15, 22, 28)]
+    assert rows[0] == rows[4] == theme.colour("page").lightness()
+    assert rows[2] < rows[1] == rows[3] < rows[0]

@@ -17,7 +17,7 @@ from tuner.window.theme import Theme
 WHOLE = (Extent(0.0, 100.0), Extent(-1.0, 1.0))
 
 
-class Plain(Panel):
+class Plain(Panel[Shown]):
     """Draws nothing in fixed ranges, notes what it was asked, and reads the point itself."""
 
     def __init__(self, theme: Theme) -> None:
@@ -59,7 +59,7 @@ def panel(theme: Theme, qtbot: QtBot) -> Plain:
     return panel
 
 
-def labels(panel: Panel) -> list[str]:
+def labels(panel: Panel[Shown]) -> list[str]:
     """Return the words around the plot that are in sight."""
     return [label.text() for label in panel.widget.findChildren(QLabel) if label.isVisible() and label.text()]
 

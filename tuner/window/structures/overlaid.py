@@ -2,6 +2,7 @@
 
 from collections.abc import Callable
 from dataclasses import dataclass
+from typing import TYPE_CHECKING
 
 import numpy as np
 from numpy.typing import NDArray
@@ -21,6 +22,9 @@ from tuner.window.plots.panel import Panel
 from tuner.window.plots.trace_panel import name_of
 from tuner.window.structures.compared import Compared
 from tuner.window.theme import Theme
+
+if TYPE_CHECKING:
+    from tuner.compare.comparison import Comparison
 
 Array = NDArray[np.float64]
 Points = tuple[Array, Array]
@@ -62,7 +66,7 @@ class OverlaidPanel(Panel[Compared]):
 
     def __init__(self, name: str, theme: Theme, plot: Plot, curve: Callable[[Sheet, MemberResult], Points]) -> None:
         self.plot, self._curve = plot, curve
-        self._drawn: tuple[Drawn, ...] = ()
+        self.drawn: dict[str, Drawn] = {}
         self._marks = Marks()
         self._steady = SteadyExtent()
         self.grounds: dict[str, Ground] = {}
@@ -78,9 +82,7 @@ class OverlaidPanel(Panel[Compared]):
 
     def draw(self, shown: Compared) -> None:
         """Take over the curves of all structures."""
-        self._drawn = tuple(
-            self._taken(shown.sheet, one.structure.kind, one.name, found) for one, found in shown.judged
-        )
+        self.drawn = {one.structure.kind: self._taken(shown.sheet, one, found) for one, found in shown.judged}
         self._marks = trace_marks(self.plot, shown.sheet, shown.overlay)
         self.set_words(self._axis_words(shown.sheet), "", bad=False)
         if (asked := self.ask()) is not None:
@@ -91,10 +93,12 @@ class OverlaidPanel(Panel[Compared]):
         """Return the whole duration, and the height of the curves that do not run away."""
         if self.shown is None:
             return None
-        duration, fixed = self.shown.sheet.trial.duration, Extent(0.0, 0.0).hull(self._marks.levels())
-        calm = [one.line.values for one in self._drawn if one.calm]
-        others = [one.line.values for one in self._drawn if not one.calm]
-        families = [one.family for one in self._drawn]
+        duration, fixed = self.shown.sheet.trial.duration, Extent(0.0, 0.0)
+        if self.plot != "effort":  # its range may be far away, and would flatten what is to be compared
+            fixed = fixed.hull(self._marks.levels())
+        calm = [one.line.values for one in self.drawn.values() if one.calm]
+        others = [one.line.values for one in self.drawn.values() if not one.calm]
+        families = [one.family for one in self.drawn.values()]
         middle = np.concatenate(calm or others or [np.zeros(1)])
         return Extent(-_BEFORE * duration, duration), wanted(middle, [*others, *families], fixed, calm=bool(calm))
 
@@ -103,23 +107,22 @@ class OverlaidPanel(Panel[Compared]):
         if self.shown is None:
             return
         seen, columns = self.ranges()[1], self.columns()
-        there = {one.kind: one for one in self._drawn}
         for kind, role in ROLES.items():
-            self._draw(kind, there.get(kind), self._theme.colour(role), seen, columns)
+            self._draw(kind, self.drawn.get(kind), self._theme.colour(role), seen, columns)
         self.ground.areas = self._marks.areas
         self.divide(self.shown.sheet.loop.time_unit, y_offset=self._signal(self.shown.sheet).resting)
-        names = [name_of(one.line, f"{ROLES[one.kind]}_word", _PLACES[one.kind], seen) for one in self._drawn]
+        names = [name_of(one.line, f"{ROLES[one.kind]}_word", _PLACES[one.kind], seen) for one in self.drawn.values()]
         self.marks.show_marks(self._marks, names)
 
     def read(self, x: float, y: float) -> tuple[tuple[float, float], str] | None:
         """Return the values of all structures at the pointer's time, and the one nearest to it."""
-        if self.shown is None or not self._drawn or not 0.0 <= x <= self.shown.sheet.trial.duration:
+        if self.shown is None or not self.drawn or not 0.0 <= x <= self.shown.sheet.trial.duration:
             return None
         signal = self._signal(self.shown.sheet)
-        values = [float(np.interp(x, one.line.t, one.line.values)) for one in self._drawn]
+        values = [float(np.interp(x, one.line.t, one.line.values)) for one in self.drawn.values()]
         said = [
             f"{one.line.name} {quantity(value + signal.resting, signal.unit)}"
-            for one, value in zip(self._drawn, values, strict=True)
+            for one, value in zip(self.drawn.values(), values, strict=True)
         ]
         time = quantity(x, self.shown.sheet.loop.time_unit, 3)
         return (x, min(values, key=lambda value: abs(value - y))), minus(f"at {time}: {', '.join(said)}")
@@ -135,7 +138,7 @@ class OverlaidPanel(Panel[Compared]):
     def forget(self) -> None:
         """Forget ranges and curves."""
         super().forget()
-        self._drawn = ()
+        self.drawn = {}
         self._steady.forget()
 
     def dress(self) -> None:
@@ -145,10 +148,10 @@ class OverlaidPanel(Panel[Compared]):
 
     # Inside -----------------------------------------------------------------------------------------------------
 
-    def _taken(self, sheet: Sheet, kind: str, name: str, found: Assessment) -> Drawn:
+    def _taken(self, sheet: Sheet, one: "Comparison", found: Assessment) -> Drawn:
         t, values = self._curve(sheet, found.nominal)
         family = np.stack([np.interp(t, *self._curve(sheet, member)) for member in found.members])
-        return Drawn(kind, Line(t, values, name), t, family, found.verdict != "unstable")
+        return Drawn(one.structure.kind, Line(t, values, one.name), t, family, found.verdict != "unstable")
 
     def _draw(self, kind: str, one: Drawn | None, colour: QColor, seen: Extent, columns: int) -> None:
         ground = QColor(colour)

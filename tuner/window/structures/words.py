@@ -64,7 +64,8 @@ def _figure(figure: Figure | None, unit: str, one: "Comparison", *, is_best: boo
     if figure is None:
         return CellWords("—", "quiet")
     if figure.worst is None:
-        return CellWords(f"none: {figure.reason}", "quiet", tip=_nominal(figure, unit))
+        is_known = one.assessment is not None and one.assessment.verdict == "unstable"  # the first row says so
+        return CellWords("none" if is_known else f"none: {figure.reason}", "quiet", tip=_nominal(figure, unit))
     drift = one.assessment.drift_of(figure.plant) if one.assessment else figure.plant
     tip = f"Worst{at_plant(drift)}. {_nominal(figure, unit)}"
     nominal = minus(number(figure.nominal or 0.0, _DIGITS)).replace("inf", "∞")
