@@ -76,3 +76,16 @@ def test_one_long_piece_of_work(monkeypatch: pytest.MonkeyPatch) -> None:
         pass
 
     assert "proving" in terminal.getvalue()
+
+
+def test_silent_work_has_its_bar_beside_a_terminal(monkeypatch: pytest.MonkeyPatch) -> None:
+    """Where nothing is printed meanwhile, the bar shows although the output is a terminal too."""
+    terminal = Terminal()
+    monkeypatch.setattr(sys, "stderr", terminal)
+    monkeypatch.setattr(sys, "stdout", Terminal())
+    monkeypatch.setattr(progress, "PATIENCE", -1.0)
+
+    assert list(watched([1, 2, 3], "judging")) == [1, 2, 3]
+    assert terminal.getvalue() == ""
+    assert list(watched([1, 2, 3], "rehearsing", silent=True)) == [1, 2, 3]
+    assert "rehearsing" in terminal.getvalue()

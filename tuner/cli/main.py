@@ -11,11 +11,12 @@ from tuner.cli.command import PROGRAM, Command, UsageError, unexpected
 from tuner.cli.delivering import DELIVER
 from tuner.cli.judging import JUDGE
 from tuner.cli.opening import OPEN
+from tuner.cli.rehearsing import REHEARSE
 from tuner.cli.sampling import SAMPLES
 from tuner.errors import TrimwrightError
 from tuner.places import keep_compiled_kernels
 
-COMMANDS: tuple[Command, ...] = (OPEN, JUDGE, DELIVER, SAMPLES)
+COMMANDS: tuple[Command, ...] = (OPEN, JUDGE, DELIVER, REHEARSE, SAMPLES)
 
 _OWN_OPTIONS = ("--help", "-h", "--version")
 

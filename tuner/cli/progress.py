@@ -12,9 +12,12 @@ PATIENCE = 1.0
 Item = TypeVar("Item")
 
 
-def watched(items: Sequence[Item], what: str) -> Iterator[Item]:
-    """Yield the items; show how far it is once the work lasts, unless results appear on the terminal as they come."""
-    if len(items) < 2 or not sys.stderr.isatty() or sys.stdout.isatty():
+def watched(items: Sequence[Item], what: str, *, silent: bool = False) -> Iterator[Item]:
+    """Yield the items; show how far it is once the work lasts, unless results appear on the terminal as they come.
+
+    Work that is `silent` prints nothing meanwhile.
+    """
+    if len(items) < 2 or not sys.stderr.isatty() or (sys.stdout.isatty() and not silent):
         yield from items
         return
     start = time.monotonic()

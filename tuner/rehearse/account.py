@@ -1,5 +1,6 @@
 """What happened in a rehearsal, in sentences: when the loop was unstable and how it grew, and how far it went."""
 
+from dataclasses import dataclass
 from math import inf
 
 import numpy as np
@@ -23,24 +24,39 @@ class Peaks:
         self.high = max(self.high, (float(values[highest]), float(t[highest])), key=lambda place: place[0])
 
 
+@dataclass(frozen=True, slots=True)
+class Spell:
+    """A time in which the loop was unstable: from `begin` to `end`, None for the end of the run, and its growth."""
+
+    begin: float
+    end: float | None
+    growth: Growth | None
+
+
 class Account:
-    """Watches a rehearsal; to be told of every strip, and before and after whatever is done to the loop."""
+    """Watches a rehearsal; to be told of every strip, and to look after whatever is done to the loop.
+
+    Attributes
+    ----------
+    output, effort : Peaks
+        How far they went, engineering units.
+    """
 
     def __init__(self, rehearsal: Rehearsal) -> None:
         self._rehearsal = rehearsal
-        self._output, self._effort = Peaks(), Peaks()
+        self.output, self.effort = Peaks(), Peaks()
         self._samples = self._limited = 0
         self._since: float | None = None
         self._growth: Growth | None = None
         self._held = False
-        self._spells: list[str] = []
+        self._spells: list[Spell] = []
         self.look()
 
     def follow(self, strip: Strip) -> None:
         """Take in what has just run."""
         if len(strip):
-            self._output.follow(strip.t, strip.y)
-            self._effort.follow(strip.t, strip.u)
+            self.output.follow(strip.t, strip.y)
+            self.effort.follow(strip.t, strip.u)
             self._samples += len(strip)
             self._limited += int(np.count_nonzero(strip.limited))
             self._held = self._held or bool(strip.limited.any())
@@ -50,7 +66,7 @@ class Account:
         """See whether the loop is unstable now, and how it grows until a limit holds it."""
         stable, growth = self._rehearsal.stable, self._rehearsal.growth()
         if self._since is not None and (stable or self._is_another(growth)):
-            self._spells.append(self._spell(f"to {self._time(self._rehearsal.time)}"))
+            self._spells.append(Spell(self._since, self._rehearsal.time, self._growth))
             self._since = None
         if not stable and self._since is None:
             self._since, self._growth, self._held = self._rehearsal.time, growth, False
@@ -67,27 +83,30 @@ class Account:
         if not self._held or not measured:
             self._growth = growth
 
+    @property
+    def spells(self) -> tuple[Spell, ...]:
+        """The times in which the loop was unstable, each with one growth."""
+        last = () if self._since is None else (Spell(self._since, None, self._growth),)
+        return (*self._spells, *last)
+
     def sentences(self) -> list[str]:
         """Return what happened so far."""
-        told = list(self._spells)
-        if self._since is not None:
-            told.append(self._spell("on to the end"))
-        if not told:
-            told.append("The loop was stable all the time.")
+        told = [self._told(spell) for spell in self.spells] or ["The loop was stable all the time."]
         if self._samples:
             told += self._extremes()
         if self._rehearsal.ran_away:
             told.append("The loop ran away beyond all numbers and stood still from then on.")
         return told
 
-    def _spell(self, until: str) -> str:
-        growth = f": {self._growth.sentence.removeprefix('Unstable: ')}" if self._growth is not None else "."
-        return f"Unstable from {self._time(self._since or 0.0)} {until}{growth}"
+    def _told(self, spell: Spell) -> str:
+        growth = f": {spell.growth.sentence.removeprefix('Unstable: ')}" if spell.growth is not None else "."
+        until = "on to the end" if spell.end is None else f"to {self._time(spell.end)}"
+        return f"Unstable from {self._time(spell.begin)} {until}{growth}"
 
     def _extremes(self) -> list[str]:
         loop = self._rehearsal.sheet.loop
-        output = self._between(loop.controlled.name or "The output", self._output, loop.controlled.unit)
-        effort = self._between(loop.manipulated.name or "The effort", self._effort, loop.manipulated.unit)
+        output = self._between(loop.controlled.name or "The output", self.output, loop.controlled.unit)
+        effort = self._between(loop.manipulated.name or "The effort", self.effort, loop.manipulated.unit)
         share = self._limited / self._samples
         held = f"; a limit held it {quantity(100.0 * share, '%', 3)} of the time" if self._limited else ""
         return [f"{output}.", f"{effort}{held}."]

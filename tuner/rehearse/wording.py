@@ -16,6 +16,8 @@ from tuner.model.demonstration import (
 )
 from tuner.model.loop import Loop
 
+CAUTION = "A rehearsal is a simulation, no safety function: the plant itself may do otherwise."
+
 
 def told(deed: Deed, loop: Loop) -> str:  # noqa: PLR0911 - one line for each kind of deed
     """Return what is done, in a few words with units."""
