@@ -35,10 +35,10 @@ def assessment_of(file: Path) -> Assessment:
     return assess(sheet_of(file))
 
 
-def test_there_are_twelve() -> None:
-    """Twelve loops, each with a title of its own."""
-    assert len(FILES) == 12
-    assert len({sheet_of(file).loop.title for file in FILES}) == 12
+def test_there_are_thirteen() -> None:
+    """Thirteen loops, each with a title of its own."""
+    assert len(FILES) == 13
+    assert len({sheet_of(file).loop.title for file in FILES}) == 13
 
 
 def test_they_differ_in_what_they_teach() -> None:
@@ -47,7 +47,8 @@ def test_they_differ_in_what_they_teach() -> None:
     controllers = [sheet.controller for sheet in sheets]
     assert {controller.form for controller in controllers} == {"parallel", "standard", "series"}
     assert any(controller.action == "direct" for controller in controllers)
-    assert any(controller.notch for controller in controllers)
+    for block in ("notch", "measurement_filter", "reference_filter", "feedforward", "disturbance_feedforward"):
+        assert any(getattr(controller, block) for controller in controllers)
     assert any(sheet.sensor.resolution for sheet in sheets)
     assert any(sheet.loop.manipulated.rate for sheet in sheets)
     assert len({type(sheet.plant) for sheet in sheets}) >= 2
