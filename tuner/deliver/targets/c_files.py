@@ -74,6 +74,7 @@ def _source(specification: Specification) -> str:
         head=_head(specification),
         unit_u=_bracketed(specification, "{u}"),
         resting_effort=number(specification.constants.resting_effort),
+        counter="    int position;\n\n" if late and late.delay else "",
         reset="\n".join([f"    state->{name} = 0.0;" for name in (*pid.STATE, *kept)] + _more_reset(specification)),
         stages="".join(_stage(stage, specification) for stage in found),
         more_given=_MORE if late else "",
@@ -214,11 +215,11 @@ def _taken_late(delay: int) -> list[str]:
         "static double taken_late(controller_state *state, double given)",
         "{",
         "    const double oldest = state->late[state->place];",
-        f"    const int last = (state->place > 0) ? state->place - 1 : {delay - 1};",
+        f"    const int last = (state->place > 0) ? (state->place - 1) : {delay - 1};",
         "",
         "    /* What is not finite spoils this sample; late comes the last good value in its place. */",
-        "    state->late[state->place] = (given - given == 0.0) ? given : state->late[last];",
-        f"    state->place = (state->place + 1 < {delay}) ? state->place + 1 : 0;",
+        "    state->late[state->place] = ((given - given) == 0.0) ? given : state->late[last];",
+        f"    state->place = ((state->place + 1) < {delay}) ? (state->place + 1) : 0;",
         "    return oldest;",
         "}",
         "",
@@ -247,11 +248,11 @@ def _more_reset(specification: Specification) -> list[str]:
     if late is None or not late.delay:
         return []
     return [
-        f"    for (state->place = 0; state->place < {late.delay}; state->place++)",
-        "    {",
-        f"        state->late[state->place] = {number(specification.resting_disturbance)};",
-        "    }",
         "    state->place = 0;",
+        f"    for (position = 0; position < {late.delay}; position++)",
+        "    {",
+        f"        state->late[position] = {number(specification.resting_disturbance)};",
+        "    }",
     ]
 
 
