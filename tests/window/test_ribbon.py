@@ -1,19 +1,21 @@
 """The ribbon says the verdict and every limit: in words, by sign and by colour."""
 
+from dataclasses import replace
+
 import pytest
 from PySide6.QtGui import QImage
 from PySide6.QtWidgets import QApplication
 from pytestqt.qtbot import QtBot
 
 from tests.window import made_up
-from tuner.judge.assessment import LimitResult
-from tuner.model.loop import Loop
-from tuner.window.ribbon import Chip, ChipWords, Ribbon, chip_words, verdict_words
+from tuner.judge.assessment import WorstCase
+from tuner.model.measures import MEASURES
+from tuner.window.chip import Chip
+from tuner.window.earlier import Earlier
+from tuner.window.ribbon import Ribbon, rows, verdict_words
 from tuner.window.shown import Request, Shown
 from tuner.window.theme import Theme
 from tuner.window.worker import Assessing
-
-LOOP = Loop("x", "min")
 
 
 def shown(kp: float, **changes: object) -> Shown:
@@ -27,31 +29,6 @@ def ribbon(theme: Theme, qtbot: QtBot) -> Ribbon:
     made = Ribbon(theme)
     qtbot.addWidget(made.widget)
     return made
-
-
-def test_a_chip_has_value_limit_and_worst_plant() -> None:
-    """Units on value and limit, the sense of the limit, and the plant in words."""
-    result = LimitResult("settling_time", 90.0, 96.0, "gain 1.04", met=False)
-    assert chip_words(result, LOOP, stable=True) == ChipWords(
-        "settling time", "96 min", "≤ 90 min", "at gain 1.04", "missed"
-    )
-
-
-@pytest.mark.parametrize(
-    ("result", "value", "limit", "standing"),
-    [
-        (LimitResult("gain_margin", 2.0, float("inf"), "nominal", met=True), "∞", "≥ 2", "met"),
-        (LimitResult("overshoot", 8.0, 8.0004, "nominal", met=False), "8.0004 %", "≤ 8 %", "missed"),
-        (LimitResult("settling_time", 8.0, None, "nominal", met=False), "—", "≤ 8 min", "unstable"),
-        (LimitResult("peak_time", 8.0, None, "nominal", met=True), "none", "≤ 8 min", "met"),
-        (LimitResult("damping", 0.5, -0.25, "nominal", met=False), "\u22120.25", "≥ 0.5", "missed"),
-        (LimitResult("steady_state_error", 1.0, -2.0, "nominal", met=False), "2 %", "≤ 1 %", "missed"),
-    ],
-)
-def test_values_are_said_honestly(result: LimitResult, value: str, limit: str, standing: str) -> None:
-    """Infinity, nothing, signs and sizes, and enough figures to tell a value from its limit."""
-    words = chip_words(result, LOOP, stable=False)
-    assert (words.value, words.limit, words.standing) == (value, limit, standing)
 
 
 def test_every_limit_has_a_chip_in_order(ribbon: Ribbon) -> None:
@@ -180,3 +157,74 @@ def test_numbers_of_an_earlier_tuning_are_paler(ribbon: Ribbon, theme: Theme) ->
     ribbon.show(shown(1.0))
     assert ribbon.chips[0].grab().toImage() == now
     assert ribbon.detail.text() != "the numbers are those of an earlier tuning"
+
+
+def found(name: str = "as found", value: float = 120.0) -> Earlier:
+    """Return an earlier tuning with one value for every measure."""
+    return Earlier(name, {measure.name: WorstCase(value, "gain +15 %") for measure in MEASURES})
+
+
+def with_found() -> Shown:
+    """Return the answer for a made-up loop with a controller as found."""
+    controller = made_up.sheet(1.0).controller
+    return shown(1.0, controller=replace(controller, as_found=controller))
+
+
+def test_earlier_values_stand_quietly_beside_the_present_ones(ribbon: Ribbon) -> None:
+    """Room is kept for those as found from the start, so that no chip moves when they come; tip and name have all."""
+    ribbon.widget.resize(1400, 100)
+    ribbon.widget.show()
+    ribbon.show(with_found())
+    QApplication.processEvents()
+    chip = ribbon.chips[1]
+    places, before = [one.geometry() for one in ribbon.chips], chip.grab().toImage()
+    ribbon.show_earlier((found(value=2.0),))
+    QApplication.processEvents()
+    assert [one.geometry() for one in ribbon.chips] == places
+    assert chip.grab().toImage() != before
+    ribbon.show_earlier((found(), found("A", 130.0)))
+    assert [one.short for one in chip.words.earlier] == ["found 120 s", "A 130 s"]
+    assert chip.accessibleName().endswith(", found 120 s, A 130 s")
+    assert chip.toolTip().endswith("\nAs found: 120 s at gain +15 %.\nTuning A: 130 s at gain +15 %.")
+    ribbon.show_earlier(())
+    assert chip.words.earlier == ()
+
+
+def test_earlier_values_may_come_first(ribbon: Ribbon) -> None:
+    """Before the first verdict they wait for it."""
+    ribbon.show_earlier((Earlier("as found", {"overshoot": WorstCase(3.0, "nominal")}),))
+    assert ribbon.chips == []
+    ribbon.show(with_found())
+    assert [one.short for one in ribbon.chips[0].words.earlier] == ["found 3 %"]
+    assert ribbon.chips[1].words.earlier == ()
+
+
+def test_the_ribbon_does_not_grow_in_height_for_earlier_values(ribbon: Ribbon) -> None:
+    """Where the wider chips would take another row they stay as they are, and get their room back in a wider window."""
+    ribbon.show(with_found())
+    narrow = sum(chip.width_with(roomy=False) + 8 for chip in ribbon.chips)
+    for width, roomy in ((narrow + 320, False), (narrow + 900, True), (narrow + 320, False)):
+        ribbon.widget.resize(width, 100)
+        ribbon.widget.show()
+        QApplication.processEvents()
+        assert [chip.is_roomy for chip in ribbon.chips] == [roomy] * 4
+        assert {chip.y() for chip in ribbon.chips} == {0}
+
+
+def test_without_a_controller_as_found_no_room_is_kept(ribbon: Ribbon) -> None:
+    """The chips are as narrow as their own words."""
+    ribbon.widget.resize(1400, 100)
+    ribbon.widget.show()
+    ribbon.show(shown(1.0))
+    QApplication.processEvents()
+    assert not any(chip.is_roomy for chip in ribbon.chips)
+    ribbon.show(with_found())
+    assert all(chip.is_roomy for chip in ribbon.chips)
+
+
+def test_rows_of_chips() -> None:
+    """As many as fit beside one another with a gap of 8; one that is wider than the room has a row of its own."""
+    assert rows([100, 100, 100], 316) == 1
+    assert rows([100, 100, 100], 315) == 2
+    assert rows([500, 100], 300) == 2
+    assert rows([], 300) == 1

@@ -106,7 +106,7 @@ def opened(  # noqa: PLR0913 - each is what some test is about
     )
     window = MainWindow(held, look, assessor, build_editors(held, look), rulers, (gain_map, *compared))
     footing = keep_painted(held, rulers, painting, reasons, synchronous=synchronous)
-    wiring = wire(window, asking or Answers(unsaved="discard"), footing, gain_map, compared=compared)
+    wiring = wire(window, asking or Answers(unsaved="discard"), footing, gain_map, others=compared)
     window.resize(1280, 800)
     window.show()
     if synchronous:

@@ -4,13 +4,13 @@ import sys
 from collections.abc import Mapping
 from dataclasses import dataclass
 from pathlib import Path
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Protocol
 
 from PySide6.QtCore import Qt, QTimer
 from PySide6.QtGui import QCloseEvent, QIcon
 from PySide6.QtWidgets import QApplication
 
-from tuner.compare.tuning_table import Tuning, TuningTable
+from tuner.compare.tuning_table import Column, Tuning, TuningTable
 from tuner.errors import TrimwrightError
 from tuner.footing.apart import Apart
 from tuner.judge.assessment import Assessment
@@ -20,8 +20,9 @@ from tuner.places import keep_compiled_kernels, resources, sample_plants
 from tuner.session.document import Document
 from tuner.window import faults, memory
 from tuner.window.asking import Asking
-from tuner.window.beside import Stop
+from tuner.window.beside import Beside, Stop
 from tuner.window.commands import Commands
+from tuner.window.earlier import EarlierTunings, answering_by
 from tuner.window.editors import build_editors
 from tuner.window.ending import leave
 from tuner.window.gain_map import build_gain_map
@@ -33,10 +34,8 @@ from tuner.window.rulers import Footing, build_rulers, keep_painted
 from tuner.window.sheet_files import SheetFiles
 from tuner.window.shown import Sketched
 from tuner.window.structures import build_structures
-from tuner.window.structures.page import StructuresPage
 from tuner.window.theme import CHOICES, Theme
 from tuner.window.tunings import build_tunings
-from tuner.window.tunings.page import TuningsPage
 from tuner.window.worker import Assessor
 
 if TYPE_CHECKING:  # these roads are loaded when they are first taken
@@ -49,6 +48,13 @@ _SWITCH = 0.001
 """Seconds after which a thread that computes lets go of the interpreter; Python's own 5 ms can be seen."""
 
 
+class Closing(Protocol):
+    """What has work of its own to end."""
+
+    def close(self) -> None:
+        """Ask no more, and end the worker."""
+
+
 @dataclass(frozen=True, slots=True)
 class Wiring:
     """What a window is wired to; it lives as long as this does."""
@@ -59,7 +65,7 @@ class Wiring:
     footing: Footing | None = None
     gain_map: GainMapPage | None = None
     apart: tuple[Apart, ...] = ()
-    compared: tuple[StructuresPage | TuningsPage, ...] = ()
+    others: tuple[Closing, ...] = ()
 
 
 def open_window(path: Path | None) -> int:
@@ -114,10 +120,12 @@ def built(application: QApplication, document: Document, asking: Asking | None =
     window = MainWindow(document, theme, assessor, build_editors(document, theme), rulers, more)
     window.resize(*_FIRST_SIZE)
     window.restore_layout(remembered)
-    for worker in (*apart, assessor, footing.painted, footing.reader, *more):
+    earlier = EarlierTunings(document, window.ribbon.show_earlier, Beside(answering_by(_judged)))
+    assessor.answered.connect(earlier.start, Qt.ConnectionType.SingleShotConnection)
+    for worker in (*apart, assessor, footing.painted, footing.reader, *more, earlier):
         application.aboutToQuit.connect(worker.close)
     assessor.answered.connect(apart[0].start, Qt.ConnectionType.SingleShotConnection)
-    return window, wire(window, asking or Asking(window), footing, gain_map, apart, compared)
+    return window, wire(window, asking or Asking(window), footing, gain_map, apart, (*compared, earlier))
 
 
 def wire(  # noqa: PLR0913, PLR0917 - what a window is made of
@@ -126,14 +134,14 @@ def wire(  # noqa: PLR0913, PLR0917 - what a window is made of
     footing: Footing | None = None,
     gain_map: GainMapPage | None = None,
     apart: tuple[Apart, ...] = (),
-    compared: tuple[StructuresPage | TuningsPage, ...] = (),
+    others: tuple[Closing, ...] = (),
 ) -> Wiring:
     """Give a window its menus, its files, its footing, its gain map and its manners on closing."""
     files = SheetFiles(window.document, asking)
     keeping = Keeping(window.document, asking)
     menus = Menus(window, files, Commands(window, asking))
     window.dropped.connect(files.open_path)
-    wiring = Wiring(menus, files, keeping, footing, gain_map, apart, compared)
+    wiring = Wiring(menus, files, keeping, footing, gain_map, apart, others)
     window.closing.connect(lambda event: _close(window, wiring, event))
     if footing is not None:
         footing.painted.wake_after(window.assessor)
@@ -160,8 +168,8 @@ def _close(window: MainWindow, wiring: Wiring, event: QCloseEvent) -> None:
         wiring.footing.close()
     if wiring.gain_map is not None:
         wiring.gain_map.close()
-    for page in wiring.compared:
-        page.close()
+    for other in wiring.others:
+        other.close()
 
 
 def _sketch(sheet: Sheet, size: int) -> Sketched:
@@ -192,6 +200,12 @@ def _tunings(sheet: Sheet, kept: tuple[Tuning, ...], *, stop: Stop) -> TuningTab
     from tuner.compare.tunings import compare_tunings
 
     return compare_tunings(sheet, kept, stop=stop)
+
+
+def _judged(sheet: Sheet, tuning: Tuning) -> Column:
+    from tuner.compare.tunings import judged
+
+    return judged(sheet, tuning)
 
 
 def _draw(sheet: Sheet, assessment: Assessment) -> Overlay:

@@ -1,177 +1,34 @@
 """The verdict over everything: the loop's title, the verdict in words, and one chip for each limit."""
 
-from collections.abc import Callable
-from dataclasses import dataclass, replace
+from collections.abc import Callable, Sequence
+from dataclasses import replace
 from functools import partial
-from typing import Literal
 
-from PySide6.QtCore import QObject, QRectF, QSize, Qt, Signal
+from PySide6.QtCore import QObject, QRectF, Qt, Signal
 from PySide6.QtGui import (
-    QColor,
-    QFontMetrics,
-    QKeyEvent,
-    QMouseEvent,
     QPainter,
     QPaintEvent,
-    QPen,
     QResizeEvent,
 )
-from PySide6.QtWidgets import QHBoxLayout, QScrollArea, QSizePolicy, QVBoxLayout, QWidget
+from PySide6.QtWidgets import QHBoxLayout, QScrollArea, QVBoxLayout, QWidget
 
 from tuner.judge.assessment import Assessment, LimitResult
 from tuner.judge.overlay import at_plant
-from tuner.judge.wording import minus, number, quantity, told_apart, unit_of
+from tuner.judge.wording import quantity, unit_of
 from tuner.model.family import NOMINAL
-from tuner.model.loop import Loop
 from tuner.model.measures import BY_NAME
+from tuner.window.chip import ROLE, SIGN, Chip, Standing, chip_words
+from tuner.window.earlier import Earlier, earlier_words
 from tuner.window.elided import ElidedLabel, RoleLabel
 from tuner.window.flow import FlowLayout
 from tuner.window.shown import Shown
-from tuner.window.signs import Sign, draw_sign
+from tuner.window.signs import draw_sign
 from tuner.window.theme import Theme
 
-Standing = Literal["met", "missed", "unstable", "waiting", "failed"]
-
-_ROLE: dict[Standing, str] = {
-    "met": "firm_word",
-    "missed": "lost_word",
-    "unstable": "lost_word",
-    "waiting": "quiet",
-    "failed": "lost_word",
-}
-_SIGN: dict[Standing, Sign] = {
-    "met": "tick",
-    "missed": "cross",
-    "unstable": "runaway",
-    "waiting": "ring",
-    "failed": "cross",
-}
-_GAP, _SIGN_SIZE = 4, 12
-_WIDEST_PLANT = 184
-_PALE = 0.45
-"""How much of a chip shows that is not true of the present tuning any more."""
 _ROWS = 2
 """Rows of chips that are shown before the ribbon scrolls."""
-
-
-@dataclass(frozen=True, slots=True)
-class ChipWords:
-    """What one chip says."""
-
-    measure: str
-    value: str
-    limit: str
-    plant: str
-    standing: Standing
-    is_looked_at: bool = False
-
-    def sentence(self) -> str:
-        """Return all of it for a screen reader."""
-        looked_at = ", looked at" if self.is_looked_at else ""
-        return f"{self.measure} {self.value}, limit {self.limit}, {self.standing}, {self.plant}{looked_at}"
-
-
-def chip_words(result: LimitResult, loop: Loop, *, stable: bool) -> ChipWords:
-    """Return the words of a limit's chip; with an unstable loop a measure that does not exist is named unstable."""
-    facts, unit = BY_NAME[result.measure], unit_of(result.measure, loop)
-    sign = "≥" if facts.at_least else "≤"
-    size = abs(result.value) if facts.by_size and result.value is not None else result.value
-    value = _figures(size, result.limit, unit) if size is not None else "none" if result.met else "—"
-    standing: Standing = "met" if result.met else "unstable" if result.value is None and not stable else "missed"
-    limit = f"{sign} {quantity(result.limit, unit)}"
-    return ChipWords(facts.label, value, limit, at_plant(result.plant).strip(), standing)
-
-
-def _figures(value: float, limit: float, unit: str) -> str:
-    """Return a value with three figures, more where they are needed to tell it from its limit."""
-    digits = 3 if number(value, 3) != number(limit, 3) else min(told_apart(value, limit), 6)
-    return minus(quantity(value, unit, digits)).replace("inf", "∞")
-
-
-class Chip(QWidget):
-    """One limit: measure, value against limit, and the plant that is worst; pressed, it asks for that plant."""
-
-    chosen = Signal()
-
-    def __init__(self, words: ChipWords, tip: str, theme: Theme) -> None:
-        super().__init__()
-        self._theme, self._width, self.words = theme, 0, words
-        self.is_late = False
-        self.setFocusPolicy(Qt.FocusPolicy.TabFocus)
-        self.setSizePolicy(QSizePolicy.Policy.Fixed, QSizePolicy.Policy.Fixed)
-        self.show_words(words, tip)
-
-    def show_words(self, words: ChipWords, tip: str) -> None:
-        """Show another result."""
-        if words.measure != self.words.measure:
-            self._width = 0
-        self.words = words
-        self.setToolTip(tip)
-        self.setAccessibleName(words.sentence())
-        self.setAccessibleDescription(tip)
-        self.update()
-
-    def mousePressEvent(self, event: QMouseEvent) -> None:
-        """Ask for the plant."""
-        if event.button() == Qt.MouseButton.LeftButton:
-            self.chosen.emit()
-
-    def keyPressEvent(self, event: QKeyEvent) -> None:
-        """Ask for the plant by the space bar or the return key."""
-        if event.key() in (Qt.Key.Key_Space, Qt.Key.Key_Return, Qt.Key.Key_Enter):
-            self.chosen.emit()
-        else:
-            super().keyPressEvent(event)
-
-    def sizeHint(self) -> QSize:
-        """Return a width that holds the widest words so far, so that nothing jumps while a value changes."""
-        small, strong = self._metrics()
-        first = small.horizontalAdvance(f"{self.words.measure}  {self.words.standing}") + _SIGN_SIZE + 2 * _GAP
-        second = max(strong.horizontalAdvance("0.000"), strong.horizontalAdvance(self.words.value))
-        second += small.horizontalAdvance(self.words.limit) + 2 * _GAP
-        third = min(small.horizontalAdvance(self.words.plant), _WIDEST_PLANT)
-        width = -(-max(first, second, third, 112) // 16) * 16 + 2 * _GAP
-        self._width = max(self._width, width)
-        return QSize(self._width, 2 * small.height() + strong.height() + 2 * _GAP)
-
-    def paintEvent(self, _event: QPaintEvent) -> None:
-        """Paint the sign and three lines."""
-        painter = QPainter(self)
-        painter.setOpacity(_PALE if self.is_late else 1.0)
-        small, strong = self._metrics()
-        left, top = _GAP, _GAP
-        role = self._theme.colour(_ROLE[self.words.standing])
-        self._paint_edge(painter, role)
-        draw_sign(painter, _SIGN[self.words.standing], QRectF(left, top + 1, _SIGN_SIZE, _SIGN_SIZE), role)
-        x = self._write(painter, left + _SIGN_SIZE + _GAP, top + small.ascent(), self.words.measure, "quiet")
-        self._write(painter, x + 2 * _GAP, top + small.ascent(), self.words.standing, _ROLE[self.words.standing])
-        middle = top + small.height() + strong.ascent()
-        painter.setFont(self._theme.font("body", strong=True))
-        painter.setPen(self._theme.colour("ink" if self.words.standing == "met" else "lost_word"))
-        painter.drawText(left, middle, self.words.value)
-        x = left + strong.horizontalAdvance(self.words.value) + 2 * _GAP
-        self._write(painter, x, middle, self.words.limit, "quiet")
-        bottom = top + small.height() + strong.height() + small.ascent()
-        plant = small.elidedText(self.words.plant, Qt.TextElideMode.ElideRight, self.width() - 2 * _GAP)
-        self._write(painter, left, bottom, plant, "nominal_word" if self.words.is_looked_at else "quiet")
-
-    def _paint_edge(self, painter: QPainter, role: QColor) -> None:
-        """Paint a bar at the left of what is not met, and a line around what has the focus."""
-        if self.hasFocus():
-            painter.setPen(QPen(self._theme.colour("nominal"), 1.0))
-            painter.drawRect(self.rect().adjusted(0, 0, -1, -1))
-        if self.words.standing != "met":
-            painter.fillRect(0, 2 * _GAP + _SIGN_SIZE, 2, self.height() - 3 * _GAP - _SIGN_SIZE, role)
-
-    def _write(self, painter: QPainter, x: int, baseline: int, text: str, role: str) -> int:
-        """Write small words; return where they end."""
-        painter.setFont(self._theme.font("small"))
-        painter.setPen(self._theme.colour(role))
-        painter.drawText(x, baseline, text)
-        return x + painter.fontMetrics().horizontalAdvance(text)
-
-    def _metrics(self) -> tuple[QFontMetrics, QFontMetrics]:
-        return QFontMetrics(self._theme.font("small")), QFontMetrics(self._theme.font("body", strong=True))
+_GAP = 8
+"""Pixels between two chips."""
 
 
 class VerdictSign(QWidget):
@@ -186,7 +43,7 @@ class VerdictSign(QWidget):
     def paintEvent(self, _event: QPaintEvent) -> None:
         """Paint the sign."""
         frame = QRectF(self.rect()).adjusted(2, 2, -2, -2)
-        draw_sign(QPainter(self), _SIGN[self.standing], frame, self._theme.colour(_ROLE[self.standing]))
+        draw_sign(QPainter(self), SIGN[self.standing], frame, self._theme.colour(ROLE[self.standing]))
 
 
 class Ribbon(QObject):
@@ -201,10 +58,12 @@ class Ribbon(QObject):
         self.chips: list[Chip] = []
         self._plants: list[str] = []
         self._looked_at = ""
+        self._shown: Shown | None = None
+        self._earlier: tuple[Earlier, ...] = ()
         self.title, self.verdict, self.detail = ElidedLabel(), RoleLabel(theme, stretch=False), RoleLabel(theme)
         self._sign = VerdictSign(theme)
         self._flow_host, self._scroll = QWidget(), QScrollArea()
-        self._flow = FlowLayout(self._flow_host, spacing=8)
+        self._flow = FlowLayout(self._flow_host, spacing=_GAP)
         self.widget = self._arranged()
         theme.changed.connect(self.dress)
         self.dress()
@@ -215,7 +74,14 @@ class Ribbon(QObject):
         assessment = shown.assessment
         self._say(assessment.verdict, *verdict_words(assessment))
         self._set_late(late=False)
+        self._shown = shown
         self._show_chips(shown)
+
+    def show_earlier(self, earlier: tuple[Earlier, ...]) -> None:
+        """Show what earlier tunings came to, quietly beside what the present one does."""
+        self._earlier = earlier
+        if self._shown is not None:
+            self._show_chips(self._shown)
 
     def wait(self) -> None:
         """Say that the verdict is awaited; the chips, paler until then, are those of an earlier tuning."""
@@ -250,7 +116,7 @@ class Ribbon(QObject):
         self._sign.standing = standing
         self.verdict.setText(verdict)
         self.detail.setText(detail)
-        self.verdict.set_role(_ROLE[standing])
+        self.verdict.set_role(ROLE[standing])
         self.detail.set_role("lost_word" if standing in ("failed", "unstable") else "quiet")
         self.widget.setAccessibleName(f"Verdict: {verdict}. {detail}")
         self._sign.update()
@@ -265,8 +131,10 @@ class Ribbon(QObject):
         for index, result in enumerate(results):
             drift = shown.assessment.drift_of(result.plant)
             words = chip_words(replace(result, plant=drift), shown.sheet.loop, stable=stable)
-            words = replace(words, is_looked_at=bool(shown.looked_at) and result.plant == shown.looked_at)
-            tip = _tip(result, shown)
+            before = earlier_words(self._earlier, result.measure, shown.sheet.loop)
+            is_looked_at = bool(shown.looked_at) and result.plant == shown.looked_at
+            words = replace(words, is_looked_at=is_looked_at, earlier=before)
+            tip = "\n".join((_tip(result, shown), *(one.whole for one in before)))
             if index < len(self.chips):
                 self.chips[index].show_words(words, tip)
             else:
@@ -274,11 +142,15 @@ class Ribbon(QObject):
                 self.chips[-1].chosen.connect(partial(self._look, index))
                 self._flow.addWidget(self.chips[-1])
         if sizes != [chip.sizeHint() for chip in self.chips]:
-            for chip in self.chips:
-                chip.updateGeometry()  # the layout remembers what each asked for
-            self._flow.invalidate()
-            self._flow.activate()
-            self._fit()
+            self._lay_out()
+        self._fit()
+
+    def _lay_out(self) -> None:
+        """Place the chips anew: the layout remembers what each asked for."""
+        for chip in self.chips:
+            chip.updateGeometry()
+        self._flow.invalidate()
+        self._flow.activate()
 
     def _look(self, index: int) -> None:
         """Ask for the worst plant of a limit to be looked at."""
@@ -318,9 +190,24 @@ class Ribbon(QObject):
 
     def _fit(self) -> None:
         """Give the chips the height of the rows they need, at most `_ROWS`; beyond that they scroll."""
+        self._give_room()
         tallest = max((chip.sizeHint().height() for chip in self.chips), default=52)
-        needed = self._flow.heightForWidth(max(self._scroll.viewport().width(), 1))
+        needed = self._flow.heightForWidth(self._room())
         self._scroll.setFixedHeight(max(min(needed, _ROWS * tallest + 4 * (_ROWS - 1)), tallest))
+
+    def _give_room(self) -> None:
+        """Keep room in the chips for the values of earlier tunings, unless that takes another row."""
+        has_found = self._shown is not None and self._shown.sheet.controller.as_found is not None
+        is_wanted = has_found or bool(self._earlier)
+        plain, wide = (rows([chip.width_with(roomy=it) for chip in self.chips], self._room()) for it in (False, True))
+        roomy = is_wanted and wide <= plain
+        if any(chip.is_roomy != roomy for chip in self.chips):
+            for chip in self.chips:
+                chip.is_roomy = roomy
+            self._lay_out()
+
+    def _room(self) -> int:
+        return max(self._scroll.viewport().width(), 1)
 
 
 class RibbonWidget(QWidget):
@@ -334,6 +221,16 @@ class RibbonWidget(QWidget):
         """Say so."""
         super().resizeEvent(event)
         self._resized()
+
+
+def rows(widths: Sequence[int], room: int) -> int:
+    """Return how many rows chips of some widths take."""
+    count, x = 1, 0
+    for width in widths:
+        if x and x + width > room:
+            count, x = count + 1, 0
+        x += width + _GAP
+    return count
 
 
 def verdict_words(assessment: Assessment) -> tuple[str, str]:
