@@ -4,7 +4,7 @@ from dataclasses import replace
 
 from tests.session.sheets import wash_bath
 from tuner.model.controller import Controller
-from tuner.session.tunings import KeptTuning, free_name, in_form_or_none, in_words, marks
+from tuner.session.tunings import KeptTuning, beside, free_name, in_form_or_none, in_words, marks
 
 
 def test_names_go_on_after_z() -> None:
@@ -25,3 +25,13 @@ def test_a_tuning_without_the_form_has_no_mark() -> None:
     lively = replace(wash_bath().controller, gain_3=500.0)
     assert in_form_or_none(lively, "series") is None
     assert [mark.kind for mark in marks("ti", present, lively, ())] == ["as_found"]
+
+
+def test_what_is_shown_beside_the_present_tuning() -> None:
+    """As found before those kept, unless nothing has been changed since, or it is not known."""
+    found = Controller(gain_1=1.0)
+    kept = (KeptTuning("A", "kp 2", Controller(gain_1=2.0)),)
+    assert [one.name for one in beside(Controller(gain_1=3.0, as_found=found), kept)] == ["as found", "A"]
+    assert beside(Controller(gain_1=3.0, as_found=found), ())[0].controller == found
+    assert beside(replace(found, as_found=found), kept) == kept
+    assert beside(found, kept) == kept

@@ -33,6 +33,20 @@ def test_a_change_is_assessed_and_shown() -> None:
         assert window.ribbon.verdict.text() == "1 of 4 limits missed"
 
 
+def test_the_controller_as_found_is_drawn_beside_the_present_one() -> None:
+    """Its curve has its name, once there is another present tuning, and goes when it is forgotten."""
+    with opened() as (window, _):
+        panel = window.plots.panels[REFERENCE]
+        window.document.note_as_found()
+        assert "as found" not in [word.text for word in panel.marks.words]
+        window.document.change_value("kp", 1.0)
+        window.document.keep()
+        window.document.change_value("kp", 1.5)
+        assert {"as found", "A"} <= {word.text for word in panel.marks.words}
+        window.document.forget_as_found()
+        assert "as found" not in [word.text for word in panel.marks.words]
+
+
 def test_what_changes_nothing_is_not_assessed_again() -> None:
     """Saving, or a release of a drag, asks for no answer."""
     count: list[int] = []

@@ -9,6 +9,9 @@ from tuner.errors import LoopError
 from tuner.model.controller import Controller, Form
 from tuner.model.parameters import GAIN_KEYS
 
+AS_FOUND = "as found"
+"""The name of the tuning met on site, where those kept have letters."""
+
 MarkKind = Literal["reset", "as_found", "kept"]
 
 
@@ -58,11 +61,19 @@ def with_as_found(controller: Controller, found: Controller | None) -> Controlle
     return replace(controller, as_found=None if found is None else replace(found, as_found=None))
 
 
+def beside(present: Controller, kept: Iterable[KeptTuning]) -> tuple[KeptTuning, ...]:
+    """Return what is shown beside the present tuning: as found, unless it is that very one, then those kept."""
+    found = present.as_found
+    if found is None or found == with_as_found(present, None):
+        return tuple(kept)
+    return (KeptTuning(AS_FOUND, "the controller met on site", found), *kept)
+
+
 def marks(name: str, present: Controller, opened: Controller, kept: Iterable[KeptTuning]) -> tuple[Mark, ...]:
     """Return the values of one number in the tunings worth finding again, in the present form of the gains."""
     sources: list[tuple[MarkKind, str, Controller | None]] = [
         ("reset", "as opened", opened),
-        ("as_found", "as found", present.as_found),
+        ("as_found", AS_FOUND, present.as_found),
         *(("kept", tuning.name, tuning.controller) for tuning in kept),
     ]
     there = [(kind, label, in_form_or_none(source, present.form)) for kind, label, source in sources]

@@ -10,6 +10,7 @@ from PySide6.QtWidgets import QMainWindow, QScrollArea, QSplitter, QVBoxLayout, 
 from tuner.judge.wording import shortfall
 from tuner.model.family import NOMINAL
 from tuner.session.document import Document
+from tuner.session.tunings import beside
 from tuner.window.editors.panel import EditorPanel
 from tuner.window.elided import ElidedLabel
 from tuner.window.frequency.page import FrequencyPage
@@ -125,7 +126,8 @@ class MainWindow(QMainWindow):
     def ask(self) -> None:
         """Ask for an answer, unless what decides it has not changed since the last one was asked for."""
         document, wants_frequency = self.document, self.pages.page.wants_frequency
-        wanted = (document.sheet, document.kept, wants_frequency, self.looked_at, self.family_view)
+        beside_it = beside(document.sheet.controller, document.kept)
+        wanted = (document.sheet, beside_it, wants_frequency, self.looked_at, self.family_view)
         anew = self.document.generation != self._generation
         if wanted == self._requested and not anew:
             return

@@ -20,7 +20,7 @@ FamilyView = Literal["both", "band", "curves", "none"]
 
 @dataclass(frozen=True, slots=True)
 class Request:
-    """A sheet to assess, and the kept tunings to run beside it; the newest `number` wins.
+    """A sheet to assess, and the tunings to run beside it, as found and kept ones; the newest `number` wins.
 
     `frequency` asks for the response over frequency as well; `looked_at` names the plant of the family that the plots
     are to show in the place of the nominal one, '' for the nominal one itself; `family_view` is how they show the rest.
