@@ -118,3 +118,14 @@ def test_a_refused_structure_says_why() -> None:
         "Needs a sensor of the controlled signal.",
         "There is no feedback to compare with: all gains of the controller are 0.",
     ]
+
+
+def test_needs_are_listed() -> None:
+    """With commas and an "and"."""
+    path = '[controller.disturbance_feedforward]\nexpression = "1/(8 s + 1)"\n[trial]'
+    said = [next(sentences(one)) for one in compare_structures(parse(MET.replace("[trial]", path)))]
+    assert said == [
+        "Needs a model of the plant and a measured disturbance.",
+        "Needs a sensor of the controlled signal.",
+        "Needs a sensor of the controlled signal, a model of the plant and a measured disturbance.",
+    ]

@@ -56,7 +56,13 @@ def test_feedback_alone_meets_the_same_disturbance() -> None:
 def test_a_disturbance_that_is_not_measured_is_left_as_it_is() -> None:
     """Feedforward alone says so, unless it has a measured one."""
     assert NOTHING_MEASURED in structures(mash())[0].remarks
-    assert NOTHING_MEASURED not in structures(mash(more=MEASURED))[0].remarks
+    assert len(structures(mash())[2].remarks) == 1
+    named = structures(mash(more=MEASURED + 'name = "Malt feed"\nkind = "static"\n'))
+    assert NOTHING_MEASURED not in named[0].remarks
+    assert named[0].remarks[1] == named[2].remarks[1] == "Against Malt feed acts a static feedforward."
+    assert structures(mash(more=MEASURED))[0].remarks[1] == (
+        "Against the measured disturbance acts a dynamic feedforward."
+    )
 
 
 @pytest.mark.parametrize(

@@ -49,7 +49,8 @@ def show_tunings(sheet: Sheet, found: TuningTable, file: str, out: Console) -> N
 
 def sentences(one: Comparison) -> Iterator[str]:
     """Yield what is said of a structure: what it needs, whether it can destabilise, and what else must be known."""
-    yield f"Needs {' and '.join(one.structure.needs)}."
+    *first, last = one.structure.needs
+    yield f"Needs {', '.join(first)} and {last}." if first else f"Needs {last}."
     if one.stability:
         yield f"Can it make a stable plant unstable? {one.stability}"
     yield from one.remarks

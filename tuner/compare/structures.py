@@ -100,7 +100,7 @@ def _feedforward_alone(sheet: Sheet, chosen: Chosen, alone: Alone) -> Structure:
     measured = _measures(sheet)
     needs = (MODEL, MEASURED_DISTURBANCE) if measured else (MODEL,)
     caution = [_CAUTIONS[alone]] if alone != "stable" else []
-    remarks = (chosen.sentence, *caution, *([] if measured else [NOTHING_MEASURED]))
+    remarks = (chosen.sentence, *_against(sheet), *caution, *([] if measured else [NOTHING_MEASURED]))
     if chosen.feedforward is None:
         return _refused("feedforward", needs, alone, chosen.sentence)
     found = with_feedforward(sheet, chosen.feedforward)
@@ -126,7 +126,7 @@ def _both(sheet: Sheet, chosen: Chosen, alone: Alone) -> Structure:
         return _refused("both", needs, alone, NO_FEEDBACK)
     found = with_feedforward(sheet, chosen.feedforward)
     closed = replace(found, controller=replace(found.controller, feedback=True))
-    return Structure("both", NAMES["both"], closed, needs, alone, (chosen.sentence,))
+    return Structure("both", NAMES["both"], closed, needs, alone, (chosen.sentence, *_against(sheet)))
 
 
 def _refused(kind: Kind, needs: tuple[str, ...], alone: Alone, why: str) -> Structure:
@@ -136,6 +136,14 @@ def _refused(kind: Kind, needs: tuple[str, ...], alone: Alone, why: str) -> Stru
 def _measures(sheet: Sheet) -> bool:
     measured = sheet.controller.disturbance_feedforward
     return measured is not None and measured.acts
+
+
+def _against(sheet: Sheet) -> tuple[str, ...]:
+    """Say what acts against a measured disturbance."""
+    against = sheet.controller.disturbance_feedforward
+    if against is None or not against.acts:
+        return ()
+    return (f"Against {against.name or 'the measured disturbance'} acts a {against.kind} feedforward.",)
 
 
 def _has_gains(sheet: Sheet) -> bool:
