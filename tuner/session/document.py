@@ -9,6 +9,7 @@ from tuner.model.controller import Controller, Form
 from tuner.model.parameters import Parameter
 from tuner.model.plant import ExpressionPlant, Plant, PlantParameter
 from tuner.model.sheet import Sheet
+from tuner.session.blocks import Block, with_block, without_block
 from tuner.session.history import History
 from tuner.session.plant_forms import PlantForm, PlantForms, form_of
 from tuner.session.ruler_range import RulerRange, range_for, typical_value, widened
@@ -16,8 +17,10 @@ from tuner.session.sheet_file import SheetFile, read_file, unsaved_file
 from tuner.session.state import (
     State,
     first_state,
+    has_feedforward,
     typed_before,
     with_disturbance_path,
+    with_feedforward_switched,
     with_formula,
     with_parameter,
     with_plant,
@@ -256,6 +259,37 @@ class Document:
         span = range_for(parameter, value, typical_value(self.sheet, name)) if span is None else widened(span, value)
         self._ranges[name] = span
         return span
+
+    # Blocks -----------------------------------------------------------------------------------------------------
+
+    def put_block(self, block: Block, *, there: bool) -> None:
+        """Put a block of the loop in, its numbers to begin with, or take it out.
+
+        Raises
+        ------
+        SheetError
+            When the loop cannot be so; the present sheet stays.
+        """
+        verb, change = ("Add", with_block) if there else ("Remove", without_block)
+        self.edit(change(self.sheet, block.key), label=f"{verb} the {block.words}")
+
+    def switch_feedback(self) -> None:
+        """Open the feedback path, or close it."""
+        law = self.sheet.controller
+        label = "Open the feedback path" if law.feedback else "Close the feedback path"
+        self.change(replace(self.sheet, controller=replace(law, feedback=not law.feedback)), label=label)
+
+    def switch_feedforward(self) -> None:
+        """Open the feedforward paths, or close them with the feedforwards that were there."""
+        state = with_feedforward_switched(self._history.present)
+        if state != self._history.present:
+            label = "Close the feedforward path" if state.aside is None else "Open the feedforward path"
+            self._change_checked(state, label, None)
+
+    @property
+    def has_feedforward(self) -> bool:
+        """Whether there is feedforward, or one that is switched off."""
+        return has_feedforward(self._history.present)
 
     # The plant --------------------------------------------------------------------------------------------------
 

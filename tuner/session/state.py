@@ -2,7 +2,7 @@
 
 from dataclasses import dataclass, field, replace
 
-from tuner.model.controller import Controller
+from tuner.model.controller import Controller, DisturbanceFeedforward, Feedforward
 from tuner.model.plant import ExpressionPlant, PhysicsPlant, Plant, PlantParameter
 from tuner.model.sheet import Sheet
 from tuner.session.plant_forms import PlantForm, PlantForms, form_of, switch
@@ -10,12 +10,21 @@ from tuner.session.tunings import KeptTuning
 
 
 @dataclass(frozen=True, slots=True)
+class Feedforwards:
+    """The feedforwards of a controller, to be switched on again."""
+
+    reference: Feedforward | None
+    disturbance: DisturbanceFeedforward | None
+
+
+@dataclass(frozen=True, slots=True)
 class State:
-    """The sheet, the kept tunings, and the forms in which the plant was typed."""
+    """The sheet, the kept tunings, the forms in which the plant was typed, and feedforwards that are switched off."""
 
     sheet: Sheet
     kept: tuple[KeptTuning, ...] = ()
     forms: PlantForms = field(default_factory=PlantForms)
+    aside: Feedforwards | None = None
 
 
 @dataclass(frozen=True, slots=True)
@@ -35,6 +44,36 @@ def with_sheet(state: State, sheet: Sheet) -> State:
     """Return the state with another sheet."""
     forms = state.forms if sheet.plant == state.sheet.plant else state.forms.edited(sheet.plant)
     return replace(state, sheet=sheet, forms=forms)
+
+
+def with_feedforward_switched(state: State) -> State:
+    """Return the state with the feedforwards taken out and set aside, or with those that were there brought back.
+
+    Where none was ever there, nothing changes.
+    """
+    law, aside = state.sheet.controller, state.aside
+    forward, against = law.feedforward, law.disturbance_feedforward
+    if _acts(law):
+        silent = replace(against, kind="none") if against else None
+        off = replace(law, feedforward=None, disturbance_feedforward=silent)
+        return replace(with_sheet(state, replace(state.sheet, controller=off)), aside=Feedforwards(forward, against))
+    if aside is None:
+        return state
+    back = aside.disturbance if against is not None else None
+    if back is not None and against is not None:
+        back = replace(against, kind=back.kind, filter_time=back.filter_time)
+    on = replace(law, feedforward=aside.reference, disturbance_feedforward=back)
+    return replace(with_sheet(state, replace(state.sheet, controller=on)), aside=None)
+
+
+def has_feedforward(state: State) -> bool:
+    """Return whether there is feedforward that acts, or one that is switched off."""
+    return state.aside is not None or _acts(state.sheet.controller)
+
+
+def _acts(law: Controller) -> bool:
+    against = law.disturbance_feedforward
+    return law.feedforward is not None or (against is not None and against.acts)
 
 
 def with_plant(state: State, plant: Plant) -> State:

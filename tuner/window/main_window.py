@@ -4,13 +4,14 @@ from collections.abc import Sequence
 from pathlib import Path
 
 from PySide6.QtCore import QByteArray, Qt, QTimer, Signal
-from PySide6.QtGui import QCloseEvent, QDragEnterEvent, QDropEvent, QKeyEvent
+from PySide6.QtGui import QCloseEvent, QDragEnterEvent, QDropEvent, QKeyEvent, QResizeEvent
 from PySide6.QtWidgets import QMainWindow, QScrollArea, QSplitter, QVBoxLayout, QWidget
 
 from tuner.judge.wording import shortfall
 from tuner.model.family import NOMINAL
 from tuner.session.document import Document
 from tuner.session.tunings import beside
+from tuner.window.diagram.diagram import LoopDiagram
 from tuner.window.editors.panel import EditorPanel
 from tuner.window.elided import ElidedLabel
 from tuner.window.frequency.page import FrequencyPage
@@ -27,6 +28,8 @@ SMALLEST = (960, 600)
 _EDITOR_WIDTH = 272
 _PAINTING = 1
 """Milliseconds after an answer when it has been painted: Qt paints before it looks at its clock."""
+ROOMY = 780
+"""Height, pixels, from which the loop diagram has room for what was found at its signals."""
 LATE = 150
 """Milliseconds without a verdict on the present tuning after which the last one is shown paler."""
 _PATIENCE = 2_000
@@ -70,6 +73,7 @@ class MainWindow(QMainWindow):
         self.document, self.theme, self.assessor = document, theme, assessor
         self.editors, self.rulers = editors, rulers
         self.ribbon, self.plots, self.notes = Ribbon(theme), PlotGrid(theme), ElidedLabel()
+        self.diagram = LoopDiagram(document, theme)
         self.frequency = FrequencyPage(theme)
         self.pages = Pages(theme, (self.plots, self.frequency, *more_pages))
         self.shown: Shown | None = None
@@ -92,6 +96,7 @@ class MainWindow(QMainWindow):
 
     def start(self) -> None:
         """Ask for the first answer, once the window has been painted."""
+        self.editors.blocks.setFocus()
         QTimer.singleShot(0, self.ask)
         QTimer.singleShot(_PATIENCE, self._explain_wait)
 
@@ -151,6 +156,7 @@ class MainWindow(QMainWindow):
             self._lose_sight(shown)
             self._verdict_came(shown.number)
             self.ribbon.show(shown)
+            self.diagram.show_values(shown)
             self.editors.show(shown.assessment)
             self._say_notes(shown.assessment.notes)
         else:
@@ -243,6 +249,7 @@ class MainWindow(QMainWindow):
         column.setContentsMargins(0, 0, 0, 0)
         column.setSpacing(0)
         column.addWidget(self.ribbon.widget)
+        column.addWidget(self.diagram)
         column.addWidget(self.upwards, 1)
         column.addWidget(self.notes)
         self.setCentralWidget(whole)
@@ -256,13 +263,36 @@ class MainWindow(QMainWindow):
         self.pages.chosen.connect(lambda _name: self.ask())
         self.pages.nominal_wanted.connect(lambda: self.look_at(""))
         self.ribbon.plant_wanted.connect(self.look_at)
+        self.diagram.page_wanted.connect(self._show_editors)
+        self.diagram.refused.connect(self.say_fault)
+        self.editors.block_chosen.connect(lambda _page: self.diagram.choose(""))
         self.plots.plant_wanted.connect(self.look_at)
         self.frequency.plant_wanted.connect(self.look_at)
+
+    def _show_editors(self, page: str, block: str) -> None:
+        """Show the editors of a block that was pressed in the diagram, and mark it there."""
+        self.editors.select(page)
+        self.diagram.choose(block)
+
+    def show_diagram(self, *, shown: bool) -> None:
+        """Show the loop diagram, or leave its room to the plots."""
+        self.diagram.setVisible(shown)
+
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        """Give the diagram less room in a low window."""
+        super().resizeEvent(event)
+        self.diagram.be_compact(compact=event.size().height() < ROOMY)
 
     def layout_memory(self) -> Memory:
         """Return how the window stands and how its room is divided."""
         states = {name: _text(splitter.saveState()) for name, splitter in self._splitters().items()}
-        return Memory(geometry=_text(self.saveGeometry()), theme=self.theme.choice, page=self.pages.page.name, **states)
+        return Memory(
+            geometry=_text(self.saveGeometry()),
+            theme=self.theme.choice,
+            page=self.pages.page.name,
+            diagram="hidden" if self.diagram.isHidden() else "shown",
+            **states,
+        )
 
     def restore_layout(self, memory: Memory) -> None:
         """Stand and divide the room as remembered."""
@@ -272,6 +302,7 @@ class MainWindow(QMainWindow):
             if state := getattr(memory, name):
                 splitter.restoreState(_bytes(state))
         self.pages.begin_with(memory.page)
+        self.show_diagram(shown=memory.diagram != "hidden")
 
     def _splitters(self) -> dict[str, QSplitter]:
         plots = self.plots

@@ -20,6 +20,8 @@ class Memory:
         The choice of theme.
     page : str
         The page of the plot area that was in sight.
+    diagram : str
+        Whether the loop diagram was 'shown' or 'hidden'.
     """
 
     geometry: str = ""
@@ -30,6 +32,7 @@ class Memory:
     right: str = ""
     theme: str = "desktop"
     page: str = ""
+    diagram: str = "shown"
 
 
 def recall() -> Memory:

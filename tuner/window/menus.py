@@ -110,11 +110,15 @@ class Menus:
         self._filled(menu.addMenu("Look at the plant &worst for"), self._list_worst)
         self._fill_family(menu.addMenu("&Family on the plots"))
         menu.addSeparator()
+        shown = self._add(menu, "diagram", "Loop &diagram", self._show_diagram, "Ctrl+Shift+D")
+        shown.setCheckable(True)
+        menu.aboutToShow.connect(lambda: shown.setChecked(not window.diagram.isHidden()))
         self._add(menu, "whole", "&Whole range of the plots", window.pages.show_whole, "Ctrl+0")
         menu.addSeparator()
         self._add(menu, "to editor", "Go to the &editor", lambda: _focus(window.editors), "Ctrl+1")
         self._add(menu, "to rulers", "Go to the &rulers", lambda: _focus(window.rulers), "Ctrl+2")
         self._add(menu, "to limits", "Go to the &limits", window.ribbon.focus, "Ctrl+3")
+        self._add(menu, "to diagram", "Go to the loop dia&gram", lambda: _focus(window.diagram), "Ctrl+4")
         menu.addSeparator()
         self._fill_theme(menu.addMenu("&Theme"))
 
@@ -126,6 +130,10 @@ class Menus:
             action = self._add(menu, f"page {name}", f"{name} page", choose, f"Ctrl+Alt+{index + 1}")
             _radio(action, group, checked=name == pages.page.name)
         pages.chosen.connect(lambda name: self.actions[f"page {name}"].setChecked(True))
+
+    def _show_diagram(self) -> None:
+        """Show the loop diagram if it is hidden, else hide it."""
+        self._window.show_diagram(shown=self._window.diagram.isHidden())
 
     def _show_plot(self, name: str) -> None:
         """Show one plot of the trial alone, or all; the page of the trial comes in sight for it."""

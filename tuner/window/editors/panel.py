@@ -7,7 +7,9 @@ from PySide6.QtWidgets import QFrame, QListView, QListWidget, QScrollArea, QStac
 from tuner.judge.assessment import Assessment
 from tuner.session.document import Document
 from tuner.window.editors.block_pages import ControllerPage, TablePage, loop_page
+from tuner.window.editors.feedforward_page import FeedforwardPage
 from tuner.window.editors.field import Page
+from tuner.window.editors.filters_page import FiltersPage
 from tuner.window.editors.limits_page import LimitsPage
 from tuner.window.editors.plant_page import PlantPage
 from tuner.window.tab_order import order_tabs
@@ -27,14 +29,16 @@ class EditorPanel(QWidget):
         self._generation = document.generation
         self.limits = LimitsPage(document, theme)
         self.plant = PlantPage(document, theme)
-        controller = ControllerPage(document, theme)
-        self.disturbance_path = controller.disturbance_path
+        feedforward = FeedforwardPage(document, theme)
+        self.disturbance_path = feedforward.disturbance_path
         self.pages: dict[str, Page] = {
             "Loop": loop_page(document, theme),
             "Plant": self.plant,
             "Actuator": TablePage(document, theme, (("", "actuator"),)),
             "Sensor": TablePage(document, theme, (("", "sensor"),)),
-            "Controller": controller,
+            "Controller": ControllerPage(document, theme),
+            "Feedforward": feedforward,
+            "Filters": FiltersPage(document, theme),
             "Trial": TablePage(document, theme, (("", "trial"),)),
             "Limits": self.limits,
         }
@@ -104,7 +108,7 @@ class EditorPanel(QWidget):
         return super().focusNextPrevChild(forward)
 
     def _block_list(self) -> QListWidget:
-        """Return the list of the blocks, flowing like words in two lines."""
+        """Return the list of the blocks, flowing like words in three lines."""
         blocks = QListWidget()
         blocks.setFlow(QListView.Flow.LeftToRight)
         blocks.setWrapping(True)
@@ -113,7 +117,7 @@ class EditorPanel(QWidget):
         blocks.setVerticalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
         blocks.setAccessibleName("blocks of the loop")
         blocks.addItems(list(self.pages))
-        blocks.setFixedHeight(60)
+        blocks.setFixedHeight(88)
         return blocks
 
     def _on_block(self, name: str) -> None:

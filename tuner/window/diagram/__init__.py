@@ -1,0 +1,1 @@
+"""The loop drawn across the window: its blocks, its signals, and two switches."""
