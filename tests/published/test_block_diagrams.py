@@ -102,70 +102,93 @@ def random_sheet(seed: int) -> Sheet:
     )
 
 
-def wired(sheet: Sheet) -> control.StateSpace:
-    """Return the loop as python-control wires it by names: inputs r and d, outputs y and u, at the samples."""
-    law, step = sheet.controller, sheet.controller.sample_time
-    z = control.tf([1.0, 0.0], [1.0], step)
-    s = control.tf("s")
-    back = (1.0 - 1.0 / z) / step
+def held(system: control.TransferFunction, step: float, name: str, ends: tuple[str, str]) -> control.StateSpace:
+    """Return a continuous block behind a hold, between two signals."""
+    sampled = control.sample_system(control.ss(system), step, "zoh")
+    return control.ss(sampled, name=name, inputs=ends[0], outputs=ends[1])
 
-    def held(system: control.TransferFunction, name: str, inputs: str, outputs: str) -> control.StateSpace:
-        state = control.ss(system)
-        return control.ss(control.sample_system(state, step, "zoh"), name=name, inputs=inputs, outputs=outputs)
 
-    def block(system: object, name: str, inputs: str, outputs: str) -> control.StateSpace:
-        return control.ss(control.tf2ss(system), name=name, inputs=inputs, outputs=outputs)
+def block(system: control.TransferFunction, name: str, ends: tuple[str, str]) -> control.StateSpace:
+    """Return a sampled block between two signals."""
+    return control.ss(control.tf2ss(system), name=name, inputs=ends[0], outputs=ends[1])
 
-    plant = realise_expression(sheet.plant.expression, {})  # type: ignore[union-attr]  # it is a formula
-    g = control.zpk(plant.zeros.real, plant.poles.real, plant.gain)
-    act, sense = 1.0 / (0.4 * s + 1.0), 1.0 / (0.3 * s + 1.0)
-    against = law.disturbance_feedforward
-    path = realise_expression(against.expression, {}) if against else None
-    pd = control.zpk(path.zeros.real, path.poles.real, path.gain) if path is not None else g
-    # Effort and disturbance to output and measurement, as one continuous system of two inputs under one hold.
-    way = control.append(control.ss(g * act), control.ss(pd))
-    seen = control.append(control.ss(g * act * sense), control.ss(pd * sense))
-    both = control.ss(
-        np.block([[way.A, np.zeros((way.nstates, seen.nstates))], [np.zeros((seen.nstates, way.nstates)), seen.A]]),
-        np.vstack((way.B, seen.B)),
-        np.block([[way.C.sum(0, keepdims=True), np.zeros((1, seen.nstates))],
-                  [np.zeros((1, way.nstates)), seen.C.sum(0, keepdims=True)]]),
+
+def formula(text: str) -> control.TransferFunction:
+    """Return a formula of ours with real zeros and poles as theirs."""
+    made = realise_expression(text, {})
+    return control.zpk(made.zeros.real, made.poles.real, made.gain)
+
+
+def ways(sheet: Sheet) -> tuple[control.TransferFunction, control.TransferFunction]:
+    """Return the ways from the effort and from the disturbance to the output."""
+    against = sheet.controller.disturbance_feedforward
+    g = formula(sheet.plant.expression)  # type: ignore[union-attr]  # it is a formula
+    return g / (0.4 * control.tf("s") + 1.0), formula(against.expression) if against else g
+
+
+def process(sheet: Sheet) -> control.StateSpace:
+    """Return effort and disturbance to output and measurement: one continuous system of two inputs under one hold."""
+    sense = 1.0 / (0.3 * control.tf("s") + 1.0)
+    way = control.append(*(control.ss(one) for one in ways(sheet)))
+    seen = control.append(*(control.ss(one * sense) for one in ways(sheet)))
+    both = control.append(way, seen)
+    joined = control.ss(
+        both.A,
+        both.B[:, :2] + both.B[:, 2:],
+        np.vstack((both.C[:2].sum(0), both.C[2:].sum(0))),
         np.zeros((2, 2)),
-    )  # fmt: skip
-    process = control.ss(
-        control.sample_system(both, step, "zoh"), name="process", inputs=["u", "d"], outputs=["y", "ym"]
     )
-    gains = law.parallel()
-    integral, derivative = gains.ki * step / (z - 1.0), gains.kd * back / (law.filter_time * back + 1.0)
-    measured = control.tf([1.0], [1.0], step)
+    sampled = control.sample_system(joined, sheet.controller.sample_time, "zoh")
+    return control.ss(sampled, name="process", inputs=["u", "d"], outputs=["y", "ym"])
+
+
+def measured(law: Controller, z: control.TransferFunction, back: control.TransferFunction) -> control.TransferFunction:
+    """Return the filter, the lead-lag and the notch one after the other."""
+    found = control.tf([1.0], [1.0], law.sample_time)
     if law.measurement_filter:
-        measured = measured / (law.measurement_filter * back + 1.0)
+        found = found / (law.measurement_filter * back + 1.0)
     if law.lead_lag:
-        measured = measured * (law.lead_lag.lead * back + 1.0) / (law.lead_lag.lag * back + 1.0)
+        found = found * (law.lead_lag.lead * back + 1.0) / (law.lead_lag.lag * back + 1.0)
     if law.notch:
         w0, depth, width = law.notch.frequency, law.notch.depth, law.notch.width
-        x = w0 / np.tan(0.5 * w0 * step) * (z - 1.0) / (z + 1.0)
-        measured = measured * (x**2 + depth * width * w0 * x + w0**2) / (x**2 + width * w0 * x + w0**2)
+        x = w0 / np.tan(0.5 * w0 * law.sample_time) * (z - 1.0) / (z + 1.0)
+        found = found * (x**2 + depth * width * w0 * x + w0**2) / (x**2 + width * w0 * x + w0**2)
+    return found
+
+
+def fed(sheet: Sheet) -> tuple[control.TransferFunction, control.TransferFunction, control.TransferFunction]:
+    """Return the reference filter and both feedforwards."""
+    law, s = sheet.controller, control.tf("s")
     smooth, forward, undo = control.tf([1.0], [1.0]), control.tf([0.0], [1.0]), control.tf([0.0], [1.0])
+    effort, disturbance = (control.tf(way) for way in ways(sheet))
     if law.reference_filter:
         smooth = 1.0 / (law.reference_filter.time * s + 1.0) ** law.reference_filter.order
     if law.feedforward and law.feedforward.kind == "static":
         forward = control.tf([law.feedforward.gain], [1.0])
     elif law.feedforward:
-        forward = control.minreal(
-            1.0 / control.tf(g * act) / (law.feedforward.filter_time * s + 1.0) ** 3, verbose=False
-        )
-    if path is not None:
-        undo = control.minreal(-control.tf(pd) / control.tf(g * act) / (0.5 * s + 1.0), verbose=False)
+        forward = control.minreal(1.0 / effort / (law.feedforward.filter_time * s + 1.0) ** 3, verbose=False)
+    if law.disturbance_feedforward:
+        undo = control.minreal(-disturbance / effort / (0.5 * s + 1.0), verbose=False)
+    return smooth, forward, undo
+
+
+def wired(sheet: Sheet) -> control.StateSpace:
+    """Return the loop as python-control wires it by names: inputs r and d, outputs y and u, at the samples."""
+    law, step = sheet.controller, sheet.controller.sample_time
+    z = control.tf([1.0, 0.0], [1.0], step)
+    back = (1.0 - 1.0 / z) / step
+    gains = law.parallel()
+    integral, derivative = gains.ki * step / (z - 1.0), gains.kd * back / (law.filter_time * back + 1.0)
+    smooth, forward, undo = fed(sheet)
     return control.interconnect(
         [
-            process,
-            block(measured, "measurement", "ym", "found"),
-            held(smooth, "smooth", "r", "asked"),
-            held(forward, "forward", "r", "uf"),
-            held(undo, "undo", "d", "ud"),
-            block(law.b * gains.kp + integral + law.c * derivative, "ahead", "asked", "ua"),
-            block(gains.kp + integral + derivative, "behind", "found", "ub"),
+            process(sheet),
+            block(measured(law, z, back), "measurement", ("ym", "found")),
+            held(smooth, step, "smooth", ("r", "asked")),
+            held(forward, step, "forward", ("r", "uf")),
+            held(undo, step, "undo", ("d", "ud")),
+            block(law.b * gains.kp + integral + law.c * derivative, "ahead", ("asked", "ua")),
+            block(gains.kp + integral + derivative, "behind", ("found", "ub")),
             control.summing_junction(["ua", "-ub", "uf", "ud"], "u", name="sum"),
         ],
         inputs=["r", "d"],

@@ -42,10 +42,7 @@ def test_the_ideal_compensator() -> None:
 
 @pytest.mark.parametrize("step", [0.5, 0.1])
 def test_the_disturbance_is_cancelled_at_the_samples(step: float) -> None:
-    """With the exact models the output stays at rest but for what happens within a sample, and less the shorter it is.
-
-    The effort is held, so that it follows the ideal one in steps: what is left shrinks with the sample time.
-    """
+    """With exact models the output stays at rest, but for what a held effort leaves: less the shorter the sample."""
     law = Controller(sample_time=step, feedback=False, disturbance_feedforward=DisturbanceFeedforward(PATH))
     loop = sheet(law)
     (traces,) = run(loop, family_of(loop, 1))

@@ -26,6 +26,7 @@ from tuner.window.worker import Assessor
 
 SMALLEST = (960, 600)
 _EDITOR_WIDTH = 272
+_RULERS_HEIGHT, _LOW_RULERS_HEIGHT = 208, 128
 _PAINTING = 1
 """Milliseconds after an answer when it has been painted: Qt paints before it looks at its clock."""
 ROOMY = 780
@@ -80,6 +81,7 @@ class MainWindow(QMainWindow):
         self.looked_at = ""
         self.family_view: FamilyView = "both"
         self._asked = self._first = 0
+        self._is_divided = False
         self._generation = document.generation
         self._fault = ""
         self._requested: object = None
@@ -239,7 +241,8 @@ class MainWindow(QMainWindow):
         self.across.setSizes([_EDITOR_WIDTH, 1000])
         self.upwards = _splitter(Qt.Orientation.Vertical, self.across, _with_line(self.rulers))
         self.upwards.setStretchFactor(0, 1)
-        self.upwards.setSizes([1000, 208])
+        self.upwards.setSizes([1000, _RULERS_HEIGHT])
+        self.upwards.splitterMoved.connect(self._divided_by_hand)
         self.notes.setProperty("voice", "quiet")
         self.notes.setAccessibleName("Notes")
         self.notes.setContentsMargins(12, 4, 12, 4)
@@ -281,7 +284,14 @@ class MainWindow(QMainWindow):
     def resizeEvent(self, event: QResizeEvent) -> None:
         """Give the diagram less room in a low window."""
         super().resizeEvent(event)
-        self.diagram.be_compact(compact=event.size().height() < ROOMY)
+        low = event.size().height() < ROOMY
+        self.diagram.be_compact(compact=low)
+        if not self._is_divided:
+            self.upwards.setSizes([event.size().height(), _LOW_RULERS_HEIGHT if low else _RULERS_HEIGHT])
+
+    def _divided_by_hand(self) -> None:
+        """Leave the room as it was divided, however high the window is from now on."""
+        self._is_divided = True
 
     def layout_memory(self) -> Memory:
         """Return how the window stands and how its room is divided."""
@@ -301,6 +311,7 @@ class MainWindow(QMainWindow):
         for name, splitter in self._splitters().items():
             if state := getattr(memory, name):
                 splitter.restoreState(_bytes(state))
+                self._is_divided = True
         self.pages.begin_with(memory.page)
         self.show_diagram(shown=memory.diagram != "hidden")
 

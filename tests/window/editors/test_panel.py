@@ -24,7 +24,7 @@ from tuner.window.editors.panel import EditorPanel
 from tuner.window.tab_order import stops
 from tuner.window.theme import Theme
 
-BLOCKS = ["Loop", "Plant", "Actuator", "Sensor", "Controller", "Trial", "Limits"]
+BLOCKS = ["Loop", "Plant", "Actuator", "Sensor", "Controller", "Feedforward", "Filters", "Trial", "Limits"]
 
 
 def test_every_block_has_its_page(panel: EditorPanel, qtbot: QtBot) -> None:
@@ -115,16 +115,13 @@ def test_tab_goes_down_the_page(panel: EditorPanel, document: Document, qtbot: Q
 
 def test_tab_finds_the_fields_of_a_block_that_was_added(panel: EditorPanel, qtbot: QtBot) -> None:
     """The numbers of a notch come after its switch, not at the end of the window."""
-    panel.select("Controller")
-    notch = segments(panel.pages["Controller"], "notch").buttons["notch"]
+    panel.select("Filters")
+    notch = segments(panel.pages["Filters"], "notch").buttons["notch"]
     QTest.mouseClick(notch, Qt.MouseButton.LeftButton)
     notch.setFocus()
     qtbot.waitUntil(notch.hasFocus)
     names = ["frequency", "depth", "width"]
-    assert _walked(4) == [
-        *(f"controller notch {name}" for name in names),
-        "Feedforward of the reference: none",
-    ]
+    assert _walked(3) == [f"controller notch {name}" for name in names]
 
 
 def test_everything_that_takes_the_focus_has_a_name(panel: EditorPanel, document: Document) -> None:
@@ -160,7 +157,7 @@ def test_a_long_title_is_kept_whole(panel: EditorPanel, document: Document) -> N
 
 def test_twelve_parameters_scroll(panel: EditorPanel, document: Document, qtbot: QtBot) -> None:
     """A plant of many parameters can be walked to the last one by keys, which is in sight then."""
-    panel.resize(300, 320)
+    panel.resize(300, 348)
     lags = [f"lag_number_{index}" for index in range(11)]
     document.change_formula(f"gain / ({' '.join(f'({lag} s + 1)' for lag in lags)})")
     table = formula_editor(panel.plant).table

@@ -33,7 +33,7 @@ EDITS = [
     Edit("Sensor", "sensor.resolution", "0.1", 0.1),
     Edit("Controller", "controller.sample_time", "0.5", 0.5),
     Edit("Controller", "controller.delay_samples", "2", 2),
-    Edit("Controller", "controller.measurement_filter.time", "3", 3.0),
+    Edit("Filters", "controller.measurement_filter.time", "3", 3.0),
     Edit("Trial", "trial.reference", "-4", -4.0),
     Edit("Trial", "trial.disturbance", "10", 10.0),
     Edit("Trial", "trial.duration", "400", 400.0),

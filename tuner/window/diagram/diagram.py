@@ -16,7 +16,8 @@ from tuner.window.diagram.words import SignalWords, signal_words
 from tuner.window.shown import Shown
 from tuner.window.theme import Theme
 
-_FEEDFORWARD = ("feedforward", "disturbance_feedforward")
+_ASIDE = 6.0
+"""How much farther a part is that lies aside of the way of an arrow key."""
 _FEEDBACK = ("sensor", "measurement_filter", "lead_lag", "notch")
 _SIGNS = {"sum": ("+", "+"), "disturbance": ("+", "+"), "behind": ("+", "+")}
 
@@ -140,15 +141,20 @@ class LoopDiagram(QWidget):
         return True
 
     def _open_menu(self, part: BlockPart, at: QPoint) -> None:
-        menu = QMenu(self)
+        menu = self.menu_of(part)
         menu.setAttribute(Qt.WidgetAttribute.WA_DeleteOnClose)
+        menu.popup(at)
+
+    def menu_of(self, part: BlockPart) -> QMenu:
+        """Return the menu of a block: what can be done with it."""
+        menu = QMenu(self)
         if part.block.there:
             menu.addAction("Edit", partial(self._pressed, part))
             if part.block.may_go:
                 menu.addAction("Remove", partial(self._put, part, there=False))
         else:
             menu.addAction("Add", partial(self._put, part, there=True))
-        menu.popup(at)
+        return menu
 
     def _go(self, part: Part, direction: QPointF) -> None:
         """Give the keyboard to the nearest part in a direction."""
@@ -159,7 +165,7 @@ class LoopDiagram(QWidget):
             along = QPointF.dotProduct(way, direction)
             aside = abs(way.x() * direction.y()) + abs(way.y() * direction.x())
             if other is not part and other.isVisible() and along > 1.0:
-                found.append((along + 3.0 * aside, other))
+                found.append((along + _ASIDE * aside, other))
         if found:
             min(found, key=lambda one: one[0])[1].setFocus(Qt.FocusReason.OtherFocusReason)
 

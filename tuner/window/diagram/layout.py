@@ -56,7 +56,7 @@ class Layout:
     radius: float
 
 
-FULL, COMPACT = 124, 92
+FULL, COMPACT = 124, 80
 """Heights with the values at the signals, and without."""
 
 _MARGIN = 12.0
@@ -133,7 +133,7 @@ class _Place:
 
     @property
     def top(self) -> float:
-        return 0.5 * self._block + 6.0
+        return 0.5 * self._block + (6.0 if self.height >= FULL else 3.0)
 
     @property
     def middle(self) -> float:
@@ -145,7 +145,7 @@ class _Place:
 
     @property
     def _block(self) -> float:
-        return 32.0 if self.height >= FULL else 24.0
+        return 32.0 if self.height >= FULL else 22.0
 
     def x(self, key: str) -> float:
         return round(_MARGIN + _X[key] * (self.width - 2.0 * _MARGIN))
