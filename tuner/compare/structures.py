@@ -100,7 +100,7 @@ def _feedforward_alone(sheet: Sheet, chosen: Chosen, alone: Alone) -> Structure:
     measured = _measures(sheet)
     needs = (MODEL, MEASURED_DISTURBANCE) if measured else (MODEL,)
     caution = [_CAUTIONS[alone]] if alone != "stable" else []
-    remarks = (chosen.sentence, *_against(sheet), *caution, *([] if measured else [NOTHING_MEASURED]))
+    remarks = (*caution, chosen.sentence, *_against(sheet), *([] if measured else [NOTHING_MEASURED]))
     if chosen.feedforward is None:
         return _refused("feedforward", needs, alone, chosen.sentence)
     found = with_feedforward(sheet, chosen.feedforward)

@@ -1,5 +1,7 @@
 """The plots of the page: a curve, a name and a ground for each structure."""
 
+from dataclasses import replace
+
 import numpy as np
 import pytest
 from PySide6.QtCore import Qt
@@ -8,6 +10,7 @@ from PySide6.QtWidgets import QApplication
 from pytestqt.qtbot import QtBot
 
 from tests.window.structures.loops import PLANT, compared
+from tuner.judge.overlay import Level, Overlay
 from tuner.window.structures.overlaid import ROLES, OverlaidPanel, overlaid_panels
 from tuner.window.theme import Theme
 
@@ -113,6 +116,17 @@ def test_a_structure_that_is_refused_has_no_curve(panels: tuple[OverlaidPanel, .
         "both": False,
     }
     assert "both" not in {word.text for word in panels[0].marks.words}
+
+
+def test_a_range_far_away_neither_flattens_the_effort_nor_is_named(panels: tuple[OverlaidPanel, ...]) -> None:
+    """Of a valve from 0 to 100 % that moves a little only what moves is shown; a limit in sight has its words."""
+    far = replace(compared(), overlay=Overlay(levels=(Level("effort", "", "limit 100 %", 60.0, "below"),)))
+    panels[2].show(far)
+    assert panels[2].ranges()[1].high < 40.0
+    assert "limit 100 %" not in {word.text for word in panels[2].marks.words}
+    near = replace(far, overlay=Overlay(levels=(Level("effort", "", "limit 42 %", 2.0, "below"),)))
+    panels[2].show(near)
+    assert "limit 42 %" in {word.text for word in panels[2].marks.words}
 
 
 def test_axes_are_said_with_units(panels: tuple[OverlaidPanel, ...]) -> None:

@@ -1,7 +1,7 @@
 """The plots of the page: one curve for each structure over the ground that its family covers."""
 
 from collections.abc import Callable
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -17,7 +17,7 @@ from tuner.window.plots import thinning
 from tuner.window.plots.extent import Extent, SteadyExtent, wanted
 from tuner.window.plots.items import Curve, Ground
 from tuner.window.plots.lines import Line, effort_corners
-from tuner.window.plots.marks import Marks, trace_marks
+from tuner.window.plots.marks import Marks, Words, trace_marks
 from tuner.window.plots.panel import Panel
 from tuner.window.plots.trace_panel import name_of
 from tuner.window.structures.compared import Compared
@@ -112,7 +112,7 @@ class OverlaidPanel(Panel[Compared]):
         self.ground.areas = self._marks.areas
         self.divide(self.shown.sheet.loop.time_unit, y_offset=self._signal(self.shown.sheet).resting)
         names = [name_of(one.line, f"{ROLES[one.kind]}_word", _PLACES[one.kind], seen) for one in self.drawn.values()]
-        self.marks.show_marks(self._marks, names)
+        self.marks.show_marks(replace(self._marks, words=_seen(self._marks.words, seen)), names)
 
     def read(self, x: float, y: float) -> tuple[tuple[float, float], str] | None:
         """Return the values of all structures at the pointer's time, and the one nearest to it."""
@@ -173,6 +173,11 @@ class OverlaidPanel(Panel[Compared]):
     def _axis_words(self, sheet: Sheet) -> str:
         signal = self._signal(sheet)
         return f"{signal.name or ('Effort' if self.plot == 'effort' else 'Output')}, {signal.unit or '1'}"
+
+
+def _seen(words: tuple[Words, ...], seen: Extent) -> tuple[Words, ...]:
+    """Return the words whose line is in sight."""
+    return tuple(one for one in words if seen.low <= one.y <= seen.high)
 
 
 def overlaid_panels(theme: Theme) -> tuple[OverlaidPanel, ...]:
