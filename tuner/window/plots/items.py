@@ -7,7 +7,7 @@ connect array, and the ground they cover is one item of vertical strokes.
 
 import numpy as np
 import pyqtgraph as pg
-from PySide6.QtCore import QPointF, QRectF, Qt
+from PySide6.QtCore import QRectF, Qt
 from PySide6.QtGui import QColor, QPainter, QPolygonF, QTransform
 from PySide6.QtWidgets import QStyleOptionGraphicsItem, QWidget
 
@@ -116,9 +116,9 @@ class Ground(_Joining):
         """Show every two points as lower and upper edge, filled with a colour."""
         self.prepareGeometryChange()
         self._bounds, self._colour = _bounds(points), colour
-        upper = zip(points.x[-1::-2], points.y[-1::-2], strict=True)
-        corners = (*zip(points.x[::2], points.y[::2], strict=True), *upper)
-        self._polygon = QPolygonF([QPointF(float(x), float(y)) for x, y in corners])
+        x = np.concatenate((points.x[::2], points.x[-1::-2]))
+        y = np.concatenate((points.y[::2], points.y[-1::-2]))
+        self._polygon = pg.functions.arrayToQPolygonF(x, y) if x.size else QPolygonF()
         self.update()
 
     def boundingRect(self) -> QRectF:

@@ -150,7 +150,9 @@ class OverlaidPanel(Panel[Compared]):
 
     def _taken(self, sheet: Sheet, one: "Comparison", found: Assessment) -> Drawn:
         t, values = self._curve(sheet, found.nominal)
-        family = np.stack([np.interp(t, *self._curve(sheet, member)) for member in found.members])
+        curves = [self._curve(sheet, member) for member in found.members]
+        same = all(times is t or np.array_equal(times, t) for times, _ in curves)
+        family = np.stack([own if same else np.interp(t, times, own) for times, own in curves])
         return Drawn(one.structure.kind, Line(t, values, one.name), t, family, found.verdict != "unstable")
 
     def _draw(self, kind: str, one: Drawn | None, colour: QColor, seen: Extent, columns: int) -> None:
