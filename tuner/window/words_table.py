@@ -19,7 +19,7 @@ QTableCornerButton::section {{ background: {page}; border: 0; }}
 
 _PALE = 0.45
 """How much shows of what is not true any more."""
-_HEADS = 176
+_HEADS = 192
 """Pixels for the heads of the rows."""
 _NARROW = 208
 """Pixels below which a column is written small, and its heads with it."""

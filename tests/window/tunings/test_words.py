@@ -85,3 +85,5 @@ def test_the_summary_counts() -> None:
     assert said.startswith("As left is better than as found in ")
     assert int(said.split(" measures")[0].rpartition(" ")[2]) >= better > 0
     assert summary(compared(more="").table) == ALONE
+    kept = Tuning("A", "", replace(mash().controller, gain_1=1.0))
+    assert summary(compared(kept, more="").table).startswith("Tuning A is better than as left in ")

@@ -2,7 +2,7 @@
 
 from collections.abc import Iterator
 
-from tuner.compare.tuning_table import ALIKE, Cell, Column, Row, TuningTable, change, standing
+from tuner.compare.tuning_table import ALIKE, AS_FOUND, AS_LEFT, Cell, Column, Row, TuningTable, change, standing
 from tuner.judge.overlay import at_plant, missed
 from tuner.judge.wording import minus, quantity, unit_of
 from tuner.model.sheet import Sheet
@@ -30,16 +30,25 @@ def summary(table: TuningTable) -> str:
     """Say how the second tuning stands to the first, over all measures."""
     if len(table.columns) < 2:
         return ALONE
-    first, second = table.columns[0].name, table.columns[1].name
+    first, second = (_called(column) for column in table.columns[:2])
     stands = [standing(row.measure, row.cells[1], row.cells[0]) for row in table.rows]
     better, worse = stands.count(1), stands.count(-1)
-    begun = f"{second[0].upper()}{second[1:]}"
-    return f"{begun} is better than {first} in {better} measures and worse in {worse}. Worst plant of the family each."
+    return (
+        f"{_capital(second)} is better than {first} in {better} measures and worse in {worse}. "
+        "Every number is the worst over the family."
+    )
+
+
+def _called(column: Column) -> str:
+    return column.name if column.name in (AS_FOUND, AS_LEFT) else f"tuning {column.name}"
+
+
+def _capital(words: str) -> str:
+    return f"{words[0].upper()}{words[1:]}"
 
 
 def _column(column: Column) -> CellWords:
-    name = column.name if column.name.startswith("as ") else f"tuning {column.name}"
-    return CellWords(f"{name[0].upper()}{name[1:]}", strong=True, tip=column.tuning.label)
+    return CellWords(_capital(_called(column)), strong=True, tip=column.tuning.label)
 
 
 def _rows(shown: ComparedTunings) -> Iterator[_Row]:
