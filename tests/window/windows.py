@@ -15,6 +15,7 @@ from tuner.window.editors import build_editors
 from tuner.window.gain_map import build_gain_map
 from tuner.window.gain_map.question import PaintMap
 from tuner.window.main_window import MainWindow
+from tuner.window.rehearsal import build_rehearsal
 from tuner.window.rulers import build_rulers, keep_painted
 from tuner.window.rulers.painting import PaintRulers, ReasonAt
 from tuner.window.structures import build_structures
@@ -53,6 +54,16 @@ class Answers(Asking):
         """Return the path told."""
         self.suggested = suggested
         return self._answer("picture", Path)
+
+    def demonstration_to_open(self, start: Path) -> Path | None:
+        """Return the path told."""
+        self.start = start
+        return self._answer("demonstration", Path)
+
+    def record_to_save(self, suggested: Path) -> Path | None:
+        """Return the path told."""
+        self.suggested = suggested
+        return self._answer("record", Path)
 
     def folder(self, start: Path) -> Path | None:
         """Return the path told."""
@@ -104,9 +115,10 @@ def opened(  # noqa: PLR0913 - each is what some test is about
         build_structures(held, look, app._structures, made_up.draw, synchronous=synchronous),
         build_tunings(held, look, app._tunings, synchronous=synchronous),
     )
-    window = MainWindow(held, look, assessor, build_editors(held, look), rulers, (gain_map, *compared))
+    rehearsal = build_rehearsal(held, look, synchronous=synchronous)
+    window = MainWindow(held, look, assessor, build_editors(held, look), rulers, (gain_map, *compared, rehearsal))
     footing = keep_painted(held, rulers, painting, reasons, synchronous=synchronous)
-    wiring = wire(window, asking or Answers(unsaved="discard"), footing, gain_map, others=compared)
+    wiring = wire(window, asking or Answers(unsaved="discard"), footing, gain_map, others=(*compared, rehearsal))
     window.resize(1280, 800)
     window.show()
     if synchronous:
@@ -117,7 +129,7 @@ def opened(  # noqa: PLR0913 - each is what some test is about
         wiring.keeping.end()
         footing.close()
         gain_map.close()
-        for page in compared:
+        for page in (*compared, rehearsal):
             page.close()
         assessor.close()
         window.hide()

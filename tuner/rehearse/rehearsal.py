@@ -114,6 +114,11 @@ class Rehearsal:
         return self._bench.effort + self._given.loop.manipulated.resting
 
     @property
+    def by_hand(self) -> float:
+        """Where the effort is or goes while it is set by hand, engineering units."""
+        return self._by_hand
+
+    @property
     def poles(self) -> Poles:
         """The closed-loop poles of the loop as it is now; those of the plant alone while it is not closed."""
         if self._poles is None:

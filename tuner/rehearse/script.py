@@ -1,7 +1,7 @@
 """What a person or a demonstration does to a loop while it runs."""
 
 from math import ceil
-from typing import NamedTuple
+from typing import TYPE_CHECKING, NamedTuple
 
 from tuner.errors import LoopError
 from tuner.model.controller import Controller
@@ -19,8 +19,10 @@ from tuner.model.demonstration import (
     Stop,
 )
 from tuner.model.family import family_of
-from tuner.rehearse.rehearsal import Rehearsal
 from tuner.rehearse.wording import told
+
+if TYPE_CHECKING:  # it loads the compiler, which not everyone needs who speaks of what was played
+    from tuner.rehearse.rehearsal import Rehearsal
 
 _ROUNDING = 1e-9
 """Share of a sample by which an action may lie before it and yet belong to it."""
@@ -34,7 +36,7 @@ class Played(NamedTuple):
     say: str
 
 
-def do(deed: Deed, rehearsal: Rehearsal) -> None:  # noqa: C901 - one line for each kind of deed
+def do(deed: Deed, rehearsal: "Rehearsal") -> None:  # noqa: C901 - one line for each kind of deed
     """Do something to a loop.
 
     Raises
@@ -83,7 +85,7 @@ class Script:
         To what.
     """
 
-    def __init__(self, demonstration: Demonstration, rehearsal: Rehearsal) -> None:
+    def __init__(self, demonstration: Demonstration, rehearsal: "Rehearsal") -> None:
         self.demonstration = demonstration
         self._rehearsal = rehearsal
         self._left = list(reversed(demonstration.actions))

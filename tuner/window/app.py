@@ -30,6 +30,9 @@ from tuner.window.gain_map.page import GainMapPage
 from tuner.window.keeping import Keeping
 from tuner.window.main_window import MainWindow
 from tuner.window.menus import Menus
+from tuner.window.rehearsal import build_rehearsal
+from tuner.window.rehearsal.files import RehearsalFiles
+from tuner.window.rehearsal.page import RehearsalPage
 from tuner.window.rulers import Footing, build_rulers, keep_painted
 from tuner.window.sheet_files import SheetFiles
 from tuner.window.shown import Sketched
@@ -116,7 +119,8 @@ def built(application: QApplication, document: Document, asking: Asking | None =
     footing = keep_painted(document, rulers, apart[0].paint_rulers, _reason_at)
     gain_map = build_gain_map(document, theme, apart[1].paint_map, _reason_at)
     compared = build_structures(document, theme, _structures, _draw), build_tunings(document, theme, _tunings)
-    more = (gain_map, *compared)
+    rehearsal = build_rehearsal(document, theme)
+    more = (gain_map, *compared, rehearsal)
     window = MainWindow(document, theme, assessor, build_editors(document, theme), rulers, more)
     window.resize(*_FIRST_SIZE)
     window.restore_layout(remembered)
@@ -125,7 +129,7 @@ def built(application: QApplication, document: Document, asking: Asking | None =
     for worker in (*apart, assessor, footing.painted, footing.reader, *more, earlier):
         application.aboutToQuit.connect(worker.close)
     assessor.answered.connect(apart[0].start, Qt.ConnectionType.SingleShotConnection)
-    return window, wire(window, asking or Asking(window), footing, gain_map, apart, (*compared, earlier))
+    return window, wire(window, asking or Asking(window), footing, gain_map, apart, (*compared, rehearsal, earlier))
 
 
 def wire(  # noqa: PLR0913, PLR0917 - what a window is made of
@@ -142,6 +146,9 @@ def wire(  # noqa: PLR0913, PLR0917 - what a window is made of
     menus = Menus(window, files, Commands(window, asking))
     window.dropped.connect(files.open_path)
     wiring = Wiring(menus, files, keeping, footing, gain_map, apart, others)
+    for page in others:
+        if isinstance(page, RehearsalPage):
+            RehearsalFiles(page, asking)
     window.closing.connect(lambda event: _close(window, wiring, event))
     if footing is not None:
         footing.painted.wake_after(window.assessor)

@@ -20,6 +20,8 @@ LeftBehind = Literal["restore", "drop", "later"]
 
 _SHEETS = "Tuning sheets (*.toml);;All files (*)"
 _PICTURES = "PNG pictures (*.png)"
+_DEMONSTRATIONS = "Demonstrations (*.toml);;All files (*)"
+_RECORDS = "Records (*.csv);;All files (*)"
 
 
 class Asking:
@@ -42,6 +44,16 @@ class Asking:
         """Ask where a picture is to be saved; a name without an ending gets that of a picture."""
         name, _ = QFileDialog.getSaveFileName(self._parent, "Save picture of the plot", str(suggested), _PICTURES)
         return _with_ending(name, ".png")
+
+    def demonstration_to_open(self, start: Path) -> Path | None:
+        """Ask for a demonstration to play, beginning in a folder."""
+        name, _ = QFileDialog.getOpenFileName(self._parent, "Play demonstration", str(start), _DEMONSTRATIONS)
+        return Path(name) if name else None
+
+    def record_to_save(self, suggested: Path) -> Path | None:
+        """Ask where a record is to be saved; a name without an ending gets that of a record."""
+        name, _ = QFileDialog.getSaveFileName(self._parent, "Save record", str(suggested), _RECORDS)
+        return _with_ending(name, ".csv")
 
     def folder(self, start: Path) -> Path | None:
         """Ask for a folder, which may be a new one."""

@@ -207,6 +207,11 @@ class Panel(QObject, Generic[Answer]):
         """Say why there is nothing to show yet."""
         self._empty.setText(sentence)
 
+    @property
+    def empty_words(self) -> str:
+        """Why there is nothing to show."""
+        return self._empty.text()
+
     def show_empty(self, sentence: str) -> None:
         """Show a sentence in place of curves: an answer has none."""
         self.shown = None
