@@ -16,6 +16,7 @@ def test_it_shows_a_runner(qtbot: QtBot, theme: Theme, runner: Runner, hours: Ho
     """Without a loop nothing can be done but play; a record can be saved, not while that goes on."""
     bar = Bar(theme)
     qtbot.addWidget(bar)
+    qtbot.addWidget(bar.apart)
     bar.show_runner(runner, saving=False)
     parts = (bar.run, bar.anew, bar.record, bar.save, bar.stop)
     assert [part.isEnabled() for part in parts] == [False] * 5
@@ -37,6 +38,7 @@ def test_it_says_what_is_wanted(qtbot: QtBot, theme: Theme) -> None:
     """Each button has its own signal, and changes nothing by itself."""
     bar = Bar(theme)
     qtbot.addWidget(bar)
+    qtbot.addWidget(bar.apart)
     said: list[object] = []
     bar.stop_wanted.connect(lambda: said.append("stop"))
     bar.anew_wanted.connect(lambda: said.append("anew"))

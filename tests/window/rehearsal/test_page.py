@@ -244,6 +244,15 @@ def test_a_loop_that_cannot_be_computed_says_why(qtbot: QtBot, document: Documen
     page.widget.hide()
 
 
+def test_record_and_demonstration_move_where_there_is_room(page: RehearsalPage) -> None:
+    """In the row of a wide page, in the column of a narrow one, in sight either way."""
+    for width, parent in ((1000, page.bar), (640, page.hand.parentWidget())):
+        page.widget.resize(width, 700)
+        QApplication.processEvents()
+        assert page.bar.apart.parentWidget() is parent
+        assert page.bar.play.isVisible()
+
+
 def test_every_control_has_a_name(page: RehearsalPage) -> None:
     """Whatever takes the keyboard says what it is, by its words or by a name."""
     kinds = (QAbstractButton, QLineEdit, QAbstractSlider, QComboBox)

@@ -1,4 +1,4 @@
-"""The row over the chart: running, speed, record, demonstration, and the big stop."""
+"""What is done with the run as a whole: running, speed and the big stop in a row, record and demonstration apart."""
 
 from PySide6.QtCore import Qt, Signal
 from PySide6.QtWidgets import QHBoxLayout, QLabel, QPushButton, QSizePolicy, QWidget
@@ -19,7 +19,13 @@ QPushButton:disabled {{ background: {page}; color: {kept_word}; border-color: {l
 
 
 class Bar(QWidget):
-    """The row; it shows a runner and says what the hand wants."""
+    """The row; it shows a runner and says what the hand wants.
+
+    Attributes
+    ----------
+    apart : QWidget
+        Record and demonstration, which stand in the row only where there is room.
+    """
 
     stop_wanted = Signal()
     run_wanted = Signal(bool)
@@ -42,6 +48,7 @@ class Bar(QWidget):
         self.stop = _button("Stop", "To manual, the effort to rest, the disturbance off: Escape, or Ctrl+. anywhere.")
         self.stop.setFont(theme.font("body", strong=True))
         self._arrange()
+        self.apart = self._arranged_apart()
         self._connect()
         theme.changed.connect(self._dress)
         self._dress()
@@ -58,17 +65,26 @@ class Bar(QWidget):
             button.setEnabled(ready)
         self.save.setEnabled(runner.recorder is not None and not saving)
 
+    def take_apart(self) -> None:
+        """Have record and demonstration in the row."""
+        self.row.insertWidget(self.row.count() - 2, self.apart, 1, Qt.AlignmentFlag.AlignVCenter)
+
     def _arrange(self) -> None:
-        flow = QWidget()
-        row = FlowLayout(flow, 8)
-        for part in (self.run, self.anew, self._speed_with_name(), self.record, self.save, self.play):
-            row.addWidget(part)
-        whole = QHBoxLayout(self)
-        whole.setContentsMargins(8, 4, 8, 4)
-        whole.setSpacing(8)
-        whole.addWidget(flow, 1)
-        whole.addWidget(self.stop, 0, Qt.AlignmentFlag.AlignTop)
+        self.row = QHBoxLayout(self)
+        self.row.setContentsMargins(8, 4, 8, 4)
+        self.row.setSpacing(8)
+        for part in (self.run, self.anew, self._speed_with_name()):
+            self.row.addWidget(part, 0, Qt.AlignmentFlag.AlignVCenter)
+        self.row.addStretch(1)
+        self.row.addWidget(self.stop)
         self.setSizePolicy(QSizePolicy.Policy.Preferred, QSizePolicy.Policy.Maximum)
+
+    def _arranged_apart(self) -> QWidget:
+        whole = QWidget()
+        row = FlowLayout(whole, 8)
+        for part in (self.record, self.save, self.play):
+            row.addWidget(part)
+        return whole
 
     def _speed_with_name(self) -> QWidget:
         whole, label = QWidget(), QLabel("Speed")

@@ -49,7 +49,8 @@ class StripPanel(Panel[Scene]):
         for curve in (self.third, self.second, self.main):
             self.view.addItem(curve, ignoreBounds=True)
         self.view.getPlotItem().getViewBox().setMouseEnabled(x=False, y=False)
-        self.widget.setMinimumSize(200, 104)
+        self.widget.setMinimumSize(200, 84)
+        self.view.setMinimumHeight(48)
         self._missed.hide()
 
     # What subclasses say ----------------------------------------------------------------------------------------

@@ -4,8 +4,8 @@ from collections.abc import Mapping
 from dataclasses import replace
 from typing import TYPE_CHECKING, Final
 
-from PySide6.QtCore import QObject, Qt, QTimer
-from PySide6.QtGui import QKeySequence, QShortcut
+from PySide6.QtCore import QObject, Qt, QTimer, Signal
+from PySide6.QtGui import QKeySequence, QResizeEvent, QShortcut
 from PySide6.QtWidgets import QHBoxLayout, QScrollArea, QVBoxLayout, QWidget
 
 from tuner.errors import LoopError
@@ -38,6 +38,9 @@ _WORDS_EVERY: Final = 200
 
 _COLUMN: Final = 256
 
+_WIDE: Final = 880
+"""Pixels at which everything has room in one row."""
+
 
 class RehearsalPage(QObject):
     """The page.
@@ -59,6 +62,7 @@ class RehearsalPage(QObject):
         super().__init__()
         self._document, self._theme, self._worker = document, theme, worker
         self._awake = self._saving = False
+        self._wide: bool | None = None
         self._asked = self._first = 0
         self._generation = document.generation
         self._base: Sheet | None = None
@@ -297,13 +301,24 @@ class RehearsalPage(QObject):
             shortcut = QShortcut(QKeySequence(keys), self.widget, context=where)
             shortcut.activated.connect(self.stop)
 
+    def _place_apart(self, width: int) -> None:
+        """Put record and demonstration into the row where it is wide enough, else below in the column."""
+        wide = width >= _WIDE
+        if wide != self._wide:
+            self._wide = wide
+            if wide:
+                self.bar.take_apart()
+            else:
+                self._shelf.addWidget(self.bar.apart)
+
     def _on_seen(self, seen: bool) -> None:
         if seen:
             self._draw()
             self._say()
 
     def _arranged(self) -> Seen:
-        widget, lines = Seen(), QWidget()
+        widget, lines = _Body(), QWidget()
+        widget.resized.connect(self._place_apart)
         words = QVBoxLayout(lines)
         words.setContentsMargins(8, 0, 8, 4)
         words.setSpacing(2)
@@ -341,6 +356,9 @@ class RehearsalPage(QObject):
         column.setSpacing(4)
         column.addWidget(self.hand)
         column.addWidget(self.drift)
+        self._shelf = QVBoxLayout()
+        self._shelf.setContentsMargins(8, 4, 8, 8)
+        column.addLayout(self._shelf)
         column.addStretch(1)
         area = QScrollArea()
         area.setWidgetResizable(True)
@@ -349,6 +367,17 @@ class RehearsalPage(QObject):
         area.setFixedWidth(_COLUMN)
         area.setWidget(inside)
         return area
+
+
+class _Body(Seen):
+    """The widget of the page, which tells its width."""
+
+    resized = Signal(int)
+
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        """Tell how wide it is now."""
+        super().resizeEvent(event)
+        self.resized.emit(event.size().width())
 
 
 def _span(sheet: Sheet) -> float:
