@@ -1,9 +1,12 @@
 """What happened in a rehearsal, word for word."""
 
+from dataclasses import replace
+
 import numpy as np
 
-from tests.rehearse.loops import oven
+from tests.rehearse.loops import LAW, oven
 from tuner.model.demonstration import SetController, SetReference
+from tuner.model.plant import ExpressionPlant
 from tuner.rehearse.account import Account, Peaks
 from tuner.rehearse.rehearsal import Rehearsal
 from tuner.rehearse.script import do
@@ -53,6 +56,16 @@ def test_every_tuning_has_its_own_spell() -> None:
     assert first.startswith("Unstable from 0 s to 50 s: ")
     assert second.startswith("Unstable from 50 s to 100 s: ")
     assert first.split("pole")[0] != second.split("pole")[0]
+
+
+def test_an_integrating_plant_by_hand_is_no_unstable_spell() -> None:
+    """That it does not come back by itself is no fault of the loop."""
+    tank = replace(oven(), plant=ExpressionPlant("0.05/s"), controller=replace(LAW, gain_1=1.0, gain_3=0.0))
+    rehearsal = Rehearsal(tank)
+    account = Account(rehearsal)
+    rehearsal.to_manual()
+    account.follow(rehearsal.advance(20))
+    assert account.spells == ()
 
 
 def test_peaks_keep_their_first_time() -> None:

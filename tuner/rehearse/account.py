@@ -33,6 +33,11 @@ class Spell:
     growth: Growth | None
 
 
+def drifts_by_hand(rehearsal: Rehearsal, growth: Growth | None) -> bool:
+    """Tell whether a loop only does not come back by itself: a plant that integrates, under the hand."""
+    return rehearsal.mode == "manual" and growth is not None and growth.predicted <= 1.0
+
+
 class Account:
     """Watches a rehearsal; to be told of every strip, and to look after whatever is done to the loop.
 
@@ -64,7 +69,8 @@ class Account:
 
     def look(self) -> None:
         """See whether the loop is unstable now, and how it grows until a limit holds it."""
-        stable, growth = self._rehearsal.stable, self._rehearsal.growth()
+        growth = self._rehearsal.growth()
+        stable = self._rehearsal.stable or drifts_by_hand(self._rehearsal, growth)
         if self._since is not None and (stable or self._is_another(growth)):
             self._spells.append(Spell(self._since, self._rehearsal.time, self._growth))
             self._since = None

@@ -16,7 +16,7 @@ from tuner.model.demonstration import (
 )
 from tuner.model.loop import Loop
 
-CAUTION = "A rehearsal is a simulation, no safety function: the plant itself may do otherwise."
+CAUTION = "A rehearsal is a simulation, no safety function."
 
 
 def told(deed: Deed, loop: Loop) -> str:  # noqa: PLR0911 - one line for each kind of deed

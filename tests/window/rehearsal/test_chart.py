@@ -62,9 +62,9 @@ def test_the_newest_values_are_said(chart: Chart) -> None:
     shown = scene(400)
     chart.show(shown)
     y, u = shown.signals.y[-1], shown.signals.u[-1]
-    assert chart.output.now_in_words(shown) == f"output {y:.2f} degC, reference 80.00 degC"
-    assert chart.effort.now_in_words(shown) == f"effort {u:.2f} %"
-    assert chart.output.now_in_words(replace(shown, noise=True)).endswith("degC (grey)")
+    assert chart.output.now_in_words(shown) == f"Web temperature {y:.2f} degC, reference 80.00"
+    assert chart.effort.now_in_words(shown) == f"Heater power {u:.2f} %"
+    assert chart.output.now_in_words(replace(shown, noise=True)).endswith(" (grey)")
 
 
 def test_the_pointer_reads_the_curve(chart: Chart) -> None:

@@ -3,6 +3,7 @@
 from dataclasses import replace
 
 from tests.rehearse.loops import LAW, oven
+from tuner.model.plant import ExpressionPlant
 from tuner.rehearse.pacing import Pacer
 from tuner.rehearse.rehearsal import Rehearsal
 from tuner.rehearse.script import Played
@@ -33,6 +34,15 @@ def test_what_is_said_of_stability() -> None:
     assert sentence.startswith("Unstable: the swing grows by a factor of ")
     rehearsal.to_manual()
     assert stability(rehearsal) == ("Stable by hand.", False)
+
+
+def test_an_integrating_plant_by_hand() -> None:
+    """It does not run away, but it does not come back either; in automatic it is as stable as any."""
+    tank = replace(oven(), plant=ExpressionPlant("0.05/s"), controller=replace(LAW, gain_1=1.0, gain_3=0.0))
+    rehearsal = Rehearsal(tank)
+    assert stability(rehearsal) == ("Stable in automatic.", False)
+    rehearsal.to_manual()
+    assert stability(rehearsal) == ("By hand this plant does not come back to rest by itself.", False)
 
 
 def test_what_was_played() -> None:

@@ -40,10 +40,13 @@ class Scene:
 class StripPanel(Panel[Scene]):
     """One plot of the chart; subclasses say what is in it."""
 
+    strong_second = False
+    """Whether the second curve lies over the main one and has to cover it."""
+
     def __init__(self, name: str, theme: Theme) -> None:
         self._steady = SteadyExtent()
         self.main = Curve(strong=True)
-        self.second = Curve(depth=-10.0)
+        self.second = Curve(strong=self.strong_second, depth=-10.0)
         self.third = Curve(smooth=False, depth=-20.0)
         super().__init__(name, theme)
         for curve in (self.third, self.second, self.main):
@@ -88,9 +91,7 @@ class StripPanel(Panel[Scene]):
             held = self._steady.shown is not None and y.span > _NARROW * self._steady.shown.span
             self.set_ranges(x, self._steady.offer(y, held=held))
         signal = self.signal(shown)
-        now = self.now_in_words(shown)
-        name = f"{signal.name or self.name}, {signal.unit or '1'}"
-        self.set_words(f"{name}: {now}" if now else name, "", bad=False)
+        self.set_words(self.now_in_words(shown) or f"{signal.name or self.name}, {signal.unit or '1'}", "", bad=False)
         self.redraw()
 
     def ask(self) -> tuple[Extent, Extent] | None:
@@ -211,13 +212,15 @@ class OutputStrip(StripPanel):
         """Say output and reference, and which curve is the measurement."""
         if not len(scene.signals.t):
             return ""
-        unit = scene.sheet.loop.controlled.unit
-        said = f"output {_said(scene.signals.y[-1])} {unit}, reference {_said(scene.signals.r[-1])} {unit}"
-        return minus(f"{said}, measurement {_said(scene.signals.ym[-1])} {unit} (grey)" if scene.noise else said)
+        signal = scene.sheet.loop.controlled
+        said = f"{_named(signal, 'output', scene.signals.y[-1])}, reference {_said(scene.signals.r[-1])}"
+        return minus(f"{said}, measurement {_said(scene.signals.ym[-1])} (grey)" if scene.noise else said)
 
 
 class EffortStrip(StripPanel):
     """The effort between its limits."""
+
+    strong_second = True
 
     def signal(self, scene: Scene) -> Signal:
         """Return the manipulated signal."""
@@ -271,12 +274,16 @@ class EffortStrip(StripPanel):
         """Say the effort, and that a limit holds it."""
         if not len(scene.signals.t):
             return ""
-        said = f"effort {_said(scene.signals.u[-1])} {scene.sheet.loop.manipulated.unit}"
+        said = _named(scene.sheet.loop.manipulated, "effort", scene.signals.u[-1])
         return minus(f"{said}, held by a limit" if scene.signals.limited[-1] else said)
 
 
 def _inside(name: str) -> Side:
     return "above" if name == "low" else "below"
+
+
+def _named(signal: Signal, name: str, value: float) -> str:
+    return f"{signal.name or name} {_said(value)} {signal.unit}".rstrip()
 
 
 def _said(value: float) -> str:

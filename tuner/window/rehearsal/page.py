@@ -238,6 +238,8 @@ class RehearsalPage(QObject):
     def _on_ticked(self) -> None:
         if self.widget.isVisible():
             self._draw()
+            if self.runner.rehearsal is not None:
+                self.hand.show_effort(self.runner.rehearsal)
 
     def _draw(self) -> None:
         rehearsal = self.runner.rehearsal

@@ -178,7 +178,7 @@ class Runner(QObject):
             return
         due, began, ran = self.pacer.due(self._clock()), time.perf_counter(), 0
         while ran < due and (ran == 0 or time.perf_counter() - began < SLICE):
-            count = self._go_on(min(due - ran, _CHUNK))
+            count = self.go_on(min(due - ran, _CHUNK))
             if count == 0:
                 self._ran_away()
                 break
@@ -186,9 +186,10 @@ class Runner(QObject):
         self.pacer.took(ran, time.perf_counter() - began, self._clock())
         self.ticked.emit()
 
-    def _go_on(self, samples: int) -> int:
-        """Do what the demonstration has to do by now, and run some samples; return how many ran."""
-        assert self.rehearsal is not None  # noqa: S101 - its callers looked
+    def go_on(self, samples: int) -> int:
+        """Do what the demonstration has to do by now, and run some samples at once; return how many ran."""
+        if self.rehearsal is None:
+            return 0
         if self._script is not None:
             self._play(self._script)
             samples = self._script.room(samples)

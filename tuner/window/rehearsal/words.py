@@ -30,6 +30,8 @@ def stability(rehearsal: "Rehearsal") -> tuple[str, bool]:
     if growth is None:
         word = "by hand" if rehearsal.mode == "manual" else "in automatic"
         return f"Stable {word}.", False
+    if rehearsal.mode == "manual" and growth.predicted <= 1.0:
+        return "By hand this plant does not come back to rest by itself.", False
     return minus(growth.sentence), True
 
 
