@@ -56,7 +56,7 @@ def runner(clock: Clock, qapp: QApplication) -> Iterator[Runner]:
     del qapp
     made = Runner(clock)
     yield made
-    made.forget()
+    made.close()
 
 
 @pytest.fixture

@@ -111,6 +111,7 @@ def test_the_big_stop(page: RehearsalPage, hours: Hours, keys: str) -> None:
     """By button and by both keys: to manual, the effort to rest, the disturbance off."""
     page.hand.latch.click()
     typed(page.hand.reference.line, "80")
+    page.runner.run()
     page.runner.tick()
     hours.pass_by(10.0)
     if keys == "button":
@@ -127,6 +128,50 @@ def test_the_big_stop(page: RehearsalPage, hours: Hours, keys: str) -> None:
     assert not page.hand.latch.isChecked()
     hours.pass_by(20.0)
     assert loop(page).effort == pytest.approx(40.0)
+
+
+def test_escape_is_left_to_others_at_rest(page: RehearsalPage) -> None:
+    """Where nothing runs, Escape brings back what stood in a line."""
+    page.hand.reference.line.setFocus()
+    page.hand.reference.line.selectAll()
+    QTest.keyClicks(page.hand.reference.line, "99")
+    QTest.keyClick(page.hand.reference.line, Qt.Key.Key_Escape)
+    assert page.hand.reference.line.text() == "72"
+    assert loop(page).mode == "automatic"
+
+
+def test_a_push_leaves_a_latched_disturbance_on(page: RehearsalPage) -> None:
+    """What stays on stays on after the button was held beside it."""
+    page.hand.latch.click()
+    QTest.mousePress(page.hand.push, Qt.MouseButton.LeftButton)
+    QTest.mouseRelease(page.hand.push, Qt.MouseButton.LeftButton)
+    assert page.hand.latch.isChecked()
+    assert loop(page).disturbance == 10.0
+
+
+def test_what_was_done_is_marked_on_the_chart(page: RehearsalPage, document: Document, hours: Hours) -> None:
+    """Once for everything within a hundredth of its width, of the hand, of the rulers and of demonstrations."""
+    page.runner.set_speed(10.0)
+    page.runner.tick()
+    typed(page.hand.reference.line, "75")
+    hours.pass_by(2.0)
+    for kp in (2.1, 2.2, 2.3):
+        document.change_value("kp", kp)
+    hours.pass_by(2.0)
+    shown = page.chart.output.shown
+    assert shown is not None
+    assert shown.events == pytest.approx((0.0, 20.0), abs=0.5)
+    strokes = [stroke.x0 for stroke in page.chart.output.marks.strokes if stroke.dashed]
+    assert strokes == list(shown.events)
+
+
+def test_a_demonstration_of_another_loop_is_left_alone_by_the_rulers(page: RehearsalPage, document: Document) -> None:
+    """The page says so."""
+    other = replace(made_up.sheet(), sensor=Sensor(lag=2.0))
+    page.play(replace(staged(Action(0.0, None, "Begin.")), sheet=other))
+    assert page.told.text() == "Show, on a.toml. The rulers act on the open sheet, not on this one."
+    document.change_value("kp", 3.0)
+    assert loop(page).sheet.controller.gain_1 == 2.0
 
 
 def test_the_rulers_change_the_gains_while_it_runs(page: RehearsalPage, document: Document, hours: Hours) -> None:
@@ -242,15 +287,6 @@ def test_a_loop_that_cannot_be_computed_says_why(qtbot: QtBot, document: Documen
     assert not page.hand.isEnabled()
     page.close()
     page.widget.hide()
-
-
-def test_record_and_demonstration_move_where_there_is_room(page: RehearsalPage) -> None:
-    """In the row of a wide page, in the column of a narrow one, in sight either way."""
-    for width, parent in ((1000, page.bar), (640, page.hand.parentWidget())):
-        page.widget.resize(width, 700)
-        QApplication.processEvents()
-        assert page.bar.apart.parentWidget() is parent
-        assert page.bar.play.isVisible()
 
 
 def test_every_control_has_a_name(page: RehearsalPage) -> None:

@@ -8,6 +8,7 @@ from tests.window.rehearsal.conftest import Clock, Hours
 from tuner.files.demonstrations import Staged
 from tuner.model.demonstration import Action, Demonstration, SetPlant, SetReference
 from tuner.places import sample_plants
+from tuner.rehearse import recording
 from tuner.rehearse.rehearsal import RAN_AWAY, Rehearsal
 from tuner.rehearse.script import Played
 from tuner.rehearse.strip import Strip
@@ -98,6 +99,37 @@ def test_a_record_keeps_samples_and_events(runner: Runner, hours: Hours) -> None
     assert [event.words for event in piece.events] == ["reference 75 degC"]
     runner.record(True)
     assert runner.recorder.samples == 0
+
+
+def test_a_record_outlives_its_loop(runner: Runner, hours: Hours) -> None:
+    """One that has samples ends with its loop and can still be saved; one without goes on with the next."""
+    runner.begin(Rehearsal(made_up.sheet()))
+    runner.record(True)
+    runner.begin(Rehearsal(made_up.sheet()))
+    assert runner.recording
+    runner.tick()
+    hours.pass_by(2.0)
+    runner.begin(Rehearsal(made_up.sheet()))
+    assert not runner.recording
+    runner.forget()
+    assert runner.recorder is not None
+    assert runner.recorder.samples == 4
+    assert runner.recorded == made_up.sheet().loop
+
+
+def test_a_full_record_ends(runner: Runner, hours: Hours, monkeypatch: pytest.MonkeyPatch) -> None:
+    """The page is told, and the loop goes on."""
+    monkeypatch.setattr(recording, "MOST_SAMPLES", 5)
+    said: list[str] = []
+    runner.refused.connect(said.append)
+    runner.begin(Rehearsal(made_up.sheet()))
+    runner.record(True)
+    runner.tick()
+    hours.pass_by(5.0)
+    assert said == ["The record has ended: it holds 5,000,000 samples, as many as it can."]
+    assert not runner.recording
+    assert runner.rehearsal is not None
+    assert runner.rehearsal.time == pytest.approx(5.0)
 
 
 def test_a_refusal_is_told(runner: Runner) -> None:

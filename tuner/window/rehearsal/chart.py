@@ -1,6 +1,6 @@
 """The strip chart: reference, output and measurement over the effort, the newest at the right."""
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from math import inf, isfinite
 
 import numpy as np
@@ -28,13 +28,14 @@ _QUIET = 0.02
 
 @dataclass(frozen=True, slots=True, eq=False)
 class Scene:
-    """What the chart shows: curves up to `now`, as far back as `span`, of the loop of a sheet."""
+    """What the chart shows: curves up to `now`, as far back as `span`, of the loop of a sheet, and times of events."""
 
     sheet: Sheet
     now: float
     span: float
     signals: Signals
     noise: bool = False
+    events: tuple[float, ...] = ()
 
 
 class StripPanel(Panel[Scene]):
@@ -115,7 +116,8 @@ class StripPanel(Panel[Scene]):
         self.divide(self.shown.sheet.loop.time_unit)
         marks = self.marks_of(self.shown)
         self.ground.areas = marks.areas
-        self.marks.show_marks(marks)
+        events = tuple(Stroke(at, -inf, at, inf, "kept", dashed=True) for at in self.shown.events)
+        self.marks.show_marks(replace(marks, strokes=(*marks.strokes, *events)))
 
     def read(self, x: float, y: float) -> tuple[tuple[float, float], str] | None:
         """Return the curve at the pointer's time."""

@@ -46,9 +46,8 @@ class RehearsalFiles(QObject):
         from tuner.rehearse.saving import save
 
         runner = self._page.runner
-        if runner.recorder is None or runner.sheet is None:
+        if runner.recorder is None or (loop := runner.recorded) is None:
             return
-        loop = runner.sheet.loop
         path = self._asking.record_to_save(Path.cwd() / suggested_name(f"{loop.title} record", ".csv"))
         if path is None:
             return

@@ -73,7 +73,8 @@ class Hand(QWidget):
         self.reference.show_value(rehearsal.reference, loop.controlled.unit)
         self.mode.show_choice(_MANUAL if manual else _AUTOMATIC)
         self.noise.setChecked(rehearsal.noise)
-        self.latch.setChecked(rehearsal.disturbance != 0.0 and not self.push.isDown())
+        if not self.push.isDown():
+            self.latch.setChecked(rehearsal.disturbance != 0.0)
         self.effort.setEnabled(manual)
         self.slider.setEnabled(manual)
 

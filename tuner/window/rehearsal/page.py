@@ -1,24 +1,24 @@
 """The page of the rehearsal: the loop running in time, to be disturbed and retuned by hand while it runs."""
 
+from collections import deque
 from collections.abc import Mapping
 from dataclasses import replace
 from typing import TYPE_CHECKING, Final
 
-from PySide6.QtCore import QObject, Qt, QTimer, Signal
-from PySide6.QtGui import QKeySequence, QResizeEvent, QShortcut
-from PySide6.QtWidgets import QHBoxLayout, QScrollArea, QVBoxLayout, QWidget
+from PySide6.QtCore import QObject, Qt, QTimer
+from PySide6.QtGui import QKeySequence, QShortcut
 
 from tuner.errors import LoopError
 from tuner.model.demonstration import Stop
 from tuner.model.sheet import Sheet
 from tuner.rehearse.script import Played
 from tuner.rehearse.strip import Strip
-from tuner.rehearse.wording import CAUTION
 from tuner.session.document import Document
 from tuner.window.beside import Beside
 from tuner.window.elided import ElidedLabel, RoleLabel
 from tuner.window.pictures import Pictured
 from tuner.window.rehearsal.bar import Bar
+from tuner.window.rehearsal.body import Body
 from tuner.window.rehearsal.chart import Chart, Scene
 from tuner.window.rehearsal.drift import Drift
 from tuner.window.rehearsal.hand import Hand
@@ -26,7 +26,6 @@ from tuner.window.rehearsal.preparing import Ready, Wanted
 from tuner.window.rehearsal.ring import Ring
 from tuner.window.rehearsal.runner import Runner
 from tuner.window.rehearsal.words import PREPARING, played_words, progress, stability
-from tuner.window.seen import Seen
 from tuner.window.shown import Failure, Shown
 from tuner.window.theme import Theme
 
@@ -36,10 +35,11 @@ if TYPE_CHECKING:
 _WORDS_EVERY: Final = 200
 """Milliseconds between two looks at what is said in words: numbers that change faster cannot be read."""
 
-_COLUMN: Final = 256
+_ONE_GO: Final = 0.01
+"""Share of the width of the chart within which events are one: a ruler is moved in many small steps."""
 
-_WIDE: Final = 880
-"""Pixels at which everything has room in one row."""
+_EVENTS: Final = 40
+"""Events that are marked on the chart."""
 
 
 class RehearsalPage(QObject):
@@ -62,16 +62,16 @@ class RehearsalPage(QObject):
         super().__init__()
         self._document, self._theme, self._worker = document, theme, worker
         self._awake = self._saving = False
-        self._wide: bool | None = None
         self._asked = self._first = 0
         self._generation = document.generation
         self._base: Sheet | None = None
         self._shown: Shown | None = None
         self._ring: Ring | None = None
+        self._events: deque[float] = deque(maxlen=_EVENTS)
         self.runner = runner or Runner()
         self.bar, self.hand, self.drift, self.chart = Bar(theme), Hand(theme), Drift(theme), Chart(theme)
         self.stability, self.told, self.state = RoleLabel(theme), ElidedLabel(), ElidedLabel()
-        self.widget = self._arranged()
+        self.widget = Body(theme, self.bar, self.chart.widget, (self.hand, self.drift), self._lines())
         self._words = QTimer(self, interval=_WORDS_EVERY)
         self._words.timeout.connect(self._say)
         self._connect()
@@ -114,7 +114,7 @@ class RehearsalPage(QObject):
         """Stand still, and let everything go."""
         self._stop_listening()
         self._words.stop()
-        self.runner.forget()
+        self.runner.close()
         self._worker.close()
 
     # What the hand does -----------------------------------------------------------------------------------------
@@ -126,6 +126,7 @@ class RehearsalPage(QObject):
     def stop(self) -> None:
         """Stop: to manual, the effort to rest, the disturbance off."""
         self.hand.latch.setChecked(False)
+        self._mark()
         self.runner.act(Stop())
 
     def begin_anew(self) -> None:
@@ -177,7 +178,8 @@ class RehearsalPage(QObject):
         self.hand.show_sheet(wanted.sheet)
         self.drift.show_sheet(wanted.sheet)
         self._offer_worst()
-        self.told.setText(_opening(wanted))
+        self._events.clear()
+        self.told.setText(_opening(wanted, self._document.sheet))
         self.runner.begin(rehearsal, wanted.staged)
         self._follow_document()
         self._draw()
@@ -217,6 +219,7 @@ class RehearsalPage(QObject):
     def _retune(self, sheet: Sheet) -> None:
         if self._base is not None and sheet.controller == self._base.controller:
             return
+        self._mark()
         try:
             self.runner.retune(sheet.controller)
         except LoopError as refusal:
@@ -228,8 +231,17 @@ class RehearsalPage(QObject):
             self._ring.add(strip)
 
     def _on_happened(self, played: Played) -> None:
+        self._mark() if played.words else None
         if self.runner.sheet is not None:
             self.told.setText(played_words(played, self.runner.sheet.loop.time_unit))
+
+    def _mark(self) -> None:
+        """Mark on the chart that something was done now; what is done in one go is marked once."""
+        rehearsal, base = self.runner.rehearsal, self._base
+        if rehearsal is None or base is None:
+            return
+        if not self._events or rehearsal.time > self._events[-1] + _ONE_GO * _span(base):
+            self._events.append(rehearsal.time)
 
     def _on_refused(self, sentence: str) -> None:
         if sentence:
@@ -246,7 +258,7 @@ class RehearsalPage(QObject):
         if rehearsal is None or self._ring is None or self._base is None:
             return
         span, signals = _span(self._base), self._ring.signals()
-        self.chart.show(Scene(rehearsal.sheet, rehearsal.time, span, signals, rehearsal.noise))
+        self.chart.show(Scene(rehearsal.sheet, rehearsal.time, span, signals, rehearsal.noise, tuple(self._events)))
 
     def _refresh(self) -> None:
         """Show what holds now."""
@@ -256,6 +268,7 @@ class RehearsalPage(QObject):
         self.drift.setEnabled(rehearsal is not None)
         if rehearsal is not None and self.drift.sliders:
             self.drift.show_values(rehearsal.values)
+        self._escape.setEnabled(self.runner.running)
         (self._words.start if self.runner.running else self._words.stop)()
         self._say()
 
@@ -287,99 +300,33 @@ class RehearsalPage(QObject):
         bar.record_wanted.connect(runner.record)
         bar.stop_wanted.connect(self.stop)
         bar.speed.faulted.connect(self._on_refused)
-        self.hand.wanted.connect(runner.act)
-        self.drift.wanted.connect(runner.act)
+        for part in (self.hand, self.drift):
+            part.wanted.connect(lambda _deed: self._mark())
+            part.wanted.connect(runner.act)
         self.widget.seen.connect(self._on_seen)
         self._theme.changed.connect(self.stability.dress)
         self.stability.dress()
         self._add_keys()
 
-    def _add_keys(self) -> None:
-        """Stop by Escape on this page, and by Ctrl+. wherever the window is."""
-        for keys, where in (
-            ("Escape", Qt.ShortcutContext.WidgetWithChildrenShortcut),
-            ("Ctrl+.", Qt.ShortcutContext.WindowShortcut),
-        ):
-            shortcut = QShortcut(QKeySequence(keys), self.widget, context=where)
-            shortcut.activated.connect(self.stop)
+    def _lines(self) -> tuple[ElidedLabel, ElidedLabel, ElidedLabel]:
+        """Return the lines of words, named."""
+        self.told.setAccessibleName("what happened")
+        self.stability.setAccessibleName("stability")
+        self.state.setAccessibleName("state of the rehearsal")
+        self.state.setProperty("voice", "quiet")
+        return self.told, self.stability, self.state
 
-    def _place_apart(self, width: int) -> None:
-        """Put record and demonstration into the row where it is wide enough, else below in the column."""
-        wide = width >= _WIDE
-        if wide != self._wide:
-            self._wide = wide
-            if wide:
-                self.bar.take_apart()
-            else:
-                self._shelf.addWidget(self.bar.apart)
+    def _add_keys(self) -> None:
+        """Stop by Escape on this page while it runs, and by Ctrl+. wherever the window is."""
+        here, anywhere = Qt.ShortcutContext.WidgetWithChildrenShortcut, Qt.ShortcutContext.WindowShortcut
+        self._escape = QShortcut(QKeySequence("Escape"), self.widget, context=here)
+        self._escape.activated.connect(self.stop)
+        QShortcut(QKeySequence("Ctrl+."), self.widget, context=anywhere).activated.connect(self.stop)
 
     def _on_seen(self, seen: bool) -> None:
         if seen:
             self._draw()
             self._say()
-
-    def _arranged(self) -> Seen:
-        widget, lines = _Body(), QWidget()
-        widget.resized.connect(self._place_apart)
-        words = QVBoxLayout(lines)
-        words.setContentsMargins(8, 0, 8, 4)
-        words.setSpacing(2)
-        caution = ElidedLabel(CAUTION)
-        caution.setProperty("voice", "quiet")
-        caution.setFont(self._theme.font("small"))
-        self.state.setProperty("voice", "quiet")
-        self.stability.setAccessibleName("stability")
-        self.told.setAccessibleName("what happened")
-        self.state.setAccessibleName("state of the rehearsal")
-        caution.setAlignment(Qt.AlignmentFlag.AlignRight | Qt.AlignmentFlag.AlignVCenter)
-        last = QHBoxLayout()
-        last.setSpacing(12)
-        last.addWidget(self.state, 1)
-        last.addWidget(caution, 1)
-        for label in (self.told, self.stability):
-            words.addWidget(label)
-        words.addLayout(last)
-        row = QHBoxLayout()
-        row.setSpacing(0)
-        row.addWidget(self.chart.widget, 1)
-        row.addWidget(self._column())
-        column = QVBoxLayout(widget)
-        column.setContentsMargins(0, 0, 0, 0)
-        column.setSpacing(0)
-        column.addWidget(self.bar)
-        column.addLayout(row, 1)
-        column.addWidget(lines)
-        return widget
-
-    def _column(self) -> QScrollArea:
-        inside = QWidget()
-        column = QVBoxLayout(inside)
-        column.setContentsMargins(0, 0, 0, 0)
-        column.setSpacing(4)
-        column.addWidget(self.hand)
-        column.addWidget(self.drift)
-        self._shelf = QVBoxLayout()
-        self._shelf.setContentsMargins(8, 4, 8, 8)
-        column.addLayout(self._shelf)
-        column.addStretch(1)
-        area = QScrollArea()
-        area.setWidgetResizable(True)
-        area.setHorizontalScrollBarPolicy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)
-        area.setFocusPolicy(Qt.FocusPolicy.NoFocus)
-        area.setFixedWidth(_COLUMN)
-        area.setWidget(inside)
-        return area
-
-
-class _Body(Seen):
-    """The widget of the page, which tells its width."""
-
-    resized = Signal(int)
-
-    def resizeEvent(self, event: QResizeEvent) -> None:
-        """Tell how wide it is now."""
-        super().resizeEvent(event)
-        self.resized.emit(event.size().width())
 
 
 def _span(sheet: Sheet) -> float:
@@ -392,7 +339,8 @@ def _same_loop(one: Sheet, other: Sheet) -> bool:
     return (one.loop, one.plant, one.actuator, one.sensor) == (other.loop, other.plant, other.actuator, other.sensor)
 
 
-def _opening(wanted: Wanted) -> str:
+def _opening(wanted: Wanted, opened: Sheet) -> str:
     if wanted.staged is None:
         return ""
-    return f"{wanted.staged.demonstration.title}, on {wanted.staged.sheet_path.name}."
+    apart = "" if _same_loop(wanted.sheet, opened) else " The rulers act on the open sheet, not on this one."
+    return f"{wanted.staged.demonstration.title}, on {wanted.staged.sheet_path.name}.{apart}"

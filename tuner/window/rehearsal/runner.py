@@ -9,9 +9,10 @@ from PySide6.QtCore import QObject, QTimer, Signal
 from tuner.errors import LoopError
 from tuner.model.controller import Controller
 from tuner.model.demonstration import Deed
+from tuner.model.loop import Loop
 from tuner.model.sheet import Sheet
 from tuner.rehearse.pacing import Pacer
-from tuner.rehearse.recording import Recorder
+from tuner.rehearse.recording import MOST_SAMPLES, Recorder
 from tuner.rehearse.script import Played, Script, do
 from tuner.rehearse.wording import told
 
@@ -30,6 +31,9 @@ _CHUNK: Final = 200
 
 SECONDS: Final = {"s": 1.0, "min": 60.0, "h": 3600.0}
 """Seconds in each unit of time."""
+
+
+FULL: Final = f"The record has ended: it holds {MOST_SAMPLES:,} samples, as many as it can."
 
 
 class Runner(QObject):
@@ -58,6 +62,7 @@ class Runner(QObject):
         self.rehearsal: Rehearsal | None = None
         self.staged: Staged | None = None
         self.recorder: Recorder | None = None
+        self.recorded: Loop | None = None
         self.recording = False
         self.pacer = Pacer(1.0)
         self._script: Script | None = None
@@ -90,15 +95,20 @@ class Runner(QObject):
         self.rehearsal, self.staged = rehearsal, staged
         self._script = None if staged is None else Script(staged.demonstration, rehearsal)
         self.pacer = Pacer(rehearsal.sample_time * SECONDS[rehearsal.sheet.loop.time_unit], speed)
-        self._let_record_go()
+        self._begin_record_anew(rehearsal)
         self.changed.emit()
 
     def forget(self) -> None:
-        """Let the loop go."""
+        """Let the loop go; what was recorded stays until the next record."""
         self._timer.stop()
         self.rehearsal = self.staged = self._script = None
-        self._let_record_go()
+        self.recording = False
         self.changed.emit()
+
+    def close(self) -> None:
+        """Let everything go."""
+        self.forget()
+        self._let_record_go()
 
     def run(self) -> None:
         """Let time go by."""
@@ -151,9 +161,9 @@ class Runner(QObject):
 
     def record(self, on: bool) -> None:
         """Begin a new record, or end the one that is made, which stays until the next one."""
-        if on and not self.recording:
+        if on and not self.recording and self.rehearsal is not None:
             self._let_record_go()
-            self.recorder = Recorder()
+            self.recorder, self.recorded = Recorder(), self.rehearsal.sheet.loop
         self.recording = on and self.recorder is not None
         self.changed.emit()
 
@@ -165,10 +175,17 @@ class Runner(QObject):
         if played.words:
             self._note(played.words)
 
+    def _begin_record_anew(self, rehearsal: "Rehearsal") -> None:
+        """Let a record that has just begun go on with another loop; one that has samples ends with its own."""
+        if self.recording and self.recorder is not None and self.recorder.samples == 0:
+            self.recorded = rehearsal.sheet.loop
+        else:
+            self.recording = False
+
     def _let_record_go(self) -> None:
         if self.recorder is not None:
             self.recorder.close()
-        self.recorder, self.recording = None, False
+        self.recorder, self.recorded, self.recording = None, None, False
 
     # Running ----------------------------------------------------------------------------------------------------
 
@@ -198,6 +215,7 @@ class Runner(QObject):
             self.recorder.add(strip)
             if self.recorder.full:
                 self.record(False)
+                self.refused.emit(FULL)
         self.advanced.emit(strip)
         return len(strip)
 
