@@ -1,7 +1,7 @@
 """Opens the window; the one entry of this room."""
 
 import sys
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 from pathlib import Path
 from typing import TYPE_CHECKING, Protocol
@@ -30,15 +30,11 @@ from tuner.window.gain_map.page import GainMapPage
 from tuner.window.keeping import Keeping
 from tuner.window.main_window import MainWindow
 from tuner.window.menus import Menus
-from tuner.window.rehearsal import build_rehearsal
-from tuner.window.rehearsal.files import RehearsalFiles
-from tuner.window.rehearsal.page import RehearsalPage
+from tuner.window.pages import Page
 from tuner.window.rulers import Footing, build_rulers, keep_painted
 from tuner.window.sheet_files import SheetFiles
 from tuner.window.shown import Sketched
-from tuner.window.structures import build_structures
 from tuner.window.theme import CHOICES, Theme
-from tuner.window.tunings import build_tunings
 from tuner.window.worker import Assessor
 
 if TYPE_CHECKING:  # these roads are loaded when they are first taken
@@ -118,18 +114,37 @@ def built(application: QApplication, document: Document, asking: Asking | None =
     apart = Apart(), Apart()
     footing = keep_painted(document, rulers, apart[0].paint_rulers, _reason_at)
     gain_map = build_gain_map(document, theme, apart[1].paint_map, _reason_at)
-    compared = build_structures(document, theme, _structures, _draw), build_tunings(document, theme, _tunings)
-    rehearsal = build_rehearsal(document, theme)
-    more = (gain_map, *compared, rehearsal)
-    window = MainWindow(document, theme, assessor, build_editors(document, theme), rulers, more)
+    editors = build_editors(document, theme)
+    window = MainWindow(document, theme, assessor, editors, rulers, (gain_map,), _later(document, theme))
     window.resize(*_FIRST_SIZE)
     window.restore_layout(remembered)
     earlier = EarlierTunings(document, window.ribbon.show_earlier, Beside(answering_by(_judged)))
     assessor.answered.connect(earlier.start, Qt.ConnectionType.SingleShotConnection)
-    for worker in (*apart, assessor, footing.painted, footing.reader, *more, earlier):
+    for worker in (*apart, assessor, footing.painted, footing.reader, gain_map, earlier):
         application.aboutToQuit.connect(worker.close)
     assessor.answered.connect(apart[0].start, Qt.ConnectionType.SingleShotConnection)
-    return window, wire(window, asking or Asking(window), footing, gain_map, apart, (*compared, rehearsal, earlier))
+    return window, wire(window, asking or Asking(window), footing, gain_map, apart, (earlier,))
+
+
+def _later(document: Document, theme: Theme) -> Mapping[str, Callable[[], Page]]:
+    """Return the pages that are made when they are first chosen."""
+
+    def structures() -> Page:
+        from tuner.window.structures import build_structures
+
+        return build_structures(document, theme, _structures, _draw)
+
+    def tunings() -> Page:
+        from tuner.window.tunings import build_tunings
+
+        return build_tunings(document, theme, _tunings)
+
+    def rehearsal() -> Page:
+        from tuner.window.rehearsal import build_rehearsal
+
+        return build_rehearsal(document, theme)
+
+    return {"Structures": structures, "Tunings": tunings, "Rehearsal": rehearsal}
 
 
 def wire(  # noqa: PLR0913, PLR0917 - what a window is made of
@@ -146,13 +161,25 @@ def wire(  # noqa: PLR0913, PLR0917 - what a window is made of
     menus = Menus(window, files, Commands(window, asking))
     window.dropped.connect(files.open_path)
     wiring = Wiring(menus, files, keeping, footing, gain_map, apart, others)
-    for page in others:
-        if isinstance(page, RehearsalPage):
-            RehearsalFiles(page, asking)
+    for page in window.pages.pages.values():
+        _attend(page, asking)
+    window.pages.made.connect(lambda page: _attend(page, asking))
     window.closing.connect(lambda event: _close(window, wiring, event))
     if footing is not None:
         footing.painted.wake_after(window.assessor)
     return wiring
+
+
+def _attend(page: Page, asking: Asking) -> None:
+    """Give a page what it needs of the world outside the window, and end its work with the program."""
+    if isinstance(application := QApplication.instance(), QApplication) and hasattr(page, "close"):
+        application.aboutToQuit.connect(page.close)
+    if page.name == "Rehearsal":
+        from tuner.window.rehearsal.files import RehearsalFiles
+        from tuner.window.rehearsal.page import RehearsalPage
+
+        if isinstance(page, RehearsalPage):
+            RehearsalFiles(page, asking)
 
 
 def watch_for_faults(window: MainWindow) -> None:
@@ -175,6 +202,9 @@ def _close(window: MainWindow, wiring: Wiring, event: QCloseEvent) -> None:
         wiring.footing.close()
     if wiring.gain_map is not None:
         wiring.gain_map.close()
+    for page in window.pages.pages.values():
+        if hasattr(page, "close"):
+            page.close()
     for other in wiring.others:
         other.close()
 

@@ -1,7 +1,8 @@
 """The window: puts the views in their places, sends every change to the worker, and its answers to the views."""
 
-from collections.abc import Sequence
+from collections.abc import Callable, Mapping, Sequence
 from pathlib import Path
+from types import MappingProxyType
 
 from PySide6.QtCore import QByteArray, Qt, QTimer, Signal
 from PySide6.QtGui import QCloseEvent, QDragEnterEvent, QDropEvent, QKeyEvent, QResizeEvent
@@ -54,6 +55,8 @@ class MainWindow(QMainWindow):
         The views that the hand works on.
     more_pages : sequence of Page
         Pages of the plot area that the hand works on too.
+    later_pages : mapping of str to callable
+        Further ones, made when they are first chosen.
     """
 
     dropped = Signal(object)
@@ -69,6 +72,7 @@ class MainWindow(QMainWindow):
         editors: EditorPanel,
         rulers: RulerPanel,
         more_pages: Sequence[Page] = (),
+        later_pages: Mapping[str, Callable[[], Page]] = MappingProxyType({}),
     ) -> None:
         super().__init__()
         self.document, self.theme, self.assessor = document, theme, assessor
@@ -76,7 +80,7 @@ class MainWindow(QMainWindow):
         self.ribbon, self.plots, self.notes = Ribbon(theme), PlotGrid(theme), ElidedLabel()
         self.diagram = LoopDiagram(document, theme)
         self.frequency = FrequencyPage(theme)
-        self.pages = Pages(theme, (self.plots, self.frequency, *more_pages))
+        self.pages = Pages(theme, (self.plots, self.frequency, *more_pages), later_pages)
         self.shown: Shown | None = None
         self.looked_at = ""
         self.family_view: FamilyView = "both"

@@ -12,11 +12,11 @@ from tuner.model.measures import BY_NAME
 from tuner.session.document import Document
 from tuner.window.commands import Commands
 from tuner.window.main_window import MainWindow
+from tuner.window.pages import Page
 from tuner.window.pictures import Pictured
 from tuner.window.plots.panel import Panel
 from tuner.window.sheet_files import SheetFiles, recent, samples
 from tuner.window.shown import FamilyView
-from tuner.window.structures.page import StructuresPage
 from tuner.window.theme import CHOICES
 
 _FAMILY_WORDS: dict[FamilyView, str] = {
@@ -41,12 +41,15 @@ class Menus:
         self._fill_view()
         self._fill_help()
         self._document.listen(self.refresh)
-        window.plots.menu_wanted.connect(self.plot_menu)
-        window.frequency.menu_wanted.connect(self.plot_menu)
         for page in window.pages.pages.values():
-            if isinstance(page, StructuresPage):
-                page.menu_wanted.connect(self.plot_menu)
+            self.serve(page)
+        window.pages.made.connect(self.serve)
         self.refresh()
+
+    def serve(self, page: Page) -> None:
+        """Open the menus of the plots of a page, if it has any."""
+        if (wanted := getattr(page, "menu_wanted", None)) is not None:
+            wanted.connect(self.plot_menu)
 
     def refresh(self) -> None:
         """Say what can be undone, and grey what cannot be done now."""
@@ -125,7 +128,7 @@ class Menus:
     def _fill_pages(self, menu: QMenu) -> None:
         """Offer the pages, and keep the mark at the one in sight, however it was chosen."""
         group, pages = QActionGroup(self._window), self._window.pages
-        for index, name in enumerate(pages.pages):
+        for index, name in enumerate(pages.names):
             choose = partial(pages.choose, name)
             action = self._add(menu, f"page {name}", f"{name} page", choose, f"Ctrl+Alt+{index + 1}")
             _radio(action, group, checked=name == pages.page.name)

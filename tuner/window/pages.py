@@ -1,6 +1,7 @@
 """The pages of the plot area: their words in a row, one of them in sight; only that one draws."""
 
-from collections.abc import Mapping, Sequence
+from collections.abc import Callable, Mapping, Sequence
+from types import MappingProxyType
 from typing import Protocol
 
 from PySide6.QtCore import QObject, Qt, Signal
@@ -50,19 +51,33 @@ class Page(Protocol):
 
 
 class Pages(QObject):
-    """All pages; `show` hands an answer to the one in sight, the others get the newest when they come in sight."""
+    """All pages; `show` hands an answer to the one in sight, the others get the newest when they come in sight.
+
+    Parameters
+    ----------
+    pages : sequence of Page
+        Those that are there from the start, the first one in sight.
+    later : mapping of str to callable
+        Those that are made when they are first chosen, by their names: a window is painted sooner without them.
+    """
 
     chosen = Signal(str)
     """The name of the page that came in sight."""
+    made = Signal(object)
+    """A page that is there from now on."""
     nominal_wanted = Signal()
     """The nominal plant is to be looked at again."""
 
-    def __init__(self, theme: Theme, pages: Sequence[Page]) -> None:
+    def __init__(
+        self, theme: Theme, pages: Sequence[Page], later: Mapping[str, Callable[[], Page]] = MappingProxyType({})
+    ) -> None:
         super().__init__()
         self.pages = {page.name: page for page in pages}
+        self._later = dict(later)
+        self.names = (*self.pages, *self._later)
         self._shown: Shown | None = None
         self._stale = False
-        self.words = Segments(list(self.pages), theme, self.choose)
+        self.words = Segments(self.names, theme, self.choose)
         self.words.setAccessibleName("page")
         self.stack = QStackedWidget()
         for page in pages:
@@ -87,14 +102,23 @@ class Pages(QObject):
 
     def begin_with(self, name: str) -> None:
         """Have a page in sight from the start; the first one where there is none of that name."""
-        if name in self.pages:
+        if name in self.names:
+            self._have(name)
             self._name = name
             self.words.show_choice(name)
             self.stack.setCurrentWidget(self.page.widget)
 
+    def _have(self, name: str) -> None:
+        """Make a page that is chosen for the first time."""
+        if name in self._later:
+            page = self._later.pop(name)()
+            self.pages[name] = page
+            self.stack.addWidget(page.widget)
+            self.made.emit(page)
+
     def choose(self, name: str) -> None:
         """Bring a page in sight."""
-        if name == self._name or name not in self.pages:
+        if name == self._name or name not in self.names:
             return
         self.begin_with(name)
         if self._shown is not None:

@@ -1,5 +1,7 @@
 """The column of editors: a list of the blocks, and the page of the chosen one."""
 
+from collections.abc import Callable, Iterator, Mapping
+
 from PySide6.QtCore import Qt, Signal
 from PySide6.QtGui import QResizeEvent, QShowEvent
 from PySide6.QtWidgets import QFrame, QListView, QListWidget, QScrollArea, QStackedWidget, QVBoxLayout, QWidget
@@ -7,7 +9,7 @@ from PySide6.QtWidgets import QFrame, QListView, QListWidget, QScrollArea, QStac
 from tuner.judge.assessment import Assessment
 from tuner.session.document import Document
 from tuner.window.editors.block_pages import ControllerPage, TablePage, loop_page
-from tuner.window.editors.feedforward_page import FeedforwardPage
+from tuner.window.editors.feedforward_page import DisturbancePath, FeedforwardPage
 from tuner.window.editors.field import Page
 from tuner.window.editors.filters_page import FiltersPage
 from tuner.window.editors.limits_page import LimitsPage
@@ -16,6 +18,58 @@ from tuner.window.tab_order import order_tabs
 from tuner.window.theme import Theme
 
 WIDTH = 320
+
+
+class EditorPages(Mapping[str, Page]):
+    """The pages by the names of their blocks, each made when it is first asked for.
+
+    Parameters
+    ----------
+    makers : mapping of str to callable
+        What makes each, in the order of the list.
+    stack : QStackedWidget
+        Where they are put, each in an area that scrolls.
+    """
+
+    def __init__(self, makers: Mapping[str, Callable[[], Page]], stack: QStackedWidget) -> None:
+        self._makers, self._stack = makers, stack
+        self.made: dict[str, Page] = {}
+        self._areas: dict[str, QScrollArea] = {}
+
+    def __getitem__(self, name: str) -> Page:
+        """Return a page; it is made now if nobody has asked for it before."""
+        if name not in self.made:
+            self.made[name] = self._makers[name]()
+            self._areas[name] = _scrolled(self.made[name])
+            self._stack.addWidget(self._areas[name])
+        return self.made[name]
+
+    def __iter__(self) -> Iterator[str]:
+        """Return the names in their order."""
+        return iter(self._makers)
+
+    def __len__(self) -> int:
+        """Return how many there are."""
+        return len(self._makers)
+
+    def area_of(self, name: str) -> QScrollArea:
+        """Return the area in which a page scrolls."""
+        self[name]
+        return self._areas[name]
+
+
+def _makers(document: Document, theme: Theme, plant: PlantPage, limits: LimitsPage) -> Mapping[str, Callable[[], Page]]:
+    return {
+        "Loop": lambda: loop_page(document, theme),
+        "Plant": lambda: plant,
+        "Actuator": lambda: TablePage(document, theme, (("", "actuator"),)),
+        "Sensor": lambda: TablePage(document, theme, (("", "sensor"),)),
+        "Controller": lambda: ControllerPage(document, theme),
+        "Feedforward": lambda: FeedforwardPage(document, theme),
+        "Filters": lambda: FiltersPage(document, theme),
+        "Trial": lambda: TablePage(document, theme, (("", "trial"),)),
+        "Limits": lambda: limits,
+    }
 
 
 class EditorPanel(QWidget):
@@ -29,23 +83,9 @@ class EditorPanel(QWidget):
         self._generation = document.generation
         self.limits = LimitsPage(document, theme)
         self.plant = PlantPage(document, theme)
-        feedforward = FeedforwardPage(document, theme)
-        self.disturbance_path = feedforward.disturbance_path
-        self.pages: dict[str, Page] = {
-            "Loop": loop_page(document, theme),
-            "Plant": self.plant,
-            "Actuator": TablePage(document, theme, (("", "actuator"),)),
-            "Sensor": TablePage(document, theme, (("", "sensor"),)),
-            "Controller": ControllerPage(document, theme),
-            "Feedforward": feedforward,
-            "Filters": FiltersPage(document, theme),
-            "Trial": TablePage(document, theme, (("", "trial"),)),
-            "Limits": self.limits,
-        }
-        self.blocks = self._block_list()
         self._stack = QStackedWidget()
-        for page in self.pages.values():
-            self._stack.addWidget(_scrolled(page))
+        self.pages = EditorPages(_makers(document, theme, self.plant, self.limits), self._stack)
+        self.blocks = self._block_list()
         column = QVBoxLayout(self)
         column.setContentsMargins(0, 0, 0, 0)
         column.setSpacing(4)
@@ -57,6 +97,13 @@ class EditorPanel(QWidget):
         self._dress()
         self.select("Plant")
         self.destroyed.connect(document.listen(self.refresh))
+
+    @property
+    def disturbance_path(self) -> DisturbancePath:
+        """Where the path of a measured disturbance is typed."""
+        page = self.pages["Feedforward"]
+        assert isinstance(page, FeedforwardPage)  # noqa: S101 - so it is made
+        return page.disturbance_path
 
     @property
     def block(self) -> str:
@@ -79,7 +126,7 @@ class EditorPanel(QWidget):
         anew = self._generation != self._document.generation
         self._generation = self._document.generation
         if anew:
-            for page in self.pages.values():
+            for page in self.pages.made.values():
                 page.refresh(anew=True)
         else:
             self.pages[self.block].refresh(anew=False)
@@ -121,7 +168,7 @@ class EditorPanel(QWidget):
         return blocks
 
     def _on_block(self, name: str) -> None:
-        self._stack.setCurrentIndex(list(self.pages).index(name))
+        self._stack.setCurrentWidget(self.pages.area_of(name))
         self.pages[name].refresh(anew=False)
         self.pages[self.block].settle()
         self.block_chosen.emit(name)
