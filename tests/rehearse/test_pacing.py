@@ -55,6 +55,19 @@ def test_a_fast_one_reaches_what_is_asked() -> None:
     assert pacer.achieved == pytest.approx(10.0, rel=0.05)
 
 
+@pytest.mark.parametrize("sample", [0.3, 1.0, 47.0])
+def test_samples_far_apart_are_no_sign_of_a_slow_computer(sample: float) -> None:
+    """Where hardly any sample is due in the time over which the speed is told, its parts count."""
+    pacer = Pacer(sample, speed=1.0)
+    behind = []
+    for look in range(600):
+        now = 0.033 * look
+        pacer.took(pacer.due(now), 1e-6, now)
+        behind.append(pacer.behind)
+    assert not any(behind)
+    assert pacer.achieved == pytest.approx(1.0, rel=0.05)
+
+
 @pytest.mark.parametrize(("asked", "got"), [(0.0, SLOWEST), (1e6, FASTEST), (3.0, 3.0)])
 def test_the_speed_has_bounds(asked: float, got: float) -> None:
     """A tenth to a hundred times real time."""

@@ -37,6 +37,7 @@ class Pacer:
         self._last: float | None = None
         self._owed, self._cost = 0.0, 0.0
         self._begun, self._ran, self._reached = 0.0, 0, speed
+        self._carried = 0.0
         self.speed = speed
 
     @property
@@ -48,6 +49,7 @@ class Pacer:
     def speed(self, value: float) -> None:
         self._speed = min(max(value, SLOWEST), FASTEST)
         self._reached, self._ran, self._begun = self._speed, 0, self._last or 0.0
+        self._carried = self._owed
 
     def pause(self) -> None:
         """Let no time pass until the next call."""
@@ -57,7 +59,7 @@ class Pacer:
         """Return how many samples to run now; `now` is a clock in seconds that never goes back."""
         if self._last is None:
             self._last = self._begun = now
-            self._ran = 0
+            self._ran, self._carried = 0, self._owed
             return 0
         passed, self._last = now - self._last, now
         self._owed += passed * self._speed / self._sample
@@ -73,8 +75,10 @@ class Pacer:
             self._cost = _FORGETS * self._cost + (1.0 - _FORGETS) * seconds / samples
         self._ran += samples
         if now - self._begun >= _WINDOW:
-            self._reached = self._ran * self._sample / (now - self._begun)
-            self._begun, self._ran = now, 0
+            # Parts of a sample count: of a slow loop only a few samples are due in this time.
+            passed = self._ran + self._owed - self._carried
+            self._reached = passed * self._sample / (now - self._begun)
+            self._begun, self._ran, self._carried = now, 0, self._owed
 
     @property
     def achieved(self) -> float:

@@ -103,6 +103,19 @@ def test_the_height_does_not_jump(chart: Chart) -> None:
     assert chart.output.ranges()[1].span < wide.span / 2.0
 
 
+def test_a_curve_that_runs_away_does_not_flatten_what_was_before(chart: Chart) -> None:
+    """The plot follows it to its range and half of that beyond; without a range to thirty steps from rest."""
+    shown = scene(400)
+    shown.signals.y[-3:] = 1e300
+    chart.show(shown)
+    assert chart.output.ranges()[1].high == pytest.approx(225.0, rel=0.1)
+    controlled = replace(shown.sheet.loop.controlled, low=None, high=None)
+    free = replace(shown.sheet, loop=replace(shown.sheet.loop, controlled=controlled))
+    chart.forget()
+    chart.show(replace(shown, sheet=free))
+    assert chart.output.ranges()[1].high == pytest.approx(72.0 + 150.0, rel=0.1)
+
+
 def test_forgotten_and_empty(chart: Chart) -> None:
     """Without a loop it says why; with the next one it begins anew."""
     chart.show(scene(100))

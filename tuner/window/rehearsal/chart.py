@@ -22,6 +22,9 @@ from tuner.window.theme import Theme
 _NARROW = 0.35
 """Share of its height that a plot must at least be filled by before it narrows."""
 
+_FAR = 30.0
+"""Steps of the trial from rest up to which a plot follows a signal without a range."""
+
 _QUIET = 0.02
 """Height of a plot at the least, as a share of the size of the trial's step."""
 
@@ -102,11 +105,20 @@ class StripPanel(Panel[Scene]):
         scene, pixel = self.shown, self.shown.span / self.columns()
         end = np.ceil(scene.now / pixel) * pixel
         asked = of_values(self.value(scene))
+        asked = None if asked is None else asked.within(self._reach(scene))
         levels = of_levels(level for level in self.levels(scene) if isfinite(level))
         base = levels if asked is None else asked.hull(levels)
         rest = self.signal(scene).resting
         least = max(_QUIET * abs(self.step_size(scene)), 1e-9)
         return Extent(end - scene.span, end), (base or Extent(rest, rest)).hull(Extent(rest - least, rest + least))
+
+    def _reach(self, scene: Scene) -> Extent:
+        """Return how far the plot follows a curve: its range and half of it beyond, or many steps from rest."""
+        signal = self.signal(scene)
+        if signal.low is not None and signal.high is not None:
+            return Extent(signal.low, signal.high).grown(0.5)
+        reach = _FAR * max(abs(self.step_size(scene)), 1e-9)
+        return Extent(signal.resting - reach, signal.resting + reach)
 
     def redraw(self) -> None:
         """Draw the curves in the ranges and colours that hold now."""
