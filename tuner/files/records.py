@@ -150,6 +150,9 @@ def parse(lines: Iterable[str], file: str = "") -> Record:
         header = _Header.of(next(reader, []), faults)
         table = _Table(header)
         for row in reader if header.usable else ():
+            if table.full:
+                faults.append(Fault(f"line {reader.line_num}", f"at most {MOST_SAMPLES:,} samples", "more"))
+                break
             table.take(row, reader.line_num, faults)
     except csv.Error as error:
         faults.append(Fault(f"line {reader.line_num}", "CSV, quotes closed", str(error)))
@@ -228,6 +231,11 @@ class _Table:
         self._events: list[str] = []
         self._last = -np.inf
 
+    @property
+    def full(self) -> bool:
+        """Whether it takes no more."""
+        return len(self._manual) >= MOST_SAMPLES
+
     def take(self, row: list[str], line: int, faults: Faults) -> None:
         """Take in one line; an empty one is passed over."""
         if not any(row):
@@ -235,8 +243,6 @@ class _Table:
         if len(row) != len(self._header.texts):
             faults.append(Fault(f"line {line}", _values(len(self._header.texts)), f"{len(row)}"))
             return
-        if len(self._manual) >= MOST_SAMPLES:
-            raise SheetError([Fault(f"line {line}", f"at most {MOST_SAMPLES:,} samples", "more")])
         for name, values in self.columns.items():
             values.append(self._number(name, row, line, faults))
         self._check_time(line, faults)
