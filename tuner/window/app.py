@@ -193,6 +193,9 @@ def _close(window: MainWindow, wiring: Wiring, event: QCloseEvent) -> None:
     if not wiring.files.may_leave():
         event.ignore()
         return
+    if not all(getattr(page, "guard", _agree)() for page in window.pages.pages.values()):
+        event.ignore()
+        return
     memory.remember(window.layout_memory())
     window.hide()  # what still works may take a moment to end
     wiring.keeping.end()
@@ -207,6 +210,11 @@ def _close(window: MainWindow, wiring: Wiring, event: QCloseEvent) -> None:
             page.close()
     for other in wiring.others:
         other.close()
+
+
+def _agree() -> bool:
+    """Agree to the end of a page that would lose nothing."""
+    return True
 
 
 def _sketch(sheet: Sheet, size: int) -> Sketched:

@@ -83,3 +83,27 @@ def test_a_record_that_cannot_be_written_is_told(
     assert asking.told[0][0] == "No record"
     assert page.told.text() == "The record was not saved."
     assert page.bar.save.isEnabled()
+
+
+def test_an_unsaved_record_is_not_let_go_without_a_question(
+    page: RehearsalPage, hours: Hours, qtbot: QtBot, tmp_path: Path
+) -> None:
+    """Neither for another record nor for the end of the program; once it is saved nobody asks."""
+    asking = Answers(record=tmp_path / "drier.csv")
+    RehearsalFiles(page, asking)
+    assert page.guard()
+    page.bar.record.click()
+    page.runner.tick()
+    hours.pass_by(5.0)
+    recorder = page.runner.recorder
+    page.bar.record.click()
+    assert not page.guard()
+    assert asking.asked == ["Let it go"]
+    page.bar.record.click()
+    assert page.runner.recorder is recorder
+    assert not page.runner.recording
+    page.bar.save.click()
+    qtbot.waitUntil(lambda: page.told.text() == "The record is in drier.csv.")
+    assert page.guard()
+    page.bar.record.click()
+    assert page.runner.recorder is not recorder

@@ -181,7 +181,7 @@ def test_the_rulers_change_the_gains_while_it_runs(page: RehearsalPage, document
     document.change_value("kp", 3.5)
     assert loop(page).sheet.controller.gain_1 == 3.5
     assert loop(page).time > 0.0
-    assert page.stability.text() == "Stable in automatic."
+    assert page.stability.text() == "Stable in automatic, with the plant as it is."
     document.change_values({"kp": 60.0, "kd": 0.0, "ki": 10.0})
     page.runner.act(SetReference(73.0))
     hours.pass_by(20.0)

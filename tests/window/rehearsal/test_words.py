@@ -27,20 +27,20 @@ def test_how_far_and_how_fast() -> None:
 def test_what_is_said_of_stability() -> None:
     """Stable in automatic or by hand, else how it grows, which is bad."""
     rehearsal = Rehearsal(oven())
-    assert stability(rehearsal) == ("Stable in automatic.", False)
+    assert stability(rehearsal) == ("Stable in automatic, with the plant as it is.", False)
     rehearsal.set_controller(replace(LAW, gain_1=9.0, gain_3=0.0))
     sentence, bad = stability(rehearsal)
     assert bad
     assert sentence.startswith("Unstable: the swing grows by a factor of ")
     rehearsal.to_manual()
-    assert stability(rehearsal) == ("Stable by hand.", False)
+    assert stability(rehearsal) == ("Stable by hand, with the plant as it is.", False)
 
 
 def test_an_integrating_plant_by_hand() -> None:
     """It does not run away, but it does not come back either; in automatic it is as stable as any."""
     tank = replace(oven(), plant=ExpressionPlant("0.05/s"), controller=replace(LAW, gain_1=1.0, gain_3=0.0))
     rehearsal = Rehearsal(tank)
-    assert stability(rehearsal) == ("Stable in automatic.", False)
+    assert stability(rehearsal) == ("Stable in automatic, with the plant as it is.", False)
     rehearsal.to_manual()
     assert stability(rehearsal) == ("By hand this plant does not come back to rest by itself.", False)
 

@@ -23,6 +23,7 @@ class RehearsalFiles(QObject):
         self._last = shipped()
         self._timer = QTimer(self, interval=0)
         self._timer.timeout.connect(self._write_piece)
+        page.guard = self.may_let_go
         page.bar.play_wanted.connect(self.play)
         page.bar.save_wanted.connect(self.save)
 
@@ -57,6 +58,12 @@ class RehearsalFiles(QObject):
         self._page.set_saving(f"Saving the record to {path.name}…")
         self._timer.start()
 
+    def may_let_go(self) -> bool:
+        """Tell whether the record may be let go: it is saved, or that is agreed to."""
+        samples = self._page.runner.unsaved
+        sentence = f"The record of the rehearsal has {samples:,} samples that are not saved."
+        return not samples or self._asking.agree("Unsaved record", sentence, "Let it go")
+
     def _write_piece(self) -> None:
         try:
             written = next(self._pieces, None)
@@ -65,6 +72,7 @@ class RehearsalFiles(QObject):
             self._asking.tell("No record", "The record was not saved.", [str(refusal)])
             return
         if written is None:
+            self._page.runner.note_saved()
             self._end(f"The record is in {self._path.name}.")
         else:
             self._page.set_saving(f"Saving the record to {self._path.name}: {written:,} samples written.")

@@ -1,7 +1,7 @@
 """The page of the rehearsal: the loop running in time, to be disturbed and retuned by hand while it runs."""
 
 from collections import deque
-from collections.abc import Mapping
+from collections.abc import Callable, Mapping
 from dataclasses import replace
 from typing import TYPE_CHECKING, Final
 
@@ -68,6 +68,7 @@ class RehearsalPage(QObject):
         self._shown: Shown | None = None
         self._ring: Ring | None = None
         self._events: deque[float] = deque(maxlen=_EVENTS)
+        self.guard: Callable[[], bool] = lambda: True
         self.runner = runner or Runner()
         self.bar, self.hand, self.drift, self.chart = Bar(theme), Hand(theme), Drift(theme), Chart(theme)
         self.stability, self.told, self.state = RoleLabel(theme), ElidedLabel(), ElidedLabel()
@@ -132,6 +133,13 @@ class RehearsalPage(QObject):
     def begin_anew(self) -> None:
         """Begin with the loop of the document at rest, running if this one runs."""
         self._ask(at_once=self.runner.running)
+
+    def _record(self, on: bool) -> None:
+        """Begin a record or end it; one that is not saved is let go for another only if that is agreed to."""
+        if not on or self.guard():
+            self.runner.record(on)
+        else:
+            self._refresh()
 
     def set_saving(self, words: str) -> None:
         """Say that a record is being written."""
@@ -297,7 +305,7 @@ class RehearsalPage(QObject):
         bar.run_wanted.connect(lambda on: runner.run() if on else runner.pause())
         bar.anew_wanted.connect(self.begin_anew)
         bar.speed_wanted.connect(runner.set_speed)
-        bar.record_wanted.connect(runner.record)
+        bar.record_wanted.connect(self._record)
         bar.stop_wanted.connect(self.stop)
         bar.speed.faulted.connect(self._on_refused)
         for part in (self.hand, self.drift):

@@ -64,6 +64,7 @@ class Runner(QObject):
         self.recorder: Recorder | None = None
         self.recorded: Loop | None = None
         self.recording = False
+        self._saved = 0
         self.pacer = Pacer(1.0)
         self._script: Script | None = None
         self._timer = QTimer(self, interval=FRAME)
@@ -167,6 +168,15 @@ class Runner(QObject):
         self.recording = on and self.recorder is not None
         self.changed.emit()
 
+    @property
+    def unsaved(self) -> int:
+        """How many samples were recorded and not saved."""
+        return 0 if self.recorder is None else self.recorder.samples - self._saved
+
+    def note_saved(self) -> None:
+        """Note that all that was recorded is saved."""
+        self._saved = 0 if self.recorder is None else self.recorder.samples
+
     def _note(self, words: str) -> None:
         if self.recording and self.recorder is not None and self.rehearsal is not None:
             self.recorder.note(self.rehearsal.time, words)
@@ -185,7 +195,7 @@ class Runner(QObject):
     def _let_record_go(self) -> None:
         if self.recorder is not None:
             self.recorder.close()
-        self.recorder, self.recorded, self.recording = None, None, False
+        self.recorder, self.recorded, self.recording, self._saved = None, None, False, 0
 
     # Running ----------------------------------------------------------------------------------------------------
 

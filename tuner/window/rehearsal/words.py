@@ -29,7 +29,7 @@ def stability(rehearsal: "Rehearsal") -> tuple[str, bool]:
     growth = rehearsal.growth()
     if growth is None:
         word = "by hand" if rehearsal.mode == "manual" else "in automatic"
-        return f"Stable {word}.", False
+        return f"Stable {word}, with the plant as it is.", False
     if rehearsal.mode == "manual" and growth.predicted <= 1.0:
         return "By hand this plant does not come back to rest by itself.", False
     return minus(growth.sentence), True
