@@ -212,6 +212,56 @@ def test_the_whole_loop(seed: int) -> None:
         assert trace.u[trace.sample_index] == pytest.approx(expected[1], abs=1e-7 * size)
 
 
+def wired_continuously(sheet: Sheet) -> control.StateSpace:
+    """Return the same loop with a continuous controller, wired by names."""
+    law, s, gains = sheet.controller, control.tf("s"), sheet.controller.parallel()
+    sense, found = 1.0 / (0.3 * s + 1.0), control.tf([1.0], [1.0])
+    if law.measurement_filter:
+        found = found / (law.measurement_filter * s + 1.0)
+    if law.lead_lag:
+        found = found * (law.lead_lag.lead * s + 1.0) / (law.lead_lag.lag * s + 1.0)
+    if law.notch:
+        w0, depth, width = law.notch.frequency, law.notch.depth, law.notch.width
+        found = found * (s**2 + depth * width * w0 * s + w0**2) / (s**2 + width * w0 * s + w0**2)
+    integral, derivative = gains.ki / s, gains.kd * s / (law.filter_time * s + 1.0)
+    smooth, forward, undo = fed(sheet)
+    effort, disturbance = ways(sheet)
+    parts = [
+        (effort, "effort", "u", "yu"),
+        (disturbance, "disturbance", "d", "yd"),
+        (sense * found, "measurement", "y", "found"),
+        (smooth, "smooth", "r", "asked"),
+        (forward, "forward", "r", "uf"),
+        (undo, "undo", "d", "ud"),
+        (law.b * gains.kp + integral + law.c * derivative, "ahead", "asked", "ua"),
+        (gains.kp + integral + derivative, "behind", "found", "ub"),
+    ]
+    return control.interconnect(
+        [
+            *(control.ss(control.tf2ss(one), name=name, inputs=a, outputs=b) for one, name, a, b in parts),
+            control.summing_junction(["yu", "yd"], "y", name="at the output"),
+            control.summing_junction(["ua", "-ub", "uf", "ud"], "u", name="sum"),
+        ],
+        inputs=["r", "d"],
+        outputs=["y"],
+    )
+
+
+@pytest.mark.parametrize("seed", range(12))
+def test_the_whole_loop_with_a_continuous_controller(seed: int) -> None:
+    """The same structures without samples: the traces are within 1e-3 of the step of the exact answer."""
+    drawn = random_sheet(seed)
+    law = replace(drawn.controller, sample_time=0.0, filter_time=max(drawn.controller.filter_time, 0.05))
+    sheet = replace(drawn, controller=law)
+    theirs = wired_continuously(sheet)
+    (traces,) = run(sheet, family_of(sheet, 1))
+    for which, trace in enumerate((traces.reference, traces.disturbance)):
+        inputs = np.zeros((2, len(trace.t)))
+        inputs[which] = 1.0
+        expected = control.forced_response(theirs, trace.t, inputs).outputs
+        assert trace.y == pytest.approx(np.atleast_2d(expected)[0], abs=1e-3 * max(1.0, float(np.abs(expected).max())))
+
+
 def test_what_was_compared_has_every_block() -> None:
     """So that no block is left out unseen, in all its combinations with the feedforwards."""
     laws = [random_sheet(seed).controller for seed in range(24)]
