@@ -101,3 +101,16 @@ def test_what_is_refused(tmp_path: Path, capsys: Captured, monkeypatch: pytest.M
     monkeypatch.setattr(recording, "MOST_SAMPLES", 100)
     assert main(["rehearse", good, "--for", "100"]) == 2
     assert capsys.readouterr().err == f"{good}: expected at most 100 samples of 0.5 s, found 201 in 100 s\n"
+
+
+def test_a_record_is_not_written_over_unless_told(tmp_path: Path, capsys: Captured) -> None:
+    """What stands in a file of that name stays, with one sentence; `--overwrite` replaces it."""
+    (sheet,) = put(tmp_path, bath=MET)
+    record = tmp_path / "r.csv"
+    record.write_text("precious", encoding="utf-8")
+    words = ["rehearse", sheet, "--for", "1", "--to", str(record)]
+    assert main(words) == 2
+    assert capsys.readouterr().err == f"{sheet}: expected no file named {record}, found one; --overwrite replaces it\n"
+    assert record.read_text(encoding="utf-8") == "precious"
+    assert main([*words, "--overwrite"]) == 0
+    assert record.read_text(encoding="utf-8").startswith("time [s],")

@@ -38,6 +38,7 @@ def declare(parser: Parser) -> None:
         help="how long, in the sheet's unit of time (until the last action of a demonstration unless told)",
     )
     parser.add_argument("--to", metavar="RECORD.csv", help="write the record to this file")
+    parser.add_argument("--overwrite", action="store_true", help="replace a record of the same name")
     parser.add_argument("--json", action="store_true", help="print one JSON object")
 
 
@@ -73,6 +74,7 @@ class Finished:
 def run(arguments: Arguments) -> int:
     """Run a loop, tell what happened, and write its record."""
     try:
+        _refuse_record(arguments.to, overwrite=arguments.overwrite)
         finished = _go(_wanted(arguments.source, arguments.lasting), recorded=arguments.to is not None)
         if finished.recorder is not None:
             _save(finished.recorder, finished.rehearsal.sheet, Path(arguments.to))
@@ -84,6 +86,12 @@ def run(arguments: Arguments) -> int:
         sys.stdout.write("".join(f"{line}\n" for line in _lines(finished, arguments.to)))
     sys.stdout.flush()
     return status.MET if finished.rehearsal.stable else status.NOT_MET
+
+
+def _refuse_record(name: str | None, *, overwrite: bool) -> None:
+    """Refuse to write over a record, before anything is run."""
+    if name is not None and Path(name).exists() and not overwrite:
+        raise TrimwrightError(f"expected no file named {name}, found one; --overwrite replaces it")
 
 
 def _wanted(source: str, lasting: float | None) -> Run:
