@@ -41,7 +41,8 @@ def main() -> None:
     application.exec()
     _say("answered")
     wiring.keeping.end()
-    window.assessor.close()
+    for worker in (*wiring.apart, *wiring.others, window.assessor):
+        worker.close()
 
 
 def _say(word: str) -> None:

@@ -140,7 +140,10 @@ def stage_of_a_drag() -> Iterator[Stage]:
     finally:
         wiring.keeping.end()
         wiring.footing.close()
-        window.assessor.close()
+        for other in (*wiring.apart, *wiring.others, window.assessor):
+            other.close()
+        if wiring.gain_map is not None:
+            wiring.gain_map.close()
         window.hide()
         window.deleteLater()
 

@@ -191,3 +191,15 @@ def test_a_loop_without_poles_is_shown(panel: PolePanel) -> None:
     panel.show(replace(shown, assessment=replace(shown.assessment, members=none)))
     assert panel.nominal.getData()[0].size == 0
     assert not panel.widget.grab().isNull()
+
+
+def test_kept_tunings_have_their_poles_and_their_name(panel: PolePanel) -> None:
+    """Grey crosses beside the present ones, the name at the slowest; gone with the tuning."""
+    shown = answer(2.0, kept=(1.0,))
+    panel.show(shown)
+    x, y = panel.kept.getData()
+    assert np.array_equal(x + 1j * y, shown.kept[0].member.poles)
+    assert any(words.text == "A" for words in panel.marks.words)
+    panel.show(answer(2.0))
+    assert not panel.kept.getData()[0].size
+    assert not any(words.text == "A" for words in panel.marks.words)

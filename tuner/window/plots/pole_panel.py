@@ -61,11 +61,13 @@ class PolePanel(Panel[Shown]):
         self._drawn: tuple[ComplexArray, QColor] | None = None
         self.family = Poles(size=7, depth=-10.0)
         self.nominal = Poles(size=10, depth=120.0)
+        self.kept = Poles(size=8, depth=100.0)
         self.least = Poles(size=16, depth=121.0, rings=True)
         self._least: Least | None = None
         self._outlined: int | None = None
         super().__init__(name, theme)
         self.view.addItem(self.family, ignoreBounds=True)
+        self.view.addItem(self.kept, ignoreBounds=True)
         self.view.addItem(self.nominal, ignoreBounds=True)
         self.view.addItem(self.least, ignoreBounds=True)
         self.family.join(self.view.still)
@@ -112,6 +114,7 @@ class PolePanel(Panel[Shown]):
         if self._drawn is None or self._drawn[0] is not self._family or self._drawn[1] != colour:
             self._drawn = (self._family, colour)
             _show(self.family, self._family, colour, 1.5)
+        _show(self.kept, self._kept(), self._theme.colour("kept"), 1.5)
         _show(self.nominal, self._nominal, self._theme.colour("kept" if self.stale else "nominal"), 2.0)
         ringed = self._least.pair if self._least is not None else np.empty(0, dtype=np.complex128)
         _show(self.least, ringed, self._theme.colour("kept" if self.stale else "limit"), 1.5)
@@ -153,6 +156,22 @@ class PolePanel(Panel[Shown]):
         super().dress()
         self.redraw()
 
+    def _kept(self) -> ComplexArray:
+        """Return the poles of the tunings to compare with."""
+        found = [kept.member.poles for kept in self.shown.kept] if self.shown is not None else []
+        return np.concatenate(found) if found else np.empty(0, dtype=np.complex128)
+
+    def _kept_names(self) -> list[Words]:
+        """Name each of those tunings at its slowest pole, where that is in sight."""
+        across, upwards = self.ranges()
+        words = []
+        for kept in self.shown.kept if self.shown is not None else ():
+            upper = kept.member.poles[kept.member.poles.imag >= 0.0]
+            pole = complex(upper[np.abs(upper).argmin()]) if upper.size else complex(across.high + 1.0)
+            if across.low < pole.real < across.high and upwards.low < pole.imag < upwards.high:
+                words.append(Words(pole.real, pole.imag, kept.name, "kept_word", "left", "above"))
+        return words
+
     def _seen_marks(self) -> Marks:
         """Return the marks with the words of the wedge on its ray, inside what is seen."""
         (x, y), wedge = self.ranges(), self.shown.overlay.wedge if self.shown else None
@@ -173,7 +192,7 @@ class PolePanel(Panel[Shown]):
             is_seen = at == (least.pair[0].real, least.pair[0].imag)
             said = least.words if is_seen else f"{least.words}, out of sight"
             words.append(Words(*at, said, "limit_word", "left", "above" if is_seen else "below", least.plant))
-        return words
+        return words + self._kept_names()
 
 
 def _on_ray(word: Words, x: Extent, y: Extent) -> Words:
