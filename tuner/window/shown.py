@@ -41,6 +41,8 @@ class KeptResult:
     name: str
     label: str
     member: MemberResult
+    frequency: "FrequencyCurves | None" = None
+    """The response over frequency, where it was asked for."""
 
 
 @dataclass(frozen=True, slots=True, eq=False)

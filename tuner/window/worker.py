@@ -111,7 +111,7 @@ class Assessing:
     def _shown(self, request: Request, assessment: Assessment, *, whole: bool = False, outlined: bool = False) -> Shown:
         seen = assessment.seen_from(request.looked_at) if request.looked_at else assessment
         overlay = self.draw(request.sheet, seen)
-        results = (self._result(request.sheet, tuning, request.looked_at) for tuning in request.kept)
+        results = (self._result(request, tuning) for tuning in request.kept)
         kept = tuple(found for found in results if found is not None)
         curves = _curves(request.sheet, seen) if request.frequency else None
         plant = "" if seen is assessment else request.looked_at
@@ -129,16 +129,19 @@ class Assessing:
             family_view=request.family_view,
         )
 
-    def _result(self, sheet: Sheet, tuning: KeptTuning, plant: str) -> KeptResult | None:
+    def _result(self, request: Request, tuning: KeptTuning) -> KeptResult | None:
         """Return what a kept tuning makes of the plant that is looked at; None when that cannot be computed."""
-        asked = replace(sheet, controller=replace(tuning.controller, as_found=None), limits=()), plant
+        law = replace(tuning.controller, as_found=None)
+        asked = replace(request.sheet, controller=law, limits=()), request.looked_at
         if asked not in self._kept:
             self._kept[asked] = self._run(*asked)
         self._kept.move_to_end(asked)
         while len(self._kept) > _REMEMBERED:
             self._kept.popitem(last=False)
         member = self._kept[asked]
-        return None if member is None else KeptResult(tuning.name, tuning.label, member)
+        if member is None:
+            return None
+        return KeptResult(tuning.name, tuning.label, member, _response(asked[0], member) if request.frequency else None)
 
     def _run(self, sheet: Sheet, plant: str) -> MemberResult | None:
         try:
@@ -160,6 +163,12 @@ def _curves(sheet: Sheet, seen: Assessment) -> "FrequencyCurves":
     from tuner.window.frequency.question import curves_of
 
     return curves_of(sheet, seen)
+
+
+def _response(sheet: Sheet, member: MemberResult) -> "FrequencyCurves":
+    from tuner.window.frequency.question import curves_of_one
+
+    return curves_of_one(sheet, member)
 
 
 class Assessor(QObject):

@@ -9,6 +9,7 @@ from tuner.files.sheet import read
 from tuner.judge.overlay import overlay
 from tuner.model.sheet import Sheet
 from tuner.places import sample_plants
+from tuner.session.tunings import KeptTuning
 from tuner.simulate.curves import FrequencyCurves
 from tuner.window.shown import Request, Shown
 from tuner.window.worker import Assessing
@@ -30,10 +31,17 @@ def with_feedback(sheet: Sheet, *, on: bool) -> Sheet:
 
 
 @cache
-def answer(sheet: Sheet | None = None, *, whole: bool = True, looked_at: str = "", family_view: str = "both") -> Shown:
+def answer(
+    sheet: Sheet | None = None,
+    *,
+    whole: bool = True,
+    looked_at: str = "",
+    family_view: str = "both",
+    kept: tuple[KeptTuning, ...] = (),
+) -> Shown:
     """Return the answer on a sheet, the heater's as a rule, with its curves over frequency, as the plots show it."""
     assessing = Assessing(sketched, glance, overlay)
-    request = Request(1, sheet or sample(), frequency=True, looked_at=looked_at, family_view=family_view)  # type: ignore[arg-type] # a view
+    request = Request(1, sheet or sample(), kept, frequency=True, looked_at=looked_at, family_view=family_view)  # type: ignore[arg-type] # a view
     return (assessing.whole(request) if whole else assessing.nominal(request)).as_seen()
 
 
@@ -41,3 +49,9 @@ def curves_in(shown: Shown) -> FrequencyCurves:
     """Return the curves of an answer."""
     assert shown.frequency is not None
     return shown.frequency
+
+
+def slower() -> KeptTuning:
+    """Return a tuning of the heater to compare with: half its proportional gain."""
+    law = sample().controller
+    return KeptTuning("A", "slower", replace(law, gain_1=0.5 * law.gain_1, as_found=None))

@@ -4,7 +4,7 @@ import numpy as np
 import pytest
 from pytestqt.qtbot import QtBot
 
-from tests.window.frequency.looked_at import answer, curves_in, limited, sample, with_feedback
+from tests.window.frequency.looked_at import answer, curves_in, limited, sample, slower, with_feedback
 from tests.window.plots.answers import seen
 from tuner.window.frequency.nyquist import NyquistPanel
 from tuner.window.theme import Theme
@@ -115,3 +115,13 @@ def test_keys_walk_along_the_curve(panel: NyquistPanel) -> None:
     assert panel.marks.pointer is not None
     places = [int(np.abs(gain - complex(*at)).argmin()) for at in (first, panel.marks.pointer)]
     assert places[1] == places[0] + 3
+
+
+def test_tunings_to_compare_with_have_their_curve_and_name(panel: NyquistPanel) -> None:
+    """Behind the present one; gone with them."""
+    panel.show(answer(kept=(slower(),)))
+    assert panel.kept.xData.size
+    assert any(word.text == "A" for word in panel.marks.words)
+    panel.show(answer())
+    assert not panel.kept.xData.size
+    assert not any(word.text == "A" for word in panel.marks.words)

@@ -1,10 +1,12 @@
 """A plot over frequency: its family, its worst plant, what it reads, and what stays."""
 
+from dataclasses import replace
+
 import numpy as np
 import pytest
 from pytestqt.qtbot import QtBot
 
-from tests.window.frequency.looked_at import answer, curves_in, sample
+from tests.window.frequency.looked_at import answer, curves_in, sample, slower
 from tests.window.plots.answers import seen
 from tuner.window.frequency.bode import MagnitudePanel
 from tuner.window.frequency.panel import worst_places
@@ -114,3 +116,19 @@ def test_a_stale_picture_is_grey(panel: MagnitudePanel, theme: Theme) -> None:
     panel.show_stale()
     for curve in (panel.own[0], panel.worst):
         assert curve.opts["pen"].color() == theme.colour("kept")
+
+
+def test_tunings_to_compare_with_are_drawn_and_named(panel: MagnitudePanel) -> None:
+    """In grey, at the size of their own loop gain; gone with them."""
+    kept = slower()
+    panel.show(answer(kept=(kept,)))
+    own = answer(replace(sample(), controller=kept.controller))
+    x, y = panel.kept[0].getData()
+    expected = np.interp(x, np.log10(curves_in(own).w), curves_in(own).decibels[0])
+    inside = (y > panel.ranges()[1].low) & (y < panel.ranges()[1].high)
+    assert y[inside] == pytest.approx(expected[inside], abs=0.2)
+    assert panel.kept[0].opts["pen"].color() == panel._theme.colour("kept")
+    assert any(word.text == "A" for word in panel.marks.words)
+    panel.show(answer())
+    assert not panel.kept[0].xData.size
+    assert not any(word.text == "A" for word in panel.marks.words)

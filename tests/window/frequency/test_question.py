@@ -6,7 +6,7 @@ import pytest
 
 from tests.window.frequency.looked_at import sample, with_feedback
 from tuner.assess import assess
-from tuner.window.frequency.question import curves_of
+from tuner.window.frequency.question import curves_of, curves_of_one
 
 
 def test_rows_are_the_plants_in_their_order() -> None:
@@ -45,3 +45,13 @@ def test_without_gains_there_are_no_curves() -> None:
     sheet = sample()
     idle = replace(sheet, controller=replace(sheet.controller, gain_1=0.0, gain_2=0.0, gain_3=0.0))
     assert curves_of(idle, assess(idle)).w.size == 0
+
+
+def test_one_plant_by_itself() -> None:
+    """The response of a tuning to compare with is that of its own plant, on a grid of its own."""
+    sheet = sample()
+    assessment = assess(sheet)
+    member = assessment.members[7]
+    found, whole = curves_of_one(sheet, member), curves_of(sheet, assessment.seen_from(member.name))
+    assert found.plants == (member.name,)
+    assert found.sensitivity.max() == pytest.approx(whole.sensitivity[0].max(), rel=1e-9)

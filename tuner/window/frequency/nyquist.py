@@ -1,5 +1,6 @@
 """The Nyquist plot of the loop gain, both axes in one scale, with the circle that the sensitivity must stay out of."""
 
+from collections.abc import Sequence
 from typing import TYPE_CHECKING
 
 import numpy as np
@@ -47,11 +48,20 @@ class NyquistPanel(Panel[Shown]):
         self._worst: tuple[ComplexArray, str, str] | None = None
         self.family, self.own = Curve(smooth=False, depth=-40.0), Curve(strong=True)
         self.one, self.limit, self.touched = Curve(depth=-30.0), Curve(depth=-20.0), Curve(depth=-25.0)
-        self.worst = Curve(depth=-15.0)
+        self.worst, self.kept = Curve(depth=-15.0), Curve(smooth=False, depth=-18.0)
         self.critical = Poles(size=10, depth=120.0)
         super().__init__(name, theme)
         self.view.getPlotItem().getViewBox().setAspectLocked(lock=True, ratio=1.0)
-        for item in (self.family, self.one, self.limit, self.touched, self.worst, self.own, self.critical):
+        for item in (
+            self.family,
+            self.one,
+            self.limit,
+            self.touched,
+            self.kept,
+            self.worst,
+            self.own,
+            self.critical,
+        ):
             self.view.addItem(item, ignoreBounds=True)
         for still in (self.family, self.one, self.limit):
             still.join(self.view.still)
@@ -91,6 +101,8 @@ class NyquistPanel(Panel[Shown]):
             self.family.show_points(_bundle(self._family))
         self.own.set_colour(self._theme.colour("kept" if self.stale else "nominal"))
         self.own.show_points(_points(_near(self._curves.gain[0])))
+        self.kept.set_colour(self._theme.colour("kept"))
+        self.kept.show_points(_several([gain for _, gain in self._beside()]))
         self.worst.set_colour(self._theme.colour("kept" if self.stale else "limit"))
         self.worst.show_points(_points(_near(self._worst[0]))) if self._worst else self.worst.clear_points()
         self._draw_circles()
@@ -108,6 +120,11 @@ class NyquistPanel(Panel[Shown]):
         roles = ((self.one, "quiet"), (self.limit, "limit"), (self.touched, "kept" if self.stale else "nominal"))
         for curve, role in roles:
             curve.set_colour(self._theme.colour(role))
+
+    def _beside(self) -> list[tuple[str, ComplexArray]]:
+        """Return the loop gains of the tunings to compare with, by their names."""
+        kept = self.shown.kept if self.shown is not None else ()
+        return [(one.name, one.frequency.gain[0]) for one in kept if one.frequency is not None and one.frequency.w.size]
 
     def _limit(self) -> float | None:
         return dict(self.shown.sheet.limits).get("max_sensitivity") if self.shown else None
@@ -137,6 +154,9 @@ class NyquistPanel(Panel[Shown]):
             at = frequency_words(float(self._curves.w[index]), self.shown.sheet)
             said = f"peak of |S| {self._curves.sensitivity[0, index]:.3g} at {at}"
             words.append(Words(nearest.real, nearest.imag, said, "nominal_word", "left", "below"))
+        for name, gain in self._beside():
+            near = complex(gain[np.abs(1.0 + gain).argmin()])
+            words.append(Words(near.real, near.imag, name, "kept_word", "right", "above"))
         if self._worst is not None:
             gain, said, plant = self._worst
             near = complex(gain[np.abs(1.0 + gain).argmin()])
@@ -207,6 +227,14 @@ def _near(gain: ComplexArray) -> ComplexArray:
 
 def _points(curve: ComplexArray) -> Points:
     return Points(np.ascontiguousarray(curve.real), np.ascontiguousarray(curve.imag))
+
+
+def _several(curves: Sequence[ComplexArray]) -> Points:
+    """Return curves of different lengths as one."""
+    parts = [_bundle(curve[None]) for curve in curves] or [_bundle(_NONE)]
+    connect = [part.connect for part in parts if part.connect is not None]
+    x, y = np.concatenate([part.x for part in parts]), np.concatenate([part.y for part in parts])
+    return Points(x, y, np.concatenate(connect))
 
 
 def _bundle(family: ComplexArray) -> Points:

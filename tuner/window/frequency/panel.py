@@ -17,7 +17,7 @@ from tuner.window.plots.lines import Family, Line
 from tuner.window.plots.marks import Marks, Words
 from tuner.window.plots.panel import Panel
 from tuner.window.plots.ticks import Tick, ticks
-from tuner.window.shown import Shown
+from tuner.window.shown import KeptResult, Shown
 from tuner.window.theme import Theme
 
 if TYPE_CHECKING:
@@ -69,10 +69,12 @@ class FrequencyPanel(Panel[Shown]):
         self._bundles: tuple[Bundle, ...] = ()
         self._families: tuple[Family, ...] = (NO_FAMILY,) * kinds
         self._worst: Line | None = None
+        self._beside: tuple[Line, ...] = ()
         self._marks = Marks()
         super().__init__(name, theme)
         self.pictures = [FamilyPicture(self.view, theme, second=index > 0) for index in range(kinds)]
         self.worst = Curve(depth=-15.0)
+        self.kept: list[Curve] = []
         self.own = [Curve(strong=True, depth=float(-index)) for index in range(kinds)]
         for item in (self.worst, *self.own):
             self.view.addItem(item, ignoreBounds=True)
@@ -103,6 +105,7 @@ class FrequencyPanel(Panel[Shown]):
         if curves is None or not curves.w.size:
             return
         self._curves, self._bundles = curves, self.bundles(curves)
+        self._beside = tuple(self._line_beside(kept) for kept in shown.kept if kept.frequency is not None)
         self._marks = self.frequency_marks(shown, curves)
         if shown.whole:
             self._take_family(shown, curves)
@@ -133,6 +136,7 @@ class FrequencyPanel(Panel[Shown]):
             item.set_colour(self._colour(bundle.role))
             item.show_points(thinning.single(x, _finite(bundle.values[0]), seen, columns))
         self._draw_worst(seen, columns)
+        self._draw_beside(seen, columns)
         self.ground.areas = self._marks.areas
         self._divide(across, seen)
         self.marks.show_marks(self._marks, self._names(x, seen))
@@ -160,7 +164,7 @@ class FrequencyPanel(Panel[Shown]):
     def forget(self) -> None:
         """Forget ranges and curves."""
         super().forget()
-        self._curves, self._bundles, self._worst = None, (), None
+        self._curves, self._bundles, self._worst, self._beside = None, (), None, ()
         self._families = (NO_FAMILY,) * len(self._families)
         self._steady.forget()
         self._across.forget()
@@ -196,6 +200,22 @@ class FrequencyPanel(Panel[Shown]):
         self.worst.set_colour(self._colour("limit"))
         self.worst.show_points(thinning.single(self._worst.t, self._worst.values, seen, columns))
 
+    def _line_beside(self, kept: KeptResult) -> Line:
+        """Return the curve of a tuning to compare with; of several kinds the first."""
+        assert kept.frequency is not None  # noqa: S101 - whoever calls has looked
+        first = self.bundles(kept.frequency)[0]
+        return Line(np.log10(kept.frequency.w), _finite(first.values[0]), kept.name)
+
+    def _draw_beside(self, seen: Extent, columns: int) -> None:
+        while len(self.kept) < len(self._beside):
+            self.kept.append(Curve(depth=-20.0))
+            self.view.addItem(self.kept[-1], ignoreBounds=True)
+        for curve in self.kept:
+            curve.clear_points()
+        for curve, line in zip(self.kept, self._beside, strict=False):
+            curve.set_colour(self._theme.colour("kept"))
+            curve.show_points(thinning.single(line.t, line.values, seen, columns))
+
     def _colour(self, role: str) -> QColor:
         return self._theme.colour("kept" if self.stale else role)
 
@@ -215,6 +235,8 @@ class FrequencyPanel(Panel[Shown]):
     def _names(self, x: Array, seen: Extent) -> list[Words]:
         """Return the names of the curves, each where it runs."""
         named = [(x, one.values[0], one.place, one.name, f"{one.role}_word", "") for one in self._bundles]
+        for index, line in enumerate(self._beside):
+            named.append((line.t, line.values, 0.4 + 0.06 * index, line.name, "kept_word", ""))
         if self._worst is not None:
             line = self._worst
             named.append((line.t, line.values, _WORST_PLACE, line.name, "limit_word", line.plant))

@@ -2,12 +2,19 @@
 
 from dataclasses import replace
 
-from tuner.judge.assessment import Assessment
+from tuner.judge.assessment import Assessment, MemberResult
 from tuner.model.family import family_of
 from tuner.model.sheet import Sheet
 from tuner.simulate.curves import FrequencyCurves, frequency_curves
 from tuner.simulate.loop import loops_of
 from tuner.simulate.poles import family_poles
+
+
+def curves_of_one(sheet: Sheet, member: MemberResult) -> FrequencyCurves:
+    """Return the response over frequency of one plant of a sheet."""
+    plants = [plant for plant in family_of(sheet) if plant.name == member.name]
+    loops = loops_of(replace(sheet, controller=replace(sheet.controller, feedback=True)), plants)
+    return frequency_curves(loops, member.poles, [member.margins], (member.name,))
 
 
 def curves_of(sheet: Sheet, seen: Assessment) -> FrequencyCurves:
