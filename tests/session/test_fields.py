@@ -7,6 +7,7 @@ from tuner.files.sheet import parse, render
 from tuner.model.controller import DisturbanceFeedforward, Feedforward
 from tuner.model.measures import BY_NAME
 from tuner.model.parameters import GAIN_KEYS, PARAMETERS, find
+from tuner.model.plant import ExpressionPlant
 from tuner.session.fields import (
     first_lead_lag,
     first_measurement_filter,
@@ -60,7 +61,14 @@ def test_what_blocks_begin_with_is_accepted() -> None:
     ):
         assert parse(render(changed)) == changed
     assert with_feedforward(with_feedforward(sheet, "static"), "none") == sheet
-    assert with_feedforward(sheet, "static").controller.feedforward == Feedforward("static", gain=0.0)
+
+
+def test_static_feedforward_begins_with_what_the_plant_needs() -> None:
+    """1/G(0) of the nominal plant; nothing for one that integrates."""
+    sheet = wash_bath()
+    assert with_feedforward(sheet, "static").controller.feedforward == Feedforward("static", gain=1.25)
+    level = replace(sheet, plant=ExpressionPlant("1 / s"))
+    assert with_feedforward(level, "static").controller.feedforward == Feedforward("static", gain=0.0)
 
 
 def test_limits_are_set_in_place_added_and_removed() -> None:

@@ -75,6 +75,18 @@ def _inverse(sheet: Sheet, process: Linear) -> Feedforward:
     return Feedforward("inverse", filter_time=time)
 
 
+def static_gain(sheet: Sheet) -> float:
+    """Return the effort for each unit of reference that brings the nominal output there; 0 where none does.
+
+    Raises
+    ------
+    LoopError
+        When the plant cannot be computed.
+    """
+    gain = _process(sheet).static_gain()
+    return 1.0 / gain if gain else 0.0
+
+
 def _static(process: Linear) -> Feedforward | None:
     """Return the gain that brings the nominal output to its reference; None where no steady effort does."""
     gain = process.static_gain()

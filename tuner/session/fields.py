@@ -4,6 +4,7 @@ from dataclasses import replace
 from math import pi
 from typing import Any
 
+from tuner.errors import LoopError
 from tuner.model.beginnings import first_time
 from tuner.model.controller import DisturbanceFeedforward, Feedforward, LeadLag, Notch, ReferenceFilter
 from tuner.model.measures import Measure
@@ -75,9 +76,22 @@ def first_measurement_filter(sheet: Sheet) -> float:
 
 def with_feedforward(sheet: Sheet, kind: str) -> Sheet:
     """Return a sheet with feedforward of a kind, its number to begin with, or none for any other word."""
-    time = first_time(sheet)
-    kinds = {"static": Feedforward("static", gain=0.0), "inverse": Feedforward("inverse", filter_time=time)}
-    return replace(sheet, controller=replace(sheet.controller, feedforward=kinds.get(kind)))
+    begun = {
+        "static": lambda: Feedforward("static", gain=_first_gain(sheet)),
+        "inverse": lambda: Feedforward("inverse", filter_time=first_time(sheet)),
+    }
+    feedforward = begun[kind]() if kind in begun else None
+    return replace(sheet, controller=replace(sheet.controller, feedforward=feedforward))
+
+
+def _first_gain(sheet: Sheet) -> float:
+    """Return the effort that a unit of reference takes in the end, 1/G(0) of the nominal plant; 0 without such one."""
+    from tuner.compare.choosing import static_gain
+
+    try:
+        return float(f"{static_gain(sheet):.4g}")
+    except LoopError:
+        return 0.0
 
 
 def with_disturbance_feedforward(sheet: Sheet, formula: str) -> Sheet:
